@@ -1,0 +1,61 @@
+package io.tallyward.engine.plan;
+
+import io.tallyward.engine.digest.Digest;
+import java.util.Map;
+import java.util.TreeMap;
+
+/** Names a plan by its meaning: equal plans have equal digests whatever their files look like. */
+public final class PlanDigest {
+
+    private PlanDigest() {}
+
+    /** SHA-256 over every field of the plan in a fixed order, as 64 hexadecimal digits. */
+    public static String of(Plan plan) {
+        Digest digest = new Digest("plan/1");
+        digest.text(plan.experiment()).text(plan.question()).text(plan.owner());
+        CountRule count = plan.count();
+        digest.text(count.by().name())
+                .number(count.attribution().toMillis())
+                .number(count.grace().toMillis())
+                .number(count.window().toMillis());
+        digest.number(plan.variants().size());
+        for (Variant variant : plan.variants()) {
+            digest.text(variant.name()).real(variant.share()).number(variant.control() ? 1 : 0);
+        }
+        TestPlan test = plan.test();
+        digest.real(test.alpha())
+                .text(test.sides().name())
+                .real(test.power())
+                .real(test.baseline())
+                .real(test.smallestEffect())
+                .text(test.spending().code())
+                .text(test.better().name())
+                .number(test.minimumPerCell());
+        addLooks(digest, plan.looks());
+        digest.text(plan.futility().map(futility -> futility.spending().code()).orElse("none"));
+        digest.real(plan.splitCheck().alpha());
+        digest.real(plan.trust().crossoverShare())
+                .real(plan.trust().lateShare())
+                .number(plan.trust().starvedAfter().toMillis());
+        digest.number(plan.run().from().toEpochMilli())
+                .number(plan.run().atLeast().toMillis())
+                .number(plan.run().atMost().toMillis());
+        digest.number(plan.epochs().size());
+        for (AllocationEpoch epoch : plan.epochs()) {
+            digest.number(epoch.from().toEpochMilli());
+            for (Map.Entry<String, Double> share : new TreeMap<>(epoch.shares()).entrySet()) {
+                digest.text(share.getKey()).real(share.getValue());
+            }
+        }
+        return digest.hex();
+    }
+
+    private static void addLooks(Digest digest, LookSchedule looks) {
+        if (looks instanceof LookSchedule.Every every) {
+            digest.text("every").number(every.interval().toMillis());
+        } else if (looks instanceof LookSchedule.AtFractions fractions) {
+            digest.text("fractions").number(fractions.fractions().size());
+            fractions.fractions().forEach(digest::real);
+        }
+    }
+}

@@ -1,0 +1,122 @@
+package io.tallyward.engine.record;
+
+import io.tallyward.engine.count.OutcomeCounts;
+import java.time.Instant;
+import java.util.List;
+import java.util.Locale;
+
+/**
+ * One decision about one experiment with everything needed to make it again. Records of an experiment form a chain: each
+ * names the digest of its predecessor.
+ *
+ * @param experiment name of the experiment
+ * @param sequence 1 for the experiment's first record, then 2, 3, ...
+ * @param occasion why the record was written
+ * @param windowEnd end of the last complete window the decision is based on
+ * @param planDigest digest of the plan it was made under
+ * @param counts cumulative counts up to {@code windowEnd}, by allocation epoch and variant
+ * @param outcomes cumulative outcomes of the events of these windows
+ * @param idleSealed how many of the windows were sealed, in some partition, because it was idle
+ * @param split what the split checks say
+ * @param trust whether the data are trusted
+ * @param trustReason why, in words; empty while sound
+ * @param verdict the verdict on the experiment
+ * @param comparisons one entry per challenger that was looked at; empty unless the occasion is a look
+ * @param engineVersion version of the deciding rules
+ * @param previous digest of the preceding record; 64 zeros for the first
+ * @param hash digest of this record
+ */
+public record DecisionRecord(
+        String experiment,
+        int sequence,
+        Occasion occasion,
+        Instant windowEnd,
+        String planDigest,
+        List<VariantCount> counts,
+        OutcomeCounts outcomes,
+        long idleSealed,
+        Split split,
+        Trust trust,
+        String trustReason,
+        Verdict verdict,
+        List<Comparison> comparisons,
+        String engineVersion,
+        String previous,
+        String hash) {
+
+    /** The {@code previous} of an experiment's first record. */
+    public static final String NO_PREVIOUS = "0".repeat(64);
+
+    public DecisionRecord {
+        counts = List.copyOf(counts);
+        comparisons = List.copyOf(comparisons);
+    }
+
+    /** Why a record was written. */
+    public enum Occasion {
+        /** A look was taken at one or more comparisons. */
+        LOOK,
+        /** Trust changed between looks. */
+        TRUST;
+
+        /** The published code, as in {@code look}. */
+        public String code() {
+            return name().toLowerCase(Locale.ROOT);
+        }
+    }
+
+    /** Cumulative counts of one variant during one allocation epoch. */
+    public record VariantCount(int epoch, String variant, long trials, long successes) {}
+
+    /**
+     * What the split checks say.
+     *
+     * @param logBayesFactor natural logarithm of the evidence against the planned split, now
+     * @param sequentialPValue valid however often it is read: one over the largest evidence so far, at most 1
+     * @param pearsonChiSquare Pearson's statistic on the current counts, summed over epochs; for the record only
+     * @param pearsonDegreesOfFreedom its degrees of freedom; 0 before there are trials
+     * @param pearsonPValue its p-value for a single reading
+     */
+    public record Split(
+            double logBayesFactor,
+            double sequentialPValue,
+            double pearsonChiSquare,
+            int pearsonDegreesOfFreedom,
+            double pearsonPValue) {}
+
+    /**
+     * One look at one challenger.
+     *
+     * @param variant the challenger
+     * @param look number of this look for this comparison, from 1
+     * @param z pooled two-proportion statistic of variant minus control, stratified by epoch
+     * @param information Fisher information about the difference of rates, 1 / variance
+     * @param informationFraction information over its planned maximum; may exceed 1 at the last look
+     * @param alphaSpent cumulative alpha spent at this look, both tails together
+     * @param upper upper boundary for z, null when the upper tail spends nothing at this look
+     * @param lower lower boundary for z, null when the lower tail spends nothing at this look
+     * @param futility futility boundary for z in the direction of benefit, null when there is none
+     * @param difference estimated difference of rates, variant minus control (naive, not adjusted for stopping)
+     * @param differenceLower lower end of the repeated confidence interval, null when unbounded
+     * @param differenceUpper upper end of the repeated confidence interval, null when unbounded
+     * @param verdict the verdict on this comparison, as told
+     * @param held the verdict that waits for trust to return, null when none does
+     * @param reason why, in words
+     */
+    public record Comparison(
+            String variant,
+            int look,
+            double z,
+            double information,
+            double informationFraction,
+            double alphaSpent,
+            Double upper,
+            Double lower,
+            Double futility,
+            double difference,
+            Double differenceLower,
+            Double differenceUpper,
+            Verdict verdict,
+            Verdict held,
+            String reason) {}
+}
