@@ -7,15 +7,13 @@ import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.Verdict;
 import io.tallyward.statistics.boundary.BoundarySequence;
 import io.tallyward.statistics.boundary.FutilitySequence;
+import io.tallyward.statistics.boundary.Look;
 import io.tallyward.statistics.proportion.StratifiedComparison;
-import io.tallyward.statistics.spending.SpendingFunction;
 import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
 import java.time.Instant;
-import java.util.ArrayList;
 import java.util.Collection;
-import java.util.List;
 import java.util.Locale;
 import java.util.Optional;
 import java.util.TreeMap;
@@ -77,7 +75,9 @@ final class ChallengerTest {
     }
 
     Optional<TakenLook> lastLook() {
-        return looks.isEmpty() ? Optional.empty() : Optional.of(looks.lastEntry().getValue());
+        return looks.isEmpty()
+                ? Optional.empty()
+                : Optional.of(looks.lastEntry().getValue());
     }
 
     Collection<TakenLook> looks() {
@@ -151,34 +151,39 @@ final class ChallengerTest {
         boolean last = runEnds || fraction >= 1;
         double spendingTime = last ? 1 : fraction;
         boolean benefitOpen = last
-                || windowEnd
-                        >= plan.run().from().plus(plan.run().atLeast()).toEpochMilli();
+                || windowEnd >= plan.run().from().plus(plan.run().atLeast()).toEpochMilli();
         TailSpending spent =
                 TailSpending.at(plan, design().spending().spent(design().tailLevel(), spendingTime), benefitOpen);
-        BoundarySequence.Look look = boundaries().next(fraction, spent.upper(), spent.lower());
-        double futilityBound = last ? Double.NEGATIVE_INFINITY : futilityBound(look, spendingTime);
-        Verdict found1 = judge(found.z(), look, futilityBound, last);
-        settle(found1, sound);
+        Look look = boundaries().next(fraction, spent.upper(), spent.lower());
+        boolean futile = plan.futility().isPresent() && !last;
+        double betaSpent = futile ? betaSpent(spendingTime) : 0;
+        double futilityBound = futile ? futilityBound(look, betaSpent) : Double.NEGATIVE_INFINITY;
+        Verdict finding = judge(found.z(), look, futilityBound, last);
+        settle(finding, sound);
         TakenLook taken = new TakenLook(
                 Instant.ofEpochMilli(windowEnd),
                 look,
+                betaSpent,
                 futilityBound,
-                comparison(found, look, futilityBound, reason(found.z(), look, found1)));
+                comparison(found, look, futilityBound, reason(found.z(), look, finding)));
         looks.put(look.number(), taken);
         return taken;
     }
 
-    private double futilityBound(BoundarySequence.Look look, double spendingTime) {
-        Optional<SpendingFunction> spending = PlanDesign.futilitySpending(plan);
-        if (spending.isEmpty()) {
-            return Double.NEGATIVE_INFINITY;
-        }
-        double benefitBoundary = higherIsBetter() ? look.upper() : -look.lower();
-        return futilities()
-                .next(look.information(), benefitBoundary, spending.get().spent(1 - plan.test().power(), spendingTime));
+    private double betaSpent(double spendingTime) {
+        return PlanDesign.spendingFunction(plan.futility().orElseThrow().spending())
+                .spent(1 - plan.test().power(), spendingTime);
     }
 
-    private Verdict judge(double z, BoundarySequence.Look look, double futilityBound, boolean last) {
+    private double futilityBound(Look look, double betaSpent) {
+        return futilities().next(look.information(), benefitBoundary(look), betaSpent);
+    }
+
+    private double benefitBoundary(Look look) {
+        return higherIsBetter() ? look.upper() : -look.lower();
+    }
+
+    private Verdict judge(double z, Look look, double futilityBound, boolean last) {
         if (z >= look.upper()) {
             return higherIsBetter() ? Verdict.STOP_BENEFIT : Verdict.STOP_HARM;
         }
@@ -192,12 +197,12 @@ final class ChallengerTest {
         return towardsBenefit < futilityBound ? Verdict.STOP_FUTILITY : Verdict.CONTINUE;
     }
 
-    private void settle(Verdict found, boolean sound) {
-        if (found.settled() && !sound) {
+    private void settle(Verdict finding, boolean sound) {
+        if (finding.settled() && !sound) {
             verdict = Verdict.CONTINUE;
-            held = found;
+            held = finding;
         } else {
-            verdict = found;
+            verdict = finding;
         }
     }
 
@@ -216,8 +221,7 @@ final class ChallengerTest {
         return true;
     }
 
-    private Comparison comparison(
-            StratifiedComparison found, BoundarySequence.Look look, double futilityBound, String reason) {
+    private Comparison comparison(StratifiedComparison found, Look look, double futilityBound, String reason) {
         double scale = Math.sqrt(found.information());
         return new Comparison(
                 name(),
@@ -241,15 +245,14 @@ final class ChallengerTest {
         return Double.isInfinite(value) ? null : value;
     }
 
-    private String reason(double z, BoundarySequence.Look look, Verdict found) {
-        String text =
-                switch (found) {
-                    case STOP_BENEFIT -> "z %.3f has reached the benefit boundary %.3f";
-                    case STOP_HARM -> "z %.3f has reached the harm boundary %.3f";
-                    case STOP_FUTILITY -> "z %.3f makes a benefit unlikely within the planned information";
-                    case EXHAUSTED -> "the planned information or time is used up and z %.3f has crossed no boundary";
-                    case CONTINUE, WAITING -> "z %.3f lies between the boundaries";
-                };
+    private String reason(double z, Look look, Verdict found) {
+        String text = switch (found) {
+            case STOP_BENEFIT -> "z %.3f has reached the benefit boundary %.3f";
+            case STOP_HARM -> "z %.3f has reached the harm boundary %.3f";
+            case STOP_FUTILITY -> "z %.3f makes a benefit unlikely within the planned information";
+            case EXHAUSTED -> "the planned information or time is used up and z %.3f has crossed no boundary";
+            case CONTINUE, WAITING -> "z %.3f lies between the boundaries";
+        };
         double crossed = z >= look.upper() ? look.upper() : look.lower();
         String reason = String.format(Locale.ROOT, text, z, crossed);
         return held == null ? reason : reason + "; held until the data are trusted again";
@@ -271,10 +274,8 @@ final class ChallengerTest {
         if (futility == null) {
             futility = new FutilitySequence(design().drift());
             for (TakenLook taken : looks.values()) {
-                double benefitBoundary = higherIsBetter()
-                        ? taken.look().upper()
-                        : -taken.look().lower();
-                futility.resume(taken.look().information(), benefitBoundary, taken.futility());
+                futility.resume(
+                        taken.look().information(), benefitBoundary(taken.look()), taken.betaSpent(), taken.futility());
             }
         }
         return futility;
@@ -295,10 +296,5 @@ final class ChallengerTest {
         verdict = Verdict.valueOf(in.readUTF());
         String heldName = in.readUTF();
         held = heldName.isEmpty() ? null : Verdict.valueOf(heldName);
-    }
-
-    /** Every look in order, for the page; a copy. */
-    List<TakenLook> history() {
-        return new ArrayList<>(looks.values());
     }
 }

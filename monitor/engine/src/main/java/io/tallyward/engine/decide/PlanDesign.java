@@ -11,13 +11,13 @@ import io.tallyward.engine.plan.Variant;
 import io.tallyward.statistics.boundary.BoundarySequence;
 import io.tallyward.statistics.boundary.Design;
 import io.tallyward.statistics.boundary.DesignRequest;
+import io.tallyward.statistics.boundary.Look;
 import io.tallyward.statistics.proportion.SampleSize;
 import io.tallyward.statistics.spending.SpendingFunction;
 import java.util.ArrayList;
 import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
-import java.util.Optional;
 
 /**
  * What a plan means for one challenger before any data: its planned looks with their boundaries, and how much information
@@ -38,7 +38,7 @@ public record PlanDesign(
         double tailLevel,
         boolean twoSided,
         SpendingFunction spending,
-        List<BoundarySequence.Look> looks,
+        List<Look> looks,
         double drift,
         double inflation,
         double maximumInformation,
@@ -64,10 +64,11 @@ public record PlanDesign(
                 fractionsForDesign(plan),
                 plan.futility().map(FutilityPlan::spending).map(PlanDesign::spendingFunction)));
         double[] finalShares = plan.sharesIn(plan.epochs().size());
+        double effect = test.better() == Better.HIGHER ? test.smallestEffect() : -test.smallestEffect();
         SampleSize size = SampleSize.of(
-                design.drift(),
+                SampleSize.maximumInformation(design.drift(), effect),
                 test.baseline(),
-                test.better() == Better.HIGHER ? test.smallestEffect() : -test.smallestEffect(),
+                effect,
                 finalShares[plan.variantIndex(plan.control().name())],
                 finalShares[plan.variantIndex(challenger.name())]);
         Map<String, Long> trials = new LinkedHashMap<>();
@@ -98,14 +99,16 @@ public record PlanDesign(
     /** Planned information fractions: the plan's own, or equal steps when it looks at regular times. */
     public static double[] plannedFractions(Plan plan) {
         if (plan.looks() instanceof LookSchedule.AtFractions fractions) {
-            return fractions.fractions().stream().mapToDouble(Double::doubleValue).toArray();
+            return fractions.fractions().stream()
+                    .mapToDouble(Double::doubleValue)
+                    .toArray();
         }
         return equalSteps(lookCount(plan));
     }
 
     private static int lookCount(Plan plan) {
         long interval = ((LookSchedule.Every) plan.looks()).interval().toMillis();
-        return (int) Math.ceilDiv(plan.run().atMost().toMillis(), interval);
+        return Math.toIntExact((plan.run().atMost().toMillis() + interval - 1) / interval);
     }
 
     private static double[] equalSteps(int count) {
@@ -121,12 +124,12 @@ public record PlanDesign(
         return planned.length <= LOOKS_FOR_DESIGN ? planned : equalSteps(LOOKS_FOR_DESIGN);
     }
 
-    private static List<BoundarySequence.Look> plannedLooks(Plan plan, SpendingFunction spending, double tailLevel) {
+    private static List<Look> plannedLooks(Plan plan, SpendingFunction spending, double tailLevel) {
         BoundarySequence sequence = new BoundarySequence();
-        List<BoundarySequence.Look> looks = new ArrayList<>();
+        List<Look> looks = new ArrayList<>();
         for (double fraction : plannedFractions(plan)) {
-            TailSpending spent = TailSpending.at(
-                    plan, spending.spent(tailLevel, fraction), benefitIsOpen(plan, looks.size() + 1));
+            TailSpending spent =
+                    TailSpending.at(plan, spending.spent(tailLevel, fraction), benefitIsOpen(plan, looks.size() + 1));
             looks.add(sequence.next(fraction, spent.upper(), spent.lower()));
         }
         return looks;
@@ -136,10 +139,5 @@ public record PlanDesign(
     private static boolean benefitIsOpen(Plan plan, int look) {
         return !(plan.looks() instanceof LookSchedule.Every every)
                 || every.interval().multipliedBy(look).compareTo(plan.run().atLeast()) >= 0;
-    }
-
-    /** Futility spending of a plan, if it has any. */
-    static Optional<SpendingFunction> futilitySpending(Plan plan) {
-        return plan.futility().map(FutilityPlan::spending).map(PlanDesign::spendingFunction);
     }
 }

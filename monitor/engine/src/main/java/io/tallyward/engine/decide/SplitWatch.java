@@ -46,18 +46,15 @@ final class SplitWatch {
     }
 
     Split split(CumulativeCounts counts) {
-        double chiSquare = 0;
-        int degreesOfFreedom = 0;
+        PearsonSplit pearson = PearsonSplit.NONE;
         for (int epoch = 0; epoch < counts.epochs(); epoch++) {
             long[] trials = counts.trialsIn(epoch);
             if (Arrays.stream(trials).sum() > 0) {
-                PearsonSplit pearson = PearsonSplit.of(plan.sharesIn(epoch), trials);
-                chiSquare += pearson.chiSquare();
-                degreesOfFreedom += pearson.degreesOfFreedom();
+                pearson = pearson.plus(PearsonSplit.of(plan.sharesIn(epoch), trials));
             }
         }
-        double pearsonPValue = degreesOfFreedom == 0 ? 1 : PearsonSplit.pValue(chiSquare, degreesOfFreedom);
-        return new Split(logBayesFactor, sequentialPValue(), chiSquare, degreesOfFreedom, pearsonPValue);
+        return new Split(
+                logBayesFactor, sequentialPValue(), pearson.chiSquare(), pearson.degreesOfFreedom(), pearson.pValue());
     }
 
     void write(DataOutput out) throws IOException {

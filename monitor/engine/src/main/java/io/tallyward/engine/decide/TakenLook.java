@@ -2,7 +2,7 @@ package io.tallyward.engine.decide;
 
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.Verdict;
-import io.tallyward.statistics.boundary.BoundarySequence;
+import io.tallyward.statistics.boundary.Look;
 import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
@@ -13,10 +13,11 @@ import java.time.Instant;
  *
  * @param windowEnd event time of the look
  * @param look its boundaries and the error spent, on the scale of z as variant minus control
+ * @param betaSpent cumulative type II error spent on futility; 0 when there is none
  * @param futility futility boundary on the scale on which a benefit is positive; negative infinity when there is none
  * @param comparison what was recorded of it
  */
-record TakenLook(Instant windowEnd, BoundarySequence.Look look, double futility, Comparison comparison) {
+record TakenLook(Instant windowEnd, Look look, double betaSpent, double futility, Comparison comparison) {
 
     void write(DataOutput out) throws IOException {
         out.writeLong(windowEnd.toEpochMilli());
@@ -26,6 +27,7 @@ record TakenLook(Instant windowEnd, BoundarySequence.Look look, double futility,
         out.writeDouble(look.lowerSpent());
         out.writeDouble(look.upper());
         out.writeDouble(look.lower());
+        out.writeDouble(betaSpent);
         out.writeDouble(futility);
         out.writeUTF(comparison.variant());
         out.writeInt(comparison.look());
@@ -46,13 +48,9 @@ record TakenLook(Instant windowEnd, BoundarySequence.Look look, double futility,
 
     static TakenLook read(DataInput in) throws IOException {
         Instant windowEnd = Instant.ofEpochMilli(in.readLong());
-        BoundarySequence.Look look = new BoundarySequence.Look(
-                in.readInt(),
-                in.readDouble(),
-                in.readDouble(),
-                in.readDouble(),
-                in.readDouble(),
-                in.readDouble());
+        Look look = new Look(
+                in.readInt(), in.readDouble(), in.readDouble(), in.readDouble(), in.readDouble(), in.readDouble());
+        double betaSpent = in.readDouble();
         double futility = in.readDouble();
         Comparison comparison = new Comparison(
                 in.readUTF(),
@@ -70,7 +68,7 @@ record TakenLook(Instant windowEnd, BoundarySequence.Look look, double futility,
                 Verdict.valueOf(in.readUTF()),
                 readVerdict(in),
                 in.readUTF());
-        return new TakenLook(windowEnd, look, futility, comparison);
+        return new TakenLook(windowEnd, look, betaSpent, futility, comparison);
     }
 
     private static Verdict readVerdict(DataInput in) throws IOException {
