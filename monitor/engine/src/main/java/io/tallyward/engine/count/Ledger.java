@@ -57,6 +57,11 @@ final class Ledger {
         if (late && (unit == null || !unit.hasTrial() || event.atMillis() < unit.first())) {
             return Outcome.LATE;
         }
+        if (late) {
+            unit.exposeAgain(variant);
+            changed.add(hash);
+            return null;
+        }
         unit = unit == null ? new OpenUnit(variants) : unit;
         unit.expose(variant, event.atMillis(), identity(event), attributionMillis);
         put(hash, unit);
