@@ -102,7 +102,6 @@ final class ExperimentCounter {
         if (watermark < nextSealAt()) {
             return result;
         }
-        ledger.forgetDueBefore(sealedUntil);
         long until = watermark == Long.MAX_VALUE ? runEnd : Math.min(runEnd, windowOf(watermark - sealDelayMillis));
         long next = nextToSeal();
         while (next < until) {
@@ -174,6 +173,7 @@ final class ExperimentCounter {
 
     void restore(long storedSealedUntil, OutcomeCounts storedOutcomes, Map<Long, OutcomeCounts> storedUnsealed) {
         sealedUntil = storedSealedUntil;
+        ledger.forgetDueBefore(sealedUntil);
         finalOutcomes = new OutcomeCounts.Builder().add(storedOutcomes);
         unsealedOutcomes.clear();
         storedUnsealed.forEach(

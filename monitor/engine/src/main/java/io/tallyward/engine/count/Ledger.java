@@ -119,6 +119,11 @@ final class Ledger {
         due.computeIfAbsent(window, start -> new LinkedHashSet<>()).add(hash);
     }
 
+    /** The window with which the last of what is open about a unit is sealed. */
+    private long dueWindow(OpenUnit unit) {
+        return windowOf(unit.hasTrial() ? unit.first() : unit.latestClick());
+    }
+
     private long windowOf(long atMillis) {
         return Math.floorDiv(atMillis, windowMillis) * windowMillis;
     }
@@ -178,8 +183,8 @@ final class Ledger {
         TreeMap<Long, Map<UnitHash, OpenUnit>> byWindow = new TreeMap<>();
         for (UnitHash hash : changed) {
             OpenUnit unit = open.get(hash);
-            long window = windowOf(unit.hasTrial() ? unit.first() : unit.latestClick());
-            byWindow.computeIfAbsent(window, start -> new LinkedHashMap<>()).put(hash, unit);
+            byWindow.computeIfAbsent(dueWindow(unit), start -> new LinkedHashMap<>())
+                    .put(hash, unit);
         }
         changed.clear();
         return byWindow;
@@ -198,9 +203,20 @@ final class Ledger {
         }
     }
 
-    /** Forgets what restored versions of units, since replaced, would have made fall due in windows sealed long ago. */
+    /**
+     * Forgets restored versions of units that were replaced or gone when the windows before a moment were sealed: clicks
+     * that became orphans leave an entry behind, which a log that is not compacted yet still holds.
+     */
     void forgetDueBefore(long sealedUntilMillis) {
-        due.headMap(sealedUntilMillis).clear();
+        Map<Long, Set<UnitHash>> past = due.headMap(sealedUntilMillis);
+        past.values()
+                .forEach(hashes -> hashes.forEach(hash -> {
+                    OpenUnit unit = open.get(hash);
+                    if (unit != null && dueWindow(unit) < sealedUntilMillis) {
+                        open.remove(hash);
+                    }
+                }));
+        past.clear();
     }
 
     /** Adds a unit whose trial is final. */
