@@ -48,4 +48,15 @@ record Quadrature(double[] points, double[] weights) {
         }
         return new Quadrature(points, weights);
     }
+
+    /** The rule after a change of variable to {@code factor} times the old one. */
+    Quadrature scaled(double factor) {
+        double[] x = points.clone();
+        double[] w = weights.clone();
+        for (int i = 0; i < x.length; i++) {
+            x[i] *= factor;
+            w[i] *= factor;
+        }
+        return new Quadrature(x, w);
+    }
 }

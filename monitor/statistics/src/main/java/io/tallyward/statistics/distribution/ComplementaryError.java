@@ -11,6 +11,9 @@ final class ComplementaryError {
 
     private static final double SMALL = 0.46875;
     private static final double MIDDLE = 4.0;
+    /** {@code exp(-x^2)} is below half the smallest double from here on. */
+    private static final double UNDERFLOW = 27.3;
+
     private static final double ONE_OVER_ROOT_PI = 5.6418958354775628695e-1;
 
     private static final double[] ERF_NUMERATOR = {
@@ -83,6 +86,9 @@ final class ComplementaryError {
 
     /** {@code exp(-x^2)}, the square split so that its rounding does not grow with {@code x} (Cody 1969). */
     static double expMinusSquare(double x) {
+        if (x > UNDERFLOW) {
+            return 0;
+        }
         double head = StrictMath.floor(x * 16) / 16;
         double tail = (x - head) * (x + head);
         return StrictMath.exp(-head * head) * StrictMath.exp(-tail);
