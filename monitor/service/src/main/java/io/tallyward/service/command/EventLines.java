@@ -1,9 +1,9 @@
 package io.tallyward.service.command;
 
-import java.io.BufferedInputStream;
 import java.io.ByteArrayOutputStream;
 import java.io.IOException;
 import java.io.InputStream;
+import java.util.Arrays;
 import java.util.Optional;
 
 /**
@@ -12,21 +12,21 @@ import java.util.Optional;
  */
 final class EventLines implements AutoCloseable {
 
-    private static final int BUFFER_BYTES = 1 << 16;
-
     private final InputStream in;
     private final int maxBytes;
-    private boolean atEnd;
+    private final byte[] buffer = new byte[1 << 16];
+    private int from;
+    private int to;
 
     /** Lines of {@code in} of at most {@code maxBytes} bytes each, not counting their ends; closes it in the end. */
     EventLines(InputStream in, int maxBytes) {
-        this.in = new BufferedInputStream(in, BUFFER_BYTES);
+        this.in = in;
         this.maxBytes = maxBytes;
     }
 
     /** The next line that is not blank; empty at the end of the file. */
     Optional<byte[]> next() throws IOException {
-        while (!atEnd) {
+        while (from < to || fill()) {
             byte[] line = line();
             if (!isBlank(line)) {
                 return Optional.of(line);
@@ -37,21 +37,29 @@ final class EventLines implements AutoCloseable {
 
     private byte[] line() throws IOException {
         ByteArrayOutputStream line = new ByteArrayOutputStream(512);
-        int last = -1;
-        for (int next = in.read(); next != '\n'; next = in.read()) {
-            if (next < 0) {
-                atEnd = true;
-                break;
+        boolean ended = false;
+        while (!ended && (from < to || fill())) {
+            int end = from;
+            while (end < to && buffer[end] != '\n') {
+                end++;
             }
-            if (last >= 0 && line.size() <= maxBytes) {
-                line.write(last);
-            }
-            last = next;
+            ended = end < to;
+            line.write(buffer, from, Math.min(end - from, maxBytes + 2 - line.size()));
+            from = ended ? end + 1 : end;
         }
-        if (last >= 0 && last != '\r' && line.size() <= maxBytes) {
-            line.write(last);
-        }
-        return line.toByteArray();
+        return withoutReturn(line.toByteArray());
+    }
+
+    private boolean fill() throws IOException {
+        from = 0;
+        to = Math.max(0, in.read(buffer));
+        return to > 0;
+    }
+
+    /** Windows ends its lines with a carriage return before the line feed; it is no part of the document. */
+    private byte[] withoutReturn(byte[] line) {
+        int length = line.length > 0 && line[line.length - 1] == '\r' ? line.length - 1 : line.length;
+        return Arrays.copyOf(line, Math.min(length, maxBytes + 1));
     }
 
     private static boolean isBlank(byte[] line) {
