@@ -178,8 +178,7 @@ final class CountHost implements HostedShard {
         for (Map.Entry<String, CountView.ExperimentCounts> entry :
                 view.experiments().entrySet()) {
             CountView.ExperimentCounts counts = entry.getValue();
-            experiments.put(
-                    entry.getKey(), new CountReport.ExperimentCount(counts.outcomes(), counts.openEvents()));
+            experiments.put(entry.getKey(), new CountReport.ExperimentCount(counts.outcomes(), counts.openEvents()));
             units += counts.units();
         }
         return new CountReport(experiments, view.watermarkMillis(), view.rejected(), units, keyCheck.unkeyed());

@@ -39,8 +39,7 @@ final class KeyCheck {
             return false;
         }
         byte[] expected = unit.getBytes(StandardCharsets.UTF_8);
-        boolean agrees =
-                Arrays.equals(key, expected) || KeyPartitions.partitionOf(expected, partitions) == partition;
+        boolean agrees = Arrays.equals(key, expected) || KeyPartitions.partitionOf(expected, partitions) == partition;
         sampled++;
         disagreeing += agrees ? 0 : 1;
         if (sampled < SAMPLE) {

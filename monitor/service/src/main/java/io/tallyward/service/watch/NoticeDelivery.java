@@ -53,11 +53,7 @@ final class NoticeDelivery implements AutoCloseable {
         this.clock = clock;
         sender = new WebhookSender(target);
         queue = new DeliveryQueue(
-                sender,
-                RetrySchedule.standard(clock.millis()),
-                CAPACITY,
-                clock,
-                new DeliveryListener() {
+                sender, RetrySchedule.standard(clock.millis()), CAPACITY, clock, new DeliveryListener() {
                     @Override
                     public void attempted(Notice notice, AttemptResult result) {
                         attempts.incrementAndGet();
@@ -77,8 +73,7 @@ final class NoticeDelivery implements AutoCloseable {
             Map<String, String> clientProperties,
             String evidenceBase,
             InstantSource clock) {
-        SigningSecret secret =
-                SigningSecret.parse(new String(webhook.secret().reveal(), StandardCharsets.UTF_8));
+        SigningSecret secret = SigningSecret.parse(new String(webhook.secret().reveal(), StandardCharsets.UTF_8));
         WebhookTarget target = WebhookTarget.builder(webhook.url(), List.of(secret))
                 .allowHttp(webhook.allowHttp())
                 .allowPrivate(webhook.allowPrivate())

@@ -13,9 +13,10 @@ final class RejectDetail {
         return switch (reason) {
             case UNKNOWN_EXPERIMENT -> "no plan is named " + event.experiment();
             case UNKNOWN_VARIANT -> "the plan of " + event.experiment() + " has no variant " + event.variant();
-            case BAD_TIME -> "event time " + Instant.ofEpochMilli(event.atMillis())
-                    + " lies ahead of the record's timestamp " + Instant.ofEpochMilli(recordTimestampMillis)
-                    + " by more than input.max-skew";
+            case BAD_TIME ->
+                "event time " + Instant.ofEpochMilli(event.atMillis())
+                        + " lies ahead of the record's timestamp " + Instant.ofEpochMilli(recordTimestampMillis)
+                        + " by more than input.max-skew";
             case UNPARSABLE, MISSING_FIELD, OVERSIZED -> reason.code();
         };
     }

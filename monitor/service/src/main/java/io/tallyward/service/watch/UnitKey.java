@@ -17,8 +17,9 @@ final class UnitKey {
         if (config.unitKey().isPresent()) {
             return config.unitKey().map(Secret::reveal).orElseThrow();
         }
-        LOG.warn("No unit-key is configured: the hashes that stand for units in {}-count-state could be reversed by"
-                + " guessing identifiers. Set unit-key.file or unit-key.environment before the first event is counted.",
+        LOG.warn(
+                "No unit-key is configured: the hashes that stand for units in {}-count-state could be reversed by"
+                        + " guessing identifiers. Set unit-key.file or unit-key.environment before the first event is counted.",
                 config.name());
         return ("tallyward unit key of " + config.name()).getBytes(StandardCharsets.UTF_8);
     }

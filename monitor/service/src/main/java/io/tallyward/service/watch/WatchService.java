@@ -20,6 +20,7 @@ import io.tallyward.service.status.HealthBoard;
 import io.tallyward.service.status.RunnerReport;
 import io.tallyward.service.status.StatusBoard;
 import io.tallyward.service.status.WebhookReport;
+import java.time.Clock;
 import java.time.InstantSource;
 import java.util.HashMap;
 import java.util.List;
@@ -56,7 +57,8 @@ public final class WatchService implements AutoCloseable {
         clientProperties.put("bootstrap.servers", config.kafka().bootstrapServers());
 
         MonitorMetrics metrics = new MonitorMetrics(board, this::runnerReports, this::webhookReport, version);
-        StatusSite site = new StatusSite(board, health, new PrometheusExposition(metrics), new Pages());
+        StatusSite site =
+                new StatusSite(board, health, new PrometheusExposition(metrics), new Pages(Clock.systemUTC()));
         server = StatusServer.start(config.http().host(), config.http().port(), site);
         InstantSource clock = InstantSource.system();
         deciding = ShardRunner.start(decideGroup(), clock, listener);
@@ -76,8 +78,7 @@ public final class WatchService implements AutoCloseable {
      * @param listener hears about broken invariants; the instance is of no use afterwards
      * @throws java.io.UncheckedIOException when the HTTP address cannot be listened on
      */
-    public static WatchService start(
-            ServiceConfig config, List<Plan> plans, String version, RunnerListener listener) {
+    public static WatchService start(ServiceConfig config, List<Plan> plans, String version, RunnerListener listener) {
         WatchService service = new WatchService(config, plans, version, listener);
         LOG.info(
                 "Watching {} experiments on {} at {}; page, metrics and health at {}",
@@ -98,7 +99,7 @@ public final class WatchService implements AutoCloseable {
         CountSettings settings =
                 new CountSettings(config.input().maxSkew(), config.input().idleAfter(), unitKey);
         JsonEventReader reader =
-                new JsonEventReader(EventMappings.of(config.input()), config.input().maxEventBytes());
+                new JsonEventReader(config.input().mapping(), config.input().maxEventBytes());
         List<String> topics = config.input().topics();
         return group(names.countGroup())
                 .inputTopics(topics)
@@ -136,9 +137,7 @@ public final class WatchService implements AutoCloseable {
     }
 
     private ShardGroup.Builder group(String id) {
-        return ShardGroup.builder(id)
-                .clientProperties(clientProperties)
-                .commitInterval(config.commitInterval());
+        return ShardGroup.builder(id).clientProperties(clientProperties).commitInterval(config.commitInterval());
     }
 
     private static StartPosition startPosition(InputStart start) {
