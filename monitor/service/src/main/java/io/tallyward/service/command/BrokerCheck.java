@@ -20,7 +20,7 @@ record BrokerCheck(Map<String, Integer> partitions, List<String> problems) {
     static final BrokerCheck SKIPPED = new BrokerCheck(Map.of(), List.of());
 
     /** A person is waiting, so we give up sooner than the service would. */
-    private static final String PATIENCE_MILLIS = "8000";
+    private static final String PATIENCE_MILLIS = "5000";
 
     /** Asks the brokers, for ten seconds or so at most. */
     static BrokerCheck of(ServiceConfig config, TopicLookup lookup) {

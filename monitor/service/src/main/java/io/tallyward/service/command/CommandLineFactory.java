@@ -28,12 +28,14 @@ public final class CommandLineFactory {
     private static final class Version implements IVersionProvider {
         @Override
         public String[] getVersion() {
-            String release = CommandLineFactory.class.getPackage().getImplementationVersion();
-            return new String[] {
-                "tallyward " + (release == null ? "(development)" : release) + ", deciding rules "
-                        + EngineVersion.CURRENT
-            };
+            return new String[] {"tallyward " + version() + ", deciding rules " + EngineVersion.CURRENT};
         }
+    }
+
+    /** Version of the program, from the manifest of its jar. */
+    public static String version() {
+        String release = CommandLineFactory.class.getPackage().getImplementationVersion();
+        return release == null ? "development" : release;
     }
 
     /**
