@@ -112,6 +112,23 @@ class DesignTest {
         assertEquals(1, design.inflation(), DRIFT);
         assertEquals(1, design.looks().size());
         assertEquals(Double.NEGATIVE_INFINITY, design.looks().get(0).futility());
+        Design futile = Design.of(new DesignRequest(0.025, false, LATE, 0.8, new double[] {1}, Optional.of(LATE)));
+        assertEquals(design.drift(), futile.drift(), DRIFT);
+        assertEquals(
+                Normal.upperQuantile(0.025), futile.looks().get(0).futility(), "whatever is not a benefit is futile");
+    }
+
+    /** Information beyond the plan, or short of it, is worth what it is worth at a single look. */
+    @Test
+    void scalesWithTheInformationOfItsOnlyLook() {
+        for (double fraction : new double[] {0.5, 1, 1.7}) {
+            SpendingFunction even = SpendingFunction.kimDemets(1);
+            Design design =
+                    Design.of(new DesignRequest(0.025, true, even, 0.8, new double[] {fraction}, Optional.empty()));
+            double level = 0.025 * Math.min(fraction, 1);
+            double drift = (Normal.upperQuantile(level) + Normal.quantile(0.8)) / Math.sqrt(fraction);
+            assertEquals(drift, design.drift(), DRIFT, "fraction " + fraction);
+        }
     }
 
     @Test
