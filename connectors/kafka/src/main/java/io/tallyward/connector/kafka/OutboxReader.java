@@ -92,15 +92,16 @@ public final class OutboxReader implements AutoCloseable {
             while (stop.getCount() > 0) {
                 stepOrRecover();
             }
+            leave();
             state = WorkerState.STOPPED;
         } catch (InterruptException interrupted) {
+            leave();
             state = WorkerState.STOPPED;
         } catch (RuntimeException broken) {
             LOG.error("{}: reading notices stops for good", source.group(), broken);
+            leave();
             lastError = broken.toString();
             state = WorkerState.FAILED;
-        } finally {
-            leave();
         }
     }
 

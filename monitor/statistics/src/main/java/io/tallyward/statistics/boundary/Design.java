@@ -132,8 +132,10 @@ public record Design(
 
     private static double root(UnivariateFunction surplus, double fixed, double[] information) {
         double greatest = greatestDrift(information);
-        double low = 0;
+        // No sequential test beats the single test on the same information (Neyman and Pearson), so the search starts
+        // there.
         double high = StrictMath.min(fixed / StrictMath.sqrt(information[information.length - 1]), greatest);
+        double low = 0.5 * high;
         while (surplus.value(high) < 0) {
             if (high == greatest) {
                 throw new IllegalArgumentException(
