@@ -2,6 +2,7 @@ package io.tallyward.service.command;
 
 import io.tallyward.connector.format.Decoded;
 import io.tallyward.connector.format.JsonEventReader;
+import io.tallyward.connector.kafka.KeyPartitions;
 import io.tallyward.engine.count.CountSettings;
 import io.tallyward.engine.count.CountShard;
 import io.tallyward.engine.count.OutcomeCounts;
@@ -21,7 +22,6 @@ import java.util.List;
 import java.util.Map;
 import java.util.SortedMap;
 import java.util.TreeMap;
-import java.util.zip.CRC32;
 
 /**
  * Counts and decides over a finite stream of events, with the shards that the service runs and nothing else: no broker, no
@@ -80,9 +80,8 @@ final class Replay {
     }
 
     private CountShard shardOf(String unit) {
-        CRC32 hash = new CRC32();
-        hash.update(unit.getBytes(StandardCharsets.UTF_8));
-        return counting.get((int) (hash.getValue() % counting.size()));
+        byte[] key = unit.getBytes(StandardCharsets.UTF_8);
+        return counting.get(KeyPartitions.partitionOf(key, counting.size()));
     }
 
     private void reject(RejectReason reason) {
