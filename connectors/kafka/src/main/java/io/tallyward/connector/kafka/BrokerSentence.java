@@ -15,42 +15,58 @@ import org.apache.kafka.common.errors.TimeoutException;
 import org.apache.kafka.common.errors.UnknownMemberIdException;
 import org.apache.kafka.common.errors.UnknownTopicOrPartitionException;
 
-/** Turns what the client library throws into one sentence: what is wrong, where, what to do. */
-final class BrokerSentence {
+/**
+ * What the client library throws, as one sentence: what is wrong, where, what to do.
+ *
+ * @param condition the same for every sentence about the same condition, whatever its details
+ * @param text the sentence
+ */
+record BrokerSentence(String condition, String text) {
 
-    private BrokerSentence() {}
-
-    static String of(Throwable failure, String broker) {
+    static BrokerSentence of(Throwable failure, String broker) {
         if (failure instanceof BrokerException) {
-            return failure.getMessage();
+            return new BrokerSentence(failure.getMessage(), failure.getMessage());
         }
         if (takenOver(failure)) {
-            return "the last step was refused by the broker at " + broker
-                    + " because its partitions or its transactions belong to another member by now: nothing to do,"
-                    + " unless it keeps coming, which means that two instances run under one instance name";
+            return sentence(
+                    "the last step was refused by the broker at " + broker
+                            + " because its partitions or its transactions belong to another member by now",
+                    "",
+                    "nothing to do, unless it keeps coming, which means that two instances run under one instance name");
         }
+        return outside(failure, "the broker at " + broker, detail(failure));
+    }
+
+    private static BrokerSentence outside(Throwable failure, String broker, String detail) {
         if (find(failure, AuthenticationException.class) != null) {
-            return "the broker at " + broker + " refuses the credentials (" + detail(failure)
-                    + "): correct the security settings among the client properties";
+            return sentence(
+                    broker + " refuses the credentials",
+                    detail,
+                    "correct the security settings among the client properties");
         }
         if (find(failure, AuthorizationException.class) != null) {
-            return "the broker at " + broker + " does not permit this (" + detail(failure)
-                    + "): grant the permission to the service's principal";
+            return sentence(
+                    broker + " does not permit this", detail, "grant the permission to the service's principal");
         }
         if (find(failure, UnknownTopicOrPartitionException.class) != null) {
-            return "a topic is missing at " + broker + " (" + detail(failure)
-                    + "): create it or correct its name in the configuration";
+            return sentence(
+                    broker + " does not know a topic", detail, "create it or correct its name in the configuration");
         }
         if (find(failure, ConfigException.class) != null) {
-            return "the Kafka client for " + broker + " cannot be set up (" + detail(failure)
-                    + "): correct the bootstrap servers or the client properties";
+            return sentence(
+                    "no client can be set up for " + broker,
+                    detail,
+                    "correct the bootstrap servers or the client properties");
         }
         if (unanswered(failure)) {
-            return "the broker at " + broker + " does not answer (" + detail(failure)
-                    + "): start it, or correct the bootstrap servers";
+            return sentence(broker + " does not answer", detail, "start it, or correct the bootstrap servers");
         }
-        return "the broker at " + broker + " does not do what is needed (" + detail(failure)
-                + "): see the broker's log";
+        return sentence(broker + " does not do what is needed", detail, "see the broker's log");
+    }
+
+    private static BrokerSentence sentence(String condition, String detail, String remedy) {
+        String inBrackets = detail.isEmpty() ? "" : " (" + detail + ")";
+        return new BrokerSentence(condition, condition + inBrackets + ": " + remedy);
     }
 
     /** Whether the group has moved on without this member, which heals by restoring. */

@@ -18,20 +18,27 @@ final class GroupLayout {
         List<String> asked = new ArrayList<>(group.inputTopics());
         Map<String, Integer> found = cluster.partitions(asked);
         int partitions = agreed(group, found);
-        new InternalTopics(cluster, group.broker())
-                .ensure(group.internalTopics().apply(partitions));
-        Integer statePartitions =
-                cluster.partitions(List.of(group.stateTopic())).get(group.stateTopic());
-        if (statePartitions == null) {
+        List<InternalTopic> own = group.internalTopics().apply(partitions);
+        new InternalTopics(cluster, group.broker()).ensure(own);
+        // A topic just created may not be known to every broker yet, so the group's own need no second look.
+        if (own.stream()
+                .noneMatch(topic -> topic.name().equals(group.stateTopic()) && topic.partitions() == partitions)) {
+            checkState(group, cluster, partitions);
+        }
+        return partitions;
+    }
+
+    private static void checkState(ShardGroup group, Cluster cluster, int partitions) {
+        Integer found = cluster.partitions(List.of(group.stateTopic())).get(group.stateTopic());
+        if (found == null) {
             throw new BrokerException("state topic " + group.stateTopic() + " does not exist on " + group.broker()
                     + ": create it, compacted, with " + partitions + " partitions");
         }
-        if (statePartitions != partitions) {
-            throw new BrokerException("state topic " + group.stateTopic() + " has " + statePartitions
-                    + " partitions on " + group.broker() + " (expected: " + partitions + ", as " + group.inputTopics()
+        if (found != partitions) {
+            throw new BrokerException("state topic " + group.stateTopic() + " has " + found + " partitions on "
+                    + group.broker() + " (expected: " + partitions + ", as " + group.inputTopics()
                     + "): go back to the earlier partition count of the input, or start under a new name");
         }
-        return partitions;
     }
 
     private static int agreed(ShardGroup group, Map<String, Integer> found) {

@@ -30,7 +30,7 @@ public final class InternalTopics {
         try (Cluster cluster = ClientSettings.cluster(clientProperties)) {
             new InternalTopics(cluster, broker).ensure(topics);
         } catch (KafkaException failure) {
-            throw new BrokerException(BrokerSentence.of(failure, broker), failure);
+            throw new BrokerException(BrokerSentence.of(failure, broker).text(), failure);
         }
     }
 
@@ -43,7 +43,10 @@ public final class InternalTopics {
         try (Cluster cluster = ClientSettings.cluster(clientProperties)) {
             return Map.copyOf(cluster.partitions(topics));
         } catch (KafkaException failure) {
-            throw new BrokerException(BrokerSentence.of(failure, clientProperties.get("bootstrap.servers")), failure);
+            throw new BrokerException(
+                    BrokerSentence.of(failure, clientProperties.get("bootstrap.servers"))
+                            .text(),
+                    failure);
         }
     }
 
@@ -68,7 +71,7 @@ public final class InternalTopics {
         } catch (KafkaException refused) {
             throw new BrokerException(
                     "topic " + topic.name() + " with " + topic.partitions() + " partitions could not be created: "
-                            + BrokerSentence.of(refused, broker) + "; or create the topic by hand",
+                            + BrokerSentence.of(refused, broker).text() + "; or create the topic by hand",
                     refused);
         }
     }

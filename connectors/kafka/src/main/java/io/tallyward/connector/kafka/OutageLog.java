@@ -13,18 +13,20 @@ final class OutageLog {
     private static final Logger LOG = LoggerFactory.getLogger(OutageLog.class);
 
     private final String who;
+
+    /** The condition that each worker met last; guarded by this object's monitor. */
     private final Map<Integer, String> ongoing = new HashMap<>();
 
     OutageLog(String who) {
         this.who = who;
     }
 
-    /** A worker met an obstacle; logged unless this or another worker has just said the same. */
-    synchronized void met(int worker, String sentence) {
-        boolean said = ongoing.containsValue(sentence);
-        ongoing.put(worker, sentence);
+    /** A worker met an obstacle; logged unless this or another worker has already met the same condition. */
+    synchronized void met(int worker, BrokerSentence sentence) {
+        boolean said = ongoing.containsValue(sentence.condition());
+        ongoing.put(worker, sentence.condition());
         if (!said) {
-            LOG.warn("{}: {}; trying again by itself", who, sentence);
+            LOG.warn("{}: {}; trying again by itself", who, sentence.text());
         }
     }
 

@@ -134,8 +134,9 @@ public final class OutboxReader implements AutoCloseable {
     }
 
     private void meet(RuntimeException failure) {
-        lastError = BrokerSentence.of(failure, source.broker());
-        outages.met(0, lastError);
+        BrokerSentence sentence = BrokerSentence.of(failure, source.broker());
+        lastError = sentence.text();
+        outages.met(0, sentence);
         state = WorkerState.BROKER_UNREACHABLE;
     }
 

@@ -4,7 +4,6 @@ import java.time.Duration;
 import java.time.InstantSource;
 import java.util.ArrayList;
 import java.util.List;
-import java.util.Objects;
 import java.util.function.IntFunction;
 import org.slf4j.Logger;
 import org.slf4j.LoggerFactory;
@@ -29,11 +28,10 @@ public final class ShardRunner implements AutoCloseable {
     private final List<ShardWorker> workers = new ArrayList<>();
     private final List<Thread> threads = new ArrayList<>();
 
-    private ShardRunner(ShardGroup group, InstantSource clock, RunnerListener listener, IntFunction<Clients> clients) {
-        this.group = group;
-        OutageLog outages = new OutageLog(group.id());
+    private ShardRunner(RunnerSetting setting, IntFunction<Clients> clients) {
+        this.group = setting.group();
         for (int number = 0; number < group.workers(); number++) {
-            ShardWorker worker = new ShardWorker(group, number, clients.apply(number), clock, listener, outages);
+            ShardWorker worker = new ShardWorker(setting, number, clients.apply(number));
             workers.add(worker);
             Thread thread = new Thread(worker, group.id() + "-" + number);
             thread.setDaemon(true);
@@ -53,9 +51,8 @@ public final class ShardRunner implements AutoCloseable {
 
     static ShardRunner start(
             ShardGroup group, InstantSource clock, RunnerListener listener, IntFunction<Clients> clients) {
-        Objects.requireNonNull(clock, "clock");
-        Objects.requireNonNull(listener, "listener");
-        ShardRunner runner = new ShardRunner(group, clock, listener, clients);
+        ShardRunner runner =
+                new ShardRunner(new RunnerSetting(group, clock, listener, new OutageLog(group.id())), clients);
         runner.threads.forEach(Thread::start);
         return runner;
     }

@@ -30,7 +30,7 @@ final class ShardSession {
     private static final Logger LOG = LoggerFactory.getLogger(ShardSession.class);
 
     private static final Duration POLL = Duration.ofMillis(100);
-    private static final Duration CLOSE_PATIENCE = Duration.ofSeconds(5);
+    private static final Duration CLOSE_PATIENCE = Duration.ofSeconds(2);
 
     private final ShardGroup group;
     private final InstantSource clock;
@@ -186,7 +186,7 @@ final class ShardSession {
             LOG.info(
                     "{}: the last commit before letting go failed and will be repeated by whoever takes over: {}",
                     group.id(),
-                    BrokerSentence.of(failure, group.broker()));
+                    BrokerSentence.of(failure, group.broker()).text());
             assigned.forgetRunning();
         }
     }
@@ -229,8 +229,12 @@ final class ShardSession {
         return assigned.hasWaiting();
     }
 
-    boolean joined() {
-        return assigned.joined();
+    /** What the session is doing as long as nothing is wrong. */
+    WorkerState state() {
+        if (restoring()) {
+            return WorkerState.RESTORING;
+        }
+        return assigned.joined() ? WorkerState.RUNNING : WorkerState.STARTING;
     }
 
     Optional<KafkaException> trouble() {

@@ -34,19 +34,13 @@ final class ShardWorker implements Runnable {
     private long settledCycles;
     private boolean inOutage;
 
-    ShardWorker(
-            ShardGroup group,
-            int number,
-            Clients clients,
-            InstantSource clock,
-            RunnerListener listener,
-            OutageLog outages) {
-        this.group = group;
+    ShardWorker(RunnerSetting setting, int number, Clients clients) {
+        this.group = setting.group();
+        this.clock = setting.clock();
+        this.listener = setting.listener();
+        this.outages = setting.outages();
         this.number = number;
         this.clients = clients;
-        this.clock = clock;
-        this.listener = listener;
-        this.outages = outages;
         this.board = new StatusBoard(number);
     }
 
@@ -114,18 +108,15 @@ final class ShardWorker implements Runnable {
             outages.over(number);
         }
         if (!inOutage) {
-            board.state(
-                    session.restoring()
-                            ? WorkerState.RESTORING
-                            : session.joined() ? WorkerState.RUNNING : WorkerState.STARTING);
+            board.state(session.state());
         }
     }
 
     private void meet(RuntimeException failure) {
-        String sentence = BrokerSentence.of(failure, group.broker());
+        BrokerSentence sentence = BrokerSentence.of(failure, group.broker());
         inOutage = true;
         outages.met(number, sentence);
-        board.error(sentence);
+        board.error(sentence.text());
         board.state(BrokerSentence.takenOver(failure) ? WorkerState.RESTORING : WorkerState.BROKER_UNREACHABLE);
     }
 

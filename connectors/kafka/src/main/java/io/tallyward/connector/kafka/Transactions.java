@@ -18,7 +18,7 @@ import org.apache.kafka.common.errors.TimeoutException;
  */
 final class Transactions implements AutoCloseable {
 
-    private static final Duration CLOSE_PATIENCE = Duration.ofSeconds(2);
+    private static final Duration CLOSE_PATIENCE = Duration.ofSeconds(1);
 
     private final Clients clients;
     private Producer<byte[], byte[]> producer;

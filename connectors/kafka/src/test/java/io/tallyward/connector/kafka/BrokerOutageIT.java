@@ -63,7 +63,8 @@ class BrokerOutageIT {
     private ShardGroup group(String address) {
         return ShardGroup.builder("counters")
                 .bootstrapServers(address)
-                .clientProperties(Map.of("default.api.timeout.ms", "3000", "request.timeout.ms", "2000"))
+                .clientProperties(
+                        Map.of("default.api.timeout.ms", "3000", "request.timeout.ms", "2000", "max.block.ms", "2000"))
                 .inputTopics(List.of("crossings"))
                 .stateTopic("states")
                 .internalTopics(partitions ->

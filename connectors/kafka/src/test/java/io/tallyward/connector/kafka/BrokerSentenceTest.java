@@ -30,11 +30,20 @@ class BrokerSentenceTest {
                         + " permission to the service's principal",
                 sentence(new TopicAuthorizationException(Set.of("views"))));
         assertEquals(
-                "the Kafka client for b:9092 cannot be set up (No resolvable bootstrap urls given in"
+                "no client can be set up for the broker at b:9092 (No resolvable bootstrap urls given in"
                         + " bootstrap.servers): correct the bootstrap servers or the client properties",
                 sentence(new KafkaException(
                         "Failed to construct kafka consumer",
                         new ConfigException("No resolvable bootstrap urls given in bootstrap.servers"))));
+    }
+
+    @Test
+    void countsDetailsOfOneOutageAsOneCondition() {
+        assertEquals(
+                BrokerSentence.of(new TimeoutException("while fetching"), "b:9092")
+                        .condition(),
+                BrokerSentence.of(new TimeoutException("while committing"), "b:9092")
+                        .condition());
     }
 
     @Test
@@ -50,6 +59,6 @@ class BrokerSentenceTest {
     }
 
     private static String sentence(Throwable failure) {
-        return BrokerSentence.of(failure, "b:9092");
+        return BrokerSentence.of(failure, "b:9092").text();
     }
 }

@@ -75,6 +75,7 @@ class ShardRunnerIT {
             bench.awaitRunning(second, 2);
             bench.produce(200);
             first.close();
+            assertEquals(0, first.status().workers().get(0).aborts());
             bench.produce(200);
             bench.awaitRunning(second, 4);
             bench.assertExact();
