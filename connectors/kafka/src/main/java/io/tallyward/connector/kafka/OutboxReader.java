@@ -47,7 +47,7 @@ public final class OutboxReader implements AutoCloseable {
         this.clients = clients;
         this.clock = Objects.requireNonNull(clock, "clock");
         this.delivery = Objects.requireNonNull(delivery, "delivery");
-        this.outages = new OutageLog(source.group());
+        this.outages = new OutageLog(source.group(), clock);
         this.thread = new Thread(this::run, source.group());
         thread.setDaemon(true);
     }

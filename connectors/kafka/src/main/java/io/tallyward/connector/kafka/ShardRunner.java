@@ -52,7 +52,7 @@ public final class ShardRunner implements AutoCloseable {
     static ShardRunner start(
             ShardGroup group, InstantSource clock, RunnerListener listener, IntFunction<Clients> clients) {
         ShardRunner runner =
-                new ShardRunner(new RunnerSetting(group, clock, listener, new OutageLog(group.id())), clients);
+                new ShardRunner(new RunnerSetting(group, clock, listener, new OutageLog(group.id(), clock)), clients);
         runner.threads.forEach(Thread::start);
         return runner;
     }
