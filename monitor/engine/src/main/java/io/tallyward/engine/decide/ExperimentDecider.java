@@ -106,7 +106,7 @@ final class ExperimentDecider {
         }
         boolean stopToldBefore = tests.stream().anyMatch(test -> test.verdict().settled());
         List<Comparison> looks = takeLooks(sound, settled);
-        boolean ended = looks.isEmpty() && endRun(sound, settled);
+        boolean ended = endRun(sound, settled);
         if (!looks.isEmpty()) {
             looksTaken++;
             write(Occasion.LOOK, looks);

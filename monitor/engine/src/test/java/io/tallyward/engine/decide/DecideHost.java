@@ -1,0 +1,135 @@
+package io.tallyward.engine.decide;
+
+import io.tallyward.engine.StateLog;
+import io.tallyward.engine.count.Outcome;
+import io.tallyward.engine.count.OutcomeCounts;
+import io.tallyward.engine.count.SealCause;
+import io.tallyward.engine.count.TallyUpdate;
+import io.tallyward.engine.count.WindowTally;
+import io.tallyward.engine.count.WindowTally.Cell;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanDigest;
+import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.engine.record.Notice;
+import java.util.ArrayList;
+import java.util.Arrays;
+import java.util.List;
+
+/**
+ * Hosts one shard for one plan in memory: tells it windows, commits after each, keeps its log and everything it decided, and
+ * can lose it and start it again.
+ */
+final class DecideHost {
+
+    private final Plan plan;
+    private final StateLog log = new StateLog();
+    private final List<DecisionRecord> decisions = new ArrayList<>();
+    private final List<Notice> notices = new ArrayList<>();
+    private DecideShard shard;
+    private int nextWindow;
+
+    DecideHost(Plan plan) {
+        this.plan = plan;
+        shard = new DecideShard(List.of(plan));
+    }
+
+    /** Start of a window, counted from the start of the run. */
+    static long startOf(Plan plan, int window) {
+        return plan.run().from().toEpochMilli() + window * plan.count().window().toMillis();
+    }
+
+    /** A window in which every event made a trial or a success; trials and successes in turn for each variant. */
+    static WindowTally window(Plan plan, int window, long... trialsAndSuccesses) {
+        return window(plan, window, OutcomeCounts.NONE, trialsAndSuccesses);
+    }
+
+    /** The same, with other events besides. */
+    static WindowTally window(Plan plan, int window, OutcomeCounts besides, long... trialsAndSuccesses) {
+        long start = startOf(plan, window);
+        List<Cell> cells = new ArrayList<>();
+        OutcomeCounts.Builder outcomes = new OutcomeCounts.Builder().add(besides);
+        for (int variant = 0; 2 * variant < trialsAndSuccesses.length; variant++) {
+            long trials = trialsAndSuccesses[2 * variant];
+            long successes = trialsAndSuccesses[2 * variant + 1];
+            if (trials > 0) {
+                cells.add(new Cell(plan.epochAt(start), variant, trials, successes));
+                outcomes.add(Outcome.TRIAL, trials).add(Outcome.SUCCESS, successes);
+            }
+        }
+        return new WindowTally(start, cells, outcomes.build());
+    }
+
+    /** What a partition tells when it has sealed all windows before the given one. */
+    static TallyUpdate update(Plan plan, int partition, int partitions, int untilWindow, WindowTally... windows) {
+        return new TallyUpdate(
+                plan.experiment(),
+                PlanDigest.of(plan),
+                partition,
+                partitions,
+                startOf(plan, untilWindow),
+                SealCause.WATERMARK,
+                Arrays.asList(windows));
+    }
+
+    /** The next window: trials and successes in turn for each variant. */
+    DecideHost next(long... trialsAndSuccesses) {
+        return next(OutcomeCounts.NONE, trialsAndSuccesses);
+    }
+
+    DecideHost next(OutcomeCounts besides, long... trialsAndSuccesses) {
+        WindowTally window = window(plan, nextWindow, besides, trialsAndSuccesses);
+        nextWindow++;
+        return take(update(plan, 0, 1, nextWindow, window));
+    }
+
+    /** Several quiet windows. */
+    DecideHost quiet(int windows) {
+        nextWindow += windows;
+        return take(update(plan, 0, 1, nextWindow));
+    }
+
+    DecideHost take(TallyUpdate update) {
+        shard.apply(update);
+        DecideEffects effects = shard.drain();
+        log.append(effects.state());
+        decisions.addAll(effects.decisions());
+        notices.addAll(effects.notices());
+        return this;
+    }
+
+    DecideHost restart(int cleaned) {
+        shard = new DecideShard(List.of(plan));
+        log.replayCompacted(cleaned, shard::restore);
+        return this;
+    }
+
+    StateLog log() {
+        return log;
+    }
+
+    List<DecisionRecord> decisions() {
+        return List.copyOf(decisions);
+    }
+
+    DecisionRecord lastDecision() {
+        return decisions.get(decisions.size() - 1);
+    }
+
+    DecisionRecord.Comparison lastLook() {
+        return lastDecision().comparisons().get(0);
+    }
+
+    List<Notice> notices() {
+        return List.copyOf(notices);
+    }
+
+    List<String> noticeKinds() {
+        return notices.stream()
+                .map(notice -> notice.kind().code() + (notice.variant().isEmpty() ? "" : " " + notice.variant()))
+                .toList();
+    }
+
+    ExperimentView view() {
+        return shard.views().get(plan.experiment());
+    }
+}
