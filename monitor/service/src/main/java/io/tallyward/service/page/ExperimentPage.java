@@ -10,6 +10,7 @@ import io.tallyward.engine.plan.Variant;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
+import io.tallyward.service.page.Table.Column;
 import io.tallyward.service.page.Wording.Words;
 import java.time.Instant;
 import java.util.List;
@@ -52,17 +53,22 @@ final class ExperimentPage {
         ExperimentView view = standing.view();
         html.open("div", "class", "says");
         if (view.trust() == Trust.SOUND) {
-            verdict(html, view.verdict());
+            verdict(html, standing);
             trust(html, view);
         } else {
             trust(html, view);
-            verdict(html, view.verdict());
+            verdict(html, standing);
         }
         html.close();
     }
 
-    private static void verdict(Markup html, Verdict verdict) {
-        says(html, "verdict", verdict.code(), Wording.of(verdict), "");
+    private static void verdict(Markup html, Standing standing) {
+        Verdict verdict = standing.view().verdict();
+        Words words = Wording.of(verdict);
+        if (standing.view().trust() != Trust.SOUND && !verdict.settled()) {
+            words = Wording.untrusted(words, standing.held());
+        }
+        says(html, "verdict", verdict.code(), words, "");
     }
 
     private static void trust(Markup html, ExperimentView view) {
@@ -116,7 +122,15 @@ final class ExperimentPage {
                 .map(LookPoint::comparison)
                 .filter(past -> past.variant().equals(challenger.name()))
                 .toList();
+        html.open("div", "class", "look");
         PathChart.draw(html, path.isEmpty() ? List.of(look) : path, standing.higherIsBetter());
+        html.open("div");
+        latest(html, look);
+        html.close().close();
+    }
+
+    private static void latest(Markup html, Comparison look) {
+        html.leaf("p", "At the latest look, number " + look.look() + ":", "class", "note");
         html.open("p", "class", "figures").text("z ").leaf("b", Figures.decimal(look.z()));
         html.text(", " + ZStrip.boundaries(look) + "; information " + Figures.wholePercent(look.informationFraction())
                 + "; alpha spent " + Figures.probability(look.alphaSpent()));
@@ -134,8 +148,13 @@ final class ExperimentPage {
 
     private static void outcomes(Markup html, ExperimentView view) {
         html.open("section").leaf("h2", "What became of the events");
-        Table table =
-                Table.open(html, "Outcomes of the events of complete windows", "Outcome", "Events", "Share", "Is");
+        Table table = Table.open(
+                html,
+                "Outcomes of the events of complete windows",
+                Column.text("Outcome"),
+                Column.number("Events"),
+                Column.number("Share"),
+                Column.text("Is"));
         long total = view.outcomes().total();
         for (Outcome outcome : Outcome.values()) {
             long events = view.outcomes().get(outcome);

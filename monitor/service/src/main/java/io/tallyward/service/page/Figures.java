@@ -57,6 +57,11 @@ final class Figures {
         return MINUTE.format(time);
     }
 
+    /** The same without naming the zone, where a heading does. */
+    static String shortMinute(Instant time) {
+        return minute(time).replace(" UTC", "");
+    }
+
     static String second(Instant time) {
         return SECOND.format(time);
     }

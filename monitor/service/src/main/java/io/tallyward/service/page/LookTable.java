@@ -2,6 +2,7 @@ package io.tallyward.service.page;
 
 import io.tallyward.engine.decide.ExperimentView.LookPoint;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.service.page.Table.Column;
 import java.util.ArrayList;
 import java.util.Collections;
 import java.util.List;
@@ -42,43 +43,53 @@ final class LookTable {
         Table table = Table.open(
                 html,
                 caption,
-                "Look",
-                "Data until",
-                "Variant",
-                "z",
-                "Lower",
-                "Upper",
-                "Futility",
-                "Information",
-                "Alpha spent",
-                "Difference",
-                "Interval",
-                "Verdict",
-                "Why");
+                Column.text("Look"),
+                Column.text("Data until, UTC"),
+                Column.text("Variant"),
+                Column.text("Verdict"),
+                Column.number("z"),
+                Column.number("Boundaries"),
+                Column.number("Information"),
+                Column.number("Difference"),
+                Column.number("Interval"),
+                Column.number("Futility"),
+                Column.number("Alpha spent"),
+                Column.text("Why"));
         for (LookPoint point : looks) {
             Comparison look = point.comparison();
             table.row(Integer.toString(look.look()))
-                    .text(Figures.minute(point.windowEnd()))
+                    .text(Figures.shortMinute(point.windowEnd()))
                     .text(look.variant())
+                    .cell(() -> verdict(html, look))
                     .number(Figures.decimal(look.z()))
-                    .number(Figures.decimal(look.lower()))
-                    .number(Figures.decimal(look.upper()))
-                    .number(Figures.decimal(look.futility()))
+                    .number(boundaries(look))
                     .number(Figures.wholePercent(look.informationFraction()))
-                    .number(Figures.probability(look.alphaSpent()))
                     .number(Figures.points(look.difference()))
                     .number(interval(look))
-                    .cell(() -> verdict(html, look))
+                    .number(Figures.decimal(look.futility()))
+                    .number(Figures.probability(look.alphaSpent()))
                     .text(look.reason() == null ? "" : look.reason())
                     .endRow();
         }
         table.close();
     }
 
+    private static String boundaries(Comparison look) {
+        return look.lower() == null && look.upper() == null
+                ? Figures.NONE
+                : Figures.decimal(look.lower()) + " / " + Figures.decimal(look.upper());
+    }
+
+    /** A repeated confidence interval in percentage points; one end may be open. */
     static String interval(Comparison look) {
-        String lower = look.differenceLower() == null ? "unbounded" : Figures.points(look.differenceLower());
-        String upper = look.differenceUpper() == null ? "unbounded" : Figures.points(look.differenceUpper());
-        return lower + " to " + upper;
+        if (look.differenceLower() == null || look.differenceUpper() == null) {
+            return look.differenceLower() == null
+                    ? (look.differenceUpper() == null
+                            ? Figures.NONE
+                            : Figures.points(look.differenceUpper()) + " or less")
+                    : Figures.points(look.differenceLower()) + " or more";
+        }
+        return Figures.points(look.differenceLower()) + " to " + Figures.points(look.differenceUpper());
     }
 
     private static void verdict(Markup html, Comparison look) {

@@ -6,6 +6,7 @@ import io.tallyward.engine.record.Trust;
 import io.tallyward.service.page.Standing.Urgency;
 import java.time.Duration;
 import java.time.Instant;
+import java.util.Comparator;
 import java.util.List;
 import java.util.Locale;
 import java.util.Optional;
@@ -32,6 +33,7 @@ final class OverviewPage {
         for (Urgency urgency : Urgency.values()) {
             List<Standing> group = standings.stream()
                     .filter(standing -> standing.urgency() == urgency)
+                    .sorted(Comparator.comparing(standing -> !standing.harm()))
                     .toList();
             if (!group.isEmpty()) {
                 html.open("section", "class", "group").leaf("h2", urgency.heading());
@@ -60,8 +62,8 @@ final class OverviewPage {
     }
 
     private static void card(Markup html, Standing standing, Instant now) {
-        String kind = standing.view().trust() == Trust.SOUND
-                ? "verdict-" + standing.view().verdict().code()
+        String kind = standing.harm() || standing.view().trust() == Trust.SOUND
+                ? "verdict-" + standing.worst().code()
                 : "trust-" + standing.view().trust().code();
         html.open("article", "class", "card " + kind).open("header").open("h3");
         html.leaf("a", standing.name(), "href", path(standing)).close();
@@ -69,6 +71,9 @@ final class OverviewPage {
         html.close().leaf("p", standing.view().plan().question(), "class", "question");
         if (!standing.view().trustReason().isEmpty()) {
             html.leaf("p", standing.view().trustReason(), "class", "reason");
+        }
+        if (standing.urgency() == Urgency.ATTENTION) {
+            html.open("p").leaf("b", "What to do: ").text(action(standing)).close();
         }
         for (Variant challenger : standing.challengers()) {
             comparison(html, standing, challenger);
@@ -79,6 +84,13 @@ final class OverviewPage {
         fact(html, "Looks", looks(standing));
         fact(html, "Shares", shares(standing));
         html.close().close();
+    }
+
+    /** Harm comes first: its verdict is final and was reached while the data were trusted. Then broken trust. */
+    private static String action(Standing standing) {
+        return standing.harm() || standing.view().trust() == Trust.SOUND
+                ? Wording.of(standing.worst()).action()
+                : Wording.of(standing.view().trust()).action();
     }
 
     static void badges(Markup html, Standing standing) {

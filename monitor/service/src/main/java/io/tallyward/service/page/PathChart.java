@@ -67,6 +67,8 @@ final class PathChart {
         zone(Comparison::upper, reach, higherIsBetter ? "benefit" : "harm");
         zone(Comparison::lower, -reach, higherIsBetter ? "harm" : "benefit");
         axes();
+        word(higherIsBetter ? "benefit" : "harm", TOP + 14);
+        word(higherIsBetter ? "harm" : "benefit", HEIGHT - BOTTOM - 6);
         line(Comparison::upper, "bound");
         line(Comparison::lower, "bound");
         line(look -> look.futility() == null ? null : higherIsBetter ? look.futility() : -look.futility(), "futility");
@@ -89,8 +91,10 @@ final class PathChart {
         bounded.forEach(look -> area.append('L').append(at(x(look))).append(' ').append(at(y(boundary.apply(look)))));
         area.append('L').append(at(x(end))).append(' ').append(at(y(rim))).append('Z');
         html.empty("path", "d", area.toString(), "class", "zone-" + word);
-        double textY = rim > 0 ? TOP + 14 : HEIGHT - BOTTOM - 6;
-        html.leaf("text", word, "x", at(LEFT + 6), "y", at(textY), "class", "word-" + word, "text-anchor", "start");
+    }
+
+    private void word(String word, double y) {
+        html.leaf("text", word, "x", at(LEFT + 6), "y", at(y), "class", "word-" + word);
     }
 
     private void axes() {
@@ -146,10 +150,18 @@ final class PathChart {
             Double z = value.apply(look);
             if (z != null) {
                 points.append(at(x(look))).append(',').append(at(y(z))).append(' ');
+                tick(x(look), y(z), style);
             }
         }
         if (points.length() > 0) {
             html.empty("polyline", "points", points.toString().trim(), "class", "line-" + style);
+        }
+    }
+
+    /** Marks the value at one look, which a line through a single point would not show. */
+    private void tick(double x, double y, String style) {
+        if (!style.equals("z")) {
+            html.empty("line", "x1", at(x - 4), "x2", at(x + 4), "y1", at(y), "y2", at(y), "class", "tick-" + style);
         }
     }
 

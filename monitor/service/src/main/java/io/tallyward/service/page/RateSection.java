@@ -1,6 +1,7 @@
 package io.tallyward.service.page;
 
 import io.tallyward.engine.plan.Variant;
+import io.tallyward.service.page.Table.Column;
 import java.util.List;
 import org.apache.commons.math3.stat.interval.ConfidenceInterval;
 import org.apache.commons.math3.stat.interval.WilsonScoreInterval;
@@ -18,7 +19,14 @@ final class RateSection {
         List<Variant> variants = standing.view().plan().variants();
         RangeBar bar = scale(standing, variants);
         Table table = Table.open(
-                html, "Rates over all complete windows", "Variant", "Trials", "Successes", "Rate", "95 % interval", "");
+                html,
+                "Rates over all complete windows",
+                Column.text("Variant"),
+                Column.number("Trials"),
+                Column.number("Successes"),
+                Column.number("Rate"),
+                Column.number("95 % interval"),
+                Column.text(""));
         for (Variant variant : variants) {
             row(html, table, bar, standing, variant);
         }

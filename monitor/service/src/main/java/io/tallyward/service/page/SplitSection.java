@@ -2,6 +2,7 @@ package io.tallyward.service.page;
 
 import io.tallyward.engine.plan.Variant;
 import io.tallyward.engine.record.DecisionRecord.Split;
+import io.tallyward.service.page.Table.Column;
 import java.util.List;
 import org.apache.commons.math3.distribution.NormalDistribution;
 
@@ -28,12 +29,12 @@ final class SplitSection {
         Table table = Table.open(
                 html,
                 "Shares against the plan" + (several ? ", allocation epoch " + epoch : ""),
-                "Variant",
-                "Trials",
-                "Share",
-                "Planned",
-                "Off by, points",
-                "");
+                Column.text("Variant"),
+                Column.number("Trials"),
+                Column.number("Share"),
+                Column.number("Planned"),
+                Column.number("Off by, points"),
+                Column.text(""));
         List<Variant> variants = standing.view().plan().variants();
         double[] plan = standing.view().plan().sharesIn(epoch);
         double[] bands = new double[plan.length];
@@ -86,7 +87,8 @@ final class SplitSection {
         String pearson = split.pearsonDegreesOfFreedom() == 0
                 ? "no trial yet"
                 : "chi-square " + Figures.decimal(split.pearsonChiSquare()) + " with "
-                        + split.pearsonDegreesOfFreedom() + " degrees of freedom, p "
+                        + split.pearsonDegreesOfFreedom()
+                        + (split.pearsonDegreesOfFreedom() == 1 ? " degree" : " degrees") + " of freedom, p "
                         + Figures.probability(split.pearsonPValue()) + " (for a single reading only)";
         OverviewPage.fact(html, "Pearson, for the record", pearson);
         html.close();

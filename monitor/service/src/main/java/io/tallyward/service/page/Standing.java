@@ -26,14 +26,23 @@ record Standing(ExperimentView view) {
 
     /** How soon somebody should look. */
     Urgency urgency() {
-        boolean harm = view.verdict() == Verdict.STOP_HARM || view.verdicts().containsValue(Verdict.STOP_HARM);
-        if (view.trust() != Trust.SOUND || harm || held()) {
+        if (view.trust() != Trust.SOUND || harm() || held()) {
             return Urgency.ATTENTION;
         }
         if (view.verdict().settled()) {
             return Urgency.SETTLED;
         }
         return view.verdict() == Verdict.WAITING ? Urgency.WAITING : Urgency.RUNNING;
+    }
+
+    /** Whether harm by any variant was found. */
+    boolean harm() {
+        return worst() == Verdict.STOP_HARM;
+    }
+
+    /** The verdict to act on first: harm by one variant, whatever the others do, else the one on the experiment. */
+    Verdict worst() {
+        return view.verdicts().containsValue(Verdict.STOP_HARM) ? Verdict.STOP_HARM : view.verdict();
     }
 
     /** Whether a verdict waits for trust to return. */

@@ -10,11 +10,11 @@ final class Table {
     }
 
     /** Opens a table; its first column names the rows. */
-    static Table open(Markup html, String caption, String... headings) {
+    static Table open(Markup html, String caption, Column... columns) {
         html.open("div", "class", "scroll", "role", "region", "aria-label", caption, "tabindex", "0");
         html.open("table").leaf("caption", caption).open("thead").open("tr");
-        for (String heading : headings) {
-            html.leaf("th", heading, "scope", "col");
+        for (Column column : columns) {
+            html.leaf("th", column.heading(), "scope", "col", "class", column.numeric() ? "number" : null);
         }
         html.close().close().open("tbody");
         return new Table(html);
@@ -50,5 +50,22 @@ final class Table {
 
     void close() {
         html.close().close().close();
+    }
+
+    /**
+     * A column.
+     *
+     * @param heading what stands above it
+     * @param numeric whether its cells are figures, to be aligned at the right
+     */
+    record Column(String heading, boolean numeric) {
+
+        static Column text(String heading) {
+            return new Column(heading, false);
+        }
+
+        static Column number(String heading) {
+            return new Column(heading, true);
+        }
     }
 }

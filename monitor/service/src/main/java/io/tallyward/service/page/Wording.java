@@ -60,6 +60,16 @@ final class Wording {
         };
     }
 
+    /** A verdict that is not final, while the data are not trusted. */
+    static Words untrusted(Words verdict, boolean held) {
+        String meaning = held
+                ? "A boundary was crossed, but the data are not trusted: the verdict is held and told only if trust"
+                        + " returns while it still holds."
+                : "No verdict is told while the data are not trusted.";
+        return new Words(
+                verdict.sign(), verdict.label(), meaning, "Nothing about the variants; see to the data first.");
+    }
+
     static Words of(Trust trust) {
         return switch (trust) {
             case SOUND -> new Words("✓", "Sound", "Nothing speaks against the data.", "Nothing.");

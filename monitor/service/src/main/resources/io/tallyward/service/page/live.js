@@ -8,7 +8,7 @@
 
   const refresh = async () => {
     const answer = await fetch(location.href, { cache: "no-store", signal: AbortSignal.timeout(PATIENCE_MILLIS) });
-    if (!answer.ok) {
+    if (!answer.ok && answer.status !== 404) {
       throw new Error("status " + answer.status);
     }
     const fresh = new DOMParser().parseFromString(await answer.text(), "text/html");
