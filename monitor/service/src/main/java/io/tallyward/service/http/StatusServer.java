@@ -32,7 +32,10 @@ public final class StatusServer implements AutoCloseable {
     private static final int IDLE_MILLIS = 75_000;
 
     /** How long requests under way may take to end when the server is closed. */
-    private static final int STOP_MILLIS = 500;
+    private static final int STOP_MILLIS = 2_000;
+
+    /** How long a connection that is merely kept open holds up the end. */
+    private static final int STOP_IDLE_MILLIS = 50;
 
     private final Javalin javalin;
     private final String host;
@@ -108,6 +111,7 @@ public final class StatusServer implements AutoCloseable {
         connector.setHost(host);
         connector.setPort(port);
         connector.setIdleTimeout(IDLE_MILLIS);
+        connector.setShutdownIdleTimeout(STOP_IDLE_MILLIS);
         connector.addBean(new NetworkConnectionLimit(MAXIMUM_CONNECTIONS, connector));
         return connector;
     }

@@ -30,7 +30,7 @@ public final class MonitorMetrics {
 
     /**
      * How many variants are published at most, counted over all experiments. Chosen so that a scrape stays below about
-     * 40,000 series: a variant has up to 17 of its own, and an experiment, which has two variants at least, up to 26.
+     * 60,000 series: a variant has up to 17 of its own, and an experiment, which has two variants at least, up to 26.
      */
     static final int MAXIMUM_VARIANTS = 2_000;
 

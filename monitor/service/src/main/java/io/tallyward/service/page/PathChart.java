@@ -41,9 +41,14 @@ final class PathChart {
                 looks.stream().mapToDouble(look -> Math.abs(look.z())).max().orElse(0) + 0.5);
     }
 
-    /** Draws the looks at one challenger, in order; at least one. */
+    /** Draws the looks at one challenger, in order; a look without a finite z has no place in the picture. */
     static void draw(Markup html, List<Comparison> looks, boolean higherIsBetter) {
-        new PathChart(html, looks, higherIsBetter).draw();
+        List<Comparison> drawable = looks.stream()
+                .filter(look -> Double.isFinite(look.z()) && Double.isFinite(look.informationFraction()))
+                .toList();
+        if (!drawable.isEmpty()) {
+            new PathChart(html, drawable, higherIsBetter).draw();
+        }
     }
 
     private void draw() {
@@ -98,50 +103,27 @@ final class PathChart {
     }
 
     private void axes() {
-        int step = reach > 8 ? 4 : 2;
+        int step = reach > 8 ? (int) Math.ceil(reach / 4) : 2;
         for (int z = -(int) reach / step * step; z <= reach; z += step) {
-            html.empty(
-                    "line",
-                    "x1",
-                    at(LEFT),
-                    "x2",
-                    at(WIDTH - RIGHT),
-                    "y1",
-                    at(y(z)),
-                    "y2",
-                    at(y(z)),
-                    "class",
-                    z == 0 ? "zero" : "grid");
-            html.leaf("text", Figures.count(z), "x", at(LEFT - 6), "y", at(y(z) + 4), "text-anchor", "end");
+            segment(LEFT, y(z), WIDTH - RIGHT, y(z), z == 0 ? "zero" : "grid");
+            label(Figures.count(z), LEFT - 6, y(z) + 4, "end");
         }
-        for (int percent = 0; percent <= last * 100 + 1; percent += 25) {
+        int percentStep = 25 * (int) Math.ceil(last / 1.5);
+        for (int percent = 0; percent <= last * 100 + 1; percent += percentStep) {
             double x = x(percent / 100.0);
-            html.empty(
-                    "line",
-                    "x1",
-                    at(x),
-                    "x2",
-                    at(x),
-                    "y1",
-                    at(HEIGHT - BOTTOM),
-                    "y2",
-                    at(HEIGHT - BOTTOM + 4),
-                    "class",
-                    "zero");
-            html.leaf("text", percent + " %", "x", at(x), "y", at(HEIGHT - BOTTOM + 17), "text-anchor", "middle");
+            segment(x, HEIGHT - BOTTOM, x, HEIGHT - BOTTOM + 4, "zero");
+            label(percent + " %", x, HEIGHT - BOTTOM + 17, "middle");
         }
-        html.leaf(
-                "text",
-                "information, of the planned maximum",
-                "x",
-                at((LEFT + WIDTH - RIGHT) / 2),
-                "y",
-                at(HEIGHT - 4),
-                "text-anchor",
-                "middle",
-                "class",
-                "axis");
-        html.leaf("text", "z", "x", at(6), "y", at(TOP + 10), "class", "axis");
+        label("information, of the planned maximum", (LEFT + WIDTH - RIGHT) / 2, HEIGHT - 4, "middle");
+        label("z", 6, TOP + 10, "start");
+    }
+
+    private void segment(double x1, double y1, double x2, double y2, String style) {
+        html.empty("line", "x1", at(x1), "y1", at(y1), "x2", at(x2), "y2", at(y2), "class", style);
+    }
+
+    private void label(String text, double x, double y, String anchor) {
+        html.leaf("text", text, "x", at(x), "y", at(y), "text-anchor", anchor);
     }
 
     private void line(Function<Comparison, Double> value, String style) {
@@ -161,7 +143,7 @@ final class PathChart {
     /** Marks the value at one look, which a line through a single point would not show. */
     private void tick(double x, double y, String style) {
         if (!style.equals("z")) {
-            html.empty("line", "x1", at(x - 4), "x2", at(x + 4), "y1", at(y), "y2", at(y), "class", "tick-" + style);
+            segment(x - 4, y, x + 4, y, "tick-" + style);
         }
     }
 
