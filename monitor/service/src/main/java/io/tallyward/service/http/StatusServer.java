@@ -6,7 +6,6 @@ import io.javalin.config.JavalinConfig;
 import java.io.IOException;
 import java.io.UncheckedIOException;
 import java.net.BindException;
-import java.util.concurrent.ArrayBlockingQueue;
 import org.eclipse.jetty.server.HttpConfiguration;
 import org.eclipse.jetty.server.HttpConnectionFactory;
 import org.eclipse.jetty.server.NetworkConnectionLimit;
@@ -17,15 +16,14 @@ import org.eclipse.jetty.util.thread.QueuedThreadPool;
 /**
  * The HTTP server of the monitor. Owns a socket and a few threads from {@link #start} to {@link #close}.
  *
- * <p>Everything is bounded, because a monitor must outlive whoever reads it too eagerly: threads, queued requests,
- * connections, and the size of a request, which never has a body worth reading.
+ * <p>Everything is bounded, because a monitor must outlive whoever reads it too eagerly: threads, connections (and with
+ * them the requests that wait, one to a connection), and the size of a request, which never has a body worth reading.
  */
 public final class StatusServer implements AutoCloseable {
 
-    /** Enough for one scrape, a few probes and a few readers at once; the rest waits in the queue. */
+    /** Enough for one scrape, a few probes and a few readers at once; the rest waits. */
     private static final int MAXIMUM_THREADS = 12;
 
-    private static final int MAXIMUM_QUEUED = 256;
     private static final int MAXIMUM_CONNECTIONS = 256;
     private static final int MAXIMUM_HEADER_BYTES = 8 * 1024;
     private static final int MAXIMUM_BODY_BYTES = 1024;
@@ -34,14 +32,16 @@ public final class StatusServer implements AutoCloseable {
     private static final int IDLE_MILLIS = 75_000;
 
     /** How long requests under way may take to end when the server is closed. */
-    private static final int STOP_MILLIS = 2_000;
+    private static final int STOP_MILLIS = 500;
 
     private final Javalin javalin;
     private final String host;
+    private final int port;
 
     private StatusServer(Javalin javalin, String host) {
         this.javalin = javalin;
         this.host = host;
+        this.port = javalin.port();
     }
 
     /**
@@ -65,13 +65,13 @@ public final class StatusServer implements AutoCloseable {
 
     /** The port that is listened on. */
     public int port() {
-        return javalin.port();
+        return port;
     }
 
     /** Where the overview is found, as in {@code http://127.0.0.1:8087/}. */
     public String address() {
         String name = host.contains(":") ? "[" + host + "]" : host;
-        return "http://" + name + ":" + port() + "/";
+        return "http://" + name + ":" + port + "/";
     }
 
     @Override
@@ -85,8 +85,7 @@ public final class StatusServer implements AutoCloseable {
         config.startup.startupWatcherEnabled = false;
         config.http.maxRequestSize = MAXIMUM_BODY_BYTES;
         config.http.compressionStrategy = CompressionStrategy.NONE;
-        QueuedThreadPool threads =
-                new QueuedThreadPool(MAXIMUM_THREADS, 2, 30_000, new ArrayBlockingQueue<>(MAXIMUM_QUEUED));
+        QueuedThreadPool threads = new QueuedThreadPool(MAXIMUM_THREADS, 2, 30_000);
         threads.setName("http");
         threads.setDaemon(true);
         config.jetty.threadPool = threads;

@@ -8,6 +8,7 @@ import com.fasterxml.jackson.databind.node.JsonNodeFactory;
 import com.fasterxml.jackson.databind.node.ObjectNode;
 import io.javalin.config.RoutesConfig;
 import io.javalin.http.Context;
+import io.javalin.http.Handler;
 import io.javalin.http.HandlerType;
 import io.tallyward.engine.decide.ExperimentView;
 import io.tallyward.service.metrics.PrometheusExposition;
@@ -38,31 +39,46 @@ public record StatusSite(StatusBoard board, HealthBoard health, PrometheusExposi
 
     void routes(RoutesConfig routes) {
         routes.before(StatusSite::guard);
-        routes.get(
+        serve(
+                routes,
                 "/metrics",
                 ctx -> ctx.contentType(PrometheusExposition.CONTENT_TYPE).result(metrics.text()));
-        routes.get("/health/live", ctx -> health(ctx, HealthBoard::alive));
-        routes.get("/health/ready", ctx -> health(ctx, HealthBoard::ready));
-        routes.get(
+        serve(routes, "/health/live", ctx -> health(ctx, HealthBoard::alive));
+        serve(routes, "/health/ready", ctx -> health(ctx, HealthBoard::ready));
+        serve(
+                routes,
                 "/api/experiments",
                 ctx -> json(ctx, ExperimentJson.list(board.experiments().values())));
-        routes.get("/api/experiments/{name}", this::apiExperiment);
-        routes.get(
+        serve(routes, "/api/experiments/{name}", this::apiExperiment);
+        serve(
+                routes,
                 "/",
                 ctx -> ctx.contentType(HTML)
                         .result(pages.overview(board.experiments().values(), health.checks())));
-        routes.get("/experiments/{name}", this::pageExperiment);
-        routes.get(
+        serve(routes, "/experiments/{name}", this::pageExperiment);
+        serve(
+                routes,
                 "/assets/page.css",
                 ctx -> ctx.contentType("text/css; charset=utf-8").result(Pages.styleSheet()));
-        routes.get(
+        serve(
+                routes,
                 "/assets/live.js",
                 ctx -> ctx.contentType("text/javascript; charset=utf-8").result(Pages.script()));
-        routes.get("/<elsewhere>", this::nothingHere);
+        serve(
+                routes,
+                "/assets/mark.svg",
+                ctx -> ctx.contentType("image/svg+xml").result(Pages.mark()));
+        serve(routes, "/<elsewhere>", this::nothingHere);
         routes.exception(Exception.class, (failure, ctx) -> {
-            LOG.error("http: {} could not be answered; the state shown elsewhere is not affected", ctx.path(), failure);
+            LOG.error("http: a request could not be answered; the state shown elsewhere is not affected", failure);
             json(ctx.status(500), sentence("The answer could not be made. The log of the monitor says why."));
         });
+    }
+
+    /** A HEAD request goes the same way as GET, so that its status and headers are the same; the server drops the body. */
+    private static void serve(RoutesConfig routes, String path, Handler handler) {
+        routes.get(path, handler);
+        routes.head(path, handler);
     }
 
     /** Refuses every method that could change something and sets the headers of every answer. */

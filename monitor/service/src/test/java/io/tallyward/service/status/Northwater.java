@@ -35,9 +35,9 @@ public final class Northwater {
 
     public static final Instant START = Instant.parse("2026-05-04T00:00:00Z");
 
-    private static final double[] BENEFIT = {0.9, 0.4, 1.3, 1.1, 1.9, 2.2, 1.8, 2.4, 2.9, 3.1, 3.3};
+    private static final double[] BENEFIT = {0.9, 0.4, 1.3, 1.1, 1.9, 2.2, 1.8, 2.1, 2.2, 2.1, 2.9};
     private static final double[] NOTHING = {-0.8, 0.3, 0.9, 0.2, -0.4, 0.1, 0.5, -0.2};
-    private static final double[] HARM = {-1.2, -2.1, -2.6, -3.3, -3.9};
+    private static final double[] HARM = {-1.2, -2.1, -2.6, -3.1, -3.9};
 
     private Northwater() {}
 
@@ -208,14 +208,13 @@ public final class Northwater {
             verdicts.put(challenger.name(), verdict);
             information.put(challenger.name(), 235_000.0);
         });
-        boolean broken = trust == Trust.MISMATCH;
         return new ExperimentView(
                 plan,
                 "5b1f".repeat(16),
                 looks == 0 ? Optional.empty() : Optional.of(START.plus(Duration.ofHours(12L * looks + 3))),
                 counts,
                 looks == 0 ? OutcomeCounts.NONE : OutcomeCounts.of(60_789, 7_574, 91_233, 412, 388, 96, 210, 55, 0),
-                broken ? new Split(19.31, 4.1e-9, 48.1, 1, 4.0e-12) : new Split(-3.2, 1.0, 0.02, 1, 0.887),
+                split(trust, looks),
                 trust,
                 trustReason,
                 verdict,
@@ -227,6 +226,15 @@ public final class Northwater {
                 looks == 0 ? "plain has 2 successes (expected: 5 or more in every variant)" : "",
                 information,
                 "c07a".repeat(16));
+    }
+
+    private static Split split(Trust trust, int looks) {
+        if (looks == 0) {
+            return new Split(0, 1, 0, 0, 1);
+        }
+        return trust == Trust.MISMATCH
+                ? new Split(19.31, 4.1e-9, 48.1, 1, 4.0e-12)
+                : new Split(-3.2, 1.0, 0.02, 1, 0.887);
     }
 
     private static Comparison look(String variant, int look, double z, Verdict verdict, Trust trust, int looks) {
@@ -251,6 +259,8 @@ public final class Northwater {
                 benefitMayStop ? difference + half : null,
                 last ? verdict : Verdict.CONTINUE,
                 last && trust == Trust.MISMATCH ? Verdict.STOP_BENEFIT : null,
-                last && verdict.settled() ? "z crossed its boundary" : "no boundary was crossed");
+                last && (verdict.settled() || trust == Trust.MISMATCH)
+                        ? "z crossed its boundary"
+                        : "no boundary was crossed");
     }
 }

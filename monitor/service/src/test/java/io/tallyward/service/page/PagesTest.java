@@ -1,0 +1,186 @@
+package io.tallyward.service.page;
+
+import static org.junit.jupiter.api.Assertions.assertEquals;
+import static org.junit.jupiter.api.Assertions.assertFalse;
+import static org.junit.jupiter.api.Assertions.assertThrows;
+import static org.junit.jupiter.api.Assertions.assertTrue;
+
+import io.tallyward.engine.decide.ExperimentView;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.Variant;
+import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.Trust;
+import io.tallyward.engine.record.Verdict;
+import io.tallyward.service.status.HealthSource.Health;
+import io.tallyward.service.status.HealthSource.State;
+import io.tallyward.service.status.Northwater;
+import java.io.IOException;
+import java.io.StringReader;
+import java.time.Clock;
+import java.time.Duration;
+import java.time.ZoneOffset;
+import java.util.List;
+import java.util.Map;
+import java.util.Optional;
+import javax.xml.parsers.DocumentBuilderFactory;
+import javax.xml.parsers.ParserConfigurationException;
+import org.junit.jupiter.api.Test;
+import org.junit.jupiter.params.ParameterizedTest;
+import org.junit.jupiter.params.provider.EnumSource;
+import org.w3c.dom.Document;
+import org.w3c.dom.Element;
+import org.w3c.dom.NodeList;
+import org.xml.sax.InputSource;
+import org.xml.sax.SAXException;
+
+/** Oracle for well-formedness and escaping: the XML parser of the JDK, which reads back what was written. */
+class PagesTest {
+
+    private static final String NASTY = "<script>alert('1')</script> & \"quotes\" ]]> \u0001 é";
+
+    private final Pages pages = new Pages(Clock.fixed(Northwater.START.plus(Duration.ofHours(136)), ZoneOffset.UTC));
+
+    @Test
+    void isWellFormedForEverySituation() {
+        parse(pages.overview(Northwater.all().values(), List.of()));
+        parse(pages.overview(List.of(), List.of(new Health("kafka", State.DOWN, "No broker answers."))));
+        parse(pages.notFound());
+        Northwater.all().values().forEach(view -> parse(pages.experiment(view, List.of())));
+    }
+
+    @Test
+    void escapesWhateverComesFromOutside() {
+        ExperimentView view = nasty();
+        List<Health> checks = List.of(new Health(NASTY, State.DOWN, NASTY));
+        for (String html : List.of(pages.overview(List.of(view), checks), pages.experiment(view, checks))) {
+            assertFalse(html.contains("<script>"));
+            Document page = parse(html);
+            assertEquals(1, page.getElementsByTagName("script").getLength(), "the page's own");
+            assertTrue(page.getDocumentElement().getTextContent().contains("<script>alert('1')</script> & \"quotes\""));
+        }
+    }
+
+    @Test
+    void needsNothingInlineAndNothingFromElsewhere() {
+        for (ExperimentView view : Northwater.all().values()) {
+            NodeList elements = parse(pages.experiment(view, List.of())).getElementsByTagName("*");
+            for (int i = 0; i < elements.getLength(); i++) {
+                Element element = (Element) elements.item(i);
+                for (int a = 0; a < element.getAttributes().getLength(); a++) {
+                    String name = element.getAttributes().item(a).getNodeName();
+                    String value = element.getAttributes().item(a).getNodeValue();
+                    assertFalse(name.equals("style") || name.startsWith("on"), name);
+                    assertFalse(value.contains("//"), name + "=" + value);
+                }
+                assertFalse(element.getTagName().equals("style"));
+            }
+        }
+    }
+
+    @Test
+    void putsProblemsFirst() {
+        String html = pages.overview(Northwater.all().values(), List.of());
+        List<Integer> places = List.of("return-prompt", "cabin-upsell", "quay-banner", "fare-chip", "pier-map").stream()
+                .map(name -> html.indexOf(">" + name + "<"))
+                .toList();
+        assertEquals(places.stream().sorted().toList(), places);
+        assertTrue(html.contains("2 of 6 experiments need attention"));
+    }
+
+    @ParameterizedTest
+    @EnumSource(Verdict.class)
+    void saysWhatAVerdictMeansAndWhatToDo(Verdict verdict) {
+        String text = text(Northwater.with(Northwater.fareChip(), verdict, Trust.SOUND));
+        assertTrue(text.contains("Verdict: " + Wording.of(verdict).label()));
+        assertTrue(text.contains(Wording.of(verdict).meaning()));
+        assertTrue(text.contains(Wording.of(verdict).action()));
+    }
+
+    @ParameterizedTest
+    @EnumSource(Trust.class)
+    void saysWhatTrustMeansAndWhatToDo(Trust trust) {
+        String text = text(Northwater.with(Northwater.fareChip(), Verdict.CONTINUE, trust));
+        assertTrue(text.contains("Trust: " + Wording.of(trust).label()));
+        assertTrue(text.contains(Wording.of(trust).meaning()));
+        assertTrue(text.contains(Wording.of(trust).action()));
+        if (trust != Trust.SOUND) {
+            assertTrue(text.contains("Invented reason for " + trust.code()));
+            assertTrue(text.indexOf("Trust: ") < text.indexOf("Verdict: "), "what matters comes first");
+            assertFalse(text.contains("Let it run."), "no advice from numbers that are not trusted");
+        }
+    }
+
+    @Test
+    void showsAHeldVerdictAsHeld() {
+        String text = text(Northwater.cabinUpsell());
+        assertTrue(text.contains("a verdict is held"));
+        assertTrue(text.contains("Held until trust returns: Stop: benefit."));
+    }
+
+    @Test
+    void comparesSharesWithThePlanOfTheirEpoch() {
+        String text = text(Northwater.deckMap());
+        assertTrue(text.contains("Shares against the plan, allocation epoch 0"));
+        assertTrue(text.contains("Shares against the plan, allocation epoch 1"));
+        assertTrue(text.contains("80.06 %80.00 %+0.06"), text);
+        assertTrue(text.contains("33.96 %34.00 %−0.04"), text);
+    }
+
+    @Test
+    void inventsNoNumberBeforeTheFirstLook() {
+        String text = text(Northwater.pierMap());
+        assertTrue(text.contains("No look has been taken yet."));
+        assertFalse(text.contains("NaN"));
+        assertFalse(text.contains("Infinity"));
+        assertFalse(text.contains("null"));
+    }
+
+    @Test
+    void cautions() {
+        assertTrue(pages.notFound().contains("Not for clinical or safety decisions"));
+        assertTrue(pages.notFound().contains("the plan's owner decides"));
+    }
+
+    @Test
+    void refusesToEndWithOpenElements() {
+        assertThrows(IllegalStateException.class, () -> new Markup().open("p").document());
+    }
+
+    private String text(ExperimentView view) {
+        return parse(pages.experiment(view, List.of())).getDocumentElement().getTextContent();
+    }
+
+    private static ExperimentView nasty() {
+        Plan plan = Northwater.plan(
+                NASTY, NASTY, List.of(new Variant(NASTY, 0.5, true), new Variant(NASTY + "2", 0.5, false)), List.of());
+        ExperimentView like = Northwater.cabinUpsell();
+        return new ExperimentView(
+                plan,
+                NASTY,
+                Optional.empty(),
+                List.of(new VariantCount(0, NASTY, 10, 5)),
+                like.outcomes(),
+                like.split(),
+                Trust.MISMATCH,
+                NASTY,
+                Verdict.CONTINUE,
+                Map.of(NASTY + "2", like.comparisons().get("inside")),
+                Map.of(),
+                like.history(),
+                1,
+                1,
+                NASTY,
+                Map.of(),
+                NASTY);
+    }
+
+    private static Document parse(String html) {
+        try {
+            return DocumentBuilderFactory.newInstance()
+                    .newDocumentBuilder()
+                    .parse(new InputSource(new StringReader(html.replaceFirst("<!DOCTYPE html>", ""))));
+        } catch (SAXException | IOException | ParserConfigurationException e) {
+            throw new AssertionError("not well-formed: " + e.getMessage() + "\n" + html, e);
+        }
+    }
+}
