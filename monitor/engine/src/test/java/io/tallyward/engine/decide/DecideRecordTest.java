@@ -262,12 +262,12 @@ class DecideRecordTest {
         assertEquals(information, look.information(), 1e-9 * information, where);
         assertEquals(information / design.maximumInformation(), look.informationFraction(), 1e-9, where);
 
-        boolean last = look.informationFraction() >= 1
-                || !record.windowEnd().isBefore(plan.run().end());
-        double spent = design.spending().spent(0.0125, last ? 1 : look.informationFraction());
-        boolean benefitOpen = last
+        boolean runEnds = !record.windowEnd().isBefore(plan.run().end());
+        boolean benefitOpen = runEnds
                 || !record.windowEnd()
                         .isBefore(plan.run().from().plus(plan.run().atLeast()));
+        boolean last = runEnds || (look.informationFraction() >= 1 && benefitOpen);
+        double spent = design.spending().spent(0.0125, last ? 1 : look.informationFraction());
         Look expected = sequence.next(look.informationFraction(), benefitOpen ? spent : 0, spent);
         assertBoundary(expected.upper(), look.upper(), where);
         assertBoundary(expected.lower(), look.lower(), where);

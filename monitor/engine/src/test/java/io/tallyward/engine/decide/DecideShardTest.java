@@ -227,6 +227,24 @@ class DecideShardTest {
     }
 
     @Test
+    void declaresNoBenefitBeforeTheMinimumRunIsOverEvenWithAllInformationIn() {
+        for (Plan plan : List.of(
+                fiveDays().atLeast(Duration.ofDays(3)).build(),
+                fiveDays().atLeast(Duration.ofDays(3)).lookAt(0.5, 1.0).build())) {
+            DecideHost early = new DecideHost(plan).next(6000, 1200, 6000, 1500);
+            assertNull(early.lastLook().upper());
+            assertEquals(0.025, early.lastLook().alphaSpent(), 1e-15, "the harm tail has spent all it may");
+            assertEquals(Verdict.CONTINUE, early.lastDecision().verdict());
+            early.next(500, 100, 500, 125);
+            assertEquals(Verdict.CONTINUE, early.lastDecision().verdict());
+            early.next(500, 100, 500, 125);
+            assertEquals(Verdict.STOP_BENEFIT, early.lastDecision().verdict());
+            assertEquals(0.05, early.lastLook().alphaSpent(), 1e-15);
+            assertNull(early.lastLook().lower(), "the harm tail has nothing left to spend");
+        }
+    }
+
+    @Test
     void latchesTheVerdictWhateverComesLater() {
         host.next(1000, 200, 1000, 260).next(1000, 200, 1000, 260);
         int records = host.decisions().size();

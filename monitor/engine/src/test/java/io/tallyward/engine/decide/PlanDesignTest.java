@@ -12,7 +12,7 @@ import io.tallyward.engine.plan.Spending.Family;
 import io.tallyward.engine.plan.TestPlan.Better;
 import io.tallyward.engine.plan.TestPlan.Sides;
 import io.tallyward.engine.plan.Variant;
-import io.tallyward.statistics.boundary.ExitProfile;
+import io.tallyward.statistics.boundary.ExitProbabilities;
 import io.tallyward.statistics.boundary.Look;
 import java.time.Duration;
 import java.util.List;
@@ -97,12 +97,11 @@ class PlanDesignTest {
                 IntStream.rangeClosed(1, 5).mapToDouble(look -> look / 5.0).toArray();
         double[] upper = IntStream.rangeClosed(1, 5).mapToDouble(boundary).toArray();
         double[] lower = IntStream.range(0, 5).mapToDouble(look -> -upper[look]).toArray();
-        ExitProfile profile = ExitProfile.of(information, upper, lower, 5);
         double below = 3;
         double above = 4;
         while (above - below > 1e-10) {
             double middle = (below + above) / 2;
-            if (profile.at(middle).totalUpper() < 0.9) {
+            if (ExitProbabilities.of(information, upper, lower, middle).totalUpper() < 0.9) {
                 below = middle;
             } else {
                 above = middle;
