@@ -20,7 +20,8 @@ import java.util.TreeMap;
 
 /**
  * The group-sequential test of one challenger against the control: takes looks, keeps the boundaries already used, and
- * latches the verdict. At the last look (information used up, or the run over) all remaining error is spent.
+ * latches the verdict. At the last look (information used up and the minimum run over, or the run over) all remaining error
+ * is spent.
  */
 final class ChallengerTest {
 
@@ -107,7 +108,7 @@ final class ChallengerTest {
         double fraction = comparison
                 .map(found -> found.information() / design().maximumInformation())
                 .orElse(0.0);
-        if (!runEnds && !calendar.isDue(windowEnd, fraction)) {
+        if (!runEnds && !calendar.isDue(windowEnd, fraction, minimumRunOver(windowEnd))) {
             return new Attempt.NotDue();
         }
         String obstacle = obstacle(counts, fraction);
@@ -148,10 +149,9 @@ final class ChallengerTest {
 
     private TakenLook look(
             StratifiedComparison found, double fraction, long windowEnd, boolean runEnds, boolean sound) {
-        boolean last = runEnds || fraction >= 1;
-        double spendingTime = last ? 1 : fraction;
-        boolean benefitOpen = last
-                || windowEnd >= plan.run().from().plus(plan.run().atLeast()).toEpochMilli();
+        boolean benefitOpen = runEnds || minimumRunOver(windowEnd);
+        boolean last = runEnds || (fraction >= 1 && benefitOpen);
+        double spendingTime = last ? 1 : Math.min(fraction, 1);
         TailSpending spent =
                 TailSpending.at(plan, design().spending().spent(design().tailLevel(), spendingTime), benefitOpen);
         Look look = boundaries().next(fraction, spent.upper(), spent.lower());
@@ -168,6 +168,10 @@ final class ChallengerTest {
                 comparison(found, look, futilityBound, reason(found.z(), look, finding)));
         looks.put(look.number(), taken);
         return taken;
+    }
+
+    private boolean minimumRunOver(long windowEnd) {
+        return windowEnd >= plan.run().from().plus(plan.run().atLeast()).toEpochMilli();
     }
 
     private double betaSpent(double spendingTime) {

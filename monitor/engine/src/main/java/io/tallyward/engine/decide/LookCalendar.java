@@ -25,11 +25,15 @@ final class LookCalendar {
         }
     }
 
-    /** Whether a look is due at the end of a window, given the information fraction then. */
-    boolean isDue(long windowEnd, double fraction) {
+    /**
+     * Whether a look is due at the end of a window, given the information fraction then. Where the planned fractions are used
+     * up before the minimum run is over, one more look is due once it is: the benefit tail has spent nothing yet.
+     */
+    boolean isDue(long windowEnd, double fraction, boolean minimumRunOver) {
         if (schedule instanceof AtFractions fractions) {
             return nextFraction < fractions.fractions().size()
-                    && fraction >= fractions.fractions().get(nextFraction);
+                    ? fraction >= fractions.fractions().get(nextFraction)
+                    : minimumRunOver;
         }
         return windowEnd >= nextDue;
     }

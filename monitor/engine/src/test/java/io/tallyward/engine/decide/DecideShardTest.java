@@ -7,6 +7,9 @@ import static org.junit.jupiter.api.Assertions.assertThrows;
 import static org.junit.jupiter.api.Assertions.assertTrue;
 
 import io.tallyward.engine.Plans;
+import io.tallyward.engine.count.SealCause;
+import io.tallyward.engine.count.TallyUpdate;
+import io.tallyward.engine.count.WindowTally;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanChangedException;
 import io.tallyward.engine.plan.PlanDigest;
@@ -224,6 +227,24 @@ class DecideShardTest {
     }
 
     @Test
+    void declaresNoBenefitBeforeTheMinimumRunIsOverEvenWithAllInformationIn() {
+        for (Plan plan : List.of(
+                fiveDays().atLeast(Duration.ofDays(3)).build(),
+                fiveDays().atLeast(Duration.ofDays(3)).lookAt(0.5, 1.0).build())) {
+            DecideHost early = new DecideHost(plan).next(6000, 1200, 6000, 1500);
+            assertNull(early.lastLook().upper());
+            assertEquals(0.025, early.lastLook().alphaSpent(), 1e-15, "the harm tail has spent all it may");
+            assertEquals(Verdict.CONTINUE, early.lastDecision().verdict());
+            early.next(500, 100, 500, 125);
+            assertEquals(Verdict.CONTINUE, early.lastDecision().verdict());
+            early.next(500, 100, 500, 125);
+            assertEquals(Verdict.STOP_BENEFIT, early.lastDecision().verdict());
+            assertEquals(0.05, early.lastLook().alphaSpent(), 1e-15);
+            assertNull(early.lastLook().lower(), "the harm tail has nothing left to spend");
+        }
+    }
+
+    @Test
     void latchesTheVerdictWhateverComesLater() {
         host.next(1000, 200, 1000, 260).next(1000, 200, 1000, 260);
         int records = host.decisions().size();
@@ -381,6 +402,31 @@ class DecideShardTest {
         assertTrue(
                 three.noticeKinds().containsAll(List.of("exhausted coast", "exhausted islands")),
                 three.noticeKinds().toString());
+    }
+
+    @Test
+    void recordsHowManyWindowsWereSealedOnlyBecauseAPartitionWasIdle() {
+        WindowTally first = DecideHost.window(FIVE_DAYS, 0, 600, 120, 600, 120);
+        WindowTally second = DecideHost.window(FIVE_DAYS, 1, 600, 120, 600, 120);
+        host.take(idle(0, first)).take(idle(1, first)).take(DecideHost.update(FIVE_DAYS, 2, 3, 1, first));
+        assertEquals(1, host.lastDecision().idleSealed(), "two idle partitions, one window");
+        host.take(DecideHost.update(FIVE_DAYS, 0, 3, 2, second))
+                .take(DecideHost.update(FIVE_DAYS, 1, 3, 2, second))
+                .take(DecideHost.update(FIVE_DAYS, 2, 3, 2, second));
+        assertEquals(2, host.lastDecision().comparisons().get(0).look());
+        assertEquals(1, host.lastDecision().idleSealed());
+    }
+
+    private static TallyUpdate idle(int partition, WindowTally window) {
+        TallyUpdate sealed = DecideHost.update(FIVE_DAYS, partition, 3, 1, window);
+        return new TallyUpdate(
+                sealed.experiment(),
+                sealed.planDigest(),
+                partition,
+                3,
+                sealed.sealedUntilMillis(),
+                SealCause.IDLE,
+                sealed.windows());
     }
 
     @Test

@@ -1,0 +1,162 @@
+package io.tallyward.engine.record;
+
+import static org.junit.jupiter.api.Assertions.assertEquals;
+import static org.junit.jupiter.api.Assertions.assertNotEquals;
+import static org.junit.jupiter.api.Assertions.assertTrue;
+
+import io.tallyward.engine.count.OutcomeCounts;
+import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.engine.record.DecisionRecord.Occasion;
+import io.tallyward.engine.record.DecisionRecord.Split;
+import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import java.lang.reflect.RecordComponent;
+import java.time.Instant;
+import java.util.ArrayList;
+import java.util.Arrays;
+import java.util.HashMap;
+import java.util.List;
+import java.util.Map;
+import org.junit.jupiter.api.Test;
+
+/** The digest of a record covers every field, found by reflection so that a field added later is not forgotten. */
+class RecordDigestTest {
+
+    private static final Comparison LOOK = new Comparison(
+            "wide",
+            2,
+            1.25,
+            3000,
+            0.4,
+            0.001,
+            3.5,
+            -3.5,
+            null,
+            0.01,
+            -0.02,
+            0.04,
+            Verdict.CONTINUE,
+            null,
+            "z 1.250 lies between the boundaries");
+
+    private static final DecisionRecord RECORD = new DecisionRecord(
+            "quay-banner",
+            3,
+            Occasion.LOOK,
+            Instant.parse("2026-05-05T00:00:00Z"),
+            "a".repeat(64),
+            List.of(new VariantCount(0, "plain", 100, 20), new VariantCount(0, "wide", 101, 25)),
+            OutcomeCounts.of(201, 45, 3, 2, 1, 5, 6, 7, 0),
+            4,
+            new Split(-1.5, 1, 0.25, 1, 0.6),
+            Trust.SOUND,
+            "",
+            Verdict.CONTINUE,
+            List.of(LOOK),
+            "1",
+            "b".repeat(64),
+            "c".repeat(64));
+
+    /** Every record that differs from the given one in one place, by the name of the place. */
+    private static Map<String, Record> neighbours(Record record) throws ReflectiveOperationException {
+        Map<String, Record> result = new HashMap<>();
+        RecordComponent[] components = record.getClass().getRecordComponents();
+        Class<?>[] types =
+                Arrays.stream(components).map(RecordComponent::getType).toArray(Class<?>[]::new);
+        var constructor = record.getClass().getDeclaredConstructor(types);
+        for (int i = 0; i < components.length; i++) {
+            Object[] values = new Object[components.length];
+            for (int j = 0; j < components.length; j++) {
+                values[j] = components[j].getAccessor().invoke(record);
+            }
+            Map<String, Object> others = new HashMap<>();
+            collectOthers(components[i].getName(), types[i], values[i], others);
+            for (Map.Entry<String, Object> other : others.entrySet()) {
+                values[i] = other.getValue();
+                result.put(other.getKey(), (Record) constructor.newInstance(values));
+            }
+        }
+        return result;
+    }
+
+    private static void collectOthers(String name, Class<?> type, Object value, Map<String, Object> others)
+            throws ReflectiveOperationException {
+        if (value instanceof String text) {
+            others.put(name, text + "x");
+        } else if (value instanceof Integer number) {
+            others.put(name, number + 1);
+        } else if (value instanceof Long number) {
+            others.put(name, number + 1);
+        } else if (value instanceof Instant moment) {
+            others.put(name, moment.plusMillis(1));
+        } else if (value instanceof OutcomeCounts outcomes) {
+            collectOutcomes(name, outcomes, others);
+        } else if (value instanceof Record inner) {
+            neighbours(inner).forEach((place, changed) -> others.put(name + "." + place, changed));
+        } else if (value instanceof List<?> list) {
+            collectLists(name, list, others);
+        } else if (type == Double.class || type == double.class) {
+            collectReals(name, type, (Double) value, others);
+        } else if (type.isEnum()) {
+            for (Object constant : type.getEnumConstants()) {
+                if (constant != value) {
+                    others.put(name + "=" + constant, constant);
+                }
+            }
+        } else {
+            throw new AssertionError(name + ": this test knows no other value of " + type);
+        }
+    }
+
+    private static void collectReals(String name, Class<?> type, Double value, Map<String, Object> others) {
+        others.put(name, value == null ? Double.valueOf(0) : Double.valueOf(Math.nextUp(value)));
+        if (type == Double.class && value != null) {
+            others.put(name + "=null", null);
+        }
+    }
+
+    private static void collectOutcomes(String name, OutcomeCounts outcomes, Map<String, Object> others) {
+        for (int i = 0; i < outcomes.toArray().length; i++) {
+            long[] counts = outcomes.toArray();
+            counts[i]++;
+            others.put(name + "[" + i + "]", OutcomeCounts.of(counts));
+        }
+    }
+
+    private static void collectLists(String name, List<?> list, Map<String, Object> others)
+            throws ReflectiveOperationException {
+        others.put(name + " shorter", list.subList(1, list.size()));
+        List<Object> longer = new ArrayList<>(list);
+        longer.add(list.get(0));
+        others.put(name + " longer", longer);
+        for (int i = 0; i < list.size(); i++) {
+            int index = i;
+            neighbours((Record) list.get(i)).forEach((place, changed) -> {
+                List<Object> copy = new ArrayList<>(list);
+                copy.set(index, changed);
+                others.put(name + "[" + index + "]." + place, copy);
+            });
+        }
+    }
+
+    @Test
+    void changesWithEveryFieldButTheHashItself() throws ReflectiveOperationException {
+        String digest = RecordDigest.of(RECORD);
+        Map<String, String> placeByDigest = new HashMap<>();
+        placeByDigest.put(digest, "the record itself");
+        Map<String, Record> neighbours = neighbours(RECORD);
+        assertEquals(digest, RecordDigest.of((DecisionRecord) neighbours.remove("hash")));
+        neighbours.forEach((place, changed) -> {
+            String other = placeByDigest.put(RecordDigest.of((DecisionRecord) changed), place);
+            assertEquals(null, other, () -> place + " has the digest of " + other);
+        });
+        assertTrue(neighbours.size() > 60, "places: " + neighbours.keySet());
+    }
+
+    @Test
+    void fillsInTheHashAndNothingElse() {
+        DecisionRecord sealed = RecordDigest.seal(RECORD);
+        assertEquals(RecordDigest.of(RECORD), sealed.hash());
+        assertNotEquals(RECORD.hash(), sealed.hash());
+        assertEquals(sealed, RecordDigest.seal(sealed));
+    }
+}
