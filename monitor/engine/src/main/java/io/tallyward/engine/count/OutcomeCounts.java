@@ -1,5 +1,8 @@
 package io.tallyward.engine.count;
 
+import java.io.DataInput;
+import java.io.DataOutput;
+import java.io.IOException;
 import java.util.Arrays;
 
 /** How many events ended in each outcome. An immutable value; {@link Builder} accumulates. */
@@ -41,6 +44,22 @@ public final class OutcomeCounts {
     /** Counts in the order of {@link Outcome#values()}. */
     public long[] toArray() {
         return counts.clone();
+    }
+
+    /** Writes the counts in the order of {@link Outcome#values()}. */
+    public void write(DataOutput out) throws IOException {
+        for (long count : counts) {
+            out.writeLong(count);
+        }
+    }
+
+    /** Reads what {@link #write} wrote. */
+    public static OutcomeCounts read(DataInput in) throws IOException {
+        long[] counts = new long[OUTCOMES.length];
+        for (int i = 0; i < counts.length; i++) {
+            counts[i] = in.readLong();
+        }
+        return new OutcomeCounts(counts);
     }
 
     @Override

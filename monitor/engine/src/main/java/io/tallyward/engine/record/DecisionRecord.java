@@ -57,7 +57,9 @@ public record DecisionRecord(
         /** A look was taken at one or more comparisons. */
         LOOK,
         /** Trust changed between looks. */
-        TRUST;
+        TRUST,
+        /** The run ended and no further look could be taken. */
+        END;
 
         /** The published code, as in {@code look}. */
         public String code() {

@@ -1,0 +1,155 @@
+package io.tallyward.connector.format;
+
+import com.fasterxml.jackson.core.JsonGenerator;
+import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.engine.record.DecisionRecord.Occasion;
+import io.tallyward.engine.record.DecisionRecord.Split;
+import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.Trust;
+import io.tallyward.engine.record.Verdict;
+import java.io.IOException;
+
+/**
+ * Decision records as JSON, the published form: {@code schema/decision.schema.json}. Every record begins with
+ * {@code "type":"decision"}; what a record does not have is an explicit null. Doubles survive to the last bit, so that a
+ * record read back has the digest it was written with.
+ */
+public final class DecisionJson {
+
+    private static final String TYPE = "decision";
+
+    private DecisionJson() {}
+
+    /**
+     * The record as one JSON object in UTF-8.
+     *
+     * @throws IllegalArgumentException if a number is infinite or NaN
+     */
+    public static byte[] write(DecisionRecord decision) {
+        return JsonBytes.object(decision, DecisionJson::members);
+    }
+
+    /**
+     * Reads what {@link #write} wrote. The record's hash is not verified here.
+     *
+     * @throws RecordFormatException if a member is missing or wrong; members it does not know are ignored
+     */
+    public static DecisionRecord read(byte[] bytes) {
+        JsonMembers decision = JsonMembers.of("decision", bytes);
+        if (!decision.text("type").equals(TYPE)) {
+            throw new RecordFormatException(
+                    "decision.type: " + Quoted.of(decision.text("type")) + " (expected: " + TYPE + ")");
+        }
+        return new DecisionRecord(
+                decision.text("experiment"),
+                decision.index("sequence"),
+                decision.code("occasion", Occasion.values(), Occasion::code),
+                decision.instant("windowEnd"),
+                decision.text("planDigest"),
+                decision.list("counts", DecisionJson::count),
+                OutcomesJson.read(decision),
+                decision.whole("idleSealed"),
+                split(decision.object("split")),
+                decision.code("trust", Trust.values(), Trust::code),
+                decision.text("trustReason"),
+                verdict(decision, "verdict"),
+                decision.list("comparisons", DecisionJson::comparison),
+                decision.text("engineVersion"),
+                decision.text("previous"),
+                decision.text("hash"));
+    }
+
+    private static void members(JsonGenerator json, DecisionRecord decision) throws IOException {
+        JsonBytes.text(json, "type", TYPE);
+        JsonBytes.text(json, "experiment", decision.experiment());
+        json.writeNumberField("sequence", decision.sequence());
+        JsonBytes.text(json, "occasion", decision.occasion().code());
+        JsonBytes.instant(json, "windowEnd", decision.windowEnd());
+        JsonBytes.text(json, "planDigest", decision.planDigest());
+        JsonBytes.list(json, "counts", decision.counts(), DecisionJson::count);
+        OutcomesJson.write(json, decision.outcomes());
+        json.writeNumberField("idleSealed", decision.idleSealed());
+        split(json, decision.split());
+        JsonBytes.text(json, "trust", decision.trust().code());
+        JsonBytes.text(json, "trustReason", decision.trustReason());
+        JsonBytes.text(json, "verdict", decision.verdict().code());
+        JsonBytes.list(json, "comparisons", decision.comparisons(), DecisionJson::comparison);
+        JsonBytes.text(json, "engineVersion", decision.engineVersion());
+        JsonBytes.text(json, "previous", decision.previous());
+        JsonBytes.text(json, "hash", decision.hash());
+    }
+
+    private static void count(JsonGenerator json, VariantCount count) throws IOException {
+        json.writeNumberField("epoch", count.epoch());
+        JsonBytes.text(json, "variant", count.variant());
+        json.writeNumberField("trials", count.trials());
+        json.writeNumberField("successes", count.successes());
+    }
+
+    private static VariantCount count(JsonMembers count) {
+        return new VariantCount(
+                count.index("epoch"), count.text("variant"), count.whole("trials"), count.whole("successes"));
+    }
+
+    private static void split(JsonGenerator json, Split split) throws IOException {
+        json.writeObjectFieldStart("split");
+        JsonBytes.real(json, "logBayesFactor", split.logBayesFactor());
+        JsonBytes.real(json, "sequentialPValue", split.sequentialPValue());
+        JsonBytes.real(json, "pearsonChiSquare", split.pearsonChiSquare());
+        json.writeNumberField("pearsonDegreesOfFreedom", split.pearsonDegreesOfFreedom());
+        JsonBytes.real(json, "pearsonPValue", split.pearsonPValue());
+        json.writeEndObject();
+    }
+
+    private static Split split(JsonMembers split) {
+        return new Split(
+                split.real("logBayesFactor"),
+                split.real("sequentialPValue"),
+                split.real("pearsonChiSquare"),
+                split.index("pearsonDegreesOfFreedom"),
+                split.real("pearsonPValue"));
+    }
+
+    private static void comparison(JsonGenerator json, Comparison comparison) throws IOException {
+        JsonBytes.text(json, "variant", comparison.variant());
+        json.writeNumberField("look", comparison.look());
+        JsonBytes.real(json, "z", comparison.z());
+        JsonBytes.real(json, "information", comparison.information());
+        JsonBytes.real(json, "informationFraction", comparison.informationFraction());
+        JsonBytes.real(json, "alphaSpent", comparison.alphaSpent());
+        JsonBytes.realOrNull(json, "upper", comparison.upper());
+        JsonBytes.realOrNull(json, "lower", comparison.lower());
+        JsonBytes.realOrNull(json, "futility", comparison.futility());
+        JsonBytes.real(json, "difference", comparison.difference());
+        JsonBytes.realOrNull(json, "differenceLower", comparison.differenceLower());
+        JsonBytes.realOrNull(json, "differenceUpper", comparison.differenceUpper());
+        JsonBytes.text(json, "verdict", comparison.verdict().code());
+        json.writeStringField(
+                "held", comparison.held() == null ? null : comparison.held().code());
+        JsonBytes.text(json, "reason", comparison.reason());
+    }
+
+    private static Comparison comparison(JsonMembers comparison) {
+        return new Comparison(
+                comparison.text("variant"),
+                comparison.index("look"),
+                comparison.real("z"),
+                comparison.real("information"),
+                comparison.real("informationFraction"),
+                comparison.real("alphaSpent"),
+                comparison.realOrNull("upper"),
+                comparison.realOrNull("lower"),
+                comparison.realOrNull("futility"),
+                comparison.real("difference"),
+                comparison.realOrNull("differenceLower"),
+                comparison.realOrNull("differenceUpper"),
+                verdict(comparison, "verdict"),
+                comparison.codeOrNull("held", Verdict.values(), Verdict::code),
+                comparison.text("reason"));
+    }
+
+    private static Verdict verdict(JsonMembers members, String name) {
+        return members.code(name, Verdict.values(), Verdict::code);
+    }
+}

@@ -1,0 +1,172 @@
+package io.tallyward.connector.format;
+
+import com.fasterxml.jackson.core.JsonProcessingException;
+import com.fasterxml.jackson.databind.DeserializationFeature;
+import com.fasterxml.jackson.databind.JsonNode;
+import com.fasterxml.jackson.databind.ObjectReader;
+import com.fasterxml.jackson.databind.json.JsonMapper;
+import java.io.IOException;
+import java.time.DateTimeException;
+import java.time.Instant;
+import java.util.ArrayList;
+import java.util.Arrays;
+import java.util.LinkedHashMap;
+import java.util.List;
+import java.util.Map;
+import java.util.function.Function;
+
+/** The members of one JSON object, read strictly: each must be there, of its type. Messages carry the path to the member. */
+final class JsonMembers {
+
+    private static final ObjectReader READER = JsonMapper.builder()
+            .enable(DeserializationFeature.FAIL_ON_READING_DUP_TREE_KEY)
+            .enable(DeserializationFeature.FAIL_ON_TRAILING_TOKENS)
+            .build()
+            .reader();
+
+    private final String path;
+    private final JsonNode node;
+
+    private JsonMembers(String path, JsonNode node) {
+        this.path = path;
+        this.node = node;
+    }
+
+    /**
+     * Reads a document that must be one object.
+     *
+     * @param what the record it should be, for messages
+     */
+    static JsonMembers of(String what, byte[] bytes) {
+        try {
+            return member(what, READER.readTree(bytes));
+        } catch (JsonProcessingException e) {
+            throw new RecordFormatException(what + ": not JSON: " + e.getOriginalMessage());
+        } catch (IOException e) {
+            throw new RecordFormatException(what + ": not UTF-8 text");
+        }
+    }
+
+    String text(String name) {
+        JsonNode value = value(name);
+        if (!value.isTextual()) {
+            throw unexpected(name, value, "text");
+        }
+        return value.textValue();
+    }
+
+    long whole(String name) {
+        JsonNode value = value(name);
+        if (!value.isIntegralNumber() || !value.canConvertToLong()) {
+            throw unexpected(name, value, "a whole number of at most 64 bits");
+        }
+        return value.longValue();
+    }
+
+    int index(String name) {
+        JsonNode value = value(name);
+        if (!value.isIntegralNumber() || !value.canConvertToInt()) {
+            throw unexpected(name, value, "a whole number of at most 32 bits");
+        }
+        return value.intValue();
+    }
+
+    double real(String name) {
+        JsonNode value = value(name);
+        if (!value.isNumber() || !Double.isFinite(value.doubleValue())) {
+            throw unexpected(name, value, "a finite number");
+        }
+        return value.doubleValue();
+    }
+
+    Double realOrNull(String name) {
+        return value(name).isNull() ? null : real(name);
+    }
+
+    Instant instant(String name) {
+        String text = text(name);
+        try {
+            return Instant.parse(text);
+        } catch (DateTimeException e) {
+            throw unexpected(name, value(name), "an RFC 3339 time");
+        }
+    }
+
+    <E extends Enum<E>> E code(String name, E[] values, Function<E, String> codeOf) {
+        String text = text(name);
+        for (E value : values) {
+            if (codeOf.apply(value).equals(text)) {
+                return value;
+            }
+        }
+        List<String> codes = Arrays.stream(values).map(codeOf).toList();
+        throw unexpected(name, value(name), "one of " + String.join(", ", codes));
+    }
+
+    <E extends Enum<E>> E codeOrNull(String name, E[] values, Function<E, String> codeOf) {
+        return value(name).isNull() ? null : code(name, values, codeOf);
+    }
+
+    JsonMembers object(String name) {
+        return member(path + "." + name, value(name));
+    }
+
+    <T> List<T> list(String name, Function<JsonMembers, T> read) {
+        JsonNode value = value(name);
+        if (!value.isArray()) {
+            throw unexpected(name, value, "an array");
+        }
+        List<T> items = new ArrayList<>(value.size());
+        for (JsonNode item : value) {
+            items.add(read.apply(member(path + "." + name + "[" + items.size() + "]", item)));
+        }
+        return items;
+    }
+
+    /** All members as text, in the order of the document. */
+    Map<String, String> texts() {
+        Map<String, String> texts = new LinkedHashMap<>();
+        node.fieldNames().forEachRemaining(name -> texts.put(name, text(name)));
+        return texts;
+    }
+
+    /** Builds a value from members whose combination may be refused. */
+    <T> T build(Function<JsonMembers, T> read) {
+        try {
+            return read.apply(this);
+        } catch (RecordFormatException e) {
+            throw e;
+        } catch (IllegalArgumentException e) {
+            throw new RecordFormatException(path + ": " + e.getMessage());
+        }
+    }
+
+    private static JsonMembers member(String path, JsonNode node) {
+        if (!node.isObject()) {
+            throw new RecordFormatException(path + ": " + shown(node) + " (expected: an object)");
+        }
+        return new JsonMembers(path, node);
+    }
+
+    private JsonNode value(String name) {
+        JsonNode value = node.get(name);
+        if (value == null) {
+            throw new RecordFormatException(path + "." + name + ": missing");
+        }
+        return value;
+    }
+
+    private RecordFormatException unexpected(String name, JsonNode found, String expected) {
+        return new RecordFormatException(path + "." + name + ": " + shown(found) + " (expected: " + expected + ")");
+    }
+
+    private static String shown(JsonNode node) {
+        return switch (node.getNodeType()) {
+            case STRING -> Quoted.of(node.textValue());
+            case ARRAY -> "an array";
+            case OBJECT -> "an object";
+            case MISSING -> "nothing";
+            case NUMBER, BOOLEAN, NULL, BINARY, POJO -> Quoted.sentence(node.asText());
+        };
+    }
+}

@@ -1,0 +1,50 @@
+package io.tallyward.connector.kafka;
+
+import java.util.List;
+import java.util.function.Predicate;
+import org.apache.kafka.clients.consumer.ConsumerRecord;
+
+/**
+ * A state machine for one partition number, as its host sees it. All methods are called by one thread at a time, in this
+ * order: {@link #restore} for every surviving state record, {@link #committed} once, then any number of {@link #apply},
+ * {@link #passTime} and {@link #drain}, with {@link #committed} after each drain that became durable, and finally
+ * {@link #released}. After a drain that did not become durable the shard is released and never used again.
+ *
+ * <p>An exception from any method is a broken invariant: the worker that hosts the shard stops for good.
+ */
+public interface HostedShard {
+
+    /**
+     * Takes back one state record that was written earlier. Records come in log order; some that were later overwritten
+     * may still be among them.
+     *
+     * @param key as it was written
+     * @param value as it was written; null where the key was removed
+     */
+    void restore(byte[] key, byte[] value);
+
+    /** Takes one input record. Records of one input partition come in offset order, each exactly once. */
+    void apply(ConsumerRecord<byte[], byte[]> record);
+
+    /**
+     * Lets wall-clock time pass; called before each drain, that is once per commit interval.
+     *
+     * @param nowMillis wall-clock time in milliseconds since 1970
+     * @param caughtUp tells for an input topic whether everything in this shard's partition of it has been applied, as the
+     *     broker confirmed within the last few seconds. It is false while that is not known: during an outage, and until
+     *     the broker has answered again. A shard that measures idleness starts afresh whenever it hears false.
+     */
+    void passTime(long nowMillis, Predicate<String> caughtUp);
+
+    /**
+     * Everything to be made durable since the last drain, in the order in which it is to be written. State records go to
+     * the group's state topic, into the shard's own partition, and are at most 512 kB each.
+     */
+    List<Output> drain();
+
+    /** All that was drained (or restored) so far is durable: the moment to publish metrics and snapshots. */
+    void committed();
+
+    /** The shard is let go; stop publishing. */
+    void released();
+}

@@ -1,0 +1,193 @@
+package io.tallyward.engine.count;
+
+import io.tallyward.engine.event.Event;
+import io.tallyward.engine.event.RejectReason;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.shard.StateChange;
+import java.util.ArrayList;
+import java.util.Collection;
+import java.util.EnumMap;
+import java.util.LinkedHashMap;
+import java.util.List;
+import java.util.Map;
+import java.util.Optional;
+import java.util.OptionalLong;
+
+/**
+ * Counts one input partition. A pure state machine: the same records in the same order, with the same passages of time,
+ * give the same tallies. Not thread-safe.
+ *
+ * <p>A host feeds it decoded events, lets time pass, and asks now and then for its {@linkplain #drain() effects}, which it
+ * makes durable together with the offsets of what was read. After a restart the host hands the surviving state changes
+ * back through {@link #restore} before the first event.
+ */
+public final class CountShard {
+
+    private final int partition;
+    private final int partitions;
+    private final long maxSkewMillis;
+    private final UnitHasher hasher;
+    private final Watermarks watermarks;
+    private final Map<String, ExperimentCounter> counters = new LinkedHashMap<>();
+    private final Map<RejectReason, Long> rejected = new EnumMap<>(RejectReason.class);
+    private final CountState state = new CountState();
+    private final SealedTallies tallies;
+
+    private final List<StateChange> sealedState = new ArrayList<>();
+    private boolean shardChanged;
+    private long nextSealAt = Long.MIN_VALUE;
+
+    /**
+     * A shard that has counted nothing yet.
+     *
+     * @param partition number of the input partition
+     * @param partitions how many input partitions there are
+     * @param plans the plans to count under, one per experiment
+     * @param settings settings of the stream
+     * @param sources how many input topics meet in this shard, at least 1
+     */
+    public CountShard(int partition, int partitions, Collection<Plan> plans, CountSettings settings, int sources) {
+        if (!(sources >= 1)) {
+            throw new IllegalArgumentException("sources: " + sources + " (expected: at least 1)");
+        }
+        this.partition = partition;
+        this.partitions = partitions;
+        maxSkewMillis = settings.maxSkew().toMillis();
+        hasher = new UnitHasher(settings.unitKey());
+        watermarks = new Watermarks(sources, settings.idleAfter().toMillis());
+        tallies = new SealedTallies(partition, partitions);
+        for (Plan plan : plans) {
+            counters.put(plan.experiment(), new ExperimentCounter(plan));
+        }
+        for (RejectReason reason : RejectReason.values()) {
+            rejected.put(reason, 0L);
+        }
+    }
+
+    /**
+     * Applies one earlier state change.
+     *
+     * @throws io.tallyward.engine.plan.PlanChangedException when an experiment was counted under another plan
+     */
+    public void restore(byte[] key, byte[] value) {
+        state.restore(key, value, watermarks, rejected, counters);
+        nextSealAt = Long.MIN_VALUE;
+    }
+
+    /**
+     * Takes one event.
+     *
+     * @param source index of the input topic it came from
+     * @param recordTimestampMillis when it reached the log, by the record's timestamp
+     * @return why it was rejected; empty when it was admitted
+     */
+    public Optional<RejectReason> apply(int source, long recordTimestampMillis, Event event) {
+        ExperimentCounter counter = counters.get(event.experiment());
+        if (counter == null) {
+            return Optional.of(reject(RejectReason.UNKNOWN_EXPERIMENT));
+        }
+        int variant = counter.plan().variantIndex(event.variant());
+        if (variant < 0) {
+            return Optional.of(reject(RejectReason.UNKNOWN_VARIANT));
+        }
+        if (event.atMillis() > recordTimestampMillis + maxSkewMillis) {
+            return Optional.of(reject(RejectReason.BAD_TIME));
+        }
+        boolean inside = counter.accept(hasher.hash(event.unit()), event, variant, watermarks.of(source));
+        if (inside && watermarks.advance(source, event.atMillis())) {
+            shardChanged = true;
+            sealPassed();
+        }
+        return Optional.empty();
+    }
+
+    /** Counts a record that could not be read as an event. */
+    public RejectReason reject(RejectReason reason) {
+        rejected.merge(reason, 1L, Long::sum);
+        shardChanged = true;
+        return reason;
+    }
+
+    /**
+     * Lets the wall clock pass.
+     *
+     * @param source index of an input topic
+     * @param nowMillis the wall clock
+     * @param caughtUp whether everything in this source has been read; only then can it be idle
+     */
+    public void passTime(int source, long nowMillis, boolean caughtUp) {
+        if (watermarks.passTime(source, nowMillis, caughtUp)) {
+            shardChanged = true;
+            sealPassed();
+        }
+    }
+
+    /** Seals everything: the input has come to its end and nothing more can arrive. */
+    public void endOfInput() {
+        counters.values().forEach(counter -> seal(counter, Long.MAX_VALUE, SealCause.END));
+    }
+
+    private void sealPassed() {
+        long watermark = watermarks.slowest();
+        if (watermark < nextSealAt) {
+            return;
+        }
+        SealCause cause = watermarks.slowestIsAssumed() ? SealCause.IDLE : SealCause.WATERMARK;
+        nextSealAt = Long.MAX_VALUE;
+        for (ExperimentCounter counter : counters.values()) {
+            seal(counter, watermark, cause);
+            nextSealAt = Math.min(nextSealAt, counter.nextSealAt());
+        }
+    }
+
+    private void seal(ExperimentCounter counter, long watermark, SealCause cause) {
+        long before = counter.sealedUntil();
+        List<ExperimentCounter.Sealed> windows = counter.sealUpTo(watermark);
+        if (counter.sealedUntil() == before) {
+            return;
+        }
+        String experiment = counter.plan().experiment();
+        windows.forEach(window -> sealedState.addAll(state.sealed(experiment, window)));
+        sealedState.addAll(state.forgetOpenBefore(experiment, counter.sealedUntil()));
+        tallies.add(counter, cause, windows);
+    }
+
+    /** Everything to be made durable since this was last asked. */
+    public CountEffects drain() {
+        List<StateChange> changes = new ArrayList<>(sealedState);
+        sealedState.clear();
+        for (ExperimentCounter counter : counters.values()) {
+            changes.addAll(state.open(counter));
+            if (counter.takeChanged()) {
+                changes.add(CountState.experiment(counter));
+            }
+        }
+        if (shardChanged) {
+            changes.add(CountState.shard(watermarks, rejected));
+            shardChanged = false;
+        }
+        return new CountEffects(changes, tallies.take(counters));
+    }
+
+    /** Where the shard stands. */
+    public CountView view() {
+        Map<String, CountView.ExperimentCounts> experiments = new LinkedHashMap<>();
+        counters.forEach((name, counter) -> experiments.put(
+                name,
+                new CountView.ExperimentCounts(
+                        counter.outcomes(),
+                        counter.ledger().openEvents(),
+                        counter.ledger().units())));
+        long watermark = watermarks.slowest();
+        return new CountView(
+                partition,
+                experiments,
+                rejected,
+                watermark == Watermarks.NONE ? OptionalLong.empty() : OptionalLong.of(watermark));
+    }
+
+    /** How many input partitions the shard believes there are. */
+    public int partitions() {
+        return partitions;
+    }
+}

@@ -1,0 +1,254 @@
+package io.tallyward.engine.count;
+
+import io.tallyward.engine.event.RejectReason;
+import io.tallyward.engine.plan.PlanChangedException;
+import io.tallyward.engine.shard.StateChange;
+import java.io.ByteArrayInputStream;
+import java.io.ByteArrayOutputStream;
+import java.io.DataInputStream;
+import java.io.DataOutputStream;
+import java.io.IOException;
+import java.io.UncheckedIOException;
+import java.util.ArrayList;
+import java.util.Iterator;
+import java.util.List;
+import java.util.Map;
+import java.util.TreeMap;
+
+/**
+ * The durable form of a COUNT shard. Four kinds of entry, told apart by the first byte of the key:
+ *
+ * <ul>
+ *   <li>shard: watermarks and reject counts, one entry, rewritten;
+ *   <li>experiment: how far it is sealed and its outcomes, one entry each, rewritten;
+ *   <li>open units: those that changed in one commit, packed by the window in which they fall due; a later entry holds the
+ *       later version of a unit;
+ *   <li>sealed units: those of one window, packed; when a window is sealed, its open entries are removed.
+ * </ul>
+ *
+ * So the log compacts to one packed entry per sealed window and a bounded number of open ones.
+ */
+final class CountState {
+
+    private static final byte SHARD = 'H';
+    private static final byte EXPERIMENT = 'E';
+    private static final byte OPEN = 'O';
+    private static final byte SEALED = 'S';
+
+    /** A packed entry is closed once it is this large; well below a broker's usual record limit of 1 MB. */
+    private static final int PACKED_BYTES = 400_000;
+
+    private final Map<String, TreeMap<Long, Integer>> openEntries = new TreeMap<>();
+
+    /** Something written field by field. */
+    @FunctionalInterface
+    interface Body {
+        void writeTo(DataOutputStream out) throws IOException;
+    }
+
+    static byte[] pack(Body body) {
+        ByteArrayOutputStream bytes = new ByteArrayOutputStream();
+        try (DataOutputStream out = new DataOutputStream(bytes)) {
+            body.writeTo(out);
+        } catch (IOException e) {
+            throw new UncheckedIOException("a write to memory failed", e);
+        }
+        return bytes.toByteArray();
+    }
+
+    static StateChange shard(Watermarks watermarks, Map<RejectReason, Long> rejected) {
+        return new StateChange(new byte[] {SHARD}, pack(out -> {
+            watermarks.write(out);
+            for (RejectReason reason : RejectReason.values()) {
+                out.writeLong(rejected.get(reason));
+            }
+        }));
+    }
+
+    static StateChange experiment(ExperimentCounter counter) {
+        byte[] key = pack(out -> {
+            out.writeByte(EXPERIMENT);
+            out.writeUTF(counter.plan().experiment());
+        });
+        return new StateChange(key, pack(out -> {
+            out.writeUTF(counter.planDigest());
+            out.writeLong(counter.sealedUntil());
+            counter.outcomes().write(out);
+            Map<Long, OutcomeCounts> unsealed = counter.unsealedOutcomes();
+            out.writeInt(unsealed.size());
+            for (Map.Entry<Long, OutcomeCounts> window : unsealed.entrySet()) {
+                out.writeLong(window.getKey());
+                window.getValue().write(out);
+            }
+        }));
+    }
+
+    /** Open units that changed since the last commit. */
+    List<StateChange> open(ExperimentCounter counter) {
+        String experiment = counter.plan().experiment();
+        TreeMap<Long, Integer> entries = openEntries.computeIfAbsent(experiment, name -> new TreeMap<>());
+        List<StateChange> changes = new ArrayList<>();
+        counter.ledger().takeChanged().forEach((window, units) -> {
+            Iterator<Map.Entry<UnitHash, OpenUnit>> rest = units.entrySet().iterator();
+            while (rest.hasNext()) {
+                int sequence = entries.merge(window, 1, Integer::sum) - 1;
+                changes.add(new StateChange(key(OPEN, experiment, window, sequence), pack(out -> {
+                    while (rest.hasNext() && out.size() < PACKED_BYTES) {
+                        Map.Entry<UnitHash, OpenUnit> unit = rest.next();
+                        writeHash(out, unit.getKey());
+                        unit.getValue().write(out);
+                    }
+                })));
+            }
+        });
+        return changes;
+    }
+
+    /** The units of a window that was just sealed, and the removal of what was kept of the window while it was open. */
+    List<StateChange> sealed(String experiment, ExperimentCounter.Sealed window) {
+        List<StateChange> changes = new ArrayList<>();
+        long start = window.tally().startMillis();
+        Iterator<Map.Entry<UnitHash, SealedUnit>> rest =
+                window.units().entrySet().iterator();
+        for (int sequence = 0; rest.hasNext(); sequence++) {
+            changes.add(new StateChange(key(SEALED, experiment, start, sequence), pack(out -> {
+                while (rest.hasNext() && out.size() < PACKED_BYTES) {
+                    Map.Entry<UnitHash, SealedUnit> unit = rest.next();
+                    writeHash(out, unit.getKey());
+                    out.writeByte(unit.getValue().variant());
+                    out.writeLong(unit.getValue().first());
+                    out.writeBoolean(unit.getValue().success());
+                }
+            })));
+        }
+        return changes;
+    }
+
+    /** Removes the open entries of every window before a moment. */
+    List<StateChange> forgetOpenBefore(String experiment, long sealedUntil) {
+        List<StateChange> changes = new ArrayList<>();
+        TreeMap<Long, Integer> entries = openEntries.get(experiment);
+        if (entries == null) {
+            return changes;
+        }
+        Map<Long, Integer> past = entries.headMap(sealedUntil);
+        past.forEach((window, count) -> {
+            for (int sequence = 0; sequence < count; sequence++) {
+                changes.add(new StateChange(key(OPEN, experiment, window, sequence), null));
+            }
+        });
+        past.clear();
+        return changes;
+    }
+
+    /** Applies one stored entry; entries come in the order in which they were written. */
+    void restore(
+            byte[] key,
+            byte[] value,
+            Watermarks watermarks,
+            Map<RejectReason, Long> rejected,
+            Map<String, ExperimentCounter> counters) {
+        try {
+            DataInputStream keyIn = new DataInputStream(new ByteArrayInputStream(key));
+            byte kind = keyIn.readByte();
+            if (kind == SHARD) {
+                restoreShard(value, watermarks, rejected);
+                return;
+            }
+            String experiment = keyIn.readUTF();
+            ExperimentCounter counter = counters.get(experiment);
+            if (kind == EXPERIMENT) {
+                restoreExperiment(value, counter);
+            } else if (kind == OPEN) {
+                restoreOpen(experiment, keyIn.readLong(), keyIn.readInt(), value, counter);
+            } else if (kind == SEALED) {
+                restoreSealed(value, counter);
+            } else {
+                throw new IllegalStateException("stored counts: entry of unknown kind " + kind
+                        + " (expected: H, E, O or S); the state was written by another version");
+            }
+        } catch (IOException e) {
+            throw new UncheckedIOException("stored counts: an entry is cut short", e);
+        }
+    }
+
+    private static DataInputStream reader(byte[] value) {
+        return new DataInputStream(new ByteArrayInputStream(value));
+    }
+
+    private static void restoreShard(byte[] value, Watermarks watermarks, Map<RejectReason, Long> rejected)
+            throws IOException {
+        DataInputStream in = reader(value);
+        watermarks.read(in);
+        for (RejectReason reason : RejectReason.values()) {
+            rejected.put(reason, in.readLong());
+        }
+    }
+
+    private static void restoreExperiment(byte[] value, ExperimentCounter counter) throws IOException {
+        if (counter == null) {
+            return;
+        }
+        DataInputStream in = reader(value);
+        String digest = in.readUTF();
+        if (!digest.equals(counter.planDigest())) {
+            throw new PlanChangedException(counter.plan().experiment(), digest, counter.planDigest());
+        }
+        long sealedUntil = in.readLong();
+        OutcomeCounts outcomes = OutcomeCounts.read(in);
+        Map<Long, OutcomeCounts> unsealed = new TreeMap<>();
+        for (int rest = in.readInt(); rest > 0; rest--) {
+            long window = in.readLong();
+            unsealed.put(window, OutcomeCounts.read(in));
+        }
+        counter.restore(sealedUntil, outcomes, unsealed);
+    }
+
+    private void restoreOpen(String experiment, long window, int sequence, byte[] value, ExperimentCounter counter)
+            throws IOException {
+        TreeMap<Long, Integer> entries = openEntries.computeIfAbsent(experiment, name -> new TreeMap<>());
+        if (value == null) {
+            entries.remove(window);
+            return;
+        }
+        entries.merge(window, sequence + 1, Math::max);
+        if (counter == null) {
+            return;
+        }
+        DataInputStream in = reader(value);
+        int variants = counter.plan().variants().size();
+        while (in.available() > 0) {
+            UnitHash hash = readHash(in);
+            counter.ledger().restoreOpen(hash, OpenUnit.read(in, variants));
+        }
+    }
+
+    private static void restoreSealed(byte[] value, ExperimentCounter counter) throws IOException {
+        if (counter == null || value == null) {
+            return;
+        }
+        DataInputStream in = reader(value);
+        while (in.available() > 0) {
+            UnitHash hash = readHash(in);
+            counter.ledger().addSealed(hash, new SealedUnit(in.readByte(), in.readLong(), in.readBoolean()));
+        }
+    }
+
+    private static byte[] key(byte kind, String experiment, long window, int sequence) {
+        return pack(out -> {
+            out.writeByte(kind);
+            out.writeUTF(experiment);
+            out.writeLong(window);
+            out.writeInt(sequence);
+        });
+    }
+
+    private static void writeHash(DataOutputStream out, UnitHash hash) throws IOException {
+        out.writeLong(hash.high());
+        out.writeLong(hash.low());
+    }
+
+    private static UnitHash readHash(DataInputStream in) throws IOException {
+        return new UnitHash(in.readLong(), in.readLong());
+    }
+}

@@ -1,0 +1,178 @@
+package io.tallyward.engine.count;
+
+import io.tallyward.engine.count.WindowTally.Cell;
+import io.tallyward.engine.event.Event;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanDigest;
+import java.util.ArrayList;
+import java.util.List;
+import java.util.Map;
+import java.util.TreeMap;
+
+/**
+ * Counts one experiment in one partition: decides in which window an outcome is told, and seals windows in order. The
+ * sealed part of the run is always a prefix of it: every window before {@link #sealedUntil()} is sealed, none after.
+ */
+final class ExperimentCounter {
+
+    private final Plan plan;
+    private final String planDigest;
+    private final long windowMillis;
+    private final long sealDelayMillis;
+    private final long runEnd;
+    private final Ledger ledger;
+
+    private long sealedUntil;
+    private final TreeMap<Long, OutcomeCounts.Builder> unsealedOutcomes = new TreeMap<>();
+    private OutcomeCounts.Builder finalOutcomes = new OutcomeCounts.Builder();
+    private boolean changed;
+
+    ExperimentCounter(Plan plan) {
+        this.plan = plan;
+        planDigest = PlanDigest.of(plan);
+        windowMillis = plan.count().window().toMillis();
+        sealDelayMillis = plan.count().sealDelayMillis();
+        runEnd = plan.run().end().toEpochMilli();
+        sealedUntil = plan.run().from().toEpochMilli();
+        ledger = new Ledger(plan);
+    }
+
+    /** A window that was just sealed, with the units whose trials fell into it. */
+    record Sealed(WindowTally tally, Map<UnitHash, SealedUnit> units) {}
+
+    Plan plan() {
+        return plan;
+    }
+
+    String planDigest() {
+        return planDigest;
+    }
+
+    long sealedUntil() {
+        return sealedUntil;
+    }
+
+    Ledger ledger() {
+        return ledger;
+    }
+
+    /** Takes an event of a known variant; returns whether it lies inside the run. */
+    boolean accept(UnitHash hash, Event event, int variant, long arrivalMillis) {
+        changed = true;
+        if (!plan.run().contains(event.atMillis())) {
+            finalOutcomes.add(Outcome.OUTSIDE, 1);
+            return false;
+        }
+        long window = windowOf(event.atMillis());
+        boolean late = window < sealedUntil || arrivalMillis >= sealAt(window);
+        Outcome outcome = ledger.accept(hash, event, variant, arrivalMillis, late);
+        if (outcome != null) {
+            finalOutcomes.add(outcome, 1);
+            tellIn(window, outcome);
+        }
+        return true;
+    }
+
+    /** An outcome that became final on its own is told with its own window, or with the next one that is still open. */
+    private void tellIn(long window, Outcome outcome) {
+        long open = Math.max(window, sealedUntil);
+        if (open < runEnd) {
+            unsealedOutcomes
+                    .computeIfAbsent(open, start -> new OutcomeCounts.Builder())
+                    .add(outcome, 1);
+        }
+    }
+
+    private long windowOf(long atMillis) {
+        return Math.floorDiv(atMillis, windowMillis) * windowMillis;
+    }
+
+    private long sealAt(long windowStart) {
+        return windowStart + windowMillis + sealDelayMillis;
+    }
+
+    /** The watermark at which the next window is sealed, or {@code Long.MAX_VALUE} when all are. */
+    long nextSealAt() {
+        return sealedUntil >= runEnd ? Long.MAX_VALUE : sealAt(sealedUntil);
+    }
+
+    /** Seals every window that a watermark has passed; windows in which nothing happened are sealed without a trace. */
+    List<Sealed> sealUpTo(long watermark) {
+        List<Sealed> result = new ArrayList<>();
+        if (watermark < nextSealAt()) {
+            return result;
+        }
+        ledger.forgetDueBefore(sealedUntil);
+        long until = watermark == Long.MAX_VALUE ? runEnd : Math.min(runEnd, windowOf(watermark - sealDelayMillis));
+        long next = nextWithContent();
+        while (next < until) {
+            result.add(seal(next));
+            next = nextWithContent();
+        }
+        sealedUntil = until;
+        changed = true;
+        return result;
+    }
+
+    private long nextWithContent() {
+        long told = unsealedOutcomes.isEmpty() ? Long.MAX_VALUE : unsealedOutcomes.firstKey();
+        return Math.min(told, ledger.firstDue());
+    }
+
+    private Sealed seal(long windowStart) {
+        OutcomeCounts.Builder settled = new OutcomeCounts.Builder();
+        Map<UnitHash, SealedUnit> units = ledger.seal(windowStart, settled);
+        OutcomeCounts fromLedger = settled.build();
+        finalOutcomes.add(fromLedger);
+        OutcomeCounts.Builder told = unsealedOutcomes.remove(windowStart);
+        OutcomeCounts outcomes =
+                told == null ? fromLedger : told.add(fromLedger).build();
+        return new Sealed(new WindowTally(windowStart, cells(units), outcomes), units);
+    }
+
+    private List<Cell> cells(Map<UnitHash, SealedUnit> units) {
+        int variants = plan.variants().size();
+        int epochs = plan.epochs().size() + 1;
+        long[] trials = new long[epochs * variants];
+        long[] successes = new long[epochs * variants];
+        for (SealedUnit unit : units.values()) {
+            int cell = plan.epochAt(unit.first()) * variants + unit.variant();
+            trials[cell]++;
+            successes[cell] += unit.success() ? 1 : 0;
+        }
+        List<Cell> cells = new ArrayList<>();
+        for (int cell = 0; cell < trials.length; cell++) {
+            if (trials[cell] > 0) {
+                cells.add(new Cell(cell / variants, cell % variants, trials[cell], successes[cell]));
+            }
+        }
+        return cells;
+    }
+
+    /** Final outcomes of all events so far, sealed windows or not. */
+    OutcomeCounts outcomes() {
+        return finalOutcomes.build();
+    }
+
+    /** Outcomes that are final but belong to a window that is still open, by window start. */
+    Map<Long, OutcomeCounts> unsealedOutcomes() {
+        Map<Long, OutcomeCounts> result = new TreeMap<>();
+        unsealedOutcomes.forEach((window, outcomes) -> result.put(window, outcomes.build()));
+        return result;
+    }
+
+    /** Whether anything but the ledger changed since this was last asked. */
+    boolean takeChanged() {
+        boolean result = changed;
+        changed = false;
+        return result;
+    }
+
+    void restore(long storedSealedUntil, OutcomeCounts storedOutcomes, Map<Long, OutcomeCounts> storedUnsealed) {
+        sealedUntil = storedSealedUntil;
+        finalOutcomes = new OutcomeCounts.Builder().add(storedOutcomes);
+        unsealedOutcomes.clear();
+        storedUnsealed.forEach(
+                (window, outcomes) -> unsealedOutcomes.put(window, new OutcomeCounts.Builder().add(outcomes)));
+    }
+}

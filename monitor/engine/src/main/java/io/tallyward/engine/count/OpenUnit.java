@@ -1,0 +1,236 @@
+package io.tallyward.engine.count;
+
+import java.io.DataInput;
+import java.io.DataOutput;
+import java.io.IOException;
+import java.util.Arrays;
+
+/**
+ * A unit whose trial, if it has one, can still change: its standing first exposure, how often it was exposed to each
+ * variant, and its clicks. Clicks that can no longer be in time, whatever exposure may still arrive, are only counted.
+ */
+final class OpenUnit {
+
+    private static final int NO_TRIAL = -1;
+
+    private int variant = NO_TRIAL;
+    private long first;
+    private String firstId = "";
+
+    private final int[] exposures;
+    private final int[] tooLate;
+
+    private int clicks;
+    private long[] clickTimes = new long[2];
+    private byte[] clickVariants = new byte[2];
+    private long[] clickArrivals = new long[2];
+
+    OpenUnit(int variants) {
+        exposures = new int[variants];
+        tooLate = new int[variants];
+    }
+
+    boolean hasTrial() {
+        return variant != NO_TRIAL;
+    }
+
+    /** Variant of the standing first exposure. */
+    int variant() {
+        return variant;
+    }
+
+    /** Event time of the standing first exposure. */
+    long first() {
+        return first;
+    }
+
+    boolean isEmpty() {
+        return !hasTrial() && clicks == 0;
+    }
+
+    /** Events kept here whose outcome is not final yet. */
+    int events() {
+        return Arrays.stream(exposures).sum() + Arrays.stream(tooLate).sum() + clicks;
+    }
+
+    /**
+     * Adds an exposure. The earliest by event time stands; ties are broken by event identity, then by variant, so that the
+     * order of arrival does not matter.
+     */
+    void expose(int exposedVariant, long atMillis, String eventIdentity, long attributionMillis) {
+        exposures[exposedVariant]++;
+        if (!hasTrial() || isEarlier(exposedVariant, atMillis, eventIdentity)) {
+            variant = exposedVariant;
+            first = atMillis;
+            firstId = eventIdentity;
+            foldClicksAfter(atMillis + attributionMillis);
+        }
+    }
+
+    private boolean isEarlier(int exposedVariant, long atMillis, String eventIdentity) {
+        if (atMillis != first) {
+            return atMillis < first;
+        }
+        int byIdentity = eventIdentity.compareTo(firstId);
+        return byIdentity < 0 || (byIdentity == 0 && exposedVariant < variant);
+    }
+
+    /**
+     * Adds a click.
+     *
+     * @param arrivalMillis watermark of the click's source when it arrived: a click counts only if its source had not yet
+     *     passed the sealing of the trial's window, even where another source holds that window open
+     */
+    void click(int clickedVariant, long atMillis, long arrivalMillis, long attributionMillis) {
+        if (hasTrial() && atMillis > first + attributionMillis) {
+            tooLate[clickedVariant]++;
+            return;
+        }
+        if (clicks == clickTimes.length) {
+            clickTimes = Arrays.copyOf(clickTimes, 2 * clicks);
+            clickVariants = Arrays.copyOf(clickVariants, 2 * clicks);
+            clickArrivals = Arrays.copyOf(clickArrivals, 2 * clicks);
+        }
+        clickTimes[clicks] = atMillis;
+        clickVariants[clicks] = (byte) clickedVariant;
+        clickArrivals[clicks] = arrivalMillis;
+        clicks++;
+    }
+
+    /** A first exposure can only move to an earlier time, so a click past its attribution stays past it. */
+    private void foldClicksAfter(long lastInTime) {
+        int kept = 0;
+        for (int i = 0; i < clicks; i++) {
+            if (clickTimes[i] > lastInTime) {
+                tooLate[clickVariants[i]]++;
+            } else {
+                keepClick(i, kept++);
+            }
+        }
+        clicks = kept;
+    }
+
+    /**
+     * Removes the clicks before a moment that no standing exposure precedes: no exposure before that moment can still
+     * arrive.
+     *
+     * @return how many were removed; each is an orphan
+     */
+    int removeOrphansBefore(long endMillis) {
+        int kept = 0;
+        for (int i = 0; i < clicks; i++) {
+            boolean preceded = hasTrial() && first <= clickTimes[i];
+            if (preceded || clickTimes[i] >= endMillis) {
+                keepClick(i, kept++);
+            }
+        }
+        int removed = clicks - kept;
+        clicks = kept;
+        return removed;
+    }
+
+    private void keepClick(int from, int to) {
+        clickTimes[to] = clickTimes[from];
+        clickVariants[to] = clickVariants[from];
+        clickArrivals[to] = clickArrivals[from];
+    }
+
+    /** The latest click that still waits for an exposure, or {@code Long.MIN_VALUE} when there is none. */
+    long latestClick() {
+        long latest = Long.MIN_VALUE;
+        for (int i = 0; i < clicks; i++) {
+            latest = Math.max(latest, clickTimes[i]);
+        }
+        return latest;
+    }
+
+    /** Whether the trial is a success when its window is sealed at the given watermark. */
+    boolean successful(long sealAtMillis) {
+        for (int i = 0; i < clicks; i++) {
+            if (clickVariants[i] == variant && clickTimes[i] >= first && clickArrivals[i] < sealAtMillis) {
+                return true;
+            }
+        }
+        return false;
+    }
+
+    /**
+     * The final outcomes of all events kept here, once the trial can no longer change.
+     *
+     * @param sealAtMillis the watermark at which the trial's window is sealed
+     */
+    void settle(long sealAtMillis, OutcomeCounts.Builder outcomes) {
+        outcomes.add(Outcome.TRIAL, 1).add(Outcome.REPEAT, exposures[variant] - 1L);
+        outcomes.add(Outcome.EXPIRED, tooLate[variant]);
+        for (int other = 0; other < exposures.length; other++) {
+            if (other != variant) {
+                outcomes.add(Outcome.CROSSOVER, exposures[other] + (long) tooLate[other]);
+            }
+        }
+        boolean success = false;
+        for (int i = 0; i < clicks; i++) {
+            if (clickTimes[i] < first) {
+                outcomes.add(Outcome.ORPHAN, 1);
+            } else if (clickVariants[i] != variant) {
+                outcomes.add(Outcome.CROSSOVER, 1);
+            } else {
+                success = settleClickInTime(clickArrivals[i] < sealAtMillis, success, outcomes);
+            }
+        }
+    }
+
+    private static boolean settleClickInTime(boolean punctual, boolean success, OutcomeCounts.Builder outcomes) {
+        if (!punctual) {
+            outcomes.add(success ? Outcome.REPEAT : Outcome.LATE, 1);
+            return success;
+        }
+        outcomes.add(success ? Outcome.REPEAT : Outcome.SUCCESS, 1);
+        return true;
+    }
+
+    /** Every click time kept, for registering the windows in which it falls due. */
+    long[] clickTimes() {
+        return Arrays.copyOf(clickTimes, clicks);
+    }
+
+    void write(DataOutput out) throws IOException {
+        out.writeByte(variant);
+        if (hasTrial()) {
+            out.writeLong(first);
+            out.writeUTF(firstId);
+        }
+        for (int i = 0; i < exposures.length; i++) {
+            out.writeInt(exposures[i]);
+            out.writeInt(tooLate[i]);
+        }
+        out.writeInt(clicks);
+        for (int i = 0; i < clicks; i++) {
+            out.writeLong(clickTimes[i]);
+            out.writeByte(clickVariants[i]);
+            out.writeLong(clickArrivals[i]);
+        }
+    }
+
+    static OpenUnit read(DataInput in, int variants) throws IOException {
+        OpenUnit unit = new OpenUnit(variants);
+        unit.variant = in.readByte();
+        if (unit.hasTrial()) {
+            unit.first = in.readLong();
+            unit.firstId = in.readUTF();
+        }
+        for (int i = 0; i < variants; i++) {
+            unit.exposures[i] = in.readInt();
+            unit.tooLate[i] = in.readInt();
+        }
+        unit.clicks = in.readInt();
+        unit.clickTimes = new long[Math.max(2, unit.clicks)];
+        unit.clickVariants = new byte[Math.max(2, unit.clicks)];
+        unit.clickArrivals = new long[Math.max(2, unit.clicks)];
+        for (int i = 0; i < unit.clicks; i++) {
+            unit.clickTimes[i] = in.readLong();
+            unit.clickVariants[i] = in.readByte();
+            unit.clickArrivals[i] = in.readLong();
+        }
+        return unit;
+    }
+}

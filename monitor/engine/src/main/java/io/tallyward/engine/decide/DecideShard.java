@@ -1,0 +1,154 @@
+package io.tallyward.engine.decide;
+
+import io.tallyward.engine.count.TallyUpdate;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.engine.record.Notice;
+import io.tallyward.engine.shard.StateChange;
+import java.io.ByteArrayInputStream;
+import java.io.ByteArrayOutputStream;
+import java.io.DataInputStream;
+import java.io.DataOutputStream;
+import java.io.IOException;
+import java.io.UncheckedIOException;
+import java.util.ArrayList;
+import java.util.Collection;
+import java.util.HashMap;
+import java.util.LinkedHashMap;
+import java.util.List;
+import java.util.Map;
+
+/**
+ * Decides about the experiments whose tallies reach it. A pure state machine; not thread-safe.
+ *
+ * <p>Its durable form has two kinds of entry, told apart by the first byte of the key: where an experiment stands, one
+ * entry each, rewritten; and the looks taken, one entry each, written once.
+ */
+public final class DecideShard {
+
+    private static final byte EXPERIMENT = 'X';
+    private static final byte LOOK = 'L';
+
+    private final Map<String, Plan> plans = new LinkedHashMap<>();
+    private final Map<String, ExperimentDecider> deciders = new LinkedHashMap<>();
+    private final Map<String, Long> unplanned = new HashMap<>();
+
+    /**
+     * A shard that has decided nothing yet.
+     *
+     * @param plans the plans to decide under, one per experiment
+     */
+    public DecideShard(Collection<Plan> plans) {
+        plans.forEach(plan -> this.plans.put(plan.experiment(), plan));
+    }
+
+    /** Something written field by field. */
+    @FunctionalInterface
+    private interface Body {
+        void writeTo(DataOutputStream out) throws IOException;
+    }
+
+    /**
+     * Applies one earlier state change. Entries of an experiment without a plan are left alone.
+     *
+     * @throws io.tallyward.engine.plan.PlanChangedException when decisions were taken under another plan
+     */
+    public void restore(byte[] key, byte[] value) {
+        if (value == null) {
+            return;
+        }
+        try {
+            DataInputStream keyIn = new DataInputStream(new ByteArrayInputStream(key));
+            byte kind = keyIn.readByte();
+            String experiment = keyIn.readUTF();
+            if (!plans.containsKey(experiment)) {
+                return;
+            }
+            DataInputStream in = new DataInputStream(new ByteArrayInputStream(value));
+            if (kind == EXPERIMENT) {
+                decider(experiment).read(in);
+            } else if (kind == LOOK) {
+                decider(experiment).restoreLook(TakenLook.read(in));
+            } else {
+                throw new IllegalStateException("stored decisions: entry of unknown kind " + kind
+                        + " (expected: X or L); the state was written by another version");
+            }
+        } catch (IOException e) {
+            throw new UncheckedIOException("stored decisions: an entry is cut short", e);
+        }
+    }
+
+    /**
+     * Takes what one partition has sealed of one experiment. An update of an experiment without a plan is set aside and
+     * counted.
+     *
+     * @throws io.tallyward.engine.plan.PlanChangedException when it was counted under another plan
+     */
+    public void apply(TallyUpdate update) {
+        if (plans.containsKey(update.experiment())) {
+            decider(update.experiment()).apply(update);
+        } else {
+            unplanned.merge(update.experiment(), 1L, Long::sum);
+        }
+    }
+
+    private ExperimentDecider decider(String experiment) {
+        return deciders.computeIfAbsent(experiment, name -> new ExperimentDecider(plans.get(name)));
+    }
+
+    /** Everything to be made durable since this was last asked. */
+    public DecideEffects drain() {
+        List<StateChange> state = new ArrayList<>();
+        List<DecisionRecord> decisions = new ArrayList<>();
+        List<Notice> notices = new ArrayList<>();
+        deciders.forEach((experiment, decider) -> {
+            decisions.addAll(decider.takeDecisions());
+            notices.addAll(decider.takeNotices());
+            for (TakenLook look : decider.takeNewLooks()) {
+                state.add(new StateChange(lookKey(experiment, look), pack(look::write)));
+            }
+            if (decider.takeChanged()) {
+                state.add(new StateChange(experimentKey(experiment), pack(decider::write)));
+            }
+        });
+        return new DecideEffects(state, decisions, notices);
+    }
+
+    private static byte[] experimentKey(String experiment) {
+        return pack(out -> {
+            out.writeByte(EXPERIMENT);
+            out.writeUTF(experiment);
+        });
+    }
+
+    private static byte[] lookKey(String experiment, TakenLook look) {
+        return pack(out -> {
+            out.writeByte(LOOK);
+            out.writeUTF(experiment);
+            out.writeUTF(look.comparison().variant());
+            out.writeInt(look.look().number());
+        });
+    }
+
+    private static byte[] pack(Body body) {
+        ByteArrayOutputStream bytes = new ByteArrayOutputStream();
+        try (DataOutputStream out = new DataOutputStream(bytes)) {
+            body.writeTo(out);
+        } catch (IOException e) {
+            throw new UncheckedIOException("a write to memory failed", e);
+        }
+        return bytes.toByteArray();
+    }
+
+    /** Where every experiment stands that this shard has heard of, by name. */
+    public Map<String, ExperimentView> views() {
+        Map<String, ExperimentView> views = new LinkedHashMap<>();
+        deciders.forEach((experiment, decider) -> views.put(experiment, decider.view()));
+        return views;
+    }
+
+    /** Updates that were set aside because no plan names their experiment, by experiment. */
+    public Map<String, Long> unplanned() {
+        return Map.copyOf(unplanned);
+    }
+}

@@ -1,0 +1,311 @@
+package io.tallyward.engine.decide;
+
+import io.tallyward.engine.EngineVersion;
+import io.tallyward.engine.count.OutcomeCounts;
+import io.tallyward.engine.count.TallyUpdate;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanChangedException;
+import io.tallyward.engine.plan.PlanDigest;
+import io.tallyward.engine.plan.Variant;
+import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.engine.record.DecisionRecord.Occasion;
+import io.tallyward.engine.record.Notice;
+import io.tallyward.engine.record.RecordDigest;
+import io.tallyward.engine.record.Trust;
+import io.tallyward.engine.record.Verdict;
+import java.io.DataInput;
+import java.io.DataOutput;
+import java.io.IOException;
+import java.time.Instant;
+import java.util.ArrayList;
+import java.util.List;
+import java.util.Optional;
+
+/**
+ * Decides about one experiment. Takes its complete windows one by one in order; after each it judges the data, tells held
+ * verdicts if trust has returned, and takes the looks that are due. What it decides depends on nothing but these windows.
+ */
+final class ExperimentDecider {
+
+    private final Plan plan;
+    private final String planDigest;
+    private final long windowMillis;
+    private final NoticeWriter writer;
+
+    private final Completeness completeness;
+    private final CumulativeCounts counts;
+    private final SplitWatch splitWatch;
+    private final TrustWatch trustWatch;
+    private final List<ChallengerTest> tests = new ArrayList<>();
+
+    private long completeUntil;
+    private OutcomeCounts outcomes = OutcomeCounts.NONE;
+    private long idleSealed;
+    private TrustWatch.Judgement judgement = TrustWatch.Judgement.SOUND;
+    private int sequence;
+    private String lastHash = DecisionRecord.NO_PREVIOUS;
+    private int looksTaken;
+    private int looksDelayed;
+    private String delayReason = "";
+
+    private final List<DecisionRecord> decisions = new ArrayList<>();
+    private final List<Notice> notices = new ArrayList<>();
+    private final List<TakenLook> newLooks = new ArrayList<>();
+    private boolean changed;
+
+    ExperimentDecider(Plan plan) {
+        this.plan = plan;
+        planDigest = PlanDigest.of(plan);
+        windowMillis = plan.count().window().toMillis();
+        writer = new NoticeWriter(plan);
+        completeUntil = plan.run().from().toEpochMilli();
+        completeness = new Completeness(completeUntil);
+        counts = new CumulativeCounts(plan);
+        splitWatch = new SplitWatch(plan);
+        trustWatch = new TrustWatch(plan);
+        for (Variant challenger : plan.challengers()) {
+            tests.add(new ChallengerTest(plan, challenger));
+        }
+    }
+
+    /** Takes what one partition has sealed, and every window that is complete with it. */
+    void apply(TallyUpdate update) {
+        if (!update.planDigest().equals(planDigest)) {
+            throw new PlanChangedException(plan.experiment(), update.planDigest(), planDigest);
+        }
+        changed = true;
+        completeness.add(update);
+        long until = completeness.completeUntil();
+        while (completeUntil < until) {
+            complete(completeUntil);
+        }
+    }
+
+    private void complete(long windowStart) {
+        Completeness.Parts parts = completeness.take(windowStart);
+        completeUntil = windowStart + windowMillis;
+        parts.cells().forEach(counts::add);
+        outcomes = outcomes.plus(parts.outcomes());
+        idleSealed += parts.idle() ? 1 : 0;
+        trustWatch.observe(windowStart, completeUntil, parts.cells());
+        if (!parts.cells().isEmpty()) {
+            splitWatch.observe(counts);
+        }
+        decide();
+    }
+
+    private void decide() {
+        TrustWatch.Judgement before = judgement;
+        judgement = trustWatch.judge(completeUntil, splitWatch.sequentialPValue(), outcomes);
+        boolean trustChanged = judgement.trust() != before.trust();
+        boolean sound = judgement.trust() == Trust.SOUND;
+        List<ChallengerTest> settled = new ArrayList<>();
+        if (trustChanged && sound) {
+            tests.stream().filter(ChallengerTest::release).forEach(settled::add);
+        }
+        boolean stopToldBefore = tests.stream().anyMatch(test -> test.verdict().settled());
+        List<Comparison> looks = takeLooks(sound, settled);
+        boolean ended = looks.isEmpty() && endRun(sound, settled);
+        if (!looks.isEmpty()) {
+            looksTaken++;
+            write(Occasion.LOOK, looks);
+        } else if (ended) {
+            write(Occasion.END, looks);
+        } else if (trustChanged) {
+            write(Occasion.TRUST, looks);
+        } else {
+            return;
+        }
+        tell(trustChanged, stopToldBefore, settled);
+    }
+
+    private boolean runEnds() {
+        return completeUntil >= plan.run().end().toEpochMilli();
+    }
+
+    private List<Comparison> takeLooks(boolean sound, List<ChallengerTest> settled) {
+        List<Comparison> looks = new ArrayList<>();
+        for (ChallengerTest test : tests) {
+            if (!test.isOpen()) {
+                continue;
+            }
+            ChallengerTest.Attempt attempt = test.attempt(counts, completeUntil, runEnds(), sound);
+            if (attempt instanceof ChallengerTest.Attempt.Taken taken) {
+                looks.add(taken.look().comparison());
+                newLooks.add(taken.look());
+                if (test.verdict().settled()) {
+                    settled.add(test);
+                }
+            } else if (attempt instanceof ChallengerTest.Attempt.Delayed delayed) {
+                looksDelayed += delayed.begun() ? 1 : 0;
+                delayReason = delayed.reason();
+            }
+        }
+        return looks;
+    }
+
+    /** At the end of the run every test that could not take a last look is exhausted; returns whether there was one. */
+    private boolean endRun(boolean sound, List<ChallengerTest> settled) {
+        if (!runEnds()) {
+            return false;
+        }
+        boolean any = false;
+        for (ChallengerTest test : tests) {
+            if (test.isOpen()) {
+                test.exhaust(sound);
+                any = true;
+                if (test.verdict().settled()) {
+                    settled.add(test);
+                }
+            }
+        }
+        return any;
+    }
+
+    private void write(Occasion occasion, List<Comparison> looks) {
+        sequence++;
+        DecisionRecord record = RecordDigest.seal(new DecisionRecord(
+                plan.experiment(),
+                sequence,
+                occasion,
+                Instant.ofEpochMilli(completeUntil),
+                planDigest,
+                counts.list(),
+                outcomes,
+                idleSealed,
+                splitWatch.split(counts),
+                judgement.trust(),
+                judgement.reason(),
+                verdict(),
+                looks,
+                EngineVersion.CURRENT,
+                lastHash,
+                ""));
+        lastHash = record.hash();
+        decisions.add(record);
+    }
+
+    private void tell(boolean trustChanged, boolean stopToldBefore, List<ChallengerTest> settled) {
+        DecisionRecord record = decisions.get(decisions.size() - 1);
+        if (trustChanged) {
+            notices.add(writer.trust(record, stopToldBefore));
+        }
+        for (ChallengerTest test : settled) {
+            notices.add(writer.settled(
+                    record, test.name(), test.verdict(), test.lastLook().map(TakenLook::comparison)));
+        }
+    }
+
+    /**
+     * The verdict on the experiment as a whole, a summary of its comparisons: a benefit if any challenger has one, else
+     * harm if any does harm; once all are settled otherwise, futility if all are futile, else exhausted.
+     */
+    private Verdict verdict() {
+        List<Verdict> verdicts = tests.stream().map(ChallengerTest::verdict).toList();
+        if (verdicts.contains(Verdict.STOP_BENEFIT)) {
+            return Verdict.STOP_BENEFIT;
+        }
+        if (verdicts.contains(Verdict.STOP_HARM)) {
+            return Verdict.STOP_HARM;
+        }
+        if (verdicts.stream().allMatch(Verdict.STOP_FUTILITY::equals)) {
+            return Verdict.STOP_FUTILITY;
+        }
+        if (verdicts.stream().allMatch(Verdict::settled)) {
+            return Verdict.EXHAUSTED;
+        }
+        return verdicts.stream().allMatch(Verdict.WAITING::equals) ? Verdict.WAITING : Verdict.CONTINUE;
+    }
+
+    List<DecisionRecord> takeDecisions() {
+        return taken(decisions);
+    }
+
+    List<Notice> takeNotices() {
+        return taken(notices);
+    }
+
+    List<TakenLook> takeNewLooks() {
+        return taken(newLooks);
+    }
+
+    private static <T> List<T> taken(List<T> list) {
+        List<T> copy = List.copyOf(list);
+        list.clear();
+        return copy;
+    }
+
+    boolean takeChanged() {
+        boolean result = changed;
+        changed = false;
+        return result;
+    }
+
+    ExperimentView view() {
+        return ViewWriter.view(
+                plan,
+                planDigest,
+                completeUntil == plan.run().from().toEpochMilli()
+                        ? Optional.empty()
+                        : Optional.of(Instant.ofEpochMilli(completeUntil)),
+                counts.list(),
+                outcomes,
+                splitWatch.split(counts),
+                judgement,
+                verdict(),
+                tests,
+                new ViewWriter.Looks(looksTaken, looksDelayed, delayReason),
+                lastHash);
+    }
+
+    void restoreLook(TakenLook look) {
+        tests.stream()
+                .filter(test -> test.name().equals(look.comparison().variant()))
+                .forEach(test -> test.restoreLook(look));
+    }
+
+    void write(DataOutput out) throws IOException {
+        out.writeUTF(planDigest);
+        completeness.write(out);
+        counts.write(out);
+        splitWatch.write(out);
+        trustWatch.write(out);
+        out.writeLong(completeUntil);
+        outcomes.write(out);
+        out.writeLong(idleSealed);
+        out.writeUTF(judgement.trust().name());
+        out.writeUTF(judgement.reason());
+        out.writeInt(sequence);
+        out.writeUTF(lastHash);
+        out.writeInt(looksTaken);
+        out.writeInt(looksDelayed);
+        out.writeUTF(delayReason);
+        for (ChallengerTest test : tests) {
+            test.write(out);
+        }
+    }
+
+    void read(DataInput in) throws IOException {
+        String storedDigest = in.readUTF();
+        if (!storedDigest.equals(planDigest)) {
+            throw new PlanChangedException(plan.experiment(), storedDigest, planDigest);
+        }
+        completeness.read(in);
+        counts.read(in);
+        splitWatch.read(in);
+        trustWatch.read(in);
+        completeUntil = in.readLong();
+        outcomes = OutcomeCounts.read(in);
+        idleSealed = in.readLong();
+        judgement = new TrustWatch.Judgement(Trust.valueOf(in.readUTF()), in.readUTF());
+        sequence = in.readInt();
+        lastHash = in.readUTF();
+        looksTaken = in.readInt();
+        looksDelayed = in.readInt();
+        delayReason = in.readUTF();
+        for (ChallengerTest test : tests) {
+            test.read(in);
+        }
+    }
+}

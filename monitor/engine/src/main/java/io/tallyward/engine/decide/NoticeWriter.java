@@ -1,0 +1,194 @@
+package io.tallyward.engine.decide;
+
+import io.tallyward.engine.count.Outcome;
+import io.tallyward.engine.digest.Digest;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.Notice;
+import io.tallyward.engine.record.Notice.Kind;
+import io.tallyward.engine.record.Notice.Severity;
+import io.tallyward.engine.record.Verdict;
+import java.util.LinkedHashMap;
+import java.util.Locale;
+import java.util.Map;
+import java.util.Optional;
+
+/** Puts into words what people are told about a decision: what happened, how sure that is, what to do. */
+final class NoticeWriter {
+
+    private static final String CAUTION = "The plan's owner decides.";
+
+    private final Plan plan;
+
+    NoticeWriter(Plan plan) {
+        this.plan = plan;
+    }
+
+    /** A verdict on a challenger that is now final. */
+    Notice settled(DecisionRecord record, String variant, Verdict verdict, Optional<Comparison> look) {
+        String control = plan.control().name();
+        Map<String, String> facts = new LinkedHashMap<>();
+        look.ifPresent(comparison -> addFigures(facts, comparison));
+        addCounts(facts, record, variant);
+        return switch (verdict) {
+            case STOP_BENEFIT ->
+                notice(
+                        record,
+                        Kind.STOP,
+                        Severity.TICKET,
+                        variant,
+                        plan.experiment() + ": " + variant + " does better than " + control
+                                + "; the benefit boundary is crossed.",
+                        facts,
+                        "Look at the experiment's page, then end the experiment and keep " + variant + ". " + CAUTION);
+            case STOP_HARM ->
+                notice(
+                        record,
+                        Kind.STOP,
+                        Severity.PAGE,
+                        variant,
+                        plan.experiment() + ": " + variant + " does worse than " + control
+                                + "; the harm boundary is crossed.",
+                        facts,
+                        "Stop showing " + variant + " and tell the owner, " + plan.owner() + ". " + CAUTION);
+            case STOP_FUTILITY ->
+                notice(
+                        record,
+                        Kind.STOP,
+                        Severity.TICKET,
+                        variant,
+                        plan.experiment() + ": " + variant + " is unlikely to prove better than " + control
+                                + " within the planned information.",
+                        facts,
+                        "Consider ending the experiment; carrying on is allowed and costs no error. " + CAUTION);
+            case EXHAUSTED, WAITING, CONTINUE ->
+                notice(
+                        record,
+                        Kind.EXHAUSTED,
+                        Severity.INFO,
+                        variant,
+                        plan.experiment() + ": the planned information or time is used up, and " + variant
+                                + " has crossed no boundary.",
+                        facts,
+                        "End the experiment: it has not shown a difference of the size it was planned for. " + CAUTION);
+        };
+    }
+
+    /** Trust has changed for the worse, or has returned. */
+    Notice trust(DecisionRecord record, boolean stopTold) {
+        Map<String, String> facts = new LinkedHashMap<>();
+        facts.put("splitPValue", figure("%.3g", record.split().sequentialPValue()));
+        facts.put("events", Long.toString(record.outcomes().total()));
+        facts.put("crossovers", Long.toString(record.outcomes().get(Outcome.CROSSOVER)));
+        facts.put("late", Long.toString(record.outcomes().get(Outcome.LATE)));
+        for (VariantCount count : record.counts()) {
+            facts.merge("trials." + count.variant(), Long.toString(count.trials()), NoticeWriter::sum);
+        }
+        String told = stopTold ? " A stop was told earlier: review it." : "";
+        return switch (record.trust()) {
+            case SOUND ->
+                notice(
+                        record,
+                        Kind.RECOVERED,
+                        Severity.INFO,
+                        "",
+                        plan.experiment() + ": the data are trusted again.",
+                        facts,
+                        "Nothing to do; verdicts that were held are told now.");
+            case MISMATCH ->
+                trustNotice(
+                        record,
+                        Kind.MISMATCH,
+                        Severity.PAGE,
+                        facts,
+                        "Find where units are lost or assigned twice before believing any result." + told);
+            case STARVED ->
+                trustNotice(
+                        record,
+                        Kind.STARVED,
+                        Severity.PAGE,
+                        facts,
+                        "Check that the variant is still shown and that its events reach the topic." + told);
+            case CROSSOVER ->
+                trustNotice(
+                        record,
+                        Kind.CROSSOVER,
+                        Severity.TICKET,
+                        facts,
+                        "Check that a unit keeps its variant across pages, devices and releases." + told);
+            case LATE ->
+                trustNotice(
+                        record,
+                        Kind.LATE,
+                        Severity.TICKET,
+                        facts,
+                        "Check the delay of the pipeline; a longer grace needs a new experiment." + told);
+        };
+    }
+
+    private Notice trustNotice(
+            DecisionRecord record, Kind kind, Severity severity, Map<String, String> facts, String action) {
+        String summary = plan.experiment() + ": " + record.trustReason() + ".";
+        return notice(record, kind, severity, "", summary, facts, action);
+    }
+
+    private Notice notice(
+            DecisionRecord record,
+            Kind kind,
+            Severity severity,
+            String variant,
+            String summary,
+            Map<String, String> facts,
+            String action) {
+        String id = new Digest("notice/1")
+                .text(record.hash())
+                .text(kind.code())
+                .text(variant)
+                .hex();
+        return new Notice(
+                "notice_" + id.substring(0, 32),
+                kind,
+                severity,
+                plan.experiment(),
+                variant,
+                record.windowEnd(),
+                summary,
+                facts,
+                action,
+                record.hash());
+    }
+
+    private static void addFigures(Map<String, String> facts, Comparison look) {
+        facts.put("look", Integer.toString(look.look()));
+        facts.put("z", figure("%.3f", look.z()));
+        facts.put("upperBoundary", look.upper() == null ? "none" : figure("%.3f", look.upper()));
+        facts.put("lowerBoundary", look.lower() == null ? "none" : figure("%.3f", look.lower()));
+        facts.put("informationFraction", figure("%.3f", look.informationFraction()));
+        facts.put("alphaSpent", figure("%.4g", look.alphaSpent()));
+        facts.put("difference", figure("%+.5f", look.difference()));
+        facts.put(
+                "repeatedInterval",
+                (look.differenceLower() == null ? "-inf" : figure("%+.5f", look.differenceLower())) + " to "
+                        + (look.differenceUpper() == null ? "+inf" : figure("%+.5f", look.differenceUpper())));
+    }
+
+    private void addCounts(Map<String, String> facts, DecisionRecord record, String variant) {
+        for (VariantCount count : record.counts()) {
+            if (count.variant().equals(variant)
+                    || count.variant().equals(plan.control().name())) {
+                facts.merge("trials." + count.variant(), Long.toString(count.trials()), NoticeWriter::sum);
+                facts.merge("successes." + count.variant(), Long.toString(count.successes()), NoticeWriter::sum);
+            }
+        }
+    }
+
+    private static String sum(String left, String right) {
+        return Long.toString(Long.parseLong(left) + Long.parseLong(right));
+    }
+
+    private static String figure(String format, double value) {
+        return String.format(Locale.ROOT, format, value);
+    }
+}

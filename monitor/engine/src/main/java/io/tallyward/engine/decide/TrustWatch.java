@@ -1,0 +1,165 @@
+package io.tallyward.engine.decide;
+
+import io.tallyward.engine.count.Outcome;
+import io.tallyward.engine.count.OutcomeCounts;
+import io.tallyward.engine.count.WindowTally.Cell;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.TrustLimits;
+import io.tallyward.engine.record.Trust;
+import java.io.DataInput;
+import java.io.DataOutput;
+import java.io.IOException;
+import java.util.List;
+import java.util.Locale;
+
+/**
+ * Decides after every complete window whether the data can be believed. The worst complaint is the one that is told; a
+ * share that led to a complaint must fall well below its limit before trust returns, so that it does not flicker.
+ */
+final class TrustWatch {
+
+    /** Shares are not judged on fewer admitted events than this. */
+    private static final long EVENTS_TO_JUDGE = 1_000;
+
+    /** A variant with this many trials due to it and none seen is silent; by chance that has probability e^-20. */
+    private static final double TRIALS_DUE = 20;
+
+    /** A complaint about a share ends once the share is below this part of its limit. */
+    private static final double RECOVERY = 0.8;
+
+    private final Plan plan;
+    private final long[] silentSince;
+    private final double[] trialsDue;
+    private long streamSilentSince;
+    private boolean crossoverComplaint;
+    private boolean lateComplaint;
+
+    TrustWatch(Plan plan) {
+        this.plan = plan;
+        silentSince = new long[plan.variants().size()];
+        trialsDue = new double[plan.variants().size()];
+        streamSilentSince = plan.run().from().toEpochMilli();
+        java.util.Arrays.fill(silentSince, streamSilentSince);
+    }
+
+    /**
+     * What is thought of the data.
+     *
+     * @param trust the worst complaint, or sound
+     * @param reason the complaint in words; empty while sound
+     */
+    record Judgement(Trust trust, String reason) {
+
+        static final Judgement SOUND = new Judgement(Trust.SOUND, "");
+    }
+
+    /** Takes note of a complete window. */
+    void observe(long windowStart, long windowEnd, List<Cell> cells) {
+        long[] trials = new long[silentSince.length];
+        long all = 0;
+        for (Cell cell : cells) {
+            trials[cell.variant()] += cell.trials();
+            all += cell.trials();
+        }
+        if (all > 0) {
+            streamSilentSince = windowEnd;
+        }
+        double[] shares = plan.sharesIn(plan.epochAt(windowStart));
+        for (int variant = 0; variant < trials.length; variant++) {
+            if (trials[variant] > 0) {
+                silentSince[variant] = windowEnd;
+                trialsDue[variant] = 0;
+            } else {
+                trialsDue[variant] += all * shares[variant];
+            }
+        }
+    }
+
+    /** Judges the data as of the end of a window. */
+    Judgement judge(long windowEnd, double splitPValue, OutcomeCounts outcomes) {
+        TrustLimits limits = plan.trust();
+        long admitted = outcomes.total();
+        double crossovers = share(outcomes.get(Outcome.CROSSOVER), admitted);
+        double late = share(outcomes.get(Outcome.LATE), admitted);
+        crossoverComplaint = exceeds(crossovers, limits.crossoverShare(), admitted, crossoverComplaint);
+        lateComplaint = exceeds(late, limits.lateShare(), admitted, lateComplaint);
+        if (splitPValue <= plan.splitCheck().alpha()) {
+            return new Judgement(
+                    Trust.MISMATCH,
+                    text(
+                            "the observed split contradicts the planned one (sequential p-value %.2g, limit %.2g)",
+                            splitPValue, plan.splitCheck().alpha()));
+        }
+        if (crossoverComplaint) {
+            return new Judgement(
+                    Trust.CROSSOVER,
+                    text(
+                            "%.2f %% of events are of units under another variant than their first (limit %.2f %%)",
+                            100 * crossovers, 100 * limits.crossoverShare()));
+        }
+        String silent = silence(windowEnd, limits.starvedAfter().toMillis());
+        if (!silent.isEmpty()) {
+            return new Judgement(Trust.STARVED, silent);
+        }
+        if (lateComplaint) {
+            return new Judgement(
+                    Trust.LATE,
+                    text(
+                            "%.2f %% of events came after their window was sealed (limit %.2f %%)",
+                            100 * late, 100 * limits.lateShare()));
+        }
+        return Judgement.SOUND;
+    }
+
+    private static boolean exceeds(double share, double limit, long admitted, boolean complaint) {
+        return admitted >= EVENTS_TO_JUDGE && share > (complaint ? RECOVERY * limit : limit);
+    }
+
+    private static double share(long part, long whole) {
+        return whole == 0 ? 0 : (double) part / whole;
+    }
+
+    private String silence(long windowEnd, long limitMillis) {
+        if (windowEnd - streamSilentSince >= limitMillis) {
+            return "no trial of any variant for " + hours(windowEnd - streamSilentSince);
+        }
+        for (int variant = 0; variant < silentSince.length; variant++) {
+            if (windowEnd - silentSince[variant] >= limitMillis && trialsDue[variant] >= TRIALS_DUE) {
+                return text(
+                        "no trial of %s for %s, although about %.0f were due",
+                        plan.variants().get(variant).name(),
+                        hours(windowEnd - silentSince[variant]),
+                        trialsDue[variant]);
+            }
+        }
+        return "";
+    }
+
+    private static String hours(long millis) {
+        return text("%.1f h", millis / 3_600_000.0);
+    }
+
+    private static String text(String format, Object... values) {
+        return String.format(Locale.ROOT, format, values);
+    }
+
+    void write(DataOutput out) throws IOException {
+        for (int variant = 0; variant < silentSince.length; variant++) {
+            out.writeLong(silentSince[variant]);
+            out.writeDouble(trialsDue[variant]);
+        }
+        out.writeLong(streamSilentSince);
+        out.writeBoolean(crossoverComplaint);
+        out.writeBoolean(lateComplaint);
+    }
+
+    void read(DataInput in) throws IOException {
+        for (int variant = 0; variant < silentSince.length; variant++) {
+            silentSince[variant] = in.readLong();
+            trialsDue[variant] = in.readDouble();
+        }
+        streamSilentSince = in.readLong();
+        crossoverComplaint = in.readBoolean();
+        lateComplaint = in.readBoolean();
+    }
+}

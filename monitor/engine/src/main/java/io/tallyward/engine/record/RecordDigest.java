@@ -1,0 +1,88 @@
+package io.tallyward.engine.record;
+
+import io.tallyward.engine.digest.Digest;
+import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.engine.record.DecisionRecord.Split;
+import io.tallyward.engine.record.DecisionRecord.VariantCount;
+
+/** The digest that chains decision records: it covers every field of a record but the digest itself. */
+public final class RecordDigest {
+
+    private RecordDigest() {}
+
+    /** SHA-256 over the meaning of a record, as 64 hexadecimal digits; the record's own {@code hash} is left out. */
+    public static String of(DecisionRecord record) {
+        Digest digest = new Digest("decision/1");
+        digest.text(record.experiment())
+                .number(record.sequence())
+                .text(record.occasion().code())
+                .number(record.windowEnd().toEpochMilli())
+                .text(record.planDigest());
+        digest.number(record.counts().size());
+        for (VariantCount count : record.counts()) {
+            digest.number(count.epoch())
+                    .text(count.variant())
+                    .number(count.trials())
+                    .number(count.successes());
+        }
+        for (long outcome : record.outcomes().toArray()) {
+            digest.number(outcome);
+        }
+        digest.number(record.idleSealed());
+        add(digest, record.split());
+        digest.text(record.trust().code())
+                .text(record.trustReason())
+                .text(record.verdict().code());
+        digest.number(record.comparisons().size());
+        record.comparisons().forEach(comparison -> add(digest, comparison));
+        digest.text(record.engineVersion()).text(record.previous());
+        return digest.hex();
+    }
+
+    /** The same record with its digest filled in. */
+    public static DecisionRecord seal(DecisionRecord record) {
+        return new DecisionRecord(
+                record.experiment(),
+                record.sequence(),
+                record.occasion(),
+                record.windowEnd(),
+                record.planDigest(),
+                record.counts(),
+                record.outcomes(),
+                record.idleSealed(),
+                record.split(),
+                record.trust(),
+                record.trustReason(),
+                record.verdict(),
+                record.comparisons(),
+                record.engineVersion(),
+                record.previous(),
+                of(record));
+    }
+
+    private static void add(Digest digest, Split split) {
+        digest.real(split.logBayesFactor())
+                .real(split.sequentialPValue())
+                .real(split.pearsonChiSquare())
+                .number(split.pearsonDegreesOfFreedom())
+                .real(split.pearsonPValue());
+    }
+
+    private static void add(Digest digest, Comparison comparison) {
+        digest.text(comparison.variant())
+                .number(comparison.look())
+                .real(comparison.z())
+                .real(comparison.information())
+                .real(comparison.informationFraction())
+                .real(comparison.alphaSpent())
+                .optional(comparison.upper())
+                .optional(comparison.lower())
+                .optional(comparison.futility())
+                .real(comparison.difference())
+                .optional(comparison.differenceLower())
+                .optional(comparison.differenceUpper())
+                .text(comparison.verdict().code())
+                .text(comparison.held() == null ? "" : comparison.held().code())
+                .text(comparison.reason());
+    }
+}

@@ -1,0 +1,186 @@
+package io.tallyward.service.config;
+
+import io.tallyward.engine.event.EventKind;
+import io.tallyward.service.config.document.Checked;
+import io.tallyward.service.config.document.DocumentReader;
+import io.tallyward.service.config.document.Node.Mapping;
+import io.tallyward.service.config.document.Problems;
+import io.tallyward.service.config.document.Values;
+import java.net.URI;
+import java.net.URISyntaxException;
+import java.nio.file.Path;
+import java.util.HashSet;
+import java.util.List;
+import java.util.Map;
+import java.util.Optional;
+import java.util.Set;
+
+/** Reads the configuration file. */
+public final class ConfigReader {
+
+    /** Client properties that would break the exactly-once contract if somebody else set them. */
+    private static final Set<String> RESERVED_PROPERTIES = Set.of(
+            "bootstrap.servers",
+            "group.id",
+            "group.instance.id",
+            "group.protocol",
+            "client.id",
+            "enable.auto.commit",
+            "auto.offset.reset",
+            "isolation.level",
+            "transactional.id",
+            "enable.idempotence",
+            "acks",
+            "key.serializer",
+            "value.serializer",
+            "key.deserializer",
+            "value.deserializer");
+
+    /** What the service appends to its name to name its own topics. */
+    private static final List<String> INTERNAL_TOPICS =
+            List.of("count-state", "tallies", "decide-state", "decisions", "notices", "rejects");
+
+    private final Map<String, String> environment;
+
+    /** A reader that looks up secrets in the given environment variables. */
+    public ConfigReader(Map<String, String> environment) {
+        this.environment = Map.copyOf(environment);
+    }
+
+    /** The configuration in a file, or everything that is wrong with it. */
+    public Checked<ServiceConfig> read(Path file) {
+        Problems problems = new Problems(file.toString());
+        Optional<Mapping> root = new DocumentReader(problems).read(file);
+        if (root.isEmpty()) {
+            return Checked.refused(problems.list());
+        }
+        Values values = ConfigKeys.SHAPE.readRoot(root.get(), problems);
+        Path directory = file.toAbsolutePath().normalize().getParent();
+        values.find(ConfigKeys.KAFKA).ifPresent(ConfigReader::checkProperties);
+        values.find(ConfigKeys.INPUT).ifPresent(input -> checkInput(values, input));
+        SecretReader secrets = new SecretReader(directory, environment);
+        Optional<Secret> unitKey = values.find(ConfigKeys.UNIT_KEY).flatMap(secrets::unitKey);
+        Optional<WebhookConfig> webhook = values.find(ConfigKeys.WEBHOOK).flatMap(section -> webhook(section, secrets));
+        return problems.isEmpty()
+                ? Checked.of(config(file, directory, values, webhook, unitKey))
+                : Checked.refused(problems.list());
+    }
+
+    private static ServiceConfig config(
+            Path file, Path directory, Values values, Optional<WebhookConfig> webhook, Optional<Secret> unitKey) {
+        Values kafka = values.get(ConfigKeys.KAFKA);
+        Values http = values.get(ConfigKeys.HTTP);
+        return new ServiceConfig(
+                file,
+                values.get(ConfigKeys.NAME),
+                new KafkaConfig(
+                        kafka.get(ConfigKeys.Kafka.BOOTSTRAP_SERVERS),
+                        kafka.find(ConfigKeys.Kafka.PROPERTIES).orElse(Map.of())),
+                input(values.get(ConfigKeys.INPUT)),
+                directory.resolve(values.get(ConfigKeys.PLANS)).normalize(),
+                values.get(ConfigKeys.COMMIT_INTERVAL),
+                values.get(ConfigKeys.WORKERS),
+                new HttpConfig(http.get(ConfigKeys.Http.HOST), http.get(ConfigKeys.Http.PORT)),
+                webhook,
+                unitKey);
+    }
+
+    private static InputConfig input(Values input) {
+        Values kinds = input.get(ConfigKeys.Input.KINDS);
+        return new InputConfig(
+                input.get(ConfigKeys.Input.TOPICS),
+                input.get(ConfigKeys.Input.START),
+                fields(input.get(ConfigKeys.Input.FIELDS)),
+                Map.of(
+                        EventKind.VIEW, Set.copyOf(kinds.get(ConfigKeys.Kinds.VIEW)),
+                        EventKind.CLICK, Set.copyOf(kinds.get(ConfigKeys.Kinds.CLICK))),
+                input.get(ConfigKeys.Input.MAX_SKEW),
+                input.get(ConfigKeys.Input.IDLE_AFTER),
+                input.get(ConfigKeys.Input.MAX_EVENT_BYTES));
+    }
+
+    private static FieldPointers fields(Values fields) {
+        return new FieldPointers(
+                fields.get(ConfigKeys.Fields.KIND),
+                fields.get(ConfigKeys.Fields.EXPERIMENT),
+                fields.get(ConfigKeys.Fields.VARIANT),
+                fields.get(ConfigKeys.Fields.UNIT),
+                fields.get(ConfigKeys.Fields.ID),
+                fields.get(ConfigKeys.Fields.AT),
+                fields.get(ConfigKeys.Fields.SOURCE),
+                fields.get(ConfigKeys.Fields.VIEW),
+                fields.get(ConfigKeys.Fields.SEGMENTS));
+    }
+
+    private static void checkProperties(Values kafka) {
+        kafka.find(ConfigKeys.Kafka.PROPERTIES).stream()
+                .flatMap(properties -> properties.keySet().stream())
+                .filter(RESERVED_PROPERTIES::contains)
+                .sorted()
+                .forEach(name -> kafka.refuse(
+                        ConfigKeys.Kafka.PROPERTIES, name, "properties that the service does not set itself"));
+    }
+
+    private static void checkInput(Values values, Values input) {
+        List<String> topics = input.find(ConfigKeys.Input.TOPICS).orElse(List.of());
+        String prefix = values.find(ConfigKeys.NAME).orElse("") + "-";
+        Set<String> seen = new HashSet<>();
+        for (String topic : topics) {
+            if (!seen.add(topic)) {
+                input.refuse(ConfigKeys.Input.TOPICS, topic + " twice", "each topic once");
+            }
+            if (topic.startsWith(prefix) && INTERNAL_TOPICS.contains(topic.substring(prefix.length()))) {
+                input.refuse(ConfigKeys.Input.TOPICS, topic, "topics that the service does not write itself");
+            }
+        }
+        input.find(ConfigKeys.Input.KINDS).ifPresent(ConfigReader::checkKinds);
+    }
+
+    private static void checkKinds(Values kinds) {
+        Set<String> views = Set.copyOf(kinds.find(ConfigKeys.Kinds.VIEW).orElse(List.of()));
+        for (String click : Set.copyOf(kinds.find(ConfigKeys.Kinds.CLICK).orElse(List.of()))) {
+            if (views.contains(click)) {
+                kinds.refuse(ConfigKeys.Kinds.CLICK, click, "texts that do not mean a view as well");
+            }
+        }
+    }
+
+    private static Optional<WebhookConfig> webhook(Values section, SecretReader secrets) {
+        Optional<Secret> secret = secrets.signingSecret(section);
+        boolean allowHttp = section.find(ConfigKeys.Webhook.ALLOW_HTTP).orElse(false);
+        Optional<URI> url = section.find(ConfigKeys.Webhook.URL).flatMap(text -> url(section, text, allowHttp));
+        return secret.flatMap(key -> url.map(address -> new WebhookConfig(
+                address,
+                key,
+                allowHttp,
+                section.find(ConfigKeys.Webhook.ALLOW_PRIVATE).orElse(false))));
+    }
+
+    /** Refuses without showing the address, whose path or query often is a password in disguise. */
+    private static Optional<URI> url(Values section, String text, boolean allowHttp) {
+        URI url;
+        try {
+            url = new URI(text);
+        } catch (URISyntaxException e) {
+            section.refuse(ConfigKeys.Webhook.URL, "not an address", "https address such as https://host.example/path");
+            return Optional.empty();
+        }
+        if ("http".equals(url.getScheme()) && !allowHttp) {
+            section.refuse(
+                    ConfigKeys.Webhook.URL,
+                    "an http address",
+                    "https address",
+                    "To send without TLS all the same, set webhook.allow-http: true.");
+            return Optional.empty();
+        }
+        boolean known = "https".equals(url.getScheme()) || "http".equals(url.getScheme());
+        if (!known || url.getHost() == null || url.getRawUserInfo() != null || url.getRawFragment() != null) {
+            section.refuse(
+                    ConfigKeys.Webhook.URL,
+                    "not a plain web address",
+                    "https address with a host, without user name and fragment");
+            return Optional.empty();
+        }
+        return Optional.of(url);
+    }
+}

@@ -1,0 +1,20 @@
+package io.tallyward.service.config;
+
+import java.net.URI;
+
+/**
+ * Whom to tell. Its text leaves out the path of the address, which often is a password in disguise.
+ *
+ * @param url where to post notices
+ * @param secret key of their signature
+ * @param allowHttp whether the address may be plain http
+ * @param allowPrivate whether the address may lie in a private network
+ */
+public record WebhookConfig(URI url, Secret secret, boolean allowHttp, boolean allowPrivate) {
+
+    @Override
+    public String toString() {
+        return "WebhookConfig[url=" + url.getScheme() + "://" + url.getRawAuthority() + "/..., secret=" + secret
+                + ", allowHttp=" + allowHttp + ", allowPrivate=" + allowPrivate + "]";
+    }
+}

@@ -1,0 +1,221 @@
+package io.tallyward.service.plan;
+
+import static io.tallyward.service.config.document.ScalarType.written;
+
+import io.tallyward.engine.plan.TestPlan.Better;
+import io.tallyward.service.config.document.Key;
+import io.tallyward.service.config.document.Values;
+import java.time.Duration;
+import java.time.Instant;
+import java.util.Collection;
+import java.util.List;
+import java.util.Map;
+import java.util.Optional;
+import java.util.TreeSet;
+
+/** What must hold between the keys of a plan. Rules about keys that were refused already are left out. */
+final class PlanRules {
+
+    /** How far shares may add up to something else than 1: rounding of decimals in binary, and nothing more. */
+    private static final double SHARE_TOLERANCE = 1e-9;
+
+    /** More looks than this say nothing new and make the design slow to compute. */
+    private static final long MAX_LOOKS = 1_000;
+
+    private final Values plan;
+    private final Optional<Duration> window;
+
+    private PlanRules(Values plan) {
+        this.plan = plan;
+        this.window = plan.find(PlanKeys.COUNT)
+                .flatMap(count -> count.find(PlanKeys.Count.WINDOW))
+                .filter(width -> isMultiple(Duration.ofDays(1), width));
+    }
+
+    /** Refuses what breaks a rule. */
+    static void check(Values plan) {
+        PlanRules rules = new PlanRules(plan);
+        plan.find(PlanKeys.COUNT).ifPresent(rules::checkCount);
+        plan.find(PlanKeys.VARIANTS).ifPresent(rules::checkVariants);
+        plan.find(PlanKeys.TEST).ifPresent(rules::checkTest);
+        plan.find(PlanKeys.RUN).ifPresent(rules::checkRun);
+        plan.find(PlanKeys.LOOKS).ifPresent(rules::checkLooks);
+        plan.find(PlanKeys.EPOCHS).ifPresent(rules::checkEpochs);
+    }
+
+    private void checkCount(Values count) {
+        count.find(PlanKeys.Count.BY).filter(by -> !by.equals("unit")).ifPresent(by -> {
+            String remedy = by.equals("view") ? "This version counts by unit only." : "";
+            count.refuse(PlanKeys.Count.BY, by, "unit", remedy);
+        });
+        count.find(PlanKeys.Count.WINDOW)
+                .filter(width -> !isMultiple(Duration.ofDays(1), width))
+                .ifPresent(
+                        width -> count.refuse(PlanKeys.Count.WINDOW, written(width), "a duration that divides a day"));
+    }
+
+    private void checkVariants(Map<String, Values> variants) {
+        long controls = variants.values().stream()
+                .filter(variant -> variant.find(PlanKeys.Variants.CONTROL).orElse(false))
+                .count();
+        if (controls != 1) {
+            plan.refuse(
+                    PlanKeys.VARIANTS,
+                    controls == 0 ? "no control" : controls + " controls",
+                    "exactly one variant with control: true");
+        }
+        List<Double> shares = variants.values().stream()
+                .flatMap(variant -> variant.find(PlanKeys.Variants.SHARE).stream())
+                .toList();
+        if (shares.size() == variants.size()) {
+            checkSum(plan, PlanKeys.VARIANTS, shares);
+        }
+    }
+
+    private void checkTest(Values test) {
+        Optional<Double> baseline = test.find(PlanKeys.Test.BASELINE);
+        Optional<Double> effect = test.find(PlanKeys.Test.SMALLEST_EFFECT);
+        if (baseline.isEmpty() || effect.isEmpty()) {
+            return;
+        }
+        boolean lower = plan.find(PlanKeys.BETTER).filter(Better.LOWER::equals).isPresent();
+        double rate = lower ? baseline.get() - effect.get() : baseline.get() + effect.get();
+        if (!(rate > 0 && rate < 1)) {
+            test.refuse(
+                    PlanKeys.Test.SMALLEST_EFFECT,
+                    String.valueOf(effect.get()),
+                    lower ? "less than the baseline" : "a number that leaves baseline + smallest-effect below 1");
+        }
+    }
+
+    private void checkRun(Values run) {
+        Optional<Duration> atMost = run.find(PlanKeys.Run.AT_MOST);
+        run.find(PlanKeys.Run.FROM).filter(this::isUnaligned).ifPresent(from -> {
+            run.refuse(PlanKeys.Run.FROM, from.toString(), aligned());
+        });
+        atMost.filter(length -> window.isPresent() && !isMultiple(length, window.get()))
+                .ifPresent(length -> run.refuse(PlanKeys.Run.AT_MOST, written(length), multiple()));
+        run.find(PlanKeys.Run.AT_LEAST)
+                .filter(least -> atMost.isPresent() && least.compareTo(atMost.get()) > 0)
+                .ifPresent(least -> run.refuse(
+                        PlanKeys.Run.AT_LEAST,
+                        written(least),
+                        "at most run.at-most, " + written(atMost.orElseThrow())));
+    }
+
+    private void checkLooks(Values looks) {
+        Optional<Duration> every = looks.find(PlanKeys.Looks.EVERY);
+        Optional<List<Double>> fractions = looks.find(PlanKeys.Looks.FRACTIONS);
+        if (looks.gives(PlanKeys.Looks.EVERY) == looks.gives(PlanKeys.Looks.FRACTIONS)) {
+            looks.refuse(
+                    looks.gives(PlanKeys.Looks.EVERY) ? "both are given" : "neither is given",
+                    "either every or fractions");
+        }
+        every.ifPresent(interval -> checkInterval(looks, interval));
+        fractions
+                .filter(list -> !isAscendingToOne(list))
+                .ifPresent(list ->
+                        looks.refuse(PlanKeys.Looks.FRACTIONS, list.toString(), "ascending fractions, the last one 1"));
+    }
+
+    private void checkInterval(Values looks, Duration interval) {
+        if (window.isPresent() && !isMultiple(interval, window.get())) {
+            looks.refuse(PlanKeys.Looks.EVERY, written(interval), multiple());
+        }
+        Optional<Duration> atMost = plan.find(PlanKeys.RUN).flatMap(run -> run.find(PlanKeys.Run.AT_MOST));
+        if (atMost.isEmpty()) {
+            return;
+        }
+        String length = written(atMost.get());
+        if (interval.compareTo(atMost.get()) > 0) {
+            looks.refuse(PlanKeys.Looks.EVERY, written(interval), "at most run.at-most, " + length);
+        }
+        if (atMost.get().dividedBy(interval) > MAX_LOOKS) {
+            looks.refuse(
+                    PlanKeys.Looks.EVERY,
+                    written(interval),
+                    "at most " + MAX_LOOKS + " looks in run.at-most, " + length,
+                    "Choose a longer interval.");
+        }
+    }
+
+    private void checkEpochs(List<Values> epochs) {
+        Optional<Values> run = plan.find(PlanKeys.RUN);
+        Optional<Instant> start = run.flatMap(section -> section.find(PlanKeys.Run.FROM));
+        Optional<Instant> end = start.flatMap(from ->
+                run.flatMap(section -> section.find(PlanKeys.Run.AT_MOST)).map(from::plus));
+        Optional<Instant> previous = start;
+        for (Values epoch : epochs) {
+            Optional<Instant> from = epoch.find(PlanKeys.Epoch.FROM);
+            if (from.isPresent()) {
+                checkMoment(epoch, from.get(), previous, end);
+                previous = from;
+            }
+            epoch.find(PlanKeys.Epoch.SHARES).ifPresent(shares -> checkShares(epoch, shares));
+        }
+    }
+
+    private void checkMoment(Values epoch, Instant from, Optional<Instant> previous, Optional<Instant> end) {
+        if (isUnaligned(from)) {
+            epoch.refuse(PlanKeys.Epoch.FROM, from.toString(), aligned());
+        }
+        if (previous.isPresent() && !from.isAfter(previous.get())) {
+            epoch.refuse(
+                    PlanKeys.Epoch.FROM,
+                    from.toString(),
+                    "after " + previous.get() + ", where the epoch before starts");
+        }
+        if (end.isPresent() && !from.isBefore(end.get())) {
+            epoch.refuse(PlanKeys.Epoch.FROM, from.toString(), "before the end of the run, " + end.get());
+        }
+    }
+
+    private void checkShares(Values epoch, Map<String, Double> shares) {
+        Optional<Map<String, Values>> variants = plan.find(PlanKeys.VARIANTS);
+        if (variants.isPresent() && !variants.get().keySet().equals(shares.keySet())) {
+            epoch.refuse(
+                    PlanKeys.Epoch.SHARES,
+                    "shares of " + names(shares.keySet()),
+                    "the share of every variant: " + names(variants.get().keySet()));
+            return;
+        }
+        checkSum(epoch, PlanKeys.Epoch.SHARES, shares.values());
+    }
+
+    private static void checkSum(Values values, Key<?> key, Collection<Double> shares) {
+        double sum = shares.stream().mapToDouble(Double::doubleValue).sum();
+        if (!(Math.abs(sum - 1) <= SHARE_TOLERANCE)) {
+            values.refuse(key, "shares that add up to " + sum, "shares that add up to 1");
+        }
+    }
+
+    private boolean isUnaligned(Instant moment) {
+        return window.filter(width -> Math.floorMod(moment.toEpochMilli(), width.toMillis()) != 0)
+                .isPresent();
+    }
+
+    private static boolean isMultiple(Duration whole, Duration part) {
+        return whole.toMillis() % part.toMillis() == 0;
+    }
+
+    private static boolean isAscendingToOne(List<Double> fractions) {
+        for (int i = 1; i < fractions.size(); i++) {
+            if (!(fractions.get(i) > fractions.get(i - 1))) {
+                return false;
+            }
+        }
+        return fractions.get(fractions.size() - 1) == 1;
+    }
+
+    private String aligned() {
+        return "a moment at the start of a window of " + written(window.orElseThrow());
+    }
+
+    private String multiple() {
+        return "a multiple of count.window, " + written(window.orElseThrow());
+    }
+
+    private static String names(Collection<String> names) {
+        return String.join(", ", new TreeSet<>(names));
+    }
+}

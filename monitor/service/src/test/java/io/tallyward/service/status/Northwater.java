@@ -1,0 +1,256 @@
+package io.tallyward.service.status;
+
+import io.tallyward.engine.count.OutcomeCounts;
+import io.tallyward.engine.decide.ExperimentView;
+import io.tallyward.engine.decide.ExperimentView.LookPoint;
+import io.tallyward.engine.plan.AllocationEpoch;
+import io.tallyward.engine.plan.CountRule;
+import io.tallyward.engine.plan.FutilityPlan;
+import io.tallyward.engine.plan.LookSchedule;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.Run;
+import io.tallyward.engine.plan.Spending;
+import io.tallyward.engine.plan.SplitCheckPlan;
+import io.tallyward.engine.plan.TestPlan;
+import io.tallyward.engine.plan.TrustLimits;
+import io.tallyward.engine.plan.Variant;
+import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.engine.record.DecisionRecord.Split;
+import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.Trust;
+import io.tallyward.engine.record.Verdict;
+import java.time.Duration;
+import java.time.Instant;
+import java.util.ArrayList;
+import java.util.LinkedHashMap;
+import java.util.List;
+import java.util.Map;
+import java.util.Optional;
+
+/**
+ * Experiments of Northwater, an invented ferry operator. All figures are made up to look plausible together; none was
+ * computed by the program.
+ */
+public final class Northwater {
+
+    public static final Instant START = Instant.parse("2026-05-04T00:00:00Z");
+
+    private static final double[] BENEFIT = {0.9, 0.4, 1.3, 1.1, 1.9, 2.2, 1.8, 2.4, 2.9, 3.1, 3.3};
+    private static final double[] NOTHING = {-0.8, 0.3, 0.9, 0.2, -0.4, 0.1, 0.5, -0.2};
+    private static final double[] HARM = {-1.2, -2.1, -2.6, -3.3, -3.9};
+
+    private Northwater() {}
+
+    /** One experiment in each of the situations people will meet, by name. */
+    public static Map<String, ExperimentView> all() {
+        Map<String, ExperimentView> all = new LinkedHashMap<>();
+        List.of(quayBanner(), fareChip(), returnPrompt(), cabinUpsell(), deckMap(), pierMap())
+                .forEach(view -> all.put(view.plan().experiment(), view));
+        return all;
+    }
+
+    /** A benefit that was found. */
+    public static ExperimentView quayBanner() {
+        Plan plan = plan(
+                "quay-banner",
+                "Does the wide quay photo bring more timetable clicks?",
+                List.of(new Variant("plain", 0.5, true), new Variant("wide", 0.5, false)),
+                List.of());
+        List<VariantCount> counts =
+                List.of(new VariantCount(0, "plain", 30_412, 3_655), new VariantCount(0, "wide", 30_377, 3_919));
+        return view(plan, counts, Trust.SOUND, "", Verdict.STOP_BENEFIT, Map.of("wide", BENEFIT));
+    }
+
+    /** No effect so far. */
+    public static ExperimentView fareChip() {
+        Plan plan = plan(
+                "fare-chip",
+                "Does a chip with the lowest fare bring more bookings?",
+                List.of(new Variant("none", 0.5, true), new Variant("chip", 0.5, false)),
+                List.of());
+        List<VariantCount> counts =
+                List.of(new VariantCount(0, "none", 22_105, 2_641), new VariantCount(0, "chip", 22_240, 2_643));
+        return view(plan, counts, Trust.SOUND, "", Verdict.CONTINUE, Map.of("chip", NOTHING));
+    }
+
+    /** Harm that was found. */
+    public static ExperimentView returnPrompt() {
+        Plan plan = plan(
+                "return-prompt",
+                "Does asking for the return trip first sell more return trips?",
+                List.of(new Variant("later", 0.5, true), new Variant("first", 0.5, false)),
+                List.of());
+        List<VariantCount> counts =
+                List.of(new VariantCount(0, "later", 14_020, 1_690), new VariantCount(0, "first", 13_991, 1_480));
+        return view(plan, counts, Trust.SOUND, "", Verdict.STOP_HARM, Map.of("first", HARM));
+    }
+
+    /** A broken split, with a verdict that waits. */
+    public static ExperimentView cabinUpsell() {
+        Plan plan = plan(
+                "cabin-upsell",
+                "Does showing the cabin inside sell more cabins?",
+                List.of(new Variant("outside", 0.5, true), new Variant("inside", 0.5, false)),
+                List.of());
+        List<VariantCount> counts =
+                List.of(new VariantCount(0, "outside", 18_930, 2_280), new VariantCount(0, "inside", 17_604, 2_301));
+        return view(
+                plan,
+                counts,
+                Trust.MISMATCH,
+                "The split contradicts the plan (p = 4.1e-9, limit 0.001) since the window that ends at"
+                        + " 2026-05-06T14:35:00Z; worst segment: platform=app.",
+                Verdict.CONTINUE,
+                Map.of("inside", new double[] {0.7, 1.8, 2.6, 3.4, 4.2}));
+    }
+
+    /** Three variants and a planned change of the split. */
+    public static ExperimentView deckMap() {
+        Plan plan = plan(
+                "deck-map",
+                "Which deck map helps people to choose a seat?",
+                List.of(
+                        new Variant("list", 0.8, true),
+                        new Variant("map", 0.1, false),
+                        new Variant("tour", 0.1, false)),
+                List.of(new AllocationEpoch(
+                        START.plus(Duration.ofDays(2)), Map.of("list", 0.34, "map", 0.33, "tour", 0.33))));
+        List<VariantCount> counts = List.of(
+                new VariantCount(0, "list", 8_020, 955),
+                new VariantCount(0, "map", 1_011, 130),
+                new VariantCount(0, "tour", 987, 117),
+                new VariantCount(1, "list", 9_410, 1_133),
+                new VariantCount(1, "map", 9_120, 1_244),
+                new VariantCount(1, "tour", 9_177, 1_089));
+        Map<String, double[]> paths = new LinkedHashMap<>();
+        paths.put("map", new double[] {0.6, 1.4, 1.7, 2.3});
+        paths.put("tour", new double[] {0.2, -0.3, -0.9, -0.4});
+        return view(plan, counts, Trust.SOUND, "", Verdict.CONTINUE, paths);
+    }
+
+    /** Before the first look. */
+    public static ExperimentView pierMap() {
+        Plan plan = plan(
+                "pier-map",
+                "Does a map of the pier save calls to the desk?",
+                List.of(new Variant("text", 0.5, true), new Variant("map", 0.5, false)),
+                List.of());
+        return view(plan, List.of(), Trust.SOUND, "", Verdict.WAITING, Map.of());
+    }
+
+    /** The same experiment with another verdict and another state of trust. */
+    public static ExperimentView with(ExperimentView view, Verdict verdict, Trust trust) {
+        return new ExperimentView(
+                view.plan(),
+                view.planDigest(),
+                view.completeUntil(),
+                view.counts(),
+                view.outcomes(),
+                view.split(),
+                trust,
+                trust == Trust.SOUND ? "" : "Invented reason for " + trust.code() + ".",
+                verdict,
+                view.comparisons(),
+                view.verdicts(),
+                view.history(),
+                view.looksTaken(),
+                view.looksDelayed(),
+                view.delayReason(),
+                view.maximumInformation(),
+                view.lastRecord());
+    }
+
+    public static Plan plan(String name, String question, List<Variant> variants, List<AllocationEpoch> epochs) {
+        return new Plan(
+                name,
+                question,
+                "web-growth@northwater.example",
+                new CountRule(
+                        CountRule.CountBy.UNIT, Duration.ofMinutes(30), Duration.ofMinutes(10), Duration.ofMinutes(5)),
+                variants,
+                new TestPlan(
+                        0.05,
+                        TestPlan.Sides.TWO,
+                        0.8,
+                        0.12,
+                        0.006,
+                        Spending.of(Spending.Family.OBRIEN_FLEMING),
+                        TestPlan.Better.HIGHER,
+                        TestPlan.DEFAULT_MINIMUM_PER_CELL),
+                new LookSchedule.Every(Duration.ofHours(6)),
+                Optional.of(new FutilityPlan(new Spending(Spending.Family.HWANG_SHIH_DECANI, -2))),
+                new SplitCheckPlan(SplitCheckPlan.DEFAULT_ALPHA),
+                TrustLimits.DEFAULT,
+                new Run(START, Duration.ofDays(7), Duration.ofDays(28)),
+                epochs);
+    }
+
+    private static ExperimentView view(
+            Plan plan,
+            List<VariantCount> counts,
+            Trust trust,
+            String trustReason,
+            Verdict verdict,
+            Map<String, double[]> paths) {
+        List<LookPoint> history = new ArrayList<>();
+        Map<String, Comparison> latest = new LinkedHashMap<>();
+        int looks = paths.values().stream().mapToInt(path -> path.length).max().orElse(0);
+        for (int look = 1; look <= looks; look++) {
+            for (Map.Entry<String, double[]> path : paths.entrySet()) {
+                Comparison comparison = look(path.getKey(), look, path.getValue()[look - 1], verdict, trust, looks);
+                history.add(new LookPoint(START.plus(Duration.ofHours(12L * look)), comparison));
+                latest.put(path.getKey(), comparison);
+            }
+        }
+        Map<String, Verdict> verdicts = new LinkedHashMap<>();
+        Map<String, Double> information = new LinkedHashMap<>();
+        plan.challengers().forEach(challenger -> {
+            verdicts.put(challenger.name(), verdict);
+            information.put(challenger.name(), 235_000.0);
+        });
+        boolean broken = trust == Trust.MISMATCH;
+        return new ExperimentView(
+                plan,
+                "5b1f".repeat(16),
+                looks == 0 ? Optional.empty() : Optional.of(START.plus(Duration.ofHours(12L * looks + 3))),
+                counts,
+                looks == 0 ? OutcomeCounts.NONE : OutcomeCounts.of(60_789, 7_574, 91_233, 412, 388, 96, 210, 55, 0),
+                broken ? new Split(19.31, 4.1e-9, 48.1, 1, 4.0e-12) : new Split(-3.2, 1.0, 0.02, 1, 0.887),
+                trust,
+                trustReason,
+                verdict,
+                latest,
+                verdicts,
+                history,
+                looks,
+                looks == 0 ? 1 : 0,
+                looks == 0 ? "plain has 2 successes (expected: 5 or more in every variant)" : "",
+                information,
+                "c07a".repeat(16));
+    }
+
+    private static Comparison look(String variant, int look, double z, Verdict verdict, Trust trust, int looks) {
+        double fraction = 0.08 * look;
+        double bound = Math.min(8, 1.99 / Math.sqrt(fraction));
+        double difference = z * 0.00205 / Math.sqrt(fraction);
+        double half = bound * 0.00205 / Math.sqrt(fraction);
+        boolean last = look == looks;
+        boolean benefitMayStop = look >= 4;
+        return new Comparison(
+                variant,
+                look,
+                z,
+                235_000.0 * fraction,
+                fraction,
+                0.05 * fraction * fraction * fraction,
+                benefitMayStop ? bound : null,
+                -bound,
+                fraction > 0.3 ? -2.2 + 3 * fraction : null,
+                difference,
+                difference - half,
+                benefitMayStop ? difference + half : null,
+                last ? verdict : Verdict.CONTINUE,
+                last && trust == Trust.MISMATCH ? Verdict.STOP_BENEFIT : null,
+                last && verdict.settled() ? "z crossed its boundary" : "no boundary was crossed");
+    }
+}

@@ -1,0 +1,139 @@
+package io.tallyward.statistics.boundary;
+
+import io.tallyward.statistics.distribution.Normal;
+import io.tallyward.statistics.spending.SpendingFunction;
+import java.util.ArrayList;
+import java.util.List;
+import org.apache.commons.math3.analysis.UnivariateFunction;
+import org.apache.commons.math3.analysis.solvers.BrentSolver;
+
+/**
+ * A planned design: its looks and the drift it finds with the power asked for.
+ *
+ * @param request what was asked for
+ * @param looks the planned looks
+ * @param drift expected z at information 1 under which the upper boundary is crossed first with the power asked for;
+ *     crossing the lower boundary first counts as a failure. With futility bounds: the drift for which the last futility
+ *     bound meets the last upper boundary, so that the power holds with futility obeyed
+ * @param fixedSampleDrift the drift that a single look at information 1 would need
+ * @param expectedFractionWithoutEffect expected information at the end under drift 0, futility obeyed
+ * @param expectedFraction expected information at the end under {@code drift}, futility obeyed
+ */
+public record Design(
+        DesignRequest request,
+        List<DesignLook> looks,
+        double drift,
+        double fixedSampleDrift,
+        double expectedFractionWithoutEffect,
+        double expectedFraction) {
+
+    /** Absolute accuracy of the drift; power is then right to about as many digits. */
+    private static final double DRIFT_ACCURACY = 1e-11;
+
+    private static final int MOST_EVALUATIONS = 100;
+
+    public Design {
+        looks = List.copyOf(looks);
+    }
+
+    /**
+     * Plans a design. Milliseconds for a handful of looks, a second or two for 168 with futility.
+     *
+     * @throws IllegalArgumentException if the fractions do not ascend or the power is out of reach
+     */
+    public static Design of(DesignRequest request) {
+        List<Look> boundaries = boundaries(request);
+        double fixed = Normal.upperQuantile(request.tailLevel()) + Normal.quantile(request.power());
+        if (request.futilitySpending().isPresent()) {
+            return withFutility(request, boundaries, fixed);
+        }
+        double[] information = request.fractions();
+        double[] upper = boundaries.stream().mapToDouble(Look::upper).toArray();
+        double[] lower = boundaries.stream().mapToDouble(Look::lower).toArray();
+        double greatest = greatestDrift(fixed, information);
+        ExitProfile profile = ExitProfile.of(information, upper, lower, greatest);
+        double drift = root(theta -> profile.at(theta).totalUpper() - request.power(), fixed, greatest);
+        List<DesignLook> looks = boundaries.stream()
+                .map(look -> new DesignLook(look, Double.NEGATIVE_INFINITY))
+                .toList();
+        return new Design(
+                request,
+                looks,
+                drift,
+                fixed,
+                profile.at(0).expectedInformation(),
+                profile.at(drift).expectedInformation());
+    }
+
+    /** How much more information the design needs at most than a single look would: {@code (drift / fixed)^2}. */
+    public double inflation() {
+        double ratio = drift / fixedSampleDrift;
+        return ratio * ratio;
+    }
+
+    private static List<Look> boundaries(DesignRequest request) {
+        BoundarySequence sequence = new BoundarySequence();
+        List<Look> looks = new ArrayList<>();
+        for (double fraction : request.fractions()) {
+            double spent = request.spending().spent(request.tailLevel(), fraction);
+            looks.add(sequence.next(fraction, spent, request.twoSided() ? spent : 0));
+        }
+        return looks;
+    }
+
+    private static Design withFutility(DesignRequest request, List<Look> boundaries, double fixed) {
+        double greatest = greatestDrift(fixed, request.fractions());
+        double drift = root(
+                theta -> exits(request, boundaries, futility(request, boundaries, theta), theta)
+                                .totalUpper()
+                        - request.power(),
+                fixed,
+                greatest);
+        double[] futility = futility(request, boundaries, drift);
+        List<DesignLook> looks = new ArrayList<>();
+        for (int k = 0; k < futility.length; k++) {
+            looks.add(new DesignLook(boundaries.get(k), futility[k]));
+        }
+        return new Design(
+                request,
+                looks,
+                drift,
+                fixed,
+                exits(request, boundaries, futility, 0).expectedInformation(),
+                exits(request, boundaries, futility, drift).expectedInformation());
+    }
+
+    private static double[] futility(DesignRequest request, List<Look> boundaries, double drift) {
+        SpendingFunction spending = request.futilitySpending().orElseThrow();
+        FutilitySequence sequence = new FutilitySequence(drift);
+        double[] bounds = new double[boundaries.size()];
+        for (int k = 0; k < bounds.length; k++) {
+            Look look = boundaries.get(k);
+            double spent = spending.spent(1 - request.power(), look.information());
+            bounds[k] = sequence.next(look.information(), look.upper(), spent);
+        }
+        bounds[bounds.length - 1] = boundaries.get(bounds.length - 1).upper();
+        return bounds;
+    }
+
+    private static ExitProbabilities exits(
+            DesignRequest request, List<Look> boundaries, double[] futility, double drift) {
+        double[] upper = boundaries.stream().mapToDouble(Look::upper).toArray();
+        return ExitProbabilities.of(request.fractions(), upper, futility, drift);
+    }
+
+    private static double greatestDrift(double fixed, double[] information) {
+        double atTheEnd = StrictMath.sqrt(information[information.length - 1]);
+        return StrictMath.min(25 / atTheEnd, (fixed + 5) * StrictMath.max(1, 2 / atTheEnd));
+    }
+
+    private static double root(UnivariateFunction shortfall, double from, double to) {
+        double low = 0.8 * from;
+        double high = StrictMath.min(1.25 * from, to);
+        while (shortfall.value(high) < 0 && high < to) {
+            low = high;
+            high = StrictMath.min(1.25 * high, to);
+        }
+        return new BrentSolver(0, DRIFT_ACCURACY, 0).solve(MOST_EVALUATIONS, shortfall, low, high);
+    }
+}

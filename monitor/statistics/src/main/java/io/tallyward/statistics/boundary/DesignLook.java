@@ -1,0 +1,9 @@
+package io.tallyward.statistics.boundary;
+
+/**
+ * One planned look.
+ *
+ * @param boundaries its information, its spending and its efficacy boundaries
+ * @param futility z below which the look speaks of futility; negative infinity if it has no such bound
+ */
+public record DesignLook(Look boundaries, double futility) {}

@@ -1,0 +1,51 @@
+package io.tallyward.statistics.boundary;
+
+import org.apache.commons.math3.analysis.integration.gauss.GaussIntegrator;
+import org.apache.commons.math3.analysis.integration.gauss.GaussIntegratorFactory;
+
+/**
+ * A composite Gauss-Legendre rule.
+ *
+ * @param points ascending
+ * @param weights one per point
+ */
+record Quadrature(double[] points, double[] weights) {
+
+    /**
+     * Twelve points for every two standard deviations of the narrower neighbouring kernel. Against twenty points for
+     * every one and a half, boundaries move by less than 2e-14 in z over 168 looks.
+     */
+    private static final int POINTS = 12;
+
+    private static final double PANEL_WIDTH = 2;
+
+    private static final double[] ABSCISSAE = new double[POINTS];
+    private static final double[] COEFFICIENTS = new double[POINTS];
+
+    static {
+        GaussIntegrator rule = new GaussIntegratorFactory().legendre(POINTS);
+        for (int i = 0; i < POINTS; i++) {
+            ABSCISSAE[i] = rule.getPoint(i);
+            COEFFICIENTS[i] = rule.getWeight(i);
+        }
+    }
+
+    /** The rule over [from, to], fit for kernels of standard deviation {@code finest}; empty if the interval is. */
+    static Quadrature over(double from, double to, double finest) {
+        if (!(from < to)) {
+            return new Quadrature(new double[0], new double[0]);
+        }
+        int panels = (int) StrictMath.max(1, StrictMath.ceil((to - from) / (PANEL_WIDTH * finest)));
+        double half = 0.5 * (to - from) / panels;
+        double[] points = new double[panels * POINTS];
+        double[] weights = new double[panels * POINTS];
+        for (int panel = 0; panel < panels; panel++) {
+            double middle = from + (2 * panel + 1) * half;
+            for (int i = 0; i < POINTS; i++) {
+                points[panel * POINTS + i] = middle + half * ABSCISSAE[i];
+                weights[panel * POINTS + i] = half * COEFFICIENTS[i];
+            }
+        }
+        return new Quadrature(points, weights);
+    }
+}

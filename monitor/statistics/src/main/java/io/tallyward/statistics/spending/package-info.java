@@ -1,0 +1,10 @@
+/**
+ * How an error probability is spent over the run of an experiment (Lan and DeMets 1983): a spending function says how
+ * much of a level may have been used up once a given fraction of the planned information is in. The looks themselves
+ * need not be planned; only the function must be.
+ *
+ * <p>Functions are evaluated at the level of <em>one tail</em>. A two-sided test at level alpha spends {@code alpha/2} in
+ * each tail, each by the function at level {@code alpha/2}. This matters for the O'Brien-Fleming type, which does not
+ * scale with its level.
+ */
+package io.tallyward.statistics.spending;
