@@ -1,9 +1,11 @@
 package io.tallyward.demo.story;
 
+import io.tallyward.demo.story.Expectation.ExpectedNotice;
 import java.time.Duration;
 import java.time.Instant;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.Set;
 
 /**
@@ -61,6 +63,6 @@ public final class CabinUpsell implements Story {
                 Map.of("offer", Set.of("waiting", "continue", "exhausted")),
                 0,
                 "mismatch",
-                "mismatch");
+                Optional.of(new ExpectedNotice("mismatch", "")));
     }
 }

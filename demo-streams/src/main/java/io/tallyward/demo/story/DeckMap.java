@@ -1,9 +1,11 @@
 package io.tallyward.demo.story;
 
+import io.tallyward.demo.story.Expectation.ExpectedNotice;
 import java.time.Duration;
 import java.time.Instant;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.Set;
 
 /**
@@ -55,6 +57,9 @@ public final class DeckMap implements Story {
     public Expectation expectation() {
         return new Expectation(
                 "tilt: 13.0 % -> 15.5 %",
-                Map.of("tilt", Set.of("stop-benefit"), "chart", Expectation.NO_STOP), 0, "sound", "stop");
+                Map.of("tilt", Set.of("stop-benefit"), "chart", Expectation.NO_STOP),
+                0,
+                "sound",
+                Optional.of(new ExpectedNotice("stop", "tilt")));
     }
 }

@@ -1,6 +1,7 @@
 package io.tallyward.demo.story;
 
 import java.util.Map;
+import java.util.Optional;
 import java.util.Set;
 
 /**
@@ -11,10 +12,14 @@ import java.util.Set;
  * @param falseAlarm probability that a monitor that works stops nevertheless, in [0, 1); 0 when that is out of the
  *     question (less than one seed in a thousand)
  * @param trust published code of the right trust
- * @param notice published code of the kind of notice that must be delivered; empty when none must
+ * @param notice a notice that must be delivered; empty when none must
  */
 public record Expectation(
-        String truth, Map<String, Set<String>> verdicts, double falseAlarm, String trust, String notice) {
+        String truth,
+        Map<String, Set<String>> verdicts,
+        double falseAlarm,
+        String trust,
+        Optional<ExpectedNotice> notice) {
 
     /** Verdicts that leave an experiment without a stop for benefit or harm. */
     static final Set<String> NO_STOP = Set.of("waiting", "continue", "stop-futility", "exhausted");
@@ -22,4 +27,12 @@ public record Expectation(
     public Expectation {
         verdicts = Map.copyOf(verdicts);
     }
+
+    /**
+     * What a notice must be about.
+     *
+     * @param kind published code of its kind
+     * @param variant the variant it names; empty when it concerns the experiment as a whole
+     */
+    public record ExpectedNotice(String kind, String variant) {}
 }

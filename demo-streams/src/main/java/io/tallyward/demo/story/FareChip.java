@@ -4,6 +4,7 @@ import java.time.Duration;
 import java.time.Instant;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 
 /**
  * The fare chip does nothing, but its traffic is ramped from 10 % to 50 % after a week, just when the school holidays raise
@@ -48,6 +49,7 @@ public final class FareChip implements Story {
 
     @Override
     public Expectation expectation() {
-        return new Expectation("no effect, ramped", Map.of("chip", Expectation.NO_STOP), 0.05, "sound", "");
+        return new Expectation(
+                "no effect, ramped", Map.of("chip", Expectation.NO_STOP), 0.05, "sound", Optional.empty());
     }
 }

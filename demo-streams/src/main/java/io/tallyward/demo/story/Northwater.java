@@ -13,7 +13,7 @@ public final class Northwater {
     public static final Instant END = START.plus(Duration.ofDays(14));
 
     /** After this moment only single first views of the deck map arrive; everything else has been delivered. */
-    public static final Instant QUIET_FROM = END.plus(Duration.ofHours(1));
+    public static final Instant QUIET_FROM = END.plus(Duration.ofMinutes(30));
 
     /** End of the stream: late enough for the last window of the fourteen days to be sealed by event time alone. */
     public static final Instant STREAM_END = END.plus(Duration.ofHours(3));

@@ -1,7 +1,9 @@
 package io.tallyward.demo.story;
 
+import io.tallyward.demo.story.Expectation.ExpectedNotice;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.Set;
 
 /**
@@ -39,6 +41,8 @@ public final class QuayBanner implements Story {
 
     @Override
     public Expectation expectation() {
-        return new Expectation("benefit: 12.0 % -> 14.5 %", Map.of("wide", Set.of("stop-benefit")), 0, "sound", "stop");
+        return new Expectation(
+                "benefit: 12.0 % -> 14.5 %",
+                Map.of("wide", Set.of("stop-benefit")), 0, "sound", Optional.of(new ExpectedNotice("stop", "wide")));
     }
 }

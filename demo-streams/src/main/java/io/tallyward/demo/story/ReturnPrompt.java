@@ -1,7 +1,9 @@
 package io.tallyward.demo.story;
 
+import io.tallyward.demo.story.Expectation.ExpectedNotice;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.Set;
 
 /**
@@ -39,6 +41,8 @@ public final class ReturnPrompt implements Story {
 
     @Override
     public Expectation expectation() {
-        return new Expectation("harm: 15.0 % -> 12.5 %", Map.of("prompt", Set.of("stop-harm")), 0, "sound", "stop");
+        return new Expectation(
+                "harm: 15.0 % -> 12.5 %",
+                Map.of("prompt", Set.of("stop-harm")), 0, "sound", Optional.of(new ExpectedNotice("stop", "prompt")));
     }
 }

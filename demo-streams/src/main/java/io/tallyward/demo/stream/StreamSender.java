@@ -2,6 +2,7 @@ package io.tallyward.demo.stream;
 
 import io.tallyward.demo.story.StreamEvent;
 import java.nio.charset.StandardCharsets;
+import java.time.Duration;
 import java.util.List;
 import java.util.Map;
 import java.util.concurrent.atomic.AtomicReference;
@@ -20,6 +21,8 @@ public final class StreamSender implements AutoCloseable {
 
     /** Shorter waits are not worth a system call; the stream is then at most this much ahead. */
     private static final long LEAST_WAIT_NANOS = 2_000_000;
+
+    private static final Duration CLOSE_PATIENCE = Duration.ofSeconds(5);
 
     private final Producer<byte[], byte[]> producer;
     private final String topic;
@@ -81,7 +84,7 @@ public final class StreamSender implements AutoCloseable {
 
     @Override
     public void close() {
-        producer.close(java.time.Duration.ofSeconds(5));
+        producer.close(CLOSE_PATIENCE);
     }
 
     private void await(Pace pace, StreamEvent event) {
