@@ -127,9 +127,7 @@ final class EventDraft {
         if (problems[field.ordinal()] != null) {
             return;
         }
-        if (token == null
-                || token == JsonToken.VALUE_NULL
-                || (token.isScalarValue() && text(field).isEmpty())) {
+        if (token == null || token == JsonToken.VALUE_NULL || isEmptyText(field, token)) {
             if (field.required()) {
                 String what = token == JsonToken.VALUE_STRING ? "empty" : "missing";
                 refuse(field, RejectReason.MISSING_FIELD, what + " (expected: " + expected(field) + ")");
@@ -153,6 +151,10 @@ final class EventDraft {
         }
         boolean number = token == JsonToken.VALUE_NUMBER_INT || token == JsonToken.VALUE_NUMBER_FLOAT;
         return token == JsonToken.VALUE_STRING || (number && (field.acceptsNumbers() || isTime(field)));
+    }
+
+    private boolean isEmptyText(EventField field, JsonToken token) {
+        return token == JsonToken.VALUE_STRING && text(field).isEmpty() && field != EventField.SEGMENTS;
     }
 
     private static boolean isTime(EventField field) {

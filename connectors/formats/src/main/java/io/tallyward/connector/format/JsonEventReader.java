@@ -70,8 +70,8 @@ public final class JsonEventReader {
         } catch (StreamConstraintsException e) {
             return new Refused(
                     RejectReason.OVERSIZED,
-                    "the document is nested deeper than " + MAX_NESTING + " levels or holds an endless number"
-                            + near(e));
+                    "the document is nested deeper than " + MAX_NESTING
+                            + " levels or holds a number of over 1000 digits" + near(e));
         } catch (JsonProcessingException e) {
             // The library's own message quotes the document, and with it perhaps a unit.
             return new Refused(RejectReason.UNPARSABLE, "the value is not JSON" + near(e));

@@ -7,10 +7,20 @@ import java.util.Objects;
 public sealed interface StartPosition {
 
     /** At the oldest record kept. */
-    record Earliest() implements StartPosition {}
+    record Earliest() implements StartPosition {
+        @Override
+        public String toString() {
+            return "the oldest record";
+        }
+    }
 
     /** After the newest record there is when the partition is first assigned. */
-    record Latest() implements StartPosition {}
+    record Latest() implements StartPosition {
+        @Override
+        public String toString() {
+            return "the next new record";
+        }
+    }
 
     /**
      * At the first record whose Kafka timestamp is not before an instant; after the newest if there is none.
@@ -20,6 +30,11 @@ public sealed interface StartPosition {
     record At(Instant instant) implements StartPosition {
         public At {
             Objects.requireNonNull(instant, "instant");
+        }
+
+        @Override
+        public String toString() {
+            return instant.toString();
         }
     }
 

@@ -16,7 +16,7 @@ import java.util.OptionalLong;
  * @param recordsConsumed input records applied since the runner started
  * @param commits transactions committed since the runner started
  * @param aborts transactions that failed since the runner started
- * @param restoreMillis how long the last restoration of shards took; 0 before the first
+ * @param restoreMillis how long the last restoration of a shard took; 0 before the first
  * @param lag input records not yet read in the hosted partitions; empty while not known
  */
 public record WorkerStatus(

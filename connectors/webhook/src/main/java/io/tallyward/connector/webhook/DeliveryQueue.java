@@ -324,7 +324,7 @@ public final class DeliveryQueue implements AutoCloseable {
         } else if (failed && !wasFailing) {
             LOG.warn("Webhook failing: {}. Notices are kept and tried again; {} pending", result.detail(), waitingNow);
         } else if (!failed && wasFailing) {
-            LOG.info("Webhook recovered; {} notices pending", waitingNow);
+            LOG.info("Webhook recovered: a notice was delivered; {} still pending", Math.max(0, waitingNow - 1));
         }
     }
 

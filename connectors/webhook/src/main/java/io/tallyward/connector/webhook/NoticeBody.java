@@ -30,7 +30,7 @@ public final class NoticeBody {
     private static final int MAX_NAME = 128;
     private static final int MAX_FACTS = 40;
 
-    // ASCII only: no receiver can get the encoding wrong, and lone surrogates cannot stop a notice.
+    // ASCII only: no receiver can get the encoding wrong.
     private static final JsonFactory FACTORY =
             JsonFactory.builder().enable(JsonWriteFeature.ESCAPE_NON_ASCII).build();
 
@@ -122,11 +122,10 @@ public final class NoticeBody {
         return URLEncoder.encode(segment, StandardCharsets.UTF_8).replace("+", "%20");
     }
 
+    /** The text as far as it is Unicode, cut to a limit without cutting a character in half. */
     private static String cut(String text, int limit) {
-        if (text.length() <= limit) {
-            return text;
-        }
-        int end = limit - 3;
-        return text.substring(0, Character.isHighSurrogate(text.charAt(end - 1)) ? end - 1 : end) + "...";
+        String safe = text.length() <= limit ? text : text.substring(0, limit - 3) + "...";
+        // Encoding turns what is left of a surrogate pair into a question mark.
+        return new String(safe.getBytes(StandardCharsets.UTF_8), StandardCharsets.UTF_8);
     }
 }

@@ -45,9 +45,9 @@ final class RetryAfter {
                         .appendPattern("EEEE, dd-MMM-")
                         .appendValueReduced(ChronoField.YEAR, 2, 2, century)
                         .appendPattern(" HH:mm:ss 'GMT'")
-                        .toFormatter(Locale.ROOT)
+                        .toFormatter(Locale.US)
                         .withZone(ZoneOffset.UTC),
-                DateTimeFormatter.ofPattern("EEE MMM ppd HH:mm:ss uuuu", Locale.ROOT)
+                DateTimeFormatter.ofPattern("EEE MMM ppd HH:mm:ss uuuu", Locale.US)
                         .withZone(ZoneOffset.UTC));
         for (DateTimeFormatter form : forms) {
             try {

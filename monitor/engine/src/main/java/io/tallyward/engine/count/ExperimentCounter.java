@@ -102,19 +102,22 @@ final class ExperimentCounter {
         if (watermark < nextSealAt()) {
             return result;
         }
-        ledger.forgetDueBefore(sealedUntil);
         long until = watermark == Long.MAX_VALUE ? runEnd : Math.min(runEnd, windowOf(watermark - sealDelayMillis));
-        long next = nextWithContent();
+        long next = nextToSeal();
         while (next < until) {
-            result.add(seal(next));
-            next = nextWithContent();
+            Sealed window = seal(next);
+            if (window.tally().outcomes().total() > 0) {
+                result.add(window);
+            }
+            next = nextToSeal();
         }
         sealedUntil = until;
         changed = true;
         return result;
     }
 
-    private long nextWithContent() {
+    /** The first window in which anything may have happened: a trial that was due in it may have moved away since. */
+    private long nextToSeal() {
         long told = unsealedOutcomes.isEmpty() ? Long.MAX_VALUE : unsealedOutcomes.firstKey();
         return Math.min(told, ledger.firstDue());
     }
@@ -170,6 +173,7 @@ final class ExperimentCounter {
 
     void restore(long storedSealedUntil, OutcomeCounts storedOutcomes, Map<Long, OutcomeCounts> storedUnsealed) {
         sealedUntil = storedSealedUntil;
+        ledger.forgetDueBefore(sealedUntil);
         finalOutcomes = new OutcomeCounts.Builder().add(storedOutcomes);
         unsealedOutcomes.clear();
         storedUnsealed.forEach(

@@ -57,6 +57,11 @@ final class Ledger {
         if (late && (unit == null || !unit.hasTrial() || event.atMillis() < unit.first())) {
             return Outcome.LATE;
         }
+        if (late) {
+            unit.exposeAgain(variant);
+            changed.add(hash);
+            return null;
+        }
         unit = unit == null ? new OpenUnit(variants) : unit;
         unit.expose(variant, event.atMillis(), identity(event), attributionMillis);
         put(hash, unit);
@@ -112,6 +117,11 @@ final class Ledger {
 
     private void dueAt(long window, UnitHash hash) {
         due.computeIfAbsent(window, start -> new LinkedHashSet<>()).add(hash);
+    }
+
+    /** The window with which the last of what is open about a unit is sealed. */
+    private long dueWindow(OpenUnit unit) {
+        return windowOf(unit.hasTrial() ? unit.first() : unit.latestClick());
     }
 
     private long windowOf(long atMillis) {
@@ -173,8 +183,8 @@ final class Ledger {
         TreeMap<Long, Map<UnitHash, OpenUnit>> byWindow = new TreeMap<>();
         for (UnitHash hash : changed) {
             OpenUnit unit = open.get(hash);
-            long window = windowOf(unit.hasTrial() ? unit.first() : unit.latestClick());
-            byWindow.computeIfAbsent(window, start -> new LinkedHashMap<>()).put(hash, unit);
+            byWindow.computeIfAbsent(dueWindow(unit), start -> new LinkedHashMap<>())
+                    .put(hash, unit);
         }
         changed.clear();
         return byWindow;
@@ -193,9 +203,20 @@ final class Ledger {
         }
     }
 
-    /** Forgets what restored versions of units, since replaced, would have made fall due in windows sealed long ago. */
+    /**
+     * Forgets restored versions of units that were replaced or gone when the windows before a moment were sealed: clicks
+     * that became orphans leave an entry behind, which a log that is not compacted yet still holds.
+     */
     void forgetDueBefore(long sealedUntilMillis) {
-        due.headMap(sealedUntilMillis).clear();
+        Map<Long, Set<UnitHash>> past = due.headMap(sealedUntilMillis);
+        past.values()
+                .forEach(hashes -> hashes.forEach(hash -> {
+                    OpenUnit unit = open.get(hash);
+                    if (unit != null && dueWindow(unit) < sealedUntilMillis) {
+                        open.remove(hash);
+                    }
+                }));
+        past.clear();
     }
 
     /** Adds a unit whose trial is final. */

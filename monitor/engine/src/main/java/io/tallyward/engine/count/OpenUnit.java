@@ -67,6 +67,11 @@ final class OpenUnit {
         }
     }
 
+    /** Adds an exposure that came too late to stand, even where it ties with the one that does. */
+    void exposeAgain(int exposedVariant) {
+        exposures[exposedVariant]++;
+    }
+
     private boolean isEarlier(int exposedVariant, long atMillis, String eventIdentity) {
         if (atMillis != first) {
             return atMillis < first;
@@ -167,25 +172,20 @@ final class OpenUnit {
                 outcomes.add(Outcome.CROSSOVER, exposures[other] + (long) tooLate[other]);
             }
         }
-        boolean success = false;
+        boolean successful = successful(sealAtMillis);
+        boolean told = false;
         for (int i = 0; i < clicks; i++) {
             if (clickTimes[i] < first) {
                 outcomes.add(Outcome.ORPHAN, 1);
             } else if (clickVariants[i] != variant) {
                 outcomes.add(Outcome.CROSSOVER, 1);
+            } else if (!successful) {
+                outcomes.add(Outcome.LATE, 1);
             } else {
-                success = settleClickInTime(clickArrivals[i] < sealAtMillis, success, outcomes);
+                outcomes.add(told ? Outcome.REPEAT : Outcome.SUCCESS, 1);
+                told = true;
             }
         }
-    }
-
-    private static boolean settleClickInTime(boolean punctual, boolean success, OutcomeCounts.Builder outcomes) {
-        if (!punctual) {
-            outcomes.add(success ? Outcome.REPEAT : Outcome.LATE, 1);
-            return success;
-        }
-        outcomes.add(success ? Outcome.REPEAT : Outcome.SUCCESS, 1);
-        return true;
     }
 
     /** Every click time kept, for registering the windows in which it falls due. */

@@ -73,11 +73,15 @@ final class Watermarks {
     }
 
     /**
-     * Takes note of the wall clock. A source that did not advance for the idle time, although everything in it has been
-     * read, is idle. Returns whether a stand-in watermark moved.
+     * Takes note of the wall clock. A source that did not advance for the idle time, and was seen to have been read to its
+     * end from the beginning of that time on, is idle. Returns whether a stand-in watermark moved.
      */
     boolean passTime(int source, long nowMillis, boolean caughtUp) {
-        if (!caughtUp || quietSince[source] == NONE) {
+        if (!caughtUp) {
+            quietSince[source] = NONE;
+            return false;
+        }
+        if (quietSince[source] == NONE) {
             quietSince[source] = nowMillis;
             return false;
         }

@@ -92,6 +92,13 @@ public final class DecideShard {
         }
     }
 
+    /** Makes a planned experiment known before anything of it arrives, so that it is seen to be waiting. */
+    public void expect(String experiment) {
+        if (plans.containsKey(experiment)) {
+            decider(experiment);
+        }
+    }
+
     private ExperimentDecider decider(String experiment) {
         return deciders.computeIfAbsent(experiment, name -> new ExperimentDecider(plans.get(name)));
     }

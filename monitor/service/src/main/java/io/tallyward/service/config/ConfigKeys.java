@@ -6,6 +6,7 @@ import static io.tallyward.service.config.document.ScalarType.matching;
 import static io.tallyward.service.config.document.ScalarType.text;
 import static io.tallyward.service.config.document.ScalarType.wholeNumber;
 
+import io.tallyward.connector.format.EventField;
 import io.tallyward.service.config.document.Key;
 import io.tallyward.service.config.document.ListType;
 import io.tallyward.service.config.document.MapType;
@@ -13,6 +14,8 @@ import io.tallyward.service.config.document.ScalarType;
 import io.tallyward.service.config.document.Shape;
 import io.tallyward.service.config.document.Values;
 import java.time.Duration;
+import java.util.Collections;
+import java.util.EnumMap;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
@@ -38,21 +41,38 @@ public final class ConfigKeys {
     }
 
     static final class Fields {
-        static final Key<String> KIND = pointer("kind", "What happened; see input.kinds.");
-        static final Key<String> EXPERIMENT = pointer("experiment", "Name of the experiment.");
-        static final Key<String> VARIANT = pointer("variant", "Name of the variant.");
-        static final Key<String> UNIT = pointer("unit", "Identifier of the randomised unit.");
-        static final Key<String> ID = pointer("id", "Identifier of the event.");
-        static final Key<String> AT = pointer("at", "Event time.");
-        static final Key<String> SOURCE = pointer("source", "Emitter of the event; records may lack it.");
-        static final Key<String> VIEW = pointer("view", "Id of the view that was clicked; records may lack it.");
-        static final Key<String> SEGMENTS =
-                pointer("segments", "Object of low-cardinality fields; records may lack it.");
-        static final Shape SHAPE = Shape.of(KIND, EXPERIMENT, VARIANT, UNIT, ID, AT, SOURCE, VIEW, SEGMENTS);
+        /** The key of each field, in the order to document them. */
+        static final Map<EventField, Key<String>> BY_FIELD = pointers();
 
-        private static Key<String> pointer(String name, String doc) {
-            return Key.withDefault(
-                    name, matching("(/([^~/]|~[01])*)+", "JSON Pointer (RFC 6901) such as /" + name), "/" + name, doc);
+        static final Shape SHAPE = new Shape(List.copyOf(BY_FIELD.values()));
+
+        private static final int MAX_LENGTH = 256;
+
+        private static Map<EventField, Key<String>> pointers() {
+            Map<EventField, Key<String>> keys = new EnumMap<>(EventField.class);
+            for (EventField field : EventField.values()) {
+                String pointer = "/" + field.code();
+                ScalarType<String> type = matching(
+                        "(?=.{1," + MAX_LENGTH + "}$)(/([^~/]|~[01])*){1,16}",
+                        "JSON Pointer (RFC 6901) such as " + pointer);
+                keys.put(field, Key.withDefault(field.code(), type, pointer, doc(field)));
+            }
+            return Collections.unmodifiableMap(keys);
+        }
+
+        private static String doc(EventField field) {
+            return switch (field) {
+                case KIND -> "What happened; see input.kinds.";
+                case EXPERIMENT -> "Name of the experiment.";
+                case VARIANT -> "Name of the variant.";
+                case UNIT -> "Identifier of the randomised unit.";
+                case ID -> "Identifier of the event within its source.";
+                case AT -> "Event time: RFC 3339 text or milliseconds since the epoch.";
+                case SOURCE -> "Emitter of the event; records may lack it.";
+                case VIEW -> "Id of the view that was clicked; records may lack it.";
+                case SEGMENTS -> "Object of low-cardinality fields; records may lack it.";
+                case RECEIVED -> "When the pipeline received the event; read by a file replay only.";
+            };
         }
     }
 
@@ -62,7 +82,7 @@ public final class ConfigKeys {
         static final Shape SHAPE = Shape.of(VIEW, CLICK);
 
         private static Key<List<String>> values(String name, String doc) {
-            return Key.withDefaultItem(name, new ListType<>(text(200), 1, 100, "texts"), name, doc);
+            return Key.withDefaultItem(name, new ListType<>(text(200), 1, 16, "texts"), name, doc);
         }
     }
 

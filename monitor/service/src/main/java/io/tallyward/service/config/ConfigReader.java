@@ -1,5 +1,7 @@
 package io.tallyward.service.config;
 
+import io.tallyward.connector.format.EventField;
+import io.tallyward.connector.format.EventMapping;
 import io.tallyward.engine.event.EventKind;
 import io.tallyward.service.config.document.Checked;
 import io.tallyward.service.config.document.DocumentReader;
@@ -9,6 +11,8 @@ import io.tallyward.service.config.document.Values;
 import java.net.URI;
 import java.net.URISyntaxException;
 import java.nio.file.Path;
+import java.util.EnumMap;
+import java.util.HashMap;
 import java.util.HashSet;
 import java.util.List;
 import java.util.Map;
@@ -86,30 +90,28 @@ public final class ConfigReader {
     }
 
     private static InputConfig input(Values input) {
-        Values kinds = input.get(ConfigKeys.Input.KINDS);
         return new InputConfig(
                 input.get(ConfigKeys.Input.TOPICS),
                 input.get(ConfigKeys.Input.START),
-                fields(input.get(ConfigKeys.Input.FIELDS)),
-                Map.of(
-                        EventKind.VIEW, Set.copyOf(kinds.get(ConfigKeys.Kinds.VIEW)),
-                        EventKind.CLICK, Set.copyOf(kinds.get(ConfigKeys.Kinds.CLICK))),
+                new EventMapping(
+                        pointers(input.get(ConfigKeys.Input.FIELDS)), kinds(input.get(ConfigKeys.Input.KINDS))),
                 input.get(ConfigKeys.Input.MAX_SKEW),
                 input.get(ConfigKeys.Input.IDLE_AFTER),
                 input.get(ConfigKeys.Input.MAX_EVENT_BYTES));
     }
 
-    private static FieldPointers fields(Values fields) {
-        return new FieldPointers(
-                fields.get(ConfigKeys.Fields.KIND),
-                fields.get(ConfigKeys.Fields.EXPERIMENT),
-                fields.get(ConfigKeys.Fields.VARIANT),
-                fields.get(ConfigKeys.Fields.UNIT),
-                fields.get(ConfigKeys.Fields.ID),
-                fields.get(ConfigKeys.Fields.AT),
-                fields.get(ConfigKeys.Fields.SOURCE),
-                fields.get(ConfigKeys.Fields.VIEW),
-                fields.get(ConfigKeys.Fields.SEGMENTS));
+    private static Map<EventField, String> pointers(Values fields) {
+        Map<EventField, String> pointers = new EnumMap<>(EventField.class);
+        ConfigKeys.Fields.BY_FIELD.forEach(
+                (field, key) -> fields.find(key).ifPresent(pointer -> pointers.put(field, pointer)));
+        return pointers;
+    }
+
+    private static Map<String, EventKind> kinds(Values kinds) {
+        Map<String, EventKind> meanings = new HashMap<>();
+        kinds.get(ConfigKeys.Kinds.VIEW).forEach(text -> meanings.put(text, EventKind.VIEW));
+        kinds.get(ConfigKeys.Kinds.CLICK).forEach(text -> meanings.put(text, EventKind.CLICK));
+        return meanings;
     }
 
     private static void checkProperties(Values kafka) {
@@ -134,6 +136,16 @@ public final class ConfigReader {
             }
         }
         input.find(ConfigKeys.Input.KINDS).ifPresent(ConfigReader::checkKinds);
+        input.find(ConfigKeys.Input.FIELDS).ifPresent(ConfigReader::checkFields);
+    }
+
+    /** Each pointer is sound by its type; what can still be wrong is that one lies inside another. */
+    private static void checkFields(Values fields) {
+        Map<EventField, String> pointers = pointers(fields);
+        if (pointers.size() == EventField.values().length) {
+            EventMapping.problems(pointers, EventMapping.DEFAULT.kinds())
+                    .forEach(problem -> fields.refuse(problem, ""));
+        }
     }
 
     private static void checkKinds(Values kinds) {

@@ -58,6 +58,7 @@ public record StatusSite(StatusBoard board, HealthBoard health, PrometheusExposi
         routes.get(
                 "/assets/live.js",
                 ctx -> ctx.contentType("text/javascript; charset=utf-8").result(Pages.script()));
+        routes.get("/assets/mark.svg", ctx -> ctx.contentType("image/svg+xml").result(Pages.mark()));
         routes.get("/<elsewhere>", this::nothingHere);
         routes.exception(Exception.class, (failure, ctx) -> {
             LOG.error("http: {} could not be answered; the state shown elsewhere is not affected", ctx.path(), failure);

@@ -7,6 +7,7 @@ import java.io.InputStream;
 import java.io.UncheckedIOException;
 import java.nio.charset.StandardCharsets;
 import java.time.Clock;
+import java.time.Instant;
 import java.util.Collection;
 import java.util.List;
 import java.util.Objects;
@@ -16,6 +17,7 @@ public final class Pages {
 
     private static final String STYLE_SHEET = resource("page.css");
     private static final String SCRIPT = resource("live.js");
+    private static final String MARK = resource("mark.svg");
 
     private final Clock clock;
 
@@ -24,19 +26,33 @@ public final class Pages {
         this.clock = clock;
     }
 
-    /** All experiments, problems first. */
+    /**
+     * All experiments, problems first.
+     *
+     * @param views the experiments, in the order to keep among equally urgent ones
+     * @param checks how the monitor itself is
+     */
     public String overview(Collection<ExperimentView> views, List<Health> checks) {
-        return "" + clock + views + checks;
+        List<Standing> standings = views.stream().map(Standing::new).toList();
+        Instant now = clock.instant();
+        return Frame.page(OverviewPage.title(standings), now, checks, html -> OverviewPage.write(html, standings, now));
     }
 
     /** One experiment. */
     public String experiment(ExperimentView view, List<Health> checks) {
-        return "" + clock + view + checks;
+        Standing standing = new Standing(view);
+        Instant now = clock.instant();
+        return Frame.page(
+                ExperimentPage.title(standing), now, checks, html -> ExperimentPage.write(html, standing, now));
     }
 
     /** The answer when there is no such page. */
     public String notFound() {
-        return "";
+        return Frame.page("Not here", clock.instant(), List.of(), html -> {
+            html.leaf("h1", "There is no such page on this instance");
+            html.open("p").text("An experiment may be decided by another instance of the monitor. ");
+            html.leaf("a", "What this one knows", "href", "/").text(".").close();
+        });
     }
 
     /** The style sheet of all pages. */
@@ -47,6 +63,11 @@ public final class Pages {
     /** The script of all pages: fetches the page again from time to time and shows when that fails. */
     public static String script() {
         return SCRIPT;
+    }
+
+    /** The program's mark, as an SVG image. */
+    public static String mark() {
+        return MARK;
     }
 
     private static String resource(String name) {

@@ -4,6 +4,8 @@ import static org.junit.jupiter.api.Assertions.assertEquals;
 import static org.junit.jupiter.api.Assertions.assertFalse;
 import static org.junit.jupiter.api.Assertions.assertThrows;
 
+import io.tallyward.connector.format.EventField;
+import io.tallyward.connector.format.EventMapping;
 import io.tallyward.engine.event.EventKind;
 import io.tallyward.service.config.document.BadInputException;
 import io.tallyward.service.config.document.Checked;
@@ -18,7 +20,6 @@ import java.time.Instant;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
-import java.util.Set;
 import org.junit.jupiter.api.Test;
 import org.junit.jupiter.api.io.TempDir;
 
@@ -45,17 +46,7 @@ class ConfigReaderTest {
                 new InputConfig(
                         List.of("northwater-events"),
                         new InputStart.Earliest(),
-                        new FieldPointers(
-                                "/kind",
-                                "/experiment",
-                                "/variant",
-                                "/unit",
-                                "/id",
-                                "/at",
-                                "/source",
-                                "/view",
-                                "/segments"),
-                        Map.of(EventKind.VIEW, Set.of("view"), EventKind.CLICK, Set.of("click")),
+                        EventMapping.DEFAULT,
                         Duration.ofMinutes(5),
                         Duration.ofMinutes(5),
                         65_536),
@@ -98,8 +89,10 @@ class ConfigReaderTest {
         assertEquals(
                 new InputStart.At(Instant.parse("2026-05-04T00:00:00Z")),
                 config.input().start());
-        assertEquals("/time~1stamp", config.input().fields().at());
-        assertEquals(Set.of("view", "seen"), config.input().kinds().get(EventKind.VIEW));
+        assertEquals("/time~1stamp", config.input().mapping().pointers().get(EventField.AT));
+        assertEquals(
+                Map.of("view", EventKind.VIEW, "seen", EventKind.VIEW, "tap", EventKind.CLICK),
+                config.input().mapping().kinds());
         assertEquals(directory.getParent().resolve("plans"), config.plans());
         WebhookConfig webhook = config.webhook().orElseThrow();
         assertEquals(URI.create("http://localhost:9/in?key=abc"), webhook.url());
@@ -183,6 +176,22 @@ class ConfigReaderTest {
                 messages(write("""
                         kafka: {bootstrap-servers: "127.0.0.1:9092"}
                         input: {topics: [views, views, tallyward-tallies]}
+                        """)));
+    }
+
+    @Test
+    void refusesFieldsInsideOthers() throws IOException {
+        assertEquals(
+                List.of(":2: input.fields: unit: \"/kind/unit\" (expected: not inside kind at \"/kind\")"),
+                messages(write("""
+                        kafka: {bootstrap-servers: "127.0.0.1:9092"}
+                        input: {topics: [views], fields: {unit: /kind/unit}}
+                        """)));
+        assertEquals(
+                List.of(":2: input.fields.unit: unit (expected: JSON Pointer (RFC 6901) such as /unit)"),
+                messages(write("""
+                        kafka: {bootstrap-servers: "127.0.0.1:9092"}
+                        input: {topics: [views], fields: {unit: unit}}
                         """)));
     }
 

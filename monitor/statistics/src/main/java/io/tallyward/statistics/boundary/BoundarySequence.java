@@ -22,6 +22,12 @@ public final class BoundarySequence {
      */
     public static final double LEAST_GROWTH = 1e-6;
 
+    /** A smaller share of error than this, far below anything that can happen, gets no boundary. */
+    private static final double LEAST_SHARE = 1e-290;
+
+    /** Information relative to plan beyond this is a mistake in units. */
+    static final double MOST = 1e6;
+
     private final ContinuationDensity density = new ContinuationDensity(0);
     private double upperSpent;
     private double lowerSpent;
@@ -51,8 +57,8 @@ public final class BoundarySequence {
      */
     public Look next(double information, double upperSpent, double lowerSpent) {
         prepare(information, upperSpent, lowerSpent);
-        double upperShare = upperSpent - this.upperSpent;
-        double lowerShare = lowerSpent - this.lowerSpent;
+        double upperShare = share(this.upperSpent, upperSpent);
+        double lowerShare = share(this.lowerSpent, lowerSpent);
         double upper = density.upperBoundary(information, upperShare);
         double lower = symmetric && upperShare == lowerShare ? -upper : density.lowerBoundary(information, lowerShare);
         Look look = new Look(looks() + 1, information, upperSpent, lowerSpent, upper, StrictMath.min(lower, upper));
@@ -74,19 +80,23 @@ public final class BoundarySequence {
     }
 
     private void prepare(double information, double upperSpent, double lowerSpent) {
-        double last = density.information();
-        if (!(information > 0 && information - last >= LEAST_GROWTH * information && information < 1e9)) {
-            throw new IllegalArgumentException(
-                    "information: " + information + " (expected: beyond " + last + " by a millionth at least)");
-        }
+        requireGrowth("information", information, density.information());
         requireSpending("upperSpent", upperSpent, this.upperSpent);
         requireSpending("lowerSpent", lowerSpent, this.lowerSpent);
         if (!(upperSpent + lowerSpent < 1)) {
             throw new IllegalArgumentException(
                     "upperSpent + lowerSpent: " + (upperSpent + lowerSpent) + " (expected: below 1)");
         }
-        double reach = StrictMath.max(reach(upperSpent - this.upperSpent), reach(lowerSpent - this.lowerSpent));
+        double reach =
+                StrictMath.max(reach(share(this.upperSpent, upperSpent)), reach(share(this.lowerSpent, lowerSpent)));
         density.approach(information, reach, reach);
+    }
+
+    static void requireGrowth(String name, double information, double last) {
+        if (!(information > 0 && information - last >= LEAST_GROWTH * information && information <= MOST)) {
+            throw new IllegalArgumentException(name + ": " + information + " (expected: beyond " + last
+                    + " by a millionth of itself at least, and at most " + MOST + ")");
+        }
     }
 
     private static void requireSpending(String name, double spent, double before) {
@@ -94,6 +104,11 @@ public final class BoundarySequence {
             throw new IllegalArgumentException(
                     name + ": " + spent + " (expected: at least the " + before + " spent at earlier looks)");
         }
+    }
+
+    private static double share(double before, double now) {
+        double share = now - before;
+        return share >= LEAST_SHARE ? share : 0;
     }
 
     /** How far out an unbounded side must be kept for a tail of this probability to be right. */

@@ -32,6 +32,12 @@ public record Design(
 
     private static final int MOST_EVALUATIONS = 100;
 
+    /** Expected z at the last look up to which a drift is sought. */
+    private static final double MOST_EXPECTED = 12;
+
+    /** Inflation is rarely above 1.4, which is 1.18 in drift: one step of this usually brackets it. */
+    private static final double WIDENING = 1.2;
+
     public Design {
         looks = List.copyOf(looks);
     }
@@ -50,9 +56,8 @@ public record Design(
         double[] information = request.fractions();
         double[] upper = boundaries.stream().mapToDouble(Look::upper).toArray();
         double[] lower = boundaries.stream().mapToDouble(Look::lower).toArray();
-        double greatest = greatestDrift(fixed, information);
-        ExitProfile profile = ExitProfile.of(information, upper, lower, greatest);
-        double drift = root(theta -> profile.at(theta).totalUpper() - request.power(), fixed, greatest);
+        ExitProfile profile = ExitProfile.of(information, upper, lower, 0, greatestDrift(information));
+        double drift = root(theta -> profile.at(theta).totalUpper() - request.power(), fixed, information);
         List<DesignLook> looks = boundaries.stream()
                 .map(look -> new DesignLook(look, Double.NEGATIVE_INFINITY))
                 .toList();
@@ -82,14 +87,12 @@ public record Design(
     }
 
     private static Design withFutility(DesignRequest request, List<Look> boundaries, double fixed) {
-        double greatest = greatestDrift(fixed, request.fractions());
         double drift = root(
-                theta -> exits(request, boundaries, futility(request, boundaries, theta), theta)
-                                .totalUpper()
-                        - request.power(),
+                theta -> follow(request, boundaries, theta, new double[boundaries.size()]) - request.power(),
                 fixed,
-                greatest);
-        double[] futility = futility(request, boundaries, drift);
+                request.fractions());
+        double[] futility = new double[boundaries.size()];
+        follow(request, boundaries, drift, futility);
         List<DesignLook> looks = new ArrayList<>();
         for (int k = 0; k < futility.length; k++) {
             looks.add(new DesignLook(boundaries.get(k), futility[k]));
@@ -103,17 +106,17 @@ public record Design(
                 exits(request, boundaries, futility, drift).expectedInformation());
     }
 
-    private static double[] futility(DesignRequest request, List<Look> boundaries, double drift) {
+    /** Fills in the futility bounds under a drift, the last one set to the upper boundary, and gives the power. */
+    private static double follow(DesignRequest request, List<Look> boundaries, double drift, double[] bounds) {
         SpendingFunction spending = request.futilitySpending().orElseThrow();
         FutilitySequence sequence = new FutilitySequence(drift);
-        double[] bounds = new double[boundaries.size()];
         for (int k = 0; k < bounds.length; k++) {
             Look look = boundaries.get(k);
             double spent = spending.spent(1 - request.power(), look.information());
             bounds[k] = sequence.next(look.information(), look.upper(), spent);
         }
         bounds[bounds.length - 1] = boundaries.get(bounds.length - 1).upper();
-        return bounds;
+        return sequence.power();
     }
 
     private static ExitProbabilities exits(
@@ -122,18 +125,25 @@ public record Design(
         return ExitProbabilities.of(request.fractions(), upper, futility, drift);
     }
 
-    private static double greatestDrift(double fixed, double[] information) {
-        double atTheEnd = StrictMath.sqrt(information[information.length - 1]);
-        return StrictMath.min(25 / atTheEnd, (fixed + 5) * StrictMath.max(1, 2 / atTheEnd));
+    /** Where the search for the drift ends: beyond it the power is as good as 1 unless next to nothing is spent. */
+    private static double greatestDrift(double[] information) {
+        return MOST_EXPECTED / StrictMath.sqrt(information[information.length - 1]);
     }
 
-    private static double root(UnivariateFunction shortfall, double from, double to) {
-        double low = 0.8 * from;
-        double high = StrictMath.min(1.25 * from, to);
-        while (shortfall.value(high) < 0 && high < to) {
+    private static double root(UnivariateFunction surplus, double fixed, double[] information) {
+        double greatest = greatestDrift(information);
+        // No sequential test beats the single test on the same information (Neyman and Pearson), so the search starts
+        // there.
+        double high = StrictMath.min(fixed / StrictMath.sqrt(information[information.length - 1]), greatest);
+        double low = 0.5 * high;
+        while (surplus.value(high) < 0) {
+            if (high == greatest) {
+                throw new IllegalArgumentException(
+                        "power: out of reach (expected: looks that may spend more error than these)");
+            }
             low = high;
-            high = StrictMath.min(1.25 * high, to);
+            high = StrictMath.min(WIDENING * high, greatest);
         }
-        return new BrentSolver(0, DRIFT_ACCURACY, 0).solve(MOST_EVALUATIONS, shortfall, low, high);
+        return new BrentSolver(0, DRIFT_ACCURACY, 0).solve(MOST_EVALUATIONS, surplus, low, high);
     }
 }

@@ -28,10 +28,20 @@ public record DesignRequest(
         if (!(power > 0.5 && power < 1)) {
             throw new IllegalArgumentException("power: " + power + " (expected: in (0.5, 1))");
         }
+        fractions = fractions.clone();
+        requireFractions(fractions);
+    }
+
+    private static void requireFractions(double[] fractions) {
         if (fractions.length == 0) {
             throw new IllegalArgumentException("fractions: none (expected: at least one look)");
         }
-        fractions = fractions.clone();
+        for (int k = 0; k < fractions.length - 1; k++) {
+            if (!(fractions[k] < 1)) {
+                throw new IllegalArgumentException("fractions[" + k + "]: " + fractions[k]
+                        + " (expected: below 1, as error must be left for the last look)");
+            }
+        }
     }
 
     @Override

@@ -47,12 +47,7 @@ public final class ExitProbabilities {
         }
         double last = 0;
         for (int k = 0; k < looks; k++) {
-            if (!(information[k] > 0
-                    && information[k] - last >= BoundarySequence.LEAST_GROWTH * information[k]
-                    && information[k] < Double.POSITIVE_INFINITY)) {
-                throw new IllegalArgumentException("information[" + k + "]: " + information[k] + " (expected: beyond "
-                        + last + " by a millionth at least)");
-            }
+            BoundarySequence.requireGrowth("information[" + k + "]", information[k], last);
             if (!(lower[k] <= upper[k])) {
                 throw new IllegalArgumentException(
                         "lower[" + k + "]: " + lower[k] + " (expected: at most upper[" + k + "], " + upper[k] + ")");

@@ -17,23 +17,26 @@ public final class ExitProfile {
     private final double[] information;
     private final double[] upper;
     private final double[] lower;
+    private final double leastDrift;
     private final double greatestDrift;
     private final double[][] nodes;
     private final double[][] masses;
 
-    private ExitProfile(double[] information, double[] upper, double[] lower, double greatestDrift) {
+    private ExitProfile(double[] information, double[] upper, double[] lower, double leastDrift, double greatestDrift) {
         this.information = information;
         this.upper = upper;
         this.lower = lower;
+        this.leastDrift = leastDrift;
         this.greatestDrift = greatestDrift;
         int looks = information.length;
         nodes = new double[looks][];
         masses = new double[looks][];
         ContinuationDensity density = new ContinuationDensity(0);
         for (int k = 0; k < looks; k++) {
-            double mean = greatestDrift * StrictMath.sqrt(density.information());
-            double reach = ContinuationDensity.TRUNCATION + mean;
-            density.approach(information[k], reach, reach);
+            double root = StrictMath.sqrt(density.information());
+            double below = ContinuationDensity.TRUNCATION - StrictMath.min(leastDrift, 0) * root;
+            double above = ContinuationDensity.TRUNCATION + StrictMath.max(greatestDrift, 0) * root;
+            density.approach(information[k], below, above);
             nodes[k] = density.nodes();
             masses[k] = density.masses();
             density.stop(information[k], lower[k], upper[k]);
@@ -46,23 +49,26 @@ public final class ExitProfile {
      * @param information information of each look relative to the planned maximum, ascending
      * @param upper upper boundary of each look for z; positive infinity for none
      * @param lower lower boundary of each look for z; negative infinity for none
-     * @param greatestDrift the largest absolute drift that will be asked for; its mean at the last look must stay within
-     *     25 standard deviations
+     * @param leastDrift the least drift that will be asked for
+     * @param greatestDrift the greatest drift that will be asked for; under neither may the mean at the last look be more
+     *     than 25 standard deviations from 0
      */
-    public static ExitProfile of(double[] information, double[] upper, double[] lower, double greatestDrift) {
+    public static ExitProfile of(
+            double[] information, double[] upper, double[] lower, double leastDrift, double greatestDrift) {
         ExitProbabilities.requireLooks(information, upper, lower);
-        double mean = greatestDrift * StrictMath.sqrt(information[information.length - 1]);
-        if (!(greatestDrift >= 0 && mean <= FARTHEST_MEAN)) {
-            throw new IllegalArgumentException("greatestDrift: " + greatestDrift
-                    + " (expected: 0 or more, at most 25 over the root of the last information)");
+        double farthest = FARTHEST_MEAN / StrictMath.sqrt(information[information.length - 1]);
+        if (!(leastDrift >= -farthest && leastDrift <= greatestDrift && greatestDrift <= farthest)) {
+            throw new IllegalArgumentException("leastDrift, greatestDrift: " + leastDrift + ", " + greatestDrift
+                    + " (expected: ascending, within " + farthest + " of 0)");
         }
-        return new ExitProfile(information.clone(), upper.clone(), lower.clone(), greatestDrift);
+        return new ExitProfile(information.clone(), upper.clone(), lower.clone(), leastDrift, greatestDrift);
     }
 
-    /** The exit probabilities under a drift no larger than the one prepared for, in absolute value. */
+    /** The exit probabilities under a drift within the range prepared for. */
     public ExitProbabilities at(double drift) {
-        if (!(StrictMath.abs(drift) <= greatestDrift)) {
-            throw new IllegalArgumentException("drift: " + drift + " (expected: within " + greatestDrift + " of 0)");
+        if (!(drift >= leastDrift && drift <= greatestDrift)) {
+            throw new IllegalArgumentException(
+                    "drift: " + drift + " (expected: in [" + leastDrift + ", " + greatestDrift + "])");
         }
         int looks = information.length;
         double[] up = new double[looks];
@@ -77,8 +83,12 @@ public final class ExitProfile {
             for (int j = 0; j < nodes[k].length; j++) {
                 double from = nodes[k][j] / root;
                 double mass = masses[k][j] * StrictMath.exp(drift * nodes[k][j] + offset);
-                up[k] += mass * Normal.survival(high - from);
-                down[k] += mass * Normal.cdf(low - from);
+                if (upper[k] < Double.POSITIVE_INFINITY) {
+                    up[k] += mass * Normal.survival(high - from);
+                }
+                if (lower[k] > Double.NEGATIVE_INFINITY) {
+                    down[k] += mass * Normal.cdf(low - from);
+                }
             }
             origin = information[k];
         }

@@ -16,6 +16,7 @@ public final class FutilitySequence {
     private final double drift;
     private final ContinuationDensity density;
     private double spent;
+    private double found;
 
     /** @param drift expected z at information 1 if the effect is the one worth finding; positive */
     public FutilitySequence(double drift) {
@@ -34,6 +35,14 @@ public final class FutilitySequence {
     /** The drift under which the type II error is spent. */
     public double drift() {
         return drift;
+    }
+
+    /**
+     * The probability, under the drift, that an efficacy boundary has been reached by now and no futility bound before:
+     * after the last look, the power with futility obeyed.
+     */
+    public double power() {
+        return found;
     }
 
     /**
@@ -68,13 +77,7 @@ public final class FutilitySequence {
     }
 
     private void prepare(double information, double upperBoundary, double cumulativeBetaSpent) {
-        double last = density.information();
-        if (!(information > 0
-                && information - last >= BoundarySequence.LEAST_GROWTH * information
-                && information < 1e9)) {
-            throw new IllegalArgumentException(
-                    "information: " + information + " (expected: beyond " + last + " by a millionth at least)");
-        }
+        BoundarySequence.requireGrowth("information", information, density.information());
         if (Double.isNaN(upperBoundary)) {
             throw new IllegalArgumentException("upperBoundary: NaN (expected: a number or an infinity)");
         }
@@ -87,6 +90,7 @@ public final class FutilitySequence {
 
     private void accept(double information, double upperBoundary, double cumulativeBetaSpent, double bound) {
         spent = cumulativeBetaSpent;
+        found += density.above(information, upperBoundary);
         density.stop(information, bound, upperBoundary);
     }
 }

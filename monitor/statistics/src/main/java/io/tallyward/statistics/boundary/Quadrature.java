@@ -12,8 +12,8 @@ import org.apache.commons.math3.analysis.integration.gauss.GaussIntegratorFactor
 record Quadrature(double[] points, double[] weights) {
 
     /**
-     * Twelve points for every two standard deviations of the narrower neighbouring kernel. Against twenty points for
-     * every one and a half, boundaries move by less than 2e-14 in z over 168 looks.
+     * Twelve points for every two standard deviations of the narrower neighbouring kernel. Boundaries then agree with
+     * rules of sixteen and twenty points, which the reference files used, to 6e-14 in z over up to 168 looks.
      */
     private static final int POINTS = 12;
 
@@ -47,5 +47,16 @@ record Quadrature(double[] points, double[] weights) {
             }
         }
         return new Quadrature(points, weights);
+    }
+
+    /** The rule after a change of variable to {@code factor} times the old one. */
+    Quadrature scaled(double factor) {
+        double[] x = points.clone();
+        double[] w = weights.clone();
+        for (int i = 0; i < x.length; i++) {
+            x[i] *= factor;
+            w[i] *= factor;
+        }
+        return new Quadrature(x, w);
     }
 }

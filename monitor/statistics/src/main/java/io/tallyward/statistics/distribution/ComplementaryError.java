@@ -67,29 +67,13 @@ final class ComplementaryError {
     /** {@code exp(x^2) * erfc(x)} for {@code x >= 0}. */
     static double scaled(double x) {
         if (x <= SMALL) {
-            return StrictMath.exp(x * x) * (1 - errorNearZero(x));
+            return StrictMath.exp(x * x) * (1 - x * ratio(ERF_NUMERATOR, ERF_DENOMINATOR, x * x));
         }
         if (x <= MIDDLE) {
             return ratio(MIDDLE_NUMERATOR, MIDDLE_DENOMINATOR, x);
         }
         double y = 1 / (x * x);
         return (ONE_OVER_ROOT_PI - y * ratio(FAR_NUMERATOR, FAR_DENOMINATOR, y)) / x;
-    }
-
-    /** {@code erfc(x)} for {@code x >= 0}; 0 where it underflows. */
-    static double of(double x) {
-        return x <= SMALL ? 1 - errorNearZero(x) : scaled(x) * expMinusSquare(x);
-    }
-
-    /** {@code exp(-x^2)}, the square split so that its rounding does not grow with {@code x} (Cody 1969). */
-    static double expMinusSquare(double x) {
-        double head = StrictMath.floor(x * 16) / 16;
-        double tail = (x - head) * (x + head);
-        return StrictMath.exp(-head * head) * StrictMath.exp(-tail);
-    }
-
-    private static double errorNearZero(double x) {
-        return x * ratio(ERF_NUMERATOR, ERF_DENOMINATOR, x * x);
     }
 
     private static double ratio(double[] numerator, double[] denominator, double x) {

@@ -7,6 +7,10 @@ package io.tallyward.statistics.distribution;
 public final class Normal {
 
     private static final double ROOT_HALF = StrictMath.sqrt(0.5);
+
+    /** {@code exp(-x^2/2)} is below half the smallest double from here on. */
+    private static final double UNDERFLOW = 38.7;
+
     private static final double ONE_OVER_ROOT_TWO_PI = 1 / StrictMath.sqrt(2 * StrictMath.PI);
 
     /** Halley steps triple the digits; the start has three, so two would do and a third settles the last bit. */
@@ -19,7 +23,7 @@ public final class Normal {
 
     /** The density at {@code x}. */
     public static double density(double x) {
-        return ONE_OVER_ROOT_TWO_PI * ComplementaryError.expMinusSquare(StrictMath.abs(x) * ROOT_HALF);
+        return ONE_OVER_ROOT_TWO_PI * bell(StrictMath.abs(x));
     }
 
     /** The probability of at most {@code x}. */
@@ -29,14 +33,13 @@ public final class Normal {
 
     /** The probability of at least {@code x}. */
     public static double survival(double x) {
-        double scaled = x * ROOT_HALF;
-        return scaled >= 0 ? 0.5 * ComplementaryError.of(scaled) : 1 - 0.5 * ComplementaryError.of(-scaled);
+        return x >= 0 ? tail(x) : 1 - tail(-x);
     }
 
     /** The natural logarithm of {@link #survival}; finite wherever {@code x*x} is. */
     public static double logSurvival(double x) {
         if (x <= 0) {
-            return StrictMath.log1p(-survival(-x));
+            return StrictMath.log1p(-tail(-x));
         }
         return StrictMath.log(0.5 * ComplementaryError.scaled(x * ROOT_HALF)) - 0.5 * x * x;
     }
@@ -70,6 +73,20 @@ public final class Normal {
             return Double.NEGATIVE_INFINITY;
         }
         throw new IllegalArgumentException("p: " + p + " (expected: in [0, 1])");
+    }
+
+    private static double tail(double x) {
+        return 0.5 * ComplementaryError.scaled(x * ROOT_HALF) * bell(x);
+    }
+
+    /** {@code exp(-x^2/2)} for {@code x >= 0}, the square split so that its rounding does not grow (Cody 1969). */
+    private static double bell(double x) {
+        if (x > UNDERFLOW) {
+            return 0;
+        }
+        double head = StrictMath.floor(x * 16) / 16;
+        double rest = (x - head) * (x + head);
+        return StrictMath.exp(-0.5 * head * head) * StrictMath.exp(-0.5 * rest);
     }
 
     /** Abramowitz and Stegun (1964) 26.2.23, after Hastings; absolute error below 4.5e-4 for p in (0, 0.5]. */

@@ -1,0 +1,127 @@
+package io.tallyward.connector.kafka;
+
+import static java.util.Map.entry;
+
+import java.time.Duration;
+import java.util.HashMap;
+import java.util.Map;
+import java.util.Set;
+import org.apache.kafka.clients.admin.Admin;
+
+/**
+ * Properties of the clients. Three layers: proposals made here, which measurements on two shared cores support; what the
+ * operator sets; and what exactness rests on, which comes last.
+ */
+final class ClientSettings {
+
+    /** Would be shared by all workers of all groups, which each need their own. */
+    private static final Set<String> NOT_PASSED_ON =
+            Set.of("group.instance.id", "group.remote.assignor", "transactional.id", "client.id");
+
+    /** How long one request may take; well under the transaction timeout, so that an outage is noticed within it. */
+    private static final String REQUEST_TIMEOUT_MILLIS = "10000";
+
+    /**
+     * An abandoned transaction holds back its successor and every reader of what it wrote until it times out, so this is
+     * short; commits take milliseconds.
+     */
+    private static final String TRANSACTION_TIMEOUT_MILLIS = "15000";
+
+    /** The longest that a fetch may wait for its fill; latency is then bounded by this and the commit interval. */
+    private static final long LONGEST_FETCH_WAIT_MILLIS = 250;
+
+    private static final Map<String, String> PROPOSED_FOR_ALL = Map.ofEntries(
+            entry("request.timeout.ms", REQUEST_TIMEOUT_MILLIS),
+            entry("default.api.timeout.ms", "20000"),
+            entry("reconnect.backoff.ms", "100"),
+            entry("reconnect.backoff.max.ms", "5000"),
+            entry("enable.metrics.push", "false"));
+
+    /** Large fetches: with the library's own settings polling costs about a third more CPU per event. */
+    private static final Map<String, String> PROPOSED_FOR_INPUT = Map.ofEntries(
+            entry("max.poll.records", "20000"),
+            entry("fetch.min.bytes", "1048576"),
+            entry("max.partition.fetch.bytes", "4194304"),
+            entry("receive.buffer.bytes", "1048576"),
+            entry("session.timeout.ms", "15000"),
+            entry("heartbeat.interval.ms", "3000"));
+
+    private static final Map<String, String> FIXED_FOR_READING = Map.ofEntries(
+            entry("isolation.level", "read_committed"),
+            entry("enable.auto.commit", "false"),
+            entry("allow.auto.create.topics", "false"));
+
+    private static final Map<String, String> PROPOSED_FOR_OUTPUT = Map.ofEntries(
+            entry("compression.type", "lz4"),
+            entry("batch.size", "131072"),
+            entry("max.block.ms", REQUEST_TIMEOUT_MILLIS),
+            entry("delivery.timeout.ms", TRANSACTION_TIMEOUT_MILLIS),
+            entry("transaction.timeout.ms", TRANSACTION_TIMEOUT_MILLIS));
+
+    private ClientSettings() {}
+
+    static Cluster cluster(Map<String, String> clientProperties) {
+        return new AdminCluster(Admin.create(layered(clientProperties, Map.of(), Map.of())));
+    }
+
+    /** For reading a topic as a member of a group whose partitions are assigned in ranges. */
+    static Map<String, Object> input(ShardGroup group, int worker) {
+        Map<String, String> proposed = new HashMap<>(PROPOSED_FOR_INPUT);
+        proposed.put("fetch.max.wait.ms", Long.toString(fetchWaitMillis(group.commitInterval())));
+        Map<String, String> fixed = new HashMap<>(FIXED_FOR_READING);
+        fixed.put("group.id", group.id());
+        fixed.put("client.id", clientId(group, worker));
+        fixed.put("group.protocol", "classic");
+        fixed.put("partition.assignment.strategy", "org.apache.kafka.clients.consumer.RangeAssignor");
+        fixed.put("auto.offset.reset", "none");
+        return layered(group.clientProperties(), proposed, fixed);
+    }
+
+    static Map<String, Object> state(ShardGroup group, int worker) {
+        Map<String, String> fixed = new HashMap<>(FIXED_FOR_READING);
+        fixed.put("client.id", clientId(group, worker) + "-state");
+        fixed.put("auto.offset.reset", "earliest");
+        return layered(group.clientProperties(), Map.of("max.poll.records", "5000"), fixed);
+    }
+
+    static Map<String, Object> output(ShardGroup group, int worker) {
+        Map<String, String> fixed = new HashMap<>();
+        fixed.put("transactional.id", clientId(group, worker));
+        fixed.put("client.id", clientId(group, worker));
+        fixed.put("acks", "all");
+        fixed.put("enable.idempotence", "true");
+        return layered(group.clientProperties(), PROPOSED_FOR_OUTPUT, fixed);
+    }
+
+    /** For an outbox: small polls in its own group, from the beginning where nothing is committed. */
+    static Map<String, Object> outbox(Map<String, String> clientProperties, String group, int mostRecords) {
+        Map<String, String> proposed = Map.of("session.timeout.ms", "15000", "heartbeat.interval.ms", "3000");
+        Map<String, String> fixed = new HashMap<>(FIXED_FOR_READING);
+        fixed.put("group.id", group);
+        fixed.put("group.protocol", "classic");
+        fixed.put("auto.offset.reset", "earliest");
+        fixed.put("max.poll.records", Integer.toString(mostRecords));
+        return layered(clientProperties, proposed, fixed);
+    }
+
+    private static String clientId(ShardGroup group, int worker) {
+        return group.id() + "-" + group.instance() + "-" + worker;
+    }
+
+    private static long fetchWaitMillis(Duration commitInterval) {
+        return Math.max(10, Math.min(LONGEST_FETCH_WAIT_MILLIS, commitInterval.toMillis() / 2));
+    }
+
+    private static Map<String, Object> layered(
+            Map<String, String> operator, Map<String, String> proposed, Map<String, String> fixed) {
+        Map<String, Object> settings = new HashMap<>(PROPOSED_FOR_ALL);
+        settings.putAll(proposed);
+        operator.forEach((name, value) -> {
+            if (!NOT_PASSED_ON.contains(name)) {
+                settings.put(name, value);
+            }
+        });
+        settings.putAll(fixed);
+        return settings;
+    }
+}

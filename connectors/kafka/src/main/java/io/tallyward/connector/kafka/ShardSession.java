@@ -1,0 +1,277 @@
+package io.tallyward.connector.kafka;
+
+import java.time.Duration;
+import java.time.InstantSource;
+import java.util.ArrayList;
+import java.util.List;
+import java.util.Map;
+import java.util.Optional;
+import java.util.OptionalLong;
+import java.util.function.BooleanSupplier;
+import org.apache.kafka.clients.consumer.CloseOptions;
+import org.apache.kafka.clients.consumer.Consumer;
+import org.apache.kafka.clients.consumer.ConsumerRecord;
+import org.apache.kafka.clients.consumer.ConsumerRecords;
+import org.apache.kafka.clients.consumer.OffsetAndMetadata;
+import org.apache.kafka.clients.consumer.OffsetOutOfRangeException;
+import org.apache.kafka.common.KafkaException;
+import org.apache.kafka.common.TopicPartition;
+import org.apache.kafka.common.errors.WakeupException;
+import org.slf4j.Logger;
+import org.slf4j.LoggerFactory;
+
+/**
+ * One membership in the group: a consumer, its transactions, and the shards of the partitions it has been given. Driven
+ * step by step by one thread, which is what the tests do too. A step that throws a {@link KafkaException} or a
+ * {@link BrokerException} is followed by {@link #forget()}, or, if polling itself failed, by {@link #abandon()}.
+ */
+final class ShardSession {
+
+    private static final Logger LOG = LoggerFactory.getLogger(ShardSession.class);
+
+    private static final Duration POLL = Duration.ofMillis(100);
+    private static final Duration CLOSE_PATIENCE = Duration.ofSeconds(2);
+
+    private final ShardGroup group;
+    private final InstantSource clock;
+    private final BooleanSupplier stopping;
+    private final StatusBoard board;
+    private final int partitions;
+    private final Cluster cluster;
+    private final Consumer<byte[], byte[]> consumer;
+    private final Transactions transactions;
+    private final ShardRestorer restorer;
+    private final Contact contact;
+    private final AssignedShards assigned;
+
+    private long lastCycleMillis;
+    private long cycles;
+    private boolean pollFailed;
+
+    /**
+     * Connects, checks the topics and joins the group.
+     *
+     * @throws BrokerException if the topics are not as they have to be
+     * @throws KafkaException if the broker does not answer
+     */
+    ShardSession(ShardGroup group, Clients clients, InstantSource clock, BooleanSupplier stopping, StatusBoard board) {
+        this.group = group;
+        this.clock = clock;
+        this.stopping = stopping;
+        this.board = board;
+        this.cluster = clients.cluster();
+        try {
+            this.partitions = GroupLayout.resolve(group, cluster);
+            this.consumer = clients.input();
+        } catch (RuntimeException failure) {
+            cluster.close();
+            throw failure;
+        }
+        this.transactions = new Transactions(clients);
+        this.contact = new Contact(consumer, cluster);
+        this.restorer = new ShardRestorer(group, clients, cluster, consumer, partitions);
+        this.assigned = new AssignedShards(consumer, partitions, this::commitBeforeRevocation, contact::reset);
+        this.lastCycleMillis = clock.millis();
+        consumer.subscribe(group.inputTopics(), assigned);
+    }
+
+    /** Restores at most one shard, reads once, and commits if the interval has passed. */
+    void step() {
+        if (assigned.layoutChanged()) {
+            throw new BrokerException("a topic of " + group.inputTopics() + " has grown beyond " + partitions
+                    + " partitions on " + group.broker() + ": its shards are being laid out anew");
+        }
+        if (assigned.hasWaiting()) {
+            restoreNext();
+        }
+        apply(poll());
+        board.hosting(assigned.running().keySet());
+        long now = clock.millis();
+        if (Elapsed.since(lastCycleMillis, now, group.commitInterval())) {
+            lastCycleMillis = now;
+            cycle(now);
+        }
+    }
+
+    private void restoreNext() {
+        long began = System.nanoTime();
+        int partition = assigned.firstWaiting();
+        transactions.ready();
+        ShardRestorer.Restored restored = restorer.restore(partition, assigned.inputs(partition), stopping);
+        assigned.started(partition, restored);
+        board.restored(Duration.ofNanos(System.nanoTime() - began).toMillis());
+        if (!assigned.hasWaiting()) {
+            restorer.pause();
+        }
+    }
+
+    private ConsumerRecords<byte[], byte[]> poll() {
+        ConsumerRecords<byte[], byte[]> records;
+        try {
+            records = consumer.poll(assigned.hasWaiting() ? Duration.ZERO : POLL);
+        } catch (OffsetOutOfRangeException deleted) {
+            skipDeleted(deleted);
+            records = ConsumerRecords.empty();
+        } catch (WakeupException stop) {
+            throw stop;
+        } catch (RuntimeException failure) {
+            pollFailed = true;
+            throw failure;
+        } finally {
+            assigned.throwCallbackFailure();
+        }
+        return records;
+    }
+
+    private void skipDeleted(OffsetOutOfRangeException deleted) {
+        Map<TopicPartition, Long> wanted = deleted.offsetOutOfRangePartitions();
+        Map<TopicPartition, Long> oldest = consumer.beginningOffsets(wanted.keySet());
+        wanted.forEach((partition, offset) -> {
+            String sentence = "records of " + partition + " from offset " + offset + " to " + oldest.get(partition)
+                    + " were gone before they could be read: reading goes on with what is left;"
+                    + " give the topic a longer retention than the longest stop";
+            LOG.warn(sentence);
+            board.error(sentence);
+            consumer.seek(partition, oldest.get(partition));
+        });
+    }
+
+    private void apply(ConsumerRecords<byte[], byte[]> records) {
+        for (TopicPartition partition : records.partitions()) {
+            GuardedShard shard = assigned.running().get(partition.partition());
+            if (shard == null) {
+                throw new IllegalStateException(partition + " delivered records without a shard to take them");
+            }
+            for (ConsumerRecord<byte[], byte[]> record : records.records(partition)) {
+                shard.apply(record);
+            }
+        }
+        board.consumed(records.count());
+    }
+
+    private void cycle(long nowMillis) {
+        contact.refresh(nowMillis);
+        assigned.running()
+                .forEach((partition, shard) ->
+                        shard.passTime(nowMillis, topic -> contact.caughtUp(new TopicPartition(topic, partition))));
+        commit();
+        board.lag(lag());
+        if (contact.trouble().isEmpty() && !assigned.hasWaiting()) {
+            cycles++;
+        }
+    }
+
+    private void commit() {
+        List<Output> outputs = new ArrayList<>();
+        assigned.running().values().forEach(shard -> outputs.addAll(shard.drain()));
+        Map<TopicPartition, OffsetAndMetadata> positions = assigned.positions();
+        if (outputs.isEmpty() && assigned.isCommitted(positions)) {
+            return;
+        }
+        try {
+            transactions.commit(outputs, positions, consumer.groupMetadata());
+        } catch (RuntimeException failure) {
+            board.aborted();
+            throw failure;
+        }
+        assigned.committed(positions);
+        board.committed(clock.instant());
+    }
+
+    /** Called by the consumer while it polls or closes: the last chance to make the shards' work durable. */
+    private void commitBeforeRevocation() {
+        try {
+            commit();
+        } catch (KafkaException | BrokerException failure) {
+            LOG.info(
+                    "{}: the last commit before letting go failed and will be repeated by whoever takes over: {}",
+                    group.id(),
+                    BrokerSentence.of(failure, group.broker()).text());
+            assigned.forgetRunning();
+        }
+    }
+
+    private OptionalLong lag() {
+        long sum = 0;
+        for (TopicPartition partition : assigned.positions().keySet()) {
+            OptionalLong lag = consumer.currentLag(partition);
+            if (lag.isEmpty()) {
+                return OptionalLong.empty();
+            }
+            sum += lag.getAsLong();
+        }
+        return OptionalLong.of(sum);
+    }
+
+    /** Throws all shards away, to be restored; keeps the membership. */
+    void forget() {
+        assigned.forgetRunning();
+        restorer.pause();
+        board.hosting(List.of());
+    }
+
+    /** Stays a member of the group while nothing else is to be done. */
+    void keepMembership() {
+        poll();
+    }
+
+    /** Whether the membership itself is beyond use. */
+    boolean mustBeAbandoned() {
+        return pollFailed || assigned.layoutChanged();
+    }
+
+    /** How many commit cycles have ended well, with all shards restored and all brokers answering. */
+    long cycles() {
+        return cycles;
+    }
+
+    boolean restoring() {
+        return assigned.hasWaiting();
+    }
+
+    /** What the session is doing as long as nothing is wrong. */
+    WorkerState state() {
+        if (restoring()) {
+            return WorkerState.RESTORING;
+        }
+        return assigned.joined() ? WorkerState.RUNNING : WorkerState.STARTING;
+    }
+
+    Optional<KafkaException> trouble() {
+        return contact.trouble();
+    }
+
+    void wakeup() {
+        consumer.wakeup();
+    }
+
+    /** Commits a last time and leaves the group; a failure is logged, because whoever restarts repeats the work. */
+    void finish() {
+        try {
+            commitBeforeRevocation();
+        } finally {
+            abandon();
+        }
+    }
+
+    /** Leaves without committing. */
+    void abandon() {
+        try {
+            assigned.releaseAll();
+        } finally {
+            restorer.pause();
+            closeQuietly(() -> consumer.close(CloseOptions.timeout(CLOSE_PATIENCE)));
+            closeQuietly(transactions::close);
+            closeQuietly(cluster::close);
+            board.hosting(List.of());
+        }
+    }
+
+    private void closeQuietly(Runnable close) {
+        try {
+            close.run();
+        } catch (KafkaException failure) {
+            LOG.debug("{}: a client did not close in order", group.id(), failure);
+        }
+    }
+}

@@ -1,0 +1,100 @@
+package io.tallyward.connector.kafka;
+
+import java.time.Duration;
+import java.util.List;
+import java.util.Map;
+import org.apache.kafka.clients.consumer.ConsumerGroupMetadata;
+import org.apache.kafka.clients.consumer.OffsetAndMetadata;
+import org.apache.kafka.clients.producer.Producer;
+import org.apache.kafka.clients.producer.ProducerRecord;
+import org.apache.kafka.common.KafkaException;
+import org.apache.kafka.common.TopicPartition;
+import org.apache.kafka.common.errors.RecordTooLargeException;
+import org.apache.kafka.common.errors.TimeoutException;
+
+/**
+ * One worker's transactions: outputs and offsets together or not at all. After a failure the producer is thrown away; the
+ * next one carries the same transactional id, so that making it ready also ends whatever its predecessor left open.
+ */
+final class Transactions implements AutoCloseable {
+
+    private static final Duration CLOSE_PATIENCE = Duration.ofSeconds(1);
+
+    private final Clients clients;
+    private Producer<byte[], byte[]> producer;
+
+    Transactions(Clients clients) {
+        this.clients = clients;
+    }
+
+    /** Makes a producer if there is none, and waits until no earlier transaction of this worker is open. */
+    void ready() {
+        if (producer != null) {
+            return;
+        }
+        Producer<byte[], byte[]> fresh = clients.output();
+        try {
+            fresh.initTransactions();
+        } catch (RuntimeException failure) {
+            fresh.close(Duration.ZERO);
+            throw failure;
+        }
+        producer = fresh;
+    }
+
+    /**
+     * Commits. The offsets always go along, even if none has moved: they are what fences a member that the group has left
+     * behind.
+     */
+    void commit(List<Output> outputs, Map<TopicPartition, OffsetAndMetadata> offsets, ConsumerGroupMetadata member) {
+        ready();
+        try {
+            producer.beginTransaction();
+            for (Output output : outputs) {
+                producer.send(record(output));
+            }
+            producer.sendOffsetsToTransaction(offsets, member);
+            producer.commitTransaction();
+        } catch (RuntimeException failure) {
+            discard(failure);
+            RecordTooLargeException tooLarge = BrokerSentence.find(failure, RecordTooLargeException.class);
+            if (tooLarge != null) {
+                throw new ShardFailure("a shard broke its promise to keep records small", tooLarge);
+            }
+            throw failure;
+        }
+    }
+
+    /** Throws the producer away; an open transaction is aborted now if that is possible, else when the next is ready. */
+    private void discard(RuntimeException failure) {
+        Producer<byte[], byte[]> broken = producer;
+        producer = null;
+        if (broken == null) {
+            return;
+        }
+        try {
+            if (BrokerSentence.find(failure, TimeoutException.class) == null) {
+                broken.abortTransaction();
+            }
+        } catch (KafkaException | IllegalStateException alsoFailed) {
+            failure.addSuppressed(alsoFailed);
+        } finally {
+            broken.close(Duration.ZERO);
+        }
+    }
+
+    @Override
+    public void close() {
+        if (producer != null) {
+            producer.close(CLOSE_PATIENCE);
+            producer = null;
+        }
+    }
+
+    private static ProducerRecord<byte[], byte[]> record(Output output) {
+        ProducerRecord<byte[], byte[]> record =
+                new ProducerRecord<>(output.topic(), output.partition(), output.key(), output.value());
+        output.headers().forEach((name, value) -> record.headers().add(name, value));
+        return record;
+    }
+}

@@ -1,0 +1,48 @@
+package io.tallyward.connector.kafka;
+
+import static org.junit.jupiter.api.Assertions.assertEquals;
+import static org.junit.jupiter.api.Assertions.assertFalse;
+
+import java.time.Duration;
+import java.util.List;
+import java.util.Map;
+import org.junit.jupiter.api.Test;
+
+class ClientSettingsTest {
+
+    @Test
+    void letsTheOperatorTuneButNotWeaken() {
+        ShardGroup group = group(Map.of(
+                "max.poll.records", "500",
+                "isolation.level", "read_uncommitted",
+                "enable.auto.commit", "true",
+                "group.instance.id", "shared",
+                "transactional.id", "shared",
+                "acks", "1"));
+        Map<String, Object> input = ClientSettings.input(group, 1);
+        assertEquals("500", input.get("max.poll.records"));
+        assertEquals("read_committed", input.get("isolation.level"));
+        assertEquals("false", input.get("enable.auto.commit"));
+        assertFalse(input.containsKey("group.instance.id"));
+        Map<String, Object> output = ClientSettings.output(group, 1);
+        assertEquals("counters-blue-1", output.get("transactional.id"));
+        assertEquals("all", output.get("acks"));
+    }
+
+    @Test
+    void keepsSecretsOutOfWhatItPrints() {
+        assertFalse(group(Map.of("sasl.jaas.config", "hidden")).toString().contains("hidden"));
+    }
+
+    private static ShardGroup group(Map<String, String> properties) {
+        return ShardGroup.builder("counters")
+                .instance("blue")
+                .bootstrapServers("broker:9092")
+                .clientProperties(properties)
+                .inputTopics(List.of("views"))
+                .stateTopic("states")
+                .commitInterval(Duration.ofSeconds(1))
+                .shards((partition, partitions) -> new CountingShard("states", "told", partition, line -> {}))
+                .build();
+    }
+}

@@ -1,0 +1,31 @@
+package io.tallyward.engine;
+
+import io.tallyward.engine.event.Event;
+import io.tallyward.engine.event.EventKind;
+import java.util.Map;
+
+/** Builds events, timed in minutes from the start of the run. */
+public final class Events {
+
+    private static final double MILLIS_PER_MINUTE = 60_000;
+
+    private Events() {}
+
+    /** Event time of a moment of the run; fractions of a minute are exact to the millisecond. */
+    public static long at(double minute) {
+        return Plans.FROM.toEpochMilli() + Math.round(minute * MILLIS_PER_MINUTE);
+    }
+
+    public static Event view(String experiment, String variant, String unit, String id, double minute) {
+        return event(EventKind.VIEW, experiment, variant, unit, id, at(minute));
+    }
+
+    public static Event click(String experiment, String variant, String unit, String id, double minute) {
+        return event(EventKind.CLICK, experiment, variant, unit, id, at(minute));
+    }
+
+    public static Event event(
+            EventKind kind, String experiment, String variant, String unit, String id, long atMillis) {
+        return new Event(kind, experiment, variant, unit, "northwater-web", id, atMillis, "", Map.of());
+    }
+}

@@ -1,0 +1,76 @@
+package io.tallyward.service.command;
+
+import com.fasterxml.jackson.databind.node.ArrayNode;
+import com.fasterxml.jackson.databind.node.ObjectNode;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.service.config.ConfigReader;
+import io.tallyward.service.config.ServiceConfig;
+import io.tallyward.service.config.document.BadInputException;
+import io.tallyward.service.config.document.Checked;
+import io.tallyward.service.plan.PlanDirectory;
+import java.nio.file.Path;
+import java.util.List;
+import java.util.Map;
+import picocli.CommandLine.Command;
+import picocli.CommandLine.Option;
+
+/** Says everything that would keep the service from running. */
+@Command(
+        name = "check",
+        description = "Check configuration, plans and broker, and report all problems at once.",
+        mixinStandardHelpOptions = true)
+final class CheckCommand extends CommandBase {
+
+    private final Map<String, String> environment;
+    private final TopicLookup lookup;
+
+    @Option(names = "--config", required = true, paramLabel = "FILE", description = "The configuration file.")
+    private Path file;
+
+    @Option(names = "--no-broker", description = "Do not contact the broker.")
+    private boolean withoutBroker;
+
+    CheckCommand(Map<String, String> environment, TopicLookup lookup) {
+        this.environment = environment;
+        this.lookup = lookup;
+    }
+
+    @Override
+    ExitCode run(Output output) throws BadInputException {
+        ServiceConfig config = new ConfigReader(environment).read(file).orElseThrow();
+        Checked<List<Plan>> plans = PlanDirectory.read(config.plans());
+        BrokerCheck broker = withoutBroker ? BrokerCheck.SKIPPED : BrokerCheck.of(config, lookup);
+        output.problems(plans.problems());
+        broker.problems().forEach(output::problem);
+        if (!plans.problems().isEmpty()) {
+            return ExitCode.BAD_INPUT;
+        }
+        if (!broker.problems().isEmpty()) {
+            return ExitCode.BROKEN_SURROUNDINGS;
+        }
+        report(output, config, plans.orElseThrow(), broker);
+        return ExitCode.FINE;
+    }
+
+    private void report(Output output, ServiceConfig config, List<Plan> plans, BrokerCheck broker) {
+        List<String> experiments = plans.stream().map(Plan::experiment).toList();
+        if (output.json()) {
+            ObjectNode object = Output.typed("check").put("config", file.toString());
+            ArrayNode names = object.putArray("experiments");
+            experiments.forEach(names::add);
+            object.put("brokerChecked", !withoutBroker);
+            ObjectNode topics = object.putObject("topics");
+            broker.partitions().forEach(topics::put);
+            output.line(object);
+            return;
+        }
+        output.line("configuration  fine: " + file);
+        output.line("plans          fine: " + String.join(", ", experiments));
+        output.line("broker         "
+                + (withoutBroker
+                        ? "not asked"
+                        : "fine: " + config.kafka().bootstrapServers() + ", "
+                                + String.join(", ", config.input().topics()) + " with "
+                                + broker.partitions().values().iterator().next() + " partitions"));
+    }
+}

@@ -1,0 +1,67 @@
+package io.tallyward.service.command;
+
+import io.tallyward.engine.EngineVersion;
+import java.io.PrintWriter;
+import java.util.Map;
+import picocli.CommandLine;
+import picocli.CommandLine.Command;
+import picocli.CommandLine.IVersionProvider;
+import picocli.CommandLine.ParameterException;
+
+/** Puts the command line together. */
+public final class CommandLineFactory {
+
+    private CommandLineFactory() {}
+
+    @Command(
+            name = "tallyward",
+            description = "Watches running experiments on a Kafka event pipeline and says when it is fair to stop.",
+            mixinStandardHelpOptions = true,
+            versionProvider = Version.class,
+            footer = {
+                "",
+                "Exit status: 0 fine, 1 the answer is no, 2 bad input, 3 broken surroundings.",
+                "tallyward COMMAND --help explains a command."
+            })
+    private static final class Root {}
+
+    private static final class Version implements IVersionProvider {
+        @Override
+        public String[] getVersion() {
+            return new String[] {"tallyward " + version() + ", deciding rules " + EngineVersion.CURRENT};
+        }
+    }
+
+    /** Version of the program, from the manifest of its jar. */
+    public static String version() {
+        String release = CommandLineFactory.class.getPackage().getImplementationVersion();
+        return release == null ? "development" : release;
+    }
+
+    /**
+     * The command line of the service.
+     *
+     * @param environment where secrets may be
+     * @param starter starts the service
+     * @param lookup asks the brokers about topics
+     * @param stop tells the service to stop
+     */
+    public static CommandLine of(
+            Map<String, String> environment, ServiceStarter starter, TopicLookup lookup, StopSignal stop) {
+        return new CommandLine(new Root())
+                .addSubcommand(new WatchCommand(environment, starter, stop))
+                .addSubcommand(new CheckCommand(environment, lookup))
+                .addSubcommand(new BoundariesCommand())
+                .addSubcommand(new ReplayCommand())
+                .setParameterExceptionHandler(CommandLineFactory::refuse);
+    }
+
+    private static int refuse(ParameterException e, String[] arguments) {
+        CommandLine command = e.getCommandLine();
+        String name = command.getCommandSpec().qualifiedName();
+        PrintWriter err = command.getErr();
+        err.println(e.getMessage().replaceAll("[.\\s]+$", "") + ". See " + name + " --help.");
+        err.flush();
+        return ExitCode.BAD_INPUT.status();
+    }
+}

@@ -1,0 +1,75 @@
+package io.tallyward.service.page;
+
+import io.tallyward.engine.plan.Variant;
+import java.util.List;
+import org.apache.commons.math3.stat.interval.ConfidenceInterval;
+import org.apache.commons.math3.stat.interval.WilsonScoreInterval;
+
+/** The rates, each with an interval, and the differences that the test is about. */
+final class RateSection {
+
+    /** For reading one rate; common practice. The intervals that count are those of the differences. */
+    private static final double CONFIDENCE = 0.95;
+
+    private RateSection() {}
+
+    static void write(Markup html, Standing standing) {
+        html.open("section").leaf("h2", "Rates");
+        List<Variant> variants = standing.view().plan().variants();
+        RangeBar bar = scale(standing, variants);
+        Table table = Table.open(
+                html, "Rates over all complete windows", "Variant", "Trials", "Successes", "Rate", "95 % interval", "");
+        for (Variant variant : variants) {
+            row(html, table, bar, standing, variant);
+        }
+        table.close();
+        html.leaf(
+                "p",
+                "Wilson intervals, for reading one rate at one time. Whether rates differ is not read from them but from"
+                        + " the looks below.",
+                "class",
+                "note");
+        html.close();
+    }
+
+    private static void row(Markup html, Table table, RangeBar bar, Standing standing, Variant variant) {
+        long trials = standing.trials(variant);
+        long successes = standing.successes(variant);
+        table.row(variant.name() + (variant.control() ? " (control)" : ""))
+                .number(Figures.count(trials))
+                .number(Figures.count(successes));
+        double[] interval = interval(trials, successes);
+        if (interval == null) {
+            table.number(Figures.NONE).number(Figures.NONE).text("").endRow();
+            return;
+        }
+        double rate = successes / (double) trials;
+        String ends = Figures.percent(interval[0]) + " to " + Figures.percent(interval[1]);
+        table.number(Figures.percent(rate)).number(ends);
+        table.cell(() -> bar.draw(html, "rate " + Figures.percent(rate) + ", from " + ends, interval, null, rate))
+                .endRow();
+    }
+
+    private static RangeBar scale(Standing standing, List<Variant> variants) {
+        double left = 1;
+        double right = 0;
+        for (Variant variant : variants) {
+            double[] interval = interval(standing.trials(variant), standing.successes(variant));
+            if (interval != null) {
+                left = Math.min(left, interval[0]);
+                right = Math.max(right, interval[1]);
+            }
+        }
+        return left < right ? new RangeBar(left, right) : new RangeBar(0, 1);
+    }
+
+    /** Null where there is no interval: without trials, or with more than the library counts. */
+    private static double[] interval(long trials, long successes) {
+        if (!(trials > 0 && trials <= Integer.MAX_VALUE && successes <= trials)) {
+            return null;
+        }
+        ConfidenceInterval interval =
+                new WilsonScoreInterval().createInterval((int) trials, (int) successes, CONFIDENCE);
+        return new double[] {interval.getLowerBound(), interval.getUpperBound()};
+    }
+}

@@ -1,0 +1,135 @@
+package io.tallyward.service.page;
+
+import io.tallyward.engine.decide.ExperimentView;
+import io.tallyward.engine.plan.Run;
+import io.tallyward.engine.plan.TestPlan.Better;
+import io.tallyward.engine.plan.Variant;
+import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.Trust;
+import io.tallyward.engine.record.Verdict;
+import java.time.Duration;
+import java.util.List;
+import java.util.Optional;
+import java.util.stream.Stream;
+
+/**
+ * An experiment's view, asked the way pages ask.
+ *
+ * @param view the snapshot
+ */
+record Standing(ExperimentView view) {
+
+    String name() {
+        return view.plan().experiment();
+    }
+
+    /** How soon somebody should look. */
+    Urgency urgency() {
+        boolean harm = view.verdict() == Verdict.STOP_HARM || view.verdicts().containsValue(Verdict.STOP_HARM);
+        if (view.trust() != Trust.SOUND || harm || held()) {
+            return Urgency.ATTENTION;
+        }
+        if (view.verdict().settled()) {
+            return Urgency.SETTLED;
+        }
+        return view.verdict() == Verdict.WAITING ? Urgency.WAITING : Urgency.RUNNING;
+    }
+
+    /** Whether a verdict waits for trust to return. */
+    boolean held() {
+        return view.comparisons().values().stream().anyMatch(look -> look.held() != null);
+    }
+
+    List<Variant> challengers() {
+        return view.plan().challengers();
+    }
+
+    Verdict verdictOn(Variant challenger) {
+        return view.verdicts().getOrDefault(challenger.name(), Verdict.WAITING);
+    }
+
+    /** The latest look at a challenger; empty before its first. */
+    Optional<Comparison> latest(Variant challenger) {
+        return Optional.ofNullable(view.comparisons().get(challenger.name()));
+    }
+
+    boolean higherIsBetter() {
+        return view.plan().test().better() == Better.HIGHER;
+    }
+
+    long trials(Variant variant) {
+        return counts(variant).mapToLong(VariantCount::trials).sum();
+    }
+
+    long successes(Variant variant) {
+        return counts(variant).mapToLong(VariantCount::successes).sum();
+    }
+
+    long trials(Variant variant, int epoch) {
+        return counts(variant)
+                .filter(count -> count.epoch() == epoch)
+                .mapToLong(VariantCount::trials)
+                .sum();
+    }
+
+    long trialsIn(int epoch) {
+        return view.counts().stream()
+                .filter(count -> count.epoch() == epoch)
+                .mapToLong(VariantCount::trials)
+                .sum();
+    }
+
+    /** Epochs that have trials, ascending. */
+    List<Integer> epochs() {
+        return view.counts().stream()
+                .filter(count -> count.trials() > 0)
+                .map(VariantCount::epoch)
+                .distinct()
+                .sorted()
+                .toList();
+    }
+
+    /** How much of the longest possible run is complete, in [0, 1]. */
+    double runFraction() {
+        return elapsed().toMillis() / (double) view.plan().run().atMost().toMillis();
+    }
+
+    /** How much of the run is complete, in event time. */
+    Duration elapsed() {
+        Run run = view.plan().run();
+        Duration elapsed = view.completeUntil()
+                .map(end -> Duration.between(run.from(), end))
+                .orElse(Duration.ZERO);
+        if (elapsed.isNegative()) {
+            return Duration.ZERO;
+        }
+        return elapsed.compareTo(run.atMost()) > 0 ? run.atMost() : elapsed;
+    }
+
+    private Stream<VariantCount> counts(Variant variant) {
+        return view.counts().stream().filter(count -> count.variant().equals(variant.name()));
+    }
+
+    /** Groups of the overview, most urgent first. */
+    enum Urgency {
+        /** The data are not trusted, harm was found, or a verdict is held. */
+        ATTENTION("Needs attention"),
+        /** A final verdict that the owner can act on by day. */
+        SETTLED("Verdict reached"),
+        /** Looks were taken, nothing is decided. */
+        RUNNING("Running"),
+        /** No look yet. */
+        WAITING("Before the first look");
+
+        private final String heading;
+
+        Urgency(String heading) {
+            this.heading = heading;
+        }
+
+        String heading() {
+            return heading;
+        }
+    }
+}

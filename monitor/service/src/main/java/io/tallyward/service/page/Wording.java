@@ -1,0 +1,108 @@
+package io.tallyward.service.page;
+
+import io.tallyward.engine.count.Outcome;
+import io.tallyward.engine.record.Trust;
+import io.tallyward.engine.record.Verdict;
+
+/** What the published states are called on a page, what they mean and what to do about them. */
+final class Wording {
+
+    private Wording() {}
+
+    /**
+     * One state in words.
+     *
+     * @param sign a shape that tells the state without its colour
+     * @param label its name
+     * @param meaning what it means
+     * @param action what to do
+     */
+    record Words(String sign, String label, String meaning, String action) {}
+
+    static Words of(Verdict verdict) {
+        return switch (verdict) {
+            case WAITING ->
+                new Words(
+                        "○",
+                        "Waiting",
+                        "No look has been taken yet.",
+                        "Nothing. The first look follows when it is due and every variant has enough successes and failures.");
+            case CONTINUE ->
+                new Words(
+                        "→",
+                        "Continue",
+                        "Looks were taken and no boundary was crossed: neither a benefit nor a harm is established.",
+                        "Let it run. A statistic close to its boundary is no finding; only a crossing at a look is.");
+            case STOP_BENEFIT ->
+                new Words(
+                        "▲",
+                        "Stop: benefit",
+                        "The benefit boundary was crossed at a look while the data were trusted. The verdict is final.",
+                        "It can wait for the morning. The owner may end the experiment and keep the variant.");
+            case STOP_HARM ->
+                new Words(
+                        "▼",
+                        "Stop: harm",
+                        "The harm boundary was crossed at a look while the data were trusted. The verdict is final.",
+                        "Tell the owner now: stop showing the variant. Switching it off is the safe choice.");
+            case STOP_FUTILITY ->
+                new Words(
+                        "■",
+                        "Stop: futility",
+                        "A benefit of the planned size has become unlikely. This is advice; going on breaks no rule.",
+                        "It can wait for the morning. The owner decides whether the rest of the run is worth its time.");
+            case EXHAUSTED ->
+                new Words(
+                        "◆",
+                        "Exhausted",
+                        "The planned information or time is used up and no boundary was crossed. The verdict is final.",
+                        "It can wait for the morning. End the experiment; it found no difference of the planned size.");
+        };
+    }
+
+    static Words of(Trust trust) {
+        return switch (trust) {
+            case SOUND -> new Words("✓", "Sound", "Nothing speaks against the data.", "Nothing.");
+            case MISMATCH ->
+                new Words(
+                        "!",
+                        "Split mismatch",
+                        "The observed split contradicts the planned one, so the variants may not be comparable."
+                                + " Verdicts are withheld.",
+                        "Do not act on the rates. Find where units of one variant are lost or added: assignment, logging,"
+                                + " filters. Start with the segment and the window named above.");
+            case CROSSOVER ->
+                new Words(
+                        "!",
+                        "Crossovers",
+                        "Too many units were seen under a second variant. Verdicts are withheld.",
+                        "Do not act on the rates. Check that a unit keeps its variant across devices, sessions and caches.");
+            case STARVED ->
+                new Words(
+                        "!",
+                        "Starved",
+                        "A variant, or the whole stream, has fallen silent. Verdicts are withheld.",
+                        "Check first whether events reach the input topics at all, then whether this variant is still shown.");
+            case LATE ->
+                new Words(
+                        "!",
+                        "Late events",
+                        "Too many events arrive after their window was sealed. Verdicts are withheld.",
+                        "Look for a delay between the site and the input topics. Late events are counted, never added.");
+        };
+    }
+
+    static String of(Outcome outcome) {
+        return switch (outcome) {
+            case TRIAL -> "the exposure that stands as its unit's first";
+            case SUCCESS -> "the click that made a trial a success";
+            case REPEAT -> "a further exposure or click of a trial";
+            case EXPIRED -> "a click after the attribution time of its trial";
+            case CROSSOVER -> "an event of a unit under another variant than its first";
+            case ORPHAN -> "a click that no exposure precedes";
+            case LATE -> "would still have changed a count, but its window was sealed";
+            case OUTSIDE -> "outside the run";
+            case DUPLICATE -> "seen before";
+        };
+    }
+}

@@ -1,0 +1,186 @@
+package io.tallyward.service.watch;
+
+import io.tallyward.connector.format.Decoded;
+import io.tallyward.connector.format.JsonEventReader;
+import io.tallyward.connector.format.TallyJson;
+import io.tallyward.connector.kafka.HostedShard;
+import io.tallyward.connector.kafka.Output;
+import io.tallyward.engine.count.CountEffects;
+import io.tallyward.engine.count.CountShard;
+import io.tallyward.engine.count.CountView;
+import io.tallyward.engine.count.TallyUpdate;
+import io.tallyward.engine.event.Event;
+import io.tallyward.engine.event.RejectReason;
+import io.tallyward.engine.shard.StateChange;
+import io.tallyward.service.status.CountReport;
+import io.tallyward.service.status.StatusBoard;
+import java.nio.charset.StandardCharsets;
+import java.util.ArrayList;
+import java.util.Arrays;
+import java.util.EnumSet;
+import java.util.List;
+import java.util.Map;
+import java.util.Optional;
+import java.util.Set;
+import java.util.TreeMap;
+import java.util.function.Predicate;
+import org.apache.kafka.clients.consumer.ConsumerRecord;
+import org.slf4j.Logger;
+import org.slf4j.LoggerFactory;
+
+/** Hosts a COUNT shard: bytes in, records out. */
+final class CountHost implements HostedShard {
+
+    private static final Logger LOG = LoggerFactory.getLogger(CountHost.class);
+
+    /** A rejected record is copied up to this size, so that the copy always fits into a record of its own. */
+    private static final int COPIED_BYTES = 256 * 1024;
+
+    private final CountShard shard;
+    private final int partition;
+    private final List<String> topics;
+    private final TopicNames names;
+    private final JsonEventReader reader;
+    private final StatusBoard board;
+    private final KeyCheck keyCheck;
+
+    private final List<Output> rejects = new ArrayList<>();
+    private final Set<RejectReason> logged = EnumSet.noneOf(RejectReason.class);
+    private boolean published;
+
+    CountHost(
+            CountShard shard,
+            int partition,
+            int partitions,
+            List<String> topics,
+            TopicNames names,
+            JsonEventReader reader,
+            StatusBoard board) {
+        this.shard = shard;
+        this.partition = partition;
+        this.topics = topics;
+        this.names = names;
+        this.reader = reader;
+        this.board = board;
+        keyCheck = new KeyCheck(partition, partitions);
+    }
+
+    @Override
+    public void restore(byte[] key, byte[] value) {
+        shard.restore(key, value);
+    }
+
+    @Override
+    public void apply(ConsumerRecord<byte[], byte[]> record) {
+        Decoded decoded = reader.read(record.value());
+        if (decoded instanceof Decoded.Refused refused) {
+            reject(record, shard.reject(refused.reason()), refused.detail());
+        } else if (decoded instanceof Decoded.Accepted accepted) {
+            admit(record, accepted.event());
+        }
+    }
+
+    private void admit(ConsumerRecord<byte[], byte[]> record, Event event) {
+        Optional<RejectReason> rejected = shard.apply(topics.indexOf(record.topic()), record.timestamp(), event);
+        if (rejected.isPresent()) {
+            reject(record, rejected.get(), RejectDetail.of(rejected.get(), event, record.timestamp()));
+        } else if (keyCheck.observe(record.key(), event.unit())) {
+            sayKeying(record.topic());
+        }
+    }
+
+    private void sayKeying(String topic) {
+        if (keyCheck.unkeyed()) {
+            LOG.error(
+                    "Topic {} is not keyed by unit: events of one unit are spread over its partitions, so that units are"
+                            + " counted more than once and clicks miss their views. Key the topic by unit.",
+                    topic);
+        } else {
+            LOG.info("Topic {} is keyed by unit again.", topic);
+        }
+    }
+
+    private void reject(ConsumerRecord<byte[], byte[]> record, RejectReason reason, String detail) {
+        String origin = record.topic() + "-" + record.partition() + "@" + record.offset();
+        if (logged.add(reason)) {
+            LOG.warn(
+                    "Rejected {} as {}: {}. Further ones of this kind are counted and kept in {}, not logged.",
+                    origin,
+                    reason.code(),
+                    detail,
+                    names.rejects());
+        }
+        Map<String, byte[]> headers = new TreeMap<>();
+        headers.put("tallyward-reason", utf8(reason.code()));
+        headers.put("tallyward-detail", utf8(detail));
+        headers.put("tallyward-origin", utf8(origin));
+        byte[] value = record.value();
+        if (value != null && value.length > COPIED_BYTES) {
+            headers.put("tallyward-full-size", utf8(Integer.toString(value.length)));
+            value = Arrays.copyOf(value, COPIED_BYTES);
+        }
+        byte[] key = record.key();
+        if (key != null && key.length > COPIED_BYTES) {
+            key = Arrays.copyOf(key, COPIED_BYTES);
+        }
+        rejects.add(new Output(names.rejects(), partition, key, value, headers));
+    }
+
+    private static byte[] utf8(String text) {
+        return text.getBytes(StandardCharsets.UTF_8);
+    }
+
+    @Override
+    public void passTime(long nowMillis, Predicate<String> caughtUp) {
+        for (int source = 0; source < topics.size(); source++) {
+            shard.passTime(source, nowMillis, caughtUp.test(topics.get(source)));
+        }
+    }
+
+    @Override
+    public List<Output> drain() {
+        CountEffects effects = shard.drain();
+        List<Output> outputs = new ArrayList<>(rejects);
+        rejects.clear();
+        for (StateChange change : effects.state()) {
+            outputs.add(Output.state(names.countState(), partition, change.key(), change.value()));
+        }
+        for (TallyUpdate update : effects.tallies()) {
+            outputs.add(new Output(
+                    names.tallies(),
+                    TopicNames.partitionOf(update.experiment()),
+                    utf8(update.experiment()),
+                    TallyJson.write(update),
+                    Map.of()));
+        }
+        return outputs;
+    }
+
+    @Override
+    public void committed() {
+        if (published) {
+            board.publishCounts(partition, report());
+        } else {
+            board.adoptCounts(partition, report());
+            published = true;
+        }
+    }
+
+    @Override
+    public void released() {
+        board.withdrawCount(partition);
+    }
+
+    private CountReport report() {
+        CountView view = shard.view();
+        Map<String, CountReport.ExperimentCount> experiments = new TreeMap<>();
+        long units = 0;
+        for (Map.Entry<String, CountView.ExperimentCounts> entry :
+                view.experiments().entrySet()) {
+            CountView.ExperimentCounts counts = entry.getValue();
+            experiments.put(entry.getKey(), new CountReport.ExperimentCount(counts.outcomes(), counts.openEvents()));
+            units += counts.units();
+        }
+        return new CountReport(experiments, view.watermarkMillis(), view.rejected(), units, keyCheck.unkeyed());
+    }
+}

@@ -1,0 +1,108 @@
+package io.tallyward.service.watch;
+
+import io.tallyward.connector.format.DecisionJson;
+import io.tallyward.connector.format.NoticeJson;
+import io.tallyward.connector.format.TallyJson;
+import io.tallyward.connector.kafka.HostedShard;
+import io.tallyward.connector.kafka.Output;
+import io.tallyward.engine.decide.DecideEffects;
+import io.tallyward.engine.decide.DecideShard;
+import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.engine.record.Notice;
+import io.tallyward.engine.shard.StateChange;
+import io.tallyward.service.status.StatusBoard;
+import java.nio.charset.StandardCharsets;
+import java.util.ArrayList;
+import java.util.HashSet;
+import java.util.List;
+import java.util.Map;
+import java.util.Set;
+import java.util.function.Predicate;
+import org.apache.kafka.clients.consumer.ConsumerRecord;
+import org.slf4j.Logger;
+import org.slf4j.LoggerFactory;
+
+/** Hosts a DECIDE shard: tallies in, decision records and notices out. */
+final class DecideHost implements HostedShard {
+
+    private static final Logger LOG = LoggerFactory.getLogger(DecideHost.class);
+
+    private final DecideShard shard;
+    private final int partition;
+    private final TopicNames names;
+    private final StatusBoard board;
+    private final Set<String> saidUnplanned = new HashSet<>();
+    private final List<DecisionRecord> fresh = new ArrayList<>();
+
+    DecideHost(DecideShard shard, int partition, TopicNames names, StatusBoard board) {
+        this.shard = shard;
+        this.partition = partition;
+        this.names = names;
+        this.board = board;
+    }
+
+    @Override
+    public void restore(byte[] key, byte[] value) {
+        shard.restore(key, value);
+    }
+
+    @Override
+    public void apply(ConsumerRecord<byte[], byte[]> record) {
+        shard.apply(TallyJson.read(record.value()));
+        for (String experiment : shard.unplanned().keySet()) {
+            if (saidUnplanned.add(experiment)) {
+                LOG.warn(
+                        "Tallies of {} arrive, but no plan here is named so: they are set aside. Give every instance the"
+                                + " same plans.",
+                        experiment);
+            }
+        }
+    }
+
+    @Override
+    public void passTime(long nowMillis, Predicate<String> caughtUp) {
+        // A decision depends on complete windows only, never on the clock.
+    }
+
+    @Override
+    public List<Output> drain() {
+        DecideEffects effects = shard.drain();
+        List<Output> outputs = new ArrayList<>();
+        for (StateChange change : effects.state()) {
+            outputs.add(Output.state(names.decideState(), partition, change.key(), change.value()));
+        }
+        for (DecisionRecord decision : effects.decisions()) {
+            outputs.add(output(names.decisions(), decision.experiment(), DecisionJson.write(decision)));
+            fresh.add(decision);
+        }
+        for (Notice notice : effects.notices()) {
+            outputs.add(output(names.notices(), notice.experiment(), NoticeJson.write(notice)));
+        }
+        return outputs;
+    }
+
+    private Output output(String topic, String experiment, byte[] value) {
+        return new Output(topic, partition, experiment.getBytes(StandardCharsets.UTF_8), value, Map.of());
+    }
+
+    @Override
+    public void committed() {
+        for (DecisionRecord decision : fresh) {
+            LOG.info(
+                    "{}: {} {} up to {}: verdict {}, trust {}",
+                    decision.experiment(),
+                    decision.occasion().code(),
+                    decision.sequence(),
+                    decision.windowEnd(),
+                    decision.verdict().code(),
+                    decision.trust().code());
+        }
+        fresh.clear();
+        board.publishExperiments(partition, shard.views());
+    }
+
+    @Override
+    public void released() {
+        board.withdrawDecide(partition);
+    }
+}

@@ -1,0 +1,167 @@
+package io.tallyward.service.watch;
+
+import io.tallyward.connector.format.JsonEventReader;
+import io.tallyward.connector.kafka.RunnerListener;
+import io.tallyward.connector.kafka.ShardGroup;
+import io.tallyward.connector.kafka.ShardRunner;
+import io.tallyward.connector.kafka.StartPosition;
+import io.tallyward.engine.count.CountSettings;
+import io.tallyward.engine.count.CountShard;
+import io.tallyward.engine.decide.DecideShard;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.service.config.InputStart;
+import io.tallyward.service.config.ServiceConfig;
+import io.tallyward.service.http.StatusServer;
+import io.tallyward.service.http.StatusSite;
+import io.tallyward.service.metrics.MonitorMetrics;
+import io.tallyward.service.metrics.PrometheusExposition;
+import io.tallyward.service.page.Pages;
+import io.tallyward.service.status.HealthBoard;
+import io.tallyward.service.status.RunnerReport;
+import io.tallyward.service.status.StatusBoard;
+import io.tallyward.service.status.WebhookReport;
+import java.time.Clock;
+import java.time.InstantSource;
+import java.util.HashMap;
+import java.util.List;
+import java.util.Map;
+import java.util.Optional;
+import org.slf4j.Logger;
+import org.slf4j.LoggerFactory;
+
+/**
+ * One running instance. Starts the HTTP server first, so that probes are answered while state is restored; then deciding
+ * and counting, and the delivery of notices last. Stops in reverse. It starts whether or not a broker is there.
+ */
+public final class WatchService implements AutoCloseable {
+
+    private static final Logger LOG = LoggerFactory.getLogger(WatchService.class);
+
+    private final StatusBoard board = new StatusBoard();
+    private final HealthBoard health = new HealthBoard();
+    private final ServiceConfig config;
+    private final List<Plan> plans;
+    private final TopicNames names;
+    private final Map<String, String> clientProperties;
+
+    private final StatusServer server;
+    private final ShardRunner deciding;
+    private final ShardRunner counting;
+    private final Optional<NoticeDelivery> delivery;
+
+    private WatchService(ServiceConfig config, List<Plan> plans, String version, RunnerListener listener) {
+        this.config = config;
+        this.plans = List.copyOf(plans);
+        names = new TopicNames(config.name());
+        clientProperties = new HashMap<>(config.kafka().properties());
+        clientProperties.put("bootstrap.servers", config.kafka().bootstrapServers());
+
+        MonitorMetrics metrics = new MonitorMetrics(board, this::runnerReports, this::webhookReport, version);
+        StatusSite site =
+                new StatusSite(board, health, new PrometheusExposition(metrics), new Pages(Clock.systemUTC()));
+        server = StatusServer.start(config.http().host(), config.http().port(), site);
+        InstantSource clock = InstantSource.system();
+        deciding = ShardRunner.start(decideGroup(), clock, listener);
+        counting = ShardRunner.start(countGroup(), clock, listener);
+        delivery = config.webhook()
+                .map(webhook -> NoticeDelivery.start(
+                        webhook, names, clientProperties, server.address() + "experiments/", clock));
+        health.add(new RunnerHealth("counting", counting::status));
+        health.add(new RunnerHealth("deciding", deciding::status));
+        delivery.ifPresent(started -> health.add(started.health()));
+    }
+
+    /**
+     * Starts an instance and returns at once.
+     *
+     * @param version version of the program, published as a metric
+     * @param listener hears about broken invariants; the instance is of no use afterwards
+     * @throws java.io.UncheckedIOException when the HTTP address cannot be listened on
+     */
+    public static WatchService start(ServiceConfig config, List<Plan> plans, String version, RunnerListener listener) {
+        WatchService service = new WatchService(config, plans, version, listener);
+        LOG.info(
+                "Watching {} experiments on {} at {}; page, metrics and health at {}",
+                plans.size(),
+                config.input().topics(),
+                config.kafka().bootstrapServers(),
+                service.server.address());
+        return service;
+    }
+
+    /** Where the page is found, as in {@code http://127.0.0.1:8087/}. */
+    public String address() {
+        return server.address();
+    }
+
+    private ShardGroup countGroup() {
+        byte[] unitKey = UnitKey.of(config);
+        CountSettings settings =
+                new CountSettings(config.input().maxSkew(), config.input().idleAfter(), unitKey);
+        JsonEventReader reader =
+                new JsonEventReader(config.input().mapping(), config.input().maxEventBytes());
+        List<String> topics = config.input().topics();
+        return group(names.countGroup())
+                .inputTopics(topics)
+                .stateTopic(names.countState())
+                .internalTopics(names::forCounting)
+                .start(startPosition(config.input().start()))
+                .workers(config.workers())
+                .shards((partition, partitions) -> new CountHost(
+                        new CountShard(partition, partitions, plans, settings, topics.size()),
+                        partition,
+                        partitions,
+                        topics,
+                        names,
+                        reader,
+                        board))
+                .build();
+    }
+
+    private ShardGroup decideGroup() {
+        return group(names.decideGroup())
+                .inputTopics(List.of(names.tallies()))
+                .stateTopic(names.decideState())
+                .internalTopics(partitions -> names.forDeciding())
+                .shards((partition, partitions) -> new DecideHost(decideShard(partition), partition, names, board))
+                .build();
+    }
+
+    private DecideShard decideShard(int partition) {
+        DecideShard shard = new DecideShard(plans);
+        plans.stream()
+                .map(Plan::experiment)
+                .filter(experiment -> TopicNames.partitionOf(experiment) == partition)
+                .forEach(shard::expect);
+        return shard;
+    }
+
+    private ShardGroup.Builder group(String id) {
+        return ShardGroup.builder(id).clientProperties(clientProperties).commitInterval(config.commitInterval());
+    }
+
+    private static StartPosition startPosition(InputStart start) {
+        if (start instanceof InputStart.At at) {
+            return StartPosition.at(at.time());
+        }
+        return start instanceof InputStart.Latest ? StartPosition.latest() : StartPosition.earliest();
+    }
+
+    private List<RunnerReport> runnerReports() {
+        return List.of(
+                RunnerHealth.report("count", counting.status()), RunnerHealth.report("decide", deciding.status()));
+    }
+
+    private Optional<WebhookReport> webhookReport() {
+        return delivery.map(NoticeDelivery::report);
+    }
+
+    @Override
+    public void close() {
+        delivery.ifPresent(NoticeDelivery::close);
+        counting.close();
+        deciding.close();
+        server.close();
+        LOG.info("Stopped.");
+    }
+}

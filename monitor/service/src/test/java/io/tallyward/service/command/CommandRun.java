@@ -1,0 +1,59 @@
+package io.tallyward.service.command;
+
+import com.fasterxml.jackson.core.JsonProcessingException;
+import com.fasterxml.jackson.databind.JsonNode;
+import com.fasterxml.jackson.databind.json.JsonMapper;
+import java.io.PrintWriter;
+import java.io.StringWriter;
+import java.util.List;
+import java.util.Map;
+import picocli.CommandLine;
+
+/** One run of the command line inside the test: its exit status and what it wrote. */
+record CommandRun(int status, List<String> out, List<String> err) {
+
+    private static final JsonMapper JSON = new JsonMapper();
+
+    static CommandRun of(String... arguments) {
+        return of(
+                (config, plans) -> {
+                    throw new AssertionError("the service was started");
+                },
+                (properties, topics) -> {
+                    throw new AssertionError("the broker was asked");
+                },
+                () -> {},
+                arguments);
+    }
+
+    static CommandRun of(ServiceStarter starter, TopicLookup lookup, StopSignal stop, String... arguments) {
+        StringWriter out = new StringWriter();
+        StringWriter err = new StringWriter();
+        CommandLine commandLine = CommandLineFactory.of(Map.of(), starter, lookup, stop)
+                .setOut(new PrintWriter(out))
+                .setErr(new PrintWriter(err));
+        int status = commandLine.execute(arguments);
+        return new CommandRun(
+                status, out.toString().lines().toList(), err.toString().lines().toList());
+    }
+
+    /** The lines of standard output, each a JSON object. */
+    List<JsonNode> json() {
+        return out.stream().map(CommandRun::parse).toList();
+    }
+
+    /** The lines of standard output of one type. */
+    List<String> ofType(String type) {
+        return out.stream()
+                .filter(line -> parse(line).path("type").asText().equals(type))
+                .toList();
+    }
+
+    private static JsonNode parse(String line) {
+        try {
+            return JSON.readTree(line);
+        } catch (JsonProcessingException e) {
+            throw new AssertionError("not JSON: " + line, e);
+        }
+    }
+}

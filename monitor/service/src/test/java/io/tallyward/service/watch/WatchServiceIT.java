@@ -1,0 +1,225 @@
+package io.tallyward.service.watch;
+
+import static org.junit.jupiter.api.Assertions.assertEquals;
+import static org.junit.jupiter.api.Assertions.assertTrue;
+
+import com.standardwebhooks.Webhook;
+import com.sun.net.httpserver.HttpServer;
+import io.tallyward.connector.embedded.EmbeddedBroker;
+import io.tallyward.connector.format.DecisionJson;
+import io.tallyward.connector.format.EventMapping;
+import io.tallyward.connector.format.JsonEventReader;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.engine.record.Verdict;
+import io.tallyward.service.command.ReplayOracle;
+import io.tallyward.service.config.ConfigReader;
+import io.tallyward.service.config.ServiceConfig;
+import io.tallyward.service.plan.PlanDirectory;
+import io.tallyward.testkit.BrokerUnderTest;
+import java.io.IOException;
+import java.net.InetAddress;
+import java.net.InetSocketAddress;
+import java.net.ServerSocket;
+import java.net.URI;
+import java.net.http.HttpClient;
+import java.net.http.HttpHeaders;
+import java.net.http.HttpRequest;
+import java.net.http.HttpResponse;
+import java.nio.charset.StandardCharsets;
+import java.nio.file.Files;
+import java.nio.file.Path;
+import java.time.Duration;
+import java.util.ArrayList;
+import java.util.List;
+import java.util.Map;
+import java.util.Queue;
+import java.util.concurrent.ConcurrentLinkedQueue;
+import org.apache.kafka.clients.consumer.ConsumerRecord;
+import org.apache.kafka.clients.producer.ProducerRecord;
+import org.awaitility.Awaitility;
+import org.junit.jupiter.api.Test;
+import org.junit.jupiter.api.io.TempDir;
+
+/** The whole service on a real broker: what it decides live is what a replay of the same log decides. */
+class WatchServiceIT {
+
+    private static final int PARTITIONS = 3;
+    private static final Duration PATIENCE = Duration.ofSeconds(60);
+    private static final String SECRET = "whsec_MfKQ9r8GKYqrTwjUPD8ILPZIo2LaLaSw";
+
+    private final HttpClient http = HttpClient.newHttpClient();
+
+    @TempDir
+    private Path directory;
+
+    @Test
+    void decidesLiveWhatAReplayOfTheSameLogDecides() throws Exception {
+        try (BrokerUnderTest broker = BrokerUnderTest.start();
+                Receiver receiver = new Receiver()) {
+            String topic = broker.newTopic("northwater-events", PARTITIONS);
+            List<ProducerRecord<byte[], byte[]>> stream = LiveStream.of(topic, PARTITIONS, 20261201L);
+            ServiceConfig config =
+                    config(broker.bootstrapServers(), topic, broker.uniqueName("watch"), receiver.port());
+            List<Plan> plans = PlanDirectory.read(config.plans()).orElseThrow();
+
+            int third = stream.size() / 3;
+            broker.produce(stream.subList(0, third));
+            try (WatchService first = start(config, plans)) {
+                awaitReady(first);
+                broker.produce(stream.subList(third, 2 * third));
+                try (WatchService second = start(config, plans)) {
+                    awaitReady(second);
+                    broker.produce(stream.subList(2 * third, stream.size()));
+                    awaitSettled(first, second);
+                }
+            }
+
+            List<DecisionRecord> live = decisions(broker, config.name() + "-decisions");
+            List<DecisionRecord> replayed = ReplayOracle.decisions(
+                    plans, PARTITIONS, broker.readAll(topic), new JsonEventReader(EventMapping.DEFAULT, 65_536));
+            assertEquals(of("quay-banner", replayed), of("quay-banner", live));
+            assertEquals(of("fare-chip", replayed), of("fare-chip", live));
+            assertEquals(Verdict.STOP_BENEFIT, last(of("quay-banner", live)).verdict());
+            receiver.awaitNotice("io.tallyward.notice.stop");
+            assertEquals(13, broker.readAll(config.name() + "-rejects").size(), "rejected records kept");
+        }
+    }
+
+    @Test
+    void waitsForABrokerThatIsNotThereYet() throws Exception {
+        int port = freePort();
+        ServiceConfig config = config("127.0.0.1:" + port, "northwater-events", "patient", freePort());
+        List<Plan> plans = PlanDirectory.read(config.plans()).orElseThrow();
+        try (WatchService service = start(config, plans)) {
+            Awaitility.await().atMost(PATIENCE).untilAsserted(() -> {
+                HttpResponse<String> ready = get(service, "health/ready");
+                assertEquals(503, ready.statusCode());
+                assertTrue(ready.body().contains("127.0.0.1:" + port), ready.body());
+            });
+            assertEquals(200, get(service, "health/live").statusCode());
+            try (EmbeddedBroker broker = EmbeddedBroker.start(directory.resolve("broker"), port)) {
+                try (BrokerTopics topics = new BrokerTopics(broker.bootstrapServers())) {
+                    topics.create("northwater-events", PARTITIONS);
+                }
+                awaitReady(service);
+            }
+        }
+    }
+
+    private WatchService start(ServiceConfig config, List<Plan> plans) {
+        return WatchService.start(config, plans, "test", (group, cause) -> {
+            throw new AssertionError(group + " failed", cause);
+        });
+    }
+
+    private ServiceConfig config(String bootstrap, String topic, String name, int webhookPort) throws Exception {
+        Path plans = Files.createDirectories(directory.resolve("plans"));
+        Files.writeString(plans.resolve("quay-banner.yaml"), LiveStream.PLAN);
+        Files.writeString(plans.resolve("fare-chip.yaml"), LiveStream.LONGER_PLAN);
+        Path secret = Files.writeString(directory.resolve("webhook.secret"), SECRET);
+        Path file = Files.writeString(directory.resolve("tallyward.yaml"), """
+                name: %s
+                kafka: {bootstrap-servers: "%s"}
+                input: {topics: [%s]}
+                plans: plans
+                commit-interval: PT0.1S
+                http: {port: 0}
+                webhook: {url: "http://127.0.0.1:%d/notices", secret-file: %s, allow-http: true, allow-private: true}
+                """.formatted(
+                        name, bootstrap, topic, webhookPort, secret.getFileName()));
+        return new ConfigReader(Map.of()).read(file).orElseThrow();
+    }
+
+    private void awaitReady(WatchService service) {
+        Awaitility.await()
+                .atMost(PATIENCE)
+                .untilAsserted(
+                        () -> assertEquals(200, get(service, "health/ready").statusCode()));
+    }
+
+    /** Both instances are asked: only the one that decides about an experiment knows it. */
+    private void awaitSettled(WatchService first, WatchService second) {
+        Awaitility.await().atMost(PATIENCE).untilAsserted(() -> {
+            String known = get(first, "api/experiments").body()
+                    + get(second, "api/experiments").body();
+            assertTrue(known.contains("\"completeUntil\":\"" + LiveStream.START.plus(LiveStream.RUN) + "\""), known);
+        });
+    }
+
+    private HttpResponse<String> get(WatchService service, String path) throws IOException, InterruptedException {
+        return http.send(
+                HttpRequest.newBuilder(URI.create(service.address() + path)).build(),
+                HttpResponse.BodyHandlers.ofString());
+    }
+
+    private static List<DecisionRecord> decisions(BrokerUnderTest broker, String topic) {
+        List<DecisionRecord> decisions = new ArrayList<>();
+        for (ConsumerRecord<byte[], byte[]> record : broker.readAll(topic)) {
+            decisions.add(DecisionJson.read(record.value()));
+        }
+        return decisions;
+    }
+
+    private static List<DecisionRecord> of(String experiment, List<DecisionRecord> records) {
+        return records.stream()
+                .filter(record -> record.experiment().equals(experiment))
+                .toList();
+    }
+
+    private static DecisionRecord last(List<DecisionRecord> records) {
+        assertTrue(records.size() > 1, () -> "several records expected, found " + records);
+        return records.get(records.size() - 1);
+    }
+
+    private static int freePort() throws IOException {
+        try (ServerSocket socket = new ServerSocket(0, 1, InetAddress.getLoopbackAddress())) {
+            return socket.getLocalPort();
+        }
+    }
+
+    /** Accepts a notice if an independent library accepts its signature. */
+    private static final class Receiver implements AutoCloseable {
+
+        private final HttpServer server;
+        private final Queue<String> notices = new ConcurrentLinkedQueue<>();
+        private final Queue<String> refused = new ConcurrentLinkedQueue<>();
+
+        Receiver() throws Exception {
+            server = HttpServer.create(new InetSocketAddress(InetAddress.getLoopbackAddress(), 0), 0);
+            Webhook verifier = new Webhook(SECRET);
+            server.createContext("/notices", exchange -> {
+                String body = new String(exchange.getRequestBody().readAllBytes(), StandardCharsets.UTF_8);
+                try {
+                    verifier.verify(body, HttpHeaders.of(exchange.getRequestHeaders(), (name, value) -> true));
+                    notices.add(body);
+                    exchange.sendResponseHeaders(204, -1);
+                } catch (Exception e) {
+                    refused.add(e.toString());
+                    exchange.sendResponseHeaders(401, -1);
+                }
+                exchange.close();
+            });
+            server.start();
+        }
+
+        int port() {
+            return server.getAddress().getPort();
+        }
+
+        void awaitNotice(String type) {
+            Awaitility.await()
+                    .atMost(PATIENCE)
+                    .until(() -> notices.stream().anyMatch(notice -> notice.contains(type)) || !refused.isEmpty());
+            assertTrue(refused.isEmpty(), () -> "signatures refused: " + refused);
+            assertTrue(
+                    notices.stream().noneMatch(notice -> notice.contains("visitor-")),
+                    () -> "a notice names a unit: " + notices);
+        }
+
+        @Override
+        public void close() {
+            server.stop(0);
+        }
+    }
+}
