@@ -39,7 +39,7 @@ final class DemoRun implements AutoCloseable {
     private static final long POLL_MILLIS = 300;
     private static final String BROKER_MAIN = "io.tallyward.connector.embedded.EmbeddedBrokerMain";
     private static final String MONITOR_MAIN = "io.tallyward.service.Tallyward";
-    private static final String LOGGING = "-Dlogback.configurationFile=io/tallyward/demo/child-logging.xml";
+    private static final String BROKER_LOGGING = "-Dlogback.configurationFile=io/tallyward/demo/broker-logging.xml";
 
     private final Scenario scenario;
     private final Options options;
@@ -80,7 +80,7 @@ final class DemoRun implements AutoCloseable {
         ChildProcess broker = ChildProcess.start(
                 "broker",
                 directory.resolve("broker.log"),
-                List.of("-Xmx384m", "-XX:+UseSerialGC", "-XX:TieredStopAtLevel=1", LOGGING),
+                List.of("-Xmx384m", "-XX:+UseSerialGC", "-XX:TieredStopAtLevel=1", BROKER_LOGGING),
                 List.of(BROKER_MAIN, directory.resolve("broker").toString(), Integer.toString(ports.get(0))));
         started(broker);
         broker.awaitOutput("broker ready at", START_PATIENCE);
@@ -104,7 +104,7 @@ final class DemoRun implements AutoCloseable {
         monitor = ChildProcess.start(
                 "monitor",
                 directory.resolve("monitor.log"),
-                List.of("-Xmx384m", "-XX:+UseSerialGC", LOGGING),
+                List.of("-Xmx384m", "-XX:+UseSerialGC"),
                 List.of(TiedToParent.class.getName(), MONITOR_MAIN, "watch", "--config", configuration.toString()));
         started(monitor);
     }
