@@ -1,0 +1,137 @@
+package io.tallyward.demo.check;
+
+import com.fasterxml.jackson.databind.JsonNode;
+import com.fasterxml.jackson.databind.ObjectMapper;
+import com.fasterxml.jackson.databind.node.MissingNode;
+import io.tallyward.demo.child.LoopbackPorts;
+import io.tallyward.demo.truth.Count;
+import io.tallyward.demo.truth.ExperimentTruth.Stratum;
+import java.io.IOException;
+import java.net.URI;
+import java.net.http.HttpClient;
+import java.net.http.HttpRequest;
+import java.net.http.HttpResponse;
+import java.time.Duration;
+import java.time.Instant;
+import java.util.HashMap;
+import java.util.LinkedHashMap;
+import java.util.Map;
+import java.util.Optional;
+import java.util.OptionalLong;
+import java.util.regex.Matcher;
+import java.util.regex.Pattern;
+
+/** The monitor's public faces: its API and its metrics. */
+public final class MonitorApi {
+
+    private static final ObjectMapper JSON = new ObjectMapper();
+    private static final Duration TIMEOUT = Duration.ofSeconds(5);
+
+    private final HttpClient client =
+            HttpClient.newBuilder().connectTimeout(TIMEOUT).build();
+    private final URI base;
+
+    /** The faces of a monitor that listens on a port of the loopback address. */
+    public MonitorApi(int port) {
+        base = URI.create("http://" + LoopbackPorts.HOST + ":" + port + "/");
+    }
+
+    /** The address of the page. */
+    public URI page() {
+        return base;
+    }
+
+    /** The address of the metrics. */
+    public URI metrics() {
+        return base.resolve("metrics");
+    }
+
+    /** Whether the monitor answers. */
+    public boolean isUp() {
+        return get(base.resolve("api/experiments")).isPresent();
+    }
+
+    /** Where the experiments stand, by name; empty while the monitor does not answer, which is normal while it starts. */
+    public Map<String, Standing> standings() {
+        Map<String, Standing> standings = new LinkedHashMap<>();
+        Optional<String> answer = get(base.resolve("api/experiments"));
+        if (answer.isPresent()) {
+            try {
+                for (JsonNode node : JSON.readTree(answer.get())) {
+                    standings.put(node.path("experiment").asText(), new Standing(node));
+                }
+            } catch (IOException e) {
+                throw new IllegalStateException(base + "api/experiments: the answer is no JSON", e);
+            }
+        }
+        return standings;
+    }
+
+    /** Events of an experiment outside its run, as the metrics tell; empty when they do not. */
+    public OptionalLong outside(String experiment) {
+        Pattern sample = Pattern.compile("tallyward_events_total\\{(?=[^}]*experiment=\"" + Pattern.quote(experiment)
+                + "\")(?=[^}]*outcome=\"outside\")[^}]*} ([0-9.E]+)");
+        Matcher matcher = sample.matcher(get(metrics()).orElse(""));
+        return matcher.find()
+                ? OptionalLong.of(Math.round(Double.parseDouble(matcher.group(1))))
+                : OptionalLong.empty();
+    }
+
+    private Optional<String> get(URI address) {
+        HttpRequest request = HttpRequest.newBuilder(address).timeout(TIMEOUT).build();
+        try {
+            HttpResponse<String> response = client.send(request, HttpResponse.BodyHandlers.ofString());
+            return response.statusCode() == 200 ? Optional.of(response.body()) : Optional.empty();
+        } catch (IOException notYet) {
+            return Optional.empty();
+        } catch (InterruptedException e) {
+            Thread.currentThread().interrupt();
+            throw new IllegalStateException(address + ": interrupted while waiting for an answer", e);
+        }
+    }
+
+    /** Where one experiment stands, as the API tells. */
+    public record Standing(JsonNode node) {
+
+        public String verdict() {
+            return node.path("verdict").asText();
+        }
+
+        public String trust() {
+            return node.path("trust").asText();
+        }
+
+        /** End of the last complete window; the beginning of time before the first. */
+        public Instant completeUntil() {
+            JsonNode until = node.path("completeUntil");
+            return until.isTextual() ? Instant.parse(until.asText()) : Instant.MIN;
+        }
+
+        /** The latest look at a challenger; a missing node when there is no such challenger. */
+        JsonNode comparison(String variant) {
+            for (JsonNode comparison : node.path("comparisons")) {
+                if (comparison.path("variant").asText().equals(variant)) {
+                    return comparison;
+                }
+            }
+            return MissingNode.getInstance();
+        }
+
+        /** Counts of the complete windows. */
+        Map<Stratum, Count> counts() {
+            Map<Stratum, Count> counts = new HashMap<>();
+            for (JsonNode count : node.path("counts")) {
+                counts.merge(
+                        new Stratum(
+                                count.path("epoch").asInt(),
+                                count.path("variant").asText()),
+                        new Count(
+                                count.path("trials").asLong(),
+                                count.path("successes").asLong()),
+                        Count::plus);
+            }
+            counts.values().removeIf(Count.NONE::equals);
+            return counts;
+        }
+    }
+}

@@ -1,0 +1,134 @@
+package io.tallyward.demo.child;
+
+import java.io.IOException;
+import java.io.OutputStream;
+import java.nio.charset.StandardCharsets;
+import java.nio.file.Files;
+import java.nio.file.Path;
+import java.time.Duration;
+import java.util.List;
+import java.util.concurrent.TimeUnit;
+import java.util.stream.Stream;
+
+/** A running Java process of the demo. Thread-safe. */
+public final class ChildProcess implements AutoCloseable {
+
+    private static final long ORDERLY_STOP_SECONDS = 15;
+    private static final long TERMINATED_SECONDS = 5;
+    private static final long KILLED_SECONDS = 5;
+    private static final long POLL_MILLIS = 50;
+    private static final int TAIL_LINES = 25;
+
+    private final String name;
+    private final Process process;
+    private final Path log;
+
+    private ChildProcess(String name, Process process, Path log) {
+        this.name = name;
+        this.process = process;
+        this.log = log;
+    }
+
+    /**
+     * Starts Java with the class path of this process.
+     *
+     * @param name what to call it in messages
+     * @param log file to which its output is added
+     * @param options options of the virtual machine
+     * @param mainAndArguments main class and its arguments
+     * @throws IOException when the process cannot be started
+     */
+    public static ChildProcess start(String name, Path log, List<String> options, List<String> mainAndArguments)
+            throws IOException {
+        String java = Path.of(System.getProperty("java.home"), "bin", "java").toString();
+        List<String> command = Stream.of(
+                        Stream.of(java),
+                        options.stream(),
+                        Stream.of("-cp", System.getProperty("java.class.path")),
+                        mainAndArguments.stream())
+                .flatMap(part -> part)
+                .toList();
+        Process process = new ProcessBuilder(command)
+                .redirectErrorStream(true)
+                .redirectOutput(ProcessBuilder.Redirect.appendTo(log.toFile()))
+                .start();
+        return new ChildProcess(name, process, log);
+    }
+
+    public boolean isAlive() {
+        return process.isAlive();
+    }
+
+    /**
+     * Waits until the process has written a text.
+     *
+     * @throws IllegalStateException when the process ends first or the patience does; the message shows its last lines
+     */
+    public void awaitOutput(String text, Duration patience) throws InterruptedException {
+        long deadline = System.nanoTime() + patience.toNanos();
+        while (!output().contains(text)) {
+            requireAlive();
+            if (System.nanoTime() > deadline) {
+                throw new IllegalStateException(name + ": not ready after " + patience.toSeconds() + " s" + tail());
+            }
+            TimeUnit.MILLISECONDS.sleep(POLL_MILLIS);
+        }
+    }
+
+    /**
+     * Does nothing while the process lives.
+     *
+     * @throws IllegalStateException when it has ended; the message shows its last lines
+     */
+    public void requireAlive() {
+        if (!process.isAlive()) {
+            throw new IllegalStateException(name + ": ended with code " + process.exitValue() + tail());
+        }
+    }
+
+    /** Kills the process at once, without any chance to tidy up, as {@code kill -9} does, and waits for its end. */
+    public void kill() throws InterruptedException {
+        process.destroyForcibly();
+        if (!process.waitFor(KILLED_SECONDS, TimeUnit.SECONDS)) {
+            throw new IllegalStateException(name + ": process " + process.pid() + " survives being killed");
+        }
+    }
+
+    /** Stops the process: by the end of its input, then by a signal, then by force; takes 25 seconds at most. */
+    @Override
+    public void close() {
+        try {
+            try (OutputStream input = process.getOutputStream()) {
+                input.flush();
+            } catch (IOException alreadyGone) {
+                process.destroy();
+            }
+            if (process.waitFor(ORDERLY_STOP_SECONDS, TimeUnit.SECONDS)) {
+                return;
+            }
+            process.destroy();
+            if (!process.waitFor(TERMINATED_SECONDS, TimeUnit.SECONDS)) {
+                process.destroyForcibly().waitFor(KILLED_SECONDS, TimeUnit.SECONDS);
+            }
+        } catch (InterruptedException hurry) {
+            process.destroyForcibly();
+            Thread.currentThread().interrupt();
+        }
+    }
+
+    /** The last lines the process wrote, under a heading; for messages. */
+    public String tail() {
+        List<String> lines = output().lines().toList();
+        List<String> last = lines.subList(Math.max(0, lines.size() - TAIL_LINES), lines.size());
+        return System.lineSeparator() + "the last lines of " + log + ":" + System.lineSeparator() + "  "
+                + String.join(System.lineSeparator() + "  ", last);
+    }
+
+    private String output() {
+        try {
+            return new String(Files.readAllBytes(log), StandardCharsets.UTF_8);
+        } catch (IOException notYet) {
+            return "";
+        }
+    }
+}

@@ -1,0 +1,53 @@
+package io.tallyward.demo.story;
+
+import java.time.Instant;
+import java.util.List;
+
+/** What is true of one experiment. Its plan is the resource {@code <experiment>.yaml} beside this interface. */
+public interface Story {
+
+    /** Name of the experiment. */
+    String experiment();
+
+    /** Names of the variants in the order of the plan, the control first. */
+    List<String> variants();
+
+    /** The first moment that is no longer part of the run. */
+    default Instant runEnd() {
+        return Northwater.END;
+    }
+
+    /** When the planned split changes, ascending; empty when it never does. */
+    default List<Instant> splitChanges() {
+        return List.of();
+    }
+
+    /** How many units take part. */
+    int units();
+
+    /** Share of each variant, in the order of {@link #variants()}, after that many changes of the split. */
+    double[] shares(int epoch);
+
+    /** Probability that a unit clicks in time when it is first shown a variant at a moment. */
+    double clickRate(int variant, long atMillis, Device device);
+
+    /** Whether the pipeline loses this view. */
+    default boolean losesView(int variant, long atMillis, Device device) {
+        return false;
+    }
+
+    /** What a monitor ought to conclude. */
+    Expectation expectation();
+
+    /** Index of the allocation epoch at a moment: 0 before the first change of the split. */
+    default int epochAt(long atMillis) {
+        return (int) splitChanges().stream()
+                .filter(change -> change.toEpochMilli() <= atMillis)
+                .count();
+    }
+
+    /** Whether an event time is part of the run: closed at the start, open at the end. */
+    default boolean runsAt(long atMillis) {
+        return atMillis >= Northwater.START.toEpochMilli() && atMillis < runEnd().toEpochMilli();
+    }
+}
