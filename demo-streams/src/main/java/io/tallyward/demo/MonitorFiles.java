@@ -39,6 +39,7 @@ final class MonitorFiles {
     private static final String SURROUNDINGS = """
             http: {host: 127.0.0.1, port: %d}
             webhook: {url: "%s", secret-file: webhook-secret, allow-http: true, allow-private: true}
+            unit-key: {file: unit-key}
             """;
 
     private MonitorFiles() {}
@@ -56,6 +57,7 @@ final class MonitorFiles {
     static Path write(Path directory, Scenario scenario, Surroundings surroundings) throws IOException {
         scenario.writePlans(directory.resolve("plans"));
         Files.writeString(directory.resolve("webhook-secret"), surroundings.secret() + "\n");
+        Files.writeString(directory.resolve("unit-key"), surroundings.unitKey() + "\n");
         Path configuration = directory.resolve("tallyward.yaml");
         String text = COMMON.formatted(NAME, surroundings.bootstrapServers(), TOPIC)
                 + SURROUNDINGS.formatted(surroundings.httpPort(), surroundings.webhook());
@@ -68,9 +70,10 @@ final class MonitorFiles {
      * @param bootstrapServers the broker
      * @param httpPort where the monitor listens
      * @param webhook where it sends notices
-     * @param secret the signing secret
+     * @param secret the signing secret of the webhook
+     * @param unitKey the key under which the monitor hashes units
      */
-    record Surroundings(String bootstrapServers, int httpPort, URI webhook, String secret) {
+    record Surroundings(String bootstrapServers, int httpPort, URI webhook, String secret, String unitKey) {
 
         @Override
         public String toString() {
