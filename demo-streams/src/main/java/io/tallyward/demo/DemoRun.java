@@ -34,7 +34,9 @@ import java.util.function.BooleanSupplier;
 /** One run of the demonstration: broker, monitor, receiver and stream, started in this order and stopped in reverse. */
 final class DemoRun implements AutoCloseable {
 
-    private static final int PARTITIONS = 4;
+    /** Partitions of the topic; a replay that is to agree needs as many. */
+    static final int PARTITIONS = 4;
+
     private static final int KEY_BYTES = 32;
     private static final Duration START_PATIENCE = Duration.ofSeconds(90);
     private static final Duration CATCH_UP_PATIENCE = Duration.ofSeconds(180);

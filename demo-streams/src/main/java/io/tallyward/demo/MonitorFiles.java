@@ -19,7 +19,7 @@ final class MonitorFiles {
      * The stream's event time lies in the past and a run of the demo is short, so a silent partition must not be taken for
      * an idle one: the wall clock, months ahead, would then stand in for event time.
      */
-    private static final String COMMON = """
+    private static final String CONFIGURATION = """
             name: %s
             kafka:
               bootstrap-servers: %s
@@ -44,11 +44,6 @@ final class MonitorFiles {
 
     private MonitorFiles() {}
 
-    /** A configuration that reads no webhook and names a broker nobody has to run; for a replay from a file. */
-    static String withoutSurroundings() {
-        return COMMON.formatted(NAME, "127.0.0.1:9092", TOPIC);
-    }
-
     /**
      * Writes everything into a directory.
      *
@@ -59,8 +54,8 @@ final class MonitorFiles {
         Files.writeString(directory.resolve("webhook-secret"), surroundings.secret() + "\n");
         Files.writeString(directory.resolve("unit-key"), surroundings.unitKey() + "\n");
         Path configuration = directory.resolve("tallyward.yaml");
-        String text = COMMON.formatted(NAME, surroundings.bootstrapServers(), TOPIC)
-                + SURROUNDINGS.formatted(surroundings.httpPort(), surroundings.webhook());
+        String text = CONFIGURATION.formatted(
+                NAME, surroundings.bootstrapServers(), TOPIC, surroundings.httpPort(), surroundings.webhook());
         return Files.writeString(configuration, text);
     }
 
