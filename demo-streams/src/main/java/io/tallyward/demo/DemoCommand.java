@@ -80,8 +80,7 @@ final class DemoCommand implements Callable<Integer> {
             names = "--write-file",
             paramLabel = "FILE",
             description =
-                    "Write the stream to a file, one JSON object per line, with its configuration and plans beside"
-                            + " it, and end.")
+                    "Write the stream to a file, one JSON object per line, with its plans beside it," + " and end.")
     private Path file;
 
     @Option(
@@ -138,11 +137,11 @@ final class DemoCommand implements Callable<Integer> {
         Path directory = file.toAbsolutePath().getParent();
         Files.createDirectories(directory);
         StreamFile.write(scenario, file);
-        scenario.writePlans(directory.resolve("plans"));
-        Path configuration = directory.resolve("tallyward.yaml");
-        Files.writeString(configuration, MonitorFiles.withoutSurroundings());
-        screen.line(scenario.events().size() + " events written to " + file + ", their plans to "
-                + directory.resolve("plans") + ", a configuration to " + configuration);
+        Path plans = directory.resolve("plans");
+        scenario.writePlans(plans);
+        screen.line(scenario.events().size() + " events written to " + file);
+        screen.line("to decide over them: tallyward replay --events " + file + " --plans " + plans + " --partitions "
+                + DemoRun.PARTITIONS);
     }
 
     private void requireRange(String option, int value, int least, int most) {

@@ -19,10 +19,12 @@ import io.tallyward.demo.truth.ExperimentTruth;
 import io.tallyward.demo.truth.Truth;
 import java.io.IOException;
 import java.nio.file.Path;
+import java.security.SecureRandom;
 import java.time.Clock;
 import java.time.Duration;
 import java.time.Instant;
 import java.util.ArrayList;
+import java.util.Base64;
 import java.util.List;
 import java.util.Map;
 import java.util.OptionalLong;
@@ -32,7 +34,10 @@ import java.util.function.BooleanSupplier;
 /** One run of the demonstration: broker, monitor, receiver and stream, started in this order and stopped in reverse. */
 final class DemoRun implements AutoCloseable {
 
-    private static final int PARTITIONS = 4;
+    /** Partitions of the topic; a replay that is to agree needs as many. */
+    static final int PARTITIONS = 4;
+
+    private static final int KEY_BYTES = 32;
     private static final Duration START_PATIENCE = Duration.ofSeconds(90);
     private static final Duration CATCH_UP_PATIENCE = Duration.ofSeconds(180);
     private static final Duration NOTICE_PATIENCE = Duration.ofSeconds(30);
@@ -93,11 +98,17 @@ final class DemoRun implements AutoCloseable {
         configuration = MonitorFiles.write(
                 directory,
                 scenario,
-                new MonitorFiles.Surroundings(bootstrapServers, httpPort, receiver.address(), secret));
+                new MonitorFiles.Surroundings(bootstrapServers, httpPort, receiver.address(), secret, newKey()));
         api = new MonitorApi(httpPort);
         screen.line("starting the monitor; its page will be at " + api.page());
         startMonitor();
         await("the monitor", START_PATIENCE, () -> api.isUp());
+    }
+
+    private static String newKey() {
+        byte[] key = new byte[KEY_BYTES];
+        new SecureRandom().nextBytes(key);
+        return Base64.getEncoder().encodeToString(key);
     }
 
     private synchronized void startMonitor() throws IOException {
@@ -197,7 +208,8 @@ final class DemoRun implements AutoCloseable {
             if (standing == null) {
                 throw new IllegalStateException("monitor: its API no longer answers" + monitor.tail());
             }
-            OptionalLong outside = api.outside(story.experiment());
+            OptionalLong outside =
+                    options.kills() == 0 ? OptionalLong.of(api.outside(story.experiment())) : OptionalLong.empty();
             checks.add(new ExperimentCheck(right, standing, counts, outside, notices(story)));
         }
         return new Report(checks, List.of(Report.rejects(truth, counts), Report.signatures(receiver.refusals())));

@@ -19,7 +19,7 @@ final class MonitorFiles {
      * The stream's event time lies in the past and a run of the demo is short, so a silent partition must not be taken for
      * an idle one: the wall clock, months ahead, would then stand in for event time.
      */
-    private static final String COMMON = """
+    private static final String CONFIGURATION = """
             name: %s
             kafka:
               bootstrap-servers: %s
@@ -39,14 +39,10 @@ final class MonitorFiles {
     private static final String SURROUNDINGS = """
             http: {host: 127.0.0.1, port: %d}
             webhook: {url: "%s", secret-file: webhook-secret, allow-http: true, allow-private: true}
+            unit-key: {file: unit-key}
             """;
 
     private MonitorFiles() {}
-
-    /** A configuration that reads no webhook and names a broker nobody has to run; for a replay from a file. */
-    static String withoutSurroundings() {
-        return COMMON.formatted(NAME, "127.0.0.1:9092", TOPIC);
-    }
 
     /**
      * Writes everything into a directory.
@@ -56,9 +52,10 @@ final class MonitorFiles {
     static Path write(Path directory, Scenario scenario, Surroundings surroundings) throws IOException {
         scenario.writePlans(directory.resolve("plans"));
         Files.writeString(directory.resolve("webhook-secret"), surroundings.secret() + "\n");
+        Files.writeString(directory.resolve("unit-key"), surroundings.unitKey() + "\n");
         Path configuration = directory.resolve("tallyward.yaml");
-        String text = COMMON.formatted(NAME, surroundings.bootstrapServers(), TOPIC)
-                + SURROUNDINGS.formatted(surroundings.httpPort(), surroundings.webhook());
+        String text = CONFIGURATION.formatted(
+                NAME, surroundings.bootstrapServers(), TOPIC, surroundings.httpPort(), surroundings.webhook());
         return Files.writeString(configuration, text);
     }
 
@@ -68,9 +65,10 @@ final class MonitorFiles {
      * @param bootstrapServers the broker
      * @param httpPort where the monitor listens
      * @param webhook where it sends notices
-     * @param secret the signing secret
+     * @param secret the signing secret of the webhook
+     * @param unitKey the key under which the monitor hashes units
      */
-    record Surroundings(String bootstrapServers, int httpPort, URI webhook, String secret) {
+    record Surroundings(String bootstrapServers, int httpPort, URI webhook, String secret, String unitKey) {
 
         @Override
         public String toString() {

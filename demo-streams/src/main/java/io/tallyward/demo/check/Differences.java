@@ -1,6 +1,7 @@
 package io.tallyward.demo.check;
 
 import java.util.ArrayList;
+import java.util.Comparator;
 import java.util.List;
 import java.util.Map;
 import java.util.Set;
@@ -21,7 +22,7 @@ final class Differences {
      */
     static <K, V> List<String> between(Map<K, V> truth, Map<K, V> monitor, V absent) {
         List<String> sentences = new ArrayList<>();
-        Set<K> keys = new TreeSet<>(java.util.Comparator.comparing(Object::toString));
+        Set<K> keys = new TreeSet<>(Comparator.comparing(Object::toString));
         keys.addAll(truth.keySet());
         keys.addAll(monitor.keySet());
         int differing = 0;

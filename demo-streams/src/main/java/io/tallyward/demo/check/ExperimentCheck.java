@@ -20,7 +20,7 @@ import java.util.Set;
  * @param truth what is right
  * @param standing what the monitor's API says
  * @param counts what the monitor's topics say
- * @param outside events outside the run, by the monitor's metrics
+ * @param outside events outside the run, by the monitor's metrics; empty when a restart has reset them
  * @param notices notices about this experiment that were delivered
  */
 public record ExperimentCheck(
@@ -65,7 +65,7 @@ public record ExperimentCheck(
         findings.add(trustFinding());
         findings.add(cellsFinding());
         findings.add(outcomesFinding());
-        findings.add(outsideFinding());
+        outside.ifPresent(events -> findings.add(outsideFinding(events)));
         findings.add(new Finding(
                 experiment() + ": totals in the API",
                 Differences.between(
@@ -88,13 +88,12 @@ public record ExperimentCheck(
                 Differences.between(right, counts.outcomes(experiment()), 0L));
     }
 
-    private Finding outsideFinding() {
+    private Finding outsideFinding(long events) {
         long right = truth.outcomes().get("outside");
-        String found = outside.isPresent() ? Long.toString(outside.getAsLong()) : "nothing";
         return Finding.of(
                 experiment() + ": events outside the run",
-                outside.isPresent() && outside.getAsLong() == right,
-                "the truth is " + right + ", the metrics say " + found);
+                events == right,
+                "the truth is " + right + ", the metrics say " + events);
     }
 
     private Finding verdictFinding(String challenger) {

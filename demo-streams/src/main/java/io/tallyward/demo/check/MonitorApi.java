@@ -17,7 +17,6 @@ import java.util.HashMap;
 import java.util.LinkedHashMap;
 import java.util.Map;
 import java.util.Optional;
-import java.util.OptionalLong;
 import java.util.regex.Matcher;
 import java.util.regex.Pattern;
 
@@ -67,14 +66,15 @@ public final class MonitorApi {
         return standings;
     }
 
-    /** Events of an experiment outside its run, as the metrics tell; empty when they do not. */
-    public OptionalLong outside(String experiment) {
+    /**
+     * Events of an experiment outside its run, as the metrics tell; 0 when they name none. Like every counter of a process
+     * it starts anew when the process does.
+     */
+    public long outside(String experiment) {
         Pattern sample = Pattern.compile("tallyward_events_total\\{(?=[^}]*experiment=\"" + Pattern.quote(experiment)
                 + "\")(?=[^}]*outcome=\"outside\")[^}]*} ([0-9.E]+)");
         Matcher matcher = sample.matcher(get(metrics()).orElse(""));
-        return matcher.find()
-                ? OptionalLong.of(Math.round(Double.parseDouble(matcher.group(1))))
-                : OptionalLong.empty();
+        return matcher.find() ? Math.round(Double.parseDouble(matcher.group(1))) : 0;
     }
 
     private Optional<String> get(URI address) {

@@ -64,6 +64,14 @@ class ReportTest {
     }
 
     @Test
+    void leavesCountersOfARestartedMonitorAlone() {
+        ExperimentCheck whole = quayBanner("stop-benefit", 10, List.of(STOP));
+        ExperimentCheck restarted = new ExperimentCheck(
+                whole.truth(), whole.standing(), whole.counts(), OptionalLong.empty(), whole.notices());
+        assertEquals("all 6 checks hold", last(new Report(List.of(restarted), List.of())));
+    }
+
+    @Test
     void everyRefusedSignatureIsADifference() {
         assertTrue(Report.signatures(List.of()).holds());
         assertFalse(Report.signatures(List.of("no signature fits")).holds());

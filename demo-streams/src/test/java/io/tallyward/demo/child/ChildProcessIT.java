@@ -6,6 +6,7 @@ import static org.junit.jupiter.api.Assertions.assertTrue;
 
 import java.nio.file.Path;
 import java.time.Duration;
+import java.util.ArrayList;
 import java.util.List;
 import java.util.concurrent.CountDownLatch;
 import org.junit.jupiter.api.Test;
@@ -59,7 +60,7 @@ class ChildProcessIT {
     }
 
     private ChildProcess start(String name, String... arguments) throws Exception {
-        List<String> command = new java.util.ArrayList<>(List.of(TiedToParent.class.getName(), Told.class.getName()));
+        List<String> command = new ArrayList<>(List.of(TiedToParent.class.getName(), Told.class.getName()));
         command.addAll(List.of(arguments));
         return ChildProcess.start(name, directory.resolve(name + ".log"), List.of("-Xmx64m"), command);
     }

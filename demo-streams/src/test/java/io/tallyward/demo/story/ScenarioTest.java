@@ -5,6 +5,7 @@ import static org.junit.jupiter.api.Assertions.assertNotEquals;
 import static org.junit.jupiter.api.Assertions.assertTrue;
 
 import io.tallyward.demo.stream.EventJson;
+import java.nio.charset.StandardCharsets;
 import java.security.MessageDigest;
 import java.time.Duration;
 import java.util.HashMap;
@@ -109,7 +110,7 @@ class ScenarioTest {
         MessageDigest digest = MessageDigest.getInstance("SHA-256");
         for (StreamEvent event : scenario.events()) {
             digest.update(EventJson.record(event));
-            digest.update(Long.toString(event.receivedMillis()).getBytes(java.nio.charset.StandardCharsets.US_ASCII));
+            digest.update(Long.toString(event.receivedMillis()).getBytes(StandardCharsets.US_ASCII));
         }
         return HexFormat.of().formatHex(digest.digest());
     }

@@ -7,6 +7,7 @@ import io.tallyward.demo.story.Northwater;
 import io.tallyward.demo.story.ToldScenario;
 import io.tallyward.demo.truth.ExperimentTruth.Stratum;
 import java.time.Duration;
+import java.util.Arrays;
 import java.util.Map;
 import org.apache.commons.math3.distribution.ChiSquaredDistribution;
 import org.apache.commons.math3.distribution.NormalDistribution;
@@ -23,8 +24,10 @@ class PowerTest {
     private static final double LAST_BOUNDARY = 2.5;
     private static final double MISS = 1e-3;
 
-    private final Map<String, ExperimentTruth> truth =
+    private static final Map<String, ExperimentTruth> TRUTH =
             Truth.of(ToldScenario.withDefaultSeed(), 4).experiments();
+
+    private final Map<String, ExperimentTruth> truth = TRUTH;
 
     @Test
     void benefitOfTheQuayBannerCannotBeMissed() {
@@ -119,13 +122,13 @@ class PowerTest {
     }
 
     private static void assertFits(long[] observed, double... shares) {
-        double all = java.util.Arrays.stream(observed).sum();
+        double all = Arrays.stream(observed).sum();
         double chiSquare = 0;
         for (int i = 0; i < observed.length; i++) {
             chiSquare += Math.pow(observed[i] - all * shares[i], 2) / (all * shares[i]);
         }
         double p = 1 - new ChiSquaredDistribution(observed.length - 1).cumulativeProbability(chiSquare);
-        assertTrue(p > 1e-4, "p " + p + " of " + java.util.Arrays.toString(observed));
+        assertTrue(p > 1e-4, "p " + p + " of " + Arrays.toString(observed));
     }
 
     /** Four standard errors of a rate near 0.15 in 20,000 units are 0.010; the twists move it by less than 0.001. */
