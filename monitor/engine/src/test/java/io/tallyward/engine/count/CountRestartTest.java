@@ -141,6 +141,17 @@ class CountRestartTest {
     }
 
     @Test
+    void remembersALateViewOfATrialThatAnotherSourceHoldsOpen() {
+        CountHost host = host(2);
+        host.feedFrom(1, Events.view(BANNER, "wide", "ada", "v", 2)).commit();
+        host.feedFrom(0, Events.view(BANNER, "wide", "clock", "t", 45))
+                .feedFrom(0, Events.view(BANNER, "wide", "ada", "v2", 3))
+                .commit();
+        host.restart(0).end();
+        assertEquals(1, host.outcomes(BANNER).get(Outcome.REPEAT));
+    }
+
+    @Test
     void keepsIdlenessAcrossARestart() {
         CountHost host = host();
         host.feed(Events.view(BANNER, "wide", "ada", "v", 3));
