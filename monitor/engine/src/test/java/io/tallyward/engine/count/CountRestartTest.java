@@ -32,7 +32,11 @@ class CountRestartTest {
     private static final String BANNER = "quay-banner";
 
     private static CountHost host() {
-        return new CountHost(0, 1, PLANS, 1);
+        return host(1);
+    }
+
+    private static CountHost host(int sources) {
+        return new CountHost(0, 1, PLANS, sources);
     }
 
     /**
@@ -42,7 +46,7 @@ class CountRestartTest {
      * @param cleaned how much of a log of the given size has been compacted
      */
     private static CountHost run(List<Arrival> arrivals, long seed, int killOneIn, IntUnaryOperator cleaned) {
-        CountHost host = host();
+        CountHost host = host(sources(seed));
         Random kills = new Random(seed);
         int commitEvery = 1 + (int) (seed % 40);
         int committed = 0;
@@ -62,6 +66,10 @@ class CountRestartTest {
         return host.commit();
     }
 
+    private static int sources(long seed) {
+        return 1 + (int) (seed % 2);
+    }
+
     private static void assertSame(CountHost expected, CountHost actual, String where) {
         assertEquals(expected.tallies(), actual.tallies(), where);
         assertEquals(expected.shard().view(), actual.shard().view(), where);
@@ -69,7 +77,7 @@ class CountRestartTest {
 
     private static void assertSurvives(IntUnaryOperator cleaned) {
         for (long seed = 0; seed < SEEDS; seed++) {
-            List<Arrival> arrivals = RandomStream.wild(seed, 1);
+            List<Arrival> arrivals = RandomStream.wild(seed, sources(seed));
             CountHost undisturbed = run(arrivals, seed, Integer.MAX_VALUE, cleaned);
             CountHost disturbed = run(arrivals, seed, 60, cleaned);
             assertSame(undisturbed, disturbed, "seed " + seed);
@@ -103,7 +111,7 @@ class CountRestartTest {
             List<Arrival> arrivals = RandomStream.wild(seed, 1);
             CountHost often = run(arrivals, 0, Integer.MAX_VALUE, size -> size).end();
             CountHost seldom =
-                    run(arrivals, 39, Integer.MAX_VALUE, size -> size).end();
+                    run(arrivals, 38, Integer.MAX_VALUE, size -> size).end();
             for (Plan plan : PLANS) {
                 assertEquals(
                         windows(often, plan.experiment()),
@@ -130,6 +138,17 @@ class CountRestartTest {
         assertEquals(1, host.openEvents(BANNER));
         host.feed(Events.view(BANNER, "wide", "ada", "v2", 46)).end();
         assertEquals(1, host.outcomes(BANNER).get(Outcome.ORPHAN));
+    }
+
+    @Test
+    void remembersALateViewOfATrialThatAnotherSourceHoldsOpen() {
+        CountHost host = host(2);
+        host.feedFrom(1, Events.view(BANNER, "wide", "ada", "v", 2)).commit();
+        host.feedFrom(0, Events.view(BANNER, "wide", "clock", "t", 45))
+                .feedFrom(0, Events.view(BANNER, "wide", "ada", "v2", 3))
+                .commit();
+        host.restart(0).end();
+        assertEquals(1, host.outcomes(BANNER).get(Outcome.REPEAT));
     }
 
     @Test

@@ -239,6 +239,14 @@ class CountShardSealingTest {
     }
 
     @Test
+    void aLateClickAtTheVeryMomentOfAnOpenTrialIsLateAndNoOrphan() {
+        two.feedFrom(1, view("ada", 2)).feedFrom(0, view("clock", 45)).feedFrom(0, click("ada", 2));
+        two.end();
+        assertEquals(1, two.outcomes(BANNER).get(Outcome.LATE));
+        assertEquals(0, two.outcomes(BANNER).get(Outcome.ORPHAN));
+    }
+
+    @Test
     void aLateClickOfASuccessIsARepeatWhicheverClickArrivedFirst() {
         two.feedFrom(1, view("ada", 2))
                 .feedFrom(0, view("clock", 45))

@@ -143,6 +143,18 @@ class CountShardTest {
     }
 
     @Test
+    void breaksATieOfTheSameIdByThePlansOrderOfVariants() {
+        for (String[] order : new String[][] {{"plain", "wide"}, {"wide", "plain"}}) {
+            CountHost tied = CountHost.of(QUAY_BANNER);
+            for (String variant : order) {
+                tied.feed(Events.view(BANNER, variant, "ada", "same", 1));
+            }
+            tied.end();
+            assertEquals(new Counted(one(0, PLAIN, 1, 0)), tied.counted(BANNER), String.join(" then ", order));
+        }
+    }
+
+    @Test
     void attributesAClickThatArrivesBeforeItsView() {
         host.feed(click("wide", "ada", 3)).feed(view("wide", "ada", 1)).end();
         assertCells(one(0, WIDE, 1, 1));
