@@ -27,7 +27,6 @@ import java.util.ArrayList;
 import java.util.Base64;
 import java.util.List;
 import java.util.Map;
-import java.util.OptionalLong;
 import java.util.concurrent.TimeUnit;
 import java.util.function.BooleanSupplier;
 
@@ -208,8 +207,7 @@ final class DemoRun implements AutoCloseable {
             if (standing == null) {
                 throw new IllegalStateException("monitor: its API no longer answers" + monitor.tail());
             }
-            OptionalLong outside =
-                    options.kills() == 0 ? OptionalLong.of(api.outside(story.experiment())) : OptionalLong.empty();
+            long outside = api.outside(story.experiment());
             checks.add(new ExperimentCheck(right, standing, counts, outside, notices(story)));
         }
         return new Report(checks, List.of(Report.rejects(truth, counts), Report.signatures(receiver.refusals())));

@@ -11,7 +11,6 @@ import java.util.ArrayList;
 import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
-import java.util.OptionalLong;
 import java.util.Set;
 
 /**
@@ -20,15 +19,11 @@ import java.util.Set;
  * @param truth what is right
  * @param standing what the monitor's API says
  * @param counts what the monitor's topics say
- * @param outside events outside the run, by the monitor's metrics; empty when a restart has reset them
+ * @param outside events outside the run, by the monitor's API
  * @param notices notices about this experiment that were delivered
  */
 public record ExperimentCheck(
-        ExperimentTruth truth,
-        Standing standing,
-        MonitorCounts counts,
-        OptionalLong outside,
-        List<ReceivedNotice> notices) {
+        ExperimentTruth truth, Standing standing, MonitorCounts counts, long outside, List<ReceivedNotice> notices) {
 
     private static final Set<String> STOPS = Set.of("stop-benefit", "stop-harm");
 
@@ -65,7 +60,7 @@ public record ExperimentCheck(
         findings.add(trustFinding());
         findings.add(cellsFinding());
         findings.add(outcomesFinding());
-        outside.ifPresent(events -> findings.add(outsideFinding(events)));
+        findings.add(outsideFinding());
         findings.add(new Finding(
                 experiment() + ": totals in the API",
                 Differences.between(
@@ -88,12 +83,12 @@ public record ExperimentCheck(
                 Differences.between(right, counts.outcomes(experiment()), 0L));
     }
 
-    private Finding outsideFinding(long events) {
+    private Finding outsideFinding() {
         long right = truth.outcomes().get("outside");
         return Finding.of(
                 experiment() + ": events outside the run",
-                events == right,
-                "the truth is " + right + ", the metrics say " + events);
+                outside == right,
+                "the truth is " + right + ", the API says " + outside);
     }
 
     private Finding verdictFinding(String challenger) {

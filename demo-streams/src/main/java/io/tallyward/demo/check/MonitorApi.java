@@ -17,8 +17,6 @@ import java.util.HashMap;
 import java.util.LinkedHashMap;
 import java.util.Map;
 import java.util.Optional;
-import java.util.regex.Matcher;
-import java.util.regex.Pattern;
 
 /** The monitor's public faces: its API and its metrics. */
 public final class MonitorApi {
@@ -55,26 +53,33 @@ public final class MonitorApi {
         Map<String, Standing> standings = new LinkedHashMap<>();
         Optional<String> answer = get(base.resolve("api/experiments"));
         if (answer.isPresent()) {
-            try {
-                for (JsonNode node : JSON.readTree(answer.get())) {
-                    standings.put(node.path("experiment").asText(), new Standing(node));
-                }
-            } catch (IOException e) {
-                throw new IllegalStateException(base + "api/experiments: the answer is no JSON", e);
+            for (JsonNode node : tree(answer.get())) {
+                standings.put(node.path("experiment").asText(), new Standing(node));
             }
         }
         return standings;
     }
 
-    /**
-     * Events of an experiment outside its run, as the metrics tell; 0 when they name none. Like every counter of a process
-     * it starts anew when the process does.
-     */
+    /** Events of an experiment outside its run since the first event, as the API tells of every partition. */
     public long outside(String experiment) {
-        Pattern sample = Pattern.compile("tallyward_events_total\\{(?=[^}]*experiment=\"" + Pattern.quote(experiment)
-                + "\")(?=[^}]*outcome=\"outside\")[^}]*} ([0-9.E]+)");
-        Matcher matcher = sample.matcher(get(metrics()).orElse(""));
-        return matcher.find() ? Math.round(Double.parseDouble(matcher.group(1))) : 0;
+        long events = 0;
+        Optional<String> answer = get(base.resolve("api/partitions"));
+        if (answer.isPresent()) {
+            for (JsonNode partition : tree(answer.get())) {
+                JsonNode outcomes =
+                        partition.path("experiments").path(experiment).path("outcomes");
+                events += outcomes.path("outside").asLong();
+            }
+        }
+        return events;
+    }
+
+    private JsonNode tree(String answer) {
+        try {
+            return JSON.readTree(answer);
+        } catch (IOException e) {
+            throw new IllegalStateException(base + "api: the answer is no JSON", e);
+        }
     }
 
     private Optional<String> get(URI address) {

@@ -18,7 +18,6 @@ import io.tallyward.demo.truth.ExperimentTruth;
 import java.nio.charset.StandardCharsets;
 import java.util.List;
 import java.util.Map;
-import java.util.OptionalLong;
 import org.junit.jupiter.api.Test;
 
 class ReportTest {
@@ -57,18 +56,10 @@ class ReportTest {
     void callsAFalseAlarmByItsName() {
         ExperimentTruth truth = new ExperimentTruth(new FareChip(), Map.of(), Map.of("outside", 0L, "trial", 0L));
         ExperimentCheck check = new ExperimentCheck(
-                truth, standing(new FareChip(), "stop-benefit", 0), new MonitorCounts(), OptionalLong.of(0), List.of());
+                truth, standing(new FareChip(), "stop-benefit", 0), new MonitorCounts(), 0, List.of());
         Report report = new Report(List.of(check), List.of());
         assertTrue(report.holds(), () -> String.join("\n", report.lines()));
         assertTrue(report.lines().stream().anyMatch(line -> line.contains("false alarm")));
-    }
-
-    @Test
-    void leavesCountersOfARestartedMonitorAlone() {
-        ExperimentCheck whole = quayBanner("stop-benefit", 10, List.of(STOP));
-        ExperimentCheck restarted = new ExperimentCheck(
-                whole.truth(), whole.standing(), whole.counts(), OptionalLong.empty(), whole.notices());
-        assertEquals("all 6 checks hold", last(new Report(List.of(restarted), List.of())));
     }
 
     @Test
@@ -84,7 +75,7 @@ class ReportTest {
                 new ExperimentTruth(story, cells, Map.of("trial", 10L, "success", 3L, "outside", 4L, "late", 0L));
         MonitorCounts counts = new MonitorCounts();
         counts.add(tally(counted));
-        return new ExperimentCheck(truth, standing(story, verdict, 10), counts, OptionalLong.of(4), notices);
+        return new ExperimentCheck(truth, standing(story, verdict, 10), counts, 4, notices);
     }
 
     private static byte[] tally(long trials) {

@@ -52,6 +52,10 @@ public record StatusSite(StatusBoard board, HealthBoard health, PrometheusExposi
         serve(routes, "/api/experiments/{name}", this::apiExperiment);
         serve(
                 routes,
+                "/api/partitions",
+                ctx -> json(ctx, PartitionJson.list(board.counts().reports())));
+        serve(
+                routes,
                 "/",
                 ctx -> ctx.contentType(HTML)
                         .result(pages.overview(board.experiments().values(), health.checks())));

@@ -64,6 +64,7 @@ class StatusServerIT {
                 "health/ready",
                 "api/experiments",
                 "api/experiments/deck-map",
+                "api/partitions",
                 "experiments/deck-map",
                 "assets/page.css",
                 "assets/live.js",
