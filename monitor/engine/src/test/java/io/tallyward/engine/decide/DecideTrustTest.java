@@ -127,6 +127,15 @@ class DecideTrustTest {
     }
 
     @Test
+    void countsTheTrialsDueSinceAVariantWasLastSeen() {
+        hours(1, 2000, 400, 2000, 400);
+        hours(5, 10, 2, 0, 0);
+        hours(1, 10, 2, 1, 0);
+        hours(7, 2, 0, 0, 0);
+        assertEquals(Trust.SOUND, host.view().trust(), "7 were due since the last one, 25 before it");
+    }
+
+    @Test
     void complainsOfCrossoversAboveTheLimitAndRecoversWellBelowIt() {
         complainsAndRecovers(Outcome.CROSSOVER, Trust.CROSSOVER, "crossover");
         assertEquals(Notice.Severity.TICKET, host.notices().get(0).severity());
