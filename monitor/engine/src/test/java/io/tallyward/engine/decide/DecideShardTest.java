@@ -309,6 +309,13 @@ class DecideShardTest {
     }
 
     @Test
+    void countsADelayedLookOnceAlsoAcrossARestart() {
+        host.next(40, 10, 40, 4);
+        host.restart(0).next(10, 2, 10, 0);
+        assertEquals(1, host.view().looksDelayed());
+    }
+
+    @Test
     void takesADelayedLookWithTheNextWindowAndThenReturnsToTheGrid() {
         Plan plan = fiveDays()
                 .counting(Duration.ofMinutes(30), Duration.ofMinutes(10), Duration.ofHours(6))

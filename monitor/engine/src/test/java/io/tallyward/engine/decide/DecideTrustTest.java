@@ -77,6 +77,14 @@ class DecideTrustTest {
     }
 
     @Test
+    void doesNotForgetAMismatchThatAnotherEvensOut() {
+        host.next(1000, 200, 700, 140).next(700, 140, 1000, 200);
+        assertEquals(Trust.MISMATCH, host.view().trust());
+        assertTrue(host.view().split().logBayesFactor() < 0, "by now the counts are even");
+        assertTrue(host.view().split().sequentialPValue() <= 0.001, "the p-value never rises");
+    }
+
+    @Test
     void seesNoMismatchInARampThatFollowsThePlan() {
         Plan ramp = hours().epochs(
                         new AllocationEpoch(Plans.FROM.plus(Duration.ofHours(3)), Map.of("plain", 0.9, "wide", 0.1)))
