@@ -269,9 +269,21 @@ class DecideRecordTest {
         boolean last = runEnds || (look.informationFraction() >= 1 && benefitOpen);
         double spent = design.spending().spent(0.0125, last ? 1 : look.informationFraction());
         Look expected = sequence.next(look.informationFraction(), benefitOpen ? spent : 0, spent);
+        Verdict found = look.held() == null ? look.verdict() : look.held();
+        assertEquals(finding(look, expected, last), found, where);
         assertBoundary(expected.upper(), look.upper(), where);
         assertBoundary(expected.lower(), look.lower(), where);
         assertEquals(expected.upperSpent() + expected.lowerSpent(), look.alphaSpent(), 1e-15, where);
+    }
+
+    private static Verdict finding(Comparison look, Look boundaries, boolean last) {
+        if (look.z() >= boundaries.upper() || look.z() <= boundaries.lower()) {
+            return look.z() > 0 ? Verdict.STOP_BENEFIT : Verdict.STOP_HARM;
+        }
+        if (last) {
+            return Verdict.EXHAUSTED;
+        }
+        return look.futility() != null && look.z() < look.futility() ? Verdict.STOP_FUTILITY : Verdict.CONTINUE;
     }
 
     private static void assertBoundary(double expected, Double recorded, String where) {

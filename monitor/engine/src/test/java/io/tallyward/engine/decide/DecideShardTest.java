@@ -137,6 +137,19 @@ class DecideShardTest {
                 host.lastLook().reason());
     }
 
+    /** The boundary of the second look is 3.357; these counts give z of 3.31 and 3.43, either way. */
+    @Test
+    void stopsJustBeyondTheBoundaryAndNotJustWithinIt() {
+        long[][] counts = {{180, 222}, {179, 223}, {222, 180}, {223, 179}};
+        Verdict[] expected = {Verdict.CONTINUE, Verdict.STOP_BENEFIT, Verdict.CONTINUE, Verdict.STOP_HARM};
+        for (int i = 0; i < counts.length; i++) {
+            DecideHost close = new DecideHost(FIVE_DAYS);
+            close.next(1000, counts[i][0], 1000, counts[i][1]).next(1000, counts[i][0], 1000, counts[i][1]);
+            assertEquals(
+                    expected[i], close.lastLook().verdict(), close.lastLook().toString());
+        }
+    }
+
     @Test
     void hasNoHarmBoundaryInAOneSidedTest() {
         Plan plan = fiveDays().sides(Sides.ONE).alpha(0.025).build();
@@ -293,6 +306,13 @@ class DecideShardTest {
                 host.view().delayReason());
         host.next(1000, 200, 1000, 200);
         assertEquals(2, host.decisions().size());
+    }
+
+    @Test
+    void countsADelayedLookOnceAlsoAcrossARestart() {
+        host.next(40, 10, 40, 4);
+        host.restart(0).next(10, 2, 10, 0);
+        assertEquals(1, host.view().looksDelayed());
     }
 
     @Test

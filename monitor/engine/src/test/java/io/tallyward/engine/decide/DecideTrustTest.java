@@ -77,6 +77,14 @@ class DecideTrustTest {
     }
 
     @Test
+    void doesNotForgetAMismatchThatAnotherEvensOut() {
+        host.next(1000, 200, 700, 140).next(700, 140, 1000, 200);
+        assertEquals(Trust.MISMATCH, host.view().trust());
+        assertTrue(host.view().split().logBayesFactor() < 0, "by now the counts are even");
+        assertTrue(host.view().split().sequentialPValue() <= 0.001, "the p-value never rises");
+    }
+
+    @Test
     void seesNoMismatchInARampThatFollowsThePlan() {
         Plan ramp = hours().epochs(
                         new AllocationEpoch(Plans.FROM.plus(Duration.ofHours(3)), Map.of("plain", 0.9, "wide", 0.1)))
@@ -124,6 +132,15 @@ class DecideTrustTest {
         hours(1, 5, 1, 5, 1);
         hours(8, 2, 0, 0, 0);
         assertEquals(Trust.SOUND, host.view().trust(), "8 trials were due; their absence is no proof");
+    }
+
+    @Test
+    void countsTheTrialsDueSinceAVariantWasLastSeen() {
+        hours(1, 2000, 400, 2000, 400);
+        hours(5, 10, 2, 0, 0);
+        hours(1, 10, 2, 1, 0);
+        hours(7, 2, 0, 0, 0);
+        assertEquals(Trust.SOUND, host.view().trust(), "7 were due since the last one, 25 before it");
     }
 
     @Test
