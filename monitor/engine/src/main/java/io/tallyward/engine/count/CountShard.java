@@ -30,7 +30,7 @@ public final class CountShard {
     private final Watermarks watermarks;
     private final Map<String, ExperimentCounter> counters = new LinkedHashMap<>();
     private final Map<RejectReason, Long> rejected = new EnumMap<>(RejectReason.class);
-    private final CountState state = new CountState();
+    private final CountState state;
     private final SealedTallies tallies;
 
     private final List<StateChange> sealedState = new ArrayList<>();
@@ -55,6 +55,7 @@ public final class CountShard {
         maxSkewMillis = settings.maxSkew().toMillis();
         hasher = new UnitHasher(settings.unitKey());
         watermarks = new Watermarks(sources, settings.idleAfter().toMillis());
+        state = new CountState(partitions);
         tallies = new SealedTallies(partition, partitions);
         for (Plan plan : plans) {
             counters.put(plan.experiment(), new ExperimentCounter(plan));
@@ -68,6 +69,7 @@ public final class CountShard {
      * Applies one earlier state change.
      *
      * @throws io.tallyward.engine.plan.PlanChangedException when an experiment was counted under another plan
+     * @throws PartitionsChangedException when the input topics had another number of partitions
      */
     public void restore(byte[] key, byte[] value) {
         state.restore(key, value, watermarks, rejected, counters);
@@ -163,7 +165,7 @@ public final class CountShard {
             }
         }
         if (shardChanged) {
-            changes.add(CountState.shard(watermarks, rejected));
+            changes.add(state.shard(watermarks, rejected));
             shardChanged = false;
         }
         return new CountEffects(changes, tallies.take(counters));

@@ -38,7 +38,12 @@ final class CountState {
     /** A packed entry is closed once it is this large; well below a broker's usual record limit of 1 MB. */
     private static final int PACKED_BYTES = 400_000;
 
+    private final int partitions;
     private final Map<String, TreeMap<Long, Integer>> openEntries = new TreeMap<>();
+
+    CountState(int partitions) {
+        this.partitions = partitions;
+    }
 
     /** Something written field by field. */
     @FunctionalInterface
@@ -56,8 +61,9 @@ final class CountState {
         return bytes.toByteArray();
     }
 
-    static StateChange shard(Watermarks watermarks, Map<RejectReason, Long> rejected) {
+    StateChange shard(Watermarks watermarks, Map<RejectReason, Long> rejected) {
         return new StateChange(new byte[] {SHARD}, pack(out -> {
+            out.writeInt(partitions);
             watermarks.write(out);
             for (RejectReason reason : RejectReason.values()) {
                 out.writeLong(rejected.get(reason));
@@ -176,9 +182,13 @@ final class CountState {
         return new DataInputStream(new ByteArrayInputStream(value));
     }
 
-    private static void restoreShard(byte[] value, Watermarks watermarks, Map<RejectReason, Long> rejected)
+    private void restoreShard(byte[] value, Watermarks watermarks, Map<RejectReason, Long> rejected)
             throws IOException {
         DataInputStream in = reader(value);
+        int partitionsBefore = in.readInt();
+        if (partitionsBefore != partitions) {
+            throw new PartitionsChangedException(partitionsBefore, partitions);
+        }
         watermarks.read(in);
         for (RejectReason reason : RejectReason.values()) {
             rejected.put(reason, in.readLong());

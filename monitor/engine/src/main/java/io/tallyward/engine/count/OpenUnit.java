@@ -13,12 +13,19 @@ final class OpenUnit {
 
     private static final int NO_TRIAL = -1;
 
+    /**
+     * Clicks of one unit that are kept with their times. A person does not click so often within the attribution time; a
+     * bot may, and further clicks of it are then only counted, as repeats or crossovers, and cannot make a success.
+     */
+    static final int MOST_CLICKS = 1_000;
+
     private int variant = NO_TRIAL;
     private long first;
     private String firstId = "";
 
     private final int[] exposures;
     private final int[] tooLate;
+    private final int[] surplus;
 
     private int clicks;
     private long[] clickTimes = new long[2];
@@ -28,6 +35,7 @@ final class OpenUnit {
     OpenUnit(int variants) {
         exposures = new int[variants];
         tooLate = new int[variants];
+        surplus = new int[variants];
     }
 
     boolean hasTrial() {
@@ -50,7 +58,11 @@ final class OpenUnit {
 
     /** Events kept here whose outcome is not final yet. */
     int events() {
-        return Arrays.stream(exposures).sum() + Arrays.stream(tooLate).sum() + clicks;
+        return sum(exposures) + sum(tooLate) + sum(surplus) + clicks;
+    }
+
+    private static int sum(int[] counts) {
+        return Arrays.stream(counts).sum();
     }
 
     /**
@@ -89,6 +101,10 @@ final class OpenUnit {
     void click(int clickedVariant, long atMillis, long arrivalMillis, long attributionMillis) {
         if (hasTrial() && atMillis > first + attributionMillis) {
             tooLate[clickedVariant]++;
+            return;
+        }
+        if (clicks == MOST_CLICKS) {
+            surplus[clickedVariant]++;
             return;
         }
         if (clicks == clickTimes.length) {
@@ -131,6 +147,10 @@ final class OpenUnit {
         }
         int removed = clicks - kept;
         clicks = kept;
+        if (isEmpty()) {
+            removed += sum(surplus);
+            Arrays.fill(surplus, 0);
+        }
         return removed;
     }
 
@@ -166,10 +186,11 @@ final class OpenUnit {
      */
     void settle(long sealAtMillis, OutcomeCounts.Builder outcomes) {
         outcomes.add(Outcome.TRIAL, 1).add(Outcome.REPEAT, exposures[variant] - 1L);
+        outcomes.add(Outcome.REPEAT, surplus[variant]);
         outcomes.add(Outcome.EXPIRED, tooLate[variant]);
         for (int other = 0; other < exposures.length; other++) {
             if (other != variant) {
-                outcomes.add(Outcome.CROSSOVER, exposures[other] + (long) tooLate[other]);
+                outcomes.add(Outcome.CROSSOVER, (long) exposures[other] + tooLate[other] + surplus[other]);
             }
         }
         boolean successful = successful(sealAtMillis);
@@ -202,6 +223,7 @@ final class OpenUnit {
         for (int i = 0; i < exposures.length; i++) {
             out.writeInt(exposures[i]);
             out.writeInt(tooLate[i]);
+            out.writeInt(surplus[i]);
         }
         out.writeInt(clicks);
         for (int i = 0; i < clicks; i++) {
@@ -221,6 +243,7 @@ final class OpenUnit {
         for (int i = 0; i < variants; i++) {
             unit.exposures[i] = in.readInt();
             unit.tooLate[i] = in.readInt();
+            unit.surplus[i] = in.readInt();
         }
         unit.clicks = in.readInt();
         unit.clickTimes = new long[Math.max(2, unit.clicks)];

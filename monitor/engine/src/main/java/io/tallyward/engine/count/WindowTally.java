@@ -7,7 +7,8 @@ import java.util.List;
  *
  * @param startMillis start of the window, milliseconds since the epoch, UTC-aligned
  * @param cells counts by allocation epoch and variant, ordered by epoch then variant; only cells with trials
- * @param outcomes what became of the events attributed to this window; the events of all windows of a partition, the ones
+ * @param outcomes what became of the events attributed to this window; those of all windows of a partition, the late ones
+ *     after its last window was sealed, the ones
  *     outside the run and the rejected ones add up to the events read
  */
 public record WindowTally(long startMillis, List<Cell> cells, OutcomeCounts outcomes) {

@@ -1,6 +1,7 @@
 package io.tallyward.engine.decide;
 
 import io.tallyward.engine.count.OutcomeCounts;
+import io.tallyward.engine.count.PartitionsChangedException;
 import io.tallyward.engine.count.SealCause;
 import io.tallyward.engine.count.TallyUpdate;
 import io.tallyward.engine.count.WindowTally;
@@ -47,12 +48,17 @@ final class Completeness {
         }
     }
 
-    /** Takes note of what one partition has sealed. */
+    /**
+     * Takes note of what one partition has sealed.
+     *
+     * @throws PartitionsChangedException when the input topics have not as many partitions as before
+     */
     void add(TallyUpdate update) {
-        if (sealedUntil.length < update.partitions()) {
-            int known = sealedUntil.length;
-            sealedUntil = Arrays.copyOf(sealedUntil, update.partitions());
-            Arrays.fill(sealedUntil, known, sealedUntil.length, runFrom);
+        if (sealedUntil.length == 0) {
+            sealedUntil = new long[update.partitions()];
+            Arrays.fill(sealedUntil, runFrom);
+        } else if (sealedUntil.length != update.partitions()) {
+            throw new PartitionsChangedException(sealedUntil.length, update.partitions());
         }
         long before = sealedUntil[update.partition()];
         for (WindowTally window : update.windows()) {
