@@ -34,9 +34,6 @@ final class MonitorFiles {
             plans: plans
             commit-interval: PT1S
             workers: 2
-            """;
-
-    private static final String SURROUNDINGS = """
             http: {host: 127.0.0.1, port: %d}
             webhook: {url: "%s", secret-file: webhook-secret, allow-http: true, allow-private: true}
             unit-key: {file: unit-key}
