@@ -51,9 +51,8 @@ final class MonitorFiles {
         Files.writeString(directory.resolve("webhook-secret"), surroundings.secret() + "\n");
         Files.writeString(directory.resolve("unit-key"), surroundings.unitKey() + "\n");
         Path configuration = directory.resolve("tallyward.yaml");
-        String text = (CONFIGURATION + SURROUNDINGS)
-                .formatted(
-                        NAME, surroundings.bootstrapServers(), TOPIC, surroundings.httpPort(), surroundings.webhook());
+        String text = CONFIGURATION.formatted(
+                NAME, surroundings.bootstrapServers(), TOPIC, surroundings.httpPort(), surroundings.webhook());
         return Files.writeString(configuration, text);
     }
 
