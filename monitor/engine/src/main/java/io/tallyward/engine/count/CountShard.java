@@ -124,9 +124,32 @@ public final class CountShard {
         }
     }
 
-    /** Seals everything: the input has come to its end and nothing more can arrive. */
+    /**
+     * How far the events of each experiment reached, by name: the end of the latest window in which anything happened, or
+     * the end of the run if anything happened after it. Milliseconds since the epoch.
+     */
+    public Map<String, Long> reach() {
+        Map<String, Long> reach = new LinkedHashMap<>();
+        counters.forEach((name, counter) -> reach.put(name, counter.reach()));
+        return reach;
+    }
+
+    /**
+     * Seals everything up to a moment per experiment: the input has come to its end and nothing more can arrive. The host
+     * names the farthest {@link #reach} of all partitions, so that the windows of every partition are complete.
+     */
+    public void endOfInput(Map<String, Long> reach) {
+        counters.forEach((name, counter) -> endOfInput(counter, reach.get(name)));
+    }
+
+    /** Seals the whole run of every experiment: nothing more can arrive. */
     public void endOfInput() {
-        counters.values().forEach(counter -> seal(counter, Long.MAX_VALUE, SealCause.END));
+        counters.values().forEach(counter -> endOfInput(counter, Long.MAX_VALUE));
+    }
+
+    private void endOfInput(ExperimentCounter counter, long moment) {
+        long before = counter.sealedUntil();
+        tell(counter, before, SealCause.END, counter.sealThrough(moment));
     }
 
     private void sealPassed() {
@@ -144,7 +167,10 @@ public final class CountShard {
 
     private void seal(ExperimentCounter counter, long watermark, SealCause cause) {
         long before = counter.sealedUntil();
-        List<ExperimentCounter.Sealed> windows = counter.sealUpTo(watermark);
+        tell(counter, before, cause, counter.sealUpTo(watermark));
+    }
+
+    private void tell(ExperimentCounter counter, long before, SealCause cause, List<ExperimentCounter.Sealed> windows) {
         if (counter.sealedUntil() == before) {
             return;
         }

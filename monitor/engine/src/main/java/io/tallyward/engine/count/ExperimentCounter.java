@@ -27,6 +27,9 @@ final class ExperimentCounter {
     private OutcomeCounts.Builder finalOutcomes = new OutcomeCounts.Builder();
     private boolean changed;
 
+    /** How far the events of this process reached; a file replay ends there. */
+    private long reach;
+
     ExperimentCounter(Plan plan) {
         this.plan = plan;
         planDigest = PlanDigest.of(plan);
@@ -34,6 +37,7 @@ final class ExperimentCounter {
         sealDelayMillis = plan.count().sealDelayMillis();
         runEnd = plan.run().end().toEpochMilli();
         sealedUntil = plan.run().from().toEpochMilli();
+        reach = sealedUntil;
         ledger = new Ledger(plan);
     }
 
@@ -61,9 +65,11 @@ final class ExperimentCounter {
         changed = true;
         if (!plan.run().contains(event.atMillis())) {
             finalOutcomes.add(Outcome.OUTSIDE, 1);
+            reach = event.atMillis() >= runEnd ? runEnd : reach;
             return false;
         }
         long window = windowOf(event.atMillis());
+        reach = Math.max(reach, window + windowMillis);
         boolean late = window < sealedUntil || arrivalMillis >= sealAt(window);
         Outcome outcome = ledger.accept(hash, event, variant, arrivalMillis, late);
         if (outcome != null) {
@@ -91,6 +97,11 @@ final class ExperimentCounter {
         return windowStart + windowMillis + sealDelayMillis;
     }
 
+    /** End of the latest window in which anything happened; the end of the run if anything happened after it. */
+    long reach() {
+        return reach;
+    }
+
     /** The watermark at which the next window is sealed, or {@code Long.MAX_VALUE} when all are. */
     long nextSealAt() {
         return sealedUntil >= runEnd ? Long.MAX_VALUE : sealAt(sealedUntil);
@@ -98,11 +109,16 @@ final class ExperimentCounter {
 
     /** Seals every window that a watermark has passed; windows in which nothing happened are sealed without a trace. */
     List<Sealed> sealUpTo(long watermark) {
+        return watermark < nextSealAt() ? List.of() : sealThrough(windowOf(watermark - sealDelayMillis));
+    }
+
+    /** Seals every window that ends at or before a moment, whatever the watermark; at most to the end of the run. */
+    List<Sealed> sealThrough(long moment) {
+        long until = Math.min(runEnd, moment);
         List<Sealed> result = new ArrayList<>();
-        if (watermark < nextSealAt()) {
+        if (until <= sealedUntil) {
             return result;
         }
-        long until = watermark == Long.MAX_VALUE ? runEnd : Math.min(runEnd, windowOf(watermark - sealDelayMillis));
         long next = nextToSeal();
         while (next < until) {
             Sealed window = seal(next);

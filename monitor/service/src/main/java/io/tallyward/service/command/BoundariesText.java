@@ -63,7 +63,7 @@ final class BoundariesText {
                 .toString());
         lines.add("expected looks: " + decimals(expectedLooks(design, 0), 1) + " without an effect, "
                 + decimals(expectedLooks(design, signedDrift(design)), 1) + " with the smallest effect, of "
-                + design.looks().size());
+                + design.looks().size() + (plan.futility().isPresent() ? ", futility ignored" : ""));
         return lines;
     }
 

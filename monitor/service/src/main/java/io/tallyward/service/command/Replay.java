@@ -73,9 +73,16 @@ final class Replay {
         }
     }
 
-    /** Seals everything: there are no more records. */
+    /**
+     * Seals everything: there are no more records. Time ends with the last event of an experiment, or with its run if any
+     * event came after that, so that the end of a file is not taken for silence.
+     */
     void end() {
-        counting.forEach(CountShard::endOfInput);
+        Map<String, Long> farthest = new TreeMap<>();
+        for (CountShard shard : counting) {
+            shard.reach().forEach((experiment, moment) -> farthest.merge(experiment, moment, Math::max));
+        }
+        counting.forEach(shard -> shard.endOfInput(farthest));
         drain();
     }
 

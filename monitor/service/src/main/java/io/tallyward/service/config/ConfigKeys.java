@@ -144,7 +144,14 @@ public final class ConfigKeys {
                 Key.withDefault("allow-http", flag(), "false", "Accept an address without TLS.");
         static final Key<Boolean> ALLOW_PRIVATE =
                 Key.withDefault("allow-private", flag(), "false", "Accept an address in a private network.");
-        static final Shape SHAPE = Shape.of(URL, SECRET_FILE, SECRET_ENVIRONMENT, ALLOW_HTTP, ALLOW_PRIVATE);
+        static final Key<String> RUNBOOK =
+                Key.optional("runbook", text(1_000), "Address of the runbook; notices link to their section of it.");
+        static final Key<String> PAGES = Key.optional(
+                "pages",
+                text(1_000),
+                "Address of the experiments' pages as seen by those who are told, if not the one they are served at.");
+        static final Shape SHAPE =
+                Shape.of(URL, SECRET_FILE, SECRET_ENVIRONMENT, ALLOW_HTTP, ALLOW_PRIVATE, RUNBOOK, PAGES);
     }
 
     static final class UnitKey {

@@ -5,6 +5,7 @@ import io.tallyward.connector.format.EventMapping;
 import io.tallyward.engine.event.EventKind;
 import io.tallyward.service.config.document.Checked;
 import io.tallyward.service.config.document.DocumentReader;
+import io.tallyward.service.config.document.Key;
 import io.tallyward.service.config.document.Node.Mapping;
 import io.tallyward.service.config.document.Problems;
 import io.tallyward.service.config.document.Values;
@@ -165,7 +166,26 @@ public final class ConfigReader {
                 address,
                 key,
                 allowHttp,
-                section.find(ConfigKeys.Webhook.ALLOW_PRIVATE).orElse(false))));
+                section.find(ConfigKeys.Webhook.ALLOW_PRIVATE).orElse(false),
+                link(section, ConfigKeys.Webhook.RUNBOOK),
+                link(section, ConfigKeys.Webhook.PAGES))));
+    }
+
+    private static Optional<URI> link(Values section, Key<String> key) {
+        Optional<String> text = section.find(key);
+        if (text.isEmpty()) {
+            return Optional.empty();
+        }
+        try {
+            URI link = new URI(text.get());
+            if (link.getHost() != null && ("https".equals(link.getScheme()) || "http".equals(link.getScheme()))) {
+                return Optional.of(link);
+            }
+        } catch (URISyntaxException e) {
+            // Told below, like every other text that is no link.
+        }
+        section.refuse(key, text.get(), "http or https address such as https://wiki.northwater.example/tallyward");
+        return Optional.empty();
     }
 
     /** Refuses without showing the address, whose path or query often is a password in disguise. */

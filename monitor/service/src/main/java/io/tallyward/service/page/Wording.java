@@ -80,7 +80,7 @@ final class Wording {
                         "The observed split contradicts the planned one, so the variants may not be comparable."
                                 + " Verdicts are withheld.",
                         "Do not act on the rates. Find where units of one variant are lost or added: assignment, logging,"
-                                + " filters. Start with the segment and the window named above.");
+                                + " filters. Begin where the shares left the plan.");
             case CROSSOVER ->
                 new Words(
                         "!",

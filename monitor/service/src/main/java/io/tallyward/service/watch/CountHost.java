@@ -17,11 +17,9 @@ import io.tallyward.service.status.StatusBoard;
 import java.nio.charset.StandardCharsets;
 import java.util.ArrayList;
 import java.util.Arrays;
-import java.util.EnumSet;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
-import java.util.Set;
 import java.util.TreeMap;
 import java.util.function.Predicate;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
@@ -41,11 +39,11 @@ final class CountHost implements HostedShard {
     private final List<String> topics;
     private final TopicNames names;
     private final JsonEventReader reader;
+    private final RejectLog rejectLog;
     private final StatusBoard board;
     private final KeyCheck keyCheck;
 
     private final List<Output> rejects = new ArrayList<>();
-    private final Set<RejectReason> logged = EnumSet.noneOf(RejectReason.class);
     private boolean published;
 
     CountHost(
@@ -55,12 +53,14 @@ final class CountHost implements HostedShard {
             List<String> topics,
             TopicNames names,
             JsonEventReader reader,
+            RejectLog rejectLog,
             StatusBoard board) {
         this.shard = shard;
         this.partition = partition;
         this.topics = topics;
         this.names = names;
         this.reader = reader;
+        this.rejectLog = rejectLog;
         this.board = board;
         keyCheck = new KeyCheck(partition, partitions);
     }
@@ -102,14 +102,7 @@ final class CountHost implements HostedShard {
 
     private void reject(ConsumerRecord<byte[], byte[]> record, RejectReason reason, String detail) {
         String origin = record.topic() + "-" + record.partition() + "@" + record.offset();
-        if (logged.add(reason)) {
-            LOG.warn(
-                    "Rejected {} as {}: {}. Further ones of this kind are counted and kept in {}, not logged.",
-                    origin,
-                    reason.code(),
-                    detail,
-                    names.rejects());
-        }
+        rejectLog.rejected(origin, reason, detail);
         Map<String, byte[]> headers = new TreeMap<>();
         headers.put("tallyward-reason", utf8(reason.code()));
         headers.put("tallyward-detail", utf8(detail));

@@ -71,15 +71,19 @@ final class NoticeDelivery implements AutoCloseable {
             WebhookConfig webhook,
             TopicNames names,
             Map<String, String> clientProperties,
-            String evidenceBase,
+            URI served,
             InstantSource clock) {
         SigningSecret secret = SigningSecret.parse(new String(webhook.secret().reveal(), StandardCharsets.UTF_8));
-        WebhookTarget target = WebhookTarget.builder(webhook.url(), List.of(secret))
+        WebhookTarget.Builder target = WebhookTarget.builder(webhook.url(), List.of(secret))
                 .allowHttp(webhook.allowHttp())
                 .allowPrivate(webhook.allowPrivate())
-                .evidenceBase(URI.create(evidenceBase))
-                .build();
-        return new NoticeDelivery(target, names, clientProperties, clock);
+                .evidenceBase(webhook.pages().map(NoticeDelivery::withSlash).orElse(served));
+        webhook.runbook().ifPresent(target::runbookBase);
+        return new NoticeDelivery(target.build(), names, clientProperties, clock);
+    }
+
+    private static URI withSlash(URI base) {
+        return base.toString().endsWith("/") ? base : URI.create(base + "/");
     }
 
     private void deliver(OutboxRecord record) {

@@ -20,6 +20,7 @@ import io.tallyward.service.status.HealthBoard;
 import io.tallyward.service.status.RunnerReport;
 import io.tallyward.service.status.StatusBoard;
 import io.tallyward.service.status.WebhookReport;
+import java.net.URI;
 import java.time.Clock;
 import java.time.InstantSource;
 import java.util.HashMap;
@@ -65,7 +66,7 @@ public final class WatchService implements AutoCloseable {
         counting = ShardRunner.start(countGroup(), clock, listener);
         delivery = config.webhook()
                 .map(webhook -> NoticeDelivery.start(
-                        webhook, names, clientProperties, server.address() + "experiments/", clock));
+                        webhook, names, clientProperties, URI.create(server.address() + "experiments/"), clock));
         health.add(new RunnerHealth("counting", counting::status));
         health.add(new RunnerHealth("deciding", deciding::status));
         delivery.ifPresent(started -> health.add(started.health()));
@@ -101,6 +102,7 @@ public final class WatchService implements AutoCloseable {
         JsonEventReader reader =
                 new JsonEventReader(config.input().mapping(), config.input().maxEventBytes());
         List<String> topics = config.input().topics();
+        RejectLog rejectLog = new RejectLog(names.rejects());
         return group(names.countGroup())
                 .inputTopics(topics)
                 .stateTopic(names.countState())
@@ -114,6 +116,7 @@ public final class WatchService implements AutoCloseable {
                         topics,
                         names,
                         reader,
+                        rejectLog,
                         board))
                 .build();
     }
