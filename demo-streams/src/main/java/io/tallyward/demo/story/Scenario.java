@@ -16,7 +16,7 @@ import java.util.function.Consumer;
  *
  * @param seed what everything follows from
  * @param stories the stories, in the order in which they are shown
- * @param events the events of all stories in the order of arrival; some 570,000
+ * @param events the events of all stories in the order of arrival; some 550,000
  */
 public record Scenario(long seed, List<Story> stories, List<StreamEvent> events) {
 

@@ -16,7 +16,7 @@ import org.junit.jupiter.api.Test;
 /**
  * What the stories promise about their power, computed from the counts with the textbook's fixed-sample normal
  * approximation (two proportions, pooled variance; Fleiss, Levin and Paik 2003, chapter 4, from memory). The last boundary
- * of a sequential plan is never above 2.5 for the plans here, and looks before the last only add to the power.
+ * of a sequential plan is never above 2.5 for the plans tested here, and looks before the last only add to the power.
  */
 class PowerTest {
 
