@@ -55,7 +55,7 @@ public final class CountShard {
         maxSkewMillis = settings.maxSkew().toMillis();
         hasher = new UnitHasher(settings.unitKey());
         watermarks = new Watermarks(sources, settings.idleAfter().toMillis());
-        state = new CountState(partitions);
+        state = new CountState(partitions, hasher.keyFingerprint());
         tallies = new SealedTallies(partition, partitions);
         for (Plan plan : plans) {
             counters.put(plan.experiment(), new ExperimentCounter(plan));
@@ -70,6 +70,7 @@ public final class CountShard {
      *
      * @throws io.tallyward.engine.plan.PlanChangedException when an experiment was counted under another plan
      * @throws PartitionsChangedException when the input topics had another number of partitions
+     * @throws UnitKeyChangedException when units were hashed under another key
      */
     public void restore(byte[] key, byte[] value) {
         state.restore(key, value, watermarks, rejected, counters);

@@ -19,7 +19,7 @@ import java.util.TreeMap;
  * The durable form of a COUNT shard. Four kinds of entry, told apart by the first byte of the key:
  *
  * <ul>
- *   <li>shard: watermarks and reject counts, one entry, rewritten;
+ *   <li>shard: what must not change (partitions, key of the unit hash), watermarks and reject counts, one entry, rewritten;
  *   <li>experiment: how far it is sealed and its outcomes, one entry each, rewritten;
  *   <li>open units: those that changed in one commit, packed by the window in which they fall due; a later entry holds the
  *       later version of a unit;
@@ -39,10 +39,18 @@ final class CountState {
     private static final int PACKED_BYTES = 400_000;
 
     private final int partitions;
+    private final long keyFingerprint;
     private final Map<String, TreeMap<Long, Integer>> openEntries = new TreeMap<>();
 
-    CountState(int partitions) {
+    /**
+     * The state of a shard that has counted nothing yet.
+     *
+     * @param partitions how many input partitions there are
+     * @param keyFingerprint stands for the key of the unit hash
+     */
+    CountState(int partitions, long keyFingerprint) {
         this.partitions = partitions;
+        this.keyFingerprint = keyFingerprint;
     }
 
     /** Something written field by field. */
@@ -64,6 +72,7 @@ final class CountState {
     StateChange shard(Watermarks watermarks, Map<RejectReason, Long> rejected) {
         return new StateChange(new byte[] {SHARD}, pack(out -> {
             out.writeInt(partitions);
+            out.writeLong(keyFingerprint);
             watermarks.write(out);
             for (RejectReason reason : RejectReason.values()) {
                 out.writeLong(rejected.get(reason));
@@ -188,6 +197,9 @@ final class CountState {
         int partitionsBefore = in.readInt();
         if (partitionsBefore != partitions) {
             throw new PartitionsChangedException(partitionsBefore, partitions);
+        }
+        if (in.readLong() != keyFingerprint) {
+            throw new UnitKeyChangedException();
         }
         watermarks.read(in);
         for (RejectReason reason : RejectReason.values()) {

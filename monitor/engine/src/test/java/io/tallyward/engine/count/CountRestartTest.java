@@ -233,6 +233,18 @@ class CountRestartTest {
     }
 
     @Test
+    void refusesAnotherKeyOfTheUnitHash() {
+        Plan plan = Plans.plan(BANNER).build();
+        CountHost host = CountHost.of(plan);
+        host.feed(Events.view(BANNER, "wide", "ada", "v", 3)).commit();
+        CountSettings rekeyed = new CountSettings(CountHost.MAX_SKEW, CountHost.IDLE_AFTER, new byte[] {7});
+        CountShard shard = new CountShard(0, 1, List.of(plan), rekeyed, 1);
+        UnitKeyChangedException refused =
+                assertThrows(UnitKeyChangedException.class, () -> host.log().replay(shard::restore));
+        assertTrue(refused.getMessage().startsWith("unit key: it is not the one"), refused.getMessage());
+    }
+
+    @Test
     void leavesTheStateOfAnExperimentWithoutAPlanAlone() {
         CountHost host = CountHost.of(Plans.plan(BANNER).build());
         host.feed(Events.view(BANNER, "wide", "ada", "v", 3), Events.view(BANNER, "wide", "ben", "v2", 99))
