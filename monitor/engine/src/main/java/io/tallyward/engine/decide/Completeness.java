@@ -13,18 +13,35 @@ import java.util.ArrayList;
 import java.util.Arrays;
 import java.util.List;
 import java.util.Map;
+import java.util.NavigableMap;
+import java.util.Optional;
+import java.util.Set;
 import java.util.TreeMap;
+import java.util.TreeSet;
 
 /**
  * Which windows of an experiment are complete: those that every input partition has sealed. Until then the parts of a
  * window that are already sealed wait here. Windows leave in order, each exactly once, whatever the order in which the
  * partitions report.
+ *
+ * <p>Its durable form is one short entry, and one for every window that waits: while one partition lags, thousands of
+ * windows of the others may wait, more than one record can hold.
  */
 final class Completeness {
 
     private final long runFrom;
     private long[] sealedUntil = new long[0];
+
+    /** Stretches that some partition sealed because it was idle, by their start; disjoint, not yet complete. */
+    private final TreeMap<Long, Long> idle = new TreeMap<>();
+
     private final TreeMap<Long, Parts> waiting = new TreeMap<>();
+
+    /** Windows that have an entry in the log. */
+    private final Set<Long> stored = new TreeSet<>();
+
+    /** Windows whose entry in the log, if any, is out of date. */
+    private final Set<Long> touched = new TreeSet<>();
 
     Completeness(long runFrom) {
         this.runFrom = runFrom;
@@ -33,18 +50,54 @@ final class Completeness {
     /**
      * The merged counts of one window.
      *
-     * @param cells counts from all partitions; the same cell may occur more than once
+     * @param cells counts from all partitions, each cell once
      * @param outcomes outcomes from all partitions
-     * @param idle whether some partition sealed it because it was idle
      */
-    record Parts(List<Cell> cells, OutcomeCounts outcomes, boolean idle) {
+    record Parts(List<Cell> cells, OutcomeCounts outcomes) {
 
-        static final Parts NONE = new Parts(List.of(), OutcomeCounts.NONE, false);
+        static final Parts NONE = new Parts(List.of(), OutcomeCounts.NONE);
 
-        Parts plus(WindowTally tally, SealCause cause) {
+        Parts plus(WindowTally tally) {
             List<Cell> merged = new ArrayList<>(cells);
-            merged.addAll(tally.cells());
-            return new Parts(merged, outcomes.plus(tally.outcomes()), idle || cause == SealCause.IDLE);
+            tally.cells().forEach(cell -> add(merged, cell));
+            return new Parts(merged, outcomes.plus(tally.outcomes()));
+        }
+
+        private static void add(List<Cell> cells, Cell cell) {
+            for (int i = 0; i < cells.size(); i++) {
+                Cell present = cells.get(i);
+                if (present.epoch() == cell.epoch() && present.variant() == cell.variant()) {
+                    cells.set(
+                            i,
+                            new Cell(
+                                    cell.epoch(),
+                                    cell.variant(),
+                                    present.trials() + cell.trials(),
+                                    present.successes() + cell.successes()));
+                    return;
+                }
+            }
+            cells.add(cell);
+        }
+
+        void write(DataOutput out) throws IOException {
+            outcomes.write(out);
+            out.writeInt(cells.size());
+            for (Cell cell : cells) {
+                out.writeInt(cell.epoch());
+                out.writeInt(cell.variant());
+                out.writeLong(cell.trials());
+                out.writeLong(cell.successes());
+            }
+        }
+
+        static Parts read(DataInput in) throws IOException {
+            OutcomeCounts outcomes = OutcomeCounts.read(in);
+            List<Cell> cells = new ArrayList<>();
+            for (int rest = in.readInt(); rest > 0; rest--) {
+                cells.add(new Cell(in.readInt(), in.readInt(), in.readLong(), in.readLong()));
+            }
+            return new Parts(cells, outcomes);
         }
     }
 
@@ -63,13 +116,29 @@ final class Completeness {
         long before = sealedUntil[update.partition()];
         for (WindowTally window : update.windows()) {
             if (window.startMillis() >= before) {
-                waiting.merge(
-                        window.startMillis(),
-                        Parts.NONE.plus(window, update.cause()),
-                        (present, added) -> present.plus(window, update.cause()));
+                Parts present = waiting.getOrDefault(window.startMillis(), Parts.NONE);
+                waiting.put(window.startMillis(), present.plus(window));
+                touched.add(window.startMillis());
             }
         }
-        sealedUntil[update.partition()] = Math.max(before, update.sealedUntilMillis());
+        if (update.sealedUntilMillis() > before) {
+            if (update.cause() == SealCause.IDLE) {
+                addIdle(before, update.sealedUntilMillis());
+            }
+            sealedUntil[update.partition()] = update.sealedUntilMillis();
+        }
+    }
+
+    private void addIdle(long from, long until) {
+        // What is complete has been taken by now: the caller takes windows as soon as they are.
+        long complete = completeUntil();
+        idle.values().removeIf(end -> end <= complete);
+        Map.Entry<Long, Long> earlier = idle.floorEntry(from);
+        long start = earlier != null && earlier.getValue() >= from ? earlier.getKey() : from;
+        NavigableMap<Long, Long> met = idle.subMap(start, true, until, true);
+        long end = met.values().stream().reduce(until, Math::max);
+        met.clear();
+        idle.put(start, end);
     }
 
     /** Every window that ends at or before this moment is complete. */
@@ -77,29 +146,57 @@ final class Completeness {
         return Arrays.stream(sealedUntil).min().orElse(runFrom);
     }
 
+    /** Whether some partition sealed a window because it was idle, with or without anything in it. */
+    boolean sealedIdle(long windowStart) {
+        Map.Entry<Long, Long> stretch = idle.floorEntry(windowStart);
+        return stretch != null && stretch.getValue() > windowStart;
+    }
+
     /** Takes the merged counts of a complete window. */
     Parts take(long windowStart) {
         Parts parts = waiting.remove(windowStart);
-        return parts == null ? Parts.NONE : parts;
+        if (parts == null) {
+            return Parts.NONE;
+        }
+        touched.add(windowStart);
+        return parts;
     }
 
+    /** The windows whose entries changed since this was last asked, by start; empty where the entry is to be removed. */
+    Map<Long, Optional<Parts>> takeChanged() {
+        Map<Long, Optional<Parts>> changes = new TreeMap<>();
+        for (long window : touched) {
+            Optional<Parts> parts = Optional.ofNullable(waiting.get(window));
+            boolean wasStored = parts.isPresent() ? !stored.add(window) : stored.remove(window);
+            if (parts.isPresent() || wasStored) {
+                changes.put(window, parts);
+            }
+        }
+        touched.clear();
+        return changes;
+    }
+
+    /** Restores the entry of a window as it was written, or its removal. */
+    void restore(long windowStart, Optional<Parts> parts) {
+        if (parts.isPresent()) {
+            waiting.put(windowStart, parts.get());
+            stored.add(windowStart);
+        } else {
+            waiting.remove(windowStart);
+            stored.remove(windowStart);
+        }
+    }
+
+    /** Writes all but the windows. */
     void write(DataOutput out) throws IOException {
         out.writeInt(sealedUntil.length);
         for (long moment : sealedUntil) {
             out.writeLong(moment);
         }
-        out.writeInt(waiting.size());
-        for (Map.Entry<Long, Parts> window : waiting.entrySet()) {
-            out.writeLong(window.getKey());
-            out.writeBoolean(window.getValue().idle());
-            window.getValue().outcomes().write(out);
-            out.writeInt(window.getValue().cells().size());
-            for (Cell cell : window.getValue().cells()) {
-                out.writeInt(cell.epoch());
-                out.writeInt(cell.variant());
-                out.writeLong(cell.trials());
-                out.writeLong(cell.successes());
-            }
+        out.writeInt(idle.size());
+        for (Map.Entry<Long, Long> stretch : idle.entrySet()) {
+            out.writeLong(stretch.getKey());
+            out.writeLong(stretch.getValue());
         }
     }
 
@@ -108,16 +205,9 @@ final class Completeness {
         for (int partition = 0; partition < sealedUntil.length; partition++) {
             sealedUntil[partition] = in.readLong();
         }
-        waiting.clear();
-        for (int windows = in.readInt(); windows > 0; windows--) {
-            long start = in.readLong();
-            boolean idle = in.readBoolean();
-            OutcomeCounts outcomes = OutcomeCounts.read(in);
-            List<Cell> cells = new ArrayList<>();
-            for (int rest = in.readInt(); rest > 0; rest--) {
-                cells.add(new Cell(in.readInt(), in.readInt(), in.readLong(), in.readLong()));
-            }
-            waiting.put(start, new Parts(cells, outcomes, idle));
+        idle.clear();
+        for (int stretches = in.readInt(); stretches > 0; stretches--) {
+            idle.put(in.readLong(), in.readLong());
         }
     }
 }

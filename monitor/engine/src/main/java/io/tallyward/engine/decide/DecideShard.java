@@ -17,16 +17,19 @@ import java.util.HashMap;
 import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 
 /**
  * Decides about the experiments whose tallies reach it. A pure state machine; not thread-safe.
  *
- * <p>Its durable form has two kinds of entry, told apart by the first byte of the key: where an experiment stands, one
- * entry each, rewritten; and the looks taken, one entry each, written once.
+ * <p>Its durable form has three kinds of entry, told apart by the first byte of the key: where an experiment stands, one
+ * entry each, rewritten; the windows that are not complete yet, one entry each, removed once they are; and the looks
+ * taken, one entry each, written once.
  */
 public final class DecideShard {
 
     private static final byte EXPERIMENT = 'X';
+    private static final byte WINDOW = 'W';
     private static final byte LOOK = 'L';
 
     private final Map<String, Plan> plans = new LinkedHashMap<>();
@@ -54,28 +57,33 @@ public final class DecideShard {
      * @throws io.tallyward.engine.plan.PlanChangedException when decisions were taken under another plan
      */
     public void restore(byte[] key, byte[] value) {
-        if (value == null) {
-            return;
-        }
         try {
-            DataInputStream keyIn = new DataInputStream(new ByteArrayInputStream(key));
+            DataInputStream keyIn = reader(key);
             byte kind = keyIn.readByte();
             String experiment = keyIn.readUTF();
-            if (!plans.containsKey(experiment)) {
+            if (!plans.containsKey(experiment) || (value == null && kind != WINDOW)) {
                 return;
             }
-            DataInputStream in = new DataInputStream(new ByteArrayInputStream(value));
-            if (kind == EXPERIMENT) {
-                decider(experiment).read(in);
+            if (kind == WINDOW) {
+                decider(experiment)
+                        .restoreWindow(
+                                keyIn.readLong(),
+                                value == null ? Optional.empty() : Optional.of(Completeness.Parts.read(reader(value))));
+            } else if (kind == EXPERIMENT) {
+                decider(experiment).read(reader(value));
             } else if (kind == LOOK) {
-                decider(experiment).restoreLook(TakenLook.read(in));
+                decider(experiment).restoreLook(TakenLook.read(reader(value)));
             } else {
                 throw new IllegalStateException("stored decisions: entry of unknown kind " + kind
-                        + " (expected: X or L); the state was written by another version");
+                        + " (expected: X, W or L); the state was written by another version");
             }
         } catch (IOException e) {
             throw new UncheckedIOException("stored decisions: an entry is cut short", e);
         }
+    }
+
+    private static DataInputStream reader(byte[] bytes) {
+        return new DataInputStream(new ByteArrayInputStream(bytes));
     }
 
     /**
@@ -114,6 +122,10 @@ public final class DecideShard {
             for (TakenLook look : decider.takeNewLooks()) {
                 state.add(new StateChange(lookKey(experiment, look), pack(look::write)));
             }
+            decider.takeChangedWindows()
+                    .forEach((start, parts) -> state.add(new StateChange(
+                            windowKey(experiment, start),
+                            parts.map(present -> pack(present::write)).orElse(null))));
             if (decider.takeChanged()) {
                 state.add(new StateChange(experimentKey(experiment), pack(decider::write)));
             }
@@ -125,6 +137,14 @@ public final class DecideShard {
         return pack(out -> {
             out.writeByte(EXPERIMENT);
             out.writeUTF(experiment);
+        });
+    }
+
+    private static byte[] windowKey(String experiment, long start) {
+        return pack(out -> {
+            out.writeByte(WINDOW);
+            out.writeUTF(experiment);
+            out.writeLong(start);
         });
     }
 

@@ -20,6 +20,7 @@ import java.io.IOException;
 import java.time.Instant;
 import java.util.ArrayList;
 import java.util.List;
+import java.util.Map;
 import java.util.Optional;
 
 /**
@@ -83,11 +84,11 @@ final class ExperimentDecider {
     }
 
     private void complete(long windowStart) {
+        idleSealed += completeness.sealedIdle(windowStart) ? 1 : 0;
         Completeness.Parts parts = completeness.take(windowStart);
         completeUntil = windowStart + windowMillis;
         parts.cells().forEach(counts::add);
         outcomes = outcomes.plus(parts.outcomes());
-        idleSealed += parts.idle() ? 1 : 0;
         trustWatch.observe(windowStart, completeUntil, parts.cells());
         if (!parts.cells().isEmpty()) {
             splitWatch.observe(counts);
@@ -97,7 +98,8 @@ final class ExperimentDecider {
 
     private void decide() {
         TrustWatch.Judgement before = judgement;
-        judgement = trustWatch.judge(completeUntil, splitWatch.sequentialPValue(), outcomes);
+        boolean concluded = tests.stream().allMatch(test -> test.verdict().settled());
+        judgement = trustWatch.judge(completeUntil, splitWatch.sequentialPValue(), outcomes, concluded);
         boolean trustChanged = judgement.trust() != before.trust();
         boolean sound = judgement.trust() == Trust.SOUND;
         List<ChallengerTest> settled = new ArrayList<>();
@@ -236,6 +238,11 @@ final class ExperimentDecider {
         return copy;
     }
 
+    /** Incomplete windows whose counts changed, by start; empty where a window is complete and its entry to be removed. */
+    Map<Long, Optional<Completeness.Parts>> takeChangedWindows() {
+        return completeness.takeChanged();
+    }
+
     boolean takeChanged() {
         boolean result = changed;
         changed = false;
@@ -257,6 +264,10 @@ final class ExperimentDecider {
                 tests,
                 new ViewWriter.Looks(looksTaken, looksDelayed, delayReason),
                 lastHash);
+    }
+
+    void restoreWindow(long windowStart, Optional<Completeness.Parts> parts) {
+        completeness.restore(windowStart, parts);
     }
 
     void restoreLook(TakenLook look) {

@@ -9,6 +9,7 @@ import io.tallyward.engine.record.Trust;
 import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
+import java.util.Arrays;
 import java.util.List;
 import java.util.Locale;
 
@@ -39,7 +40,7 @@ final class TrustWatch {
         silentSince = new long[plan.variants().size()];
         trialsDue = new double[plan.variants().size()];
         streamSilentSince = plan.run().from().toEpochMilli();
-        java.util.Arrays.fill(silentSince, streamSilentSince);
+        Arrays.fill(silentSince, streamSilentSince);
     }
 
     /**
@@ -75,8 +76,13 @@ final class TrustWatch {
         }
     }
 
-    /** Judges the data as of the end of a window. */
-    Judgement judge(long windowEnd, double splitPValue, OutcomeCounts outcomes) {
+    /**
+     * Judges the data as of the end of a window.
+     *
+     * @param concluded whether every verdict has been told: whoever follows it stops showing the variants, so that
+     *     silence is what is to be expected
+     */
+    Judgement judge(long windowEnd, double splitPValue, OutcomeCounts outcomes, boolean concluded) {
         TrustLimits limits = plan.trust();
         long admitted = outcomes.total();
         double crossovers = share(outcomes.get(Outcome.CROSSOVER), admitted);
@@ -97,7 +103,8 @@ final class TrustWatch {
                             "%.2f %% of events are of units under another variant than their first (limit %.2f %%)",
                             100 * crossovers, 100 * limits.crossoverShare()));
         }
-        String silent = silence(windowEnd, limits.starvedAfter().toMillis());
+        String silent =
+                concluded ? "" : silence(windowEnd, limits.starvedAfter().toMillis());
         if (!silent.isEmpty()) {
             return new Judgement(Trust.STARVED, silent);
         }

@@ -22,6 +22,7 @@ import io.tallyward.engine.plan.Variant;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.Occasion;
+import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
@@ -437,13 +438,65 @@ class DecideShardTest {
         assertEquals(1, host.lastDecision().idleSealed());
     }
 
+    @Test
+    void recordsIdleWindowsInWhichThePartitionHadNothingToSeal() {
+        WindowTally third = DecideHost.window(FIVE_DAYS, 2, 600, 120, 600, 120);
+        host.take(idle(0, 1)).take(idle(0, 2)).take(idle(1, 1));
+        host.take(DecideHost.update(FIVE_DAYS, 0, 3, 3))
+                .take(DecideHost.update(FIVE_DAYS, 1, 3, 3))
+                .restart(0)
+                .take(DecideHost.update(FIVE_DAYS, 2, 3, 3, third));
+        assertEquals(2, host.lastDecision().idleSealed());
+    }
+
+    @Test
+    void keepsEveryStateRecordSmallWhileAPartitionLags() {
+        Plan minutes = fiveDays()
+                .counting(Duration.ofMinutes(30), Duration.ofMinutes(10), Duration.ofMinutes(1))
+                .build();
+        DecideHost lagging = new DecideHost(minutes);
+        int windows = 7_000;
+        WindowTally[] sealed = new WindowTally[windows];
+        for (int window = 0; window < windows; window++) {
+            sealed[window] = DecideHost.window(minutes, window, 6, 1, 6, 1);
+        }
+        for (int partition = 0; partition < 12; partition++) {
+            lagging.take(DecideHost.update(minutes, partition, 13, windows, sealed));
+        }
+        int largest = lagging.log().changes().stream()
+                .mapToInt(change -> change.value().length)
+                .max()
+                .orElseThrow();
+        assertTrue(largest < 10_000, largest + " bytes in one record");
+        lagging.restart(lagging.log().size()).take(DecideHost.update(minutes, 12, 13, windows));
+        assertEquals(
+                12 * 6 * windows,
+                lagging.view().counts().stream()
+                        .filter(count -> count.variant().equals("plain"))
+                        .mapToLong(VariantCount::trials)
+                        .sum());
+        assertEquals(
+                List.of(),
+                lagging.log().live().stream()
+                        .filter(change -> change.key()[0] == 'W')
+                        .toList(),
+                "what is complete leaves nothing behind");
+    }
+
     private static TallyUpdate idle(int partition, WindowTally window) {
-        TallyUpdate sealed = DecideHost.update(FIVE_DAYS, partition, 3, 1, window);
+        return idle(DecideHost.update(FIVE_DAYS, partition, 3, 1, window));
+    }
+
+    private static TallyUpdate idle(int partition, int untilWindow) {
+        return idle(DecideHost.update(FIVE_DAYS, partition, 3, untilWindow));
+    }
+
+    private static TallyUpdate idle(TallyUpdate sealed) {
         return new TallyUpdate(
                 sealed.experiment(),
                 sealed.planDigest(),
-                partition,
-                3,
+                sealed.partition(),
+                sealed.partitions(),
                 sealed.sealedUntilMillis(),
                 SealCause.IDLE,
                 sealed.windows());

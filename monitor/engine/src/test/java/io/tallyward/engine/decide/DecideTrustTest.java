@@ -128,6 +128,13 @@ class DecideTrustTest {
     }
 
     @Test
+    void takesTheSilenceAfterTheLastVerdictForItsConsequence() {
+        hours(12, 1000, 200, 1000, 260).quiet(12);
+        assertEquals(List.of("stop wide"), host.noticeKinds());
+        assertEquals(Trust.SOUND, host.view().trust(), host.view().trustReason());
+    }
+
+    @Test
     void doesNotCallAVariantStarvedThatHadFewTrialsDue() {
         hours(1, 5, 1, 5, 1);
         hours(8, 2, 0, 0, 0);
