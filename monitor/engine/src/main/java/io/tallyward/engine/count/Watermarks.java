@@ -33,10 +33,6 @@ final class Watermarks {
         return values;
     }
 
-    int sources() {
-        return seen.length;
-    }
-
     /** How far one source has come, by its own events or by the clock that stands in for them. */
     long of(int source) {
         return Math.max(seen[source], assumed[source]);

@@ -1,7 +1,5 @@
 package io.tallyward.engine.plan;
 
-import io.tallyward.engine.plan.Spending.Family;
-
 /**
  * The test of each challenger against the control.
  *
@@ -42,10 +40,5 @@ public record TestPlan(
     /** Level of one tail when the comparison as a whole has level {@code comparisonAlpha}. */
     public double tailAlpha(double comparisonAlpha) {
         return sides == Sides.TWO ? comparisonAlpha / 2 : comparisonAlpha;
-    }
-
-    /** Family of the spending function; shorthand. */
-    public Family spendingFamily() {
-        return spending.family();
     }
 }

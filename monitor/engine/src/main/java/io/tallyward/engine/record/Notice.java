@@ -1,6 +1,8 @@
 package io.tallyward.engine.record;
 
 import java.time.Instant;
+import java.util.Collections;
+import java.util.LinkedHashMap;
 import java.util.Locale;
 import java.util.Map;
 
@@ -32,7 +34,7 @@ public record Notice(
         String decision) {
 
     public Notice {
-        facts = java.util.Collections.unmodifiableMap(new java.util.LinkedHashMap<>(facts));
+        facts = Collections.unmodifiableMap(new LinkedHashMap<>(facts));
     }
 
     /** What a notice is about. The codes are published and stable. */
