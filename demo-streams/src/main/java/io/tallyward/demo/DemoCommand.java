@@ -77,6 +77,11 @@ final class DemoCommand implements Callable<Integer> {
     private int kills;
 
     @Option(
+            names = "--replay",
+            description = "Also replay the stream from a file and compare every decision record with the monitor's.")
+    private boolean replay;
+
+    @Option(
             names = "--write-file",
             paramLabel = "FILE",
             description =
@@ -103,7 +108,7 @@ final class DemoCommand implements Callable<Integer> {
             writeFile(scenario, screen);
             return 0;
         }
-        DemoRun.Options options = new DemoRun.Options(Duration.ofSeconds(seconds), port, kills);
+        DemoRun.Options options = new DemoRun.Options(Duration.ofSeconds(seconds), port, kills, replay);
         try (WorkDirectory directory = WorkDirectory.open(keep);
                 DemoRun run = new DemoRun(scenario, options, directory.path(), screen)) {
             tidyUpAtExit(List.of(run, directory));

@@ -1,6 +1,8 @@
 package io.tallyward.demo;
 
+import io.tallyward.demo.check.DecisionLog;
 import io.tallyward.demo.check.ExperimentCheck;
+import io.tallyward.demo.check.Finding;
 import io.tallyward.demo.check.MonitorApi;
 import io.tallyward.demo.check.MonitorApi.Standing;
 import io.tallyward.demo.check.MonitorCounts;
@@ -25,6 +27,7 @@ import java.time.Duration;
 import java.time.Instant;
 import java.util.ArrayList;
 import java.util.Base64;
+import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.concurrent.TimeUnit;
@@ -64,8 +67,9 @@ final class DemoRun implements AutoCloseable {
      * @param fourteenDays how long the fourteen days take
      * @param port of the monitor's page; 0 for any
      * @param kills how often to kill the monitor in mid-stream
+     * @param replay whether to compare the decision records with those of a replay
      */
-    record Options(Duration fourteenDays, int port, int kills) {}
+    record Options(Duration fourteenDays, int port, int kills, boolean replay) {}
 
     /** Nothing is started yet. */
     DemoRun(Scenario scenario, Options options, Path directory, Screen screen) {
@@ -132,7 +136,7 @@ final class DemoRun implements AutoCloseable {
     }
 
     /** Sends the stream, waits until the monitor has counted all of it, and compares. */
-    Report stream() throws InterruptedException {
+    Report stream() throws IOException, InterruptedException {
         Truth truth = Truth.of(scenario, PARTITIONS);
         StreamProgress progress = new StreamProgress(scenario.events().size(), screen);
         KillSchedule schedule = new KillSchedule(scenario.events().size(), options.kills());
@@ -197,7 +201,7 @@ final class DemoRun implements AutoCloseable {
                 .toList();
     }
 
-    private Report report(Truth truth) {
+    private Report report(Truth truth) throws IOException, InterruptedException {
         MonitorCounts counts = MonitorCounts.read(bootstrapServers, MonitorFiles.NAME);
         Map<String, Standing> standings = api.standings();
         List<ExperimentCheck> checks = new ArrayList<>();
@@ -210,7 +214,23 @@ final class DemoRun implements AutoCloseable {
             long outside = api.outside(story.experiment());
             checks.add(new ExperimentCheck(right, standing, counts, outside, notices(story)));
         }
-        return new Report(checks, List.of(Report.rejects(truth, counts), Report.signatures(receiver.refusals())));
+        List<Finding> others = new ArrayList<>();
+        others.add(Report.rejects(truth, counts));
+        others.add(Report.signatures(receiver.refusals()));
+        if (options.replay()) {
+            others.add(compareWithReplay(standings));
+        }
+        return new Report(checks, others);
+    }
+
+    private Finding compareWithReplay(Map<String, Standing> standings) throws IOException, InterruptedException {
+        screen.line("replaying the stream from a file");
+        DecisionLog live = DecisionLog.ofMonitor(bootstrapServers, MonitorFiles.NAME);
+        DecisionLog replayed = ReplayRun.of(scenario, directory);
+        screen.line(live.size() + " decision records of the monitor, " + replayed.size() + " of the replay");
+        Map<String, Instant> completeUntil = new HashMap<>();
+        standings.forEach((experiment, standing) -> completeUntil.put(experiment, standing.completeUntil()));
+        return live.sameAs(replayed, completeUntil);
     }
 
     /** Says where to look while everything stays up. */

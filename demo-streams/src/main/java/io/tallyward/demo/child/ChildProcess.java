@@ -86,6 +86,20 @@ public final class ChildProcess implements AutoCloseable {
         }
     }
 
+    /**
+     * Waits until the process has ended by itself.
+     *
+     * @throws IllegalStateException when it does not in time, or ends with another code than 0
+     */
+    public void awaitEnd(Duration patience) throws InterruptedException {
+        if (!process.waitFor(patience.toMillis(), TimeUnit.MILLISECONDS)) {
+            throw new IllegalStateException(name + ": not done after " + patience.toSeconds() + " s" + tail());
+        }
+        if (process.exitValue() != 0) {
+            throw new IllegalStateException(name + ": ended with code " + process.exitValue() + tail());
+        }
+    }
+
     /** Kills the process at once, without any chance to tidy up, as {@code kill -9} does, and waits for its end. */
     public void kill() throws InterruptedException {
         process.destroyForcibly();

@@ -2,10 +2,13 @@ package io.tallyward.service;
 
 import io.tallyward.connector.kafka.InternalTopics;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanChangedException;
 import io.tallyward.service.command.CommandLineFactory;
 import io.tallyward.service.command.ProcessStop;
 import io.tallyward.service.command.SurroundingsException;
 import io.tallyward.service.config.ServiceConfig;
+import io.tallyward.service.config.document.BadInputException;
+import io.tallyward.service.config.document.Problem;
 import io.tallyward.service.watch.WatchService;
 import java.io.UncheckedIOException;
 import java.util.List;
@@ -32,14 +35,10 @@ public final class Tallyward {
     /** Starts the service so that a broken invariant stops the process, and is what closing then throws. */
     private static AutoCloseable start(ServiceConfig config, List<Plan> plans, ProcessStop stop)
             throws SurroundingsException {
-        AtomicReference<SurroundingsException> failure = new AtomicReference<>();
+        AtomicReference<Exception> failure = new AtomicReference<>();
         try {
             WatchService service = WatchService.start(config, plans, CommandLineFactory.version(), (group, cause) -> {
-                failure.compareAndSet(
-                        null,
-                        new SurroundingsException("The service stops because " + group
-                                + " cannot go on, and nothing of the failed step was committed: "
-                                + cause.getMessage()));
+                failure.compareAndSet(null, explain(config, group, cause));
                 stop.request();
             });
             return () -> {
@@ -51,5 +50,17 @@ public final class Tallyward {
         } catch (UncheckedIOException e) {
             throw new SurroundingsException(e.getMessage(), e);
         }
+    }
+
+    /** A changed plan is a mistake in the input; whatever else a shard refuses lies in the surroundings. */
+    private static Exception explain(ServiceConfig config, String group, Throwable failure) {
+        for (Throwable cause = failure; cause != null; cause = cause.getCause()) {
+            if (cause instanceof PlanChangedException) {
+                return new BadInputException(
+                        List.of(Problem.of(config.plans().toString(), cause.getMessage(), "", "")));
+            }
+        }
+        return new SurroundingsException("The service stops because " + group
+                + " cannot go on, and nothing of the failed step was committed: " + failure.getMessage());
     }
 }

@@ -51,6 +51,10 @@ final class ClientSettings {
             entry("enable.auto.commit", "false"),
             entry("allow.auto.create.topics", "false"));
 
+    /** Whether a broker is there must be known soon; whoever asks asks again. */
+    private static final Map<String, String> PROPOSED_FOR_QUESTIONS =
+            Map.of("request.timeout.ms", "4000", "default.api.timeout.ms", "5000");
+
     private static final Map<String, String> PROPOSED_FOR_OUTPUT = Map.ofEntries(
             entry("compression.type", "lz4"),
             entry("batch.size", "131072"),
@@ -61,7 +65,7 @@ final class ClientSettings {
     private ClientSettings() {}
 
     static Cluster cluster(Map<String, String> clientProperties) {
-        return new AdminCluster(Admin.create(layered(clientProperties, Map.of(), Map.of())));
+        return new AdminCluster(Admin.create(layered(clientProperties, PROPOSED_FOR_QUESTIONS, Map.of())));
     }
 
     /** For reading a topic as a member of a group whose partitions are assigned in ranges. */

@@ -54,6 +54,30 @@ final class LiveStream {
         return stream.records;
     }
 
+    /**
+     * The same stream with its clicks in a topic of their own, views first. Both topics end with an event in every partition
+     * that seals all windows.
+     */
+    static List<ProducerRecord<byte[], byte[]>> split(String views, String clicks, int partitions, long seed) {
+        List<ProducerRecord<byte[], byte[]>> viewRecords = new ArrayList<>();
+        List<ProducerRecord<byte[], byte[]>> clickRecords = new ArrayList<>();
+        for (ProducerRecord<byte[], byte[]> record : of(views, partitions, seed)) {
+            String json = new String(record.value(), StandardCharsets.UTF_8);
+            if (json.contains("\"kind\":\"click\"")) {
+                clickRecords.add(new ProducerRecord<>(clicks, record.partition(), record.key(), record.value()));
+            } else {
+                viewRecords.add(record);
+            }
+        }
+        LiveStream last = new LiveStream(clicks, seed);
+        for (int partition = 0; partition < partitions; partition++) {
+            last.add(partition, "click", "fare-chip", "plain", "last-click-" + partition, START.plus(SEALED));
+        }
+        viewRecords.addAll(clickRecords);
+        viewRecords.addAll(last.records);
+        return viewRecords;
+    }
+
     private void unit(int number, Instant at) {
         String variant = random.nextBoolean() ? "wide" : "plain";
         String unit = "visitor-" + number;

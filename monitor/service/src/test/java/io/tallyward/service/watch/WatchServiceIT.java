@@ -87,6 +87,36 @@ class WatchServiceIT {
     }
 
     @Test
+    void countsViewsAndClicksOfTwoTopicsAsThoseOfOne() throws Exception {
+        try (BrokerUnderTest broker = BrokerUnderTest.start();
+                Receiver receiver = new Receiver()) {
+            String views = broker.newTopic("northwater-views", PARTITIONS);
+            String clicks = broker.newTopic("northwater-clicks", PARTITIONS);
+            String one = broker.newTopic("northwater-events", PARTITIONS);
+            broker.produce(LiveStream.split(views, clicks, PARTITIONS, 20261202L));
+            broker.produce(LiveStream.of(one, PARTITIONS, 20261202L));
+            ServiceConfig config = config(
+                    broker.bootstrapServers(), views + ", " + clicks, broker.uniqueName("watch"), receiver.port());
+            List<Plan> plans = PlanDirectory.read(config.plans()).orElseThrow();
+            try (WatchService service = start(config, plans)) {
+                awaitSettled(service, service);
+            }
+
+            List<DecisionRecord> live = of("quay-banner", decisions(broker, config.name() + "-decisions"));
+            List<DecisionRecord> replayed = of(
+                    "quay-banner",
+                    ReplayOracle.decisions(
+                            plans, PARTITIONS, broker.readAll(one), new JsonEventReader(EventMapping.DEFAULT, 65_536)));
+            assertEquals(
+                    replayed.stream().map(DecisionRecord::counts).toList(),
+                    live.stream().map(DecisionRecord::counts).toList());
+            assertEquals(
+                    replayed.stream().map(DecisionRecord::comparisons).toList(),
+                    live.stream().map(DecisionRecord::comparisons).toList());
+        }
+    }
+
+    @Test
     void waitsForABrokerThatIsNotThereYet() throws Exception {
         int port = freePort();
         ServiceConfig config = config("127.0.0.1:" + port, "northwater-events", "patient", freePort());
