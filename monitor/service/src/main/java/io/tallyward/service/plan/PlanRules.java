@@ -22,6 +22,9 @@ final class PlanRules {
     /** More looks than this say nothing new and make the design slow to compute. */
     private static final long MAX_LOOKS = 1_000;
 
+    /** More windows than this waiting to be sealed would not fit into one record of the state. */
+    private static final long MAX_OPEN_WINDOWS = 5_000;
+
     private final Values plan;
     private final Optional<Duration> window;
 
@@ -52,6 +55,23 @@ final class PlanRules {
                 .filter(width -> !isMultiple(Duration.ofDays(1), width))
                 .ifPresent(
                         width -> count.refuse(PlanKeys.Count.WINDOW, written(width), "a duration that divides a day"));
+        window.ifPresent(width -> checkOpenWindows(count, width));
+    }
+
+    private static void checkOpenWindows(Values count, Duration width) {
+        Optional<Duration> attribution = count.find(PlanKeys.Count.ATTRIBUTION);
+        Optional<Duration> grace = count.find(PlanKeys.Count.GRACE);
+        if (attribution.isEmpty() || grace.isEmpty()) {
+            return;
+        }
+        Duration open = attribution.get().plus(grace.get());
+        if (open.dividedBy(width) > MAX_OPEN_WINDOWS) {
+            count.refuse(
+                    PlanKeys.Count.WINDOW,
+                    written(width),
+                    "at most " + MAX_OPEN_WINDOWS + " windows in attribution and grace, " + written(open),
+                    "Choose a wider window.");
+        }
     }
 
     private void checkVariants(Map<String, Values> variants) {

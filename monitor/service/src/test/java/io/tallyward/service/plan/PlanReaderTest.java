@@ -158,6 +158,16 @@ class PlanReaderTest {
     }
 
     @Test
+    void boundsTheWindowsThatAreOpenAtOnce() {
+        String counting = "count: {attribution: P7D, grace: P1D, window: ";
+        assertEquals(
+                List.of("bad.yaml:8: count.window: PT1M (expected: at most 5000 windows in attribution and grace, P8D)."
+                        + " Choose a wider window."),
+                problems(MINIMAL + counting + "PT1M}\n"));
+        assertEquals(List.of(), problems(MINIMAL + counting + "PT5M}\n"));
+    }
+
+    @Test
     void boundsTheNumberOfLooks() {
         assertEquals(
                 List.of("bad.yaml:6: looks.every: PT5M (expected: at most 1000 looks in run.at-most, P28D). "
