@@ -1,7 +1,7 @@
 package io.tallyward.connector.format;
 
 /** Foreign text made safe to show: quoted, escaped to printable ASCII, and short. */
-final class Quoted {
+public final class Quoted {
 
     static final int MAX_DETAIL = 400;
 
@@ -10,7 +10,7 @@ final class Quoted {
     private Quoted() {}
 
     /** A value of unknown origin, cut to {@value #MAX_SHOWN} characters before escaping. */
-    static String of(String value) {
+    public static String of(String value) {
         boolean cut = value.length() > MAX_SHOWN;
         return '"' + ascii(cut ? value.substring(0, MAX_SHOWN) : value) + (cut ? "...\"" : "\"");
     }
