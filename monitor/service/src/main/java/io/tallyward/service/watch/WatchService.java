@@ -14,6 +14,7 @@ import io.tallyward.service.config.ServiceConfig;
 import io.tallyward.service.http.StatusServer;
 import io.tallyward.service.http.StatusSite;
 import io.tallyward.service.metrics.MonitorMetrics;
+import io.tallyward.service.metrics.ProcessMeters;
 import io.tallyward.service.metrics.PrometheusExposition;
 import io.tallyward.service.page.Pages;
 import io.tallyward.service.status.HealthBoard;
@@ -27,6 +28,9 @@ import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
+import java.util.concurrent.CopyOnWriteArrayList;
+import java.util.concurrent.atomic.AtomicReference;
+import java.util.function.Supplier;
 import org.slf4j.Logger;
 import org.slf4j.LoggerFactory;
 
@@ -45,10 +49,17 @@ public final class WatchService implements AutoCloseable {
     private final TopicNames names;
     private final Map<String, String> clientProperties;
 
+    /** Filled as the parts start, because the server answers before they do. */
+    private final List<Supplier<RunnerReport>> runnerReports = new CopyOnWriteArrayList<>();
+
+    /** Empty until deliveries start, and for good where no webhook is configured. */
+    private final AtomicReference<NoticeDelivery> delivery = new AtomicReference<>();
+
+    private final PrometheusExposition exposition;
+    private final ProcessMeters processMeters;
     private final StatusServer server;
     private final ShardRunner deciding;
     private final ShardRunner counting;
-    private final Optional<NoticeDelivery> delivery;
 
     private WatchService(ServiceConfig config, List<Plan> plans, String version, RunnerListener listener) {
         this.config = config;
@@ -57,19 +68,27 @@ public final class WatchService implements AutoCloseable {
         clientProperties = new HashMap<>(config.kafka().properties());
         clientProperties.put("bootstrap.servers", config.kafka().bootstrapServers());
 
-        MonitorMetrics metrics = new MonitorMetrics(board, this::runnerReports, this::webhookReport, version);
-        StatusSite site =
-                new StatusSite(board, health, new PrometheusExposition(metrics), new Pages(Clock.systemUTC()));
+        exposition =
+                new PrometheusExposition(new MonitorMetrics(board, this::runnerReports, this::webhookReport, version));
+        processMeters = ProcessMeters.bind(exposition.meters());
+        StatusSite site = new StatusSite(board, health, exposition, new Pages(Clock.systemUTC()));
         server = StatusServer.start(config.http().host(), config.http().port(), site);
         InstantSource clock = InstantSource.system();
         deciding = ShardRunner.start(decideGroup(), clock, listener);
         counting = ShardRunner.start(countGroup(), clock, listener);
-        delivery = config.webhook()
-                .map(webhook -> NoticeDelivery.start(
-                        webhook, names, clientProperties, URI.create(server.address() + "experiments/"), clock));
-        health.add(new RunnerHealth("counting", counting::status));
-        health.add(new RunnerHealth("deciding", deciding::status));
-        delivery.ifPresent(started -> health.add(started.health()));
+        add("counting", "count", counting);
+        add("deciding", "decide", deciding);
+        config.webhook().ifPresent(webhook -> {
+            URI pages = URI.create(server.address() + "experiments/");
+            NoticeDelivery started = NoticeDelivery.start(webhook, names, clientProperties, pages, clock);
+            delivery.set(started);
+            health.add(started.health());
+        });
+    }
+
+    private void add(String part, String group, ShardRunner runner) {
+        health.add(new RunnerHealth(part, runner::status));
+        runnerReports.add(() -> RunnerHealth.report(group, runner.status()));
     }
 
     /**
@@ -151,20 +170,21 @@ public final class WatchService implements AutoCloseable {
     }
 
     private List<RunnerReport> runnerReports() {
-        return List.of(
-                RunnerHealth.report("count", counting.status()), RunnerHealth.report("decide", deciding.status()));
+        return runnerReports.stream().map(Supplier::get).toList();
     }
 
     private Optional<WebhookReport> webhookReport() {
-        return delivery.map(NoticeDelivery::report);
+        return Optional.ofNullable(delivery.get()).map(NoticeDelivery::report);
     }
 
     @Override
     public void close() {
-        delivery.ifPresent(NoticeDelivery::close);
+        Optional.ofNullable(delivery.get()).ifPresent(NoticeDelivery::close);
         counting.close();
         deciding.close();
         server.close();
+        processMeters.close();
+        exposition.close();
         LOG.info("Stopped.");
     }
 }
