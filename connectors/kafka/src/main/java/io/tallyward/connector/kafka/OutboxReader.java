@@ -97,11 +97,11 @@ public final class OutboxReader implements AutoCloseable {
         } catch (InterruptException interrupted) {
             leave();
             state = WorkerState.STOPPED;
-        } catch (RuntimeException broken) {
+        } catch (Throwable broken) {
             LOG.error("{}: reading notices stops for good", source.group(), broken);
-            leave();
             lastError = broken.toString();
             state = WorkerState.FAILED;
+            leave();
         }
     }
 

@@ -28,6 +28,7 @@ import java.time.InstantSource;
 import java.util.List;
 import java.util.Map;
 import java.util.OptionalDouble;
+import java.util.concurrent.ConcurrentHashMap;
 import java.util.concurrent.atomic.AtomicLong;
 import org.slf4j.Logger;
 import org.slf4j.LoggerFactory;
@@ -47,6 +48,9 @@ final class NoticeDelivery implements AutoCloseable {
     private final OutboxReader reader;
     private final InstantSource clock;
     private final AtomicLong attempts = new AtomicLong();
+
+    /** What the queue holds, by id of the notice; used by the reader's thread, and left by settled ones on the queue's. */
+    private final Map<String, OutboxRecord> held = new ConcurrentHashMap<>();
 
     private NoticeDelivery(
             WebhookTarget target, TopicNames names, Map<String, String> clientProperties, InstantSource clock) {
@@ -100,23 +104,48 @@ final class NoticeDelivery implements AutoCloseable {
             return;
         }
         if (!queue.hasRoom()) {
+            withdrawUnwanted();
+        }
+        if (!queue.hasRoom()) {
             throw new IllegalStateException("webhook queue: more than " + CAPACITY + " notices are pending");
         }
-        queue.submit(notice, record::done);
+        held.put(notice.id(), record);
+        queue.submit(notice, () -> {
+            held.remove(notice.id(), record);
+            record.done();
+        });
+    }
+
+    /** Makes room: what lay in partitions that have moved to another instance is delivered there as well. */
+    private void withdrawUnwanted() {
+        held.entrySet().removeIf(entry -> {
+            boolean unwanted = !entry.getValue().wanted();
+            if (unwanted) {
+                queue.withdraw(entry.getKey());
+            }
+            return unwanted;
+        });
     }
 
     HealthSource health() {
         return () -> {
             OutboxStatus status = reader.status();
-            State state = status.state() == WorkerState.RUNNING
-                    ? State.OK
-                    : status.state().healthy() ? State.STARTING : State.DOWN;
+            State state = state(status.state());
             return new Health(
                     "notices",
                     state,
                     state == State.OK
                             ? status.pending() + " notices wait to be delivered."
                             : status.lastError().orElse("Joining the group of the outbox."));
+        };
+    }
+
+    private static State state(WorkerState reader) {
+        return switch (reader) {
+            case RUNNING -> State.OK;
+            case STARTING, RESTORING -> State.STARTING;
+            case BROKER_UNREACHABLE, STOPPED -> State.DOWN;
+            case FAILED -> State.BROKEN;
         };
     }
 
