@@ -28,14 +28,4 @@ public record Look(int number, double information, double upperSpent, double low
                     "lower: " + lower + " (expected: at most the upper boundary " + upper + ")");
         }
     }
-
-    /** Whether {@code z} has reached the upper boundary. */
-    public boolean reachesUpper(double z) {
-        return z >= upper;
-    }
-
-    /** Whether {@code z} has reached the lower boundary. */
-    public boolean reachesLower(double z) {
-        return z <= lower;
-    }
 }
