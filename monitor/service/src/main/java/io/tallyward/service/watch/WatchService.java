@@ -120,7 +120,9 @@ public final class WatchService implements AutoCloseable {
                 new CountSettings(config.input().maxSkew(), config.input().idleAfter(), unitKey);
         JsonEventReader reader =
                 new JsonEventReader(config.input().mapping(), config.input().maxEventBytes());
-        List<String> topics = config.input().topics();
+        // State tells topics apart by their place in this list: another order in the configuration must not mix them
+        // up.
+        List<String> topics = config.input().topics().stream().sorted().toList();
         RejectLog rejectLog = new RejectLog(names.rejects());
         return group(names.countGroup())
                 .inputTopics(topics)
