@@ -99,19 +99,19 @@ class RecordCodecTest {
     void writesNoticesInTheAgreedForm() {
         Notice notice = new Notice(
                 "n_1",
-                Notice.Kind.PLAN_REFUSED,
+                Notice.Kind.STARVED,
                 Notice.Severity.TICKET,
                 "fare-chip",
                 "",
                 Instant.parse("2026-05-04T06:00:00.5Z"),
-                "The plan was refused.",
-                Map.of("key", "alpha"),
-                "Correct the plan.",
+                "No trial of any variant.",
+                Map.of("events", "12"),
+                "Check the topic.",
                 "ab");
         assertEquals(
-                "{\"id\":\"n_1\",\"kind\":\"plan-refused\",\"severity\":\"ticket\",\"experiment\":\"fare-chip\","
-                        + "\"variant\":\"\",\"at\":\"2026-05-04T06:00:00.500Z\",\"summary\":\"The plan was refused.\","
-                        + "\"facts\":{\"key\":\"alpha\"},\"action\":\"Correct the plan.\",\"decision\":\"ab\"}",
+                "{\"id\":\"n_1\",\"kind\":\"starved\",\"severity\":\"ticket\",\"experiment\":\"fare-chip\","
+                        + "\"variant\":\"\",\"at\":\"2026-05-04T06:00:00.500Z\",\"summary\":\"No trial of any variant.\","
+                        + "\"facts\":{\"events\":\"12\"},\"action\":\"Check the topic.\",\"decision\":\"ab\"}",
                 text(NoticeJson.write(notice)));
     }
 

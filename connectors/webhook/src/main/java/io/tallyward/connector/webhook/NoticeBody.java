@@ -117,7 +117,7 @@ public final class NoticeBody {
         }
     }
 
-    /** Percent-encoding of a path segment; the experiment of a refused plan may be any text. */
+    /** Percent-encoding of a path segment, whatever text a notice may hold. */
     private static String encoded(String segment) {
         return URLEncoder.encode(segment, StandardCharsets.UTF_8).replace("+", "%20");
     }

@@ -49,16 +49,14 @@ public record Notice(
         CROSSOVER,
         /** Too many late events. */
         LATE,
-        /** A plan was refused. */
-        PLAN_REFUSED,
         /** Planned information or time is used up without a crossing. */
         EXHAUSTED,
         /** Trust has returned. */
         RECOVERED;
 
-        /** The published code, as in {@code plan-refused}. */
+        /** The published code, as in {@code mismatch}. */
         public String code() {
-            return name().toLowerCase(Locale.ROOT).replace('_', '-');
+            return name().toLowerCase(Locale.ROOT);
         }
     }
 
