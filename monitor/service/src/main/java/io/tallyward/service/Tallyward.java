@@ -1,6 +1,7 @@
 package io.tallyward.service;
 
 import io.tallyward.connector.kafka.InternalTopics;
+import io.tallyward.engine.count.UnitKeyChangedException;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanChangedException;
 import io.tallyward.service.command.CommandLineFactory;
@@ -52,12 +53,15 @@ public final class Tallyward {
         }
     }
 
-    /** A changed plan is a mistake in the input; whatever else a shard refuses lies in the surroundings. */
+    /** A changed plan or unit key is a mistake in the input; whatever else a shard refuses lies in the surroundings. */
     private static Exception explain(ServiceConfig config, String group, Throwable failure) {
         for (Throwable cause = failure; cause != null; cause = cause.getCause()) {
             if (cause instanceof PlanChangedException) {
                 return new BadInputException(
                         List.of(Problem.of(config.plans().toString(), cause.getMessage(), "", "")));
+            }
+            if (cause instanceof UnitKeyChangedException) {
+                return new BadInputException(List.of(Problem.of(config.file().toString(), cause.getMessage(), "", "")));
             }
         }
         return new SurroundingsException("The service stops because " + group
