@@ -14,6 +14,7 @@ import java.io.DataOutput;
 import java.io.IOException;
 import java.time.Instant;
 import java.util.Collection;
+import java.util.List;
 import java.util.Locale;
 import java.util.Optional;
 import java.util.TreeMap;
@@ -111,7 +112,7 @@ final class ChallengerTest {
         if (!runEnds && !calendar.isDue(windowEnd, fraction, minimumRunOver(windowEnd))) {
             return new Attempt.NotDue();
         }
-        String obstacle = obstacle(counts, fraction);
+        String obstacle = obstacle(counts, fraction, runEnds);
         if (comparison.isEmpty() || !obstacle.isEmpty()) {
             return new Attempt.Delayed(obstacle, calendar.delayed());
         }
@@ -120,7 +121,7 @@ final class ChallengerTest {
         return new Attempt.Taken(look);
     }
 
-    private String obstacle(CumulativeCounts counts, double fraction) {
+    private String obstacle(CumulativeCounts counts, double fraction, boolean runEnds) {
         int least = plan.test().minimumPerCell();
         for (int arm : new int[] {control, variant}) {
             long successes = counts.successes(arm);
@@ -135,16 +136,24 @@ final class ChallengerTest {
                         least);
             }
         }
-        double before = lastLook().map(look -> look.look().information()).orElse(0.0);
-        if (fraction - before < LEAST_GROWTH) {
+        if (!runEnds && stands(fraction)) {
             return String.format(
                     Locale.ROOT,
                     "the information fraction has grown from %.4f to %.4f only (a look needs %.3f more)",
-                    before,
+                    lastInformation(),
                     fraction,
                     LEAST_GROWTH);
         }
         return "";
+    }
+
+    /** Whether information has hardly grown since the last look. */
+    private boolean stands(double fraction) {
+        return fraction - lastInformation() < LEAST_GROWTH;
+    }
+
+    private double lastInformation() {
+        return lastLook().map(look -> look.look().information()).orElse(0.0);
     }
 
     private TakenLook look(
@@ -154,7 +163,9 @@ final class ChallengerTest {
         double spendingTime = last ? 1 : Math.min(fraction, 1);
         TailSpending spent =
                 TailSpending.at(plan, design().spending().spent(design().tailLevel(), spendingTime), benefitOpen);
-        Look look = boundaries().next(fraction, spent.upper(), spent.lower());
+        Look look = runEnds && !looks.isEmpty() && stands(fraction)
+                ? lastLookAgain(spent)
+                : boundaries().next(fraction, spent.upper(), spent.lower());
         boolean futile = plan.futility().isPresent() && !last;
         double betaSpent = futile ? betaSpent(spendingTime) : 0;
         double futilityBound = futile ? futilityBound(look, betaSpent) : Double.NEGATIVE_INFINITY;
@@ -168,6 +179,24 @@ final class ChallengerTest {
                 comparison(found, look, futilityBound, reason(found.z(), look, finding)));
         looks.put(look.number(), taken);
         return taken;
+    }
+
+    /**
+     * The look at the end of a run whose data have not grown since the look before: that look once more, as if it had been
+     * the last. It crosses wherever the look before would have crossed, so that both together spend what the one may spend.
+     */
+    private Look lastLookAgain(TailSpending spent) {
+        List<Look> taken = looks.values().stream().map(TakenLook::look).toList();
+        Look before = taken.get(taken.size() - 1);
+        Look again = BoundarySequence.resume(taken.subList(0, taken.size() - 1))
+                .next(before.information(), spent.upper(), spent.lower());
+        return new Look(
+                before.number() + 1,
+                again.information(),
+                again.upperSpent(),
+                again.lowerSpent(),
+                again.upper(),
+                again.lower());
     }
 
     private boolean minimumRunOver(long windowEnd) {

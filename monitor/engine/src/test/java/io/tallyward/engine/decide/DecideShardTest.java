@@ -345,6 +345,18 @@ class DecideShardTest {
     }
 
     @Test
+    void spendsWhatIsLeftAtTheEndOfARunWhoseDataHaveCeasedToGrow() {
+        host.next(1000, 200, 1000, 245).quiet(4);
+        assertEquals(Verdict.CONTINUE, host.decisions().get(0).verdict(), "z 2.42 is far from the first boundary");
+        Comparison last = host.lastLook();
+        assertEquals(2, last.look());
+        assertEquals(0.05, last.alphaSpent(), 1e-15);
+        assertEquals(1.959964, last.upper(), 1e-6, "a single test: the first look stands for both");
+        assertEquals(Verdict.STOP_BENEFIT, last.verdict());
+        assertEquals(List.of("stop wide"), host.noticeKinds());
+    }
+
+    @Test
     void writesAnEndRecordWhenNoLastLookIsPossible() {
         host.quiet(4).next(3, 1, 3, 1);
         DecisionRecord end = host.lastDecision();
