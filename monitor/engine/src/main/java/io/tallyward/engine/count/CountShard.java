@@ -119,9 +119,8 @@ public final class CountShard {
      * @param caughtUp whether everything in this source has been read; only then can it be idle
      */
     public void passTime(int source, long nowMillis, boolean caughtUp) {
-        if (watermarks.passTime(source, nowMillis, caughtUp)) {
+        if (watermarks.passTime(source, nowMillis, caughtUp) && sealPassed()) {
             shardChanged = true;
-            sealPassed();
         }
     }
 
@@ -153,10 +152,11 @@ public final class CountShard {
         tell(counter, before, SealCause.END, counter.sealThrough(moment));
     }
 
-    private void sealPassed() {
+    /** Seals what the watermarks have passed; returns whether that was anything. */
+    private boolean sealPassed() {
         long watermark = watermarks.slowest();
         if (watermark < nextSealAt) {
-            return;
+            return false;
         }
         SealCause cause = watermarks.slowestIsAssumed() ? SealCause.IDLE : SealCause.WATERMARK;
         nextSealAt = Long.MAX_VALUE;
@@ -164,6 +164,7 @@ public final class CountShard {
             seal(counter, watermark, cause);
             nextSealAt = Math.min(nextSealAt, counter.nextSealAt());
         }
+        return true;
     }
 
     private void seal(ExperimentCounter counter, long watermark, SealCause cause) {

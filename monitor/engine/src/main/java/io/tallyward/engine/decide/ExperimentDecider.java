@@ -106,7 +106,7 @@ final class ExperimentDecider {
         if (trustChanged && sound) {
             tests.stream().filter(ChallengerTest::release).forEach(settled::add);
         }
-        boolean stopToldBefore = tests.stream().anyMatch(test -> test.verdict().settled());
+        NoticeWriter.Told told = told(concluded);
         List<Comparison> looks = takeLooks(sound, settled);
         boolean ended = endRun(sound, settled);
         if (!looks.isEmpty()) {
@@ -119,7 +119,28 @@ final class ExperimentDecider {
         } else {
             return;
         }
-        tell(trustChanged, stopToldBefore, settled);
+        tell(trustChanged, told, settled);
+        leaveOut(settled);
+    }
+
+    private NoticeWriter.Told told(boolean concluded) {
+        if (concluded) {
+            return NoticeWriter.Told.ALL;
+        }
+        boolean any = tests.stream().anyMatch(test -> test.verdict().settled());
+        return any ? NoticeWriter.Told.SOME : NoticeWriter.Told.NONE;
+    }
+
+    /** While other challengers go on, a challenger whose verdict was told need not be shown any more. */
+    private void leaveOut(List<ChallengerTest> settled) {
+        if (tests.stream().allMatch(test -> test.verdict().settled())) {
+            return;
+        }
+        for (ChallengerTest test : settled) {
+            int variant = plan.variantIndex(test.name());
+            splitWatch.leaveOut(variant, counts);
+            trustWatch.leaveOut(variant);
+        }
     }
 
     private boolean runEnds() {
@@ -188,10 +209,10 @@ final class ExperimentDecider {
         decisions.add(record);
     }
 
-    private void tell(boolean trustChanged, boolean stopToldBefore, List<ChallengerTest> settled) {
+    private void tell(boolean trustChanged, NoticeWriter.Told told, List<ChallengerTest> settled) {
         DecisionRecord record = decisions.get(decisions.size() - 1);
         if (trustChanged) {
-            notices.add(writer.trust(record, stopToldBefore));
+            notices.add(writer.trust(record, told));
         }
         for (ChallengerTest test : settled) {
             notices.add(writer.settled(

@@ -26,6 +26,7 @@ import java.util.Optional;
  * @param verdict the verdict on the experiment
  * @param comparisons the latest look at each challenger, by variant in the plan's order; absent before its first look
  * @param verdicts verdict of every challenger, by variant in the plan's order
+ * @param held the verdict that waits for trust, by variant; only challengers that have one
  * @param history past looks in order, the oldest dropped beyond a bound
  * @param looksTaken how many look events there have been
  * @param looksDelayed how many due looks had to wait
@@ -45,6 +46,7 @@ public record ExperimentView(
         Verdict verdict,
         Map<String, Comparison> comparisons,
         Map<String, Verdict> verdicts,
+        Map<String, Verdict> held,
         List<LookPoint> history,
         int looksTaken,
         int looksDelayed,

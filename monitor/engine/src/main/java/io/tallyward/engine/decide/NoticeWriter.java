@@ -26,58 +26,62 @@ final class NoticeWriter {
         this.plan = plan;
     }
 
+    /** Whether verdicts were told before trust changed. */
+    enum Told {
+        NONE(""),
+        SOME(" A stop was told earlier: review it."),
+        ALL(" Every verdict was told earlier: if the traffic was changed because of it, nothing is wrong; otherwise"
+                + " review it.");
+
+        private final String reminder;
+
+        Told(String reminder) {
+            this.reminder = reminder;
+        }
+    }
+
+    private record Message(Kind kind, Severity severity, String what, String action) {}
+
     /** A verdict on a challenger that is now final. */
     Notice settled(DecisionRecord record, String variant, Verdict verdict, Optional<Comparison> look) {
-        String control = plan.control().name();
         Map<String, String> facts = new LinkedHashMap<>();
         look.ifPresent(comparison -> addFigures(facts, comparison));
         addCounts(facts, record, variant);
+        return notice(record, variant, settledMessage(variant, verdict), facts);
+    }
+
+    private Message settledMessage(String variant, Verdict verdict) {
+        String control = plan.control().name();
         return switch (verdict) {
             case STOP_BENEFIT ->
-                notice(
-                        record,
+                new Message(
                         Kind.STOP,
                         Severity.TICKET,
-                        variant,
-                        plan.experiment() + ": " + variant + " does better than " + control
-                                + "; the benefit boundary is crossed.",
-                        facts,
+                        variant + " does better than " + control + "; the benefit boundary is crossed",
                         "Look at the experiment's page, then end the experiment and keep " + variant + ". " + CAUTION);
             case STOP_HARM ->
-                notice(
-                        record,
+                new Message(
                         Kind.STOP,
                         Severity.PAGE,
-                        variant,
-                        plan.experiment() + ": " + variant + " does worse than " + control
-                                + "; the harm boundary is crossed.",
-                        facts,
+                        variant + " does worse than " + control + "; the harm boundary is crossed",
                         "Stop showing " + variant + " and tell the owner, " + plan.owner() + ". " + CAUTION);
             case STOP_FUTILITY ->
-                notice(
-                        record,
+                new Message(
                         Kind.STOP,
                         Severity.TICKET,
-                        variant,
-                        plan.experiment() + ": " + variant + " is unlikely to prove better than " + control
-                                + " within the planned information.",
-                        facts,
+                        variant + " is unlikely to prove better than " + control + " within the planned information",
                         "Consider ending the experiment; carrying on is allowed and costs no error. " + CAUTION);
             case EXHAUSTED, WAITING, CONTINUE ->
-                notice(
-                        record,
+                new Message(
                         Kind.EXHAUSTED,
                         Severity.INFO,
-                        variant,
-                        plan.experiment() + ": the planned information or time is used up, and " + variant
-                                + " has crossed no boundary.",
-                        facts,
+                        "the planned information or time is used up, and " + variant + " has crossed no boundary",
                         "End the experiment: it has not shown a difference of the size it was planned for. " + CAUTION);
         };
     }
 
     /** Trust has changed for the worse, or has returned. */
-    Notice trust(DecisionRecord record, boolean stopTold) {
+    Notice trust(DecisionRecord record, Told told) {
         Map<String, String> facts = new LinkedHashMap<>();
         facts.put("splitPValue", figure("%.3g", record.split().sequentialPValue()));
         facts.put("events", Long.toString(record.outcomes().total()));
@@ -86,77 +90,63 @@ final class NoticeWriter {
         for (VariantCount count : record.counts()) {
             facts.merge("trials." + count.variant(), Long.toString(count.trials()), NoticeWriter::sum);
         }
-        String told = stopTold ? " A stop was told earlier: review it." : "";
+        return notice(record, "", trustMessage(record, told), facts);
+    }
+
+    /** Nobody is woken by what may well be the consequence of verdicts that were followed. */
+    private static Message trustMessage(DecisionRecord record, Told told) {
+        Severity urgent = told == Told.ALL ? Severity.TICKET : Severity.PAGE;
+        String reason = record.trustReason();
         return switch (record.trust()) {
             case SOUND ->
-                notice(
-                        record,
+                new Message(
                         Kind.RECOVERED,
                         Severity.INFO,
-                        "",
-                        plan.experiment() + ": the data are trusted again.",
-                        facts,
+                        "the data are trusted again",
                         "Nothing to do; verdicts that were held are told now.");
             case MISMATCH ->
-                trustNotice(
-                        record,
+                new Message(
                         Kind.MISMATCH,
-                        Severity.PAGE,
-                        facts,
-                        "Find where units are lost or assigned twice before believing any result." + told);
+                        urgent,
+                        reason,
+                        "Find where units are lost or assigned twice before believing any result." + told.reminder);
             case STARVED ->
-                trustNotice(
-                        record,
+                new Message(
                         Kind.STARVED,
-                        Severity.PAGE,
-                        facts,
-                        "Check that the variant is still shown and that its events reach the topic." + told);
+                        urgent,
+                        reason,
+                        "Check that the variant is still shown and that its events reach the topic." + told.reminder);
             case CROSSOVER ->
-                trustNotice(
-                        record,
+                new Message(
                         Kind.CROSSOVER,
                         Severity.TICKET,
-                        facts,
-                        "Check that a unit keeps its variant across pages, devices and releases." + told);
+                        reason,
+                        "Check that a unit keeps its variant across pages, devices and releases." + told.reminder);
             case LATE ->
-                trustNotice(
-                        record,
+                new Message(
                         Kind.LATE,
                         Severity.TICKET,
-                        facts,
-                        "Check the delay of the pipeline; a longer grace needs a new experiment." + told);
+                        reason,
+                        "Check the delay of the pipeline; a longer grace needs a new experiment." + told.reminder);
         };
     }
 
-    private Notice trustNotice(
-            DecisionRecord record, Kind kind, Severity severity, Map<String, String> facts, String action) {
-        String summary = plan.experiment() + ": " + record.trustReason() + ".";
-        return notice(record, kind, severity, "", summary, facts, action);
-    }
-
-    private Notice notice(
-            DecisionRecord record,
-            Kind kind,
-            Severity severity,
-            String variant,
-            String summary,
-            Map<String, String> facts,
-            String action) {
+    private Notice notice(DecisionRecord record, String variant, Message message, Map<String, String> facts) {
         String id = new Digest("notice/1")
                 .text(record.hash())
-                .text(kind.code())
+                .text(message.kind().code())
                 .text(variant)
                 .hex();
         return new Notice(
                 "notice_" + id.substring(0, 32),
-                kind,
-                severity,
+                message.kind(),
+                message.severity(),
                 plan.experiment(),
                 variant,
                 record.windowEnd(),
-                summary,
+                plan.experiment() + ": " + message.what() + ".",
                 facts,
-                action,
+                message.action(),
                 record.hash());
     }
 

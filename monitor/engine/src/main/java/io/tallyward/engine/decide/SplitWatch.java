@@ -13,6 +13,10 @@ import java.util.Arrays;
  * Watches the traffic split after every complete window. Each allocation epoch has its own evidence against its own planned
  * shares; the epochs' data are disjoint, so the product of their e-values is an e-value, and one over its largest value so
  * far is a p-value that may be read at any time (Ville's inequality).
+ *
+ * <p>Once the verdict on a challenger is told while others go on, whoever follows it stops showing that challenger. From
+ * then on it is left out: the evidence so far stands, and what comes is held against the planned shares of the others among
+ * themselves. These are disjoint data again, so the product stays an e-value.
  */
 final class SplitWatch {
 
@@ -23,21 +27,81 @@ final class SplitWatch {
     static final double CONCENTRATION = 1000;
 
     private final Plan plan;
+    private final int epochs;
+    private final boolean[] watched;
+    private final long[][] before;
+    private double earlierEvidence;
+    private PearsonSplit earlierPearson = PearsonSplit.NONE;
     private double logBayesFactor;
     private double largest;
 
     SplitWatch(Plan plan) {
         this.plan = plan;
+        epochs = plan.epochs().size() + 1;
+        watched = new boolean[plan.variants().size()];
+        Arrays.fill(watched, true);
+        before = new long[epochs][watched.length];
     }
 
     /** Reads the split again. */
     void observe(CumulativeCounts counts) {
-        double sum = 0;
-        for (int epoch = 0; epoch < counts.epochs(); epoch++) {
-            sum += SequentialSplitTest.logBayesFactor(CONCENTRATION, plan.sharesIn(epoch), counts.trialsIn(epoch));
+        double sum = earlierEvidence;
+        for (int epoch = 0; epoch < epochs; epoch++) {
+            sum += SequentialSplitTest.logBayesFactor(CONCENTRATION, shares(epoch), trials(counts, epoch));
         }
         logBayesFactor = sum;
         largest = Math.max(largest, sum);
+    }
+
+    /** Leaves a variant out from now on. At least two always stay. */
+    void leaveOut(int variant, CumulativeCounts counts) {
+        if (watchedCount() <= 2 || !watched[variant]) {
+            return;
+        }
+        observe(counts);
+        earlierEvidence = logBayesFactor;
+        earlierPearson = pearson(counts);
+        for (int epoch = 0; epoch < epochs; epoch++) {
+            before[epoch] = counts.trialsIn(epoch);
+        }
+        watched[variant] = false;
+    }
+
+    private int watchedCount() {
+        int count = 0;
+        for (boolean each : watched) {
+            count += each ? 1 : 0;
+        }
+        return count;
+    }
+
+    private double[] shares(int epoch) {
+        double[] all = plan.sharesIn(epoch);
+        double[] shares = new double[watchedCount()];
+        double sum = 0;
+        int next = 0;
+        for (int variant = 0; variant < all.length; variant++) {
+            if (watched[variant]) {
+                shares[next++] = all[variant];
+                sum += all[variant];
+            }
+        }
+        for (int i = 0; i < shares.length; i++) {
+            shares[i] /= sum;
+        }
+        return shares;
+    }
+
+    private long[] trials(CumulativeCounts counts, int epoch) {
+        long[] all = counts.trialsIn(epoch);
+        long[] trials = new long[watchedCount()];
+        int next = 0;
+        for (int variant = 0; variant < all.length; variant++) {
+            if (watched[variant]) {
+                trials[next++] = all[variant] - before[epoch][variant];
+            }
+        }
+        return trials;
     }
 
     /** The sequential p-value, in (0, 1]; it never rises. */
@@ -46,24 +110,47 @@ final class SplitWatch {
     }
 
     Split split(CumulativeCounts counts) {
-        PearsonSplit pearson = PearsonSplit.NONE;
-        for (int epoch = 0; epoch < counts.epochs(); epoch++) {
-            long[] trials = counts.trialsIn(epoch);
-            if (Arrays.stream(trials).sum() > 0) {
-                pearson = pearson.plus(PearsonSplit.of(plan.sharesIn(epoch), trials));
-            }
-        }
+        PearsonSplit pearson = pearson(counts);
         return new Split(
                 logBayesFactor, sequentialPValue(), pearson.chiSquare(), pearson.degreesOfFreedom(), pearson.pValue());
+    }
+
+    private PearsonSplit pearson(CumulativeCounts counts) {
+        PearsonSplit pearson = earlierPearson;
+        for (int epoch = 0; epoch < epochs; epoch++) {
+            long[] trials = trials(counts, epoch);
+            if (Arrays.stream(trials).sum() > 0) {
+                pearson = pearson.plus(PearsonSplit.of(shares(epoch), trials));
+            }
+        }
+        return pearson;
     }
 
     void write(DataOutput out) throws IOException {
         out.writeDouble(logBayesFactor);
         out.writeDouble(largest);
+        out.writeDouble(earlierEvidence);
+        out.writeDouble(earlierPearson.chiSquare());
+        out.writeInt(earlierPearson.degreesOfFreedom());
+        out.writeDouble(earlierPearson.pValue());
+        for (int variant = 0; variant < watched.length; variant++) {
+            out.writeBoolean(watched[variant]);
+            for (int epoch = 0; epoch < epochs; epoch++) {
+                out.writeLong(before[epoch][variant]);
+            }
+        }
     }
 
     void read(DataInput in) throws IOException {
         logBayesFactor = in.readDouble();
         largest = in.readDouble();
+        earlierEvidence = in.readDouble();
+        earlierPearson = new PearsonSplit(in.readDouble(), in.readInt(), in.readDouble());
+        for (int variant = 0; variant < watched.length; variant++) {
+            watched[variant] = in.readBoolean();
+            for (int epoch = 0; epoch < epochs; epoch++) {
+                before[epoch][variant] = in.readLong();
+            }
+        }
     }
 }

@@ -31,6 +31,7 @@ final class TrustWatch {
     private final Plan plan;
     private final long[] silentSince;
     private final double[] trialsDue;
+    private final boolean[] leftOut;
     private long streamSilentSince;
     private boolean crossoverComplaint;
     private boolean lateComplaint;
@@ -39,6 +40,7 @@ final class TrustWatch {
         this.plan = plan;
         silentSince = new long[plan.variants().size()];
         trialsDue = new double[plan.variants().size()];
+        leftOut = new boolean[plan.variants().size()];
         streamSilentSince = plan.run().from().toEpochMilli();
         Arrays.fill(silentSince, streamSilentSince);
     }
@@ -54,24 +56,35 @@ final class TrustWatch {
         static final Judgement SOUND = new Judgement(Trust.SOUND, "");
     }
 
+    /** No longer expects trials of a variant: whoever follows the verdict on it stops showing it. */
+    void leaveOut(int variant) {
+        leftOut[variant] = true;
+    }
+
     /** Takes note of a complete window. */
     void observe(long windowStart, long windowEnd, List<Cell> cells) {
         long[] trials = new long[silentSince.length];
-        long all = 0;
         for (Cell cell : cells) {
             trials[cell.variant()] += cell.trials();
-            all += cell.trials();
-        }
-        if (all > 0) {
-            streamSilentSince = windowEnd;
         }
         double[] shares = plan.sharesIn(plan.epochAt(windowStart));
+        long expected = 0;
+        double shareOfExpected = 0;
+        for (int variant = 0; variant < trials.length; variant++) {
+            if (trials[variant] > 0) {
+                streamSilentSince = windowEnd;
+            }
+            if (!leftOut[variant]) {
+                expected += trials[variant];
+                shareOfExpected += shares[variant];
+            }
+        }
         for (int variant = 0; variant < trials.length; variant++) {
             if (trials[variant] > 0) {
                 silentSince[variant] = windowEnd;
                 trialsDue[variant] = 0;
-            } else {
-                trialsDue[variant] += all * shares[variant];
+            } else if (!leftOut[variant]) {
+                trialsDue[variant] += expected * shares[variant] / shareOfExpected;
             }
         }
     }
@@ -131,7 +144,8 @@ final class TrustWatch {
             return "no trial of any variant for " + hours(windowEnd - streamSilentSince);
         }
         for (int variant = 0; variant < silentSince.length; variant++) {
-            if (windowEnd - silentSince[variant] >= limitMillis && trialsDue[variant] >= TRIALS_DUE) {
+            boolean due = !leftOut[variant] && trialsDue[variant] >= TRIALS_DUE;
+            if (due && windowEnd - silentSince[variant] >= limitMillis) {
                 return text(
                         "no trial of %s for %s, although about %.0f were due",
                         plan.variants().get(variant).name(),
@@ -154,6 +168,7 @@ final class TrustWatch {
         for (int variant = 0; variant < silentSince.length; variant++) {
             out.writeLong(silentSince[variant]);
             out.writeDouble(trialsDue[variant]);
+            out.writeBoolean(leftOut[variant]);
         }
         out.writeLong(streamSilentSince);
         out.writeBoolean(crossoverComplaint);
@@ -164,6 +179,7 @@ final class TrustWatch {
         for (int variant = 0; variant < silentSince.length; variant++) {
             silentSince[variant] = in.readLong();
             trialsDue[variant] = in.readDouble();
+            leftOut[variant] = in.readBoolean();
         }
         streamSilentSince = in.readLong();
         crossoverComplaint = in.readBoolean();

@@ -40,10 +40,12 @@ final class ViewWriter {
             String lastRecord) {
         Map<String, Comparison> comparisons = new LinkedHashMap<>();
         Map<String, Verdict> verdicts = new LinkedHashMap<>();
+        Map<String, Verdict> held = new LinkedHashMap<>();
         Map<String, Double> maximumInformation = new LinkedHashMap<>();
         for (ChallengerTest test : tests) {
             test.lastLook().ifPresent(look -> comparisons.put(test.name(), current(test, look.comparison())));
             verdicts.put(test.name(), test.verdict());
+            test.held().ifPresent(verdictHeld -> held.put(test.name(), verdictHeld));
             maximumInformation.put(test.name(), test.design().maximumInformation());
         }
         return new ExperimentView(
@@ -58,6 +60,7 @@ final class ViewWriter {
                 verdict,
                 comparisons,
                 verdicts,
+                held,
                 history(tests),
                 looks.taken(),
                 looks.delayed(),

@@ -200,7 +200,13 @@ class DecideTrustTest {
         hours(3, 1000, 200, 100, 20);
         Notice mismatch = host.notices().get(1);
         assertEquals(Notice.Kind.MISMATCH, mismatch.kind());
-        assertTrue(mismatch.action().endsWith(" A stop was told earlier: review it."), mismatch.action());
+        assertEquals(Notice.Severity.TICKET, mismatch.severity(), "following the verdict looks like this, too");
+        assertTrue(
+                mismatch.action()
+                        .endsWith(
+                                " Every verdict was told earlier: if the traffic was changed because of it, nothing is"
+                                        + " wrong; otherwise review it."),
+                mismatch.action());
         assertEquals(Verdict.STOP_BENEFIT, host.view().verdict(), "the verdict stands, shown with its trust");
     }
 }

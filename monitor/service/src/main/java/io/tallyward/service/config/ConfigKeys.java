@@ -148,7 +148,7 @@ public final class ConfigKeys {
                 Key.optional("runbook", text(1_000), "Address of the runbook; notices link to their section of it.");
         static final Key<String> PAGES = Key.optional(
                 "pages",
-                text(1_000),
+                text(900),
                 "Address of the experiments' pages as seen by those who are told, if not the one they are served at.");
         static final Shape SHAPE =
                 Shape.of(URL, SECRET_FILE, SECRET_ENVIRONMENT, ALLOW_HTTP, ALLOW_PRIVATE, RUNBOOK, PAGES);

@@ -111,6 +111,8 @@ final class ExperimentJson {
                 node,
                 view.comparisons().get(challenger.name()),
                 view.maximumInformation().get(challenger.name()));
+        Verdict held = view.held().get(challenger.name());
+        node.put("held", held == null ? null : held.code());
         return node;
     }
 

@@ -115,7 +115,7 @@ public final class MonitorMetrics {
         for (Trust trust : Trust.values()) {
             sheet.putState(Metric.TRUST, trust == view.trust(), name, trust.code());
         }
-        sheet.putState(Metric.HELD, view.comparisons().values().stream().anyMatch(look -> look.held() != null), name);
+        sheet.putState(Metric.HELD, !view.held().isEmpty(), name);
         if (view.counts().stream().anyMatch(count -> count.trials() > 0)) {
             sheet.put(Metric.SPLIT_P_VALUE, view.split().sequentialPValue(), name);
         }

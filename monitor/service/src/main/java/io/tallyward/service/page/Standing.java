@@ -47,7 +47,7 @@ record Standing(ExperimentView view) {
 
     /** Whether a verdict waits for trust to return. */
     boolean held() {
-        return view.comparisons().values().stream().anyMatch(look -> look.held() != null);
+        return !view.held().isEmpty();
     }
 
     List<Variant> challengers() {

@@ -166,6 +166,7 @@ class PagesTest {
                 Verdict.CONTINUE,
                 Map.of(NASTY + "2", like.comparisons().get("inside")),
                 Map.of(),
+                Map.of(NASTY + "2", Verdict.STOP_HARM),
                 like.history(),
                 1,
                 1,

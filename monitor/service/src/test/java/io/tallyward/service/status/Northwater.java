@@ -152,6 +152,7 @@ public final class Northwater {
                 verdict,
                 view.comparisons(),
                 view.verdicts(),
+                view.held(),
                 view.history(),
                 view.looksTaken(),
                 view.looksDelayed(),
@@ -204,6 +205,12 @@ public final class Northwater {
         }
         Map<String, Verdict> verdicts = new LinkedHashMap<>();
         Map<String, Double> information = new LinkedHashMap<>();
+        Map<String, Verdict> held = new LinkedHashMap<>();
+        latest.forEach((variant, look) -> {
+            if (look.held() != null) {
+                held.put(variant, look.held());
+            }
+        });
         plan.challengers().forEach(challenger -> {
             verdicts.put(challenger.name(), verdict);
             information.put(challenger.name(), 235_000.0);
@@ -220,6 +227,7 @@ public final class Northwater {
                 verdict,
                 latest,
                 verdicts,
+                held,
                 history,
                 looks,
                 looks == 0 ? 1 : 0,
