@@ -1,10 +1,11 @@
 package io.tallyward.engine.count;
 
+import static io.tallyward.engine.shard.Packing.pack;
+
 import io.tallyward.engine.event.RejectReason;
 import io.tallyward.engine.plan.PlanChangedException;
 import io.tallyward.engine.shard.StateChange;
 import java.io.ByteArrayInputStream;
-import java.io.ByteArrayOutputStream;
 import java.io.DataInputStream;
 import java.io.DataOutputStream;
 import java.io.IOException;
@@ -51,22 +52,6 @@ final class CountState {
     CountState(int partitions, long keyFingerprint) {
         this.partitions = partitions;
         this.keyFingerprint = keyFingerprint;
-    }
-
-    /** Something written field by field. */
-    @FunctionalInterface
-    interface Body {
-        void writeTo(DataOutputStream out) throws IOException;
-    }
-
-    static byte[] pack(Body body) {
-        ByteArrayOutputStream bytes = new ByteArrayOutputStream();
-        try (DataOutputStream out = new DataOutputStream(bytes)) {
-            body.writeTo(out);
-        } catch (IOException e) {
-            throw new UncheckedIOException("a write to memory failed", e);
-        }
-        return bytes.toByteArray();
     }
 
     StateChange shard(Watermarks watermarks, Map<RejectReason, Long> rejected) {

@@ -1,14 +1,14 @@
 package io.tallyward.engine.decide;
 
+import static io.tallyward.engine.shard.Packing.pack;
+
 import io.tallyward.engine.count.TallyUpdate;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.shard.StateChange;
 import java.io.ByteArrayInputStream;
-import java.io.ByteArrayOutputStream;
 import java.io.DataInputStream;
-import java.io.DataOutputStream;
 import java.io.IOException;
 import java.io.UncheckedIOException;
 import java.util.ArrayList;
@@ -43,12 +43,6 @@ public final class DecideShard {
      */
     public DecideShard(Collection<Plan> plans) {
         plans.forEach(plan -> this.plans.put(plan.experiment(), plan));
-    }
-
-    /** Something written field by field. */
-    @FunctionalInterface
-    private interface Body {
-        void writeTo(DataOutputStream out) throws IOException;
     }
 
     /**
@@ -155,16 +149,6 @@ public final class DecideShard {
             out.writeUTF(look.comparison().variant());
             out.writeInt(look.look().number());
         });
-    }
-
-    private static byte[] pack(Body body) {
-        ByteArrayOutputStream bytes = new ByteArrayOutputStream();
-        try (DataOutputStream out = new DataOutputStream(bytes)) {
-            body.writeTo(out);
-        } catch (IOException e) {
-            throw new UncheckedIOException("a write to memory failed", e);
-        }
-        return bytes.toByteArray();
     }
 
     /** Where every experiment stands that this shard has heard of, by name. */
