@@ -1,9 +1,9 @@
 package io.tallyward.service;
 
 import io.tallyward.connector.kafka.InternalTopics;
-import io.tallyward.engine.count.UnitKeyChangedException;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanChangedException;
+import io.tallyward.engine.shard.RefusedStateException;
 import io.tallyward.service.command.CommandLineFactory;
 import io.tallyward.service.command.ProcessStop;
 import io.tallyward.service.command.SurroundingsException;
@@ -53,15 +53,14 @@ public final class Tallyward {
         }
     }
 
-    /** A changed plan or unit key is a mistake in the input; whatever else a shard refuses lies in the surroundings. */
+    /** State that does not go with the settings is a mistake in the input; whatever else fails lies in the surroundings. */
     private static Exception explain(ServiceConfig config, String group, Throwable failure) {
         for (Throwable cause = failure; cause != null; cause = cause.getCause()) {
-            if (cause instanceof PlanChangedException) {
-                return new BadInputException(
-                        List.of(Problem.of(config.plans().toString(), cause.getMessage(), "", "")));
-            }
-            if (cause instanceof UnitKeyChangedException) {
-                return new BadInputException(List.of(Problem.of(config.file().toString(), cause.getMessage(), "", "")));
+            if (cause instanceof RefusedStateException) {
+                String where = cause instanceof PlanChangedException
+                        ? config.plans().toString()
+                        : config.file().toString();
+                return new BadInputException(List.of(Problem.of(where, cause.getMessage(), "", "")));
             }
         }
         return new SurroundingsException("The service stops because " + group

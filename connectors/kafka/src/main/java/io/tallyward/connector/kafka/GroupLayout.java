@@ -44,8 +44,8 @@ final class GroupLayout {
     private static int agreed(ShardGroup group, Map<String, Integer> found) {
         for (String topic : group.inputTopics()) {
             if (!found.containsKey(topic)) {
-                throw new BrokerException("input topic " + topic + " does not exist on " + group.broker()
-                        + ": create it or correct input.topics");
+                throw new BrokerException(
+                        "input topic " + topic + " does not exist on " + group.broker() + ": " + group.missingInput());
             }
         }
         String first = group.inputTopics().get(0);

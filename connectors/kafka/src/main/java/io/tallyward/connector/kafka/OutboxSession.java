@@ -44,7 +44,7 @@ final class OutboxSession implements ConsumerRebalanceListener {
         try {
             if (!cluster.partitions(List.of(source.topic())).containsKey(source.topic())) {
                 throw new BrokerException("notices topic " + source.topic() + " does not exist on " + source.broker()
-                        + ": create it, or start the part of the service that does");
+                        + ": the deciding part of the service creates it; nothing to do here");
             }
             this.consumer = clients.notices();
         } catch (RuntimeException failure) {

@@ -15,6 +15,7 @@ import java.util.function.IntFunction;
  * @param instance tells this instance from the others running under the same group; part of its transactional ids, so that
  *     two instances alive at once must never share it
  * @param inputTopics what the shards read; all must have the same number of partitions
+ * @param missingInput what to do about an input topic that does not exist, for messages
  * @param stateTopic the compacted topic in which shard n keeps its state in partition n
  * @param internalTopics given the number of input partitions, the topics to be there before the first shard starts; missing
  *     ones are created
@@ -29,6 +30,7 @@ public record ShardGroup(
         String id,
         String instance,
         List<String> inputTopics,
+        String missingInput,
         String stateTopic,
         IntFunction<List<InternalTopic>> internalTopics,
         ShardFactory shards,
@@ -45,6 +47,7 @@ public record ShardGroup(
         Objects.requireNonNull(id, "id");
         Objects.requireNonNull(instance, "instance");
         inputTopics = List.copyOf(inputTopics);
+        Objects.requireNonNull(missingInput, "missingInput");
         Objects.requireNonNull(stateTopic, "stateTopic");
         Objects.requireNonNull(internalTopics, "internalTopics");
         Objects.requireNonNull(shards, "shards");
@@ -87,6 +90,7 @@ public record ShardGroup(
         private final Map<String, String> clientProperties = new HashMap<>();
         private String instance = UUID.randomUUID().toString();
         private List<String> inputTopics = List.of();
+        private String missingInput = "create it or correct input.topics";
         private String stateTopic;
         private IntFunction<List<InternalTopic>> internalTopics = partitions -> List.of();
         private ShardFactory shards;
@@ -105,6 +109,12 @@ public record ShardGroup(
 
         public Builder inputTopics(List<String> topics) {
             this.inputTopics = topics;
+            return this;
+        }
+
+        /** What to do about an input topic that does not exist; as it stands, create it or correct the configuration. */
+        public Builder missingInput(String advice) {
+            this.missingInput = advice;
             return this;
         }
 
@@ -153,6 +163,7 @@ public record ShardGroup(
                     id,
                     instance,
                     inputTopics,
+                    missingInput,
                     stateTopic,
                     internalTopics,
                     shards,

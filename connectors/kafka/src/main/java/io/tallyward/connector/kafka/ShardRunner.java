@@ -22,6 +22,9 @@ public final class ShardRunner implements AutoCloseable {
     /** How long {@link #close()} waits for the last commits before it interrupts the workers. */
     private static final Duration STOP_PATIENCE = Duration.ofSeconds(10);
 
+    /** Without a partition there is nothing to commit; only a question to an absent broker may be under way. */
+    private static final Duration NOTHING_TO_COMMIT_PATIENCE = Duration.ofSeconds(1);
+
     private static final Duration INTERRUPT_PATIENCE = Duration.ofSeconds(2);
 
     private final ShardGroup group;
@@ -69,17 +72,24 @@ public final class ShardRunner implements AutoCloseable {
      */
     @Override
     public void close() {
+        boolean hosting = !status().partitions().isEmpty();
         workers.forEach(ShardWorker::stop);
-        if (!ended(STOP_PATIENCE)) {
-            LOG.warn(
-                    "{}: the broker at {} did not take the last commit within {} s: what was not committed is repeated"
-                            + " at the next start",
-                    group.id(),
-                    group.broker(),
-                    STOP_PATIENCE.toSeconds());
+        if (!ended(hosting ? STOP_PATIENCE : NOTHING_TO_COMMIT_PATIENCE)) {
+            if (hosting) {
+                sayUncommitted();
+            }
             threads.forEach(Thread::interrupt);
             ended(INTERRUPT_PATIENCE);
         }
+    }
+
+    private void sayUncommitted() {
+        LOG.warn(
+                "{}: the broker at {} did not take the last commit within {} s: what was not committed is repeated"
+                        + " at the next start",
+                group.id(),
+                group.broker(),
+                STOP_PATIENCE.toSeconds());
     }
 
     private boolean ended(Duration patience) {

@@ -1,5 +1,6 @@
 package io.tallyward.connector.kafka;
 
+import io.tallyward.engine.shard.RefusedStateException;
 import java.time.Duration;
 import java.time.InstantSource;
 import java.util.concurrent.CountDownLatch;
@@ -178,7 +179,13 @@ final class ShardWorker implements Runnable {
     }
 
     private void fail(Throwable broken) {
-        LOG.error("{}: worker {} stops for good, nothing of its last step was committed", group.id(), number, broken);
+        Throwable root = root(broken);
+        if (root instanceof RefusedStateException) {
+            LOG.error("{}: stops for good, nothing was committed: {}", group.id(), root.getMessage());
+        } else {
+            LOG.error(
+                    "{}: worker {} stops for good, nothing of its last step was committed", group.id(), number, broken);
+        }
         try {
             abandon();
         } catch (RuntimeException alsoBroken) {
@@ -187,6 +194,14 @@ final class ShardWorker implements Runnable {
         board.error(broken.getMessage() == null ? broken.toString() : broken.getMessage());
         board.state(WorkerState.FAILED);
         listener.onFatal(group.id(), broken);
+    }
+
+    private static Throwable root(Throwable failure) {
+        Throwable root = failure;
+        while (root.getCause() != null) {
+            root = root.getCause();
+        }
+        return root;
     }
 
     private boolean stopping() {

@@ -1,9 +1,11 @@
 package io.tallyward.engine.count;
 
+import io.tallyward.engine.shard.RefusedStateException;
+
 /**
  * The key of the unit hash is not the one under which counting began. Every unit would look new and be counted once more.
  */
-public final class UnitKeyChangedException extends IllegalStateException {
+public final class UnitKeyChangedException extends RefusedStateException {
 
     private static final long serialVersionUID = 1L;
 

@@ -239,9 +239,13 @@ final class ChallengerTest {
         }
     }
 
-    /** The run ended without a further look; returns the verdict that follows, told or held. */
+    /** The run ended without a further look. */
     void exhaust(boolean sound) {
-        settle(Verdict.EXHAUSTED, sound);
+        if (sound) {
+            verdict = Verdict.EXHAUSTED;
+        } else {
+            held = Verdict.EXHAUSTED;
+        }
     }
 
     /** Trust has returned: a verdict that waited for it is told now. Returns whether there was one. */

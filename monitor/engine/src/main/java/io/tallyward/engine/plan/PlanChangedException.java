@@ -1,7 +1,9 @@
 package io.tallyward.engine.plan;
 
+import io.tallyward.engine.shard.RefusedStateException;
+
 /** A plan differs from the one under which its experiment has been counted or decided so far. */
-public final class PlanChangedException extends IllegalStateException {
+public final class PlanChangedException extends RefusedStateException {
 
     private static final long serialVersionUID = 1L;
 

@@ -39,7 +39,7 @@ final class CountHost implements HostedShard {
     private final List<String> topics;
     private final TopicNames names;
     private final JsonEventReader reader;
-    private final RejectLog rejectLog;
+    private final TrafficLog trafficLog;
     private final StatusBoard board;
     private final KeyCheck keyCheck;
 
@@ -53,14 +53,14 @@ final class CountHost implements HostedShard {
             List<String> topics,
             TopicNames names,
             JsonEventReader reader,
-            RejectLog rejectLog,
+            TrafficLog trafficLog,
             StatusBoard board) {
         this.shard = shard;
         this.partition = partition;
         this.topics = topics;
         this.names = names;
         this.reader = reader;
-        this.rejectLog = rejectLog;
+        this.trafficLog = trafficLog;
         this.board = board;
         keyCheck = new KeyCheck(partition, partitions);
     }
@@ -85,24 +85,13 @@ final class CountHost implements HostedShard {
         if (rejected.isPresent()) {
             reject(record, rejected.get(), RejectDetail.of(rejected.get(), event, record.timestamp()));
         } else if (keyCheck.observe(record.key(), event.unit())) {
-            sayKeying(record.topic());
-        }
-    }
-
-    private void sayKeying(String topic) {
-        if (keyCheck.unkeyed()) {
-            LOG.error(
-                    "Topic {} is not keyed by unit: events of one unit are spread over its partitions, so that units are"
-                            + " counted more than once and clicks miss their views. Key the topic by unit.",
-                    topic);
-        } else {
-            LOG.info("Topic {} is keyed by unit again.", topic);
+            trafficLog.keying(record.topic(), !keyCheck.unkeyed());
         }
     }
 
     private void reject(ConsumerRecord<byte[], byte[]> record, RejectReason reason, String detail) {
         String origin = record.topic() + "-" + record.partition() + "@" + record.offset();
-        rejectLog.rejected(origin, reason, detail);
+        trafficLog.rejected(origin, reason, detail);
         Map<String, byte[]> headers = new TreeMap<>();
         headers.put("tallyward-reason", utf8(reason.code()));
         headers.put("tallyward-detail", utf8(detail));
@@ -154,6 +143,7 @@ final class CountHost implements HostedShard {
         if (published) {
             board.publishCounts(partition, report());
         } else {
+            LOG.info("Counting partition {}", partition);
             board.adoptCounts(partition, report());
             published = true;
         }
@@ -161,6 +151,7 @@ final class CountHost implements HostedShard {
 
     @Override
     public void released() {
+        LOG.info("No longer counting partition {}", partition);
         board.withdrawCount(partition);
     }
 

@@ -135,9 +135,21 @@ final class NoticeDelivery implements AutoCloseable {
                     "notices",
                     state,
                     state == State.OK
-                            ? status.pending() + " notices wait to be delivered."
+                            ? delivering(status.pending())
                             : status.lastError().orElse("Joining the group of the outbox."));
         };
+    }
+
+    /** A receiver that is away is said, but is no reason to call this instance down: others would fare no better. */
+    private String delivering(int pending) {
+        String waiting = pending == 1 ? "1 notice waits to be delivered" : pending + " notices wait to be delivered";
+        DeliveryStatus deliveries = queue.status();
+        if (deliveries.disabled()) {
+            return waiting + "; the receiver has asked for nothing more: " + deliveries.lastError() + ".";
+        }
+        return deliveries.failing()
+                ? waiting + "; the last attempt failed: " + deliveries.lastError() + "."
+                : waiting + ".";
     }
 
     private static State state(WorkerState reader) {

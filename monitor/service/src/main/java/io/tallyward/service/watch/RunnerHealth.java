@@ -40,7 +40,12 @@ final class RunnerHealth implements HealthSource {
         if (states.contains(WorkerState.STARTING)) {
             return new Health(name, State.STARTING, "Joining the group " + now.group() + ".");
         }
-        return new Health(name, State.OK, "Hosting partitions " + now.partitions() + ".");
+        return new Health(
+                name,
+                State.OK,
+                now.partitions().isEmpty()
+                        ? "Standing by: the group's partitions are all with other members."
+                        : "Hosting partitions " + now.partitions() + ".");
     }
 
     private static String lastError(RunnerStatus status, String otherwise) {

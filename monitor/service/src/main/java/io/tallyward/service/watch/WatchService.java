@@ -101,8 +101,8 @@ public final class WatchService implements AutoCloseable {
     public static WatchService start(ServiceConfig config, List<Plan> plans, String version, RunnerListener listener) {
         WatchService service = new WatchService(config, plans, version, listener);
         LOG.info(
-                "Watching {} experiments on {} at {}; page, metrics and health at {}",
-                plans.size(),
+                "Watching {} on {} at {}; page, metrics and health at {}",
+                plans.stream().map(Plan::experiment).toList(),
                 config.input().topics(),
                 config.kafka().bootstrapServers(),
                 service.server.address());
@@ -123,7 +123,7 @@ public final class WatchService implements AutoCloseable {
         // State tells topics apart by their place in this list: another order in the configuration must not mix them
         // up.
         List<String> topics = config.input().topics().stream().sorted().toList();
-        RejectLog rejectLog = new RejectLog(names.rejects());
+        TrafficLog trafficLog = new TrafficLog(names.rejects());
         return group(names.countGroup())
                 .inputTopics(topics)
                 .stateTopic(names.countState())
@@ -137,7 +137,7 @@ public final class WatchService implements AutoCloseable {
                         topics,
                         names,
                         reader,
-                        rejectLog,
+                        trafficLog,
                         board))
                 .build();
     }
@@ -145,6 +145,7 @@ public final class WatchService implements AutoCloseable {
     private ShardGroup decideGroup() {
         return group(names.decideGroup())
                 .inputTopics(List.of(names.tallies()))
+                .missingInput("counting creates it once it has found its own input topics; nothing to do here")
                 .stateTopic(names.decideState())
                 .internalTopics(partitions -> names.forDeciding())
                 .shards((partition, partitions) -> new DecideHost(decideShard(partition), partition, names, board))
