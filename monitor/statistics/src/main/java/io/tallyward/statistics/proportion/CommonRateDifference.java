@@ -62,6 +62,7 @@ public record CommonRateDifference(double value, double satoVariance, double gre
             return Optional.empty();
         }
         double value = StrictMath.max(-1, StrictMath.min(1, excess / weight));
+        // never negative but for rounding, as where all of the variant succeed and none of the control
         double sato = StrictMath.max(0, value * p + q);
         return Optional.of(new CommonRateDifference(value, sato / weight / weight, within / weight / weight));
     }

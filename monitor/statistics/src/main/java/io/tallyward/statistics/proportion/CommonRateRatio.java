@@ -66,8 +66,9 @@ public record CommonRateRatio(double value, OptionalDouble logVariance) {
             throw new IllegalArgumentException("value: " + value + " (expected: 0 or more, finite)");
         }
         double variance = logVariance.orElse(0);
-        if (!(variance >= 0 && variance < Double.POSITIVE_INFINITY)) {
-            throw new IllegalArgumentException("logVariance: " + variance + " (expected: 0 or more, finite)");
+        if (!(variance >= 0 && variance < Double.POSITIVE_INFINITY) || logVariance.isPresent() && value == 0) {
+            throw new IllegalArgumentException(
+                    "logVariance: " + variance + " (expected: 0 or more, finite; none for a value of 0)");
         }
     }
 }

@@ -29,7 +29,10 @@ public record Interval(double lower, double upper) {
         return Normal.upperQuantile(0.5 * (1 - confidence));
     }
 
-    /** The interval of a positive quantity from the standard error of its natural logarithm. */
+    /**
+     * The interval of a positive quantity from the standard error of its natural logarithm; from 0 to infinity where the
+     * ends are beyond a double.
+     */
     static Interval aroundLogarithm(double value, double standardError, double confidence) {
         double factor = StrictMath.exp(deviations(confidence) * standardError);
         return new Interval(value / factor, value * factor);

@@ -19,8 +19,9 @@ public record RateRatio(double value, OptionalDouble logStandardError) {
             throw new IllegalArgumentException("value: " + value + " (expected: 0 or more, finite)");
         }
         double error = logStandardError.orElse(0);
-        if (!(error >= 0 && error < Double.POSITIVE_INFINITY)) {
-            throw new IllegalArgumentException("logStandardError: " + error + " (expected: 0 or more, finite)");
+        if (!(error >= 0 && error < Double.POSITIVE_INFINITY) || logStandardError.isPresent() && value == 0) {
+            throw new IllegalArgumentException(
+                    "logStandardError: " + error + " (expected: 0 or more, finite; none for a value of 0)");
         }
     }
 

@@ -82,7 +82,7 @@ class DunnettTest {
         }
     }
 
-    /** Two-sided for two equicorrelated variants by simulation: a different way altogether, if a coarse one. */
+    /** Two variants of unequal size by simulation: a different way altogether, if a coarse one. */
     @Test
     void agreesWithSimulation() {
         Random random = new Random(SEED);
