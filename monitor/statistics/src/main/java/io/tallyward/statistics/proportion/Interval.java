@@ -6,7 +6,7 @@ import io.tallyward.statistics.distribution.Normal;
  * A confidence interval, both ends included.
  *
  * @param lower at most {@code upper}
- * @param upper at least {@code lower}
+ * @param upper at least {@code lower}; positive infinity for a ratio of which the counts say next to nothing
  */
 public record Interval(double lower, double upper) {
 
