@@ -49,7 +49,7 @@ public record StratifiedComparison(double z, double difference, double informati
     }
 
     /** {@code a n0 - b n1}, exact until it is rounded once: the products cancel to a small part of themselves. */
-    private static double crossDifference(Stratum stratum) {
+    static double crossDifference(Stratum stratum) {
         BigInteger own = BigInteger.valueOf(stratum.successes()).multiply(BigInteger.valueOf(stratum.controlTrials()));
         BigInteger other =
                 BigInteger.valueOf(stratum.controlSuccesses()).multiply(BigInteger.valueOf(stratum.trials()));

@@ -64,7 +64,7 @@ public final class SequentialSplitTest {
     }
 
     /** {@code h(d)}; its closed form takes {@code 1 + d} apart, which may be far smaller than the rounding of d. */
-    private static double excess(double d, double onePlusD) {
+    static double excess(double d, double onePlusD) {
         if (StrictMath.abs(d) > NEAR) {
             return onePlusD * StrictMath.log(onePlusD) - d;
         }
