@@ -88,7 +88,8 @@ public enum ClassicalConstants {
 
     /** The upper boundary of each look for z; the lower ones are the same with the sign reversed. Ranges as above. */
     public double[] boundaries(int looks, double alpha) {
-        return boundaries(equalFractions(looks), constant(looks, alpha));
+        double constant = constant(looks, alpha);
+        return boundaries(equalFractions(looks), constant);
     }
 
     /** The looks, with the error that these boundaries spend in each tail, accurate to 1e-12. Ranges as above. */
@@ -113,6 +114,9 @@ public enum ClassicalConstants {
      */
     public double drift(int looks, double alpha, double power) {
         double[] upper = boundaries(looks, alpha);
+        if (!(power > alpha / 2 && power < 1)) {
+            throw new IllegalArgumentException("power: " + power + " (expected: in (" + alpha / 2 + ", 1))");
+        }
         return DriftForPower.of(equalFractions(looks), upper, negated(upper), power);
     }
 
