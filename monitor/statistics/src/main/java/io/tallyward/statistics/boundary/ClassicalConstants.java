@@ -17,7 +17,7 @@ public enum ClassicalConstants {
 
     /**
      * The same boundary at every look, {@code C_P(K, alpha)}: Pocock, "Group sequential methods in the design and analysis
-     * of clinical trials", Biometrika 64 (1977) 191-199. Stops early most easily; the last boundary is far above that of
+     * of clinical trials", Biometrika 64 (1977) 191-199, recalled. Stops early most easily; the last boundary is far above that of
      * a single test.
      */
     POCOCK {
@@ -29,7 +29,7 @@ public enum ClassicalConstants {
 
     /**
      * {@code C_B(K, alpha) sqrt(K / k)} at look k: O'Brien and Fleming, "A multiple testing procedure for clinical trials",
-     * Biometrics 35 (1979) 549-556. Hardly ever stops at the first looks; the last boundary is close to that of a single
+     * Biometrics 35 (1979) 549-556, recalled. Hardly ever stops at the first looks; the last boundary is close to that of a single
      * test.
      */
     OBRIEN_FLEMING {

@@ -4,6 +4,7 @@ import io.tallyward.statistics.boundary.ExitProbabilities;
 import io.tallyward.statistics.boundary.Look;
 import io.tallyward.statistics.distribution.Normal;
 import java.util.List;
+import java.util.OptionalDouble;
 import org.apache.commons.math3.analysis.UnivariateFunction;
 import org.apache.commons.math3.analysis.solvers.BrentSolver;
 
@@ -26,7 +27,7 @@ import org.apache.commons.math3.analysis.solvers.BrentSolver;
  *
  * <p>Accuracy: probabilities 1e-12 absolute; drifts 1e-11 in units of the standard error of the stop, or 1e-14 of
  * themselves if that is more. The p-values take one pass over the looks, each end of an interval and the estimate some
- * eight more: milliseconds in all for a handful of looks, half a second for 60, two for 168.
+ * four more: milliseconds in all for a handful of looks, a quarter of a second for 60, one and a half for 168.
  *
  * <p>Immutable; thread-safe.
  */
@@ -44,6 +45,11 @@ public final class StagewiseInference {
     private static final double RELATIVE_ACCURACY = 1e-15;
 
     private static final int MOST_EVALUATIONS = 5000;
+
+    private static final int MOST_SECANT_STEPS = 12;
+
+    /** The error of a secant step is about the product of the last two, so one after a step this small has 1e-12. */
+    private static final double CLOSE = 1e-8;
 
     /** The estimate is usually within a standard error of the naive one; after an odd stop it may be far away. */
     private static final double WIDENING = 4;
@@ -182,12 +188,38 @@ public final class StagewiseInference {
             return start;
         }
         UnivariateFunction surplus = drift -> quantile(drift) - quantile;
-        double near = start;
-        double far = start;
         double atStart = surplus.value(start);
         if (atStart == 0) {
             return start;
         }
+        OptionalDouble quick = secant(surplus, start, atStart);
+        return quick.isPresent() ? quick.getAsDouble() : bracketed(surplus, start, atStart);
+    }
+
+    /** Four steps are usual. Gives up where the line bends too much, as after a stop that hardly any drift explains. */
+    private OptionalDouble secant(UnivariateFunction surplus, double start, double atStart) {
+        double before = start;
+        double atBefore = atStart;
+        double now = start - atStart / root;
+        for (int i = 0; i < MOST_SECANT_STEPS; i++) {
+            double atNow = surplus.value(now);
+            double move = -atNow * (now - before) / (atNow - atBefore);
+            if (StrictMath.abs(atNow) < CLOSE && StrictMath.abs(move) * root < CLOSE) {
+                return OptionalDouble.of(now + move);
+            }
+            if (!(StrictMath.abs(move) * root < 1)) {
+                break;
+            }
+            before = now;
+            atBefore = atNow;
+            now += move;
+        }
+        return OptionalDouble.empty();
+    }
+
+    private double bracketed(UnivariateFunction surplus, double start, double atStart) {
+        double near = start;
+        double far = start;
         double step = (atStart < 0 ? 1 : -1) / root;
         do {
             near = far;

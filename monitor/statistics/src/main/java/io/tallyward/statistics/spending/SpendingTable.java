@@ -6,7 +6,7 @@ import java.util.List;
 /**
  * Spending given point by point, linear in between: with the points {@code (f_i, s_i)} around the fraction,
  * {@code level (s_i + (s_{i+1} - s_i) (f - f_i) / (f_{i+1} - f_i))}. Any function that never falls is a spending function
- * (Lan and DeMets 1983, section 2), so the shape is the owner's choice.
+ * (Lan and DeMets 1983), so the shape is the owner's choice.
  *
  * @param fractions strictly ascending, the first 0 and the last 1
  * @param shares share of the level spent by each fraction, never falling, the first 0 and the last 1
