@@ -1,287 +1,288 @@
 package io.tallyward.statistics;
 
+import static org.junit.jupiter.api.Assertions.assertFalse;
 import static org.junit.jupiter.api.Assertions.assertTrue;
-import static org.junit.jupiter.api.Assertions.fail;
 
-import io.tallyward.statistics.multiplicity.AdjustedProbability;
-import io.tallyward.statistics.multiplicity.AlphaGraph;
-import io.tallyward.statistics.multiplicity.Dunnett;
-import io.tallyward.statistics.proportion.CommonOddsRatio;
-import io.tallyward.statistics.proportion.CommonRateDifference;
-import io.tallyward.statistics.proportion.CommonRateRatio;
-import io.tallyward.statistics.proportion.Interval;
-import io.tallyward.statistics.proportion.MantelHaenszelTest;
-import io.tallyward.statistics.proportion.RateDifference;
-import io.tallyward.statistics.proportion.RateRatio;
-import io.tallyward.statistics.proportion.ScoreInterval;
-import io.tallyward.statistics.proportion.Stratum;
-import io.tallyward.statistics.proportion.ZStatistic;
-import io.tallyward.statistics.ratio.RatioComparison;
-import io.tallyward.statistics.ratio.RatioEstimate;
-import io.tallyward.statistics.ratio.UnitSums;
-import io.tallyward.statistics.split.PearsonSplit;
-import io.tallyward.statistics.split.SplitChangePoint;
-import io.tallyward.statistics.split.WorstSegment;
-import java.lang.reflect.InvocationTargetException;
-import java.lang.reflect.Method;
-import java.lang.reflect.Modifier;
-import java.math.BigInteger;
+import io.tallyward.statistics.boundary.BoundarySequence;
+import io.tallyward.statistics.boundary.ClassicalConstants;
+import io.tallyward.statistics.boundary.DriftForPower;
+import io.tallyward.statistics.boundary.ExitProbabilities;
+import io.tallyward.statistics.boundary.Look;
+import io.tallyward.statistics.inference.ConditionalPower;
+import io.tallyward.statistics.inference.EffectScale;
+import io.tallyward.statistics.inference.Estimate;
+import io.tallyward.statistics.inference.Interval;
+import io.tallyward.statistics.inference.LiftScale;
+import io.tallyward.statistics.inference.RepeatedInterval;
+import io.tallyward.statistics.inference.StagewiseInference;
+import io.tallyward.statistics.spending.SpendingFunction;
 import java.util.ArrayList;
 import java.util.Arrays;
-import java.util.Collection;
-import java.util.Collections;
 import java.util.List;
-import java.util.Map;
-import java.util.Optional;
-import java.util.OptionalDouble;
 import java.util.Random;
-import java.util.Set;
 import java.util.function.Supplier;
+import java.util.regex.Pattern;
 import org.junit.jupiter.api.Test;
 
 /**
- * Whatever comes in, a number goes out, or an explicit absence, or an IllegalArgumentException that names the value and
- * the accepted range. Of a record that goes out, every public method without parameters is asked, too.
+ * Whatever is passed, there is an answer without NaN or an IllegalArgumentException that names the argument, its value and
+ * what was expected. Arguments are drawn, by fixed seeds, from what breaks formulas and from what is usual.
  */
 class HostileArgumentsTest {
 
-    private static final long SEED = 53;
+    private static final double INFINITE = Double.POSITIVE_INFINITY;
 
-    private static final double[] REALS = {
+    private static final double[] HOSTILE = {
         Double.NaN,
-        Double.NEGATIVE_INFINITY,
-        -Double.MAX_VALUE,
-        -1e9,
-        -1,
-        -Double.MIN_VALUE,
-        -0.0,
-        0,
-        Double.MIN_VALUE,
-        1e-300,
-        1e-201,
-        1e-16,
-        0.05,
-        0.5,
-        0.95,
-        Math.nextDown(1.0),
-        1,
-        Math.nextUp(1.0),
-        2,
-        39.9,
-        40.1,
-        1e9,
-        1e160,
+        INFINITE,
+        -INFINITE,
         Double.MAX_VALUE,
-        Double.POSITIVE_INFINITY
+        -Double.MAX_VALUE,
+        Double.MIN_VALUE,
+        1e300,
+        -1e300,
+        1e-300,
+        1e150,
+        1e-150,
+        -1e6,
+        1e6,
+        1e7,
+        -0.0,
+        0
     };
+    private static final double[] INFORMATION = {1e-100, 1e-12, 0.01, 0.2, 0.5, 0.55, 0.9, 1, 1.3, 1e6};
+    private static final double[] STATISTICS = {-1e6, -50, -3, -0.5, 0, 0.7, 2, 2.9, 8, 39, 1e4, 1e6};
+    private static final double[] PROBABILITIES = {1e-300, 1e-100, 1e-12, 0.001, 0.025, 0.2, 0.5, 0.9, 1 - 1e-16, 1};
 
-    private static final long[] COUNTS = {
-        Long.MIN_VALUE, -1, 0, 1, 2, 7, 1L << 31, 1L << 53, (1L << 53) + 1, Long.MAX_VALUE
-    };
+    private static final Pattern MESSAGE = Pattern.compile(".+: .+ \\(expected: .+\\)");
 
-    private static final Stratum FULL = new Stratum(3, 10, 4, 12);
+    private final Random random = new Random(20);
 
     @Test
-    void proportionsOfHostileCounts() {
-        List<Stratum> strata = new ArrayList<>();
-        for (long a : COUNTS) {
-            for (long n1 : COUNTS) {
-                for (long b : COUNTS) {
-                    for (long n0 : COUNTS) {
-                        ask(() -> new Stratum(a, n1, b, n0)).ifPresent(strata::add);
-                    }
-                }
-                ask(() -> ScoreInterval.wilson(a, n1, 0.95));
-            }
-        }
-        assertTrue(strata.size() > 100, "some are in range: " + strata.size());
-        for (Stratum stratum : strata) {
-            ask(() -> ZStatistic.pooled(stratum));
-            ask(() -> RateDifference.of(stratum));
-            ask(() -> RateRatio.of(stratum).flatMap(ratio -> ratio.interval(0.95)));
-            ask(() -> ScoreInterval.newcombe(stratum, 0.95));
-            ask(() -> ScoreInterval.miettinenNurminen(stratum, 0.95));
-        }
-        Random random = new Random(SEED);
-        for (int run = 0; run < 4_000; run++) {
-            List<Stratum> some = new ArrayList<>();
-            for (int i = random.nextInt(4); i > 0; i--) {
-                some.add(strata.get(random.nextInt(strata.size())));
-            }
-            ask(() -> MantelHaenszelTest.of(some));
-            ask(() -> CommonOddsRatio.of(some).flatMap(ratio -> ratio.interval(0.95)));
-            ask(() -> CommonRateRatio.of(some).flatMap(ratio -> ratio.interval(0.95)));
-            ask(() -> CommonRateDifference.of(some).map(difference -> difference.satoInterval(0.95)));
-            ask(() -> CommonRateDifference.of(some));
-        }
-    }
-
-    @Test
-    void proportionsOfHostileReals() {
-        for (double x : REALS) {
-            ask(() -> ScoreInterval.wilson(3, 10, x));
-            ask(() -> ScoreInterval.wilson(0, 0, x));
-            ask(() -> ScoreInterval.newcombe(FULL, x));
-            ask(() -> ScoreInterval.miettinenNurminen(FULL, x));
-            ask(() -> RateDifference.of(FULL).orElseThrow().wald(x));
-            ask(() -> RateRatio.of(FULL).orElseThrow().interval(x));
-            ask(() -> CommonOddsRatio.of(List.of(FULL)).orElseThrow().interval(x));
-            ask(() -> CommonRateRatio.of(List.of(FULL)).orElseThrow().interval(x));
-            ask(() -> CommonRateDifference.of(List.of(FULL)).orElseThrow().satoInterval(x));
-            ask(() -> CommonRateDifference.of(List.of(FULL)).orElseThrow().greenlandRobinsInterval(x));
-            ask(() -> new ZStatistic(x));
-            for (double y : REALS) {
-                ask(() -> new RateDifference(x, y));
-                ask(() -> new RateRatio(x, OptionalDouble.of(y)));
-                ask(() -> new MantelHaenszelTest(x, y));
-                ask(() -> new CommonOddsRatio(x, OptionalDouble.of(y)));
-                ask(() -> new CommonRateRatio(x, OptionalDouble.of(y)));
-                ask(() -> new CommonRateDifference(0.5, x, y));
+    void stagewiseInferenceAnswersOrSaysWhy() {
+        for (int run = 0; run < 600; run++) {
+            double z = from(STATISTICS);
+            double level = from(PROBABILITIES);
+            double drift = from(STATISTICS);
+            Answers answers = new Answers("run " + run + ", z " + z + ", level " + level + ", drift " + drift);
+            List<Look> looks = answers.take(() -> looks(answers));
+            if (looks != null) {
+                answers.take(() -> report(answers, StagewiseInference.of(looks, z), level, drift));
+                answers.take(() -> answers.interval(RepeatedInterval.at(looks.get(looks.size() - 1), z, level)));
             }
         }
     }
 
+    private static Object report(Answers answers, StagewiseInference stop, double level, double drift) {
+        answers.probability(stop.pUpper());
+        answers.probability(stop.pLower());
+        answers.probability(stop.pReported(true));
+        answers.number(stop.naiveDrift());
+        answers.take(() -> answers.probability(stop.pUpper(drift)));
+        return answers.take(() -> {
+            Estimate estimate = stop.estimate(level);
+            answers.number(estimate.value());
+            return answers.interval(estimate.interval());
+        });
+    }
+
     @Test
-    void ratiosOfHostileUnits() {
-        List<UnitSums> sums = new ArrayList<>(List.of(UnitSums.NONE));
-        for (long x : COUNTS) {
-            for (long y : COUNTS) {
-                ask(() -> UnitSums.ofUnit(x, y)).ifPresent(sums::add);
-            }
+    void conditionalPowerAnswersOrSaysWhy() {
+        for (int run = 0; run < 4000; run++) {
+            double[] t = ascending(random.nextInt(5));
+            double[] upper = bounds(t.length);
+            double[] lower = bounds(t.length);
+            double now = from(INFORMATION);
+            double z = from(STATISTICS);
+            double drift = from(STATISTICS);
+            Answers answers = new Answers("run " + run + ", at " + now + ", " + z + ", under " + drift + ", "
+                    + Arrays.toString(t) + Arrays.toString(upper) + Arrays.toString(lower));
+            answers.take(() -> {
+                ConditionalPower power = ConditionalPower.of(now, z, t, upper, lower);
+                answers.number(power.trend());
+                answers.probability(power.withoutEffect());
+                answers.take(() -> answers.probability(power.underTrend()));
+                answers.take(() -> answers.probability(power.under(drift)));
+                return answers.take(() -> answers.probability(power.predictive()));
+            });
         }
-        Random random = new Random(SEED);
+    }
+
+    @Test
+    void boundariesAnswerOrSayWhy() {
         for (int run = 0; run < 1500; run++) {
-            UnitSums one = sums.get(random.nextInt(sums.size())).plus(sums.get(random.nextInt(sums.size())));
-            UnitSums two = sums.get(random.nextInt(sums.size())).plus(sums.get(random.nextInt(sums.size())));
-            ask(() -> RatioEstimate.of(one));
-            ask(() -> RatioComparison.of(one, two));
-            ask(() -> one.minus(two)).ifPresent(rest -> ask(() -> RatioEstimate.of(rest)));
-            BigInteger[] any = new BigInteger[5];
-            for (int i = 0; i < any.length; i++) {
-                any[i] = BigInteger.valueOf(COUNTS[random.nextInt(COUNTS.length)])
-                        .pow(1 + random.nextInt(9));
-            }
-            long units = COUNTS[random.nextInt(COUNTS.length)];
-            ask(() -> new UnitSums(units, any[0], any[1], any[2], any[3], any[4]))
-                    .ifPresent(found -> ask(() -> RatioComparison.of(found, one)));
-        }
-        for (double x : REALS) {
-            for (double y : REALS) {
-                ask(() -> new RatioEstimate(x, y)).ifPresent(estimate -> {
-                    // not products of sums, so what is derived from them may leave the range and must then say so
-                    ask(() -> new RatioComparison(estimate, new RatioEstimate(0.5, 0.1), estimate.ratio() - 0.5).z());
+            BoundarySequence sequence = new BoundarySequence();
+            Answers answers = new Answers("run " + run);
+            double[] t = ascending(4);
+            for (double at : t) {
+                double upper = from(PROBABILITIES);
+                double lower = random.nextBoolean() ? upper : from(PROBABILITIES);
+                answers.take(() -> {
+                    Look look = sequence.next(at, upper, lower);
+                    answers.number(look.upper());
+                    return answers.number(look.lower());
                 });
             }
+            double[] upper = bounds(t.length);
+            double[] lower = bounds(t.length);
+            double drift = 0.01 * from(STATISTICS);
+            answers.take(() -> {
+                ExitProbabilities exits = ExitProbabilities.of(t, upper, lower, drift);
+                answers.number(exits.expectedInformation());
+                answers.probability(Math.min(1, exits.totalUpper()));
+                return answers.probability(Math.min(1, exits.totalLower()));
+            });
+            double power = from(PROBABILITIES);
+            answers.take(() -> answers.number(DriftForPower.of(t, upper, lower, power)));
         }
     }
 
     @Test
-    void multiplicityOfHostileReals() {
-        for (double x : REALS) {
-            ask(() -> AdjustedProbability.BONFERRONI.of(x, 0.5));
-            ask(() -> AlphaGraph.holm(3).levels(x, Set.of(1)));
-            ask(() -> AlphaGraph.holm(2).rejections(0.05, x, 0));
-            ask(() -> Dunnett.of(1, 2, 3).oneSidedCriticalValue(x));
-            ask(() -> Dunnett.of(1, 2, 3).twoSidedCriticalValue(x));
-            ask(() -> Dunnett.of(1, 2, 3).oneSidedTail(x));
-            ask(() -> Dunnett.of(1, 2, 3).twoSidedTail(x));
-            for (double y : REALS) {
-                ask(() -> AdjustedProbability.HOLM.of(x, y));
-                ask(() -> Dunnett.of(x, y, y).oneSidedCriticalValue(0.05));
-                ask(() -> new AlphaGraph(List.of(x, y), List.of(List.of(0.0, y), List.of(x, 0.0)))
-                        .levels(0.05, Set.of(0)));
-            }
-        }
-        for (long count : COUNTS) {
-            int size = (int) Math.max(Integer.MIN_VALUE, Math.min(Integer.MAX_VALUE, count));
-            ask(() -> AlphaGraph.holm(size));
-            ask(() -> AlphaGraph.bonferroni(size));
-            ask(() -> AlphaGraph.fixedSequence(size));
-            ask(() -> AlphaGraph.holm(4).levels(0.05, Set.of(size)));
-        }
-        ask(() -> Dunnett.of(1, new double[0]));
-        ask(() -> AlphaGraph.holm(200).levels(0.05, Set.of(0, 199)));
-        ask(() -> new AlphaGraph(List.of(), List.of()));
-    }
-
-    @Test
-    void splitsOfHostileSharesAndCounts() {
-        Random random = new Random(SEED);
-        double[] even = {1, 1};
-        for (double x : REALS) {
-            for (double y : REALS) {
-                double[] shares = {x, y};
-                long[] counts = {COUNTS[3 + random.nextInt(5)], COUNTS[2 + random.nextInt(6)]};
-                ask(() -> PearsonSplit.of(shares, counts));
-                ask(() -> SplitChangePoint.of(shares, List.of(counts, new long[2])));
-                ask(() -> WorstSegment.of(shares, Map.of("s", counts)));
-            }
-            ask(() -> new SplitChangePoint(0, x, List.of()));
-            ask(() -> new WorstSegment("s", PearsonSplit.NONE, x, 1));
-        }
-        for (long a : COUNTS) {
-            for (long b : COUNTS) {
-                long[] counts = {a, b};
-                ask(() -> PearsonSplit.of(even, counts));
-                ask(() -> SplitChangePoint.of(even, List.of(counts, new long[] {5, 3}, counts)));
-                ask(() -> SplitChangePoint.of(new double[] {1e-90, 1}, List.of(counts, new long[] {0, 0})));
-                ask(() -> WorstSegment.of(even, Map.of("s", counts, "t", new long[] {b, a})));
-            }
-        }
-        ask(() -> SplitChangePoint.of(new double[0], List.of()));
-        ask(() -> WorstSegment.of(even, Collections.emptyMap()));
-    }
-
-    /** The answer, its parts looked at; empty if the arguments were refused in the proper form. */
-    private static <T> Optional<T> ask(Supplier<T> question) {
-        try {
-            T answer = question.get();
-            requireNumbers(answer, true);
-            return Optional.of(answer);
-        } catch (IllegalArgumentException e) {
-            assertTrue(
-                    e.getMessage() != null && e.getMessage().matches("(?s)[^:]+: .+ \\(expected: .+\\)"),
-                    "message: " + e.getMessage());
-            return Optional.empty();
-        }
-    }
-
-    private static void requireNumbers(Object answer, boolean follow) {
-        if (answer instanceof Double number) {
-            assertTrue(Double.isFinite(number), "a number");
-        } else if (answer instanceof double[] numbers) {
-            Arrays.stream(numbers).forEach(number -> assertTrue(Double.isFinite(number), "numbers"));
-        } else if (answer instanceof Optional<?> optional) {
-            optional.ifPresent(value -> requireNumbers(value, follow));
-        } else if (answer instanceof OptionalDouble optional) {
-            optional.ifPresent(value -> assertTrue(Double.isFinite(value), "a number"));
-        } else if (answer instanceof Collection<?> values) {
-            values.forEach(value -> requireNumbers(value, follow));
-        } else if (answer instanceof Map<?, ?> map) {
-            requireNumbers(map.values(), follow);
-        } else if (answer instanceof Interval interval) {
-            // a ratio of which next to nothing is known may reach beyond a double
-            assertTrue(Double.isFinite(interval.lower()) && !Double.isNaN(interval.upper()), interval.toString());
-        } else if (answer instanceof Record && follow) {
-            requireNumbersOf(answer);
-        }
-    }
-
-    private static void requireNumbersOf(Object value) {
-        for (Method method : value.getClass().getDeclaredMethods()) {
-            int modifiers = method.getModifiers();
-            if (method.getParameterCount() > 0 || !Modifier.isPublic(modifiers) || Modifier.isStatic(modifiers)) {
-                continue;
-            }
-            try {
-                requireNumbers(method.invoke(value), !method.getReturnType().equals(value.getClass()));
-            } catch (InvocationTargetException e) {
-                if (!(e.getCause() instanceof IllegalArgumentException)) {
-                    fail(method + " of " + value, e.getCause());
+    void classicalConstantsAnswerOrSayWhy() {
+        int[] counts = {Integer.MIN_VALUE, -1, 0, 1, 2, 7, 31, 201, Integer.MAX_VALUE};
+        double[] levels = {1e-300, 1e-12, 1e-9, 0.05, 0.5, 0.6, 1, Double.NaN, INFINITE, -1};
+        for (ClassicalConstants test : ClassicalConstants.values()) {
+            for (int looks : counts) {
+                for (double alpha : levels) {
+                    Answers answers = new Answers(test + ", " + looks + " looks at " + alpha);
+                    answers.take(() -> answers.number(test.constant(looks, alpha)));
+                    answers.take(() -> answers.number(test.drift(looks, alpha, from(PROBABILITIES))));
                 }
-            } catch (IllegalAccessException | AssertionError e) {
-                fail(method.getName() + " of " + value, e);
             }
+        }
+    }
+
+    @Test
+    void spendingAnswersOrSaysWhy() {
+        for (int run = 0; run < 5000; run++) {
+            double[] fractions = ascending(1 + random.nextInt(4));
+            double[] shares = new double[fractions.length];
+            Arrays.setAll(shares, i -> from(PROBABILITIES));
+            Arrays.sort(shares);
+            if (random.nextBoolean()) {
+                fractions[fractions.length - 1] = 1;
+                shares[shares.length - 1] = 1;
+            }
+            double start = from(INFORMATION);
+            double level = from(PROBABILITIES);
+            double at = from(INFORMATION);
+            Answers answers = new Answers("run " + run + ", " + Arrays.toString(fractions) + Arrays.toString(shares)
+                    + ", start " + start + ", level " + level + ", at " + at);
+            SpendingFunction table = answers.take(() -> SpendingFunction.table(fractions, shares));
+            SpendingFunction base = table == null ? SpendingFunction.obrienFlemingType() : table;
+            answers.take(() -> answers.probability(base.spent(level, at)));
+            answers.take(() -> answers.probability(base.startingAt(start).spent(level, at)));
+        }
+    }
+
+    @Test
+    void scalesAnswerOrSayWhy() {
+        for (int run = 0; run < 5000; run++) {
+            double value = from(STATISTICS);
+            double end = from(STATISTICS);
+            double level = from(PROBABILITIES);
+            double rate = from(PROBABILITIES);
+            double variance = from(PROBABILITIES);
+            double information = from(INFORMATION);
+            Answers answers = new Answers("run " + run + ", " + value + ", " + end + ", level " + level + ", rate "
+                    + rate + ", variance " + variance + ", information " + information);
+            answers.take(() -> {
+                Interval interval = answers.interval(new Interval(Math.min(value, end), INFINITE, level));
+                Estimate difference = new EffectScale(information).riskDifference(new Estimate(value, interval));
+                answers.interval(difference.interval());
+                Estimate lift = new LiftScale(rate, variance, 1e-5).lift(difference);
+                answers.number(lift.value());
+                return answers.interval(lift.interval());
+            });
+            answers.take(() -> answers.number(new EffectScale(information).drift(value)));
+        }
+    }
+
+    /** More looks than anybody takes, and a statistic that says nothing. */
+    @Test
+    void answersAfterHundredsOfLooks() {
+        Answers answers = new Answers("400 looks");
+        BoundarySequence sequence = new BoundarySequence();
+        List<Look> looks = new ArrayList<>();
+        for (int k = 1; k <= 400; k++) {
+            double spent = SpendingFunction.pocockType().spent(0.025, k / 400.0);
+            looks.add(sequence.next(k / 400.0, spent, spent));
+        }
+        answers.probability(StagewiseInference.of(looks, 0).pReported(true));
+    }
+
+    private List<Look> looks(Answers answers) {
+        double[] t = ascending(random.nextInt(5));
+        double[] upper = bounds(t.length);
+        List<Look> looks = new ArrayList<>();
+        for (int k = 0; k < t.length; k++) {
+            double lower = random.nextInt(3) > 0 ? -Math.abs(upper[k]) : from(STATISTICS);
+            looks.add(new Look(k + 1, t[k], 1e-300, 0, upper[k], lower));
+        }
+        answers.mention(looks);
+        if (looks.isEmpty()) {
+            throw new IllegalArgumentException("looks: none (expected: for the other checks, at least one)");
+        }
+        return looks;
+    }
+
+    /** Mostly in order, sometimes not. */
+    private double[] ascending(int count) {
+        double[] t = new double[count];
+        Arrays.setAll(t, i -> from(INFORMATION));
+        if (random.nextInt(8) > 0) {
+            Arrays.sort(t);
+        }
+        return t;
+    }
+
+    private double[] bounds(int count) {
+        double[] bounds = new double[count];
+        Arrays.setAll(bounds, i -> random.nextInt(6) == 0 ? INFINITE : from(STATISTICS));
+        return bounds;
+    }
+
+    private double from(double[] usual) {
+        double[] pool = random.nextInt(20) == 0 ? HOSTILE : usual;
+        return pool[random.nextInt(pool.length)];
+    }
+
+    /** Watches what comes back. */
+    private static final class Answers {
+
+        private String where;
+
+        Answers(String where) {
+            this.where = where;
+        }
+
+        void mention(Object more) {
+            where = where + ", " + more;
+        }
+
+        /** The answer, or null if it was refused properly. */
+        <T> T take(Supplier<T> call) {
+            try {
+                return call.get();
+            } catch (IllegalArgumentException e) {
+                assertTrue(MESSAGE.matcher(e.getMessage()).matches(), where + ": " + e);
+                return null;
+            }
+        }
+
+        double number(double value) {
+            assertFalse(Double.isNaN(value), where);
+            return value;
+        }
+
+        double probability(double value) {
+            assertTrue(value >= 0 && value <= 1, where + ": " + value);
+            return value;
+        }
+
+        Interval interval(Interval interval) {
+            assertTrue(interval.lower() <= interval.upper(), where + ": " + interval);
+            return interval;
         }
     }
 }

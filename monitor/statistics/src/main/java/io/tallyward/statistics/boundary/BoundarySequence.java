@@ -26,7 +26,10 @@ public final class BoundarySequence {
     private static final double LEAST_SHARE = 1e-290;
 
     /** Information relative to plan beyond this is a mistake in units. */
-    static final double MOST = 1e6;
+    public static final double MOST = 1e6;
+
+    /** Information relative to plan below this is a mistake in units, and its square no longer a number to divide by. */
+    public static final double LEAST = 1e-100;
 
     private final ContinuationDensity density = new ContinuationDensity(0);
     private double upperSpent;
@@ -49,7 +52,7 @@ public final class BoundarySequence {
      * Takes the next look.
      *
      * @param information information relative to the planned maximum, at least {@link #LEAST_GROWTH} beyond the last
-     *     look's; may exceed 1
+     *     look's and in [1e-100, 1e6]; may exceed 1
      * @param upperSpent error the upper tail may have spent up to this look, never falling; what it may spend at this look
      *     is the growth, and no growth means no boundary
      * @param lowerSpent likewise for the lower tail; 0 throughout makes the test one-sided
@@ -93,9 +96,9 @@ public final class BoundarySequence {
     }
 
     static void requireGrowth(String name, double information, double last) {
-        if (!(information > 0 && information - last >= LEAST_GROWTH * information && information <= MOST)) {
+        if (!(information >= LEAST && information - last >= LEAST_GROWTH * information && information <= MOST)) {
             throw new IllegalArgumentException(name + ": " + information + " (expected: beyond " + last
-                    + " by a millionth of itself at least, and at most " + MOST + ")");
+                    + " by a millionth of itself at least, and in [" + LEAST + ", " + MOST + "])");
         }
     }
 

@@ -4,8 +4,6 @@ import io.tallyward.statistics.distribution.Normal;
 import io.tallyward.statistics.spending.SpendingFunction;
 import java.util.ArrayList;
 import java.util.List;
-import org.apache.commons.math3.analysis.UnivariateFunction;
-import org.apache.commons.math3.analysis.solvers.BrentSolver;
 
 /**
  * A planned design: its looks and the drift it finds with the power asked for.
@@ -27,17 +25,6 @@ public record Design(
         double expectedFractionWithoutEffect,
         double expectedFraction) {
 
-    /** Absolute accuracy of the drift; power is then right to about as many digits. */
-    private static final double DRIFT_ACCURACY = 1e-11;
-
-    private static final int MOST_EVALUATIONS = 100;
-
-    /** Expected z at the last look up to which a drift is sought. */
-    private static final double MOST_EXPECTED = 12;
-
-    /** Inflation is rarely above 1.4, which is 1.18 in drift: one step of this usually brackets it. */
-    private static final double WIDENING = 1.2;
-
     public Design {
         looks = List.copyOf(looks);
     }
@@ -56,8 +43,9 @@ public record Design(
         double[] information = request.fractions();
         double[] upper = boundaries.stream().mapToDouble(Look::upper).toArray();
         double[] lower = boundaries.stream().mapToDouble(Look::lower).toArray();
-        ExitProfile profile = ExitProfile.of(information, upper, lower, 0, greatestDrift(information));
-        double drift = root(theta -> profile.at(theta).totalUpper() - request.power(), fixed, information);
+        ExitProfile profile = ExitProfile.of(information, upper, lower, 0, DriftForPower.greatest(information));
+        double drift =
+                DriftForPower.root(theta -> profile.at(theta).totalUpper() - request.power(), fixed, information);
         List<DesignLook> looks = boundaries.stream()
                 .map(look -> new DesignLook(look, Double.NEGATIVE_INFINITY))
                 .toList();
@@ -87,7 +75,7 @@ public record Design(
     }
 
     private static Design withFutility(DesignRequest request, List<Look> boundaries, double fixed) {
-        double drift = root(
+        double drift = DriftForPower.root(
                 theta -> follow(request, boundaries, theta, new double[boundaries.size()]) - request.power(),
                 fixed,
                 request.fractions());
@@ -123,27 +111,5 @@ public record Design(
             DesignRequest request, List<Look> boundaries, double[] futility, double drift) {
         double[] upper = boundaries.stream().mapToDouble(Look::upper).toArray();
         return ExitProbabilities.of(request.fractions(), upper, futility, drift);
-    }
-
-    /** Where the search for the drift ends: beyond it the power is as good as 1 unless next to nothing is spent. */
-    private static double greatestDrift(double[] information) {
-        return MOST_EXPECTED / StrictMath.sqrt(information[information.length - 1]);
-    }
-
-    private static double root(UnivariateFunction surplus, double fixed, double[] information) {
-        double greatest = greatestDrift(information);
-        // No sequential test beats the single test on the same information (Neyman and Pearson), so the search starts
-        // there.
-        double high = StrictMath.min(fixed / StrictMath.sqrt(information[information.length - 1]), greatest);
-        double low = 0.5 * high;
-        while (surplus.value(high) < 0) {
-            if (high == greatest) {
-                throw new IllegalArgumentException(
-                        "power: out of reach (expected: looks that may spend more error than these)");
-            }
-            low = high;
-            high = StrictMath.min(WIDENING * high, greatest);
-        }
-        return new BrentSolver(0, DRIFT_ACCURACY, 0).solve(MOST_EVALUATIONS, surplus, low, high);
     }
 }

@@ -3,6 +3,9 @@ package io.tallyward.statistics.boundary;
 /** Where and when a path with a given drift leaves between given boundaries. Immutable. */
 public final class ExitProbabilities {
 
+    /** Nodes reach from 0 to the mean, so a mean much farther out would need more of them than there is room for. */
+    private static final double FARTHEST_MEAN = 1000;
+
     private final double[] information;
     private final double[] upper;
     private final double[] lower;
@@ -19,14 +22,16 @@ public final class ExitProbabilities {
      * @param information information of each look relative to the planned maximum, ascending
      * @param upper upper boundary of each look for z; positive infinity for none
      * @param lower lower boundary of each look for z; negative infinity for none
-     * @param drift expected z at information 1; any finite number
+     * @param drift expected z at information 1; the mean at the last look must be within 1000 standard deviations of 0
      */
     public static ExitProbabilities of(double[] information, double[] upper, double[] lower, double drift) {
         requireLooks(information, upper, lower);
-        if (!Double.isFinite(drift)) {
-            throw new IllegalArgumentException("drift: " + drift + " (expected: finite)");
-        }
         int looks = information.length;
+        double farthest = FARTHEST_MEAN / StrictMath.sqrt(information[looks - 1]);
+        if (!(drift >= -farthest && drift <= farthest)) {
+            throw new IllegalArgumentException(
+                    "drift: " + drift + " (expected: in [" + -farthest + ", " + farthest + "])");
+        }
         double[] up = new double[looks];
         double[] down = new double[looks];
         ContinuationDensity density = new ContinuationDensity(drift);

@@ -8,7 +8,8 @@
  * chapter 19). {@link io.tallyward.statistics.boundary.BoundarySequence} walks along it one look at a time, as looks
  * happen; {@link io.tallyward.statistics.boundary.FutilitySequence} does so under the drift worth finding;
  * {@link io.tallyward.statistics.boundary.ExitProbabilities} follows given boundaries; and
- * {@link io.tallyward.statistics.boundary.Design} plans the whole.
+ * {@link io.tallyward.statistics.boundary.Design} plans the whole. Tests older than spending functions are here too, with
+ * their constants: {@link io.tallyward.statistics.boundary.ClassicalConstants}.
  *
  * <p>The density is carried on quadrature nodes that depend on nothing but the looks, so a sequence resumed from stored
  * looks continues with the same bits as one that was never interrupted.

@@ -3,7 +3,13 @@ package io.tallyward.statistics.spending;
 import io.tallyward.statistics.distribution.Normal;
 
 /** What the families share: their ranges and their end points. Each supplies the shape in between. */
-sealed interface SpendingFamily extends SpendingFunction {
+sealed interface SpendingFamily extends SpendingFunction
+        permits SpendingFamily.ObrienFlemingType,
+                SpendingFamily.PocockType,
+                SpendingFamily.HwangShihDecani,
+                SpendingFamily.KimDemets,
+                SpendingTable,
+                DelayedSpending {
 
     /** The shape, for a fraction strictly between 0 and 1. */
     double between(double level, double fraction);

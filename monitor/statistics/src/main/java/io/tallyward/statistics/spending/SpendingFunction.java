@@ -41,4 +41,32 @@ public sealed interface SpendingFunction permits SpendingFamily {
     static SpendingFunction kimDemets(double rho) {
         return new SpendingFamily.KimDemets(rho);
     }
+
+    /**
+     * Cumulative spending given point by point, linear in between and from nothing at fraction 0 to the first point.
+     *
+     * @param fractions in (0, 1], strictly ascending, the last exactly 1
+     * @param shares share of the level that may be spent by each fraction, in [0, 1], never falling, the last exactly 1
+     * @throws IllegalArgumentException if a point is out of range or out of order
+     */
+    static SpendingFunction table(double[] fractions, double[] shares) {
+        return SpendingTable.of(fractions, shares);
+    }
+
+    /**
+     * This function, kept silent before a fraction: nothing is spent before it, and from it on as much in total as this
+     * function allows. The first look from the start on may so spend all that was saved; the level is the same.
+     *
+     * <p>A look that spends nothing has no boundary and takes nothing from later ones. The function of one tail may be
+     * delayed without the other's.
+     *
+     * @param fraction first fraction at which something may be spent, in [0, 1]; 1 saves the whole level for the end
+     * @throws IllegalArgumentException if the fraction is out of range
+     */
+    default SpendingFunction startingAt(double fraction) {
+        if (!(fraction >= 0 && fraction <= 1)) {
+            throw new IllegalArgumentException("fraction: " + fraction + " (expected: in [0, 1])");
+        }
+        return fraction == 0 ? this : new DelayedSpending(this, fraction);
+    }
 }

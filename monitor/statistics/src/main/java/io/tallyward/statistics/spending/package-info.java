@@ -6,5 +6,11 @@
  * <p>Functions are evaluated at the level of <em>one tail</em>. A two-sided test at level alpha spends {@code alpha/2} in
  * each tail, each by the function at level {@code alpha/2}. This matters for the O'Brien-Fleming type, which does not
  * scale with its level.
+ *
+ * <p>Beside the published families the owner may write the spending down point by point
+ * ({@link io.tallyward.statistics.spending.SpendingFunction#table}), and may keep any function silent at first
+ * ({@link io.tallyward.statistics.spending.SpendingFunction#startingAt}). The fraction need not be one of information: a
+ * function of elapsed time serves as well (Lan and DeMets, "Group sequential procedures: calendar versus information
+ * time", Statistics in Medicine 8 (1989) 1191-1198, recalled), as boundaries ask only for what has been spent.
  */
 package io.tallyward.statistics.spending;

@@ -1,0 +1,272 @@
+package io.tallyward.statistics.inference;
+
+import io.tallyward.statistics.boundary.ExitProbabilities;
+import io.tallyward.statistics.boundary.Look;
+import io.tallyward.statistics.distribution.Normal;
+import java.util.List;
+import java.util.OptionalDouble;
+import org.apache.commons.math3.analysis.UnivariateFunction;
+import org.apache.commons.math3.analysis.solvers.BrentSolver;
+
+/**
+ * P-value, estimate and confidence interval after a sequential test has stopped, by the stage-wise ordering of its possible
+ * ends: crossing the upper boundary at an earlier look is more extreme upwards than at a later one, crossing the lower
+ * boundary earlier is more extreme downwards, and at the same look the larger z is more extreme upwards (Armitage 1957;
+ * Siegmund 1978; Tsiatis, Rosner and Mehta, "Exact confidence intervals following a group sequential test", Biometrics 40
+ * (1984) 797-803; Jennison and Turnbull, "Group Sequential Methods", 2000, sections 8.4 and 8.5; all recalled).
+ *
+ * <p>With a stop at look k and statistic z, and drift theta the expected z at information 1,
+ * {@code G(theta) = sum over j < k of P(first crossing is upper, at j) + P(no crossing before k, Z_k >= z)}. It grows from 0
+ * to 1 with theta. {@code G(0)} is the upper p-value, {@code G(theta) = 1/2} defines the median-unbiased estimate and
+ * {@code G(theta) = (1 - level)/2} and {@code (1 + level)/2} the ends of the interval. Looks after the stop play no part, so
+ * they need not be known.
+ *
+ * <p>Everything is exact for the boundaries <em>used</em>. They must be those that would really have ended the test:
+ * non-binding futility bounds are left out. A test that ends before its last look without having crossed anything may be
+ * described as if this had been its last look; whether that is fair depends on the reason for ending it.
+ *
+ * <p>Accuracy: probabilities 1e-12 absolute; drifts 1e-11 in units of the standard error of the stop, or 1e-14 of
+ * themselves if that is more. The p-values take one pass over the looks, each end of an interval and the estimate some
+ * four more: milliseconds in all for a handful of looks, a quarter of a second for 60, one and a half for 168.
+ *
+ * <p>Immutable; thread-safe.
+ */
+public final class StagewiseInference {
+
+    /** A statistic beyond this many standard deviations is a mistake in units. */
+    public static final double MOST_Z = 1e6;
+
+    /** A drift beyond this is a mistake in units. */
+    public static final double MOST_DRIFT = 1e100;
+
+    /** Of drifts, in standard errors. */
+    private static final double ACCURACY = 1e-12;
+
+    private static final double RELATIVE_ACCURACY = 1e-15;
+
+    private static final int MOST_EVALUATIONS = 5000;
+
+    private static final int MOST_SECANT_STEPS = 12;
+
+    /** The error of a secant step is about the product of the last two, so one after a step this small has 1e-12. */
+    private static final double CLOSE = 1e-8;
+
+    /** The estimate is usually within a standard error of the naive one; after an odd stop it may be far away. */
+    private static final double WIDENING = 4;
+
+    /** Quantiles are cut off here, where tail probabilities underflow. */
+    private static final double FARTHEST = 40;
+
+    /** Crossing an earlier boundary this far out has a probability of 1e-23 and is as good as impossible. */
+    private static final double REACH = 10;
+
+    /** An earlier boundary this much farther out than the stop adds to a p-value less than rounding does. */
+    private static final double BEYOND = 4;
+
+    private final double[] information;
+    private final double[] upper;
+    private final double[] lower;
+    private final double z;
+    private final double root;
+    private final double pUpper;
+    private final double pLower;
+
+    private StagewiseInference(double[] information, double[] upper, double[] lower, double z) {
+        this.information = information;
+        this.upper = upper;
+        this.lower = lower;
+        this.z = z;
+        this.root = StrictMath.sqrt(information[information.length - 1]);
+        ExitProbabilities exits = exits(0);
+        this.pUpper = StrictMath.min(1, exits.totalUpper());
+        this.pLower = StrictMath.min(1, exits.totalLower());
+    }
+
+    /**
+     * Describes a stop.
+     *
+     * @param looks the looks taken, in order; the test stopped at the last of them, whose own boundaries play no part
+     * @param z the statistic at the stop, in [-1e6, 1e6], whether it crossed a boundary or not
+     * @throws IllegalArgumentException if there is no look, if looks do not follow one another, if an earlier look leaves
+     *     nothing between its boundaries, or if z is out of range
+     */
+    public static StagewiseInference of(List<Look> looks, double z) {
+        if (looks.isEmpty()) {
+            throw new IllegalArgumentException("looks: none (expected: at least the one at which the test stopped)");
+        }
+        requireStatistic(z);
+        int last = looks.size() - 1;
+        double[] information = new double[last + 1];
+        double[] upper = new double[last + 1];
+        double[] lower = new double[last + 1];
+        for (int k = 0; k <= last; k++) {
+            Look look = looks.get(k);
+            if (look.number() != k + 1) {
+                throw new IllegalArgumentException("looks[" + k + "].number: " + look.number() + " (expected: "
+                        + (k + 1) + ", as every look taken counts)");
+            }
+            if (k < last && !(look.lower() < look.upper())) {
+                throw new IllegalArgumentException("looks[" + k + "]: boundaries " + look.lower() + ", " + look.upper()
+                        + " (expected: room between them, as the test went on)");
+            }
+            information[k] = look.information();
+            upper[k] = k < last ? look.upper() : z;
+            lower[k] = k < last ? look.lower() : z;
+        }
+        return new StagewiseInference(information, upper, lower, z);
+    }
+
+    /** Probability, without an effect, of an end at least as extreme upwards; small speaks for a positive drift. */
+    public double pUpper() {
+        return pUpper;
+    }
+
+    /** Probability, without an effect, of an end at least as extreme downwards; {@code 1 - pUpper()} but for rounding. */
+    public double pLower() {
+        return pLower;
+    }
+
+    /**
+     * The p-value to report.
+     *
+     * @param twoSided whether both directions were tested: twice the smaller p-value, at most 1; otherwise the upper one
+     */
+    public double pReported(boolean twoSided) {
+        return twoSided ? StrictMath.min(1, 2 * StrictMath.min(pUpper, pLower)) : pUpper;
+    }
+
+    /**
+     * Probability of an end at least as extreme upwards under a drift: {@code G(drift)} above.
+     *
+     * @param drift expected z at information 1, in [-1e100, 1e100]
+     */
+    public double pUpper(double drift) {
+        requireDrift(drift);
+        return StrictMath.min(1, exits(drift).totalUpper());
+    }
+
+    /**
+     * The drift read off the statistic as if there had been no earlier looks: {@code z / sqrt(t)}. Biased away from 0 when
+     * the test stopped by crossing a boundary; to be shown only under that name.
+     */
+    public double naiveDrift() {
+        return z / root;
+    }
+
+    /** The drift that is as likely to lie below the truth as above it, whatever the truth. */
+    public double medianUnbiasedDrift() {
+        return drift(0);
+    }
+
+    /**
+     * The confidence interval for the drift; it agrees with the test: it leaves out 0 exactly if the reported p-value is
+     * small enough.
+     *
+     * @param level in (0, 1); {@code 1 - alpha} after a two-sided test, {@code 1 - 2 alpha} after a one-sided one
+     */
+    public Interval interval(double level) {
+        Interval.requireLevel(level);
+        double quantile = Normal.upperQuantile(0.5 * (1 - level));
+        double from = drift(-quantile);
+        double to = drift(quantile);
+        // At a level next to nothing both ends are the median, and rounding decides which comes first.
+        return new Interval(StrictMath.min(from, to), StrictMath.max(from, to), level);
+    }
+
+    /** The median-unbiased drift with its interval at a level in (0, 1). */
+    public Estimate estimate(double level) {
+        return new Estimate(medianUnbiasedDrift(), interval(level));
+    }
+
+    /**
+     * The drift at which the probability of an end at least as extreme upwards is {@code Phi(quantile)}. Solved on the
+     * scale of quantiles, where the probability of a single look is a straight line and that of several is nearly one.
+     */
+    private double drift(double quantile) {
+        double start = (z + quantile) / root;
+        if (information.length == 1) {
+            return start;
+        }
+        UnivariateFunction surplus = drift -> quantile(drift) - quantile;
+        double atStart = surplus.value(start);
+        if (atStart == 0) {
+            return start;
+        }
+        OptionalDouble quick = secant(surplus, start, atStart);
+        return quick.isPresent() ? quick.getAsDouble() : bracketed(surplus, start, atStart);
+    }
+
+    /** Four steps are usual. Gives up where the line bends too much, as after a stop that hardly any drift explains. */
+    private OptionalDouble secant(UnivariateFunction surplus, double start, double atStart) {
+        double before = start;
+        double atBefore = atStart;
+        double now = start - atStart / root;
+        for (int i = 0; i < MOST_SECANT_STEPS; i++) {
+            double atNow = surplus.value(now);
+            double move = -atNow * (now - before) / (atNow - atBefore);
+            if (StrictMath.abs(atNow) < CLOSE && StrictMath.abs(move) * root < CLOSE) {
+                return OptionalDouble.of(now + move);
+            }
+            if (!(StrictMath.abs(move) * root < 1)) {
+                break;
+            }
+            before = now;
+            atBefore = atNow;
+            now += move;
+        }
+        return OptionalDouble.empty();
+    }
+
+    private double bracketed(UnivariateFunction surplus, double start, double atStart) {
+        double near = start;
+        double far = start;
+        double step = (atStart < 0 ? 1 : -1) / root;
+        do {
+            near = far;
+            far += step;
+            step *= WIDENING;
+        } while (surplus.value(far) * atStart > 0);
+        return new BrentSolver(RELATIVE_ACCURACY, ACCURACY / root, 0)
+                .solve(MOST_EVALUATIONS, surplus, StrictMath.min(near, far), StrictMath.max(near, far));
+    }
+
+    /** The quantile of G, from whichever tail is the smaller. */
+    private double quantile(double drift) {
+        ExitProbabilities exits = exits(drift);
+        double above = exits.totalUpper();
+        double quantile =
+                above < 0.5 ? Normal.quantile(above) : Normal.upperQuantile(StrictMath.min(1, exits.totalLower()));
+        return StrictMath.max(-FARTHEST, StrictMath.min(FARTHEST, quantile));
+    }
+
+    /**
+     * The boundaries move with the drift instead of the path: that keeps the path where its nodes are densest. Those that
+     * are farther out than anything that counts are pulled in, which costs nothing and spares nodes.
+     */
+    private ExitProbabilities exits(double drift) {
+        int looks = information.length;
+        double[] high = new double[looks];
+        double[] low = new double[looks];
+        double reach = StrictMath.min(FARTHEST, StrictMath.max(REACH, StrictMath.abs(z - drift * root) + BEYOND));
+        for (int k = 0; k < looks; k++) {
+            double mean = drift * StrictMath.sqrt(information[k]);
+            double farthest = k < looks - 1 ? reach : Double.POSITIVE_INFINITY;
+            high[k] = StrictMath.max(-farthest, StrictMath.min(farthest, upper[k] - mean));
+            low[k] = StrictMath.max(-farthest, StrictMath.min(farthest, lower[k] - mean));
+        }
+        return ExitProbabilities.of(information, high, low, 0);
+    }
+
+    static void requireStatistic(double z) {
+        if (!(z >= -MOST_Z && z <= MOST_Z)) {
+            throw new IllegalArgumentException("z: " + z + " (expected: in [" + -MOST_Z + ", " + MOST_Z + "])");
+        }
+    }
+
+    static void requireDrift(double drift) {
+        if (!(drift >= -MOST_DRIFT && drift <= MOST_DRIFT)) {
+            throw new IllegalArgumentException(
+                    "drift: " + drift + " (expected: in [" + -MOST_DRIFT + ", " + MOST_DRIFT + "])");
+        }
+    }
+}
