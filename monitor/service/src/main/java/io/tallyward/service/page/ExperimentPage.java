@@ -21,7 +21,13 @@ final class ExperimentPage {
 
     private ExperimentPage() {}
 
-    static String title(Standing standing) {
+    static String title(Standing standing, MonitorState monitor) {
+        if (!monitor.atWork()) {
+            return Wording.NOT_AT_WORK + " · " + standing.name();
+        }
+        if (monitor.unkeyed()) {
+            return Wording.NOT_KEYED + " · " + standing.name();
+        }
         ExperimentView view = standing.view();
         Words words = view.trust() == Trust.SOUND ? Wording.of(view.verdict()) : Wording.of(view.trust());
         return words.sign() + " " + standing.name() + ": " + words.label();

@@ -7,6 +7,14 @@ import io.tallyward.engine.record.Verdict;
 /** What the published states are called on a page, what they mean and what to do about them. */
 final class Wording {
 
+    static final String NOT_AT_WORK = "Not at work";
+
+    static final String NOT_KEYED = "Not keyed by unit";
+
+    static final String UNKEYED =
+            "The input topic is not keyed by unit: units are counted more than once and clicks miss their views. Do not"
+                    + " act on any rate here. Key the topic by unit and start anew.";
+
     private Wording() {}
 
     /**
