@@ -105,7 +105,7 @@ final class OverviewPage {
         badges(html, standing);
         html.close().leaf("p", standing.view().plan().question(), "class", "question");
         if (!standing.view().trustReason().isEmpty()) {
-            html.leaf("p", standing.view().trustReason(), "class", "reason");
+            html.leaf("p", Figures.prose(standing.view().trustReason()), "class", "reason");
         }
         if (standing.urgency() == Urgency.ATTENTION) {
             html.open("p").leaf("b", "What to do: ").text(action(standing)).close();
@@ -124,7 +124,7 @@ final class OverviewPage {
     /** Harm comes first: its verdict is final and was reached while the data were trusted. Then broken trust. */
     private static String action(Standing standing) {
         return standing.harm() || standing.view().trust() == Trust.SOUND
-                ? Wording.of(standing.worst()).action()
+                ? standing.action(standing.worst())
                 : Wording.of(standing.view().trust()).action();
     }
 
@@ -206,8 +206,9 @@ final class OverviewPage {
                     .append(variants.get(i).name())
                     .append(' ')
                     .append(Figures.percent(standing.trials(variants.get(i), epoch) / total))
-                    .append(" of ")
-                    .append(Figures.percent(plan[i]));
+                    .append(" (planned ")
+                    .append(Figures.percent(plan[i]))
+                    .append(')');
         }
         return text.toString();
     }
