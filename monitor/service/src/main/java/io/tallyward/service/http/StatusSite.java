@@ -12,6 +12,7 @@ import io.javalin.http.Handler;
 import io.javalin.http.HandlerType;
 import io.tallyward.engine.decide.ExperimentView;
 import io.tallyward.service.metrics.PrometheusExposition;
+import io.tallyward.service.page.MonitorState;
 import io.tallyward.service.page.Pages;
 import io.tallyward.service.status.HealthBoard;
 import io.tallyward.service.status.HealthSource.Health;
@@ -58,7 +59,7 @@ public record StatusSite(StatusBoard board, HealthBoard health, PrometheusExposi
                 routes,
                 "/",
                 ctx -> ctx.contentType(HTML)
-                        .result(pages.overview(board.experiments().values(), health.checks())));
+                        .result(pages.overview(board.experiments().values(), monitor())));
         serve(routes, "/experiments/{name}", this::pageExperiment);
         serve(
                 routes,
@@ -131,10 +132,14 @@ public record StatusSite(StatusBoard board, HealthBoard health, PrometheusExposi
         Optional<ExperimentView> view = board.experiment(ctx.pathParam("name"));
         ctx.contentType(HTML);
         if (view.isPresent()) {
-            ctx.result(pages.experiment(view.get(), health.checks()));
+            ctx.result(pages.experiment(view.get(), monitor()));
         } else {
             ctx.status(404).result(pages.notFound());
         }
+    }
+
+    private MonitorState monitor() {
+        return MonitorState.of(health.checks(), board.counts());
     }
 
     private void nothingHere(Context ctx) {

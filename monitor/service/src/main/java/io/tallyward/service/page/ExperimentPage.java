@@ -21,7 +21,13 @@ final class ExperimentPage {
 
     private ExperimentPage() {}
 
-    static String title(Standing standing) {
+    static String title(Standing standing, MonitorState monitor) {
+        if (!monitor.atWork()) {
+            return Wording.NOT_AT_WORK + " · " + standing.name();
+        }
+        if (monitor.unkeyed()) {
+            return Wording.NOT_KEYED + " · " + standing.name();
+        }
         ExperimentView view = standing.view();
         Words words = view.trust() == Trust.SOUND ? Wording.of(view.verdict()) : Wording.of(view.trust());
         return words.sign() + " " + standing.name() + ": " + words.label();
@@ -64,15 +70,21 @@ final class ExperimentPage {
 
     private static void verdict(Markup html, Standing standing) {
         Verdict verdict = standing.view().verdict();
-        Words words = Wording.of(verdict);
+        Words words = Wording.of(verdict).with(action(standing, verdict));
         if (standing.view().trust() != Trust.SOUND && !verdict.settled()) {
-            words = Wording.untrusted(words, standing.held());
+            words = Wording.untrusted(words, standing.heldInWords());
         }
         says(html, "verdict", verdict.code(), words, "");
     }
 
+    /** Harm by one variant is not hidden behind what another variant has achieved. */
+    private static String action(Standing standing, Verdict verdict) {
+        String action = standing.action(verdict);
+        return standing.worst() == verdict ? action : standing.action(standing.worst()) + " " + action;
+    }
+
     private static void trust(Markup html, ExperimentView view) {
-        says(html, "trust", view.trust().code(), Wording.of(view.trust()), view.trustReason());
+        says(html, "trust", view.trust().code(), Wording.of(view.trust()), Figures.prose(view.trustReason()));
     }
 
     private static void says(Markup html, String kind, String code, Words words, String reason) {
@@ -142,7 +154,7 @@ final class ExperimentPage {
                     "p", "Held until trust returns: " + Wording.of(look.held()).label() + ".", "class", "reason");
         }
         if (look.reason() != null && !look.reason().isEmpty()) {
-            html.leaf("p", "Why: " + look.reason(), "class", "figures");
+            html.leaf("p", "Why: " + Figures.prose(look.reason()), "class", "figures");
         }
     }
 

@@ -5,6 +5,7 @@ import java.time.Instant;
 import java.time.ZoneOffset;
 import java.time.format.DateTimeFormatter;
 import java.util.Locale;
+import java.util.regex.Pattern;
 
 /** How numbers and times are written on a page: one way everywhere, independent of the machine's language. */
 final class Figures {
@@ -17,6 +18,14 @@ final class Figures {
     private static final DateTimeFormatter SECOND = DateTimeFormatter.ofPattern(
                     "yyyy-MM-dd HH:mm:ss 'UTC'", Locale.ROOT)
             .withZone(ZoneOffset.UTC);
+
+    private static final String LEAST = "below 1e-99";
+
+    /** A p-value that a reason writes with three digits in its exponent, or as nothing at all. */
+    private static final Pattern TINY = Pattern.compile("(?<=p-value )(?:0\\.0|\\d\\.\\de-\\d{3})(?!\\d)");
+
+    /** The sign of a negative number that stands free. */
+    private static final Pattern NEGATIVE = Pattern.compile("(?<=[ (])-(?=\\d)");
 
     private Figures() {}
 
@@ -48,9 +57,23 @@ final class Figures {
         return fixed(percent < 100 ? Math.floor(percent) : percent, "%.0f %%");
     }
 
-    /** A probability: three decimals, or two significant digits where that would show as nothing. */
-    static String probability(Double value) {
-        return value != null && value < 0.001 && value > 0 ? fixed(value, "%.1e") : fixed(value, "%.3f");
+    /** A probability that is spent: two significant digits, and 0 where none is. */
+    static String probability(double value) {
+        return value == 0 ? "0" : pValue(value);
+    }
+
+    /**
+     * A p-value with two significant digits, in the form in which the reasons of a decision have it. Below 1e-99 only
+     * that is said: a double ends not far below, and 0 would claim what no data can show.
+     */
+    static String pValue(double value) {
+        return value < 1e-99 ? LEAST : fixed(value, "%.2g");
+    }
+
+    /** A reason out of a decision record, with its numbers written as those of the page. */
+    static String prose(String reason) {
+        String text = TINY.matcher(reason).replaceAll(LEAST);
+        return NEGATIVE.matcher(text).replaceAll("−");
     }
 
     static String minute(Instant time) {

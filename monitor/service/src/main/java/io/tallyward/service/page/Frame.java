@@ -2,7 +2,6 @@ package io.tallyward.service.page;
 
 import io.tallyward.service.page.Wording.Words;
 import io.tallyward.service.status.HealthSource.Health;
-import io.tallyward.service.status.HealthSource.State;
 import java.time.Instant;
 import java.util.List;
 import java.util.Locale;
@@ -13,7 +12,7 @@ final class Frame {
 
     private Frame() {}
 
-    static String page(String title, Instant now, List<Health> checks, Consumer<Markup> contents) {
+    static String page(String title, Instant now, MonitorState monitor, Consumer<Markup> contents) {
         Markup html = new Markup();
         html.open("html", "lang", "en").open("head");
         html.empty("meta", "charset", "utf-8");
@@ -32,7 +31,8 @@ final class Frame {
                 .close();
         html.leaf("p", "", "id", "stale", "class", "banner stale", "role", "alert", "hidden", "hidden");
         html.open("main", "id", "main");
-        health(html, checks);
+        unkeyed(html, monitor);
+        health(html, monitor);
         contents.accept(html);
         html.close().open("footer");
         html.leaf(
@@ -49,16 +49,26 @@ final class Frame {
         html.close();
     }
 
-    private static void health(Markup html, List<Health> checks) {
-        List<Health> problems =
-                checks.stream().filter(check -> check.state() != State.OK).toList();
-        if (problems.isEmpty()) {
+    /** Before everything else: no number on the page means what it says. */
+    private static void unkeyed(Markup html, MonitorState monitor) {
+        if (monitor.unkeyed()) {
+            html.open("section", "class", "banner problem", "role", "alert");
+            html.leaf("strong", Wording.UNKEYED).close();
+        }
+    }
+
+    private static void health(Markup html, MonitorState monitor) {
+        banner(html, "problem", "The monitor itself is not fully at work; what follows may be old.", monitor.failing());
+        banner(html, "starting", "Starting: what follows may be old or incomplete.", monitor.starting());
+    }
+
+    private static void banner(Markup html, String kind, String heading, List<Health> checks) {
+        if (checks.isEmpty()) {
             return;
         }
-        html.open("section", "class", "banner problem", "aria-label", "Problems of the monitor itself");
-        html.leaf("strong", "The monitor itself is not fully at work; what follows may be old.")
-                .open("ul");
-        for (Health check : problems) {
+        html.open("section", "class", "banner " + kind, "aria-label", "State of the monitor itself");
+        html.leaf("strong", heading).open("ul");
+        for (Health check : checks) {
             html.open("li").leaf("b", check.name());
             html.text(" (" + check.state().name().toLowerCase(Locale.ROOT) + "): " + check.detail())
                     .close();

@@ -53,8 +53,7 @@ final class LookTable {
                 Column.number("Difference"),
                 Column.number("Interval"),
                 Column.number("Futility"),
-                Column.number("Alpha spent"),
-                Column.text("Why"));
+                Column.number("Alpha spent"));
         for (LookPoint point : looks) {
             Comparison look = point.comparison();
             table.row(Integer.toString(look.look()))
@@ -68,8 +67,10 @@ final class LookTable {
                     .number(interval(look))
                     .number(Figures.decimal(look.futility()))
                     .number(Figures.probability(look.alphaSpent()))
-                    .text(look.reason() == null ? "" : look.reason())
                     .endRow();
+            if (look.reason() != null && !look.reason().isEmpty()) {
+                table.remark("Why: " + Figures.prose(look.reason()));
+            }
         }
         table.close();
     }

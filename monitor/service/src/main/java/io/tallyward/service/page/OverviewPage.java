@@ -17,18 +17,27 @@ final class OverviewPage {
 
     private OverviewPage() {}
 
-    static String title(List<Standing> standings) {
+    static String title(List<Standing> standings, MonitorState monitor) {
+        if (!monitor.atWork()) {
+            return Wording.NOT_AT_WORK;
+        }
+        if (monitor.unkeyed()) {
+            return Wording.NOT_KEYED;
+        }
+        if (standings.isEmpty()) {
+            return "No experiment";
+        }
         long attention = attention(standings);
         return attention == 0 ? "All quiet" : attention + (attention == 1 ? " needs" : " need") + " attention";
     }
 
-    static void write(Markup html, List<Standing> standings, Instant now) {
-        html.open("h1").text(headline(standings)).close();
+    static void write(Markup html, List<Standing> standings, MonitorState monitor, Instant now) {
+        html.leaf("h1", headline(standings, monitor));
         if (standings.isEmpty()) {
-            html.leaf(
-                    "p",
-                    "An experiment appears here when its first window is complete. If none does, the health answer at"
-                            + " /health/ready says what is missing.");
+            html.open("p")
+                    .text("This instance decides about no experiment. Another instance may, or none is planned."
+                            + " Whether this one is at work is told at ");
+            html.leaf("a", "/health/ready", "href", "/health/ready").text(".").close();
         }
         for (Urgency urgency : Urgency.values()) {
             List<Standing> group = standings.stream()
@@ -42,17 +51,43 @@ final class OverviewPage {
                 html.close().close();
             }
         }
+        if (monitor.rejected() > 0) {
+            html.leaf(
+                    "p",
+                    "Rejected records since the first event: " + Figures.count(monitor.rejected())
+                            + " (kept in the topic …-rejects with their reasons)",
+                    "class",
+                    "note");
+        }
     }
 
-    private static String headline(List<Standing> standings) {
+    private static String headline(List<Standing> standings, MonitorState monitor) {
+        if (!monitor.atWork()) {
+            return "Monitor not at work; "
+                    + (standings.isEmpty() ? "no experiment is known" : "last known: " + known(standings, monitor));
+        }
         if (standings.isEmpty()) {
-            return "No experiment yet";
+            return monitor.unkeyed() ? "No experiment, and input not keyed by unit" : "No experiment on this instance";
         }
         long attention = attention(standings);
-        String all = standings.size() + (standings.size() == 1 ? " experiment" : " experiments");
-        return attention == 0
-                ? all + ", nothing needs attention"
-                : attention + " of " + all + (attention == 1 ? " needs" : " need") + " attention";
+        return monitor.unkeyed() || attention == 0
+                ? known(standings, monitor)
+                : attention + " of " + experiments(standings) + (attention == 1 ? " needs" : " need") + " attention";
+    }
+
+    private static String known(List<Standing> standings, MonitorState monitor) {
+        if (monitor.unkeyed()) {
+            return experiments(standings) + ", input not keyed by unit: no rate to act on";
+        }
+        long attention = attention(standings);
+        return experiments(standings)
+                + (attention == 0
+                        ? ", nothing needs attention"
+                        : ", " + attention + (attention == 1 ? " needs" : " need") + " attention");
+    }
+
+    private static String experiments(List<Standing> standings) {
+        return standings.size() + (standings.size() == 1 ? " experiment" : " experiments");
     }
 
     private static long attention(List<Standing> standings) {
@@ -70,7 +105,7 @@ final class OverviewPage {
         badges(html, standing);
         html.close().leaf("p", standing.view().plan().question(), "class", "question");
         if (!standing.view().trustReason().isEmpty()) {
-            html.leaf("p", standing.view().trustReason(), "class", "reason");
+            html.leaf("p", Figures.prose(standing.view().trustReason()), "class", "reason");
         }
         if (standing.urgency() == Urgency.ATTENTION) {
             html.open("p").leaf("b", "What to do: ").text(action(standing)).close();
@@ -89,7 +124,7 @@ final class OverviewPage {
     /** Harm comes first: its verdict is final and was reached while the data were trusted. Then broken trust. */
     private static String action(Standing standing) {
         return standing.harm() || standing.view().trust() == Trust.SOUND
-                ? Wording.of(standing.worst()).action()
+                ? standing.action(standing.worst())
                 : Wording.of(standing.view().trust()).action();
     }
 
@@ -171,8 +206,9 @@ final class OverviewPage {
                     .append(variants.get(i).name())
                     .append(' ')
                     .append(Figures.percent(standing.trials(variants.get(i), epoch) / total))
-                    .append(" of ")
-                    .append(Figures.percent(plan[i]));
+                    .append(" (planned ")
+                    .append(Figures.percent(plan[i]))
+                    .append(')');
         }
         return text.toString();
     }

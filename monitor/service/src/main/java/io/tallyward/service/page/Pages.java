@@ -1,7 +1,6 @@
 package io.tallyward.service.page;
 
 import io.tallyward.engine.decide.ExperimentView;
-import io.tallyward.service.status.HealthSource.Health;
 import java.io.IOException;
 import java.io.InputStream;
 import java.io.UncheckedIOException;
@@ -30,25 +29,36 @@ public final class Pages {
      * All experiments, problems first.
      *
      * @param views the experiments, in the order to keep among equally urgent ones
-     * @param checks how the monitor itself is
+     * @param monitor how the monitor itself is
      */
-    public String overview(Collection<ExperimentView> views, List<Health> checks) {
+    public String overview(Collection<ExperimentView> views, MonitorState monitor) {
         List<Standing> standings = views.stream().map(Standing::new).toList();
         Instant now = clock.instant();
-        return Frame.page(OverviewPage.title(standings), now, checks, html -> OverviewPage.write(html, standings, now));
+        return Frame.page(
+                OverviewPage.title(standings, monitor),
+                now,
+                monitor,
+                html -> OverviewPage.write(html, standings, monitor, now));
     }
 
-    /** One experiment. */
-    public String experiment(ExperimentView view, List<Health> checks) {
+    /**
+     * One experiment.
+     *
+     * @param monitor how the monitor itself is
+     */
+    public String experiment(ExperimentView view, MonitorState monitor) {
         Standing standing = new Standing(view);
         Instant now = clock.instant();
         return Frame.page(
-                ExperimentPage.title(standing), now, checks, html -> ExperimentPage.write(html, standing, now));
+                ExperimentPage.title(standing, monitor),
+                now,
+                monitor,
+                html -> ExperimentPage.write(html, standing, now));
     }
 
     /** The answer when there is no such page. */
     public String notFound() {
-        return Frame.page("Not here", clock.instant(), List.of(), html -> {
+        return Frame.page("Not here", clock.instant(), new MonitorState(List.of(), false, 0), html -> {
             html.leaf("h1", "There is no such page on this instance");
             html.open("p").text("An experiment may be decided by another instance of the monitor. ");
             html.leaf("a", "What this one knows", "href", "/").text(".").close();

@@ -2,6 +2,7 @@ package io.tallyward.service.page;
 
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import java.util.List;
+import java.util.Objects;
 import java.util.function.Function;
 
 /**
@@ -72,8 +73,10 @@ final class PathChart {
         zone(Comparison::upper, reach, higherIsBetter ? "benefit" : "harm");
         zone(Comparison::lower, -reach, higherIsBetter ? "harm" : "benefit");
         axes();
-        word(higherIsBetter ? "benefit" : "harm", TOP + 14);
-        word(higherIsBetter ? "harm" : "benefit", HEIGHT - BOTTOM - 6);
+        word("benefit", higherIsBetter);
+        if (looks.stream().map(this::harmBoundary).anyMatch(Objects::nonNull)) {
+            word("harm", !higherIsBetter);
+        }
         line(Comparison::upper, "bound");
         line(Comparison::lower, "bound");
         line(look -> look.futility() == null ? null : higherIsBetter ? look.futility() : -look.futility(), "futility");
@@ -98,7 +101,13 @@ final class PathChart {
         html.empty("path", "d", area.toString(), "class", "zone-" + word);
     }
 
-    private void word(String word, double y) {
+    /** Null where a crossing at this look cannot mean harm. */
+    private Double harmBoundary(Comparison look) {
+        return higherIsBetter ? look.lower() : look.upper();
+    }
+
+    private void word(String word, boolean above) {
+        double y = above ? TOP + 14 : HEIGHT - BOTTOM - 6;
         html.leaf("text", word, "x", at(LEFT + 6), "y", at(y), "class", "word-" + word);
     }
 

@@ -78,7 +78,7 @@ final class SplitSection {
         OverviewPage.fact(
                 html,
                 "Sequential p-value",
-                Figures.probability(split.sequentialPValue()) + " (a mismatch at " + alpha
+                Figures.pValue(split.sequentialPValue()) + " (a mismatch at " + alpha
                         + " or less; may be read after every window)");
         OverviewPage.fact(
                 html,
@@ -89,7 +89,7 @@ final class SplitSection {
                 : "chi-square " + Figures.decimal(split.pearsonChiSquare()) + " with "
                         + split.pearsonDegreesOfFreedom()
                         + (split.pearsonDegreesOfFreedom() == 1 ? " degree" : " degrees") + " of freedom, p "
-                        + Figures.probability(split.pearsonPValue()) + " (for a single reading only)";
+                        + Figures.pValue(split.pearsonPValue()) + " (for a single reading only)";
         OverviewPage.fact(html, "Pearson, for the record", pearson);
         html.close();
         html.leaf(

@@ -11,6 +11,7 @@ import io.tallyward.engine.record.Verdict;
 import java.time.Duration;
 import java.util.List;
 import java.util.Optional;
+import java.util.StringJoiner;
 import java.util.stream.Stream;
 
 /**
@@ -48,6 +49,28 @@ record Standing(ExperimentView view) {
     /** Whether a verdict waits for trust to return. */
     boolean held() {
         return !view.held().isEmpty();
+    }
+
+    /** The verdicts that wait for trust to return, each in a sentence; empty when none does. */
+    String heldInWords() {
+        StringJoiner sentences = new StringJoiner(" ");
+        for (Variant challenger : challengers()) {
+            Verdict held = view.held().get(challenger.name());
+            if (held != null) {
+                sentences.add((challengers().size() == 1 ? "" : challenger.name() + ": ") + Wording.held(held));
+            }
+        }
+        return sentences.toString();
+    }
+
+    /** What to do about a verdict, naming the variants that have it. */
+    String action(Verdict verdict) {
+        return Wording.action(
+                verdict,
+                challengers().stream()
+                        .map(Variant::name)
+                        .filter(name -> view.verdicts().get(name) == verdict)
+                        .toList());
     }
 
     List<Variant> challengers() {

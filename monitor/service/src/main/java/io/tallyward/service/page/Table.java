@@ -4,9 +4,11 @@ package io.tallyward.service.page;
 final class Table {
 
     private final Markup html;
+    private final int columns;
 
-    private Table(Markup html) {
+    private Table(Markup html, int columns) {
         this.html = html;
+        this.columns = columns;
     }
 
     /** Opens a table; its first column names the rows. */
@@ -17,7 +19,7 @@ final class Table {
             html.leaf("th", column.heading(), "scope", "col", "class", column.numeric() ? "number" : null);
         }
         html.close().close().open("tbody");
-        return new Table(html);
+        return new Table(html, columns.length);
     }
 
     /** Starts a row. */
@@ -46,6 +48,12 @@ final class Table {
 
     void endRow() {
         html.close();
+    }
+
+    /** A sentence about the row before, below it and across all columns. */
+    void remark(String sentence) {
+        html.open("tr", "class", "remark").open("td", "colspan", Integer.toString(columns));
+        html.leaf("p", sentence).close().close();
     }
 
     void close() {

@@ -3,9 +3,18 @@ package io.tallyward.service.page;
 import io.tallyward.engine.count.Outcome;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
+import java.util.List;
 
 /** What the published states are called on a page, what they mean and what to do about them. */
 final class Wording {
+
+    static final String NOT_AT_WORK = "Not at work";
+
+    static final String NOT_KEYED = "Not keyed by unit";
+
+    static final String UNKEYED =
+            "The input topic is not keyed by unit: units are counted more than once and clicks miss their views. Do not"
+                    + " act on any rate here. Key the topic by unit and start anew.";
 
     private Wording() {}
 
@@ -17,7 +26,12 @@ final class Wording {
      * @param meaning what it means
      * @param action what to do
      */
-    record Words(String sign, String label, String meaning, String action) {}
+    record Words(String sign, String label, String meaning, String action) {
+
+        Words with(String other) {
+            return new Words(sign, label, meaning, other);
+        }
+    }
 
     static Words of(Verdict verdict) {
         return switch (verdict) {
@@ -60,12 +74,49 @@ final class Wording {
         };
     }
 
-    /** A verdict that is not final, while the data are not trusted. */
-    static Words untrusted(Words verdict, boolean held) {
-        String meaning = held
-                ? "A boundary was crossed, but the data are not trusted: the verdict is held and told only if trust"
-                        + " returns while it still holds."
-                : "No verdict is told while the data are not trusted.";
+    /**
+     * What to do about a verdict, with names in place of "the variant".
+     *
+     * @param variants the variants that have the verdict; where there is none, no name is put in
+     */
+    static String action(Verdict verdict, List<String> variants) {
+        if (variants.isEmpty()) {
+            return of(verdict).action();
+        }
+        return switch (verdict) {
+            case STOP_BENEFIT ->
+                "It can wait for the morning. The owner may end the experiment and keep "
+                        + String.join(" or ", variants) + ".";
+            case STOP_HARM ->
+                "Tell the owner now: stop showing " + String.join(" and ", variants) + ". Switching "
+                        + (variants.size() == 1 ? "it" : "them") + " off is the safe choice.";
+            case STOP_FUTILITY ->
+                "It can wait for the morning. The owner decides whether the rest of the run is worth its time for "
+                        + String.join(" and ", variants) + ".";
+            case WAITING, CONTINUE, EXHAUSTED -> of(verdict).action();
+        };
+    }
+
+    /** What it means that a verdict waits for trust to return. */
+    static String held(Verdict verdict) {
+        String found = switch (verdict) {
+            case STOP_BENEFIT -> "The benefit boundary was crossed";
+            case STOP_HARM -> "The harm boundary was crossed";
+            case STOP_FUTILITY -> "A benefit of the planned size has become unlikely";
+            case EXHAUSTED -> "The planned information or time is used up without a crossing";
+            case WAITING, CONTINUE ->
+                throw new IllegalArgumentException("held verdict: " + verdict.code() + " (expected: a final one)");
+        };
+        return found + ", but the data are not trusted: the verdict is held, and told if trust returns.";
+    }
+
+    /**
+     * A verdict that is not final, while the data are not trusted.
+     *
+     * @param held what is held, in words; empty when nothing is
+     */
+    static Words untrusted(Words verdict, String held) {
+        String meaning = held.isEmpty() ? "No verdict is told while the data are not trusted." : held;
         return new Words(
                 verdict.sign(), verdict.label(), meaning, "Nothing about the variants; see to the data first.");
     }

@@ -62,9 +62,9 @@ final class ZStrip {
         if (look.lower() == null && look.upper() == null) {
             return "no boundary at this look";
         }
-        String lower = look.lower() == null ? "no lower boundary" : Figures.decimal(look.lower());
-        String upper = look.upper() == null ? "no upper boundary" : Figures.decimal(look.upper());
-        return "boundaries " + lower + " and " + upper;
+        String lower = look.lower() == null ? "no lower" : "lower " + Figures.decimal(look.lower());
+        String upper = look.upper() == null ? "no upper" : "upper " + Figures.decimal(look.upper());
+        return lower + ", " + upper;
     }
 
     private static void bar(Markup html, double from, double to, double reach, String style) {

@@ -1,8 +1,10 @@
 package io.tallyward.service.http;
 
+import io.tallyward.engine.event.RejectReason;
 import io.tallyward.service.metrics.MonitorMetrics;
 import io.tallyward.service.metrics.PrometheusExposition;
 import io.tallyward.service.page.Pages;
+import io.tallyward.service.status.CountReport;
 import io.tallyward.service.status.HealthBoard;
 import io.tallyward.service.status.HealthSource.Health;
 import io.tallyward.service.status.HealthSource.State;
@@ -12,20 +14,32 @@ import java.time.Clock;
 import java.time.Duration;
 import java.time.ZoneOffset;
 import java.util.List;
+import java.util.Map;
 import java.util.Optional;
+import java.util.OptionalLong;
 import java.util.concurrent.CountDownLatch;
 
-/** Serves Northwater's invented experiments, to look at the pages: {@code main} takes the port and, optionally, "ill". */
+/**
+ * Serves Northwater's invented experiments, to look at the pages: {@code main} takes the port and any of "ill",
+ * "starting", "unkeyed" and "empty".
+ */
 final class NorthwaterSite {
 
     private NorthwaterSite() {}
 
     public static void main(String[] arguments) throws InterruptedException {
         StatusBoard board = new StatusBoard();
-        board.publishExperiments(0, Northwater.all());
+        List<String> situation = List.of(arguments);
+        if (!situation.contains("empty")) {
+            board.publishExperiments(0, Northwater.all());
+        }
+        board.publishCounts(0, counted(situation.contains("unkeyed")));
         HealthBoard health = new HealthBoard();
         health.add(() -> new Health("count", State.OK, "Four partitions are counted."));
-        if (arguments.length > 1) {
+        if (situation.contains("starting")) {
+            health.add(() -> new Health("deciding", State.STARTING, "Restoring state from the group's topic."));
+        }
+        if (situation.contains("ill")) {
             health.add(() -> new Health(
                     "webhook",
                     State.DOWN,
@@ -36,6 +50,11 @@ final class NorthwaterSite {
             System.out.println(server.address());
             new CountDownLatch(1).await();
         }
+    }
+
+    private static CountReport counted(boolean unkeyed) {
+        return new CountReport(
+                Map.of(), OptionalLong.empty(), Map.of(RejectReason.values()[0], 1_204L), 60_789, unkeyed);
     }
 
     /** A site whose clock stands a few days into the run. */

@@ -7,6 +7,7 @@ import static org.junit.jupiter.api.Assertions.assertTrue;
 
 import com.fasterxml.jackson.databind.JsonNode;
 import com.fasterxml.jackson.databind.ObjectMapper;
+import io.tallyward.service.status.CountReport;
 import io.tallyward.service.status.HealthBoard;
 import io.tallyward.service.status.HealthSource.Health;
 import io.tallyward.service.status.HealthSource.State;
@@ -26,6 +27,7 @@ import java.nio.charset.StandardCharsets;
 import java.time.Duration;
 import java.util.List;
 import java.util.Map;
+import java.util.OptionalLong;
 import org.junit.jupiter.api.AfterEach;
 import org.junit.jupiter.api.BeforeEach;
 import org.junit.jupiter.api.Test;
@@ -134,7 +136,17 @@ class StatusServerIT {
         board.publishExperiments(0, Map.of());
         assertEquals("[]", send("GET", "api/experiments").body());
         assertEquals(404, send("GET", "experiments/deck-map").statusCode());
-        assertTrue(send("GET", "").body().contains("No experiment yet"));
+        assertTrue(send("GET", "").body().contains("This instance decides about no experiment."));
+    }
+
+    @Test
+    void warnsOnEveryPageOfATopicThatIsNotKeyedByUnit() {
+        board.publishCounts(2, new CountReport(Map.of(), OptionalLong.empty(), Map.of(), 0, true));
+        for (String path : List.of("", "experiments/deck-map")) {
+            assertTrue(send("GET", path).body().contains("The input topic is not keyed by unit: "), path);
+        }
+        board.withdrawCount(2);
+        assertFalse(send("GET", "").body().contains("not keyed by unit"));
     }
 
     @Test

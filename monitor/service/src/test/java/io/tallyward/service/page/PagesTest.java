@@ -8,6 +8,7 @@ import static org.junit.jupiter.api.Assertions.assertTrue;
 import io.tallyward.engine.decide.ExperimentView;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.Variant;
+import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
@@ -22,6 +23,7 @@ import java.time.ZoneOffset;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
+import java.util.stream.IntStream;
 import javax.xml.parsers.DocumentBuilderFactory;
 import javax.xml.parsers.ParserConfigurationException;
 import org.junit.jupiter.api.Test;
@@ -38,21 +40,23 @@ class PagesTest {
 
     private static final String NASTY = "<script>alert('1')</script> & \"quotes\" ]]> \u0001 é";
 
+    private static final MonitorState FINE = new MonitorState(List.of(), false, 0);
+
     private final Pages pages = new Pages(Clock.fixed(Northwater.START.plus(Duration.ofHours(136)), ZoneOffset.UTC));
 
     @Test
     void isWellFormedForEverySituation() {
-        parse(pages.overview(Northwater.all().values(), List.of()));
-        parse(pages.overview(List.of(), List.of(new Health("kafka", State.DOWN, "No broker answers."))));
+        parse(pages.overview(Northwater.all().values(), FINE));
+        parse(pages.overview(List.of(), ill(State.DOWN)));
         parse(pages.notFound());
-        Northwater.all().values().forEach(view -> parse(pages.experiment(view, List.of())));
+        Northwater.all().values().forEach(view -> parse(pages.experiment(view, FINE)));
     }
 
     @Test
     void escapesWhateverComesFromOutside() {
         ExperimentView view = nasty();
-        List<Health> checks = List.of(new Health(NASTY, State.DOWN, NASTY));
-        for (String html : List.of(pages.overview(List.of(view), checks), pages.experiment(view, checks))) {
+        MonitorState monitor = new MonitorState(List.of(new Health(NASTY, State.DOWN, NASTY)), true, 1);
+        for (String html : List.of(pages.overview(List.of(view), monitor), pages.experiment(view, monitor))) {
             assertFalse(html.contains("<script>"));
             Document page = parse(html);
             assertEquals(1, page.getElementsByTagName("script").getLength(), "the page's own");
@@ -63,7 +67,7 @@ class PagesTest {
     @Test
     void needsNothingInlineAndNothingFromElsewhere() {
         for (ExperimentView view : Northwater.all().values()) {
-            NodeList elements = parse(pages.experiment(view, List.of())).getElementsByTagName("*");
+            NodeList elements = parse(pages.experiment(view, FINE)).getElementsByTagName("*");
             for (int i = 0; i < elements.getLength(); i++) {
                 Element element = (Element) elements.item(i);
                 for (int a = 0; a < element.getAttributes().getLength(); a++) {
@@ -79,7 +83,7 @@ class PagesTest {
 
     @Test
     void putsProblemsFirst() {
-        String html = pages.overview(Northwater.all().values(), List.of());
+        String html = pages.overview(Northwater.all().values(), FINE);
         List<Integer> places = List.of("return-prompt", "cabin-upsell", "quay-banner", "fare-chip", "pier-map").stream()
                 .map(name -> html.indexOf(">" + name + "<"))
                 .toList();
@@ -146,8 +150,61 @@ class PagesTest {
         assertThrows(IllegalStateException.class, () -> new Markup().open("p").document());
     }
 
+    @Test
+    void putsEveryReasonOnARowOfItsOwn() {
+        Document page = parse(pages.experiment(Northwater.returnPrompt(), FINE));
+        NodeList rows = page.getElementsByTagName("tr");
+        List<String> reasons = IntStream.range(0, rows.getLength())
+                .mapToObj(i -> (Element) rows.item(i))
+                .filter(row -> row.getAttribute("class").equals("remark"))
+                .map(Element::getTextContent)
+                .toList();
+        assertEquals(5, reasons.size());
+        assertEquals("Why: z −3.900 has reached the boundary", reasons.get(0));
+    }
+
+    @Test
+    void showsHarmOnlyWhereItHasABoundary() {
+        ExperimentView view = Northwater.fareChip();
+        Comparison look = view.comparisons().get("chip");
+        assertTrue(chart(look, true).contains(">harm<"), "below");
+        assertTrue(chart(look, false).contains(">harm<"), "above");
+        assertFalse(chart(bounded(look, 2.5, null), true).contains("harm"));
+        assertFalse(chart(bounded(look, null, -2.5), false).contains("harm"));
+        assertTrue(chart(bounded(look, null, -2.5), false).contains(">benefit<"));
+    }
+
+    private static String chart(Comparison look, boolean higherIsBetter) {
+        Markup html = new Markup();
+        PathChart.draw(html, List.of(look), higherIsBetter);
+        return html.document();
+    }
+
+    private static Comparison bounded(Comparison look, Double upper, Double lower) {
+        return new Comparison(
+                look.variant(),
+                look.look(),
+                look.z(),
+                look.information(),
+                look.informationFraction(),
+                look.alphaSpent(),
+                upper,
+                lower,
+                look.futility(),
+                look.difference(),
+                look.differenceLower(),
+                look.differenceUpper(),
+                look.verdict(),
+                look.held(),
+                look.reason());
+    }
+
+    private static MonitorState ill(State state) {
+        return new MonitorState(List.of(new Health("kafka", state, "No broker answers.")), false, 0);
+    }
+
     private String text(ExperimentView view) {
-        return parse(pages.experiment(view, List.of())).getDocumentElement().getTextContent();
+        return parse(pages.experiment(view, FINE)).getDocumentElement().getTextContent();
     }
 
     private static ExperimentView nasty() {

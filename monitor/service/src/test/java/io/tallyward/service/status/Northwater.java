@@ -24,6 +24,7 @@ import java.time.Instant;
 import java.util.ArrayList;
 import java.util.LinkedHashMap;
 import java.util.List;
+import java.util.Locale;
 import java.util.Map;
 import java.util.Optional;
 
@@ -98,7 +99,7 @@ public final class Northwater {
                 plan,
                 counts,
                 Trust.MISMATCH,
-                "The split contradicts the plan (p = 4.1e-9, limit 0.001) since the window that ends at"
+                "The split contradicts the plan (p = 4.1e-09, limit 0.0010) since the window that ends at"
                         + " 2026-05-06T14:35:00Z; worst segment: platform=app.",
                 Verdict.CONTINUE,
                 Map.of("inside", new double[] {0.7, 1.8, 2.6, 3.4, 4.2}));
@@ -140,6 +141,16 @@ public final class Northwater {
 
     /** The same experiment with another verdict and another state of trust. */
     public static ExperimentView with(ExperimentView view, Verdict verdict, Trust trust) {
+        return with(view, verdict, trust, view.verdicts(), view.held());
+    }
+
+    /** The same experiment with another verdict, state of trust, and verdicts told and held by variant. */
+    public static ExperimentView with(
+            ExperimentView view,
+            Verdict verdict,
+            Trust trust,
+            Map<String, Verdict> verdicts,
+            Map<String, Verdict> held) {
         return new ExperimentView(
                 view.plan(),
                 view.planDigest(),
@@ -151,8 +162,8 @@ public final class Northwater {
                 trust == Trust.SOUND ? "" : "Invented reason for " + trust.code() + ".",
                 verdict,
                 view.comparisons(),
-                view.verdicts(),
-                view.held(),
+                verdicts,
+                held,
                 view.history(),
                 view.looksTaken(),
                 view.looksDelayed(),
@@ -268,7 +279,7 @@ public final class Northwater {
                 last ? verdict : Verdict.CONTINUE,
                 last && trust == Trust.MISMATCH ? Verdict.STOP_BENEFIT : null,
                 last && (verdict.settled() || trust == Trust.MISMATCH)
-                        ? "z crossed its boundary"
-                        : "no boundary was crossed");
+                        ? String.format(Locale.ROOT, "z %.3f has reached the boundary", z)
+                        : String.format(Locale.ROOT, "z %.3f lies between the boundaries", z));
     }
 }
