@@ -121,7 +121,7 @@ public final class StatusServer implements AutoCloseable {
         for (Throwable cause = failure; cause != null; cause = cause.getCause()) {
             if (cause instanceof BindException) {
                 return where + " is in use or not ours (" + cause.getMessage()
-                        + "). Stop the process that listens there, or set http.port to a free port (0 takes any).";
+                        + "). Stop the process that listens there, set http.port to a free port (0 takes any), or correct http.host.";
             }
         }
         return where + " cannot be listened on (" + failure.getMessage()
