@@ -22,7 +22,13 @@ import picocli.CommandLine.Option;
 @Command(
         name = "boundaries",
         description = "Show the planned looks of a plan, their boundaries and how many trials it needs.",
-        mixinStandardHelpOptions = true)
+        mixinStandardHelpOptions = true,
+        exitCodeListHeading = ExitCode.HEADING,
+        exitCodeList = {
+            "0:The design is shown.",
+            "2:An argument or the plan cannot be used.",
+            "3:Something unforeseen happened."
+        })
 final class BoundariesCommand extends CommandBase {
 
     @Option(names = "--plan", required = true, paramLabel = "FILE", description = "The plan file.")

@@ -25,7 +25,13 @@ import picocli.CommandLine.TypeConversionException;
 @Command(
         name = "replay",
         description = "Count and decide over a file of events, as the service would, without side effects.",
-        mixinStandardHelpOptions = true)
+        mixinStandardHelpOptions = true,
+        exitCodeListHeading = ExitCode.HEADING,
+        exitCodeList = {
+            "0:The file was read to its end; rejected records are told and change nothing here.",
+            "2:An argument, a plan or the file of events cannot be used.",
+            "3:Something unforeseen happened."
+        })
 final class ReplayCommand extends CommandBase {
 
     private static final int MAX_PARTITIONS = 4_096;
