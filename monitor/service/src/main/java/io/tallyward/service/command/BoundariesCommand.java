@@ -75,14 +75,18 @@ final class BoundariesCommand extends CommandBase {
                 .put("alpha", design.alpha())
                 .put("sides", sides(plan.test().sides()))
                 .put("spending", plan.test().spending().code());
+        PlannedPath path = new PlannedPath(plan, design);
         ArrayNode looks = object.putArray("looks");
         for (Look look : design.looks()) {
-            looks.addObject()
+            ObjectNode entry = looks.addObject()
                     .put("look", look.number())
                     .put("informationFraction", look.information())
                     .put("alphaSpent", look.upperSpent() + look.lowerSpent())
                     .put("upper", finite(look.upper()))
                     .put("lower", finite(look.lower()));
+            if (plan.futility().isPresent()) {
+                entry.put("futility", finite(path.futility(look.number() - 1)));
+            }
         }
         object.put("maximumInformation", design.maximumInformation());
         ObjectNode trials = object.putObject("trialsPerVariant");
