@@ -22,7 +22,13 @@ import picocli.CommandLine.Option;
 @Command(
         name = "boundaries",
         description = "Show the planned looks of a plan, their boundaries and how many trials it needs.",
-        mixinStandardHelpOptions = true)
+        mixinStandardHelpOptions = true,
+        exitCodeListHeading = ExitCode.HEADING,
+        exitCodeList = {
+            "0:The design is shown.",
+            "2:An argument or the plan cannot be used.",
+            "3:Something unforeseen happened."
+        })
 final class BoundariesCommand extends CommandBase {
 
     @Option(names = "--plan", required = true, paramLabel = "FILE", description = "The plan file.")
@@ -69,14 +75,18 @@ final class BoundariesCommand extends CommandBase {
                 .put("alpha", design.alpha())
                 .put("sides", sides(plan.test().sides()))
                 .put("spending", plan.test().spending().code());
+        PlannedPath path = new PlannedPath(plan, design);
         ArrayNode looks = object.putArray("looks");
         for (Look look : design.looks()) {
-            looks.addObject()
+            ObjectNode entry = looks.addObject()
                     .put("look", look.number())
                     .put("informationFraction", look.information())
                     .put("alphaSpent", look.upperSpent() + look.lowerSpent())
                     .put("upper", finite(look.upper()))
                     .put("lower", finite(look.lower()));
+            if (plan.futility().isPresent()) {
+                entry.put("futility", finite(path.futility(look.number() - 1)));
+            }
         }
         object.put("maximumInformation", design.maximumInformation());
         ObjectNode trials = object.putObject("trialsPerVariant");

@@ -4,9 +4,9 @@ import io.tallyward.engine.decide.PlanDesign;
 import io.tallyward.engine.plan.LookSchedule;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.TestPlan.Better;
+import io.tallyward.engine.plan.TestPlan.Sides;
 import io.tallyward.engine.plan.Variant;
 import io.tallyward.service.config.document.ScalarType;
-import io.tallyward.statistics.boundary.ExitProbabilities;
 import io.tallyward.statistics.boundary.Look;
 import java.util.ArrayList;
 import java.util.List;
@@ -43,16 +43,8 @@ final class BoundariesText {
                 + plan.test().spending().code() + ", power "
                 + shortest(plan.test().power()) + " for "
                 + shortest(plan.test().baseline()) + " -> " + shortest(rateUnderEffect()));
-        Table table = new Table("look", "information", "alpha spent", "upper z", "lower z");
-        for (Look look : design.looks()) {
-            table.row(
-                    String.valueOf(look.number()),
-                    decimals(look.information(), 4),
-                    decimals(look.upperSpent() + look.lowerSpent(), 6),
-                    boundary(look.upper()),
-                    boundary(look.lower()));
-        }
-        lines.addAll(table.lines());
+        PlannedPath path = new PlannedPath(plan, design);
+        lines.addAll(looks(design, path).lines());
         StringBuilder trials = new StringBuilder("planned trials:");
         design.trials()
                 .forEach((variant, count) ->
@@ -61,19 +53,50 @@ final class BoundariesText {
                 .append(decimals(design.inflation(), 4))
                 .append(" times those of a single look")
                 .toString());
-        lines.add("expected looks: " + decimals(expectedLooks(design, 0), 1) + " without an effect, "
-                + decimals(expectedLooks(design, signedDrift(design)), 1) + " with the smallest effect, of "
-                + design.looks().size() + (plan.futility().isPresent() ? ", futility ignored" : ""));
+        lines.add("expected looks: " + decimals(path.expectedLooksWithoutEffect(), 1) + " without an effect, "
+                + decimals(path.expectedLooks(), 1) + " with the smallest effect, of "
+                + design.looks().size() + (plan.futility().isPresent() ? ", futility obeyed" : ""));
         return lines;
+    }
+
+    private Table looks(PlanDesign design, PlannedPath path) {
+        Table table = new Table(cells("futility z", "look", "information", "alpha spent", "upper z", "lower z"));
+        for (Look look : design.looks()) {
+            table.row(cells(
+                    boundary(path.futility(look.number() - 1)),
+                    String.valueOf(look.number()),
+                    decimals(look.information(), 4),
+                    decimals(look.upperSpent() + look.lowerSpent(), 6),
+                    boundary(look.upper()),
+                    boundary(look.lower())));
+        }
+        return table;
+    }
+
+    /** The cells of a row, and the one about futility at its end if the plan has futility. */
+    private String[] cells(String futility, String... others) {
+        List<String> cells = new ArrayList<>(List.of(others));
+        if (plan.futility().isPresent()) {
+            cells.add(futility);
+        }
+        return cells.toArray(String[]::new);
     }
 
     private List<String> legend() {
         List<String> lines = new ArrayList<>(List.of(
                 "look         number of the look" + schedule(),
                 "information  share of the planned information that is in at that look",
-                "alpha spent  chance of a false alarm up to and including that look, both directions together",
+                "alpha spent  chance of a false alarm up to and including that look, "
+                        + (plan.test().sides() == Sides.TWO
+                                ? "both directions together"
+                                : "in the direction of benefit"),
                 "upper z      stop when the z-value of variant minus control is at or above it",
                 "lower z      stop when it is at or below it; " + NONE + " means no stop in that direction"));
+        if (plan.futility().isPresent()) {
+            lines.add("futility z   a benefit has become unlikely when it is "
+                    + (plan.test().better() == Better.HIGHER ? "below" : "above")
+                    + " it: advice to stop, not an obligation; none at the last look");
+        }
         if (!plan.run().atLeast().isZero()) {
             lines.add("No benefit is declared in the first "
                     + ScalarType.written(plan.run().atLeast()) + ".");
@@ -92,28 +115,6 @@ final class BoundariesText {
     private double rateUnderEffect() {
         double effect = plan.test().smallestEffect();
         return plan.test().baseline() + (plan.test().better() == Better.HIGHER ? effect : -effect);
-    }
-
-    private double signedDrift(PlanDesign design) {
-        return plan.test().better() == Better.HIGHER ? design.drift() : -design.drift();
-    }
-
-    /** Mean number of looks until a boundary is crossed or the last look is taken. */
-    private static double expectedLooks(PlanDesign design, double drift) {
-        ExitProbabilities exits = ExitProbabilities.of(
-                design.looks().stream().mapToDouble(Look::information).toArray(),
-                design.looks().stream().mapToDouble(Look::upper).toArray(),
-                design.looks().stream().mapToDouble(Look::lower).toArray(),
-                drift);
-        double[] upper = exits.upper();
-        double[] lower = exits.lower();
-        double expected = 0;
-        double running = 1;
-        for (int k = 0; k < upper.length; k++) {
-            expected += running;
-            running -= upper[k] + lower[k];
-        }
-        return expected;
     }
 
     private static String boundary(double z) {

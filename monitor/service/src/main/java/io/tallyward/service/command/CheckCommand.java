@@ -18,7 +18,13 @@ import picocli.CommandLine.Option;
 @Command(
         name = "check",
         description = "Check configuration, plans and broker, and report all problems at once.",
-        mixinStandardHelpOptions = true)
+        mixinStandardHelpOptions = true,
+        exitCodeListHeading = ExitCode.HEADING,
+        exitCodeList = {
+            "0:Nothing is wrong.",
+            "2:An argument, the configuration or a plan cannot be used.",
+            "3:The broker does not answer or refuses, or an input topic is not as it has to be."
+        })
 final class CheckCommand extends CommandBase {
 
     private final Map<String, String> environment;
@@ -66,11 +72,13 @@ final class CheckCommand extends CommandBase {
         }
         output.line("configuration  fine: " + file);
         output.line("plans          fine: " + String.join(", ", experiments));
-        output.line("broker         "
-                + (withoutBroker
-                        ? "not asked"
-                        : "fine: " + config.kafka().bootstrapServers() + ", "
-                                + String.join(", ", config.input().topics()) + " with "
-                                + broker.partitions().values().iterator().next() + " partitions"));
+        output.line("broker         " + (withoutBroker ? "not asked" : "fine: " + topics(config, broker)));
+    }
+
+    private static String topics(ServiceConfig config, BrokerCheck broker) {
+        int partitions = broker.partitions().values().iterator().next();
+        return config.kafka().bootstrapServers() + ", "
+                + String.join(", ", config.input().topics()) + " with " + partitions
+                + (partitions == 1 ? " partition" : " partitions");
     }
 }

@@ -1,12 +1,17 @@
 package io.tallyward.service.command;
 
 import io.tallyward.engine.EngineVersion;
+import io.tallyward.service.config.document.Suggestion;
 import java.io.PrintWriter;
+import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import picocli.CommandLine;
 import picocli.CommandLine.Command;
 import picocli.CommandLine.IVersionProvider;
+import picocli.CommandLine.Model.CommandSpec;
 import picocli.CommandLine.ParameterException;
+import picocli.CommandLine.UnmatchedArgumentException;
 
 /** Puts the command line together. */
 public final class CommandLineFactory {
@@ -20,7 +25,8 @@ public final class CommandLineFactory {
             versionProvider = Version.class,
             footer = {
                 "",
-                "Exit status: 0 fine, 1 the answer is no, 2 bad input, 3 broken surroundings.",
+                "Exit status: 0 fine, 2 bad input, 3 broken surroundings;",
+                "1 is reserved for commands whose answer can be no.",
                 "tallyward COMMAND --help explains a command."
             })
     private static final class Root {}
@@ -60,8 +66,33 @@ public final class CommandLineFactory {
         CommandLine command = e.getCommandLine();
         String name = command.getCommandSpec().qualifiedName();
         PrintWriter err = command.getErr();
-        err.println(e.getMessage().replaceAll("[.\\s]+$", "") + ". See " + name + " --help.");
+        err.println(sentence(e) + " See " + name + " --help.");
         err.flush();
         return ExitCode.BAD_INPUT.status();
+    }
+
+    /** A slip in the name of a required option shows as one that is missing and one that is unknown: both are told. */
+    private static String sentence(ParameterException e) {
+        CommandLine command = e.getCommandLine();
+        Optional<String> unknown = command.getUnmatchedArguments().stream()
+                .filter(argument -> argument.matches("--?[A-Za-z].*"))
+                .map(argument -> argument.replaceFirst("=.*", ""))
+                .findFirst()
+                .map(option -> unknownOption(option, command.getCommandSpec()));
+        if (e instanceof UnmatchedArgumentException unmatched && unmatched.isUnknownOption() && unknown.isPresent()) {
+            return unknown.get();
+        }
+        String message = e.getMessage().replaceAll("[.\\s]+$", "") + ".";
+        return unknown.map(text -> message + " " + text).orElse(message);
+    }
+
+    private static String unknownOption(String option, CommandSpec spec) {
+        List<String> known = spec.optionsMap().keySet().stream()
+                .filter(name -> name.startsWith("--"))
+                .toList();
+        return "Unknown option: '" + option + "'."
+                + Suggestion.among(option, known)
+                        .map(name -> " Did you mean " + name + "?")
+                        .orElse("");
     }
 }

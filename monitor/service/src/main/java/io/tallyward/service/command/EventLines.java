@@ -15,6 +15,7 @@ final class EventLines implements AutoCloseable {
     private final InputStream in;
     private final int maxBytes;
     private final byte[] buffer = new byte[1 << 16];
+    private long number;
     private int from;
     private int to;
 
@@ -28,11 +29,17 @@ final class EventLines implements AutoCloseable {
     Optional<byte[]> next() throws IOException {
         while (from < to || fill()) {
             byte[] line = line();
+            number++;
             if (!isBlank(line)) {
                 return Optional.of(line);
             }
         }
         return Optional.empty();
+    }
+
+    /** Where the last line stands in the file, from 1; blank lines count. */
+    long number() {
+        return number;
     }
 
     private byte[] line() throws IOException {

@@ -7,7 +7,10 @@ import io.tallyward.service.config.document.Problem;
 import java.io.PrintWriter;
 import java.util.List;
 
-/** Where a command writes: results to one stream, problems to the other. With JSON everything goes to the first. */
+/**
+ * Where a command writes: results to one stream, problems and remarks to the other. With JSON the problems go to the first
+ * as well.
+ */
 final class Output {
 
     private static final JsonMapper JSON = new JsonMapper();
@@ -66,6 +69,12 @@ final class Output {
                 err.println(problem.message());
             }
         }
+        err.flush();
+    }
+
+    /** Writes a sentence about the input of a command that did its work all the same; never among the results. */
+    void remark(String sentence) {
+        err.println(sentence);
         err.flush();
     }
 

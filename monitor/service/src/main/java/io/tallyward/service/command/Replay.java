@@ -1,7 +1,9 @@
 package io.tallyward.service.command;
 
 import io.tallyward.connector.format.Decoded;
+import io.tallyward.connector.format.EventMapping;
 import io.tallyward.connector.format.JsonEventReader;
+import io.tallyward.connector.format.Quoted;
 import io.tallyward.connector.kafka.KeyPartitions;
 import io.tallyward.engine.count.CountSettings;
 import io.tallyward.engine.count.CountShard;
@@ -14,10 +16,11 @@ import io.tallyward.engine.event.Event;
 import io.tallyward.engine.event.RejectReason;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.service.config.document.ScalarType;
 import java.nio.charset.StandardCharsets;
+import java.time.Instant;
 import java.util.ArrayList;
 import java.util.Comparator;
-import java.util.EnumMap;
 import java.util.List;
 import java.util.Map;
 import java.util.SortedMap;
@@ -29,6 +32,9 @@ import java.util.TreeMap;
  */
 final class Replay {
 
+    /** Longer records are rejected; of such a record no more than this and one byte need be given. */
+    static final int MAX_EVENT_BYTES = 65_536;
+
     /** How many events are taken between two drains; any number gives the same results. */
     private static final int EVENTS_PER_DRAIN = 10_000;
 
@@ -39,34 +45,42 @@ final class Replay {
     private final List<CountShard> counting = new ArrayList<>();
     private final DecideShard deciding;
     private final JsonEventReader reader;
-    private final Map<RejectReason, Long> rejected = new EnumMap<>(RejectReason.class);
+    private final String maxSkew;
+    private final Rejections rejections = new Rejections();
     private final SortedMap<WindowKey, long[][]> windows = new TreeMap<>();
     private final List<DecisionRecord> decisions = new ArrayList<>();
     private long events;
 
     /** A replay over {@code partitions} partitions; the events of a unit always meet in one. */
-    Replay(List<Plan> plans, int partitions, CountSettings settings, JsonEventReader reader) {
+    Replay(List<Plan> plans, int partitions, CountSettings settings) {
         plans.forEach(plan -> this.plans.put(plan.experiment(), plan));
         for (int partition = 0; partition < partitions; partition++) {
             counting.add(new CountShard(partition, partitions, plans, settings, 1));
         }
         this.deciding = new DecideShard(plans);
-        this.reader = reader;
-        for (RejectReason reason : RejectReason.values()) {
-            rejected.put(reason, 0L);
-        }
+        this.reader = new JsonEventReader(EventMapping.DEFAULT, MAX_EVENT_BYTES);
+        this.maxSkew = ScalarType.written(settings.maxSkew());
     }
 
-    /** Takes the next record. */
-    void take(byte[] line) {
+    /**
+     * Takes the next record.
+     *
+     * @param value the bytes of the record
+     * @param line where it stands in the file, from 1
+     */
+    void take(byte[] value, long line) {
         events++;
-        Decoded decoded = reader.read(line);
+        Decoded decoded = reader.read(value);
         if (decoded instanceof Decoded.Refused refused) {
-            reject(refused.reason());
+            boolean cut = value.length > MAX_EVENT_BYTES;
+            String detail = cut ? "the record has more than " + MAX_EVENT_BYTES + " bytes" : refused.detail();
+            rejections.add(refused.reason(), line, detail);
         } else if (decoded instanceof Decoded.Accepted accepted) {
             Event event = accepted.event();
             long timestamp = accepted.receivedMillis().orElse(event.atMillis());
-            shardOf(event.unit()).apply(SOURCE, timestamp, event).ifPresent(this::reject);
+            shardOf(event.unit())
+                    .apply(SOURCE, timestamp, event)
+                    .ifPresent(reason -> rejections.add(reason, line, detail(reason, event, timestamp)));
         }
         if (events % EVENTS_PER_DRAIN == 0) {
             drain();
@@ -91,8 +105,17 @@ final class Replay {
         return counting.get(KeyPartitions.partitionOf(key, counting.size()));
     }
 
-    private void reject(RejectReason reason) {
-        rejected.merge(reason, 1L, Long::sum);
+    /** What a shard has against a record that is an event. */
+    private String detail(RejectReason reason, Event event, long timestampMillis) {
+        return switch (reason) {
+            case UNKNOWN_EXPERIMENT -> "no plan names the experiment " + Quoted.of(event.experiment());
+            case UNKNOWN_VARIANT ->
+                "the plan of " + event.experiment() + " has no variant " + Quoted.of(event.variant());
+            case BAD_TIME ->
+                "the event time " + Instant.ofEpochMilli(event.atMillis()) + " lies more than " + maxSkew
+                        + " ahead of its receipt at " + Instant.ofEpochMilli(timestampMillis);
+            case UNPARSABLE, MISSING_FIELD, OVERSIZED -> "the event cannot be counted";
+        };
     }
 
     private void drain() {
@@ -127,9 +150,9 @@ final class Replay {
         return events;
     }
 
-    /** Rejected records by reason; every reason is present. */
-    Map<RejectReason, Long> rejected() {
-        return rejected;
+    /** The records that were rejected. */
+    Rejections rejections() {
+        return rejections;
     }
 
     /** Trials and successes of every variant, in the plan's order, of each window with a trial. */

@@ -1,7 +1,5 @@
 package io.tallyward.service.command;
 
-import io.tallyward.connector.format.EventMapping;
-import io.tallyward.connector.format.JsonEventReader;
 import io.tallyward.engine.count.CountSettings;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.service.config.document.BadInputException;
@@ -25,11 +23,16 @@ import picocli.CommandLine.TypeConversionException;
 @Command(
         name = "replay",
         description = "Count and decide over a file of events, as the service would, without side effects.",
-        mixinStandardHelpOptions = true)
+        mixinStandardHelpOptions = true,
+        exitCodeListHeading = ExitCode.HEADING,
+        exitCodeList = {
+            "0:The file was read to its end; rejected records are told and change nothing here.",
+            "2:An argument, a plan or the file of events cannot be used.",
+            "3:Something unforeseen happened."
+        })
 final class ReplayCommand extends CommandBase {
 
     private static final int MAX_PARTITIONS = 4_096;
-    private static final int MAX_EVENT_BYTES = 65_536;
 
     /** A replay forgets its units at its end, so their hash needs no secret. */
     private static final byte[] UNIT_KEY = "replay".getBytes(StandardCharsets.UTF_8);
@@ -67,17 +70,14 @@ final class ReplayCommand extends CommandBase {
     @Override
     ExitCode run(Output output) throws BadInputException {
         List<Plan> plans = PlanDirectory.read(directory).orElseThrow();
-        Replay replay = new Replay(
-                plans,
-                partitions,
-                new CountSettings(maxSkew, IDLE_AFTER, UNIT_KEY),
-                new JsonEventReader(EventMapping.DEFAULT, MAX_EVENT_BYTES));
+        Replay replay = new Replay(plans, partitions, new CountSettings(maxSkew, IDLE_AFTER, UNIT_KEY));
         takeAll(replay);
         if (output.json()) {
             new ReplayJson(replay).writeTo(output);
         } else {
             new ReplayText(replay).lines().forEach(output::line);
         }
+        replay.rejections().sentences(file).forEach(output::remark);
         return ExitCode.FINE;
     }
 
@@ -85,9 +85,9 @@ final class ReplayCommand extends CommandBase {
         if (Files.isDirectory(file)) {
             throw unreadable("a directory");
         }
-        try (EventLines lines = new EventLines(Files.newInputStream(file), MAX_EVENT_BYTES)) {
+        try (EventLines lines = new EventLines(Files.newInputStream(file), Replay.MAX_EVENT_BYTES)) {
             for (Optional<byte[]> line = lines.next(); line.isPresent(); line = lines.next()) {
-                replay.take(line.get());
+                replay.take(line.get(), lines.number());
             }
         } catch (IOException e) {
             throw unreadable("cannot be read: " + DocumentReader.reason(e));

@@ -54,7 +54,7 @@ final class ReplayJson {
         ObjectNode object = Output.typed("input").put("events", replay.events());
         ObjectNode rejected = object.putObject("rejected");
         for (RejectReason reason : RejectReason.values()) {
-            rejected.put(reason.code(), replay.rejected().get(reason));
+            rejected.put(reason.code(), replay.rejections().counts().get(reason));
         }
         return object;
     }

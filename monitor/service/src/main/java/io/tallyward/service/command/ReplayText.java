@@ -7,6 +7,7 @@ import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.Trust;
+import io.tallyward.engine.record.Verdict;
 import io.tallyward.service.command.Replay.WindowKey;
 import java.util.ArrayList;
 import java.util.List;
@@ -29,20 +30,21 @@ final class ReplayText {
     List<String> lines() {
         List<String> lines = new ArrayList<>();
         for (Plan plan : replay.plans().values()) {
-            lines.addAll(experiment(plan));
+            List<DecisionRecord> decisions = replay.decisions().stream()
+                    .filter(decision -> decision.experiment().equals(plan.experiment()))
+                    .toList();
+            lines.addAll(experiment(plan, decisions));
             lines.add("");
         }
+        lines.add("Windows still open at the end of the file are counted too.");
         lines.add("events read: " + replay.events() + ", rejected: " + rejected());
         return lines;
     }
 
-    private List<String> experiment(Plan plan) {
+    private List<String> experiment(Plan plan, List<DecisionRecord> decisions) {
         List<String> lines = new ArrayList<>();
-        lines.add(plan.experiment() + ": " + standing(plan.experiment()));
+        lines.add(plan.experiment() + ": " + standing(plan.experiment(), decisions));
         lines.addAll(counts(plan).lines());
-        List<DecisionRecord> decisions = replay.decisions().stream()
-                .filter(decision -> decision.experiment().equals(plan.experiment()))
-                .toList();
         if (decisions.stream().anyMatch(decision -> !decision.comparisons().isEmpty())) {
             lines.addAll(looks(decisions).lines());
         }
@@ -55,11 +57,18 @@ final class ReplayText {
         return lines;
     }
 
-    private String standing(String experiment) {
+    /** What the last record says, whatever its occasion; before the first one, where the experiment stands. */
+    private String standing(String experiment, List<DecisionRecord> decisions) {
+        if (!decisions.isEmpty()) {
+            DecisionRecord last = decisions.get(decisions.size() - 1);
+            return standing(last.verdict(), last.trust());
+        }
         ExperimentView view = replay.views().get(experiment);
-        return view == null
-                ? "no events"
-                : view.verdict().code() + ", data " + view.trust().code();
+        return view == null ? "no events" : standing(view.verdict(), view.trust());
+    }
+
+    private static String standing(Verdict verdict, Trust trust) {
+        return verdict.code() + ", data " + trust.code();
     }
 
     private Table counts(Plan plan) {
@@ -122,7 +131,7 @@ final class ReplayText {
     }
 
     private String rejected() {
-        String reasons = replay.rejected().entrySet().stream()
+        String reasons = replay.rejections().counts().entrySet().stream()
                 .filter(entry -> entry.getValue() > 0)
                 .map(entry -> entry.getKey().code() + " " + entry.getValue())
                 .collect(Collectors.joining(", "));

@@ -16,7 +16,13 @@ import picocli.CommandLine.Option;
 @Command(
         name = "watch",
         description = "Run the service until it is told to stop (SIGTERM or Ctrl-C).",
-        mixinStandardHelpOptions = true)
+        mixinStandardHelpOptions = true,
+        exitCodeListHeading = ExitCode.HEADING,
+        exitCodeList = {
+            "0:It was told to stop, and stopped in good order.",
+            "2:An argument, the configuration or a plan cannot be used, or contradicts what was counted under it before.",
+            "3:A broker, a port or something else around it is not as it has to be."
+        })
 final class WatchCommand extends CommandBase {
 
     private final Map<String, String> environment;

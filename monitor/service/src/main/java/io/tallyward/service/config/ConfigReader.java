@@ -161,12 +161,15 @@ public final class ConfigReader {
     private static Optional<WebhookConfig> webhook(Values section, SecretReader secrets) {
         Optional<Secret> secret = secrets.signingSecret(section);
         boolean allowHttp = section.find(ConfigKeys.Webhook.ALLOW_HTTP).orElse(false);
-        Optional<URI> url = section.find(ConfigKeys.Webhook.URL).flatMap(text -> url(section, text, allowHttp));
+        boolean allowPrivate = section.find(ConfigKeys.Webhook.ALLOW_PRIVATE).orElse(false);
+        Optional<URI> url = section.find(ConfigKeys.Webhook.URL)
+                .flatMap(text -> url(section, text, allowHttp))
+                .filter(address -> allowPrivate || isPublic(section, address));
         return secret.flatMap(key -> url.map(address -> new WebhookConfig(
                 address,
                 key,
                 allowHttp,
-                section.find(ConfigKeys.Webhook.ALLOW_PRIVATE).orElse(false),
+                allowPrivate,
                 link(section, ConfigKeys.Webhook.RUNBOOK),
                 link(section, ConfigKeys.Webhook.PAGES))));
     }
@@ -214,5 +217,17 @@ public final class ConfigReader {
             return Optional.empty();
         }
         return Optional.of(url);
+    }
+
+    private static boolean isPublic(Values section, URI url) {
+        if (!LiteralHost.isPrivate(url.getHost())) {
+            return true;
+        }
+        section.refuse(
+                ConfigKeys.Webhook.URL,
+                "an address in a private network",
+                "a public address",
+                "To send there all the same, set webhook.allow-private: true.");
+        return false;
     }
 }

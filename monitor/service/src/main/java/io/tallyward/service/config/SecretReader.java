@@ -24,6 +24,12 @@ final class SecretReader {
     private static final int MIN_SIGNING_BYTES = 24;
     private static final int MAX_SIGNING_BYTES = 64;
 
+    /** The fewest bytes that will do, which fill whole groups of Base64: no padding. */
+    private static final String MAKE_SIGNING =
+            "Make one with: printf '" + SIGNING_PREFIX + "%s\\n' \"$(openssl rand -base64 24)\"";
+
+    private static final String MAKE_UNIT_KEY = "Make one with: head -c 32 /dev/urandom | base64";
+
     private final Path directory;
     private final Map<String, String> environment;
 
@@ -42,7 +48,8 @@ final class SecretReader {
                         section.gives(file) ? file : variable,
                         "the " + found + " is not of the required form",
                         SIGNING_PREFIX + " followed by the Base64 of " + MIN_SIGNING_BYTES + " to " + MAX_SIGNING_BYTES
-                                + " random bytes"));
+                                + " random bytes",
+                        MAKE_SIGNING));
         return secret;
     }
 
@@ -53,8 +60,9 @@ final class SecretReader {
         secret.filter(found -> found.length() < MIN_UNIT_KEY_BYTES)
                 .ifPresent(found -> section.refuse(
                         section.gives(file) ? file : variable,
-                        "the " + found + " has " + found.length() + " bytes",
-                        "at least " + MIN_UNIT_KEY_BYTES + " bytes"));
+                        "the " + found + " has " + found.length() + (found.length() == 1 ? " byte" : " bytes"),
+                        "at least " + MIN_UNIT_KEY_BYTES + " bytes",
+                        MAKE_UNIT_KEY));
         return secret;
     }
 

@@ -149,6 +149,45 @@ class BoundariesCommandTest {
     }
 
     @Test
+    void showsFutilityWhereThePlanHasIt() throws IOException {
+        CommandRun run = CommandRun.of(
+                "boundaries", "--plan", write(PlannedPathTest.PLAN).toString());
+        assertEquals(
+                List.of(
+                        "chip against bare: level 0.025, one-sided, spending obrien-fleming, power 0.8 for 0.12 -> 0.126",
+                        "look  information  alpha spent  upper z  lower z  futility z",
+                        "------------------------------------------------------------",
+                        "1          0.2000     0.000001   4.8769        -     -0.8465",
+                        "2          0.4000     0.000394   3.3570        -     -0.0273",
+                        "3          0.6000     0.003808   2.6803        -      0.6803",
+                        "4          0.8000     0.012212   2.2898        -      1.3395",
+                        "5          1.0000     0.025000   2.0310        -           -"),
+                run.out().subList(2, 10));
+        assertEquals(
+                List.of(
+                        "expected looks: 2.6 without an effect, 3.7 with the smallest effect, of 5, futility obeyed",
+                        "",
+                        "look         number of the look",
+                        "information  share of the planned information that is in at that look",
+                        "alpha spent  chance of a false alarm up to and including that look, in the direction of benefit",
+                        "upper z      stop when the z-value of variant minus control is at or above it",
+                        "lower z      stop when it is at or below it; - means no stop in that direction",
+                        "futility z   a benefit has become unlikely when it is below it: advice to stop, not an "
+                                + "obligation; none at the last look"),
+                run.out().subList(11, 19));
+
+        JsonNode looks = json(PlannedPathTest.PLAN).get("comparisons").get(0).get("looks");
+        for (int k = 0; k < 4; k++) {
+            assertEquals(
+                    List.of("look", "informationFraction", "alphaSpent", "upper", "lower", "futility"),
+                    names(looks.get(k)));
+            assertEquals(
+                    PlannedPathTest.REFERENCE[k], looks.get(k).get("futility").asDouble(), TOLERANCE);
+        }
+        assertTrue(looks.get(4).get("futility").isNull());
+    }
+
+    @Test
     void refusesABadPlan() throws IOException {
         Path file = write(PLAN.replace("0.05", "0.5").replace("P28D", "P28DT1M"));
         List<String> messages = List.of(

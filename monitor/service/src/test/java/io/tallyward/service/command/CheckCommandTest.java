@@ -63,6 +63,15 @@ class CheckCommandTest {
     }
 
     @Test
+    void counts() {
+        assertEquals(
+                "broker         fine: 127.0.0.1:9092, views, clicks with 1 partition",
+                check((properties, topics) -> Map.of("views", 1, "clicks", 1))
+                        .out()
+                        .get(2));
+    }
+
+    @Test
     void leavesTheBrokerAlone() {
         CommandRun run = CommandRun.of("check", "--no-broker", "--config", config.toString());
         assertEquals(0, run.status());

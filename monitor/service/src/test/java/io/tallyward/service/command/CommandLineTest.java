@@ -15,9 +15,12 @@ class CommandLineTest {
         CommandRun help = CommandRun.of("--help");
         assertEquals(0, help.status());
         assertEquals(List.of(), help.err());
-        assertTrue(
-                help.out().contains("Exit status: 0 fine, 1 the answer is no, 2 bad input, 3 broken surroundings."),
-                () -> help.out().toString());
+        assertEquals(
+                List.of(
+                        "Exit status: 0 fine, 2 bad input, 3 broken surroundings;",
+                        "1 is reserved for commands whose answer can be no.",
+                        "tallyward COMMAND --help explains a command."),
+                help.out().subList(help.out().size() - 3, help.out().size()));
     }
 
     @ParameterizedTest
@@ -28,6 +31,60 @@ class CommandLineTest {
         assertTrue(
                 help.out().stream().anyMatch(line -> line.contains("--json")),
                 () -> help.out().toString());
+    }
+
+    @Test
+    void saysHowEachCommandEnds() {
+        assertEnds(
+                "watch",
+                "  0   It was told to stop, and stopped in good order.",
+                "  2   An argument, the configuration or a plan cannot be used, or contradicts",
+                "        what was counted under it before.",
+                "  3   A broker, a port or something else around it is not as it has to be.");
+        assertEnds(
+                "check",
+                "  0   Nothing is wrong.",
+                "  2   An argument, the configuration or a plan cannot be used.",
+                "  3   The broker does not answer or refuses, or an input topic is not as it has",
+                "        to be.");
+        assertEnds(
+                "boundaries",
+                "  0   The design is shown.",
+                "  2   An argument or the plan cannot be used.",
+                "  3   Something unforeseen happened.");
+        assertEnds(
+                "replay",
+                "  0   The file was read to its end; rejected records are told and change",
+                "        nothing here.",
+                "  2   An argument, a plan or the file of events cannot be used.",
+                "  3   Something unforeseen happened.");
+    }
+
+    private static void assertEnds(String command, String... lines) {
+        List<String> out = CommandRun.of(command, "--help").out();
+        int heading = out.indexOf("Exit status:");
+        assertEquals(List.of(lines), out.subList(heading + 1, out.size()));
+    }
+
+    @Test
+    void namesOptionsItDoesNotKnow() {
+        assertRefused(
+                "Missing required option: '--config=FILE'. Unknown option: '--confg'. Did you mean --config? "
+                        + "See tallyward watch --help.",
+                "watch",
+                "--confg",
+                "x");
+        assertRefused(
+                "Missing required option: '--config=FILE'. Unknown option: '-c'. See tallyward check --help.",
+                "check",
+                "-c",
+                "x");
+        assertRefused(
+                "Unknown option: '--jsn'. Did you mean --json? See tallyward watch --help.",
+                "watch",
+                "--config=x",
+                "--jsn=yes");
+        assertRefused("Unmatched argument at index 3: 'y'. See tallyward watch --help.", "watch", "--config", "x", "y");
     }
 
     @Test

@@ -22,6 +22,18 @@ class EventLinesTest {
     }
 
     @Test
+    void numbersLinesAsAnEditorDoes() throws IOException {
+        String text = "\na\n \n123456789012345\r\nb";
+        List<Long> numbers = new ArrayList<>();
+        try (EventLines lines = new EventLines(new ByteArrayInputStream(text.getBytes(StandardCharsets.UTF_8)), 8)) {
+            while (lines.next().isPresent()) {
+                numbers.add(lines.number());
+            }
+        }
+        assertEquals(List.of(2L, 4L, 5L), numbers);
+    }
+
+    @Test
     void keepsTheBeginningOfLinesThatAreTooLong() throws IOException {
         assertEquals(List.of("12345678", "123456789", "x"), lines("12345678\r\n1234567890123\nx"));
     }

@@ -65,7 +65,6 @@ class ReplayCommandTest {
                 event("view", "plain", "u8", "e13", "00:20:00").replace("}", ",\"received\":\"2026-05-04T00:15:00Z\"}"),
                 "{\"pad\":\"" + "x".repeat(70_000) + "\"}");
 
-        assertEquals(List.of(), run.err());
         assertEquals(0, run.status());
         assertEquals(
                 List.of(
@@ -84,6 +83,68 @@ class ReplayCommandTest {
                 List.of("{\"type\":\"input\",\"events\":16,\"rejected\":{\"unparsable\":1,\"missing-field\":1,"
                         + "\"unknown-experiment\":1,\"unknown-variant\":1,\"bad-time\":1,\"oversized\":1}}"),
                 run.ofType("input"));
+    }
+
+    @ParameterizedTest
+    @ValueSource(booleans = {false, true})
+    void saysWhichRecordsWereRejected(boolean json) throws IOException {
+        String early = ",\"received\":\"2026-05-04T00:14:59Z\"}";
+        Path events = Files.write(
+                directory.resolve("bad.jsonl"),
+                List.of(
+                        event("view", "plain", "u1", "e1", "00:01:00"),
+                        "",
+                        event("view", "tall", "u2", "e2", "00:08:00"),
+                        "not json",
+                        event("view", "plain", "u3", "e3", "00:08:00").replace("quay-banner", "fare-chip"),
+                        "[]",
+                        event("view", "plain", "u4", "e4", "00:20:00").replace("}", early),
+                        event("view", "wide", "u5", "e5", "00:20:00").replace("}", early),
+                        "{\"pad\":\"" + "x".repeat(70_000) + "\"}",
+                        "{}"));
+        List<String> arguments =
+                new ArrayList<>(List.of("replay", "--plans", plans.toString(), "--events", events.toString()));
+        arguments.addAll(json ? List.of("--json") : List.of());
+        CommandRun run = CommandRun.of(arguments.toArray(String[]::new));
+        assertEquals(0, run.status());
+        assertEquals(
+                List.of(
+                        events
+                                + ":3: unknown-variant: the plan of quay-banner has no variant \"tall\" (1 of this kind)",
+                        events + ":4: unparsable: the value is not JSON, at byte 0 (2 of this kind)",
+                        events + ":5: unknown-experiment: no plan names the experiment \"fare-chip\" (1 of this kind)",
+                        events + ":7: bad-time: the event time 2026-05-04T00:20:00Z lies more than PT5M ahead of its "
+                                + "receipt at 2026-05-04T00:14:59Z (2 of this kind)",
+                        events + ":9: oversized: the record has more than 65536 bytes (1 of this kind)",
+                        events + ":10: missing-field: kind at /kind: missing (expected: \"click\" or \"view\") "
+                                + "(1 of this kind)"),
+                run.err());
+    }
+
+    /** The run ends with too little in it for a look: there is one record, of the end, and the text says what it says. */
+    @Test
+    void showsWhatTheLastRecordSays() throws IOException {
+        String[] lines = {
+            event("view", "plain", "u1", "e1", "00:01:00"),
+            event("view", "wide", "u2", "e2", "03:50:00"),
+            event("view", "wide", "u3", "e3", "09:00:00")
+        };
+        List<JsonNode> records = replay(lines).json().stream()
+                .filter(line -> line.get("type").asText().equals("decision"))
+                .toList();
+        JsonNode last = records.get(records.size() - 1);
+        assertEquals("end", last.get("occasion").asText());
+        assertEquals(0, last.get("comparisons").size());
+        CommandRun text = CommandRun.of(
+                "replay",
+                "--plans",
+                plans.toString(),
+                "--events",
+                directory.resolve("events.jsonl").toString());
+        assertEquals(
+                "quay-banner: " + last.get("verdict").asText() + ", data "
+                        + last.get("trust").asText(),
+                text.out().get(0));
     }
 
     @ParameterizedTest
@@ -119,7 +180,12 @@ class ReplayCommandTest {
                 run.out().get(0));
         assertEquals("variant  epoch  trials  successes    rate", run.out().get(1));
         assertEquals(
-                "events read: 3000, rejected: none", run.out().get(run.out().size() - 1));
+                List.of(
+                        "",
+                        "Windows still open at the end of the file are counted too.",
+                        "events read: 3000, rejected: none"),
+                run.out().subList(run.out().size() - 3, run.out().size()));
+        assertEquals(List.of(), run.err());
     }
 
     @Test

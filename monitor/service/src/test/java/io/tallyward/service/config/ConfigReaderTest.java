@@ -22,6 +22,8 @@ import java.util.Map;
 import java.util.Optional;
 import org.junit.jupiter.api.Test;
 import org.junit.jupiter.api.io.TempDir;
+import org.junit.jupiter.params.ParameterizedTest;
+import org.junit.jupiter.params.provider.ValueSource;
 
 class ConfigReaderTest {
 
@@ -213,6 +215,51 @@ class ConfigReaderTest {
                 webhookProblems("{url: \"https://hooks.example/\", secret-file: a, secret-environment: SIGNING}"));
     }
 
+    @ParameterizedTest
+    @ValueSource(
+            strings = {
+                "127.0.0.1",
+                "127.8.0.1:8443",
+                "10.1.2.3",
+                "172.16.0.9",
+                "172.31.255.255",
+                "192.168.7.7",
+                "169.254.169.254",
+                "0.0.0.0",
+                "[::1]",
+                "[::]:8443",
+                "[fe80::1]",
+                "[fe80::1%25quay0]",
+                "[fd00::7]",
+                "[fc00::7]",
+                "[::ffff:10.0.0.1]",
+            })
+    void refusesWebhooksAtPrivateAddresses(String host) throws IOException {
+        assertEquals(
+                List.of(":3: webhook.url: an address in a private network (expected: a public address). "
+                        + "To send there all the same, set webhook.allow-private: true."),
+                webhookProblems("{url: \"https://" + host + "/T0KEN\", secret-environment: SIGNING}"));
+        assertEquals(
+                List.of(),
+                webhookProblems("{url: \"https://" + host + "/\", secret-environment: SIGNING, allow-private: true}"));
+    }
+
+    /** What a name stands for is judged when something is sent there. */
+    @ParameterizedTest
+    @ValueSource(
+            strings = {
+                "localhost",
+                "hooks.example",
+                "10.example",
+                "8.8.8.8",
+                "172.32.0.1",
+                "[2606:4700::1]",
+                "[fe00::1]"
+            })
+    void leavesOtherHostsToTheDelivery(String host) throws IOException {
+        assertEquals(List.of(), webhookProblems("{url: \"https://" + host + "/\", secret-environment: SIGNING}"));
+    }
+
     @Test
     void saysWhereASecretWasExpectedButNotWhatItIs() throws IOException {
         assertEquals(
@@ -221,7 +268,8 @@ class ConfigReaderTest {
                 webhookProblems("{url: \"https://hooks.example/\", secret-environment: ABSENT}"));
         assertEquals(
                 List.of(":3: webhook.secret-environment: the secret from environment variable SHORT is not of the "
-                        + "required form (expected: whsec_ followed by the Base64 of 24 to 64 random bytes)"),
+                        + "required form (expected: whsec_ followed by the Base64 of 24 to 64 random bytes). "
+                        + "Make one with: printf 'whsec_%s\\n' \"$(openssl rand -base64 24)\""),
                 webhookProblems("{url: \"https://hooks.example/\", secret-environment: SHORT}"));
         assertEquals(
                 List.of(":3: webhook.secret-file: a secret instead of a file name cannot be read: "
@@ -233,7 +281,7 @@ class ConfigReaderTest {
                 webhookProblems("{url: \"https://hooks.example/\", secret-environment: \"" + SIGNING + "\"}"));
         assertEquals(
                 List.of(":3: unit-key.environment: the secret from environment variable SHORT has 10 bytes "
-                        + "(expected: at least 16 bytes)"),
+                        + "(expected: at least 16 bytes). Make one with: head -c 32 /dev/urandom | base64"),
                 messages(write(MINIMAL + "unit-key: {environment: SHORT}\n")));
     }
 

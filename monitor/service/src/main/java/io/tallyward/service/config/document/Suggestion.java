@@ -1,10 +1,11 @@
 package io.tallyward.service.config.document;
 
+import java.util.Collection;
 import java.util.Comparator;
 import java.util.Optional;
 
-/** Guesses which key was meant. */
-final class Suggestion {
+/** Guesses which key or other name was meant. */
+public final class Suggestion {
 
     /** Two slips of the finger; a third makes another word of most keys. */
     private static final int MAX_DISTANCE = 2;
@@ -13,12 +14,16 @@ final class Suggestion {
 
     /** The path of the key that was probably meant: a sibling with a similar name, or the same name elsewhere. */
     static Optional<String> forKey(String written, Shape shape, Place place) {
-        return shape.keys().stream()
-                .map(Key::name)
-                .filter(known -> distance(written, known) <= Math.min(MAX_DISTANCE, known.length() / 2))
-                .min(Comparator.comparingInt(known -> distance(written, known)))
+        return among(written, shape.keys().stream().map(Key::name).toList())
                 .map(known -> place.key(known).path())
                 .or(() -> elsewhere(written, place.root(), ""));
+    }
+
+    /** The nearest of the known names, if it is near enough to have been meant. */
+    public static Optional<String> among(String written, Collection<String> names) {
+        return names.stream()
+                .filter(known -> distance(written, known) <= Math.min(MAX_DISTANCE, known.length() / 2))
+                .min(Comparator.comparingInt(known -> distance(written, known)));
     }
 
     private static Optional<String> elsewhere(String written, Shape shape, String path) {

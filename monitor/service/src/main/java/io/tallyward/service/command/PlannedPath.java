@@ -1,0 +1,88 @@
+package io.tallyward.service.command;
+
+import io.tallyward.engine.decide.PlanDesign;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.TestPlan.Better;
+import io.tallyward.statistics.boundary.ExitProbabilities;
+import io.tallyward.statistics.boundary.FutilitySequence;
+import io.tallyward.statistics.boundary.Look;
+import io.tallyward.statistics.spending.SpendingFunction;
+import java.util.Arrays;
+import java.util.List;
+
+/**
+ * The planned looks of one comparison as the deciding rules take them: where a path would end, at a boundary or, if the
+ * plan has futility, below its bound. All z-values in here point towards the benefit.
+ */
+final class PlannedPath {
+
+    private final boolean higherIsBetter;
+    private final double drift;
+    private final double[] information;
+    private final double[] benefit;
+    private final double[] harm;
+    private final double[] futility;
+
+    PlannedPath(Plan plan, PlanDesign design) {
+        List<Look> looks = design.looks();
+        higherIsBetter = plan.test().better() == Better.HIGHER;
+        drift = design.drift();
+        information = looks.stream().mapToDouble(Look::information).toArray();
+        benefit = looks.stream()
+                .mapToDouble(look -> higherIsBetter ? look.upper() : -look.lower())
+                .toArray();
+        harm = looks.stream()
+                .mapToDouble(look -> higherIsBetter ? look.lower() : -look.upper())
+                .toArray();
+        futility = new double[information.length];
+        Arrays.fill(futility, Double.NEGATIVE_INFINITY);
+        plan.futility()
+                .map(planned -> PlanDesign.spendingFunction(planned.spending()))
+                .ifPresent(spending -> plan(spending, 1 - plan.test().power()));
+    }
+
+    /** Nothing is futile at the last look: whatever is no benefit there uses the plan up. */
+    private void plan(SpendingFunction spending, double typeTwoError) {
+        FutilitySequence sequence = new FutilitySequence(drift);
+        for (int k = 0; k < futility.length - 1; k++) {
+            double spent = spending.spent(typeTwoError, Math.min(information[k], 1));
+            futility[k] = sequence.next(information[k], benefit[k], spent);
+        }
+    }
+
+    /**
+     * The futility bound of a look as a z-value of variant minus control; infinite where it has none.
+     *
+     * @param index 0 for the first look
+     */
+    double futility(int index) {
+        return higherIsBetter ? futility[index] : -futility[index];
+    }
+
+    /** Mean number of looks without an effect until a boundary or the futility bound is crossed or the last is taken. */
+    double expectedLooksWithoutEffect() {
+        return expectedLooks(0);
+    }
+
+    /** The same with the smallest effect worth finding. */
+    double expectedLooks() {
+        return expectedLooks(drift);
+    }
+
+    private double expectedLooks(double theta) {
+        double[] lower = new double[harm.length];
+        for (int k = 0; k < lower.length; k++) {
+            lower[k] = Math.max(harm[k], futility[k]);
+        }
+        ExitProbabilities exits = ExitProbabilities.of(information, benefit, lower, theta);
+        double[] up = exits.upper();
+        double[] down = exits.lower();
+        double expected = 0;
+        double running = 1;
+        for (int k = 0; k < up.length; k++) {
+            expected += running;
+            running -= up[k] + down[k];
+        }
+        return expected;
+    }
+}
