@@ -37,6 +37,7 @@ import picocli.CommandLine.Spec;
         })
 final class DemoCommand implements Callable<Integer> {
 
+    static final int WRONG_ARGUMENTS = 2;
     static final int BROKEN_SURROUNDINGS = 3;
 
     private static final int MOST_SECONDS = 86_400;
