@@ -146,7 +146,7 @@ final class DemoCommand implements Callable<Integer> {
         Path plans = directory.resolve("plans");
         scenario.writePlans(plans);
         screen.line(scenario.events().size() + " events written to " + file);
-        screen.line("to decide over them: tallyward replay --events " + file + " --plans " + plans + " --partitions "
+        screen.line("to decide over them: java -jar deploy/target/tallyward.jar replay --events " + file + " --plans " + plans + " --partitions "
                 + DemoRun.PARTITIONS);
     }
 

@@ -21,7 +21,8 @@ public record Report(List<ExperimentCheck> experiments, List<Finding> others) {
             "verdict",
             "trust",
             "z",
-            "window cells, differing",
+            "window counts",
+            "wrong",
             "outcomes",
             "notices");
 
@@ -98,7 +99,7 @@ public record Report(List<ExperimentCheck> experiments, List<Finding> others) {
                 ? String.format(Locale.ROOT, "%.2f", check.z(challenger).asDouble())
                 : "-";
         if (!first) {
-            return List.of("", "", challenger, check.verdict(challenger), "", z, "", "", "");
+            return List.of("", "", challenger, check.verdict(challenger), "", z, "", "", "", "");
         }
         return List.of(
                 check.experiment(),
@@ -107,7 +108,8 @@ public record Report(List<ExperimentCheck> experiments, List<Finding> others) {
                 check.verdict(challenger),
                 check.standing().trust(),
                 z,
-                String.format(Locale.ROOT, "%,d, %d", check.truth().cells().size(), differing(check)),
+                String.format(Locale.ROOT, "%,d", check.truth().cells().size()),
+                Long.toString(differing(check)),
                 check.outcomesFinding().holds() ? "equal" : "differ",
                 Integer.toString(check.notices().size()));
     }
