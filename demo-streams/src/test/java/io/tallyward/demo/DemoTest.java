@@ -2,6 +2,8 @@ package io.tallyward.demo;
 
 import static org.junit.jupiter.api.Assertions.assertEquals;
 
+import io.tallyward.demo.story.Scenario;
+import io.tallyward.demo.story.ToldScenario;
 import java.io.PrintWriter;
 import java.io.StringWriter;
 import org.junit.jupiter.api.Test;
@@ -25,6 +27,17 @@ class DemoTest {
         assertEquals(
                 "--port: 70000 (expected: 0 to 65535). See tallyward-demo --help.",
                 said.toString().strip());
+    }
+
+    @Test
+    void saysFirstWhatIsToCome() {
+        Scenario scenario = ToldScenario.withDefaultSeed();
+        assertEquals(
+                "14 invented days of Northwater in about 90 s: 5 experiments whose truth is known",
+                DemoCommand.opening(scenario, 90));
+        assertEquals(
+                "14 invented days of Northwater as fast as possible: 5 experiments whose truth is known",
+                DemoCommand.opening(scenario, 0));
     }
 
     private int run(String... arguments) {

@@ -15,16 +15,7 @@ import java.util.Map;
 public record Report(List<ExperimentCheck> experiments, List<Finding> others) {
 
     private static final List<String> HEADINGS = List.of(
-            "experiment",
-            "truth",
-            "variant",
-            "verdict",
-            "trust",
-            "z",
-            "window counts",
-            "wrong",
-            "outcomes",
-            "notices");
+            "experiment", "truth", "variant", "verdict", "trust", "z", "window counts", "wrong", "outcomes", "notices");
 
     public Report {
         experiments = List.copyOf(experiments);
