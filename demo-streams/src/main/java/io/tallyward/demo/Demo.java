@@ -1,6 +1,8 @@
 package io.tallyward.demo;
 
+import java.io.PrintWriter;
 import picocli.CommandLine;
+import picocli.CommandLine.ParameterException;
 
 /** Entry point of the demonstration. */
 public final class Demo {
@@ -10,7 +12,12 @@ public final class Demo {
     /** Exits with 0 when all checks hold, 1 when not, 2 on wrong arguments and 3 when something could not run. */
     public static void main(String[] arguments) {
         System.setProperty("logback.configurationFile", "io/tallyward/demo/logging.xml");
+        System.exit(commandLine().execute(arguments));
+    }
+
+    static CommandLine commandLine() {
         CommandLine command = new CommandLine(new DemoCommand());
+        command.setParameterExceptionHandler(Demo::refuse);
         command.setExecutionExceptionHandler((failure, line, parsed) -> {
             line.getErr().println("tallyward-demo: " + failure.getMessage());
             for (Throwable cause = failure.getCause(); cause != null; cause = cause.getCause()) {
@@ -18,6 +25,15 @@ public final class Demo {
             }
             return DemoCommand.BROKEN_SURROUNDINGS;
         });
-        System.exit(command.execute(arguments));
+        return command;
+    }
+
+    /** One sentence, as the service says it; the whole help would hide it. */
+    private static int refuse(ParameterException e, String[] arguments) {
+        CommandLine command = e.getCommandLine();
+        PrintWriter err = command.getErr();
+        err.println(e.getMessage().replaceAll("[.\\s]+$", "") + ". See " + command.getCommandName() + " --help.");
+        err.flush();
+        return DemoCommand.WRONG_ARGUMENTS;
     }
 }

@@ -7,7 +7,6 @@ import java.io.IOException;
 import java.nio.file.Files;
 import java.nio.file.Path;
 import java.time.Duration;
-import java.util.List;
 import java.util.concurrent.Callable;
 import java.util.concurrent.CountDownLatch;
 import picocli.CommandLine.Command;
@@ -37,6 +36,7 @@ import picocli.CommandLine.Spec;
         })
 final class DemoCommand implements Callable<Integer> {
 
+    static final int WRONG_ARGUMENTS = 2;
     static final int BROKEN_SURROUNDINGS = 3;
 
     private static final int MOST_SECONDS = 86_400;
@@ -108,34 +108,40 @@ final class DemoCommand implements Callable<Integer> {
             writeFile(scenario, screen);
             return 0;
         }
+        screen.line(opening(scenario, seconds));
         DemoRun.Options options = new DemoRun.Options(Duration.ofSeconds(seconds), port, kills, replay);
-        try (WorkDirectory directory = WorkDirectory.open(keep);
-                DemoRun run = new DemoRun(scenario, options, directory.path(), screen)) {
-            tidyUpAtExit(List.of(run, directory));
-            run.start();
-            Report report = run.stream();
-            screen.line("");
-            report.lines().forEach(screen::line);
-            if (!exit) {
-                run.showAddresses();
-                new CountDownLatch(1).await();
+        WorkDirectory directory = WorkDirectory.open(keep);
+        DemoRun run = new DemoRun(scenario, options, directory.path(), screen);
+        Interruption interruption = Interruption.listen(screen, run, directory);
+        try (interruption;
+                directory;
+                run) {
+            return demonstrate(run, screen);
+        } catch (Exception failure) {
+            if (interruption.happened()) {
+                return BROKEN_SURROUNDINGS;
             }
-            return report.holds() ? 0 : 1;
+            throw failure;
         }
     }
 
-    /** Ctrl-C ends the demo as a return would: everything is stopped, in this order. */
-    private static void tidyUpAtExit(List<AutoCloseable> parts) {
-        Runnable tidyUp = () -> {
-            for (AutoCloseable part : parts) {
-                try {
-                    part.close();
-                } catch (Exception failure) {
-                    System.err.println("tallyward-demo: " + failure.getMessage());
-                }
-            }
-        };
-        Runtime.getRuntime().addShutdownHook(new Thread(tidyUp, "demo-stop"));
+    private int demonstrate(DemoRun run, Screen screen) throws IOException, InterruptedException {
+        run.start();
+        Report report = run.stream();
+        screen.line("");
+        report.lines().forEach(screen::line);
+        if (!exit) {
+            run.showAddresses();
+            new CountDownLatch(1).await();
+        }
+        return report.holds() ? 0 : 1;
+    }
+
+    /** What is to come, in one line. */
+    static String opening(Scenario scenario, int seconds) {
+        return StreamProgress.DAYS + " invented days of Northwater "
+                + (seconds == 0 ? "as fast as possible" : "in about " + seconds + " s") + ": "
+                + scenario.stories().size() + " experiments whose truth is known";
     }
 
     private void writeFile(Scenario scenario, Screen screen) throws IOException {
@@ -145,8 +151,8 @@ final class DemoCommand implements Callable<Integer> {
         Path plans = directory.resolve("plans");
         scenario.writePlans(plans);
         screen.line(scenario.events().size() + " events written to " + file);
-        screen.line("to decide over them: tallyward replay --events " + file + " --plans " + plans + " --partitions "
-                + DemoRun.PARTITIONS);
+        screen.line("to decide over them: java -jar deploy/target/tallyward.jar replay --events " + file + " --plans "
+                + plans + " --partitions " + DemoRun.PARTITIONS);
     }
 
     private void requireRange(String option, int value, int least, int most) {

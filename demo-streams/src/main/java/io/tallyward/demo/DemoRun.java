@@ -43,6 +43,10 @@ final class DemoRun implements AutoCloseable {
     private static final Duration START_PATIENCE = Duration.ofSeconds(90);
     private static final Duration CATCH_UP_PATIENCE = Duration.ofSeconds(180);
     private static final Duration NOTICE_PATIENCE = Duration.ofSeconds(30);
+
+    /** A monitor whose broker has gone cannot stop in good order, and nothing of the demo is worth a longer wait. */
+    private static final Duration HURRIED_STOP = Duration.ofSeconds(2);
+
     private static final long POLL_MILLIS = 300;
     private static final String BROKER_MAIN = "io.tallyward.connector.embedded.EmbeddedBrokerMain";
     private static final String MONITOR_MAIN = "io.tallyward.service.Tallyward";
@@ -60,6 +64,7 @@ final class DemoRun implements AutoCloseable {
     private WebhookReceiver receiver;
     private ChildProcess monitor;
     private boolean closed;
+    private volatile boolean hurried;
 
     /**
      * How to run.
@@ -115,6 +120,9 @@ final class DemoRun implements AutoCloseable {
     }
 
     private synchronized void startMonitor() throws IOException {
+        if (closed) {
+            throw new IllegalStateException("monitor: not started, for the demo is being stopped");
+        }
         monitor = ChildProcess.start(
                 "monitor",
                 directory.resolve("monitor.log"),
@@ -138,7 +146,7 @@ final class DemoRun implements AutoCloseable {
     /** Sends the stream, waits until the monitor has counted all of it, and compares. */
     Report stream() throws IOException, InterruptedException {
         Truth truth = Truth.of(scenario, PARTITIONS);
-        StreamProgress progress = new StreamProgress(scenario.events().size(), screen);
+        StreamProgress progress = new StreamProgress(scenario.events().size(), screen, System::nanoTime);
         KillSchedule schedule = new KillSchedule(scenario.events().size(), options.kills());
         try (StreamSender sender = StreamSender.to(bootstrapServers, MonitorFiles.TOPIC)) {
             sender.send(scenario.events(), new Pace(options.fourteenDays(), System::nanoTime), (event, count) -> {
@@ -255,6 +263,11 @@ final class DemoRun implements AutoCloseable {
         }
     }
 
+    /** From now on whatever is stopped is given two seconds before it is killed. */
+    void hurry() {
+        hurried = true;
+    }
+
     /** Stops what runs, the latest first. May be called again. */
     @Override
     public synchronized void close() {
@@ -265,11 +278,19 @@ final class DemoRun implements AutoCloseable {
     private void stopAll() {
         for (int i = running.size() - 1; i >= 0; i--) {
             try {
-                running.get(i).close();
+                stop(running.get(i));
             } catch (Exception failure) {
-                screen.line("could not be stopped: " + failure.getMessage());
+                screen.alert("could not be stopped: " + failure.getMessage());
             }
         }
         running.clear();
+    }
+
+    private void stop(AutoCloseable part) throws Exception {
+        if (hurried && part instanceof ChildProcess child) {
+            child.stopWithin(HURRIED_STOP);
+        } else {
+            part.close();
+        }
     }
 }

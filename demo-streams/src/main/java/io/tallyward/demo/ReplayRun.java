@@ -2,6 +2,7 @@ package io.tallyward.demo;
 
 import io.tallyward.demo.check.DecisionLog;
 import io.tallyward.demo.child.ChildProcess;
+import io.tallyward.demo.child.TiedToParent;
 import io.tallyward.demo.story.Scenario;
 import io.tallyward.demo.stream.StreamFile;
 import java.io.IOException;
@@ -27,6 +28,7 @@ final class ReplayRun {
                 printed,
                 List.of("-Xmx512m", "-XX:+UseSerialGC"),
                 List.of(
+                        TiedToParent.class.getName(),
                         MAIN,
                         "replay",
                         "--json",

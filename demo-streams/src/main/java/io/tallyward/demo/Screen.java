@@ -11,6 +11,7 @@ final class Screen {
     private final PrintStream out;
     private final boolean terminal;
     private int progressLength;
+    private boolean silent;
 
     Screen(PrintStream out, boolean terminal) {
         this.out = out;
@@ -22,6 +23,25 @@ final class Screen {
     }
 
     synchronized void line(String text) {
+        if (!silent) {
+            clearProgress();
+            out.println(text);
+            out.flush();
+        }
+    }
+
+    /** Says this below whatever is on the screen, and nothing but alerts afterwards. */
+    synchronized void lastLine(String text) {
+        if (progressLength > 0) {
+            out.println();
+            progressLength = 0;
+        }
+        line(text);
+        silent = true;
+    }
+
+    /** Says what must be known even after the last line. */
+    synchronized void alert(String text) {
         clearProgress();
         out.println(text);
         out.flush();
@@ -29,6 +49,9 @@ final class Screen {
 
     /** Shows how far the demo is; {@code step} when this is worth a line of its own. */
     synchronized void progress(String text, boolean step) {
+        if (silent) {
+            return;
+        }
         if (terminal) {
             clearProgress();
             out.print(text);

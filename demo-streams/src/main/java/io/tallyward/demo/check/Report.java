@@ -15,15 +15,7 @@ import java.util.Map;
 public record Report(List<ExperimentCheck> experiments, List<Finding> others) {
 
     private static final List<String> HEADINGS = List.of(
-            "experiment",
-            "truth",
-            "variant",
-            "verdict",
-            "trust",
-            "z",
-            "window cells, differing",
-            "outcomes",
-            "notices");
+            "experiment", "truth", "variant", "verdict", "trust", "z", "window counts", "wrong", "outcomes", "notices");
 
     public Report {
         experiments = List.copyOf(experiments);
@@ -98,7 +90,7 @@ public record Report(List<ExperimentCheck> experiments, List<Finding> others) {
                 ? String.format(Locale.ROOT, "%.2f", check.z(challenger).asDouble())
                 : "-";
         if (!first) {
-            return List.of("", "", challenger, check.verdict(challenger), "", z, "", "", "");
+            return List.of("", "", challenger, check.verdict(challenger), "", z, "", "", "", "");
         }
         return List.of(
                 check.experiment(),
@@ -107,7 +99,8 @@ public record Report(List<ExperimentCheck> experiments, List<Finding> others) {
                 check.verdict(challenger),
                 check.standing().trust(),
                 z,
-                String.format(Locale.ROOT, "%,d, %d", check.truth().cells().size(), differing(check)),
+                String.format(Locale.ROOT, "%,d", check.truth().cells().size()),
+                Long.toString(differing(check)),
                 check.outcomesFinding().holds() ? "equal" : "differ",
                 Integer.toString(check.notices().size()));
     }

@@ -111,23 +111,46 @@ public final class ChildProcess implements AutoCloseable {
     /** Stops the process: by the end of its input, then by a signal, then by force; takes 25 seconds at most. */
     @Override
     public void close() {
-        try {
-            try (OutputStream input = process.getOutputStream()) {
-                input.flush();
-            } catch (IOException alreadyGone) {
-                process.destroy();
-            }
-            if (process.waitFor(ORDERLY_STOP_SECONDS, TimeUnit.SECONDS)) {
-                return;
-            }
+        endInput();
+        if (!endsWithin(Duration.ofSeconds(ORDERLY_STOP_SECONDS))) {
             process.destroy();
-            if (!process.waitFor(TERMINATED_SECONDS, TimeUnit.SECONDS)) {
-                process.destroyForcibly().waitFor(KILLED_SECONDS, TimeUnit.SECONDS);
+            if (!endsWithin(Duration.ofSeconds(TERMINATED_SECONDS))) {
+                forceEnd();
             }
-        } catch (InterruptedException hurry) {
-            process.destroyForcibly();
-            Thread.currentThread().interrupt();
         }
+    }
+
+    /** Stops the process by the end of its input, and by force when it has not ended in time or the thread is interrupted. */
+    public void stopWithin(Duration patience) {
+        endInput();
+        if (!endsWithin(patience)) {
+            forceEnd();
+        }
+    }
+
+    private void endInput() {
+        try (OutputStream input = process.getOutputStream()) {
+            input.flush();
+        } catch (IOException alreadyGone) {
+            process.destroy();
+        }
+    }
+
+    private boolean endsWithin(Duration patience) {
+        try {
+            return process.waitFor(patience.toMillis(), TimeUnit.MILLISECONDS);
+        } catch (InterruptedException hurry) {
+            Thread.currentThread().interrupt();
+            return false;
+        }
+    }
+
+    /** Waits for the end even when interrupted: whoever stops the process goes on to remove its files. */
+    private void forceEnd() {
+        process.destroyForcibly()
+                .onExit()
+                .completeOnTimeout(process, KILLED_SECONDS, TimeUnit.SECONDS)
+                .join();
     }
 
     /** The last lines the process wrote, under a heading; for messages. */

@@ -27,6 +27,7 @@ public final class StreamSender implements AutoCloseable {
     private final Producer<byte[], byte[]> producer;
     private final String topic;
     private final AtomicReference<Exception> failure = new AtomicReference<>();
+    private boolean complete;
 
     /** Is told after every event how many have been sent. */
     @FunctionalInterface
@@ -80,21 +81,30 @@ public final class StreamSender implements AutoCloseable {
         }
         producer.flush();
         failIfRefused();
+        complete = true;
     }
 
+    /** Closes the connection; of a stream that was not sent to its end, records under way are given up. */
     @Override
     public void close() {
-        producer.close(CLOSE_PATIENCE);
+        boolean interrupted = Thread.interrupted();
+        try {
+            producer.close(complete ? CLOSE_PATIENCE : Duration.ZERO);
+        } finally {
+            if (interrupted) {
+                Thread.currentThread().interrupt();
+            }
+        }
     }
 
     private void await(Pace pace, StreamEvent event) {
         long wait = pace.waitNanos(event.receivedMillis());
-        while (wait > LEAST_WAIT_NANOS) {
+        while (wait > LEAST_WAIT_NANOS && !Thread.currentThread().isInterrupted()) {
             LockSupport.parkNanos(wait);
-            if (Thread.currentThread().isInterrupted()) {
-                throw new IllegalStateException("sending to " + topic + " was interrupted");
-            }
             wait = pace.waitNanos(event.receivedMillis());
+        }
+        if (Thread.currentThread().isInterrupted()) {
+            throw new IllegalStateException("sending to " + topic + " was interrupted");
         }
     }
 

@@ -38,6 +38,20 @@ class ReportTest {
     }
 
     @Test
+    void showsHowManyWindowCountsThereAreAndHowManyAreWrong() {
+        assertEquals(List.of("1", "0"), windowCounts(quayBanner("stop-benefit", 10, List.of(STOP))));
+        assertEquals(List.of("1", "1"), windowCounts(quayBanner("stop-benefit", 11, List.of(STOP))));
+    }
+
+    private static List<String> windowCounts(ExperimentCheck check) {
+        List<String> lines = new Report(List.of(check), List.of()).lines();
+        List<String> headings = List.of(lines.get(0).split(" {2,}"));
+        int column = headings.indexOf("window counts");
+        assertEquals("wrong", headings.get(column + 1));
+        return List.of(lines.get(2).split(" {2,}")).subList(column, column + 2);
+    }
+
+    @Test
     void namesAWindowThatDiffers() {
         Report report = new Report(List.of(quayBanner("stop-benefit", 11, List.of(STOP))), List.of());
         assertFalse(report.holds());

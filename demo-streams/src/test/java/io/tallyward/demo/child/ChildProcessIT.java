@@ -51,6 +51,26 @@ class ChildProcessIT {
     }
 
     @Test
+    void isKilledWhenItsEndWouldTakeTooLong() throws Exception {
+        ChildProcess child = ChildProcess.start(
+                "deaf", directory.resolve("deaf.log"), List.of("-Xmx64m"), List.of(Told.class.getName()));
+        child.awaitOutput("running", PATIENCE);
+        child.stopWithin(Duration.ofMillis(100));
+        assertFalse(child.isAlive());
+    }
+
+    @Test
+    void isKilledAtOnceWhenTheThreadIsInterrupted() throws Exception {
+        ChildProcess child = ChildProcess.start(
+                "hurried", directory.resolve("hurried.log"), List.of("-Xmx64m"), List.of(Told.class.getName()));
+        child.awaitOutput("running", PATIENCE);
+        Thread.currentThread().interrupt();
+        child.close();
+        assertTrue(Thread.interrupted());
+        assertFalse(child.isAlive());
+    }
+
+    @Test
     void showsItsLastWordsWhenItFails() throws Exception {
         try (ChildProcess child = start("failing", "fail")) {
             IllegalStateException failure =

@@ -21,6 +21,18 @@ class StreamSenderTest {
             ToldScenario.withDefaultSeed().events().subList(0, 500);
 
     @Test
+    void endsWhenItsThreadIsInterruptedAndStaysInterrupted() {
+        StreamSender sender = new StreamSender(producer(true), "northwater-events");
+        Pace pace = new Pace(Duration.ZERO, System::nanoTime);
+        Thread.currentThread().interrupt();
+        IllegalStateException failure = assertThrows(
+                IllegalStateException.class, () -> sender.send(events, pace, (event, count) -> assertEquals(0, count)));
+        assertTrue(failure.getMessage().contains("interrupted"), failure.getMessage());
+        sender.close();
+        assertTrue(Thread.interrupted());
+    }
+
+    @Test
     void keysByUnitAndStampsWithArrival() {
         MockProducer<byte[], byte[]> producer = producer(true);
         AtomicLong sent = new AtomicLong();
