@@ -37,16 +37,6 @@ public final class CabinUpsell implements Story {
     }
 
     @Override
-    public int units() {
-        return 40_000;
-    }
-
-    @Override
-    public double[] shares(int epoch) {
-        return new double[] {0.5, 0.5};
-    }
-
-    @Override
     public double clickRate(int variant, long atMillis, Device device) {
         return device == Device.APP_NEW ? 0.15 : 0.12;
     }

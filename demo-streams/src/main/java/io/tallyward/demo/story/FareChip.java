@@ -33,11 +33,6 @@ public final class FareChip implements Story {
     }
 
     @Override
-    public int units() {
-        return 40_000;
-    }
-
-    @Override
     public double[] shares(int epoch) {
         return epoch == 0 ? new double[] {0.9, 0.1} : new double[] {0.5, 0.5};
     }

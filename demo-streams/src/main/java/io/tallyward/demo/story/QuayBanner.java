@@ -25,16 +25,6 @@ public final class QuayBanner implements Story {
     }
 
     @Override
-    public int units() {
-        return 40_000;
-    }
-
-    @Override
-    public double[] shares(int epoch) {
-        return new double[] {0.5, 0.5};
-    }
-
-    @Override
     public double clickRate(int variant, long atMillis, Device device) {
         return variant == 0 ? 0.120 : 0.145;
     }

@@ -22,11 +22,18 @@ public interface Story {
         return List.of();
     }
 
-    /** How many units take part. */
-    int units();
+    /** How many units take part; enough for a comparison of two variants unless a story needs more. */
+    default int units() {
+        return 40_000;
+    }
 
-    /** Share of each variant, in the order of {@link #variants()}, after that many changes of the split. */
-    double[] shares(int epoch);
+    /**
+     * Share of each variant, in the order of {@link #variants()}, after that many changes of the split; even between two
+     * variants unless a story says otherwise.
+     */
+    default double[] shares(int epoch) {
+        return new double[] {0.5, 0.5};
+    }
 
     /** Probability that a unit clicks in time when it is first shown a variant at a moment. */
     double clickRate(int variant, long atMillis, Device device);

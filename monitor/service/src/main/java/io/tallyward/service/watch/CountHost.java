@@ -151,7 +151,9 @@ final class CountHost implements HostedShard {
 
     @Override
     public void released() {
-        LOG.info("No longer counting partition {}", partition);
+        if (published) {
+            LOG.info("No longer counting partition {}", partition);
+        }
         board.withdrawCount(partition);
     }
 
