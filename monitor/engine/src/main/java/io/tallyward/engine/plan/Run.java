@@ -19,6 +19,7 @@ public record Run(Instant from, Duration atLeast, Duration atMost) {
 
     /** Whether an event time lies in the run: closed at the start, open at the end. */
     public boolean contains(long atMillis) {
-        return atMillis >= from.toEpochMilli() && atMillis < end().toEpochMilli();
+        long elapsedMillis = atMillis - from.toEpochMilli();
+        return elapsedMillis >= 0 && elapsedMillis < atMost.toMillis();
     }
 }
