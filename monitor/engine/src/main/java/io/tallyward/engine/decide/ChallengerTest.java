@@ -5,8 +5,6 @@ import io.tallyward.engine.plan.TestPlan.Better;
 import io.tallyward.engine.plan.Variant;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.Verdict;
-import io.tallyward.statistics.boundary.BoundarySequence;
-import io.tallyward.statistics.boundary.FutilitySequence;
 import io.tallyward.statistics.boundary.Look;
 import io.tallyward.statistics.proportion.StratifiedComparison;
 import java.io.DataInput;
@@ -14,7 +12,6 @@ import java.io.DataOutput;
 import java.io.IOException;
 import java.time.Instant;
 import java.util.Collection;
-import java.util.List;
 import java.util.Locale;
 import java.util.Optional;
 import java.util.TreeMap;
@@ -38,14 +35,17 @@ final class ChallengerTest {
     private final int control;
     private final LookCalendar calendar;
     private final TreeMap<Integer, TakenLook> looks = new TreeMap<>();
+    private final DecisionMemo memo;
+    private final String planDigest;
     private PlanDesign design;
-    private BoundarySequence boundaries;
-    private FutilitySequence futility;
+    private LookPath path;
     private Verdict verdict = Verdict.WAITING;
     private Verdict held;
 
-    ChallengerTest(Plan plan, Variant challenger) {
+    ChallengerTest(Plan plan, String planDigest, Variant challenger, DecisionMemo memo) {
         this.plan = plan;
+        this.planDigest = planDigest;
+        this.memo = memo;
         this.challenger = challenger;
         variant = plan.variantIndex(challenger.name());
         control = plan.variantIndex(plan.control().name());
@@ -88,7 +88,7 @@ final class ChallengerTest {
 
     PlanDesign design() {
         if (design == null) {
-            design = PlanDesign.of(plan, challenger);
+            design = memo.design(plan, planDigest, challenger);
         }
         return design;
     }
@@ -163,12 +163,12 @@ final class ChallengerTest {
         double spendingTime = last ? 1 : Math.min(fraction, 1);
         TailSpending spent =
                 TailSpending.at(plan, design().spending().spent(design().tailLevel(), spendingTime), benefitOpen);
-        Look look = runEnds && !looks.isEmpty() && stands(fraction)
-                ? lastLookAgain(spent)
-                : boundaries().next(fraction, spent.upper(), spent.lower());
-        boolean futile = plan.futility().isPresent() && !last;
-        double betaSpent = futile ? betaSpent(spendingTime) : 0;
-        double futilityBound = futile ? futilityBound(look, betaSpent) : Double.NEGATIVE_INFINITY;
+        double betaSpent = plan.futility().isPresent() && !last ? betaSpent(spendingTime) : 0;
+        LookPath.Request request = new LookPath.Request(fraction, spent.upper(), spent.lower(), betaSpent);
+        LookPath.Bounds bounds =
+                runEnds && !looks.isEmpty() && stands(fraction) ? lastLookAgain(request) : path().next(request);
+        Look look = bounds.look();
+        double futilityBound = bounds.futility();
         Verdict finding = judge(found.z(), look, futilityBound, last);
         settle(finding, sound);
         TakenLook taken = new TakenLook(
@@ -185,18 +185,19 @@ final class ChallengerTest {
      * The look at the end of a run whose data have not grown since the look before: that look once more, as if it had been
      * the last. It crosses wherever the look before would have crossed, so that both together spend what the one may spend.
      */
-    private Look lastLookAgain(TailSpending spent) {
-        List<Look> taken = looks.values().stream().map(TakenLook::look).toList();
-        Look before = taken.get(taken.size() - 1);
-        Look again = BoundarySequence.resume(taken.subList(0, taken.size() - 1))
-                .next(before.information(), spent.upper(), spent.lower());
-        return new Look(
-                before.number() + 1,
-                again.information(),
-                again.upperSpent(),
-                again.lowerSpent(),
-                again.upper(),
-                again.lower());
+    private LookPath.Bounds lastLookAgain(LookPath.Request request) {
+        Look before = looks.lastEntry().getValue().look();
+        Look again = path().lastAgain(new LookPath.Request(
+                before.information(), request.upperSpent(), request.lowerSpent(), request.betaSpent()));
+        return new LookPath.Bounds(
+                new Look(
+                        before.number() + 1,
+                        again.information(),
+                        again.upperSpent(),
+                        again.lowerSpent(),
+                        again.upper(),
+                        again.lower()),
+                Double.NEGATIVE_INFINITY);
     }
 
     private boolean minimumRunOver(long windowEnd) {
@@ -206,14 +207,6 @@ final class ChallengerTest {
     private double betaSpent(double spendingTime) {
         return PlanDesign.spendingFunction(plan.futility().orElseThrow().spending())
                 .spent(1 - plan.test().power(), spendingTime);
-    }
-
-    private double futilityBound(Look look, double betaSpent) {
-        return futilities().next(look.information(), benefitBoundary(look), betaSpent);
-    }
-
-    private double benefitBoundary(Look look) {
-        return higherIsBetter() ? look.upper() : -look.lower();
     }
 
     private Verdict judge(double z, Look look, double futilityBound, boolean last) {
@@ -299,23 +292,19 @@ final class ChallengerTest {
         return plan.test().better() == Better.HIGHER;
     }
 
-    private BoundarySequence boundaries() {
-        if (boundaries == null) {
-            boundaries = BoundarySequence.resume(
-                    looks.values().stream().map(TakenLook::look).toList());
-        }
-        return boundaries;
-    }
-
-    private FutilitySequence futilities() {
-        if (futility == null) {
-            futility = new FutilitySequence(design().drift());
+    private LookPath path() {
+        if (path == null) {
+            path = new LookPath(
+                    design().drift(), higherIsBetter(), memo.path(planDigest, challenger, design().alpha()));
             for (TakenLook taken : looks.values()) {
-                futility.resume(
-                        taken.look().information(), benefitBoundary(taken.look()), taken.betaSpent(), taken.futility());
+                Look look = taken.look();
+                path.resume(
+                        new LookPath.Request(
+                                look.information(), look.upperSpent(), look.lowerSpent(), taken.betaSpent()),
+                        new LookPath.Bounds(look, taken.futility()));
             }
         }
-        return futility;
+        return path;
     }
 
     void restoreLook(TakenLook look) {

@@ -32,6 +32,7 @@ public final class DecideShard {
     private static final byte WINDOW = 'W';
     private static final byte LOOK = 'L';
 
+    private final DecisionMemo memo;
     private final Map<String, Plan> plans = new LinkedHashMap<>();
     private final Map<String, ExperimentDecider> deciders = new LinkedHashMap<>();
     private final Map<String, Long> unplanned = new HashMap<>();
@@ -42,6 +43,17 @@ public final class DecideShard {
      * @param plans the plans to decide under, one per experiment
      */
     public DecideShard(Collection<Plan> plans) {
+        this(plans, new DecisionMemo(0));
+    }
+
+    /**
+     * A shard that has decided nothing yet, with a memory that it may share with others.
+     *
+     * @param plans the plans to decide under, one per experiment
+     * @param memo what has been computed for these plans before
+     */
+    public DecideShard(Collection<Plan> plans, DecisionMemo memo) {
+        this.memo = memo;
         plans.forEach(plan -> this.plans.put(plan.experiment(), plan));
     }
 
@@ -102,7 +114,7 @@ public final class DecideShard {
     }
 
     private ExperimentDecider decider(String experiment) {
-        return deciders.computeIfAbsent(experiment, name -> new ExperimentDecider(plans.get(name)));
+        return deciders.computeIfAbsent(experiment, name -> new ExperimentDecider(plans.get(name), memo));
     }
 
     /** Everything to be made durable since this was last asked. */

@@ -55,7 +55,7 @@ final class ExperimentDecider {
     private final List<TakenLook> newLooks = new ArrayList<>();
     private boolean changed;
 
-    ExperimentDecider(Plan plan) {
+    ExperimentDecider(Plan plan, DecisionMemo memo) {
         this.plan = plan;
         planDigest = PlanDigest.of(plan);
         windowMillis = plan.count().window().toMillis();
@@ -66,7 +66,7 @@ final class ExperimentDecider {
         splitWatch = new SplitWatch(plan);
         trustWatch = new TrustWatch(plan);
         for (Variant challenger : plan.challengers()) {
-            tests.add(new ChallengerTest(plan, challenger));
+            tests.add(new ChallengerTest(plan, planDigest, challenger, memo));
         }
     }
 
