@@ -67,6 +67,27 @@ public record TestPlan(
         TRIALS
     }
 
+    /**
+     * A test with both directions alike and the defaults of a plan file.
+     *
+     * @param alpha family-wise level, both directions together; in (0, 0.5)
+     */
+    public static TestPlan of(
+            double alpha, Sides sides, Spending spending, double power, double baseline, double smallestEffect) {
+        Tail tail = Tail.of(sides == Sides.TWO ? alpha / 2 : alpha, spending);
+        return new TestPlan(
+                tail,
+                sides == Sides.TWO ? Optional.of(tail) : Optional.empty(),
+                AlphaSharing.PASS_ON,
+                SpendingClock.INFORMATION,
+                InformationMeasure.OBSERVED,
+                power,
+                baseline,
+                smallestEffect,
+                Better.HIGHER,
+                DEFAULT_MINIMUM_PER_CELL);
+    }
+
     /** The family-wise level, both directions together. */
     public double alpha() {
         return benefit.alpha() + harm.map(Tail::alpha).orElse(0.0);

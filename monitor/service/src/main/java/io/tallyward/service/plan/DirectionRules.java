@@ -29,7 +29,10 @@ final class DirectionRules {
         if (benefit.isPresent() && harm.isPresent()) {
             double sum = benefit.get() + harm.get();
             if (!(Math.abs(sum - alpha.get()) <= ROUNDING)) {
-                test.refuse(PlanKeys.Test.ALPHA, String.valueOf(alpha.get()), "the sum of benefit.alpha and harm.alpha, " + sum);
+                test.refuse(
+                        PlanKeys.Test.ALPHA,
+                        String.valueOf(alpha.get()),
+                        "the sum of benefit.alpha and harm.alpha, " + sum);
             }
             return;
         }
@@ -65,7 +68,8 @@ final class DirectionRules {
                 level(test, direction),
                 own.flatMap(values -> values.find(PlanKeys.Direction.SPENDING))
                         .orElseGet(() -> test.get(PlanKeys.Test.SPENDING)),
-                own.flatMap(values -> values.find(PlanKeys.Direction.SILENT_BEFORE)).orElse(0.0));
+                own.flatMap(values -> values.find(PlanKeys.Direction.SILENT_BEFORE))
+                        .orElse(0.0));
     }
 
     private static double level(Values test, Key<Values> direction) {

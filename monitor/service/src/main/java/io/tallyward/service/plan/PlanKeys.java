@@ -11,10 +11,10 @@ import static io.tallyward.service.config.document.ScalarType.share;
 import static io.tallyward.service.config.document.ScalarType.text;
 import static io.tallyward.service.config.document.ScalarType.wholeNumber;
 
+import io.tallyward.engine.plan.FutilityPlan.Assumption;
 import io.tallyward.engine.plan.Spending;
 import io.tallyward.engine.plan.SplitCheckPlan;
 import io.tallyward.engine.plan.TestPlan;
-import io.tallyward.engine.plan.FutilityPlan.Assumption;
 import io.tallyward.engine.plan.TestPlan.AlphaSharing;
 import io.tallyward.engine.plan.TestPlan.Better;
 import io.tallyward.engine.plan.TestPlan.InformationMeasure;
@@ -71,8 +71,8 @@ public final class PlanKeys {
     }
 
     static final class Direction {
-        static final Key<Double> ALPHA = Key.optional(
-                "alpha", numberBetween(0, 0.5), "Level of this direction; both add up to test.alpha.");
+        static final Key<Double> ALPHA =
+                Key.optional("alpha", numberBetween(0, 0.5), "Level of this direction; both add up to test.alpha.");
         static final Key<Spending> SPENDING =
                 Key.optional("spending", new SpendingType(), "How it is spent over the looks; test.spending else.");
         static final Key<Double> SILENT_BEFORE = Key.withDefault(
@@ -151,8 +151,8 @@ public final class PlanKeys {
     }
 
     static final class Futility {
-        static final Key<Spending> SPENDING = Key.optional(
-                "spending", new SpendingType(), "By the type II error spent over the looks.");
+        static final Key<Spending> SPENDING =
+                Key.optional("spending", new SpendingType(), "By the type II error spent over the looks.");
         static final Key<Double> CONDITIONAL_POWER = Key.optional(
                 "conditional-power", threshold(), "When conditional power at the planned end falls below this.");
         static final Key<Assumption> UNDER = Key.withDefault(
@@ -236,7 +236,8 @@ public final class PlanKeys {
     static final Key<Values> TEST =
             Key.required("test", Test.SHAPE, "The test of each challenger against the control.");
     static final Key<Values> LOOKS = Key.required("looks", Looks.SHAPE, "When a look is due: every or fractions.");
-    static final Key<Values> FUTILITY = Key.optional("futility", Futility.SHAPE, "When to give up, by one rule; never without it. Advice only.");
+    static final Key<Values> FUTILITY =
+            Key.optional("futility", Futility.SHAPE, "When to give up, by one rule; never without it. Advice only.");
     static final Key<Values> SPLIT_CHECK =
             Key.section("split-check", SplitCheck.SHAPE, "The watch over the traffic split.");
     static final Key<Values> TRUST = Key.section("trust", Trust.SHAPE, "Limits beyond which the data are not trusted.");

@@ -101,8 +101,7 @@ public final class PlanReader {
         return futility.find(PlanKeys.Futility.SPENDING)
                 .<FutilityPlan>map(FutilityPlan.ErrorSpending::new)
                 .or(() -> futility.find(PlanKeys.Futility.CONDITIONAL_POWER)
-                        .map(below -> new FutilityPlan.ConditionalPower(
-                                below, futility.get(PlanKeys.Futility.UNDER))))
+                        .map(below -> new FutilityPlan.ConditionalPower(below, futility.get(PlanKeys.Futility.UNDER))))
                 .orElseGet(() -> new FutilityPlan.PredictivePower(futility.get(PlanKeys.Futility.PREDICTIVE_POWER)));
     }
 

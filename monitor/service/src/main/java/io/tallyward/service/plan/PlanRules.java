@@ -128,7 +128,10 @@ final class PlanRules {
         if (futility.gives(PlanKeys.Futility.UNDER) && !futility.gives(PlanKeys.Futility.CONDITIONAL_POWER)) {
             futility.refuse(
                     PlanKeys.Futility.UNDER,
-                    futility.find(PlanKeys.Futility.UNDER).map(String::valueOf).orElse("given").toLowerCase(Locale.ROOT),
+                    futility.find(PlanKeys.Futility.UNDER)
+                            .map(String::valueOf)
+                            .orElse("given")
+                            .toLowerCase(Locale.ROOT),
                     "nothing: only conditional-power assumes an effect");
         }
     }
