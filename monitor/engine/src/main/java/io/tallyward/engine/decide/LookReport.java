@@ -74,7 +74,7 @@ final class LookReport {
                         .map(lift -> estimated(lift.lift(new Estimate(
                                 sitting.found().difference(), new Interval(lower, upper, 1 - levels.both())))))
                         .orElse(null),
-                outlook(look, z, bounds.critical()),
+                ended && outcome.finding() != Verdict.STOP_FUTILITY ? null : outlook(look, z, bounds.critical()),
                 ended && detail == Detail.FULL ? adjusted(sitting, levels, looks) : null,
                 outcome.verdict(),
                 outcome.heldOrNull(),
