@@ -15,7 +15,6 @@ import java.io.IOException;
 import java.time.Instant;
 import java.util.Collection;
 import java.util.List;
-import java.util.Locale;
 import java.util.Optional;
 import java.util.TreeMap;
 
@@ -29,16 +28,10 @@ import java.util.TreeMap;
  */
 final class ChallengerTest {
 
-    /**
-     * Least growth of the information fraction between two looks. Below it a look could find next to nothing that the one
-     * before did not, and its boundary would need an ever finer quadrature.
-     */
-    private static final double LEAST_GROWTH = 0.001;
-
     private final Plan plan;
     private final Variant challenger;
     private final int variant;
-    private final int control;
+    private final Readiness readiness;
     private final LookCalendar calendar;
     private final DecisionMemo memo;
     private final String planDigest;
@@ -61,7 +54,7 @@ final class ChallengerTest {
         this.memo = memo;
         this.detail = detail;
         variant = plan.variantIndex(challenger.name());
-        control = plan.variantIndex(plan.control().name());
+        readiness = new Readiness(plan, variant);
         calendar = new LookCalendar(plan);
         initialLevels = TailLevels.initial(plan, plan.challengers().indexOf(challenger));
         levels = initialLevels;
@@ -129,21 +122,26 @@ final class ChallengerTest {
         if (!runEnds && !calendar.isDue(windowEnd, fraction, minimumRunOver)) {
             return new Attempt.NotDue();
         }
-        String obstacle = obstacle(counts, fraction, runEnds);
-        if (comparison.isEmpty() || !obstacle.isEmpty()) {
-            return new Attempt.Delayed(obstacle, calendar.delayed());
-        }
         boolean benefitOpen = runEnds || minimumRunOver;
         boolean last = runEnds || (fraction >= 1 && benefitOpen);
+        double time = last ? 1 : spendingTime(fraction, windowEnd);
+        Optional<String> caution = readiness.tooSkew(
+                strata, TailSpending.at(plan, levels, time, benefitOpen), TailSpending.all(plan, levels));
+        Optional<String> obstacle =
+                readiness.tooFew(counts).or(() -> runEnds ? Optional.empty() : growing(fraction, caution));
+        if (comparison.isEmpty() || obstacle.isPresent()) {
+            return new Attempt.Delayed(obstacle.orElse(""), calendar.delayed());
+        }
         sitting = new Sitting(
                 strata,
                 comparison.get(),
                 fraction,
                 windowEnd,
-                last ? 1 : spendingTime(fraction, windowEnd),
+                time,
                 benefitOpen,
                 last,
-                runEnds && !looks.isEmpty() && stands(fraction));
+                runEnds && !looks.isEmpty() && Readiness.stands(fraction, lastInformation()),
+                caution.orElse(""));
         calendar.taken(windowEnd, fraction);
         return new Attempt.Taken(judge(sound));
     }
@@ -171,35 +169,12 @@ final class ChallengerTest {
         return StrictMath.min((double) elapsed / plan.run().atMost().toMillis(), 1);
     }
 
-    private String obstacle(CumulativeCounts counts, double fraction, boolean runEnds) {
-        int least = plan.test().minimumPerCell();
-        for (int arm : new int[] {control, variant}) {
-            long successes = counts.successes(arm);
-            long failures = counts.trials(arm) - successes;
-            if (successes < least || failures < least) {
-                return String.format(
-                        Locale.ROOT,
-                        "%s has %d successes and %d failures (a look needs %d of each)",
-                        plan.variants().get(arm).name(),
-                        successes,
-                        failures,
-                        least);
-            }
-        }
-        if (!runEnds && stands(fraction)) {
-            return String.format(
-                    Locale.ROOT,
-                    "the information fraction has grown from %.4f to %.4f only (a look needs %.3f more)",
-                    lastInformation(),
-                    fraction,
-                    LEAST_GROWTH);
-        }
-        return "";
-    }
-
-    /** Whether information has hardly grown since the last look. */
-    private boolean stands(double fraction) {
-        return fraction - lastInformation() < LEAST_GROWTH;
+    /** A look before the end of the run waits for information, and for counts that the normal law describes. */
+    private Optional<String> growing(double fraction, Optional<String> caution) {
+        double before = lastInformation();
+        return Readiness.stands(fraction, before)
+                ? Optional.of(Readiness.standing(fraction, before))
+                : caution.map(text -> text + " (a look needs " + Readiness.MOST_ERROR_PERCENT + " % or less)");
     }
 
     private double lastInformation() {
@@ -251,7 +226,7 @@ final class ChallengerTest {
     private LookPath.Bounds bounds(double betaSpent) {
         TailSpending spent = TailSpending.at(plan, levels, sitting.time(), sitting.benefitOpen());
         boolean foresee = !sitting.last()
-                && sitting.fraction() <= 1 - LEAST_GROWTH
+                && sitting.fraction() <= 1 - Readiness.LEAST_GROWTH
                 && (futility.looksAhead() || detail == Detail.FULL);
         TailSpending end = foresee ? TailSpending.all(plan, levels) : null;
         LookPath.Bounds found = path().next(new LookPath.Request(sitting.fraction(), spent, betaSpent, end));

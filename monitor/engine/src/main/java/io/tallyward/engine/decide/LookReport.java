@@ -78,7 +78,7 @@ final class LookReport {
                 ended && detail == Detail.FULL ? adjusted(sitting, levels, looks) : null,
                 outcome.verdict(),
                 outcome.heldOrNull(),
-                reason(z, look, outcome));
+                reason(z, look, outcome, sitting.caution()));
     }
 
     private Outlook outlook(Look look, double z, double critical) {
@@ -168,7 +168,7 @@ final class LookReport {
         return Double.isInfinite(value) ? null : value;
     }
 
-    private String reason(double z, Look look, Outcome outcome) {
+    private static String reason(double z, Look look, Outcome outcome, String caution) {
         String text = switch (outcome.finding()) {
             case STOP_BENEFIT -> "z %.3f has reached the benefit boundary %.3f";
             case STOP_HARM -> "z %.3f has reached the harm boundary %.3f";
@@ -178,6 +178,8 @@ final class LookReport {
         };
         double crossed = z >= look.upper() ? look.upper() : look.lower();
         String reason = String.format(Locale.ROOT, text, z, crossed);
-        return outcome.heldOrNull() == null ? reason : reason + "; held until the data are trusted again";
+        return reason
+                + (caution.isEmpty() ? "" : "; " + caution)
+                + (outcome.heldOrNull() == null ? "" : "; held until the data are trusted again");
     }
 }

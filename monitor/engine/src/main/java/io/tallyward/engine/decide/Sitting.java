@@ -15,6 +15,7 @@ import java.util.List;
  * @param benefitOpen whether the minimum run is over
  * @param last whether no look follows
  * @param again whether nothing has come in since the look before: that look once more, as the last
+ * @param caution why the level may be off, in words; empty when it is not
  */
 record Sitting(
         List<Stratum> strata,
@@ -24,7 +25,8 @@ record Sitting(
         double time,
         boolean benefitOpen,
         boolean last,
-        boolean again) {
+        boolean again,
+        String caution) {
 
     Sitting {
         strata = List.copyOf(strata);

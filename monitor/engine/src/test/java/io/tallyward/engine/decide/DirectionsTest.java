@@ -237,4 +237,55 @@ class DirectionsTest {
         assertEquals(0.025, coast.level(), SAME);
         assertNull(coast.lower());
     }
+
+    /** One arm nine times the other: for rare successes the skewness is 0.8 / sqrt(0.09 m) with m successes. */
+    private static Plans nineToOne(Spending spending) {
+        return days("quay-banner")
+                .variants(new Variant("plain", 0.9, true), new Variant("wide", 0.1, false))
+                .spending(spending)
+                .baseline(0.01)
+                .smallestEffect(0.003);
+    }
+
+    @Test
+    void delaysALookWhileArmsOfUnequalSizeHaveFewSuccesses() {
+        DecideHost host = new DecideHost(nineToOne(Spending.of(Family.POCOCK)).build()).next(9000, 90, 1000, 10);
+        assertEquals(List.of(), host.decisions());
+        assertTrue(
+                host.view()
+                        .delayReason()
+                        .startsWith("few successes in arms of unequal size: the error of a direction may"
+                                + " exceed its level by "),
+                host.view().delayReason());
+        assertTrue(host.view().delayReason().endsWith("(a look needs 10 % or less)"));
+        host.next(27000, 270, 3000, 30);
+        assertEquals(1, host.lastLook().look(), "400 successes are enough");
+    }
+
+    @Test
+    void doesNotDelayWhereNextToNothingIsSpentOrTheArmsAreOfOneSize() {
+        DecideHost cautious =
+                new DecideHost(nineToOne(Spending.of(Family.OBRIEN_FLEMING)).build()).next(9000, 90, 1000, 10);
+        assertEquals(1, cautious.lastLook().look());
+        DecideHost even = new DecideHost(days("quay-banner")
+                        .spending(Spending.of(Family.POCOCK))
+                        .baseline(0.01)
+                        .smallestEffect(0.003)
+                        .build())
+                .next(1000, 10, 1000, 10);
+        assertEquals(1, even.lastLook().look());
+    }
+
+    @Test
+    void saysAtTheEndOfTheRunThatTheLevelMayBeOff() {
+        DecideHost host = new DecideHost(nineToOne(Spending.of(Family.POCOCK)).build());
+        for (int day = 0; day < 5; day++) {
+            host.next(1800, 18, 200, 2);
+        }
+        assertEquals(1, host.lastLook().look(), "the only look is the last");
+        assertTrue(
+                host.lastLook().reason().contains("; few successes in arms of unequal size"),
+                host.lastLook().reason());
+        assertEquals(Verdict.EXHAUSTED, host.lastLook().verdict());
+    }
 }

@@ -1,0 +1,92 @@
+package io.tallyward.engine.decide;
+
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.statistics.distribution.Normal;
+import io.tallyward.statistics.proportion.NormalError;
+import io.tallyward.statistics.proportion.Stratum;
+import java.util.List;
+import java.util.Locale;
+import java.util.Optional;
+
+/** Whether the counts bear a look at one challenger. */
+final class Readiness {
+
+    /**
+     * Least growth of the information fraction between two looks. Below it a look could find next to nothing that the one
+     * before did not, and its boundary would need an ever finer quadrature.
+     */
+    static final double LEAST_GROWTH = 0.001;
+
+    /**
+     * Per cent of a direction's level by which skewness may raise its error at a look. Small counts in arms of unequal size
+     * make one tail heavier than the normal law says; a tenth of the level is what rounding to one digit would hide.
+     */
+    static final int MOST_ERROR_PERCENT = 10;
+
+    private final Plan plan;
+    private final int variant;
+    private final int control;
+
+    Readiness(Plan plan, int variant) {
+        this.plan = plan;
+        this.variant = variant;
+        control = plan.variantIndex(plan.control().name());
+    }
+
+    /** Why an arm has too few successes or failures, if it has; common practice for a normal approximation. */
+    Optional<String> tooFew(CumulativeCounts counts) {
+        int least = plan.test().minimumPerCell();
+        for (int arm : new int[] {control, variant}) {
+            long successes = counts.successes(arm);
+            long failures = counts.trials(arm) - successes;
+            if (successes < least || failures < least) {
+                return Optional.of(String.format(
+                        Locale.ROOT,
+                        "%s has %d successes and %d failures (a look needs %d of each)",
+                        plan.variants().get(arm).name(),
+                        successes,
+                        failures,
+                        least));
+            }
+        }
+        return Optional.empty();
+    }
+
+    /** Whether information has hardly grown since the last look. */
+    static boolean stands(double fraction, double before) {
+        return fraction - before < LEAST_GROWTH;
+    }
+
+    /** The same in words. */
+    static String standing(double fraction, double before) {
+        return String.format(
+                Locale.ROOT,
+                "the information fraction has grown from %.4f to %.4f only (a look needs %.3f more)",
+                before,
+                fraction,
+                LEAST_GROWTH);
+    }
+
+    /**
+     * Why the normal law is too far off for this look, if it is. Judged at the boundary that a first look with all the error
+     * spent so far would have: no boundary of a later look is closer.
+     *
+     * @param spent error the tails may have spent by this look
+     * @param all error they may spend in all
+     */
+    Optional<String> tooSkew(List<Stratum> strata, TailSpending spent, TailSpending all) {
+        double skewness = NormalError.skewness(strata);
+        double error = StrictMath.max(
+                share(skewness, spent.upper(), all.upper()), share(-skewness, spent.lower(), all.lower()));
+        return 100 * error > MOST_ERROR_PERCENT
+                ? Optional.of(String.format(
+                        Locale.ROOT,
+                        "few successes in arms of unequal size: the error of a direction may exceed its level by %.0f %%",
+                        100 * error))
+                : Optional.empty();
+    }
+
+    private static double share(double skewness, double spent, double all) {
+        return spent > 0 ? NormalError.tail(skewness, Normal.upperQuantile(spent)) / all : 0;
+    }
+}
