@@ -258,8 +258,8 @@ class DirectionsTest {
                                 + " exceed its level by "),
                 host.view().delayReason());
         assertTrue(host.view().delayReason().endsWith("(a look needs 10 % or less)"));
-        host.next(27000, 270, 3000, 30);
-        assertEquals(1, host.lastLook().look(), "400 successes are enough");
+        host.next(81000, 810, 9000, 90);
+        assertEquals(1, host.lastLook().look(), "1000 successes are enough");
     }
 
     @Test
