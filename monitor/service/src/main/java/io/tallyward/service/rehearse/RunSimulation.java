@@ -1,0 +1,149 @@
+package io.tallyward.service.rehearse;
+
+import io.tallyward.engine.count.Outcome;
+import io.tallyward.engine.count.OutcomeCounts;
+import io.tallyward.engine.count.SealCause;
+import io.tallyward.engine.count.TallyUpdate;
+import io.tallyward.engine.count.WindowTally;
+import io.tallyward.engine.count.WindowTally.Cell;
+import io.tallyward.engine.decide.DecideShard;
+import io.tallyward.engine.decide.DecisionMemo;
+import io.tallyward.engine.decide.PlanDesign;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanDigest;
+import io.tallyward.engine.plan.TestPlan.Better;
+import io.tallyward.engine.plan.TestPlan.Sides;
+import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.service.rehearse.Follower.Challenger;
+import io.tallyward.statistics.distribution.Normal;
+import java.util.ArrayList;
+import java.util.List;
+import java.util.Optional;
+import java.util.random.RandomGenerator;
+import java.util.random.RandomGeneratorFactory;
+
+/**
+ * Carries a plan out once, by chance: draws the counts of each step, hands them to the deciding rules as sealed windows and
+ * follows the records until every verdict is told. A run depends on the seed and its index alone. Thread-safe.
+ */
+final class RunSimulation {
+
+    private static final RandomGeneratorFactory<RandomGenerator> GENERATORS =
+            RandomGeneratorFactory.of("L64X128MixRandom");
+
+    /** Steps handed over at once while one challenger waits for information: at most this part of those between looks. */
+    private static final int STEPS_PER_LOOK = 5;
+
+    private static final int MOST_AT_ONCE = 50;
+
+    private final RehearsedPlan rehearsed;
+    private final RehearsalRequest request;
+    private final double[] rates;
+    private final DecisionMemo memo;
+    private final String planDigest;
+    private final int stepsAtOnce;
+    private final double naiveBound;
+    private final double level;
+
+    RunSimulation(RehearsedPlan rehearsed, RehearsalRequest request, DecisionMemo memo) {
+        this.rehearsed = rehearsed;
+        this.request = request;
+        rates = request.rates();
+        this.memo = memo;
+        Plan plan = rehearsed.plan();
+        planDigest = PlanDigest.of(plan);
+        stepsAtOnce = stepsAtOnce(rehearsed);
+        naiveBound = Normal.upperQuantile(plan.test().tailAlpha(plan.test().alpha()));
+        level = 1 - 2 * plan.test().tailAlpha(plan.alphaPerComparison());
+    }
+
+    /** With several challengers the traffic depends on every verdict, so that each step has to be followed. */
+    private static int stepsAtOnce(RehearsedPlan rehearsed) {
+        Plan plan = rehearsed.plan();
+        int looks = PlanDesign.plannedFractions(plan).length;
+        int between = rehearsed.steps() / (STEPS_PER_LOOK * looks);
+        return plan.challengers().size() > 1 ? 1 : Math.max(1, Math.min(MOST_AT_ONCE, between));
+    }
+
+    /** What the intervals of one comparison promise: both of its tails left out, or twice the only one. */
+    double level() {
+        return level;
+    }
+
+    /** One run. */
+    RunResult run(long index) {
+        RandomGenerator random = GENERATORS.create(mixed(mixed(request.seed()) + index));
+        Traffic traffic = new Traffic(rehearsed, rates, request.fixedSplit(), random);
+        DecideShard shard = new DecideShard(List.of(rehearsed.plan()), memo);
+        Follower follower = new Follower(rehearsed.plan());
+        for (int step = 0; step < rehearsed.steps() && !follower.over(); step += stepsAtOnce) {
+            shard.apply(update(traffic, step, Math.min(rehearsed.steps(), step + stepsAtOnce)));
+            shard.drain().decisions().forEach(follower::take);
+            follower.challengers().stream()
+                    .filter(Challenger::settled)
+                    .forEach(challenger -> traffic.leaveOut(challenger.variant()));
+        }
+        return result(follower);
+    }
+
+    private TallyUpdate update(Traffic traffic, int from, int to) {
+        List<WindowTally> windows = new ArrayList<>(to - from);
+        for (int step = from; step < to; step++) {
+            List<Cell> cells = traffic.step(step);
+            OutcomeCounts.Builder outcomes = new OutcomeCounts.Builder();
+            for (Cell cell : cells) {
+                outcomes.add(Outcome.TRIAL, cell.trials()).add(Outcome.SUCCESS, cell.successes());
+            }
+            windows.add(new WindowTally(rehearsed.startMillis(step), cells, outcomes.build()));
+        }
+        return new TallyUpdate(
+                rehearsed.plan().experiment(),
+                planDigest,
+                0,
+                1,
+                rehearsed.startMillis(to),
+                SealCause.WATERMARK,
+                windows);
+    }
+
+    private RunResult result(Follower follower) {
+        long millis = follower.endMillis() - rehearsed.startMillis(0);
+        int steps = Math.toIntExact(millis / rehearsed.step().toMillis());
+        return new RunResult(
+                follower.looks(),
+                rehearsed.arrivalsBefore(steps),
+                millis,
+                follower.mismatch(),
+                follower.challengers().stream().map(this::arm).toList());
+    }
+
+    private RunResult.Arm arm(Challenger challenger) {
+        List<Comparison> looks = challenger.looks();
+        Optional<StopEstimate> estimate = request.estimates() && !looks.isEmpty()
+                ? Optional.of(StopEstimate.of(looks, truth(challenger), level))
+                : Optional.empty();
+        return new RunResult.Arm(
+                challenger.ending(), looks.size(), looks.stream().anyMatch(this::naivelyRejects), estimate);
+    }
+
+    private double truth(Challenger challenger) {
+        Plan plan = rehearsed.plan();
+        return rates[challenger.variant()]
+                - rates[plan.variantIndex(plan.control().name())];
+    }
+
+    /** The test somebody would do who knows of no other looks and no other challengers. */
+    private boolean naivelyRejects(Comparison look) {
+        Plan plan = rehearsed.plan();
+        double towardsBenefit = plan.test().better() == Better.HIGHER ? look.z() : -look.z();
+        double evidence = plan.test().sides() == Sides.TWO ? Math.abs(towardsBenefit) : towardsBenefit;
+        return evidence >= naiveBound;
+    }
+
+    /** A bijection after which neighbours have nothing in common: variant 13 of the finalisers of Stafford (2011), recalled. */
+    private static long mixed(long value) {
+        long z = (value ^ (value >>> 30)) * 0xbf58476d1ce4e5b9L;
+        z = (z ^ (z >>> 27)) * 0x94d049bb133111ebL;
+        return z ^ (z >>> 31);
+    }
+}
