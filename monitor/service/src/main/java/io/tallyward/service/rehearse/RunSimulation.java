@@ -8,7 +8,7 @@ import io.tallyward.engine.count.WindowTally;
 import io.tallyward.engine.count.WindowTally.Cell;
 import io.tallyward.engine.decide.DecideShard;
 import io.tallyward.engine.decide.DecisionMemo;
-import io.tallyward.engine.decide.PlanDesign;
+import io.tallyward.engine.plan.LookSchedule;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanDigest;
 import io.tallyward.engine.plan.TestPlan.Better;
@@ -31,9 +31,7 @@ final class RunSimulation {
     private static final RandomGeneratorFactory<RandomGenerator> GENERATORS =
             RandomGeneratorFactory.of("L64X128MixRandom");
 
-    /** Steps handed over at once while one challenger waits for information: at most this part of those between looks. */
-    private static final int STEPS_PER_LOOK = 5;
-
+    /** Enough for a plan of a few looks to go in as a whole; a long one is not drawn to its end in vain. */
     private static final int MOST_AT_ONCE = 50;
 
     private final RehearsedPlan rehearsed;
@@ -57,12 +55,18 @@ final class RunSimulation {
         level = 1 - 2 * plan.test().tailAlpha(plan.alphaPerComparison());
     }
 
-    /** With several challengers the traffic depends on every verdict, so that each step has to be followed. */
+    /**
+     * Making the records durable, which a rehearsal does without, is most of the work of a step, so that steps go in
+     * together. What is decided does not depend on it, and what comes after the last verdict is not read. With several
+     * challengers the traffic depends on the verdicts, which come with looks.
+     */
     private static int stepsAtOnce(RehearsedPlan rehearsed) {
-        Plan plan = rehearsed.plan();
-        int looks = PlanDesign.plannedFractions(plan).length;
-        int between = rehearsed.steps() / (STEPS_PER_LOOK * looks);
-        return plan.challengers().size() > 1 ? 1 : Math.max(1, Math.min(MOST_AT_ONCE, between));
+        if (rehearsed.plan().challengers().size() == 1) {
+            return MOST_AT_ONCE;
+        }
+        return rehearsed.plan().looks() instanceof LookSchedule.Every every
+                ? Math.toIntExact(every.interval().dividedBy(rehearsed.step()))
+                : 1;
     }
 
     /** What the intervals of one comparison promise: both of its tails left out, or twice the only one. */
