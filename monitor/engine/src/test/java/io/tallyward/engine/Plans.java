@@ -10,9 +10,13 @@ import io.tallyward.engine.plan.Run;
 import io.tallyward.engine.plan.Spending;
 import io.tallyward.engine.plan.Spending.Family;
 import io.tallyward.engine.plan.SplitCheckPlan;
+import io.tallyward.engine.plan.Tail;
 import io.tallyward.engine.plan.TestPlan;
+import io.tallyward.engine.plan.TestPlan.AlphaSharing;
 import io.tallyward.engine.plan.TestPlan.Better;
+import io.tallyward.engine.plan.TestPlan.InformationMeasure;
 import io.tallyward.engine.plan.TestPlan.Sides;
+import io.tallyward.engine.plan.TestPlan.SpendingClock;
 import io.tallyward.engine.plan.TrustLimits;
 import io.tallyward.engine.plan.Variant;
 import java.time.Duration;
@@ -35,6 +39,11 @@ public final class Plans {
     private List<Variant> variants = List.of(new Variant("plain", 0.5, true), new Variant("wide", 0.5, false));
     private double alpha = 0.05;
     private Sides sides = Sides.TWO;
+    private Optional<Tail> benefit = Optional.empty();
+    private Optional<Tail> harm = Optional.empty();
+    private AlphaSharing sharing = AlphaSharing.PASS_ON;
+    private SpendingClock clock = SpendingClock.INFORMATION;
+    private InformationMeasure measure = InformationMeasure.OBSERVED;
     private double power = 0.8;
     private double baseline = 0.2;
     private double smallestEffect = 0.02;
@@ -111,7 +120,36 @@ public final class Plans {
     }
 
     public Plans futility(Spending value) {
-        futility = Optional.of(new FutilityPlan(value));
+        return futility(new FutilityPlan.ErrorSpending(value));
+    }
+
+    public Plans futility(FutilityPlan value) {
+        futility = Optional.of(value);
+        return this;
+    }
+
+    public Plans benefit(Tail value) {
+        benefit = Optional.of(value);
+        return this;
+    }
+
+    public Plans harm(Tail value) {
+        harm = Optional.of(value);
+        return this;
+    }
+
+    public Plans sharing(AlphaSharing value) {
+        sharing = value;
+        return this;
+    }
+
+    public Plans clock(SpendingClock value) {
+        clock = value;
+        return this;
+    }
+
+    public Plans measure(InformationMeasure value) {
+        measure = value;
         return this;
     }
 
@@ -143,12 +181,14 @@ public final class Plans {
                 count,
                 variants,
                 new TestPlan(
-                        alpha,
-                        sides,
+                        benefit.orElse(even()),
+                        sides == Sides.TWO ? Optional.of(harm.orElse(even())) : Optional.empty(),
+                        sharing,
+                        clock,
+                        measure,
                         power,
                         baseline,
                         smallestEffect,
-                        spending,
                         better,
                         TestPlan.DEFAULT_MINIMUM_PER_CELL),
                 looks,
@@ -157,5 +197,9 @@ public final class Plans {
                 trust,
                 new Run(FROM, atLeast, atMost),
                 epochs);
+    }
+
+    private Tail even() {
+        return Tail.of(sides == Sides.TWO ? alpha / 2 : alpha, spending);
     }
 }

@@ -117,6 +117,8 @@ public final class DecisionJson {
         JsonBytes.real(json, "z", comparison.z());
         JsonBytes.real(json, "information", comparison.information());
         JsonBytes.real(json, "informationFraction", comparison.informationFraction());
+        JsonBytes.real(json, "spendingTime", comparison.spendingTime());
+        JsonBytes.real(json, "level", comparison.level());
         JsonBytes.real(json, "alphaSpent", comparison.alphaSpent());
         JsonBytes.realOrNull(json, "upper", comparison.upper());
         JsonBytes.realOrNull(json, "lower", comparison.lower());
@@ -124,6 +126,9 @@ public final class DecisionJson {
         JsonBytes.real(json, "difference", comparison.difference());
         JsonBytes.realOrNull(json, "differenceLower", comparison.differenceLower());
         JsonBytes.realOrNull(json, "differenceUpper", comparison.differenceUpper());
+        EstimatesJson.write(json, "lift", comparison.lift());
+        EstimatesJson.write(json, "outlook", comparison.outlook());
+        EstimatesJson.write(json, "adjusted", comparison.adjusted());
         JsonBytes.text(json, "verdict", comparison.verdict().code());
         json.writeStringField(
                 "held", comparison.held() == null ? null : comparison.held().code());
@@ -137,6 +142,8 @@ public final class DecisionJson {
                 comparison.real("z"),
                 comparison.real("information"),
                 comparison.real("informationFraction"),
+                comparison.real("spendingTime"),
+                comparison.real("level"),
                 comparison.real("alphaSpent"),
                 comparison.realOrNull("upper"),
                 comparison.realOrNull("lower"),
@@ -144,6 +151,9 @@ public final class DecisionJson {
                 comparison.real("difference"),
                 comparison.realOrNull("differenceLower"),
                 comparison.realOrNull("differenceUpper"),
+                EstimatesJson.estimated(comparison, "lift"),
+                EstimatesJson.outlook(comparison, "outlook"),
+                EstimatesJson.adjusted(comparison, "adjusted"),
                 verdict(comparison, "verdict"),
                 comparison.codeOrNull("held", Verdict.values(), Verdict::code),
                 comparison.text("reason"));

@@ -13,6 +13,7 @@ import java.util.Arrays;
 import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.function.Function;
 
 /** The members of one JSON object, read strictly: each must be there, of its type. Messages carry the path to the member. */
@@ -105,6 +106,10 @@ final class JsonMembers {
 
     <E extends Enum<E>> E codeOrNull(String name, E[] values, Function<E, String> codeOf) {
         return value(name).isNull() ? null : code(name, values, codeOf);
+    }
+
+    Optional<JsonMembers> objectOrNull(String name) {
+        return value(name).isNull() ? Optional.empty() : Optional.of(object(name));
     }
 
     JsonMembers object(String name) {

@@ -5,12 +5,15 @@ import io.tallyward.engine.count.OutcomeCounts;
 import io.tallyward.engine.count.SealCause;
 import io.tallyward.engine.count.TallyUpdate;
 import io.tallyward.engine.count.WindowTally;
+import io.tallyward.engine.record.Adjusted;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.Occasion;
 import io.tallyward.engine.record.DecisionRecord.Split;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Notice;
+import io.tallyward.engine.record.Outlook;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
 import java.time.Instant;
@@ -108,15 +111,36 @@ final class RandomRecords {
                 real(),
                 real(),
                 random.nextDouble(),
+                random.nextDouble(),
+                random.nextDouble(),
                 realOrNull(),
                 realOrNull(),
                 realOrNull(),
                 real(),
                 realOrNull(),
                 realOrNull(),
+                random.nextBoolean() ? null : estimated(),
+                random.nextBoolean()
+                        ? null
+                        : new Outlook(
+                                random.nextDouble(), random.nextDouble(), random.nextDouble(), random.nextDouble()),
+                random.nextBoolean() ? null : adjusted(),
                 any(Verdict.values()),
                 random.nextBoolean() ? null : any(Verdict.values()),
                 word());
+    }
+
+    private Estimated estimated() {
+        return new Estimated(real(), realOrNull(), realOrNull());
+    }
+
+    private Adjusted adjusted() {
+        return new Adjusted(
+                random.nextDouble(),
+                random.nextDouble(),
+                estimated(),
+                estimated(),
+                random.nextBoolean() ? null : estimated());
     }
 
     private WindowTally.Cell cell() {

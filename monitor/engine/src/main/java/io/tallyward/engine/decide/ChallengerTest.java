@@ -2,16 +2,19 @@ package io.tallyward.engine.decide;
 
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.TestPlan.Better;
+import io.tallyward.engine.plan.TestPlan.InformationMeasure;
+import io.tallyward.engine.plan.TestPlan.SpendingClock;
 import io.tallyward.engine.plan.Variant;
-import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.Verdict;
 import io.tallyward.statistics.boundary.Look;
 import io.tallyward.statistics.proportion.StratifiedComparison;
+import io.tallyward.statistics.proportion.Stratum;
 import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
 import java.time.Instant;
 import java.util.Collection;
+import java.util.List;
 import java.util.Locale;
 import java.util.Optional;
 import java.util.TreeMap;
@@ -20,6 +23,9 @@ import java.util.TreeMap;
  * The group-sequential test of one challenger against the control: takes looks, keeps the boundaries already used, and
  * latches the verdict. At the last look (information used up and the minimum run over, or the run over) all remaining error
  * is spent.
+ *
+ * <p>When another challenger passes its level on, the boundaries from then on are those of a test that had the larger level
+ * from the start; only the look at hand and later ones are judged by them (Maurer and Bretz 2013).
  */
 final class ChallengerTest {
 
@@ -34,22 +40,31 @@ final class ChallengerTest {
     private final int variant;
     private final int control;
     private final LookCalendar calendar;
-    private final TreeMap<Integer, TakenLook> looks = new TreeMap<>();
     private final DecisionMemo memo;
     private final String planDigest;
+    private final Detail detail;
+    private final TreeMap<Integer, TakenLook> looks = new TreeMap<>();
+    private final TailLevels initialLevels;
+    private TailLevels levels;
     private PlanDesign design;
+    private FutilityRule futility;
+    private LookReport report;
     private LookPath path;
+    private Sitting sitting;
     private Verdict verdict = Verdict.WAITING;
     private Verdict held;
 
-    ChallengerTest(Plan plan, String planDigest, Variant challenger, DecisionMemo memo) {
+    ChallengerTest(Plan plan, String planDigest, Variant challenger, DecisionMemo memo, Detail detail) {
         this.plan = plan;
         this.planDigest = planDigest;
-        this.memo = memo;
         this.challenger = challenger;
+        this.memo = memo;
+        this.detail = detail;
         variant = plan.variantIndex(challenger.name());
         control = plan.variantIndex(plan.control().name());
         calendar = new LookCalendar(plan);
+        initialLevels = TailLevels.initial(plan, plan.challengers().indexOf(challenger));
+        levels = initialLevels;
     }
 
     /** What came of a look that was due. */
@@ -89,6 +104,8 @@ final class ChallengerTest {
     PlanDesign design() {
         if (design == null) {
             design = memo.design(plan, planDigest, challenger);
+            futility = new FutilityRule(plan, design);
+            report = new LookReport(plan, challenger.name(), design, detail);
         }
         return design;
     }
@@ -105,20 +122,53 @@ final class ChallengerTest {
      * @param sound whether the data are trusted; if not, a final verdict is held
      */
     Attempt attempt(CumulativeCounts counts, long windowEnd, boolean runEnds, boolean sound) {
-        Optional<StratifiedComparison> comparison = StratifiedComparison.of(counts.strata(variant));
-        double fraction = comparison
-                .map(found -> found.information() / design().maximumInformation())
-                .orElse(0.0);
-        if (!runEnds && !calendar.isDue(windowEnd, fraction, minimumRunOver(windowEnd))) {
+        List<Stratum> strata = counts.strata(variant);
+        Optional<StratifiedComparison> comparison = StratifiedComparison.of(strata);
+        double fraction = comparison.map(found -> fraction(found, strata)).orElse(0.0);
+        boolean minimumRunOver = minimumRunOver(windowEnd);
+        if (!runEnds && !calendar.isDue(windowEnd, fraction, minimumRunOver)) {
             return new Attempt.NotDue();
         }
         String obstacle = obstacle(counts, fraction, runEnds);
         if (comparison.isEmpty() || !obstacle.isEmpty()) {
             return new Attempt.Delayed(obstacle, calendar.delayed());
         }
-        TakenLook look = look(comparison.get(), fraction, windowEnd, runEnds, sound);
+        boolean benefitOpen = runEnds || minimumRunOver;
+        boolean last = runEnds || (fraction >= 1 && benefitOpen);
+        sitting = new Sitting(
+                strata,
+                comparison.get(),
+                fraction,
+                windowEnd,
+                last ? 1 : spendingTime(fraction, windowEnd),
+                benefitOpen,
+                last,
+                runEnds && !looks.isEmpty() && stands(fraction));
         calendar.taken(windowEnd, fraction);
-        return new Attempt.Taken(look);
+        return new Attempt.Taken(judge(sound));
+    }
+
+    private double fraction(StratifiedComparison found, List<Stratum> strata) {
+        double planned = design().maximumInformation();
+        if (plan.test().measure() == InformationMeasure.OBSERVED) {
+            return found.information() / planned;
+        }
+        double pooled = design().pooledRate();
+        double trials = 0;
+        for (Stratum stratum : strata) {
+            double own = stratum.trials();
+            double others = stratum.controlTrials();
+            trials += own + others > 0 ? own * (others / (own + others)) : 0;
+        }
+        return trials / (planned * pooled * (1 - pooled));
+    }
+
+    private double spendingTime(double fraction, long windowEnd) {
+        if (plan.test().clock() == SpendingClock.INFORMATION) {
+            return StrictMath.min(fraction, 1);
+        }
+        long elapsed = windowEnd - plan.run().from().toEpochMilli();
+        return StrictMath.min((double) elapsed / plan.run().atMost().toMillis(), 1);
     }
 
     private String obstacle(CumulativeCounts counts, double fraction, boolean runEnds) {
@@ -156,42 +206,76 @@ final class ChallengerTest {
         return lastLook().map(look -> look.look().information()).orElse(0.0);
     }
 
-    private TakenLook look(
-            StratifiedComparison found, double fraction, long windowEnd, boolean runEnds, boolean sound) {
-        boolean benefitOpen = runEnds || minimumRunOver(windowEnd);
-        boolean last = runEnds || (fraction >= 1 && benefitOpen);
-        double spendingTime = last ? 1 : Math.min(fraction, 1);
-        TailSpending spent =
-                TailSpending.at(plan, design().spending().spent(design().tailLevel(), spendingTime), benefitOpen);
-        double betaSpent = plan.futility().isPresent() && !last ? betaSpent(spendingTime) : 0;
-        LookPath.Request request = new LookPath.Request(fraction, spent.upper(), spent.lower(), betaSpent);
-        LookPath.Bounds bounds =
-                runEnds && !looks.isEmpty() && stands(fraction) ? lastLookAgain(request) : path().next(request);
-        Look look = bounds.look();
-        double futilityBound = bounds.futility();
-        Verdict finding = judge(found.z(), look, futilityBound, last);
+    /**
+     * Takes over the levels of the moment.
+     *
+     * @param now never below those before
+     * @return whether they are new
+     */
+    boolean raise(TailLevels now) {
+        if (now.equals(levels)) {
+            return false;
+        }
+        levels = now;
+        path = null;
+        return true;
+    }
+
+    /** The look just taken, judged once more at levels that were raised since. */
+    TakenLook judgeAgain(boolean sound) {
+        looks.pollLastEntry();
+        path = null;
+        verdict = Verdict.CONTINUE;
+        held = null;
+        return judge(sound);
+    }
+
+    private TakenLook judge(boolean sound) {
+        design();
+        double betaSpent = sitting.last() ? 0 : futility.betaSpent(sitting.time());
+        LookPath.Bounds bounds = sitting.again() ? lastLookAgain() : bounds(betaSpent);
+        Verdict finding = finding(sitting.found().z(), bounds);
         settle(finding, sound);
-        TakenLook taken = new TakenLook(
-                Instant.ofEpochMilli(windowEnd),
-                look,
+        List<Look> taken = path().looks();
+        TakenLook look = new TakenLook(
+                Instant.ofEpochMilli(sitting.windowEnd()),
+                sitting.benefitOpen(),
+                bounds.look(),
                 betaSpent,
-                futilityBound,
-                comparison(found, look, futilityBound, reason(found.z(), look, finding)));
-        looks.put(look.number(), taken);
-        return taken;
+                bounds.futility(),
+                report.write(sitting, levels, bounds, taken, new LookReport.Outcome(finding, verdict, held)));
+        looks.put(bounds.look().number(), look);
+        return look;
+    }
+
+    private LookPath.Bounds bounds(double betaSpent) {
+        TailSpending spent = TailSpending.at(plan, levels, sitting.time(), sitting.benefitOpen());
+        boolean foresee = !sitting.last()
+                && sitting.fraction() <= 1 - LEAST_GROWTH
+                && (futility.looksAhead() || detail == Detail.FULL);
+        TailSpending end = foresee ? TailSpending.all(plan, levels) : null;
+        LookPath.Bounds found = path().next(new LookPath.Request(sitting.fraction(), spent, betaSpent, end));
+        return futility.looksAhead() && foresee
+                ? new LookPath.Bounds(
+                        found.look(),
+                        StrictMath.min(futility.ahead(sitting.fraction(), found.critical()), benefit(found.look())),
+                        found.critical())
+                : found;
+    }
+
+    private double benefit(Look look) {
+        return higherIsBetter() ? look.upper() : -look.lower();
     }
 
     /**
      * The look at the end of a run whose data have not grown since the look before: that look once more, as if it had been
      * the last. It crosses wherever the look before would have crossed, so that both together spend what the one may spend.
      */
-    private LookPath.Bounds lastLookAgain(LookPath.Request request) {
-        Look before = looks.lastEntry().getValue().look();
-        Look again = path().lastAgain(new LookPath.Request(
-                before.information(), request.upperSpent(), request.lowerSpent(), request.betaSpent()));
-        return new LookPath.Bounds(
+    private LookPath.Bounds lastLookAgain() {
+        Look again = path().lastAgain(TailSpending.at(plan, levels, sitting.time(), sitting.benefitOpen()));
+        return LookPath.Bounds.of(
                 new Look(
-                        before.number() + 1,
+                        again.number() + 1,
                         again.information(),
                         again.upperSpent(),
                         again.lowerSpent(),
@@ -204,23 +288,18 @@ final class ChallengerTest {
         return windowEnd >= plan.run().from().plus(plan.run().atLeast()).toEpochMilli();
     }
 
-    private double betaSpent(double spendingTime) {
-        return PlanDesign.spendingFunction(plan.futility().orElseThrow().spending())
-                .spent(1 - plan.test().power(), spendingTime);
-    }
-
-    private Verdict judge(double z, Look look, double futilityBound, boolean last) {
-        if (z >= look.upper()) {
+    private Verdict finding(double z, LookPath.Bounds bounds) {
+        if (z >= bounds.look().upper()) {
             return higherIsBetter() ? Verdict.STOP_BENEFIT : Verdict.STOP_HARM;
         }
-        if (z <= look.lower()) {
+        if (z <= bounds.look().lower()) {
             return higherIsBetter() ? Verdict.STOP_HARM : Verdict.STOP_BENEFIT;
         }
-        if (last) {
+        if (sitting.last()) {
             return Verdict.EXHAUSTED;
         }
         double towardsBenefit = higherIsBetter() ? z : -z;
-        return towardsBenefit < futilityBound ? Verdict.STOP_FUTILITY : Verdict.CONTINUE;
+        return towardsBenefit < bounds.futility() ? Verdict.STOP_FUTILITY : Verdict.CONTINUE;
     }
 
     private void settle(Verdict finding, boolean sound) {
@@ -251,57 +330,26 @@ final class ChallengerTest {
         return true;
     }
 
-    private Comparison comparison(StratifiedComparison found, Look look, double futilityBound, String reason) {
-        double scale = Math.sqrt(found.information());
-        return new Comparison(
-                name(),
-                look.number(),
-                found.z(),
-                found.information(),
-                look.information(),
-                look.upperSpent() + look.lowerSpent(),
-                finite(look.upper()),
-                finite(look.lower()),
-                finite(higherIsBetter() ? futilityBound : -futilityBound),
-                found.difference(),
-                finite((found.z() - look.upper()) / scale),
-                finite((found.z() - look.lower()) / scale),
-                verdict,
-                held,
-                reason);
-    }
-
-    private static Double finite(double value) {
-        return Double.isInfinite(value) ? null : value;
-    }
-
-    private String reason(double z, Look look, Verdict found) {
-        String text = switch (found) {
-            case STOP_BENEFIT -> "z %.3f has reached the benefit boundary %.3f";
-            case STOP_HARM -> "z %.3f has reached the harm boundary %.3f";
-            case STOP_FUTILITY -> "z %.3f makes a benefit unlikely within the planned information";
-            case EXHAUSTED -> "the planned information or time is used up and z %.3f has crossed no boundary";
-            case CONTINUE, WAITING -> "z %.3f lies between the boundaries";
-        };
-        double crossed = z >= look.upper() ? look.upper() : look.lower();
-        String reason = String.format(Locale.ROOT, text, z, crossed);
-        return held == null ? reason : reason + "; held until the data are trusted again";
-    }
-
     private boolean higherIsBetter() {
         return plan.test().better() == Better.HIGHER;
     }
 
+    /** At the levels it began with, stored looks are taken as they are; at raised ones all are solved anew. */
     private LookPath path() {
         if (path == null) {
-            path = new LookPath(
-                    design().drift(), higherIsBetter(), memo.path(planDigest, challenger, design().alpha()));
+            path = new LookPath(design().drift(), higherIsBetter(), memo.path(planDigest, challenger, levels));
             for (TakenLook taken : looks.values()) {
-                Look look = taken.look();
-                path.resume(
-                        new LookPath.Request(
-                                look.information(), look.upperSpent(), look.lowerSpent(), taken.betaSpent()),
-                        new LookPath.Bounds(look, taken.futility()));
+                double time = taken.comparison().spendingTime();
+                LookPath.Request request = new LookPath.Request(
+                        taken.look().information(),
+                        TailSpending.at(plan, levels, time, taken.benefitOpen()),
+                        taken.betaSpent(),
+                        null);
+                if (levels.equals(initialLevels)) {
+                    path.resume(request, LookPath.Bounds.of(taken.look(), taken.futility()));
+                } else {
+                    path.next(request);
+                }
             }
         }
         return path;
@@ -309,6 +357,7 @@ final class ChallengerTest {
 
     void restoreLook(TakenLook look) {
         looks.put(look.look().number(), look);
+        path = null;
     }
 
     void write(DataOutput out) throws IOException {

@@ -33,6 +33,7 @@ public final class DecideShard {
     private static final byte LOOK = 'L';
 
     private final DecisionMemo memo;
+    private final Detail detail;
     private final Map<String, Plan> plans = new LinkedHashMap<>();
     private final Map<String, ExperimentDecider> deciders = new LinkedHashMap<>();
     private final Map<String, Long> unplanned = new HashMap<>();
@@ -43,7 +44,7 @@ public final class DecideShard {
      * @param plans the plans to decide under, one per experiment
      */
     public DecideShard(Collection<Plan> plans) {
-        this(plans, new DecisionMemo(0));
+        this(plans, new DecisionMemo(0), Detail.FULL);
     }
 
     /**
@@ -51,9 +52,11 @@ public final class DecideShard {
      *
      * @param plans the plans to decide under, one per experiment
      * @param memo what has been computed for these plans before
+     * @param detail how much records say beyond the decisions
      */
-    public DecideShard(Collection<Plan> plans, DecisionMemo memo) {
+    public DecideShard(Collection<Plan> plans, DecisionMemo memo, Detail detail) {
         this.memo = memo;
+        this.detail = detail;
         plans.forEach(plan -> this.plans.put(plan.experiment(), plan));
     }
 
@@ -114,7 +117,7 @@ public final class DecideShard {
     }
 
     private ExperimentDecider decider(String experiment) {
-        return deciders.computeIfAbsent(experiment, name -> new ExperimentDecider(plans.get(name), memo));
+        return deciders.computeIfAbsent(experiment, name -> new ExperimentDecider(plans.get(name), memo, detail));
     }
 
     /** Everything to be made durable since this was last asked. */

@@ -35,12 +35,12 @@ public final class DecisionMemo {
         return designs.computeIfAbsent(planDigest + ' ' + challenger.name(), key -> PlanDesign.of(plan, challenger));
     }
 
-    /** The beginning of all paths of a challenger at a level. */
-    Node path(String planDigest, Variant challenger, double level) {
+    /** The beginning of all paths of a challenger at its levels. */
+    Node path(String planDigest, Variant challenger, TailLevels levels) {
         return mostLooks == 0
                 ? Node.FORGETFUL
                 : paths.computeIfAbsent(
-                        planDigest + ' ' + challenger.name() + ' ' + level, key -> new Node(this, null));
+                        planDigest + ' ' + challenger.name() + ' ' + levels, key -> new Node(this, null));
     }
 
     private boolean takeRoom() {

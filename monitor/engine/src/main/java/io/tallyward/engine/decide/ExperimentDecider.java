@@ -19,9 +19,12 @@ import java.io.DataOutput;
 import java.io.IOException;
 import java.time.Instant;
 import java.util.ArrayList;
+import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
+import java.util.Set;
+import java.util.TreeSet;
 
 /**
  * Decides about one experiment. Takes its complete windows one by one in order; after each it judges the data, tells held
@@ -55,7 +58,7 @@ final class ExperimentDecider {
     private final List<TakenLook> newLooks = new ArrayList<>();
     private boolean changed;
 
-    ExperimentDecider(Plan plan, DecisionMemo memo) {
+    ExperimentDecider(Plan plan, DecisionMemo memo, Detail detail) {
         this.plan = plan;
         planDigest = PlanDigest.of(plan);
         windowMillis = plan.count().window().toMillis();
@@ -66,7 +69,7 @@ final class ExperimentDecider {
         splitWatch = new SplitWatch(plan);
         trustWatch = new TrustWatch(plan);
         for (Variant challenger : plan.challengers()) {
-            tests.add(new ChallengerTest(plan, planDigest, challenger, memo));
+            tests.add(new ChallengerTest(plan, planDigest, challenger, memo, detail));
         }
     }
 
@@ -148,24 +151,53 @@ final class ExperimentDecider {
     }
 
     private List<Comparison> takeLooks(boolean sound, List<ChallengerTest> settled) {
-        List<Comparison> looks = new ArrayList<>();
+        passOn();
+        Map<ChallengerTest, TakenLook> looks = new LinkedHashMap<>();
         for (ChallengerTest test : tests) {
             if (!test.isOpen()) {
                 continue;
             }
             ChallengerTest.Attempt attempt = test.attempt(counts, completeUntil, runEnds(), sound);
             if (attempt instanceof ChallengerTest.Attempt.Taken taken) {
-                looks.add(taken.look().comparison());
-                newLooks.add(taken.look());
-                if (test.verdict().settled()) {
-                    settled.add(test);
-                }
+                looks.put(test, taken.look());
             } else if (attempt instanceof ChallengerTest.Attempt.Delayed delayed) {
                 looksDelayed += delayed.begun() ? 1 : 0;
                 delayReason = delayed.reason();
             }
         }
-        return looks;
+        while (passOn()) {
+            looks.replaceAll((test, look) -> found(test) ? look : test.judgeAgain(sound));
+        }
+        looks.keySet().stream().filter(test -> test.verdict().settled()).forEach(settled::add);
+        newLooks.addAll(looks.values());
+        return looks.values().stream().map(TakenLook::comparison).toList();
+    }
+
+    private static boolean found(ChallengerTest test) {
+        return test.verdict() == Verdict.STOP_BENEFIT || test.verdict() == Verdict.STOP_HARM;
+    }
+
+    /** Gives every challenger that is not found the level that those found leave to it; returns whether any level rose. */
+    private boolean passOn() {
+        Set<Integer> benefits = positions(Verdict.STOP_BENEFIT);
+        Set<Integer> harms = positions(Verdict.STOP_HARM);
+        boolean rose = false;
+        for (int i = 0; i < tests.size(); i++) {
+            if (!found(tests.get(i))) {
+                rose |= tests.get(i).raise(TailLevels.of(plan, i, benefits, harms));
+            }
+        }
+        return rose;
+    }
+
+    private Set<Integer> positions(Verdict verdict) {
+        Set<Integer> positions = new TreeSet<>();
+        for (int i = 0; i < tests.size(); i++) {
+            if (tests.get(i).verdict() == verdict) {
+                positions.add(i);
+            }
+        }
+        return positions;
     }
 
     /** At the end of the run every test that could not take a last look is exhausted; returns whether there was one. */
@@ -339,5 +371,6 @@ final class ExperimentDecider {
         for (ChallengerTest test : tests) {
             test.read(in);
         }
+        passOn();
     }
 }

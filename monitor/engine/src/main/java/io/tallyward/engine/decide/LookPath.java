@@ -37,22 +37,31 @@ final class LookPath {
      * What a look brings along.
      *
      * @param information relative to the planned maximum
-     * @param upperSpent error the upper tail may have spent by now
-     * @param lowerSpent error the lower tail may have spent by now
-     * @param betaSpent type II error that futility may have spent by now; 0 when there is no futility bound
+     * @param spent error the tails may have spent by now
+     * @param betaSpent type II error that futility may have spent by now; 0 when it spends none
+     * @param end error the tails may spend in all, if the boundary of a last look is to be foreseen; else null
      */
-    record Request(double information, double upperSpent, double lowerSpent, double betaSpent) {}
+    record Request(double information, TailSpending spent, double betaSpent, TailSpending end) {}
 
     /**
      * What a look gets.
      *
      * @param look its boundaries
      * @param futility futility bound on the scale on which a benefit is positive; negative infinity when there is none
+     * @param critical boundary for a benefit at a single further look with full information, on the same scale; infinite
+     *     when it was not asked for
      */
-    record Bounds(Look look, double futility) {}
+    record Bounds(Look look, double futility, double critical) {
 
-    int looks() {
-        return bounds.size();
+        /** What is known of a look that needs no foresight. */
+        static Bounds of(Look look, double futility) {
+            return new Bounds(look, futility, Double.POSITIVE_INFINITY);
+        }
+    }
+
+    /** The looks taken. */
+    List<Look> looks() {
+        return bounds.stream().map(Bounds::look).toList();
     }
 
     /** Takes the next look. */
@@ -69,11 +78,11 @@ final class LookPath {
         add(request, known);
     }
 
-    /** The last look once more with another request, as if it had never been taken; the path stays as it is. */
-    Look lastAgain(Request request) {
-        List<Look> before =
-                bounds.subList(0, bounds.size() - 1).stream().map(Bounds::look).toList();
-        return BoundarySequence.resume(before).next(request.information(), request.upperSpent(), request.lowerSpent());
+    /** The last look once more with other spending, as if it had not been taken before; the path stays as it is. */
+    Look lastAgain(TailSpending spent) {
+        Look last = bounds.get(bounds.size() - 1).look();
+        List<Look> before = looks().subList(0, bounds.size() - 1);
+        return BoundarySequence.resume(before).next(last.information(), spent.upper(), spent.lower());
     }
 
     private void add(Request request, Bounds found) {
@@ -85,8 +94,12 @@ final class LookPath {
         for (int i = boundaries.looks(); i < bounds.size(); i++) {
             boundaries.resume(bounds.get(i).look());
         }
-        Look look = boundaries.next(request.information(), request.upperSpent(), request.lowerSpent());
-        return new Bounds(look, request.betaSpent() > 0 ? futility(request, look) : Double.NEGATIVE_INFINITY);
+        Look look = boundaries.next(
+                request.information(), request.spent().upper(), request.spent().lower());
+        return new Bounds(
+                look,
+                request.betaSpent() > 0 ? futility(request, look) : Double.NEGATIVE_INFINITY,
+                request.end() == null ? Double.POSITIVE_INFINITY : critical(request.end(), look));
     }
 
     private double futility(Request request, Look look) {
@@ -102,6 +115,12 @@ final class LookPath {
                     bounds.get(i).futility());
         }
         return futility.next(look.information(), benefit(look), request.betaSpent());
+    }
+
+    private double critical(TailSpending end, Look look) {
+        List<Look> soFar = new ArrayList<>(looks());
+        soFar.add(look);
+        return benefit(BoundarySequence.resume(soFar).next(1, end.upper(), end.lower()));
     }
 
     private double benefit(Look look) {

@@ -3,9 +3,11 @@ package io.tallyward.engine.decide;
 import io.tallyward.engine.count.Outcome;
 import io.tallyward.engine.digest.Digest;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.record.Adjusted;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.record.Notice.Kind;
 import io.tallyward.engine.record.Notice.Severity;
@@ -158,10 +160,24 @@ final class NoticeWriter {
         facts.put("informationFraction", figure("%.3f", look.informationFraction()));
         facts.put("alphaSpent", figure("%.4g", look.alphaSpent()));
         facts.put("difference", figure("%+.5f", look.difference()));
-        facts.put(
-                "repeatedInterval",
-                (look.differenceLower() == null ? "-inf" : figure("%+.5f", look.differenceLower())) + " to "
-                        + (look.differenceUpper() == null ? "+inf" : figure("%+.5f", look.differenceUpper())));
+        facts.put("repeatedInterval", interval(look.differenceLower(), look.differenceUpper()));
+        addAdjusted(facts, look.adjusted());
+    }
+
+    /** Absent while a comparison goes on, and where the record is bare. */
+    private static void addAdjusted(Map<String, String> facts, Adjusted adjusted) {
+        if (adjusted == null) {
+            return;
+        }
+        Estimated difference = adjusted.difference();
+        facts.put("adjustedPValue", figure("%.4g", adjusted.pValue()));
+        facts.put("adjustedDifference", figure("%+.5f", difference.value()));
+        facts.put("adjustedInterval", interval(difference.lower(), difference.upper()));
+    }
+
+    private static String interval(Double lower, Double upper) {
+        return (lower == null ? "-inf" : figure("%+.5f", lower)) + " to "
+                + (upper == null ? "+inf" : figure("%+.5f", upper));
     }
 
     private void addCounts(Map<String, String> facts, DecisionRecord record, String variant) {

@@ -3,45 +3,45 @@ package io.tallyward.engine.decide;
 import io.tallyward.engine.plan.FutilityPlan;
 import io.tallyward.engine.plan.LookSchedule;
 import io.tallyward.engine.plan.Plan;
-import io.tallyward.engine.plan.Spending;
+import io.tallyward.engine.plan.Tail;
 import io.tallyward.engine.plan.TestPlan;
 import io.tallyward.engine.plan.TestPlan.Better;
-import io.tallyward.engine.plan.TestPlan.Sides;
 import io.tallyward.engine.plan.Variant;
 import io.tallyward.statistics.boundary.BoundarySequence;
 import io.tallyward.statistics.boundary.Design;
 import io.tallyward.statistics.boundary.DesignRequest;
+import io.tallyward.statistics.boundary.DriftForPower;
 import io.tallyward.statistics.boundary.Look;
+import io.tallyward.statistics.distribution.Normal;
 import io.tallyward.statistics.proportion.SampleSize;
 import io.tallyward.statistics.spending.SpendingFunction;
 import java.util.ArrayList;
 import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 
 /**
  * What a plan means for one challenger before any data: its planned looks with their boundaries, and how much information
- * the comparison needs.
+ * the comparison needs. All at the level it starts with; what others may pass on to it later is a gain beyond the plan.
  *
- * @param alpha level of the comparison, both tails together
- * @param tailLevel level of one tail
- * @param twoSided whether harm is tested beside benefit
- * @param spending the spending function of each tail
+ * @param benefitLevel level of the direction of benefit over all looks
+ * @param harmLevel level of the direction of harm; 0 when harm is not tested
  * @param looks planned looks; a tail that spends nothing at a look has an infinite boundary there
- * @param drift expected z at full information under the smallest effect worth finding
+ * @param drift expected z at full information under the smallest effect worth finding, towards the benefit
  * @param inflation maximum information over that of a test with a single look
  * @param maximumInformation information at which the last look is due, (drift / smallest effect)^2
+ * @param pooledRate success rate of both arms together under the smallest effect
  * @param trials planned trials of the control and of the challenger, by variant
  */
 public record PlanDesign(
-        double alpha,
-        double tailLevel,
-        boolean twoSided,
-        SpendingFunction spending,
+        double benefitLevel,
+        double harmLevel,
         List<Look> looks,
         double drift,
         double inflation,
         double maximumInformation,
+        double pooledRate,
         Map<String, Long> trials) {
 
     /**
@@ -50,50 +50,53 @@ public record PlanDesign(
      */
     private static final int LOOKS_FOR_DESIGN = 60;
 
+    /** A fraction of the form i / n, times n, is i but for rounding. */
+    private static final double ROUNDING_MILLIS = 1;
+
     /** The design of one challenger of a plan. */
     public static PlanDesign of(Plan plan, Variant challenger) {
         TestPlan test = plan.test();
-        double alpha = plan.alphaPerComparison();
-        double tailLevel = test.tailAlpha(alpha);
-        SpendingFunction spending = spendingFunction(test.spending());
-        Design design = Design.of(new DesignRequest(
-                tailLevel,
-                test.sides() == Sides.TWO,
-                spending,
-                test.power(),
-                fractionsForDesign(plan),
-                plan.futility().map(FutilityPlan::spending).map(PlanDesign::spendingFunction)));
+        TailLevels levels = TailLevels.initial(plan, plan.challengers().indexOf(challenger));
+        double[] planned = plannedFractions(plan);
+        List<Look> looks = plannedLooks(plan, levels, planned);
+        double drift = drift(plan, levels, planned, looks);
+        double fixed = Normal.upperQuantile(levels.benefit()) + Normal.quantile(test.power());
         double[] finalShares = plan.sharesIn(plan.epochs().size());
-        double effect = test.better() == Better.HIGHER ? test.smallestEffect() : -test.smallestEffect();
         SampleSize size = SampleSize.of(
-                SampleSize.maximumInformation(design.drift(), effect),
+                SampleSize.maximumInformation(drift, test.signedEffect()),
                 test.baseline(),
-                effect,
+                test.signedEffect(),
                 finalShares[plan.variantIndex(plan.control().name())],
                 finalShares[plan.variantIndex(challenger.name())]);
         Map<String, Long> trials = new LinkedHashMap<>();
         trials.put(plan.control().name(), size.controlTrials());
         trials.put(challenger.name(), size.variantTrials());
         return new PlanDesign(
-                alpha,
-                tailLevel,
-                test.sides() == Sides.TWO,
-                spending,
-                plannedLooks(plan, spending, tailLevel),
-                design.drift(),
-                design.inflation(),
+                levels.benefit(),
+                levels.harm(),
+                looks,
+                drift,
+                (drift / fixed) * (drift / fixed),
                 size.maximumInformation(),
+                size.pooledRate(),
                 trials);
     }
 
-    /** The spending function a plan names. */
-    public static SpendingFunction spendingFunction(Spending spending) {
-        return switch (spending.family()) {
-            case OBRIEN_FLEMING -> SpendingFunction.obrienFlemingType();
-            case POCOCK -> SpendingFunction.pocockType();
-            case HWANG_SHIH_DECANI -> SpendingFunction.hwangShihDecani(spending.parameter());
-            case KIM_DEMETS -> SpendingFunction.kimDemets(spending.parameter());
-        };
+    /** Level of the comparison, both directions together. */
+    public double alpha() {
+        return benefitLevel + harmLevel;
+    }
+
+    /**
+     * Boundary for a benefit at a single last look with full information after the first planned looks, on the scale on
+     * which a benefit is positive.
+     *
+     * @param taken number of planned looks taken; the last of them below full information
+     */
+    public double critical(Plan plan, int taken) {
+        TailSpending all = TailSpending.all(plan, new TailLevels(benefitLevel, harmLevel));
+        Look last = BoundarySequence.resume(looks.subList(0, taken)).next(1, all.upper(), all.lower());
+        return plan.test().better() == Better.HIGHER ? last.upper() : -last.lower();
     }
 
     /** Planned information fractions: the plan's own, or equal steps when it looks at regular times. */
@@ -119,25 +122,61 @@ public record PlanDesign(
         return fractions;
     }
 
-    private static double[] fractionsForDesign(Plan plan) {
-        double[] planned = plannedFractions(plan);
-        return planned.length <= LOOKS_FOR_DESIGN ? planned : equalSteps(LOOKS_FOR_DESIGN);
+    private static double drift(Plan plan, TailLevels levels, double[] planned, List<Look> looks) {
+        boolean many = planned.length > LOOKS_FOR_DESIGN;
+        double[] fractions = many ? equalSteps(LOOKS_FOR_DESIGN) : planned;
+        Optional<SpendingFunction> futility = plan.futility()
+                .filter(FutilityPlan.ErrorSpending.class::isInstance)
+                .map(rule -> SpendingFunctions.of(((FutilityPlan.ErrorSpending) rule).spending()));
+        if (futility.isPresent()) {
+            return Design.of(new DesignRequest(
+                            levels.benefit(),
+                            plan.test().symmetric(),
+                            benefitSpending(plan),
+                            plan.test().power(),
+                            fractions,
+                            futility))
+                    .drift();
+        }
+        List<Look> design = many ? plannedLooks(plan, levels, fractions) : looks;
+        boolean higher = plan.test().better() == Better.HIGHER;
+        return DriftForPower.of(
+                fractions,
+                design.stream()
+                        .mapToDouble(look -> higher ? look.upper() : -look.lower())
+                        .toArray(),
+                design.stream()
+                        .mapToDouble(look -> higher ? look.lower() : -look.upper())
+                        .toArray(),
+                plan.test().power());
     }
 
-    private static List<Look> plannedLooks(Plan plan, SpendingFunction spending, double tailLevel) {
+    private static SpendingFunction benefitSpending(Plan plan) {
+        Tail benefit = plan.test().benefit();
+        double silent = plan.looks() instanceof LookSchedule.Every
+                ? (double) plan.run().atLeast().toMillis() / plan.run().atMost().toMillis()
+                : 0;
+        return SpendingFunctions.of(benefit.spending()).startingAt(Math.max(silent, benefit.silentBefore()));
+    }
+
+    /** At an even pace the spending clock shows the information fraction, whatever it goes by. */
+    private static List<Look> plannedLooks(Plan plan, TailLevels levels, double[] fractions) {
         BoundarySequence sequence = new BoundarySequence();
         List<Look> looks = new ArrayList<>();
-        for (double fraction : plannedFractions(plan)) {
-            TailSpending spent =
-                    TailSpending.at(plan, spending.spent(tailLevel, fraction), benefitIsOpen(plan, looks.size() + 1));
+        for (double fraction : fractions) {
+            TailSpending spent = TailSpending.at(plan, levels, fraction, benefitIsOpen(plan, fraction));
             looks.add(sequence.next(fraction, spent.upper(), spent.lower()));
         }
         return looks;
     }
 
     /** Whether the benefit tail may spend at a planned look; looks planned by fractions have no planned time. */
-    private static boolean benefitIsOpen(Plan plan, int look) {
-        return !(plan.looks() instanceof LookSchedule.Every every)
-                || every.interval().multipliedBy(look).compareTo(plan.run().atLeast()) >= 0;
+    private static boolean benefitIsOpen(Plan plan, double fraction) {
+        if (!(plan.looks() instanceof LookSchedule.Every every)) {
+            return true;
+        }
+        double elapsed = fraction * lookCount(plan) * every.interval().toMillis();
+        return fraction >= 1
+                || elapsed + ROUNDING_MILLIS >= plan.run().atLeast().toMillis();
     }
 }

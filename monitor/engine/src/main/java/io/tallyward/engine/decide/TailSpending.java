@@ -1,8 +1,8 @@
 package io.tallyward.engine.decide;
 
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.Tail;
 import io.tallyward.engine.plan.TestPlan.Better;
-import io.tallyward.engine.plan.TestPlan.Sides;
 
 /**
  * Cumulative error spent in the upper and in the lower tail of z.
@@ -13,17 +13,31 @@ import io.tallyward.engine.plan.TestPlan.Sides;
 record TailSpending(double upper, double lower) {
 
     /**
-     * Distributes the spending of one tail over both: a one-sided test spends in the direction of benefit only, and the
-     * benefit tail spends nothing while the minimum run lasts.
+     * What the tails of a comparison may have spent at a moment: each by its own function and level, the benefit tail
+     * nothing while the minimum run lasts.
      *
-     * @param spent what a tail has spent by now
+     * @param time moment on the spending clock, in [0, 1]
      * @param benefitOpen whether the minimum run is over
      */
-    static TailSpending at(Plan plan, double spent, boolean benefitOpen) {
-        double benefit = benefitOpen ? spent : 0;
-        double harm = plan.test().sides() == Sides.TWO ? spent : 0;
+    static TailSpending at(Plan plan, TailLevels levels, double time, boolean benefitOpen) {
+        double benefit = benefitOpen ? spent(plan.test().benefit(), levels.benefit(), time) : 0;
+        double harm =
+                plan.test().harm().map(tail -> spent(tail, levels.harm(), time)).orElse(0.0);
+        return of(plan, benefit, harm);
+    }
+
+    /** The same with everything spent. */
+    static TailSpending all(Plan plan, TailLevels levels) {
+        return of(plan, levels.benefit(), levels.harm());
+    }
+
+    private static TailSpending of(Plan plan, double benefit, double harm) {
         return plan.test().better() == Better.HIGHER
                 ? new TailSpending(benefit, harm)
                 : new TailSpending(harm, benefit);
+    }
+
+    private static double spent(Tail tail, double level, double time) {
+        return SpendingFunctions.of(tail).spent(level, time);
     }
 }

@@ -43,7 +43,11 @@ final class ViewWriter {
         Map<String, Verdict> held = new LinkedHashMap<>();
         Map<String, Double> maximumInformation = new LinkedHashMap<>();
         for (ChallengerTest test : tests) {
-            test.lastLook().ifPresent(look -> comparisons.put(test.name(), current(test, look.comparison())));
+            test.lastLook()
+                    .ifPresent(look -> comparisons.put(
+                            test.name(),
+                            look.comparison()
+                                    .standing(test.verdict(), test.held().orElse(null))));
             verdicts.put(test.name(), test.verdict());
             test.held().ifPresent(verdictHeld -> held.put(test.name(), verdictHeld));
             maximumInformation.put(test.name(), test.design().maximumInformation());
@@ -67,26 +71,6 @@ final class ViewWriter {
                 looks.delayReason(),
                 maximumInformation,
                 lastRecord);
-    }
-
-    /** The last look as it was, with the verdict as it is: a held verdict may have been told since. */
-    private static Comparison current(ChallengerTest test, Comparison look) {
-        return new Comparison(
-                look.variant(),
-                look.look(),
-                look.z(),
-                look.information(),
-                look.informationFraction(),
-                look.alphaSpent(),
-                look.upper(),
-                look.lower(),
-                look.futility(),
-                look.difference(),
-                look.differenceLower(),
-                look.differenceUpper(),
-                test.verdict(),
-                test.held().orElse(null),
-                look.reason());
     }
 
     private static List<LookPoint> history(List<ChallengerTest> tests) {

@@ -94,9 +94,4 @@ public record Plan(
                 .mapToDouble(variant -> change.shares().get(variant.name()))
                 .toArray();
     }
-
-    /** Level of each comparison: the family-wise alpha split evenly over the challengers (Bonferroni). */
-    public double alphaPerComparison() {
-        return test.alpha() / (variants.size() - 1);
-    }
 }

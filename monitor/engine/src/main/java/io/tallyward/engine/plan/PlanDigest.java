@@ -11,7 +11,7 @@ public final class PlanDigest {
 
     /** SHA-256 over every field of the plan in a fixed order, as 64 hexadecimal digits. */
     public static String of(Plan plan) {
-        Digest digest = new Digest("plan/1");
+        Digest digest = new Digest("plan/2");
         digest.text(plan.experiment()).text(plan.question()).text(plan.owner());
         CountRule count = plan.count();
         digest.text(count.by().name())
@@ -22,17 +22,9 @@ public final class PlanDigest {
         for (Variant variant : plan.variants()) {
             digest.text(variant.name()).real(variant.share()).number(variant.control() ? 1 : 0);
         }
-        TestPlan test = plan.test();
-        digest.real(test.alpha())
-                .text(test.sides().name())
-                .real(test.power())
-                .real(test.baseline())
-                .real(test.smallestEffect())
-                .text(test.spending().code())
-                .text(test.better().name())
-                .number(test.minimumPerCell());
+        addTest(digest, plan.test());
         addLooks(digest, plan.looks());
-        digest.text(plan.futility().map(futility -> futility.spending().code()).orElse("none"));
+        digest.text(plan.futility().map(FutilityPlan::code).orElse("none"));
         digest.real(plan.splitCheck().alpha());
         digest.real(plan.trust().crossoverShare())
                 .real(plan.trust().lateShare())
@@ -48,6 +40,24 @@ public final class PlanDigest {
             }
         }
         return digest.hex();
+    }
+
+    private static void addTest(Digest digest, TestPlan test) {
+        addTail(digest, test.benefit());
+        digest.number(test.harm().isPresent() ? 1 : 0);
+        test.harm().ifPresent(harm -> addTail(digest, harm));
+        digest.text(test.sharing().name())
+                .text(test.clock().name())
+                .text(test.measure().name())
+                .real(test.power())
+                .real(test.baseline())
+                .real(test.smallestEffect())
+                .text(test.better().name())
+                .number(test.minimumPerCell());
+    }
+
+    private static void addTail(Digest digest, Tail tail) {
+        digest.real(tail.alpha()).text(tail.spending().code()).real(tail.silentBefore());
     }
 
     private static void addLooks(Digest digest, LookSchedule looks) {

@@ -1,21 +1,36 @@
 package io.tallyward.engine.plan;
 
+import java.util.Collections;
 import java.util.Locale;
+import java.util.SortedMap;
+import java.util.TreeMap;
+import java.util.stream.Collectors;
 
 /**
  * A named error-spending function.
  *
  * @param family the family
  * @param parameter its parameter (gamma or rho); 0 for families that have none
+ * @param points for a table: share of the level spent by each fraction, both in (0, 1], the last point 1 and 1; else empty
  */
-public record Spending(Family family, double parameter) {
+public record Spending(Family family, double parameter, SortedMap<Double, Double> points) {
+
+    public Spending {
+        points = Collections.unmodifiableSortedMap(new TreeMap<>(points));
+    }
+
+    /** A function of a family that may have a parameter. */
+    public Spending(Family family, double parameter) {
+        this(family, parameter, new TreeMap<>());
+    }
 
     /** The families a plan may name. */
     public enum Family {
         OBRIEN_FLEMING(false),
         POCOCK(false),
         HWANG_SHIH_DECANI(true),
-        KIM_DEMETS(true);
+        KIM_DEMETS(true),
+        TABLE(false);
 
         private final boolean parametric;
 
@@ -38,8 +53,18 @@ public record Spending(Family family, double parameter) {
         return new Spending(family, 0);
     }
 
-    /** The name used in records: the family, with its parameter in brackets where it has one. */
+    /** The owner's own function, point by point. */
+    public static Spending table(SortedMap<Double, Double> points) {
+        return new Spending(Family.TABLE, 0, points);
+    }
+
+    /** The name used in records: the family, with its parameter or points in brackets where it has any. */
     public String code() {
+        if (family == Family.TABLE) {
+            return points.entrySet().stream()
+                    .map(point -> point.getKey() + ":" + point.getValue())
+                    .collect(Collectors.joining(" ", family.code() + "(", ")"));
+        }
         return family.parametric() ? family.code() + "(" + parameter + ")" : family.code();
     }
 }

@@ -94,6 +94,8 @@ public record DecisionRecord(
      * @param z pooled two-proportion statistic of variant minus control, stratified by epoch
      * @param information Fisher information about the difference of rates, 1 / variance
      * @param informationFraction information over its planned maximum; may exceed 1 at the last look
+     * @param spendingTime moment on the clock that error is spent by, in [0, 1]; 1 at the last look
+     * @param level level of this comparison over all looks, both tails together; rises when others pass theirs on
      * @param alphaSpent cumulative alpha spent at this look, both tails together
      * @param upper upper boundary for z, null when the upper tail spends nothing at this look
      * @param lower lower boundary for z, null when the lower tail spends nothing at this look
@@ -101,6 +103,10 @@ public record DecisionRecord(
      * @param difference estimated difference of rates, variant minus control (naive, not adjusted for stopping)
      * @param differenceLower lower end of the repeated confidence interval, null when unbounded
      * @param differenceUpper upper end of the repeated confidence interval, null when unbounded
+     * @param lift the same relative to the control's rate, with its repeated confidence interval; null while the control
+     *     has no success
+     * @param outlook how likely a benefit still is; null at a last look and where the record is bare
+     * @param adjusted estimates adjusted for the looks taken; null while the comparison goes on
      * @param verdict the verdict on this comparison, as told
      * @param held the verdict that waits for trust to return, null when none does
      * @param reason why, in words
@@ -111,6 +117,8 @@ public record DecisionRecord(
             double z,
             double information,
             double informationFraction,
+            double spendingTime,
+            double level,
             double alphaSpent,
             Double upper,
             Double lower,
@@ -118,7 +126,36 @@ public record DecisionRecord(
             double difference,
             Double differenceLower,
             Double differenceUpper,
+            Estimated lift,
+            Outlook outlook,
+            Adjusted adjusted,
             Verdict verdict,
             Verdict held,
-            String reason) {}
+            String reason) {
+
+        /** This look with the verdict as it is now: a held verdict may have been told since. */
+        public Comparison standing(Verdict now, Verdict heldNow) {
+            return new Comparison(
+                    variant,
+                    look,
+                    z,
+                    information,
+                    informationFraction,
+                    spendingTime,
+                    level,
+                    alphaSpent,
+                    upper,
+                    lower,
+                    futility,
+                    difference,
+                    differenceLower,
+                    differenceUpper,
+                    lift,
+                    outlook,
+                    adjusted,
+                    now,
+                    heldNow,
+                    reason);
+        }
+    }
 }

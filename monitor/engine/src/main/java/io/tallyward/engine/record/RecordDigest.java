@@ -12,7 +12,7 @@ public final class RecordDigest {
 
     /** SHA-256 over the meaning of a record, as 64 hexadecimal digits; the record's own {@code hash} is left out. */
     public static String of(DecisionRecord record) {
-        Digest digest = new Digest("decision/1");
+        Digest digest = new Digest("decision/2");
         digest.text(record.experiment())
                 .number(record.sequence())
                 .text(record.occasion().code())
@@ -74,15 +74,49 @@ public final class RecordDigest {
                 .real(comparison.z())
                 .real(comparison.information())
                 .real(comparison.informationFraction())
+                .real(comparison.spendingTime())
+                .real(comparison.level())
                 .real(comparison.alphaSpent())
                 .optional(comparison.upper())
                 .optional(comparison.lower())
                 .optional(comparison.futility())
                 .real(comparison.difference())
                 .optional(comparison.differenceLower())
-                .optional(comparison.differenceUpper())
-                .text(comparison.verdict().code())
+                .optional(comparison.differenceUpper());
+        add(digest, comparison.lift());
+        add(digest, comparison.outlook());
+        add(digest, comparison.adjusted());
+        digest.text(comparison.verdict().code())
                 .text(comparison.held() == null ? "" : comparison.held().code())
                 .text(comparison.reason());
+    }
+
+    private static void add(Digest digest, Estimated estimated) {
+        if (present(digest, estimated)) {
+            digest.real(estimated.value()).optional(estimated.lower()).optional(estimated.upper());
+        }
+    }
+
+    private static void add(Digest digest, Outlook outlook) {
+        if (present(digest, outlook)) {
+            digest.real(outlook.underTrend())
+                    .real(outlook.underDesign())
+                    .real(outlook.withoutEffect())
+                    .real(outlook.predictive());
+        }
+    }
+
+    private static void add(Digest digest, Adjusted adjusted) {
+        if (present(digest, adjusted)) {
+            digest.real(adjusted.pValue()).real(adjusted.level());
+            add(digest, adjusted.drift());
+            add(digest, adjusted.difference());
+            add(digest, adjusted.lift());
+        }
+    }
+
+    private static boolean present(Digest digest, Object value) {
+        digest.number(value == null ? 0 : 1);
+        return value != null;
     }
 }

@@ -18,10 +18,12 @@ import io.tallyward.engine.plan.Variant;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.record.RecordDigest;
 import io.tallyward.engine.record.Verdict;
 import io.tallyward.statistics.boundary.BoundarySequence;
 import io.tallyward.statistics.boundary.Look;
+import io.tallyward.statistics.spending.SpendingFunction;
 import java.time.Duration;
 import java.util.ArrayList;
 import java.util.Collections;
@@ -211,19 +213,18 @@ class DecideRecordTest {
         for (long seed = 0; seed < SEEDS; seed++) {
             Plan plan = plan(seed);
             DecideHost host = run(plan, interleaved(stream(plan, seed), new Random(seed)));
-            Map<String, BoundarySequence> sequences = new HashMap<>();
+            Map<String, List<Request>> paths = new HashMap<>();
             Map<String, PlanDesign> designs = new HashMap<>();
             plan.challengers().forEach(variant -> designs.put(variant.name(), PlanDesign.of(plan, variant)));
             for (DecisionRecord record : host.decisions()) {
                 for (Comparison look : record.comparisons()) {
-                    BoundarySequence sequence =
-                            sequences.computeIfAbsent(look.variant(), name -> new BoundarySequence());
                     assertRecomputed(
                             plan,
                             designs.get(look.variant()),
                             record,
                             look,
-                            sequence,
+                            levels(plan, look.variant(), host.notices(), record),
+                            paths.computeIfAbsent(look.variant(), name -> new ArrayList<>()),
                             "seed " + seed + ", " + record.windowEnd());
                     looks++;
                 }
@@ -232,13 +233,35 @@ class DecideRecordTest {
         assertTrue(looks > 25, "looks: " + looks);
     }
 
+    /** What a look of the past spent by. */
+    private record Request(double information, double time, boolean benefitOpen) {}
+
+    /** Holm's procedure in each direction: alpha over the challengers whose finding in that direction is not told yet. */
+    private static TailLevels levels(Plan plan, String variant, List<Notice> notices, DecisionRecord record) {
+        double benefit = plan.test().benefit().alpha();
+        double harm = plan.test().harm().orElseThrow().alpha();
+        return new TailLevels(
+                benefit / (plan.challengers().size() - others("benefit", variant, notices, record)),
+                harm / (plan.challengers().size() - others("harm", variant, notices, record)));
+    }
+
+    private static long others(String direction, String variant, List<Notice> notices, DecisionRecord record) {
+        return notices.stream()
+                .filter(notice -> notice.kind() == Notice.Kind.STOP
+                        && !notice.variant().equals(variant)
+                        && !notice.at().isAfter(record.windowEnd())
+                        && notice.summary().contains(direction + " boundary is crossed"))
+                .count();
+    }
+
     /** Cochran's statistic by its textbook sums, then the boundary that spends what the plan allows by then. */
     private static void assertRecomputed(
             Plan plan,
             PlanDesign design,
             DecisionRecord record,
             Comparison look,
-            BoundarySequence sequence,
+            TailLevels levels,
+            List<Request> path,
             String where) {
         double weight = 0;
         double excess = 0;
@@ -267,8 +290,17 @@ class DecideRecordTest {
                 || !record.windowEnd()
                         .isBefore(plan.run().from().plus(plan.run().atLeast()));
         boolean last = runEnds || (look.informationFraction() >= 1 && benefitOpen);
-        double spent = design.spending().spent(0.0125, last ? 1 : look.informationFraction());
-        Look expected = sequence.next(look.informationFraction(), benefitOpen ? spent : 0, spent);
+        path.add(new Request(look.informationFraction(), last ? 1 : look.informationFraction(), benefitOpen));
+        BoundarySequence sequence = new BoundarySequence();
+        Look expected = null;
+        for (Request request : path) {
+            SpendingFunction spending = SpendingFunctions.of(plan.test().benefit());
+            expected = sequence.next(
+                    request.information(),
+                    request.benefitOpen() ? spending.spent(levels.benefit(), request.time()) : 0,
+                    spending.spent(levels.harm(), request.time()));
+        }
+        assertEquals(levels.both(), look.level(), 1e-15, where);
         Verdict found = look.held() == null ? look.verdict() : look.held();
         assertEquals(finding(look, expected, last), found, where);
         assertBoundary(expected.upper(), look.upper(), where);

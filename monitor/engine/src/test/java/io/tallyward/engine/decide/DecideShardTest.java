@@ -213,7 +213,7 @@ class DecideShardTest {
         DecideHost futile = new DecideHost(plan).next(1000, 200, 1000, 215);
         PlanDesign design = PlanDesign.of(plan, plan.challengers().get(0));
         Comparison look = futile.lastLook();
-        double spent = design.spending().spent(0.025, look.informationFraction());
+        double spent = SpendingFunctions.of(plan.test().benefit()).spent(0.025, look.informationFraction());
         assertEquals(2 * spent, look.alphaSpent(), 1e-15);
         assertNotNull(look.futility());
     }
@@ -400,7 +400,7 @@ class DecideShardTest {
                         .map(Comparison::variant)
                         .toList());
         for (Variant challenger : plan.challengers()) {
-            assertEquals(0.0125, PlanDesign.of(plan, challenger).tailLevel(), 1e-15);
+            assertEquals(0.0125, PlanDesign.of(plan, challenger).benefitLevel(), 1e-15);
         }
         three.next(4000, 800, 3000, 600, 3000, 600).next(40000, 8000, 30000, 6000, 30000, 6000);
         for (Comparison look : three.lastDecision().comparisons()) {

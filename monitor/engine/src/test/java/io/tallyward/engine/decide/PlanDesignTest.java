@@ -156,7 +156,7 @@ class PlanDesignTest {
                         new Variant("wide", 0.3, false),
                         new Variant("tall", 0.3, false)));
         assertEquals(0.025, three.alpha(), 1e-15);
-        assertEquals(0.0125, three.tailLevel(), 1e-15);
+        assertEquals(0.0125, three.benefitLevel(), 1e-15);
         assertTrue(three.drift() > two.drift());
     }
 
@@ -174,7 +174,7 @@ class PlanDesignTest {
     void plansNoHarmBoundaryForAOneSidedTest() {
         PlanDesign design =
                 design(fiveLooks(Family.OBRIEN_FLEMING, 0.8).sides(Sides.ONE).alpha(0.025));
-        assertEquals(0.025, design.tailLevel(), 1e-15);
+        assertEquals(0.025, design.benefitLevel(), 1e-15);
         design.looks().forEach(look -> assertTrue(Double.isInfinite(look.lower()), () -> "look " + look.number()));
         assertEquals(2.836001250142, design.drift(), 1e-6, "harm plays next to no part in the power");
     }

@@ -16,6 +16,7 @@ import java.util.Arrays;
 import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
+import java.util.Set;
 import org.junit.jupiter.api.Test;
 
 /** The digest of a record covers every field, found by reflection so that a field added later is not forgotten. */
@@ -27,6 +28,8 @@ class RecordDigestTest {
             1.25,
             3000,
             0.4,
+            0.4,
+            0.05,
             0.001,
             3.5,
             -3.5,
@@ -34,9 +37,20 @@ class RecordDigestTest {
             0.01,
             -0.02,
             0.04,
+            new Estimated(0.05, -0.1, null),
+            new Outlook(0.4, 0.5, 0.1, 0.3),
+            new Adjusted(
+                    0.04,
+                    0.95,
+                    new Estimated(2, 0.1, 4.0),
+                    new Estimated(0.009, 0.0, 0.03),
+                    new Estimated(0.045, 0.0, 0.2)),
             Verdict.CONTINUE,
             null,
             "z 1.250 lies between the boundaries");
+
+    /** What a record may lack. */
+    private static final Set<Class<?>> OPTIONAL = Set.of(Estimated.class, Outlook.class, Adjusted.class);
 
     private static final DecisionRecord RECORD = new DecisionRecord(
             "quay-banner",
@@ -92,6 +106,9 @@ class RecordDigestTest {
             collectOutcomes(name, outcomes, others);
         } else if (value instanceof Record inner) {
             neighbours(inner).forEach((place, changed) -> others.put(name + "." + place, changed));
+            if (OPTIONAL.contains(type)) {
+                others.put(name + "=null", null);
+            }
         } else if (value instanceof List<?> list) {
             collectLists(name, list, others);
         } else if (type == Double.class || type == double.class) {

@@ -74,7 +74,7 @@ final class BoundariesCommand extends CommandBase {
                 .put("variant", challenger.name())
                 .put("alpha", design.alpha())
                 .put("sides", sides(plan.test().sides()))
-                .put("spending", plan.test().spending().code());
+                .put("spending", plan.test().benefit().spending().code());
         PlannedPath path = new PlannedPath(plan, design);
         ArrayNode looks = object.putArray("looks");
         for (Look look : design.looks()) {

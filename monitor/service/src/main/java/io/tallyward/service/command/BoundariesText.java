@@ -40,7 +40,7 @@ final class BoundariesText {
         List<String> lines = new ArrayList<>();
         lines.add(challenger.name() + " against " + plan.control().name() + ": level " + shortest(design.alpha()) + ", "
                 + BoundariesCommand.sides(plan.test().sides()) + "-sided, spending "
-                + plan.test().spending().code() + ", power "
+                + plan.test().benefit().spending().code() + ", power "
                 + shortest(plan.test().power()) + " for "
                 + shortest(plan.test().baseline()) + " -> " + shortest(rateUnderEffect()));
         PlannedPath path = new PlannedPath(plan, design);

@@ -1,12 +1,12 @@
 package io.tallyward.service.command;
 
+import io.tallyward.engine.decide.FutilityRule;
 import io.tallyward.engine.decide.PlanDesign;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.TestPlan.Better;
 import io.tallyward.statistics.boundary.ExitProbabilities;
 import io.tallyward.statistics.boundary.FutilitySequence;
 import io.tallyward.statistics.boundary.Look;
-import io.tallyward.statistics.spending.SpendingFunction;
 import java.util.Arrays;
 import java.util.List;
 
@@ -36,17 +36,18 @@ final class PlannedPath {
                 .toArray();
         futility = new double[information.length];
         Arrays.fill(futility, Double.NEGATIVE_INFINITY);
-        plan.futility()
-                .map(planned -> PlanDesign.spendingFunction(planned.spending()))
-                .ifPresent(spending -> plan(spending, 1 - plan.test().power()));
+        plan(new FutilityRule(plan, design), plan, design);
     }
 
     /** Nothing is futile at the last look: whatever is no benefit there uses the plan up. */
-    private void plan(SpendingFunction spending, double typeTwoError) {
+    private void plan(FutilityRule rule, Plan plan, PlanDesign design) {
         FutilitySequence sequence = new FutilitySequence(drift);
         for (int k = 0; k < futility.length - 1; k++) {
-            double spent = spending.spent(typeTwoError, Math.min(information[k], 1));
-            futility[k] = sequence.next(information[k], benefit[k], spent);
+            if (rule.spends()) {
+                futility[k] = sequence.next(information[k], benefit[k], rule.betaSpent(Math.min(information[k], 1)));
+            } else if (rule.looksAhead() && information[k] < 1) {
+                futility[k] = Math.min(benefit[k], rule.ahead(information[k], design.critical(plan, k + 1)));
+            }
         }
     }
 

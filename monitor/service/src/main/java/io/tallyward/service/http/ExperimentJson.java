@@ -28,10 +28,15 @@ final class ExperimentJson {
             Double.NaN,
             Double.NaN,
             Double.NaN,
+            Double.NaN,
+            Double.NaN,
             null,
             null,
             null,
             Double.NaN,
+            null,
+            null,
+            null,
             null,
             null,
             Verdict.WAITING,
@@ -124,6 +129,8 @@ final class ExperimentJson {
         real(node, "information", look.information());
         real(node, "informationFraction", look.informationFraction());
         real(node, "maximumInformation", maximumInformation);
+        real(node, "spendingTime", look.spendingTime());
+        real(node, "level", look.level());
         real(node, "alphaSpent", look.alphaSpent());
         real(node, "upper", look.upper());
         real(node, "lower", look.lower());
@@ -131,6 +138,7 @@ final class ExperimentJson {
         real(node, "difference", look.difference());
         real(node, "differenceLower", look.differenceLower());
         real(node, "differenceUpper", look.differenceUpper());
+        EstimatesJson.put(node, look);
         node.put("reason", look.reason());
     }
 

@@ -189,7 +189,7 @@ final class ExperimentPage {
                 "Test",
                 (test.sides() == TestPlan.Sides.TWO ? "two-sided" : "one-sided") + ", alpha " + test.alpha()
                         + ", power " + test.power() + ", spending "
-                        + test.spending().code());
+                        + test.benefit().spending().code());
         OverviewPage.fact(
                 html,
                 "Sized for",

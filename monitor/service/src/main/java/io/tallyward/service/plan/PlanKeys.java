@@ -4,21 +4,27 @@ import static io.tallyward.service.config.document.ScalarType.duration;
 import static io.tallyward.service.config.document.ScalarType.flag;
 import static io.tallyward.service.config.document.ScalarType.instant;
 import static io.tallyward.service.config.document.ScalarType.name;
+import static io.tallyward.service.config.document.ScalarType.number;
 import static io.tallyward.service.config.document.ScalarType.numberBetween;
 import static io.tallyward.service.config.document.ScalarType.oneOf;
 import static io.tallyward.service.config.document.ScalarType.share;
 import static io.tallyward.service.config.document.ScalarType.text;
 import static io.tallyward.service.config.document.ScalarType.wholeNumber;
 
+import io.tallyward.engine.plan.FutilityPlan.Assumption;
 import io.tallyward.engine.plan.Spending;
 import io.tallyward.engine.plan.SplitCheckPlan;
 import io.tallyward.engine.plan.TestPlan;
+import io.tallyward.engine.plan.TestPlan.AlphaSharing;
 import io.tallyward.engine.plan.TestPlan.Better;
+import io.tallyward.engine.plan.TestPlan.InformationMeasure;
 import io.tallyward.engine.plan.TestPlan.Sides;
+import io.tallyward.engine.plan.TestPlan.SpendingClock;
 import io.tallyward.engine.plan.TrustLimits;
 import io.tallyward.service.config.document.Key;
 import io.tallyward.service.config.document.ListType;
 import io.tallyward.service.config.document.MapType;
+import io.tallyward.service.config.document.ScalarType;
 import io.tallyward.service.config.document.Shape;
 import io.tallyward.service.config.document.Values;
 import java.time.Duration;
@@ -64,6 +70,19 @@ public final class PlanKeys {
         static final Shape SHAPE = Shape.of(SHARE, CONTROL);
     }
 
+    static final class Direction {
+        static final Key<Double> ALPHA =
+                Key.optional("alpha", numberBetween(0, 0.5), "Level of this direction; both add up to test.alpha.");
+        static final Key<Spending> SPENDING =
+                Key.optional("spending", new SpendingType(), "How it is spent over the looks; test.spending else.");
+        static final Key<Double> SILENT_BEFORE = Key.withDefault(
+                "silent-before",
+                number("number from 0 to 1", value -> value >= 0 && value <= 1),
+                "0",
+                "Fraction of the clock before which nothing is spent; it is saved, not lost.");
+        static final Shape SHAPE = Shape.of(ALPHA, SPENDING, SILENT_BEFORE);
+    }
+
     static final class Test {
         static final Key<Double> ALPHA = Key.required(
                 "alpha", numberBetween(0, 0.5), "False-alarm rate over all challengers, looks and both directions.");
@@ -76,16 +95,49 @@ public final class PlanKeys {
                 "power", numberBetween(0.5, 1), "0.8", "Probability to find an effect of the smallest size.");
         static final Key<Double> BASELINE =
                 Key.required("baseline", numberBetween(0, 1), "Assumed success rate of the control.");
-        static final Key<Double> SMALLEST_EFFECT = Key.required(
-                "smallest-effect", numberBetween(0, 1), "Smallest absolute difference of rates worth finding.");
+        static final Key<EffectType.Effect> SMALLEST_EFFECT = Key.required(
+                "smallest-effect",
+                new EffectType(),
+                "Smallest difference of rates worth finding: absolute, or {relative: 0.05} of the baseline.");
         static final Key<Spending> SPENDING =
                 Key.withDefault("spending", new SpendingType(), "obrien-fleming", "How alpha is spent over the looks.");
+        static final Key<Values> BENEFIT = Key.optional(
+                "benefit", Direction.SHAPE, "What is different for the direction of benefit; half of alpha else.");
+        static final Key<Values> HARM = Key.optional(
+                "harm", Direction.SHAPE, "What is different for the direction of harm; half of alpha else.");
+        static final Key<AlphaSharing> ALPHA_SHARING = Key.withDefault(
+                "alpha-sharing",
+                oneOf(AlphaSharing.class, PlanKeys::code),
+                "pass-on",
+                "Whether a challenger that is found leaves its level to the others (pass-on) or not (split).");
+        static final Key<SpendingClock> CLOCK = Key.withDefault(
+                "clock",
+                oneOf(SpendingClock.class, PlanKeys::code),
+                "information",
+                "What alpha is spent by: the information, or the calendar (share of run.at-most).");
+        static final Key<InformationMeasure> INFORMATION = Key.withDefault(
+                "information",
+                oneOf(InformationMeasure.class, PlanKeys::code),
+                "observed",
+                "Measured with the rates observed, or by trials alone at the planned rates.");
         static final Key<Integer> MINIMUM_PER_CELL = Key.withDefault(
                 "minimum-per-cell",
                 wholeNumber(TestPlan.DEFAULT_MINIMUM_PER_CELL, 1_000_000),
                 String.valueOf(TestPlan.DEFAULT_MINIMUM_PER_CELL),
                 "Successes and failures that each variant needs before the first look.");
-        static final Shape SHAPE = Shape.of(ALPHA, SIDES, POWER, BASELINE, SMALLEST_EFFECT, SPENDING, MINIMUM_PER_CELL);
+        static final Shape SHAPE = Shape.of(
+                ALPHA,
+                SIDES,
+                POWER,
+                BASELINE,
+                SMALLEST_EFFECT,
+                SPENDING,
+                BENEFIT,
+                HARM,
+                ALPHA_SHARING,
+                CLOCK,
+                INFORMATION,
+                MINIMUM_PER_CELL);
     }
 
     static final class Looks {
@@ -93,15 +145,28 @@ public final class PlanKeys {
                 Key.optional("every", duration(SECOND, YEAR), "A look at regular intervals of event time.");
         static final Key<List<Double>> FRACTIONS = Key.optional(
                 "fractions",
-                new ListType<>(share(), 1, 100, "fractions"),
+                new ListType<>(share(), 1, PlanRules.MAX_LOOKS, "fractions"),
                 "A look at each of these shares of the planned information; ascending, the last one 1.");
         static final Shape SHAPE = Shape.of(EVERY, FRACTIONS);
     }
 
     static final class Futility {
-        static final Key<Spending> SPENDING = Key.required(
-                "spending", new SpendingType(), "How the type II error is spent over the looks; advice only.");
-        static final Shape SHAPE = Shape.of(SPENDING);
+        static final Key<Spending> SPENDING =
+                Key.optional("spending", new SpendingType(), "By the type II error spent over the looks.");
+        static final Key<Double> CONDITIONAL_POWER = Key.optional(
+                "conditional-power", threshold(), "When conditional power at the planned end falls below this.");
+        static final Key<Assumption> UNDER = Key.withDefault(
+                "under",
+                oneOf(Assumption.class, PlanKeys::code),
+                "design",
+                "What conditional power assumes from here on: the trend so far, the design's effect, or none.");
+        static final Key<Double> PREDICTIVE_POWER = Key.optional(
+                "predictive-power", threshold(), "When predictive power at the planned end falls below this.");
+        static final Shape SHAPE = Shape.of(SPENDING, CONDITIONAL_POWER, UNDER, PREDICTIVE_POWER);
+
+        private static ScalarType<Double> threshold() {
+            return number("number above 0, at most 0.5", value -> value > 0 && value <= 0.5);
+        }
     }
 
     static final class SplitCheck {
@@ -171,7 +236,8 @@ public final class PlanKeys {
     static final Key<Values> TEST =
             Key.required("test", Test.SHAPE, "The test of each challenger against the control.");
     static final Key<Values> LOOKS = Key.required("looks", Looks.SHAPE, "When a look is due: every or fractions.");
-    static final Key<Values> FUTILITY = Key.optional("futility", Futility.SHAPE, "When to give up; never without it.");
+    static final Key<Values> FUTILITY =
+            Key.optional("futility", Futility.SHAPE, "When to give up, by one rule; never without it. Advice only.");
     static final Key<Values> SPLIT_CHECK =
             Key.section("split-check", SplitCheck.SHAPE, "The watch over the traffic split.");
     static final Key<Values> TRUST = Key.section("trust", Trust.SHAPE, "Limits beyond which the data are not trusted.");
@@ -200,6 +266,6 @@ public final class PlanKeys {
     private PlanKeys() {}
 
     private static String code(Enum<?> constant) {
-        return constant.name().toLowerCase(Locale.ROOT);
+        return constant.name().toLowerCase(Locale.ROOT).replace('_', '-');
     }
 }

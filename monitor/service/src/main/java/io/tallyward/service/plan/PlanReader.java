@@ -9,6 +9,7 @@ import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.Run;
 import io.tallyward.engine.plan.SplitCheckPlan;
 import io.tallyward.engine.plan.TestPlan;
+import io.tallyward.engine.plan.TestPlan.Sides;
 import io.tallyward.engine.plan.TrustLimits;
 import io.tallyward.engine.plan.Variant;
 import io.tallyward.service.config.document.Checked;
@@ -55,8 +56,7 @@ public final class PlanReader {
                 variants(values),
                 test(values),
                 looks(values.get(PlanKeys.LOOKS)),
-                values.find(PlanKeys.FUTILITY)
-                        .map(futility -> new FutilityPlan(futility.get(PlanKeys.Futility.SPENDING))),
+                values.find(PlanKeys.FUTILITY).map(PlanReader::futility),
                 new SplitCheckPlan(values.get(PlanKeys.SPLIT_CHECK).get(PlanKeys.SplitCheck.ALPHA)),
                 trust(values.get(PlanKeys.TRUST)),
                 run(values.get(PlanKeys.RUN)),
@@ -82,15 +82,27 @@ public final class PlanReader {
 
     private static TestPlan test(Values values) {
         Values test = values.get(PlanKeys.TEST);
+        boolean two = test.get(PlanKeys.Test.SIDES) == Sides.TWO;
+        double baseline = test.get(PlanKeys.Test.BASELINE);
         return new TestPlan(
-                test.get(PlanKeys.Test.ALPHA),
-                test.get(PlanKeys.Test.SIDES),
+                DirectionRules.tail(test, PlanKeys.Test.BENEFIT),
+                two ? Optional.of(DirectionRules.tail(test, PlanKeys.Test.HARM)) : Optional.empty(),
+                test.get(PlanKeys.Test.ALPHA_SHARING),
+                test.get(PlanKeys.Test.CLOCK),
+                test.get(PlanKeys.Test.INFORMATION),
                 test.get(PlanKeys.Test.POWER),
-                test.get(PlanKeys.Test.BASELINE),
-                test.get(PlanKeys.Test.SMALLEST_EFFECT),
-                test.get(PlanKeys.Test.SPENDING),
+                baseline,
+                test.get(PlanKeys.Test.SMALLEST_EFFECT).difference(baseline),
                 values.get(PlanKeys.BETTER),
                 test.get(PlanKeys.Test.MINIMUM_PER_CELL));
+    }
+
+    private static FutilityPlan futility(Values futility) {
+        return futility.find(PlanKeys.Futility.SPENDING)
+                .<FutilityPlan>map(FutilityPlan.ErrorSpending::new)
+                .or(() -> futility.find(PlanKeys.Futility.CONDITIONAL_POWER)
+                        .map(below -> new FutilityPlan.ConditionalPower(below, futility.get(PlanKeys.Futility.UNDER))))
+                .orElseGet(() -> new FutilityPlan.PredictivePower(futility.get(PlanKeys.Futility.PREDICTIVE_POWER)));
     }
 
     private static LookSchedule looks(Values looks) {

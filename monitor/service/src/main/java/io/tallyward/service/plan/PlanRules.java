@@ -9,9 +9,11 @@ import java.time.Duration;
 import java.time.Instant;
 import java.util.Collection;
 import java.util.List;
+import java.util.Locale;
 import java.util.Map;
 import java.util.Optional;
 import java.util.TreeSet;
+import java.util.stream.Stream;
 
 /** What must hold between the keys of a plan. Rules about keys that were refused already are left out. */
 final class PlanRules {
@@ -20,7 +22,7 @@ final class PlanRules {
     private static final double SHARE_TOLERANCE = 1e-9;
 
     /** More looks than this say nothing new and make the design slow to compute. */
-    private static final long MAX_LOOKS = 1_000;
+    static final int MAX_LOOKS = 1_000;
 
     /** More windows than this waiting to be sealed would not fit into one record of the state. */
     private static final long MAX_OPEN_WINDOWS = 5_000;
@@ -41,6 +43,8 @@ final class PlanRules {
         plan.find(PlanKeys.COUNT).ifPresent(rules::checkCount);
         plan.find(PlanKeys.VARIANTS).ifPresent(rules::checkVariants);
         plan.find(PlanKeys.TEST).ifPresent(rules::checkTest);
+        plan.find(PlanKeys.TEST).ifPresent(DirectionRules::check);
+        plan.find(PlanKeys.FUTILITY).ifPresent(PlanRules::checkFutility);
         plan.find(PlanKeys.RUN).ifPresent(rules::checkRun);
         plan.find(PlanKeys.LOOKS).ifPresent(rules::checkLooks);
         plan.find(PlanKeys.EPOCHS).ifPresent(rules::checkEpochs);
@@ -94,17 +98,41 @@ final class PlanRules {
 
     private void checkTest(Values test) {
         Optional<Double> baseline = test.find(PlanKeys.Test.BASELINE);
-        Optional<Double> effect = test.find(PlanKeys.Test.SMALLEST_EFFECT);
+        Optional<EffectType.Effect> effect = test.find(PlanKeys.Test.SMALLEST_EFFECT);
         if (baseline.isEmpty() || effect.isEmpty()) {
             return;
         }
         boolean lower = plan.find(PlanKeys.BETTER).filter(Better.LOWER::equals).isPresent();
-        double rate = lower ? baseline.get() - effect.get() : baseline.get() + effect.get();
+        double difference = effect.get().difference(baseline.get());
+        double rate = lower ? baseline.get() - difference : baseline.get() + difference;
         if (!(rate > 0 && rate < 1)) {
             test.refuse(
                     PlanKeys.Test.SMALLEST_EFFECT,
-                    String.valueOf(effect.get()),
+                    effect.get().toString(),
                     lower ? "less than the baseline" : "a number that leaves baseline + smallest-effect below 1");
+        }
+    }
+
+    private static void checkFutility(Values futility) {
+        long rules = Stream.of(
+                        PlanKeys.Futility.SPENDING,
+                        PlanKeys.Futility.CONDITIONAL_POWER,
+                        PlanKeys.Futility.PREDICTIVE_POWER)
+                .filter(futility::gives)
+                .count();
+        if (rules != 1) {
+            futility.refuse(
+                    rules == 0 ? "no rule" : rules + " rules",
+                    "one of spending, conditional-power and predictive-power");
+        }
+        if (futility.gives(PlanKeys.Futility.UNDER) && !futility.gives(PlanKeys.Futility.CONDITIONAL_POWER)) {
+            futility.refuse(
+                    PlanKeys.Futility.UNDER,
+                    futility.find(PlanKeys.Futility.UNDER)
+                            .map(String::valueOf)
+                            .orElse("given")
+                            .toLowerCase(Locale.ROOT),
+                    "nothing: only conditional-power assumes an effect");
         }
     }
 

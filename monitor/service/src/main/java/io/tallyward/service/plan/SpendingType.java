@@ -2,6 +2,7 @@ package io.tallyward.service.plan;
 
 import io.tallyward.engine.plan.Spending;
 import io.tallyward.engine.plan.Spending.Family;
+import io.tallyward.service.config.document.MapType;
 import io.tallyward.service.config.document.Node;
 import io.tallyward.service.config.document.Node.Mapping;
 import io.tallyward.service.config.document.Node.Scalar;
@@ -11,8 +12,10 @@ import io.tallyward.service.config.document.ValueType;
 import java.util.Arrays;
 import java.util.Map;
 import java.util.Optional;
+import java.util.SortedMap;
+import java.util.TreeMap;
 
-/** The type of a spending function: the name of a family, or a mapping of a family to its parameter. */
+/** The type of a spending function: the name of a family, or a mapping of a family to its parameter or points. */
 final class SpendingType implements ValueType<Spending> {
 
     /** Range of gamma (Hwang, Shih and DeCani 1990); practice stays within -10 and 4, beyond it boundaries degenerate. */
@@ -22,6 +25,21 @@ final class SpendingType implements ValueType<Spending> {
     /** Range of rho (Kim and DeMets 1987), the power of the information fraction. */
     private static final ScalarType<Double> RHO =
             ScalarType.number("number above 0, at most 20", value -> value > 0 && value <= 20);
+
+    private static final int MOST_POINTS = 100;
+
+    private static final ScalarType<Double> SHARE =
+            ScalarType.number("number from 0 to 1", value -> value >= 0 && value <= 1);
+
+    /** Share of the level by fraction of the spending clock. */
+    private static final MapType<Double> POINTS = new MapType<>(
+            new ScalarType<>(
+                    "a fraction above 0, at most 1",
+                    text -> ScalarType.share().parse().apply(text).map(String::valueOf)),
+            SHARE,
+            1,
+            MOST_POINTS,
+            "points");
 
     @Override
     public Optional<Spending> read(Node node, Place place) {
@@ -34,6 +52,9 @@ final class SpendingType implements ValueType<Spending> {
         if (node instanceof Mapping mapping && mapping.entries().size() == 1) {
             Map.Entry<String, Node> entry =
                     mapping.entries().entrySet().iterator().next();
+            if (entry.getKey().equals(Family.TABLE.code())) {
+                return table(entry.getValue(), place.key(entry.getKey()));
+            }
             Optional<Family> family = family(entry.getKey()).filter(Family::parametric);
             if (family.isPresent()) {
                 return parameter(family.get())
@@ -47,7 +68,28 @@ final class SpendingType implements ValueType<Spending> {
 
     @Override
     public String expected() {
-        return "obrien-fleming, pocock, {hwang-shih-decani: GAMMA} or {kim-demets: RHO}";
+        return "obrien-fleming, pocock, {hwang-shih-decani: GAMMA}, {kim-demets: RHO} "
+                + "or {table: {FRACTION: SHARE, ..., 1: 1}}";
+    }
+
+    private static Optional<Spending> table(Node node, Place place) {
+        Optional<Map<String, Double>> written = POINTS.read(node, place);
+        if (written.isEmpty()) {
+            return Optional.empty();
+        }
+        SortedMap<Double, Double> points = new TreeMap<>();
+        written.get().forEach((fraction, share) -> points.put(Double.valueOf(fraction), share));
+        boolean risesToOne = points.lastKey() == 1 && points.get(1.0) == 1;
+        double last = 0;
+        for (double share : points.values()) {
+            risesToOne &= share >= last;
+            last = share;
+        }
+        if (!risesToOne) {
+            place.refuse(node, "shares " + points.values(), "shares of the level that never fall, the last point 1: 1");
+            return Optional.empty();
+        }
+        return Optional.of(Spending.table(points));
     }
 
     private static ScalarType<Double> parameter(Family family) {

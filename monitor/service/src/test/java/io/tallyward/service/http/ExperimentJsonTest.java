@@ -59,6 +59,8 @@ class ExperimentJsonTest {
                     "information" : null,
                     "informationFraction" : null,
                     "maximumInformation" : 235000.0,
+                    "spendingTime" : null,
+                    "level" : null,
                     "alphaSpent" : null,
                     "upper" : null,
                     "lower" : null,
@@ -66,6 +68,9 @@ class ExperimentJsonTest {
                     "difference" : null,
                     "differenceLower" : null,
                     "differenceUpper" : null,
+                    "lift" : null,
+                    "outlook" : null,
+                    "adjusted" : null,
                     "reason" : null
                   } ],
                   "lastRecord" : "%s",

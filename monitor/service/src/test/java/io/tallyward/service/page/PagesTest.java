@@ -187,6 +187,8 @@ class PagesTest {
                 look.z(),
                 look.information(),
                 look.informationFraction(),
+                look.spendingTime(),
+                look.level(),
                 look.alphaSpent(),
                 upper,
                 lower,
@@ -194,6 +196,9 @@ class PagesTest {
                 look.difference(),
                 look.differenceLower(),
                 look.differenceUpper(),
+                look.lift(),
+                look.outlook(),
+                look.adjusted(),
                 look.verdict(),
                 look.held(),
                 look.reason());

@@ -6,23 +6,30 @@ import io.tallyward.engine.plan.AllocationEpoch;
 import io.tallyward.engine.plan.CountRule;
 import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.FutilityPlan;
+import io.tallyward.engine.plan.FutilityPlan.Assumption;
 import io.tallyward.engine.plan.LookSchedule;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.Run;
 import io.tallyward.engine.plan.Spending;
 import io.tallyward.engine.plan.Spending.Family;
 import io.tallyward.engine.plan.SplitCheckPlan;
+import io.tallyward.engine.plan.Tail;
 import io.tallyward.engine.plan.TestPlan;
+import io.tallyward.engine.plan.TestPlan.AlphaSharing;
 import io.tallyward.engine.plan.TestPlan.Better;
+import io.tallyward.engine.plan.TestPlan.InformationMeasure;
 import io.tallyward.engine.plan.TestPlan.Sides;
+import io.tallyward.engine.plan.TestPlan.SpendingClock;
 import io.tallyward.engine.plan.TrustLimits;
 import io.tallyward.engine.plan.Variant;
 import io.tallyward.service.config.document.Problem;
 import java.time.Duration;
 import java.time.Instant;
+import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
+import java.util.TreeMap;
 import org.junit.jupiter.api.Test;
 
 class PlanReaderTest {
@@ -47,15 +54,7 @@ class PlanReaderTest {
                         new CountRule(
                                 CountBy.UNIT, Duration.ofMinutes(30), Duration.ofMinutes(10), Duration.ofMinutes(5)),
                         List.of(new Variant("plain", 0.5, true), new Variant("wide", 0.5, false)),
-                        new TestPlan(
-                                0.05,
-                                Sides.TWO,
-                                0.8,
-                                0.12,
-                                0.006,
-                                Spending.of(Family.OBRIEN_FLEMING),
-                                Better.HIGHER,
-                                5),
+                        TestPlan.of(0.05, Sides.TWO, Spending.of(Family.OBRIEN_FLEMING), 0.8, 0.12, 0.006),
                         new LookSchedule.Every(Duration.ofHours(6)),
                         Optional.empty(),
                         new SplitCheckPlan(0.001),
@@ -82,8 +81,12 @@ class PlanReaderTest {
                           sides: one
                           power: 0.9
                           baseline: 0.3
-                          smallest-effect: 0.02
+                          smallest-effect: {relative: 0.05}
                           spending: {hwang-shih-decani: -2}
+                          benefit: {silent-before: 0.25}
+                          alpha-sharing: split
+                          clock: calendar
+                          information: trials
                           minimum-per-cell: 20
                         looks: {fractions: [0.25, 0.5, 0.75, 1.0]}
                         futility: {spending: {kim-demets: 3}}
@@ -100,10 +103,19 @@ class PlanReaderTest {
                 plan.variants().stream().map(Variant::name).toList());
         assertEquals(
                 new TestPlan(
-                        0.04, Sides.ONE, 0.9, 0.3, 0.02, new Spending(Family.HWANG_SHIH_DECANI, -2), Better.LOWER, 20),
+                        new Tail(0.04, new Spending(Family.HWANG_SHIH_DECANI, -2), 0.25),
+                        Optional.empty(),
+                        AlphaSharing.SPLIT,
+                        SpendingClock.CALENDAR,
+                        InformationMeasure.TRIALS,
+                        0.9,
+                        0.3,
+                        0.015,
+                        Better.LOWER,
+                        20),
                 plan.test());
         assertEquals(new LookSchedule.AtFractions(List.of(0.25, 0.5, 0.75, 1.0)), plan.looks());
-        assertEquals(Optional.of(new FutilityPlan(new Spending(Family.KIM_DEMETS, 3))), plan.futility());
+        assertEquals(Optional.of(new FutilityPlan.ErrorSpending(new Spending(Family.KIM_DEMETS, 3))), plan.futility());
         assertEquals(new TrustLimits(0.05, 0.01, Duration.ofHours(2)), plan.trust());
         assertEquals(
                 new Run(Instant.parse("2026-05-03T22:00:00Z"), Duration.ofDays(7), Duration.ofDays(14)), plan.run());
@@ -111,6 +123,81 @@ class PlanReaderTest {
                 List.of(new AllocationEpoch(
                         Instant.parse("2026-05-06T00:00:00Z"), Map.of("flat", 0.34, "tilted", 0.33, "round", 0.33))),
                 plan.epochs());
+    }
+
+    @Test
+    void dividesAlphaBetweenTheDirections() throws Exception {
+        TestPlan harmLess = test("alpha: 0.05, harm: {alpha: 0.01, spending: pocock}");
+        assertEquals(new Tail(0.04, Spending.of(Family.OBRIEN_FLEMING), 0), harmLess.benefit());
+        assertEquals(Optional.of(new Tail(0.01, Spending.of(Family.POCOCK), 0)), harmLess.harm());
+        TestPlan both = test("alpha: 0.05, benefit: {alpha: 0.02}, harm: {alpha: 0.03, silent-before: 0.5}");
+        assertEquals(new Tail(0.02, Spending.of(Family.OBRIEN_FLEMING), 0), both.benefit());
+        assertEquals(Optional.of(new Tail(0.03, Spending.of(Family.OBRIEN_FLEMING), 0.5)), both.harm());
+        TestPlan neither = test("alpha: 0.05, harm: {spending: pocock}");
+        assertEquals(0.025, neither.benefit().alpha(), 0);
+        assertEquals(0.025, neither.harm().orElseThrow().alpha(), 0);
+    }
+
+    private static TestPlan test(String start) throws Exception {
+        return PlanReader.parse("quay.yaml", MINIMAL.replace("alpha: 0.05", start))
+                .orElseThrow()
+                .test();
+    }
+
+    @Test
+    void readsASpendingTable() throws Exception {
+        assertEquals(
+                Spending.table(new TreeMap<>(Map.of(0.25, 0.1, 0.5, 0.1, 1.0, 1.0))),
+                test("alpha: 0.05, spending: {table: {0.25: 0.1, 0.5: 0.1, 1: 1}}")
+                        .benefit()
+                        .spending());
+    }
+
+    @Test
+    void readsEveryFutilityRule() throws Exception {
+        assertEquals(new FutilityPlan.ConditionalPower(0.2, Assumption.DESIGN), futility("{conditional-power: 0.2}"));
+        assertEquals(
+                new FutilityPlan.ConditionalPower(0.2, Assumption.TREND),
+                futility("{conditional-power: 0.2, under: trend}"));
+        assertEquals(new FutilityPlan.PredictivePower(0.1), futility("{predictive-power: 0.1}"));
+    }
+
+    private static FutilityPlan futility(String rule) throws Exception {
+        return PlanReader.parse("quay.yaml", MINIMAL + "futility: " + rule + "\n")
+                .orElseThrow()
+                .futility()
+                .orElseThrow();
+    }
+
+    @Test
+    void refusesDirectionsAndRulesThatDoNotFit() {
+        Map<String, String> refusals = new LinkedHashMap<>();
+        refusals.put(
+                "alpha: 0.05, benefit: {alpha: 0.02}, harm: {alpha: 0.02}",
+                "test.alpha: 0.05 (expected: the sum of benefit.alpha and harm.alpha, 0.04)");
+        refusals.put(
+                "alpha: 0.05, harm: {alpha: 0.05}",
+                "test.harm.alpha: 0.05 (expected: less than test.alpha, 0.05, so that the other direction has some left)");
+        refusals.put(
+                "alpha: 0.05, sides: one, harm: {spending: pocock}",
+                "test.harm: a direction (expected: nothing: with sides: one only a benefit is tested)");
+        refusals.put(
+                "alpha: 0.05, sides: one, benefit: {alpha: 0.01}",
+                "test.benefit.alpha: a level (expected: nothing: with sides: one it has all of test.alpha)");
+        refusals.put(
+                "alpha: 0.05, spending: {table: {0.5: 0.6, 0.8: 0.5, 1: 1}}",
+                "test.spending.table: shares [0.6, 0.5, 1.0] "
+                        + "(expected: shares of the level that never fall, the last point 1: 1)");
+        refusals.forEach((start, problem) -> assertEquals(
+                List.of("bad.yaml:5: " + problem), problems(MINIMAL.replace("alpha: 0.05", start)), start));
+        assertEquals(
+                List.of("bad.yaml:8: futility: no rule (expected: one of spending, conditional-power and"
+                        + " predictive-power)"),
+                problems(MINIMAL + "futility: {}\n"));
+        assertEquals(
+                List.of(
+                        "bad.yaml:8: futility.under: none (expected: nothing: only conditional-power assumes an effect)"),
+                problems(MINIMAL + "futility: {predictive-power: 0.1, under: none}\n"));
     }
 
     @Test
@@ -127,7 +214,7 @@ class PlanReaderTest {
                         "bad.yaml:5: test.alpha: 0.7 (expected: number above 0 and below 0.5)",
                         "bad.yaml:5: test.sides: both (expected: one or two)",
                         "bad.yaml:5: test.spending: fleming (expected: obrien-fleming, pocock, "
-                                + "{hwang-shih-decani: GAMMA} or {kim-demets: RHO})",
+                                + "{hwang-shih-decani: GAMMA}, {kim-demets: RHO} or {table: {FRACTION: SHARE, ..., 1: 1}})",
                         "bad.yaml:5: test.smallest-effect: 0.4 "
                                 + "(expected: a number that leaves baseline + smallest-effect below 1)",
                         "bad.yaml:6: looks: both are given (expected: either every or fractions)",
@@ -215,8 +302,9 @@ class PlanReaderTest {
     @Test
     void saysWhereAMisplacedKeyBelongs() {
         assertEquals(
-                List.of("bad.yaml:5: test.better: unknown key (expected: alpha, sides, power, baseline, "
-                        + "smallest-effect, spending, minimum-per-cell). Did you mean better?"),
+                List.of(
+                        "bad.yaml:5: test.better: unknown key (expected: alpha, sides, power, baseline, "
+                                + "smallest-effect, spending, benefit, harm, alpha-sharing, clock, information, minimum-per-cell). Did you mean better?"),
                 problems(MINIMAL.replace("{alpha: 0.05", "{better: lower, alpha: 0.05")));
     }
 
@@ -236,7 +324,7 @@ class PlanReaderTest {
                 problems(MINIMAL.replace("0.006", "0.006, spending: {kim-demets: 0}")));
         assertEquals(
                 List.of("bad.yaml:5: test.spending: kim-demets (expected: obrien-fleming, pocock, "
-                        + "{hwang-shih-decani: GAMMA} or {kim-demets: RHO})"),
+                        + "{hwang-shih-decani: GAMMA}, {kim-demets: RHO} or {table: {FRACTION: SHARE, ..., 1: 1}})"),
                 problems(MINIMAL.replace("0.006", "0.006, spending: kim-demets")));
     }
 

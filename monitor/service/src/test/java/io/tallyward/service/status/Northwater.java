@@ -14,9 +14,12 @@ import io.tallyward.engine.plan.SplitCheckPlan;
 import io.tallyward.engine.plan.TestPlan;
 import io.tallyward.engine.plan.TrustLimits;
 import io.tallyward.engine.plan.Variant;
+import io.tallyward.engine.record.Adjusted;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.Split;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.Estimated;
+import io.tallyward.engine.record.Outlook;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
 import java.time.Duration;
@@ -180,17 +183,9 @@ public final class Northwater {
                 new CountRule(
                         CountRule.CountBy.UNIT, Duration.ofMinutes(30), Duration.ofMinutes(10), Duration.ofMinutes(5)),
                 variants,
-                new TestPlan(
-                        0.05,
-                        TestPlan.Sides.TWO,
-                        0.8,
-                        0.12,
-                        0.006,
-                        Spending.of(Spending.Family.OBRIEN_FLEMING),
-                        TestPlan.Better.HIGHER,
-                        TestPlan.DEFAULT_MINIMUM_PER_CELL),
+                TestPlan.of(0.05, TestPlan.Sides.TWO, Spending.of(Spending.Family.OBRIEN_FLEMING), 0.8, 0.12, 0.006),
                 new LookSchedule.Every(Duration.ofHours(6)),
-                Optional.of(new FutilityPlan(new Spending(Spending.Family.HWANG_SHIH_DECANI, -2))),
+                Optional.of(new FutilityPlan.ErrorSpending(new Spending(Spending.Family.HWANG_SHIH_DECANI, -2))),
                 new SplitCheckPlan(SplitCheckPlan.DEFAULT_ALPHA),
                 TrustLimits.DEFAULT,
                 new Run(START, Duration.ofDays(7), Duration.ofDays(28)),
@@ -256,6 +251,15 @@ public final class Northwater {
                 : new Split(-3.2, 1.0, 0.02, 1, 0.887);
     }
 
+    private static Adjusted adjusted(double z, double difference) {
+        return new Adjusted(
+                0.0123,
+                0.95,
+                new Estimated(0.95 * z, 0.4 * z, 1.6 * z),
+                new Estimated(0.95 * difference, 0.4 * difference, 1.6 * difference),
+                new Estimated(8 * difference, 3 * difference, 14 * difference));
+    }
+
     private static Comparison look(String variant, int look, double z, Verdict verdict, Trust trust, int looks) {
         double fraction = 0.08 * look;
         double bound = Math.min(8, 1.99 / Math.sqrt(fraction));
@@ -269,6 +273,8 @@ public final class Northwater {
                 z,
                 235_000.0 * fraction,
                 fraction,
+                fraction,
+                0.05,
                 0.05 * fraction * fraction * fraction,
                 benefitMayStop ? bound : null,
                 -bound,
@@ -276,6 +282,9 @@ public final class Northwater {
                 difference,
                 difference - half,
                 benefitMayStop ? difference + half : null,
+                new Estimated(difference / 0.12, (difference - half) / 0.12, null),
+                last ? null : new Outlook(0.42, 0.81, 0.03, 0.39),
+                last && verdict.settled() ? adjusted(z, difference) : null,
                 last ? verdict : Verdict.CONTINUE,
                 last && trust == Trust.MISMATCH ? Verdict.STOP_BENEFIT : null,
                 last && (verdict.settled() || trust == Trust.MISMATCH)

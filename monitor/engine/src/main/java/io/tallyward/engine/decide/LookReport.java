@@ -1,0 +1,183 @@
+package io.tallyward.engine.decide;
+
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.TestPlan.Better;
+import io.tallyward.engine.record.Adjusted;
+import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.engine.record.Estimated;
+import io.tallyward.engine.record.Outlook;
+import io.tallyward.engine.record.Verdict;
+import io.tallyward.statistics.boundary.Look;
+import io.tallyward.statistics.inference.ConditionalPower;
+import io.tallyward.statistics.inference.EffectScale;
+import io.tallyward.statistics.inference.Estimate;
+import io.tallyward.statistics.inference.Interval;
+import io.tallyward.statistics.inference.LiftScale;
+import io.tallyward.statistics.inference.StagewiseInference;
+import io.tallyward.statistics.proportion.Stratum;
+import java.util.List;
+import java.util.Locale;
+import java.util.Optional;
+
+/** Puts a look into numbers and words for the record. */
+final class LookReport {
+
+    private final String variant;
+    private final boolean higherIsBetter;
+    private final double drift;
+    private final Detail detail;
+
+    LookReport(Plan plan, String variant, PlanDesign design, Detail detail) {
+        this.variant = variant;
+        this.detail = detail;
+        higherIsBetter = plan.test().better() == Better.HIGHER;
+        drift = design.drift();
+    }
+
+    /**
+     * What came of a look.
+     *
+     * @param finding what the look found
+     * @param verdict the verdict as told
+     * @param heldOrNull the verdict that waits for trust
+     */
+    record Outcome(Verdict finding, Verdict verdict, Verdict heldOrNull) {}
+
+    /**
+     * Writes a comparison.
+     *
+     * @param looks all looks taken, this one last
+     */
+    Comparison write(Sitting sitting, TailLevels levels, LookPath.Bounds bounds, List<Look> looks, Outcome outcome) {
+        Look look = bounds.look();
+        double z = sitting.found().z();
+        double scale = StrictMath.sqrt(sitting.found().information());
+        double lower = (z - look.upper()) / scale;
+        double upper = (z - look.lower()) / scale;
+        boolean ended = outcome.finding().settled();
+        return new Comparison(
+                variant,
+                look.number(),
+                z,
+                sitting.found().information(),
+                look.information(),
+                sitting.time(),
+                levels.both(),
+                look.upperSpent() + look.lowerSpent(),
+                finite(look.upper()),
+                finite(look.lower()),
+                finite(higherIsBetter ? bounds.futility() : -bounds.futility()),
+                sitting.found().difference(),
+                finite(lower),
+                finite(upper),
+                liftScale(sitting.strata())
+                        .map(lift -> estimated(lift.lift(new Estimate(
+                                sitting.found().difference(), new Interval(lower, upper, 1 - levels.both())))))
+                        .orElse(null),
+                outlook(look, z, bounds.critical()),
+                ended && detail == Detail.FULL ? adjusted(sitting, levels, looks) : null,
+                outcome.verdict(),
+                outcome.heldOrNull(),
+                reason(z, look, outcome));
+    }
+
+    private Outlook outlook(Look look, double z, double critical) {
+        if (Double.isInfinite(critical) || detail == Detail.BARE) {
+            return null;
+        }
+        ConditionalPower power = ConditionalPower.of(
+                look.information(), higherIsBetter ? z : -z, new double[] {1}, new double[] {critical}, new double[] {
+                    Double.NEGATIVE_INFINITY
+                });
+        return new Outlook(power.underTrend(), power.under(drift), power.withoutEffect(), power.predictive());
+    }
+
+    private Adjusted adjusted(Sitting sitting, TailLevels levels, List<Look> looks) {
+        StagewiseInference stop = StagewiseInference.of(looks, sitting.found().z());
+        double upperLevel = higherIsBetter ? levels.benefit() : levels.harm();
+        double lowerLevel = higherIsBetter ? levels.harm() : levels.benefit();
+        Estimate estimate = new Estimate(stop.medianUnbiasedDrift(), interval(stop, upperLevel, lowerLevel));
+        Estimate difference =
+                new EffectScale(sitting.found().information() / sitting.fraction()).riskDifference(estimate);
+        return new Adjusted(
+                pValue(stop, levels.both(), upperLevel, lowerLevel),
+                estimate.interval().level(),
+                estimated(estimate),
+                estimated(difference),
+                liftScale(sitting.strata())
+                        .filter(lift -> StrictMath.abs(difference.value()) <= 1)
+                        .map(lift -> estimated(lift.lift(difference)))
+                        .orElse(null));
+    }
+
+    /** The smaller of the tails' p-values, each weighted by its share of the level; at most 1. */
+    private static double pValue(StagewiseInference stop, double level, double upperLevel, double lowerLevel) {
+        double up = upperLevel > 0 ? stop.pUpper() * (level / upperLevel) : 1;
+        double down = lowerLevel > 0 ? stop.pLower() * (level / lowerLevel) : 1;
+        return StrictMath.min(1, StrictMath.min(up, down));
+    }
+
+    /**
+     * The end that a benefit or a harm has to clear carries the error of that direction, so that interval and verdict agree.
+     * A direction that is not tested gets as much as the other.
+     */
+    private static Interval interval(StagewiseInference stop, double upperLevel, double lowerLevel) {
+        double below = upperLevel == 0 ? lowerLevel : upperLevel;
+        double above = lowerLevel == 0 ? upperLevel : lowerLevel;
+        Interval fromBelow = stop.interval(1 - 2 * below);
+        double upperEnd = above == below
+                ? fromBelow.upper()
+                : stop.interval(1 - 2 * above).upper();
+        return new Interval(fromBelow.lower(), upperEnd, 1 - below - above);
+    }
+
+    /** The rates behind the stratified difference, weighted as it is. Empty while the control has no success. */
+    private static Optional<LiftScale> liftScale(List<Stratum> strata) {
+        double weight = 0;
+        double rate = 0;
+        double controlVariance = 0;
+        double variantVariance = 0;
+        for (Stratum stratum : strata) {
+            if (stratum.trials() == 0 || stratum.controlTrials() == 0) {
+                continue;
+            }
+            double n1 = stratum.trials();
+            double n0 = stratum.controlTrials();
+            double w = n1 * (n0 / (n1 + n0));
+            double p1 = stratum.successes() / n1;
+            double p0 = stratum.controlSuccesses() / n0;
+            weight += w;
+            rate += w * p0;
+            variantVariance += w * w * p1 * (1 - p1) / n1;
+            controlVariance += w * w * p0 * (1 - p0) / n0;
+        }
+        return rate > 0 && variantVariance + controlVariance > 0
+                ? Optional.of(new LiftScale(
+                        rate / weight, controlVariance / (weight * weight), variantVariance / (weight * weight)))
+                : Optional.empty();
+    }
+
+    private static Estimated estimated(Estimate estimate) {
+        return new Estimated(
+                estimate.value(),
+                finite(estimate.interval().lower()),
+                finite(estimate.interval().upper()));
+    }
+
+    private static Double finite(double value) {
+        return Double.isInfinite(value) ? null : value;
+    }
+
+    private String reason(double z, Look look, Outcome outcome) {
+        String text = switch (outcome.finding()) {
+            case STOP_BENEFIT -> "z %.3f has reached the benefit boundary %.3f";
+            case STOP_HARM -> "z %.3f has reached the harm boundary %.3f";
+            case STOP_FUTILITY -> "z %.3f makes a benefit unlikely within the planned information";
+            case EXHAUSTED -> "the planned information or time is used up and z %.3f has crossed no boundary";
+            case CONTINUE, WAITING -> "z %.3f lies between the boundaries";
+        };
+        double crossed = z >= look.upper() ? look.upper() : look.lower();
+        String reason = String.format(Locale.ROOT, text, z, crossed);
+        return outcome.heldOrNull() == null ? reason : reason + "; held until the data are trusted again";
+    }
+}
