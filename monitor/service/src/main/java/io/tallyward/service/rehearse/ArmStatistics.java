@@ -16,6 +16,7 @@ final class ArmStatistics {
     private final TreeMap<Integer, long[]> stops = new TreeMap<>();
 
     private final Moments looks = new Moments();
+    private final Moments levels = new Moments();
     private final Moments naiveError = new Moments();
     private final Moments adjustedError = new Moments();
     private long naiveRejections;
@@ -39,6 +40,7 @@ final class ArmStatistics {
 
     private void add(StopEstimate estimate, double trueDifference) {
         estimates++;
+        levels.add(estimate.level());
         naiveError.add(estimate.naive() - trueDifference);
         adjustedError.add(estimate.adjusted() - trueDifference);
         naiveTooLow += estimate.naive() < trueDifference ? 1 : 0;
@@ -56,6 +58,7 @@ final class ArmStatistics {
             }
         });
         looks.add(later.looks);
+        levels.add(later.levels);
         naiveError.add(later.naiveError);
         adjustedError.add(later.adjustedError);
         naiveRejections += later.naiveRejections;
@@ -67,7 +70,7 @@ final class ArmStatistics {
         stagewiseCovers += later.stagewiseCovers;
     }
 
-    RehearsalReport.Arm report(String variant, double trueDifference, double level, long runs) {
+    RehearsalReport.Arm report(String variant, double trueDifference, long runs) {
         Map<Ending, Rate> endings = new EnumMap<>(Ending.class);
         for (Ending ending : ENDINGS) {
             endings.put(ending, new Rate(total(ending), runs));
@@ -80,7 +83,7 @@ final class ArmStatistics {
                 new Rate(naiveRejections, runs),
                 looks.mean().orElseThrow(),
                 stopList(),
-                estimates == 0 ? Optional.empty() : Optional.of(estimates(level)));
+                estimates == 0 ? Optional.empty() : Optional.of(estimates()));
     }
 
     private long total(Ending ending) {
@@ -99,7 +102,7 @@ final class ArmStatistics {
         return list;
     }
 
-    private RehearsalReport.Estimates estimates(double level) {
+    private RehearsalReport.Estimates estimates() {
         return new RehearsalReport.Estimates(
                 naiveError.mean().orElseThrow(),
                 adjustedError.mean().orElseThrow(),
@@ -108,6 +111,6 @@ final class ArmStatistics {
                 new Rate(naiveCovers, estimates),
                 new Rate(repeatedCovers, estimates),
                 new Rate(stagewiseCovers, estimates),
-                level);
+                levels.mean().orElseThrow().value());
     }
 }

@@ -50,11 +50,7 @@ public final class Rehearsal {
         }
         rehearsed = RehearsedPlan.of(plan, designs, request.perDay());
         simulation = new RunSimulation(rehearsed, request, new DecisionMemo(LOOKS_REMEMBERED));
-        double[] rates = request.rates();
-        double control = rates[plan.variantIndex(plan.control().name())];
-        trueDifferences = plan.challengers().stream()
-                .mapToDouble(challenger -> rates[plan.variantIndex(challenger.name())] - control)
-                .toArray();
+        trueDifferences = simulation.trueDifferences();
     }
 
     /**
@@ -81,7 +77,7 @@ public final class Rehearsal {
                 done = Math.min(request.runs(), done + RUNS_PER_BLOCK);
                 progress.accept(done - before);
             }
-            return sum.report(rehearsed, trueDifferences, simulation.level());
+            return sum.report(rehearsed, trueDifferences);
         } finally {
             workers.shutdownNow();
         }

@@ -57,7 +57,7 @@ public record RehearsalReport(
      * @param naivePeeking runs in which an uncorrected test would have rejected at one of the looks at it
      * @param looks looks taken at it
      * @param stops number of runs by the look it ended at, ascending, and ending; look 0 stands for none
-     * @param estimates what was estimated at the last look; empty when left out or when no run had a look
+     * @param estimates what was estimated at the look that ended it; empty when left out or when no run had one
      */
     public record Arm(
             String variant,
@@ -89,7 +89,7 @@ public record RehearsalReport(
     }
 
     /**
-     * How good the estimates at the last look were, over the runs that had one.
+     * How good the estimates at the look that ended a comparison were, over the runs that had one.
      *
      * @param naiveBias mean of the observed difference less the true one
      * @param adjustedBias the same for the median-unbiased estimate
@@ -98,7 +98,8 @@ public record RehearsalReport(
      * @param naiveCoverage share of runs whose naive interval held the truth
      * @param repeatedCoverage share of runs whose repeated confidence interval did
      * @param stagewiseCoverage share of runs whose stage-wise interval did
-     * @param level what the naive and the stage-wise interval promise
+     * @param level what the naive and the stage-wise interval promise; the mean over runs, as it falls where other challengers
+     *     pass their level on
      */
     public record Estimates(
             Mean naiveBias,

@@ -8,11 +8,11 @@ import io.tallyward.engine.count.WindowTally;
 import io.tallyward.engine.count.WindowTally.Cell;
 import io.tallyward.engine.decide.DecideShard;
 import io.tallyward.engine.decide.DecisionMemo;
+import io.tallyward.engine.decide.Detail;
 import io.tallyward.engine.plan.LookSchedule;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanDigest;
 import io.tallyward.engine.plan.TestPlan.Better;
-import io.tallyward.engine.plan.TestPlan.Sides;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.service.rehearse.Follower.Challenger;
 import io.tallyward.statistics.distribution.Normal;
@@ -40,8 +40,9 @@ final class RunSimulation {
     private final DecisionMemo memo;
     private final String planDigest;
     private final int stepsAtOnce;
-    private final double naiveBound;
-    private final double level;
+    private final double[] trueDifferences;
+    private final double naiveBenefit;
+    private final double naiveHarm;
 
     RunSimulation(RehearsedPlan rehearsed, RehearsalRequest request, DecisionMemo memo) {
         this.rehearsed = rehearsed;
@@ -51,8 +52,15 @@ final class RunSimulation {
         Plan plan = rehearsed.plan();
         planDigest = PlanDigest.of(plan);
         stepsAtOnce = stepsAtOnce(rehearsed);
-        naiveBound = Normal.upperQuantile(plan.test().tailAlpha(plan.test().alpha()));
-        level = 1 - 2 * plan.test().tailAlpha(plan.alphaPerComparison());
+        naiveBenefit = Normal.upperQuantile(plan.test().benefit().alpha());
+        naiveHarm = plan.test()
+                .harm()
+                .map(harm -> -Normal.upperQuantile(harm.alpha()))
+                .orElse(Double.NEGATIVE_INFINITY);
+        double control = rates[plan.variantIndex(plan.control().name())];
+        trueDifferences = plan.challengers().stream()
+                .mapToDouble(challenger -> rates[plan.variantIndex(challenger.name())] - control)
+                .toArray();
     }
 
     /**
@@ -69,16 +77,17 @@ final class RunSimulation {
                 : 1;
     }
 
-    /** What the intervals of one comparison promise: both of its tails left out, or twice the only one. */
-    double level() {
-        return level;
+    /** True rate of each challenger minus that of the control, in the plan's order. */
+    double[] trueDifferences() {
+        return trueDifferences.clone();
     }
 
     /** One run. */
     RunResult run(long index) {
         RandomGenerator random = GENERATORS.create(mixed(mixed(request.seed()) + index));
         Traffic traffic = new Traffic(rehearsed, rates, request.fixedSplit(), random);
-        DecideShard shard = new DecideShard(List.of(rehearsed.plan()), memo);
+        DecideShard shard =
+                new DecideShard(List.of(rehearsed.plan()), memo, request.estimates() ? Detail.FULL : Detail.BARE);
         Follower follower = new Follower(rehearsed.plan());
         for (int step = 0; step < rehearsed.steps() && !follower.over(); step += stepsAtOnce) {
             shard.apply(update(traffic, step, Math.min(rehearsed.steps(), step + stepsAtOnce)));
@@ -113,35 +122,26 @@ final class RunSimulation {
     private RunResult result(Follower follower) {
         long millis = follower.endMillis() - rehearsed.startMillis(0);
         int steps = Math.toIntExact(millis / rehearsed.step().toMillis());
-        return new RunResult(
-                follower.looks(),
-                rehearsed.arrivalsBefore(steps),
-                millis,
-                follower.mismatch(),
-                follower.challengers().stream().map(this::arm).toList());
+        List<RunResult.Arm> arms = new ArrayList<>(trueDifferences.length);
+        for (int i = 0; i < trueDifferences.length; i++) {
+            arms.add(arm(follower.challengers().get(i), trueDifferences[i]));
+        }
+        return new RunResult(follower.looks(), rehearsed.arrivalsBefore(steps), millis, follower.mismatch(), arms);
     }
 
-    private RunResult.Arm arm(Challenger challenger) {
+    private RunResult.Arm arm(Challenger challenger, double trueDifference) {
         List<Comparison> looks = challenger.looks();
-        Optional<StopEstimate> estimate = request.estimates() && !looks.isEmpty()
-                ? Optional.of(StopEstimate.of(looks, truth(challenger), level))
-                : Optional.empty();
         return new RunResult.Arm(
-                challenger.ending(), looks.size(), looks.stream().anyMatch(this::naivelyRejects), estimate);
-    }
-
-    private double truth(Challenger challenger) {
-        Plan plan = rehearsed.plan();
-        return rates[challenger.variant()]
-                - rates[plan.variantIndex(plan.control().name())];
+                challenger.ending(),
+                looks.size(),
+                looks.stream().anyMatch(this::naivelyRejects),
+                looks.isEmpty() ? Optional.empty() : StopEstimate.of(looks.get(looks.size() - 1), trueDifference));
     }
 
     /** The test somebody would do who knows of no other looks and no other challengers. */
     private boolean naivelyRejects(Comparison look) {
-        Plan plan = rehearsed.plan();
-        double towardsBenefit = plan.test().better() == Better.HIGHER ? look.z() : -look.z();
-        double evidence = plan.test().sides() == Sides.TWO ? Math.abs(towardsBenefit) : towardsBenefit;
-        return evidence >= naiveBound;
+        double towardsBenefit = rehearsed.plan().test().better() == Better.HIGHER ? look.z() : -look.z();
+        return towardsBenefit >= naiveBenefit || towardsBenefit <= naiveHarm;
     }
 
     /** A bijection after which neighbours have nothing in common: variant 13 of the finalisers of Stafford (2011), recalled. */

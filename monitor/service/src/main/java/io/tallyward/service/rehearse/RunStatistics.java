@@ -64,11 +64,11 @@ final class RunStatistics {
     }
 
     /** The report on at least one run. */
-    RehearsalReport report(RehearsedPlan rehearsed, double[] trueDifferences, double level) {
+    RehearsalReport report(RehearsedPlan rehearsed, double[] trueDifferences) {
         List<RehearsalReport.Arm> reports = new ArrayList<>();
         for (int i = 0; i < trueDifferences.length; i++) {
             String name = rehearsed.plan().challengers().get(i).name();
-            reports.add(arms.get(i).report(name, trueDifferences[i], level, runs));
+            reports.add(arms.get(i).report(name, trueDifferences[i], runs));
         }
         return new RehearsalReport(
                 rehearsed.step(),

@@ -20,9 +20,9 @@ class RehearsalTest {
     @Test
     void isTheSameToTheBitForAnyNumberOfThreads() {
         String fourLooks = Quay.FOUR_ARMS.replace("every: P2D", "every: P5D");
-        RehearsalReport alone = Quay.rehearsed(fourLooks, estimating(120, 1));
-        assertEquals(alone, Quay.rehearsed(fourLooks, estimating(120, 3)));
-        assertEquals(alone, Quay.rehearsed(fourLooks, estimating(120, 2)));
+        RehearsalReport alone = Quay.rehearsed(fourLooks, estimating(110, 1));
+        assertEquals(alone, Quay.rehearsed(fourLooks, estimating(110, 3)));
+        assertEquals(alone, Quay.rehearsed(fourLooks, estimating(110, 2)));
     }
 
     private static RehearsalRequest estimating(long runs, int threads) {
@@ -45,7 +45,7 @@ class RehearsalTest {
      */
     @Test
     void keepsTheLevelWherePeekingDoesNot() {
-        RehearsalReport report = Quay.rehearsed(Quay.TEN_LOOKS, Quay.request(2_000, 0.12, 0.12));
+        RehearsalReport report = Quay.rehearsed(Quay.TEN_LOOKS, Quay.request(1_000, 0.12, 0.12));
         assertNear(0.05, report.rejection());
         assertNear(0.025, report.benefit());
         assertNear(0.025, report.harm());
@@ -62,7 +62,7 @@ class RehearsalTest {
     /** With the smallest effect worth finding: the power of the plan. */
     @Test
     void findsTheSmallestEffectAsOftenAsPlanned() {
-        RehearsalReport report = Quay.rehearsed(Quay.TEN_LOOKS, Quay.request(2_000, 0.12, 0.15));
+        RehearsalReport report = Quay.rehearsed(Quay.TEN_LOOKS, Quay.request(800, 0.12, 0.15));
         assertNear(0.8, report.benefit());
         assertEquals(0, report.harm().count());
         assertTrue(report.looks().value() < 8);
@@ -89,7 +89,7 @@ class RehearsalTest {
 
     @Test
     void keepsTheFamilyOfSeveralArms() {
-        RehearsalReport report = Quay.rehearsed(Quay.FOUR_ARMS, Quay.request(1_000, 0.12, 0.12, 0.12, 0.12));
+        RehearsalReport report = Quay.rehearsed(Quay.FOUR_ARMS, Quay.request(400, 0.12, 0.12, 0.12, 0.12));
         assertTrue(report.rejection().value()
                 < 0.05 + STANDARD_ERRORS * report.rejection().standardError());
         assertTrue(report.rejection().value() > 0.02);
@@ -102,7 +102,7 @@ class RehearsalTest {
     /** One arm stops early and is no longer shown; the split is then held against the shares of the others. */
     @Test
     void goesOnWithoutAnArmWhoseVerdictIsTold() {
-        RehearsalReport report = Quay.rehearsed(Quay.FOUR_ARMS, Quay.request(300, 0.12, 0.2, 0.12, 0.12));
+        RehearsalReport report = Quay.rehearsed(Quay.FOUR_ARMS, Quay.request(100, 0.12, 0.2, 0.12, 0.12));
         assertTrue(report.arms().get(0).looks().value()
                 < report.arms().get(1).looks().value() - 2);
         assertTrue(report.mismatch().count() <= 2);
@@ -151,7 +151,7 @@ class RehearsalTest {
     void showsWhatStoppingDoesToEstimates() {
         RehearsalReport report = Quay.rehearsed(
                 Quay.TEN_LOOKS.replace("0.03}", "0.03, spending: pocock}"),
-                new RehearsalRequest(600, 5, new double[] {0.12, 0.15}, OptionalLong.empty(), false, true, 2));
+                new RehearsalRequest(400, 5, new double[] {0.12, 0.15}, OptionalLong.empty(), false, true, 2));
         Estimates estimates = report.arms().get(0).estimates().orElseThrow();
         assertEquals(0.95, estimates.level(), 1e-12);
         assertTrue(estimates.naiveBias().value() > 5 * estimates.naiveBias().standardError());

@@ -1,101 +1,88 @@
 package io.tallyward.service.rehearse;
 
 import static org.junit.jupiter.api.Assertions.assertEquals;
-import static org.junit.jupiter.api.Assertions.assertFalse;
 import static org.junit.jupiter.api.Assertions.assertTrue;
 
+import io.tallyward.engine.record.Adjusted;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Verdict;
-import io.tallyward.statistics.boundary.BoundarySequence;
-import io.tallyward.statistics.boundary.Look;
-import io.tallyward.statistics.inference.EffectScale;
-import io.tallyward.statistics.inference.Interval;
-import io.tallyward.statistics.inference.StagewiseInference;
-import java.util.ArrayList;
-import java.util.List;
+import java.util.Optional;
 import org.junit.jupiter.api.Test;
 
 class StopEstimateTest {
 
-    private static final double MAXIMUM_INFORMATION = 250_000;
-    private static final double LEVEL = 0.95;
+    private static final double INFORMATION = 10_000;
+    private static final double OBSERVED = 0.03;
+
+    private static final Estimated DIFFERENCE = new Estimated(0.025, 0.004, 0.046);
 
     @Test
-    void needsNoAdjustmentAfterASingleLook() {
-        List<Look> looks = looks(0.4);
-        StopEstimate estimate = StopEstimate.of(comparisons(looks, 3), 0.01, LEVEL);
-        assertEquals(estimate.naive(), estimate.adjusted(), 1e-15);
-        // 3 / sqrt(0.4 * 250000) and 1.96 such errors around it: from 0.0033 to 0.0157.
-        assertEquals(0.009487, estimate.naive(), 1e-6);
-        assertTrue(estimate.naiveCovers() && estimate.stagewiseCovers());
-        assertFalse(StopEstimate.of(comparisons(looks, 3), 0.0032, LEVEL).stagewiseCovers());
-        assertFalse(StopEstimate.of(comparisons(looks, 3), 0.0158, LEVEL).naiveCovers());
+    void readsTheRecord() {
+        StopEstimate estimate = of(0.03, DIFFERENCE, -0.01, 0.07);
+        assertEquals(OBSERVED, estimate.naive());
+        assertEquals(0.025, estimate.adjusted());
+        assertEquals(0.95, estimate.level());
+        assertTrue(estimate.naiveCovers() && estimate.repeatedCovers() && estimate.stagewiseCovers());
     }
 
+    /** The standard error is 0.01, so that the naive interval goes from 0.0104 to 0.0496; 1.96 is in every textbook. */
     @Test
-    void coversWhatTheSolvedIntervalCovers() {
-        List<Look> looks = looks(0.2, 0.5, 0.7, 1.05);
-        EffectScale scale = new EffectScale(MAXIMUM_INFORMATION);
-        for (double z : new double[] {-2.5, -0.3, 1.2, 2.4, 4}) {
-            StagewiseInference inference = StagewiseInference.of(looks, z);
-            Interval interval = scale.riskDifference(inference.interval(LEVEL));
-            for (double truth : new double[] {
-                0,
-                0.001,
-                interval.lower() - 1e-9,
-                interval.lower() + 1e-9,
-                interval.upper() - 1e-9,
-                interval.upper() + 1e-9
-            }) {
-                StopEstimate estimate = StopEstimate.of(comparisons(looks, z), truth, LEVEL);
-                assertEquals(interval.contains(truth), estimate.stagewiseCovers(), () -> z + " " + truth);
-                assertEquals(scale.riskDifference(inference.medianUnbiasedDrift()), estimate.adjusted(), 1e-15);
-            }
-        }
+    void tellsWhichIntervalHoldsTheTruth() {
+        assertCovers(false, true, false, 0.05);
+        assertCovers(true, true, false, 0.0495);
+        assertCovers(true, true, true, 0.046);
+        assertCovers(false, true, true, 0.0103);
+        assertCovers(false, true, false, -0.01);
+        assertCovers(false, false, false, -0.011);
+        assertCovers(false, false, false, 0.071);
+    }
+
+    private static void assertCovers(boolean naive, boolean repeated, boolean stagewise, double truth) {
+        StopEstimate estimate = of(truth, DIFFERENCE, -0.01, 0.07);
+        assertEquals(naive, estimate.naiveCovers());
+        assertEquals(repeated, estimate.repeatedCovers());
+        assertEquals(stagewise, estimate.stagewiseCovers());
     }
 
     @Test
-    void takesALastLookThatRepeatsTheOneBeforeInItsPlace() {
-        List<Look> looks = looks(0.2, 0.5);
-        List<Look> again = new ArrayList<>(looks);
-        Look last = looks.get(1);
-        again.add(new Look(3, last.information(), 0.025, 0.025, 2, -2));
-        assertEquals(
-                StopEstimate.of(comparisons(looks, 1.9), 0.002, LEVEL).adjusted(),
-                StopEstimate.of(comparisons(again, 1.9), 0.002, LEVEL).adjusted());
+    void reachesToInfinityWhereAnEndIsOpen() {
+        StopEstimate low = of(-5, new Estimated(0.02, null, 0.04), null, 0.07);
+        assertTrue(low.stagewiseCovers() && low.repeatedCovers());
+        StopEstimate high = of(5, new Estimated(0.02, 0.01, null), 0.001, null);
+        assertTrue(high.stagewiseCovers() && high.repeatedCovers());
     }
 
-    private static List<Look> looks(double... information) {
-        BoundarySequence sequence = new BoundarySequence();
-        List<Look> looks = new ArrayList<>();
-        for (int k = 0; k < information.length; k++) {
-            double spent = 0.025 * (k + 1) / information.length;
-            looks.add(sequence.next(information[k], spent, spent));
-        }
-        return looks;
+    @Test
+    void hasNothingToReadFromALookThatEndedNothing() {
+        assertEquals(Optional.empty(), StopEstimate.of(look(null, null, null), 0));
     }
 
-    private static List<Comparison> comparisons(List<Look> looks, double z) {
-        return looks.stream().map(look -> comparison(look, z)).toList();
+    private static StopEstimate of(double truth, Estimated difference, Double lower, Double upper) {
+        Adjusted adjusted = new Adjusted(0.01, 0.95, new Estimated(2.5, 0.4, 4.6), difference, null);
+        return StopEstimate.of(look(adjusted, lower, upper), truth).orElseThrow();
     }
 
-    private static Comparison comparison(Look look, double z) {
-        double information = look.information() * MAXIMUM_INFORMATION;
-        double root = Math.sqrt(information);
+    private static Comparison look(Adjusted adjusted, Double lower, Double upper) {
         return new Comparison(
                 "wide",
-                look.number(),
-                z,
-                information,
-                look.information(),
-                look.upperSpent() + look.lowerSpent(),
-                look.upper(),
-                look.lower(),
+                3,
+                3.0,
+                INFORMATION,
+                0.5,
+                0.5,
+                0.05,
+                0.01,
+                2.9,
+                -2.9,
                 null,
-                z / root,
-                (z - look.upper()) / root,
-                (z - look.lower()) / root,
-                Verdict.CONTINUE,
+                OBSERVED,
+                lower,
+                upper,
+                null,
+                null,
+                adjusted,
+                Verdict.STOP_BENEFIT,
                 null,
                 "");
     }
