@@ -58,6 +58,7 @@ public final class CommandLineFactory {
                 .addSubcommand(new WatchCommand(environment, starter, stop))
                 .addSubcommand(new CheckCommand(environment, lookup))
                 .addSubcommand(new BoundariesCommand())
+                .addSubcommand(new RehearseCommand())
                 .addSubcommand(new ReplayCommand())
                 .setParameterExceptionHandler(CommandLineFactory::refuse);
     }

@@ -24,7 +24,7 @@ class CommandLineTest {
     }
 
     @ParameterizedTest
-    @ValueSource(strings = {"watch", "check", "boundaries", "replay"})
+    @ValueSource(strings = {"watch", "check", "boundaries", "rehearse", "replay"})
     void explainsEachCommand(String command) {
         CommandRun help = CommandRun.of(command, "--help");
         assertEquals(0, help.status());
@@ -50,6 +50,11 @@ class CommandLineTest {
         assertEnds(
                 "boundaries",
                 "  0   The design is shown.",
+                "  2   An argument or the plan cannot be used.",
+                "  3   Something unforeseen happened.");
+        assertEnds(
+                "rehearse",
+                "  0   The runs are done and summed up.",
                 "  2   An argument or the plan cannot be used.",
                 "  3   Something unforeseen happened.");
         assertEnds(
