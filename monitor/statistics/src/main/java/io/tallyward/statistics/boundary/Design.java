@@ -44,8 +44,7 @@ public record Design(
         double[] upper = boundaries.stream().mapToDouble(Look::upper).toArray();
         double[] lower = boundaries.stream().mapToDouble(Look::lower).toArray();
         ExitProfile profile = ExitProfile.of(information, upper, lower, 0, DriftForPower.greatest(information));
-        double drift =
-                DriftForPower.root(theta -> profile.at(theta).totalUpper() - request.power(), fixed, information);
+        double drift = DriftForPower.root(theta -> profile.totals(theta).upper(), request.power(), fixed, information);
         List<DesignLook> looks = boundaries.stream()
                 .map(look -> new DesignLook(look, Double.NEGATIVE_INFINITY))
                 .toList();
@@ -76,7 +75,8 @@ public record Design(
 
     private static Design withFutility(DesignRequest request, List<Look> boundaries, double fixed) {
         double drift = DriftForPower.root(
-                theta -> follow(request, boundaries, theta, new double[boundaries.size()]) - request.power(),
+                theta -> follow(request, boundaries, theta, new double[boundaries.size()]),
+                request.power(),
                 fixed,
                 request.fractions());
         double[] futility = new double[boundaries.size()];

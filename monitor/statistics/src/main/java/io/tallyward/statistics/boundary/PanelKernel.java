@@ -49,10 +49,13 @@ final class PanelKernel {
         this.masses = masses;
         this.variance = variance;
         this.targetHalf = targetHalf;
-        for (int i = 0; i < POINTS; i++) {
+        int last = POINTS * POINTS - 1;
+        for (int i = 0; i < POINTS / 2; i++) {
             for (int j = 0; j < POINTS; j++) {
                 double gap = targetHalf * Quadrature.abscissa(i) - source.half() * Quadrature.abscissa(j);
-                table[i * POINTS + j] = StrictMath.exp(-0.5 * gap * gap / variance);
+                double value = StrictMath.exp(-0.5 * gap * gap / variance);
+                table[i * POINTS + j] = value;
+                table[last - i * POINTS - j] = value;
             }
         }
         targetGrowth = exponentials(2 * source.half() * targetHalf / variance);
