@@ -121,7 +121,7 @@ final class ContinuationDensity {
         double to = StrictMath.min(upper, StrictMath.max(mean, 0) + above);
         double step = origin > 0 ? StrictMath.min(information - origin, next - information) : next - information;
         double finest = StrictMath.min(1, StrictMath.sqrt(step / information));
-        Quadrature rule = Quadrature.over(from, to, finest).scaled(root);
+        Quadrature rule = Quadrature.over(from * root, to * root, finest * root);
         masses = smear(rule);
         nodes = rule;
         origin = information;

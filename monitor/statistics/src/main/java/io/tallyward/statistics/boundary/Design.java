@@ -44,7 +44,8 @@ public record Design(
         double[] upper = boundaries.stream().mapToDouble(Look::upper).toArray();
         double[] lower = boundaries.stream().mapToDouble(Look::lower).toArray();
         ExitProfile profile = ExitProfile.of(information, upper, lower, 0, DriftForPower.greatest(information));
-        double drift = DriftForPower.root(theta -> profile.totals(theta).upper(), request.power(), fixed, information);
+        double drift =
+                DriftForPower.root(theta -> profile.upward(theta).probability(), request.power(), fixed, information);
         List<DesignLook> looks = boundaries.stream()
                 .map(look -> new DesignLook(look, Double.NEGATIVE_INFINITY))
                 .toList();

@@ -58,7 +58,7 @@ public final class DriftForPower {
                     + ", 1), that is, above the " + "probability without any drift)");
         }
         double fixed = Normal.upperQuantile(level) + Normal.quantile(power);
-        DoubleUnaryOperator powerAt = theta -> profile.totals(theta).upper();
+        DoubleUnaryOperator powerAt = theta -> profile.upward(theta).probability();
         double root = StrictMath.sqrt(information[information.length - 1]);
         // Next to the level the drift is next to nothing, and half of nothing would not be below it for sure.
         return fixed > NEXT_TO_NOTHING

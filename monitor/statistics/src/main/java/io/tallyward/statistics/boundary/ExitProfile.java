@@ -63,13 +63,12 @@ public final class ExitProfile {
     }
 
     /**
-     * Where a path ends.
+     * A way to leave.
      *
-     * @param upper probability that it ever leaves upwards first
-     * @param lower probability that it ever leaves downwards first
-     * @param upperSlope derivative of {@code upper} with respect to the drift
+     * @param probability that a path ever leaves this way first
+     * @param slope derivative of {@code probability} with respect to the drift
      */
-    public record Totals(double upper, double lower, double upperSlope) {}
+    public record Exit(double probability, double slope) {}
 
     /** The exit probabilities under a drift within the range prepared for. */
     public ExitProbabilities at(double drift) {
@@ -88,26 +87,32 @@ public final class ExitProfile {
     }
 
     /**
-     * The sums of the exit probabilities under a drift within the range prepared for. The slope is the mean of {@code X -
-     * drift t}, the score of the drift, over the paths that leave upwards, {@code X} being where and {@code t} when they do.
+     * All that leaves upwards under a drift within the range prepared for. The slope is the mean of {@code X - drift t}, the
+     * score of the drift, over the paths that do, {@code X} being where and {@code t} when.
      */
-    public Totals totals(double drift) {
+    public Exit upward(double drift) {
+        return exit(drift, 1);
+    }
+
+    /** All that leaves downwards; as above. */
+    public Exit downward(double drift) {
+        return exit(drift, -1);
+    }
+
+    private Exit exit(double drift, int side) {
         requireDrift(drift);
         Crossing crossing = new Crossing();
-        double up = 0;
-        double down = 0;
+        double probability = 0;
         double slope = 0;
         for (int k = 0; k < information.length; k++) {
-            cross(crossing, k, drift, 1);
+            cross(crossing, k, drift, side);
             double origin = origin(k);
-            up += crossing.tail();
+            probability += crossing.tail();
             slope += crossing.moment()
                     - drift * origin * crossing.tail()
-                    + StrictMath.sqrt(information[k] - origin) * crossing.density();
-            cross(crossing, k, drift, -1);
-            down += crossing.tail();
+                    + side * StrictMath.sqrt(information[k] - origin) * crossing.density();
         }
-        return new Totals(up, down, slope);
+        return new Exit(probability, slope);
     }
 
     private void requireDrift(double drift) {

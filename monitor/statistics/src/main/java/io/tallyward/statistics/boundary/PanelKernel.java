@@ -18,6 +18,8 @@ final class PanelKernel {
 
     private static final int POINTS = Quadrature.POINTS;
 
+    private static final int PAIRS = POINTS / 2;
+
     /** Rounding grows along a walk, so it starts afresh every so many panels. */
     private static final int FRESH = 16;
 
@@ -26,17 +28,22 @@ final class PanelKernel {
     private final double variance;
     private final double targetHalf;
 
-    /** The kernel within a pair of panels on top of each other, one row per target point. */
-    private final double[] table = new double[POINTS * POINTS];
+    /** The kernel within a pair of panels on top of each other, for sums and for differences of mirrored points. */
+    private final double[] even = new double[PAIRS * PAIRS];
+
+    private final double[] odd = new double[PAIRS * PAIRS];
 
     /** By how much the factor of a target or source point grows when D shrinks or grows by a panel. */
     private final double[] targetGrowth;
 
     private final double[] sourceGrowth;
 
+    private final double[] targetStart = new double[POINTS];
+    private final double[] sourceStart = new double[POINTS];
     private final double[] targetFactors = new double[POINTS];
     private final double[] sourceFactors = new double[POINTS];
-    private final double[] reweighted = new double[POINTS];
+    private final double[] together = new double[PAIRS];
+    private final double[] apart = new double[PAIRS];
 
     /**
      * @param source where the masses are; panels no wider than two standard deviations
@@ -49,13 +56,12 @@ final class PanelKernel {
         this.masses = masses;
         this.variance = variance;
         this.targetHalf = targetHalf;
-        int last = POINTS * POINTS - 1;
-        for (int i = 0; i < POINTS / 2; i++) {
-            for (int j = 0; j < POINTS; j++) {
-                double gap = targetHalf * Quadrature.abscissa(i) - source.half() * Quadrature.abscissa(j);
-                double value = StrictMath.exp(-0.5 * gap * gap / variance);
-                table[i * POINTS + j] = value;
-                table[last - i * POINTS - j] = value;
+        for (int i = 0; i < PAIRS; i++) {
+            for (int j = 0; j < PAIRS; j++) {
+                double near = within(Quadrature.abscissa(i), Quadrature.abscissa(j));
+                double mirrored = within(Quadrature.abscissa(i), -Quadrature.abscissa(j));
+                even[i * PAIRS + j] = 0.5 * (near + mirrored);
+                odd[i * PAIRS + j] = 0.5 * (near - mirrored);
             }
         }
         targetGrowth = exponentials(2 * source.half() * targetHalf / variance);
@@ -77,44 +83,66 @@ final class PanelKernel {
         for (int i = 0; i < POINTS; i++) {
             sums[at + i] = 0;
         }
+        fill(targetStart, -(centre - source.middle(start)) * targetHalf / variance);
+        fill(sourceStart, (centre - source.middle(start)) * source.half() / variance);
         walk(centre, reach, start, 1, sums, at);
-        walk(centre, reach, start - 1, -1, sums, at);
+        walk(centre, reach, start, -1, sums, at);
     }
 
+    /** Adds what comes from the panels on one side of the start; the start itself belongs to the side above. */
     private void walk(double centre, double reach, int start, int direction, double[] sums, int at) {
-        int sinceFresh = FRESH;
+        System.arraycopy(targetStart, 0, targetFactors, 0, POINTS);
+        System.arraycopy(sourceStart, 0, sourceFactors, 0, POINTS);
         for (int panel = start; panel >= 0 && panel < source.panels(); panel += direction) {
             double distance = centre - source.middle(panel);
             if (direction * distance < -reach) {
                 return;
             }
-            if (sinceFresh == FRESH) {
-                fill(targetFactors, -distance * targetHalf / variance);
-                fill(sourceFactors, distance * source.half() / variance);
-                sinceFresh = 0;
-            } else {
-                move(targetFactors, targetGrowth, direction);
-                move(sourceFactors, sourceGrowth, -direction);
+            if (panel != start) {
+                proceed(distance, direction, StrictMath.abs(panel - start) % FRESH == 0);
             }
-            sinceFresh++;
-            if (StrictMath.abs(distance) <= reach) {
+            if (StrictMath.abs(distance) <= reach && !(panel == start && direction < 0)) {
                 // Half of the exponent on either side: the whole would underflow before the product does.
                 add(panel, StrictMath.exp(-0.25 * distance * distance / variance), sums, at);
             }
         }
     }
 
+    private void proceed(double distance, int direction, boolean fresh) {
+        if (fresh) {
+            fill(targetFactors, -distance * targetHalf / variance);
+            fill(sourceFactors, distance * source.half() / variance);
+        } else {
+            move(targetFactors, targetGrowth, direction);
+            move(sourceFactors, sourceGrowth, -direction);
+        }
+    }
+
+    private double within(double targetAbscissa, double sourceAbscissa) {
+        double gap = targetHalf * targetAbscissa - source.half() * sourceAbscissa;
+        return StrictMath.exp(-0.5 * gap * gap / variance);
+    }
+
+    /** The table is the same after mirroring both points, so that half of the products do. */
     private void add(int panel, double factor, double[] sums, int at) {
         int first = panel * POINTS;
-        for (int j = 0; j < POINTS; j++) {
-            reweighted[j] = masses[first + j] * (sourceFactors[j] * factor);
+        for (int j = 0; j < PAIRS; j++) {
+            int mirrored = POINTS - 1 - j;
+            double left = masses[first + j] * (sourceFactors[j] * factor);
+            double right = masses[first + mirrored] * (sourceFactors[mirrored] * factor);
+            together[j] = left + right;
+            apart[j] = left - right;
         }
-        for (int i = 0; i < POINTS; i++) {
-            double sum = 0;
-            for (int j = 0; j < POINTS; j++) {
-                sum += table[i * POINTS + j] * reweighted[j];
+        for (int i = 0; i < PAIRS; i++) {
+            double same = 0;
+            double opposite = 0;
+            for (int j = 0; j < PAIRS; j++) {
+                same += even[i * PAIRS + j] * together[j];
+                opposite += odd[i * PAIRS + j] * apart[j];
             }
-            sums[at + i] += sum * (targetFactors[i] * factor);
+            int mirrored = POINTS - 1 - i;
+            sums[at + i] += (same + opposite) * (targetFactors[i] * factor);
+            sums[at + mirrored] += (same - opposite) * (targetFactors[mirrored] * factor);
         }
     }
 
@@ -126,7 +154,7 @@ final class PanelKernel {
 
     /** Sets each value to {@code exp(rate * abscissa)}; abscissae are symmetric. */
     private static void fill(double[] values, double rate) {
-        for (int i = 0; i < POINTS / 2; i++) {
+        for (int i = 0; i < PAIRS; i++) {
             double value = StrictMath.exp(rate * Quadrature.abscissa(i));
             values[i] = value;
             values[POINTS - 1 - i] = 1 / value;

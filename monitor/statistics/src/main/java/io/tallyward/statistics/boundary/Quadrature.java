@@ -63,15 +63,4 @@ record Quadrature(double from, double half, double[] points, double[] weights) {
     double middle(int panel) {
         return from + (2 * panel + 1) * half;
     }
-
-    /** The rule after a change of variable to {@code factor} times the old one. */
-    Quadrature scaled(double factor) {
-        double[] x = points.clone();
-        double[] w = weights.clone();
-        for (int i = 0; i < x.length; i++) {
-            x[i] *= factor;
-            w[i] *= factor;
-        }
-        return new Quadrature(from * factor, half * factor, x, w);
-    }
 }

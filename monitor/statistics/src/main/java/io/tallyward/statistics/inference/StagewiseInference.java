@@ -55,6 +55,9 @@ public final class StagewiseInference {
     /** Four steps are usual; after an odd stop, which hardly any drift explains, the line bends too much for any number. */
     private static final int MOST_STEPS = 10;
 
+    /** A quantile beyond this comes of a probability that hardly differs from 0 or 1 and says little of the way to go. */
+    private static final double TRUSTED = 8;
+
     /** The error of Newton's method is below the square of the last step, in standard errors. */
     private static final double CLOSE = 1e-6;
 
@@ -162,7 +165,7 @@ public final class StagewiseInference {
 
     /** The drift that is as likely to lie below the truth as above it, whatever the truth. */
     public double medianUnbiasedDrift() {
-        return drift(0, nearby());
+        return median(nearby());
     }
 
     /**
@@ -173,20 +176,25 @@ public final class StagewiseInference {
      */
     public Interval interval(double level) {
         Interval.requireLevel(level);
-        return interval(level, nearby());
+        return estimate(level).interval();
     }
 
     /** The median-unbiased drift with its interval at a level in (0, 1); both for little more than the price of one. */
     public Estimate estimate(double level) {
         Interval.requireLevel(level);
         ExitProfile nearby = nearby();
-        return new Estimate(drift(0, nearby), interval(level, nearby));
+        double median = median(nearby);
+        return new Estimate(median, interval(level, median, nearby));
     }
 
-    private Interval interval(double level, ExitProfile nearby) {
+    private double median(ExitProfile nearby) {
+        return drift(0, naiveDrift(), nearby);
+    }
+
+    private Interval interval(double level, double median, ExitProfile nearby) {
         double quantile = Normal.upperQuantile(0.5 * (1 - level));
-        double from = drift(-quantile, nearby);
-        double to = drift(quantile, nearby);
+        double from = drift(-quantile, median - quantile / root, nearby);
+        double to = drift(quantile, median + quantile / root, nearby);
         // At a level next to nothing both ends are the median, and rounding decides which comes first.
         return new Interval(StrictMath.min(from, to), StrictMath.max(from, to), level);
     }
@@ -202,20 +210,23 @@ public final class StagewiseInference {
      * The drift at which the probability of an end at least as extreme upwards is {@code Phi(quantile)}. Solved on the
      * scale of quantiles, where the probability of a single look is a straight line and that of several is nearly one.
      */
-    private double drift(double quantile, ExitProfile nearby) {
-        double start = (z + quantile) / root;
+    private double drift(double quantile, double start, ExitProfile nearby) {
         if (information.length == 1) {
-            return start;
+            return naiveDrift() + quantile / root;
         }
         double span = SPAN / root;
-        double drift = quantile / root;
-        for (int i = 0; i < MOST_STEPS && StrictMath.abs(drift) <= span; i++) {
-            ExitProfile.Totals totals = nearby.totals(drift);
-            double reached = quantile(totals.upper(), totals.lower());
-            double move = (quantile - reached) * Normal.density(reached) / totals.upperSlope();
-            drift += move;
+        double beyond = start - naiveDrift();
+        for (int i = 0; i < MOST_STEPS && StrictMath.abs(beyond) <= span; i++) {
+            // From the tail that is small at the end of the search.
+            ExitProfile.Exit exit = quantile > 0 ? nearby.downward(beyond) : nearby.upward(beyond);
+            double tail = Normal.quantile(StrictMath.max(0, StrictMath.min(1, exit.probability())));
+            double move = (tail + StrictMath.abs(quantile)) * -Normal.density(tail) / exit.slope();
+            if (!(StrictMath.abs(tail) < TRUSTED)) {
+                break;
+            }
+            beyond += move;
             if (StrictMath.abs(move) * root < CLOSE) {
-                return naiveDrift() + drift;
+                return naiveDrift() + beyond;
             }
         }
         return bracketed(candidate -> quantile(candidate) - quantile, start);
