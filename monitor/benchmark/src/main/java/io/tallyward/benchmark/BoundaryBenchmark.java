@@ -27,7 +27,6 @@ import org.openjdk.jmh.annotations.Warmup;
 public class BoundaryBenchmark {
 
     private static final double TAIL = 0.025;
-    private static final int MANY = 1000;
 
     /** Number of looks of a whole sequence. */
     @Param({"10", "168"})
@@ -44,28 +43,9 @@ public class BoundaryBenchmark {
         return taken;
     }
 
-    /** One more look after 999. */
-    @Benchmark
-    public Look thousandthLook(AfterMany before) {
-        return next(before.sequence.copy(), MANY, MANY);
-    }
-
-    private static Look next(BoundarySequence sequence, int k, int of) {
+    static Look next(BoundarySequence sequence, int k, int of) {
         double fraction = (double) k / of;
         double spent = SpendingFunction.obrienFlemingType().spent(TAIL, fraction);
         return sequence.next(fraction, spent, spent);
-    }
-
-    /** A sequence that has taken all looks but the last. */
-    @State(Scope.Benchmark)
-    public static class AfterMany {
-
-        final BoundarySequence sequence = new BoundarySequence();
-
-        public AfterMany() {
-            for (int k = 1; k < MANY; k++) {
-                next(sequence, k, MANY);
-            }
-        }
     }
 }

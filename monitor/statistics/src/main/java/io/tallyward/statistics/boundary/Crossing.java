@@ -11,7 +11,7 @@ import io.tallyward.statistics.distribution.Normal;
  * {@code -sum m_j u_j phi(u_j)}, both per standard deviation of the step, and the moment {@code sum m_j x_j Phi(-u_j)}. A
  * tilt {@code theta} first multiplies every mass by {@code exp(theta x_j + offset)}.
  *
- * <p>A tail's relative error is below 1e-14 where the masses' is. Mutable, not thread-safe: holds the last answer.
+ * <p>A tail's relative error is below 1e-14, or 3e-16 times the square of how far the nearest node is off if that is more. Mutable, not thread-safe: holds the last answer.
  */
 final class Crossing {
 
