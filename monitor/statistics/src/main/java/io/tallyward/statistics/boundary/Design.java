@@ -30,7 +30,7 @@ public record Design(
     }
 
     /**
-     * Plans a design. Milliseconds for a handful of looks, a second or two for 168 with futility.
+     * Plans a design. A millisecond or a few for 20 looks, some tens for 168.
      *
      * @throws IllegalArgumentException if the fractions do not ascend or the power is out of reach
      */
