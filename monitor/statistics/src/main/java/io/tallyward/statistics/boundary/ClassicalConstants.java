@@ -10,7 +10,7 @@ import org.apache.commons.math3.analysis.solvers.BrentSolver;
  * The classical two-sided tests with K equally spaced looks, planned before there were spending functions. Each is a
  * shape times one constant that gives the whole its level; {@code abs(Z_k)} at or above the boundary of look k rejects.
  *
- * <p>Constants are accurate to 1e-10. A constant takes a few milliseconds for some ten looks and a second or two for
+ * <p>Constants are accurate to 1e-10. A constant takes some milliseconds for ten looks and some hundreds for
  * {@link #MOST_LOOKS}.
  */
 public enum ClassicalConstants {

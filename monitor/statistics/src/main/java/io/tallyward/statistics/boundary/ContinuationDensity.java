@@ -20,17 +20,19 @@ final class ContinuationDensity {
     /** No density is left this far out in double precision, so nodes end here, boundary or not. */
     private static final double FARTHEST = 42;
 
-    /** Kernel values below {@code exp(-KERNEL_REACH^2/2)} of the peak, about 2e-19, are skipped. */
-    private static final double KERNEL_REACH = 9.3;
-
     /** Below this, sums over tails are not trusted and only tell that {@code z} is too far out. */
     private static final double UNDERFLOW = 1e-300;
 
-    /** Newton doubles the digits: a last move this small leaves an error far below 1e-14. */
-    private static final double CLOSE = 1e-9;
+    /** Halley triples the digits: a last move this small, in standard deviations, leaves an error far below 1e-14. */
+    private static final double CLOSE = 1e-5;
 
-    /** Some ten steps are usual; so many mean that there is no solution. */
+    /** Halley's correction at most doubles Newton's move: where it would do more, the model behind it is not to be trusted. */
+    private static final double LEAST_DENOMINATOR = 0.5;
+
+    /** Three steps are usual; so many mean that there is no solution. */
     private static final int MOST_STEPS = 200;
+
+    private static final double[] START = {0};
 
     private final double drift;
     private int looks;
@@ -47,11 +49,30 @@ final class ContinuationDensity {
     /** Information of the look that the nodes belong to; 0 before the first. */
     private double origin;
 
-    private double[] nodes = {0};
+    /** Where the masses are; null before the first look, when all is at 0. */
+    private Quadrature nodes;
+
     private double[] masses = {1};
+
+    /** Scratch space; nothing is carried over in it. */
+    private final Crossing crossing = new Crossing();
 
     ContinuationDensity(double drift) {
         this.drift = drift;
+    }
+
+    /** An independent copy. Nodes and masses are replaced from look to look, never changed, and so can be shared. */
+    ContinuationDensity copy() {
+        ContinuationDensity copy = new ContinuationDensity(drift);
+        copy.looks = looks;
+        copy.information = information;
+        copy.lower = lower;
+        copy.upper = upper;
+        copy.settled = settled;
+        copy.origin = origin;
+        copy.nodes = nodes;
+        copy.masses = masses;
+        return copy;
     }
 
     int looks() {
@@ -62,9 +83,9 @@ final class ContinuationDensity {
         return information;
     }
 
-    /** The nodes on the Brownian scale, ascending; not to be changed. */
-    double[] nodes() {
-        return nodes;
+    /** Where the masses are on the Brownian scale, ascending; not to be changed. */
+    double[] points() {
+        return nodes == null ? START : nodes.points();
     }
 
     /** The masses, one per node; not to be changed. */
@@ -100,43 +121,48 @@ final class ContinuationDensity {
         double to = StrictMath.min(upper, StrictMath.max(mean, 0) + above);
         double step = origin > 0 ? StrictMath.min(information - origin, next - information) : next - information;
         double finest = StrictMath.min(1, StrictMath.sqrt(step / information));
-        Quadrature rule = Quadrature.over(from, to, finest).scaled(root);
-        smear(rule.points(), rule.weights());
-        nodes = rule.points();
-        masses = rule.weights();
+        Quadrature rule = Quadrature.over(from * root, to * root, finest * root);
+        masses = smear(rule);
+        nodes = rule;
         origin = information;
         settled = true;
     }
 
-    /** Turns quadrature weights into masses: multiplies each by the density at its point. */
-    private void smear(double[] x, double[] m) {
+    /** The masses at the points of a rule: its weights times the density there. */
+    private double[] smear(Quadrature onto) {
+        double[] x = onto.points();
+        double[] smeared = new double[x.length];
         if (x.length == 0) {
-            return;
+            return smeared;
         }
         double step = information - origin;
-        double exponent = -0.5 / step;
-        double peak = 1 / StrictMath.sqrt(2 * StrictMath.PI * step);
-        double outermost = StrictMath.max(StrictMath.abs(x[0]), StrictMath.abs(x[x.length - 1]));
-        // What arrives far out has, most likely, come a part of the way in this one step: the band is wider by that
-        // part.
-        double band = KERNEL_REACH * StrictMath.sqrt(step) + (outermost / information + StrictMath.abs(drift)) * step;
-        int first = 0;
-        int last = 0;
-        for (int i = 0; i < x.length; i++) {
-            double centre = x[i] - drift * step;
-            while (first < nodes.length && nodes[first] < centre - band) {
-                first++;
+        if (origin == 0) {
+            for (int i = 0; i < x.length; i++) {
+                double gap = x[i] - drift * step;
+                smeared[i] = StrictMath.exp(-0.5 * gap * gap / step);
             }
-            while (last < nodes.length && nodes[last] <= centre + band) {
-                last++;
+        } else if (masses.length > 0) {
+            double outermost = StrictMath.max(StrictMath.abs(x[0]), StrictMath.abs(x[x.length - 1]));
+            double root = StrictMath.sqrt(step);
+            double band = (Crossing.KERNEL_REACH + lean(outermost, information)) * root;
+            PanelKernel kernel = new PanelKernel(nodes, masses, onto.half(), step);
+            for (int panel = 0; panel < onto.panels(); panel++) {
+                kernel.smear(onto.middle(panel) - drift * step, band, smeared, panel * Quadrature.POINTS);
             }
-            double sum = 0;
-            for (int j = first; j < last; j++) {
-                double gap = centre - nodes[j];
-                sum += masses[j] * StrictMath.exp(exponent * gap * gap);
-            }
-            m[i] *= peak * sum;
         }
+        double peak = 1 / StrictMath.sqrt(2 * StrictMath.PI * step);
+        for (int i = 0; i < x.length; i++) {
+            smeared[i] *= peak * onto.weights()[i];
+        }
+        return smeared;
+    }
+
+    /**
+     * What arrives far out has, most likely, come a part of the way in this one step: by how many of its standard
+     * deviations, at most.
+     */
+    private double lean(double farthest, double next) {
+        return (farthest / next + StrictMath.abs(drift)) * StrictMath.sqrt(next - origin);
     }
 
     /** Probability of not having stopped at any look up to the one the nodes belong to. */
@@ -168,68 +194,68 @@ final class ContinuationDensity {
         return solve(next, target, -1);
     }
 
-    private double tail(double next, double z, int sign) {
+    private double tail(double next, double z, int side) {
         if (Double.isInfinite(z)) {
-            return z * sign > 0 ? 0 : running();
+            return z * side > 0 ? 0 : running();
         }
-        double step = next - origin;
-        double root = StrictMath.sqrt(step);
-        double at = z * StrictMath.sqrt(next) - drift * step;
-        double sum = 0;
-        for (int j = 0; j < nodes.length; j++) {
-            sum += masses[j] * Normal.survival(sign * (at - nodes[j]) / root);
-        }
-        return sum;
+        cross(next, z, side);
+        return crossing.tail();
     }
 
-    private double density(double next, double z) {
+    private void cross(double next, double z, int side) {
         double step = next - origin;
-        double root = StrictMath.sqrt(step);
-        double at = z * StrictMath.sqrt(next) - drift * step;
-        double sum = 0;
-        for (int j = 0; j < nodes.length; j++) {
-            sum += masses[j] * Normal.density((at - nodes[j]) / root);
-        }
-        return sum * StrictMath.sqrt(next / step);
+        double at = z * StrictMath.sqrt(next);
+        crossing.sum(points(), masses, at - drift * step, StrictMath.sqrt(step), side, lean(StrictMath.abs(at), next));
     }
 
     /**
-     * Newton's method on the logarithm of the tail. The sub-density of z is log-concave (a Gaussian, truncated and
-     * convolved with a Gaussian, over and over), so the log tail is concave and Newton closes in from the far side
-     * without overshooting. Bisection steps in only where the tail is too small to be represented.
+     * Halley's method on the logarithm of the tail. The sub-density of z is log-concave (a Gaussian, truncated and
+     * convolved with a Gaussian, over and over), so the log tail is concave: from the far side Newton's method closes in
+     * without overshooting, and Halley's with what it knows of the bend. Bisection steps in where a move leaves the
+     * bracket or the tail is too small to be represented.
      */
-    private double solve(double next, double target, int sign) {
+    private double solve(double next, double target, int side) {
         if (!(target > 0)) {
-            return sign * Double.POSITIVE_INFINITY;
+            return side * Double.POSITIVE_INFINITY;
         }
-        double z = farSide(next, target, sign);
+        double z = farSide(next, target, side);
         if (looks == 0) {
             return z;
         }
         double logTarget = StrictMath.log(target);
+        double perDeviation = StrictMath.sqrt((next - origin) / next);
         double outer = z;
         double inner = Double.NaN;
         for (int i = 0; i < MOST_STEPS; i++) {
-            double p = tail(next, z, sign);
-            double density = density(next, z);
-            double move = (StrictMath.log(p) - logTarget) * (p / density);
+            cross(next, z, side);
+            double tail = crossing.tail();
+            boolean vanished = tail < UNDERFLOW || crossing.density() < UNDERFLOW;
+            double move = vanished ? Double.NaN : halley(StrictMath.log(tail) - logTarget);
             if (StrictMath.abs(move) < CLOSE) {
-                return z + sign * move;
+                return z + side * move * perDeviation;
             }
-            if (p > target) {
+            if (tail > target) {
                 inner = z;
             } else {
                 outer = z;
             }
-            z += sign * move;
-            if (p < UNDERFLOW || density < UNDERFLOW) {
-                z = Double.isNaN(inner) ? outer - sign : 0.5 * (inner + outer);
-            } else if (sign * (z - outer) > 0) {
+            z += side * move * perDeviation;
+            if (vanished && Double.isNaN(inner)) {
+                z = outer - side;
+            } else if (!(side * (z - outer) <= 0) || side * (z - inner) < 0) {
                 z = 0.5 * (inner + outer);
             }
         }
         throw new IllegalArgumentException("target: " + target + " at information " + next
                 + " (expected: below the probability " + running() + " of still running)");
+    }
+
+    /** How many standard deviations of the step the boundary must move outwards for the log tail to fall by so much. */
+    private double halley(double surplus) {
+        double hazard = crossing.density() / crossing.tail();
+        double newton = surplus / hazard;
+        double bend = crossing.slope() / crossing.density() + hazard;
+        return newton / StrictMath.max(LEAST_DENOMINATOR, 1 + 0.5 * newton * bend);
     }
 
     /**

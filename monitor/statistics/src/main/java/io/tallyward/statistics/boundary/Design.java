@@ -30,7 +30,7 @@ public record Design(
     }
 
     /**
-     * Plans a design. Milliseconds for a handful of looks, a second or two for 168 with futility.
+     * Plans a design. A millisecond or a few for 20 looks, some tens for 168.
      *
      * @throws IllegalArgumentException if the fractions do not ascend or the power is out of reach
      */
@@ -45,7 +45,7 @@ public record Design(
         double[] lower = boundaries.stream().mapToDouble(Look::lower).toArray();
         ExitProfile profile = ExitProfile.of(information, upper, lower, 0, DriftForPower.greatest(information));
         double drift =
-                DriftForPower.root(theta -> profile.at(theta).totalUpper() - request.power(), fixed, information);
+                DriftForPower.root(theta -> profile.upward(theta).probability(), request.power(), fixed, information);
         List<DesignLook> looks = boundaries.stream()
                 .map(look -> new DesignLook(look, Double.NEGATIVE_INFINITY))
                 .toList();
@@ -76,7 +76,8 @@ public record Design(
 
     private static Design withFutility(DesignRequest request, List<Look> boundaries, double fixed) {
         double drift = DriftForPower.root(
-                theta -> follow(request, boundaries, theta, new double[boundaries.size()]) - request.power(),
+                theta -> follow(request, boundaries, theta, new double[boundaries.size()]),
+                request.power(),
                 fixed,
                 request.fractions());
         double[] futility = new double[boundaries.size()];

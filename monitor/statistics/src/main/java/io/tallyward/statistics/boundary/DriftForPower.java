@@ -1,6 +1,8 @@
 package io.tallyward.statistics.boundary;
 
 import io.tallyward.statistics.distribution.Normal;
+import java.util.OptionalDouble;
+import java.util.function.DoubleUnaryOperator;
 import org.apache.commons.math3.analysis.UnivariateFunction;
 import org.apache.commons.math3.analysis.solvers.BrentSolver;
 
@@ -14,6 +16,15 @@ public final class DriftForPower {
     private static final double DRIFT_ACCURACY = 1e-11;
 
     private static final int MOST_EVALUATIONS = 100;
+
+    /** Five are usual. */
+    private static final int MOST_SECANT_STEPS = 10;
+
+    /** The error after a secant step is below the product of the last two, in standard errors. */
+    private static final double CLOSE = 1e-13;
+
+    /** Quantiles are cut off here, where tail probabilities underflow. */
+    private static final double FARTHEST = 38;
 
     /** Expected z at the last look up to which a drift is sought. */
     private static final double MOST_EXPECTED = 12;
@@ -47,12 +58,12 @@ public final class DriftForPower {
                     + ", 1), that is, above the " + "probability without any drift)");
         }
         double fixed = Normal.upperQuantile(level) + Normal.quantile(power);
-        UnivariateFunction surplus = theta -> profile.at(theta).totalUpper() - power;
-        // Next to the level the drift is next to nothing, and half of nothing would not be below it for sure.
+        DoubleUnaryOperator powerAt = theta -> profile.upward(theta).probability();
         double root = StrictMath.sqrt(information[information.length - 1]);
+        // Next to the level the drift is next to nothing, and half of nothing would not be below it for sure.
         return fixed > NEXT_TO_NOTHING
-                ? root(surplus, fixed, information)
-                : root(surplus, 0, NEXT_TO_NOTHING / root, information);
+                ? root(powerAt, power, fixed, information)
+                : bracketed(surplus(powerAt, power), 0, NEXT_TO_NOTHING / root, information);
     }
 
     /** Where the search for the drift ends: beyond it the power is as good as 1 unless next to nothing is spent. */
@@ -61,23 +72,64 @@ public final class DriftForPower {
     }
 
     /**
-     * The root of the surplus of power.
+     * The drift at which a power is reached. Solved on the scale of quantiles, where the power of a single look is a straight
+     * line in the drift and that of several is nearly one.
      *
+     * @param powerAt the power as a function of the drift
      * @param fixed the drift that a single look at information 1 would need
      */
-    static double root(UnivariateFunction surplus, double fixed, double[] information) {
+    static double root(DoubleUnaryOperator powerAt, double power, double fixed, double[] information) {
         // No sequential test beats the single test on the same information (Neyman and Pearson), so the search starts
         // there.
-        double high =
+        double start =
                 StrictMath.min(fixed / StrictMath.sqrt(information[information.length - 1]), greatest(information));
-        return root(surplus, 0.5 * high, high, information);
+        UnivariateFunction surplus = surplus(powerAt, power);
+        OptionalDouble quick = secant(surplus, start, information);
+        return quick.isPresent() ? quick.getAsDouble() : bracketed(surplus, 0.5 * start, start, information);
     }
 
-    /** As above, from an interval whose lower end is below the root. */
-    private static double root(UnivariateFunction surplus, double from, double to, double[] information) {
+    private static UnivariateFunction surplus(DoubleUnaryOperator powerAt, double power) {
+        double target = Normal.quantile(power);
+        return drift -> quantile(powerAt.applyAsDouble(drift)) - target;
+    }
+
+    private static double quantile(double power) {
+        double quantile = Normal.quantile(StrictMath.max(0, StrictMath.min(1, power)));
+        return StrictMath.max(-FARTHEST, StrictMath.min(FARTHEST, quantile));
+    }
+
+    /** Gives up where the line bends too much. */
+    private static OptionalDouble secant(UnivariateFunction surplus, double start, double[] information) {
+        double root = StrictMath.sqrt(information[information.length - 1]);
+        double greatest = greatest(information);
+        double before = start;
+        double atBefore = surplus.value(before);
+        double move = -atBefore / root;
+        for (int i = 0; i < MOST_SECANT_STEPS; i++) {
+            double now = before + move;
+            if (StrictMath.abs(move) * root < CLOSE) {
+                return OptionalDouble.of(now);
+            }
+            if (!(now > 0 && now <= greatest)) {
+                break;
+            }
+            double atNow = surplus.value(now);
+            double next = -atNow * move / (atNow - atBefore);
+            if (StrictMath.abs(next * move) * root * root < CLOSE) {
+                return OptionalDouble.of(now + next);
+            }
+            before = now;
+            atBefore = atNow;
+            move = next;
+        }
+        return OptionalDouble.empty();
+    }
+
+    /** The root of a surplus, from an interval whose lower end is below it. */
+    private static double bracketed(UnivariateFunction surplus, double from, double to, double[] information) {
         double greatest = greatest(information);
         double low = from;
-        double high = to;
+        double high = StrictMath.min(to, greatest);
         while (surplus.value(high) < 0) {
             if (high == greatest) {
                 throw new IllegalArgumentException(

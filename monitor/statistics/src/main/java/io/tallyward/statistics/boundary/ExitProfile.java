@@ -1,7 +1,5 @@
 package io.tallyward.statistics.boundary;
 
-import io.tallyward.statistics.distribution.Normal;
-
 /**
  * Exit probabilities for many drifts from a single pass over the looks.
  *
@@ -37,7 +35,7 @@ public final class ExitProfile {
             double below = ContinuationDensity.TRUNCATION - StrictMath.min(leastDrift, 0) * root;
             double above = ContinuationDensity.TRUNCATION + StrictMath.max(greatestDrift, 0) * root;
             density.approach(information[k], below, above);
-            nodes[k] = density.nodes();
+            nodes[k] = density.points();
             masses[k] = density.masses();
             density.stop(information[k], lower[k], upper[k]);
         }
@@ -64,34 +62,76 @@ public final class ExitProfile {
         return new ExitProfile(information.clone(), upper.clone(), lower.clone(), leastDrift, greatestDrift);
     }
 
+    /**
+     * A way to leave.
+     *
+     * @param probability that a path ever leaves this way first
+     * @param slope derivative of {@code probability} with respect to the drift
+     */
+    public record Exit(double probability, double slope) {}
+
     /** The exit probabilities under a drift within the range prepared for. */
     public ExitProbabilities at(double drift) {
+        requireDrift(drift);
+        int looks = information.length;
+        double[] up = new double[looks];
+        double[] down = new double[looks];
+        Crossing crossing = new Crossing();
+        for (int k = 0; k < looks; k++) {
+            cross(crossing, k, drift, 1);
+            up[k] = crossing.tail();
+            cross(crossing, k, drift, -1);
+            down[k] = crossing.tail();
+        }
+        return new ExitProbabilities(information, up, down);
+    }
+
+    /**
+     * All that leaves upwards under a drift within the range prepared for. The slope is the mean of {@code X - drift t}, the
+     * score of the drift, over the paths that do, {@code X} being where and {@code t} when.
+     */
+    public Exit upward(double drift) {
+        return exit(drift, 1);
+    }
+
+    /** All that leaves downwards; as above. */
+    public Exit downward(double drift) {
+        return exit(drift, -1);
+    }
+
+    private Exit exit(double drift, int side) {
+        requireDrift(drift);
+        Crossing crossing = new Crossing();
+        double probability = 0;
+        double slope = 0;
+        for (int k = 0; k < information.length; k++) {
+            cross(crossing, k, drift, side);
+            double origin = origin(k);
+            probability += crossing.tail();
+            slope += crossing.moment()
+                    - drift * origin * crossing.tail()
+                    + side * StrictMath.sqrt(information[k] - origin) * crossing.density();
+        }
+        return new Exit(probability, slope);
+    }
+
+    private void requireDrift(double drift) {
         if (!(drift >= leastDrift && drift <= greatestDrift)) {
             throw new IllegalArgumentException(
                     "drift: " + drift + " (expected: in [" + leastDrift + ", " + greatestDrift + "])");
         }
-        int looks = information.length;
-        double[] up = new double[looks];
-        double[] down = new double[looks];
-        double origin = 0;
-        for (int k = 0; k < looks; k++) {
-            double step = information[k] - origin;
-            double root = StrictMath.sqrt(step);
-            double high = (upper[k] * StrictMath.sqrt(information[k]) - drift * step) / root;
-            double low = (lower[k] * StrictMath.sqrt(information[k]) - drift * step) / root;
-            double offset = -0.5 * drift * drift * origin;
-            for (int j = 0; j < nodes[k].length; j++) {
-                double from = nodes[k][j] / root;
-                double mass = masses[k][j] * StrictMath.exp(drift * nodes[k][j] + offset);
-                if (upper[k] < Double.POSITIVE_INFINITY) {
-                    up[k] += mass * Normal.survival(high - from);
-                }
-                if (lower[k] > Double.NEGATIVE_INFINITY) {
-                    down[k] += mass * Normal.cdf(low - from);
-                }
-            }
-            origin = information[k];
-        }
-        return new ExitProbabilities(information, up, down);
+    }
+
+    private double origin(int k) {
+        return k == 0 ? 0 : information[k - 1];
+    }
+
+    private void cross(Crossing crossing, int k, double drift, int side) {
+        double origin = origin(k);
+        double step = information[k] - origin;
+        double root = StrictMath.sqrt(step);
+        double bound = (side > 0 ? upper[k] : lower[k]) * StrictMath.sqrt(information[k]);
+        double lean = (StrictMath.abs(bound) / information[k] + StrictMath.abs(drift)) * root;
+        crossing.sum(nodes[k], masses[k], bound - drift * step, root, side, lean, drift, -0.5 * drift * drift * origin);
     }
 }

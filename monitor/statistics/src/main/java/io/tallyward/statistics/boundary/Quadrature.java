@@ -4,18 +4,20 @@ import org.apache.commons.math3.analysis.integration.gauss.GaussIntegrator;
 import org.apache.commons.math3.analysis.integration.gauss.GaussIntegratorFactory;
 
 /**
- * A composite Gauss-Legendre rule.
+ * A composite Gauss-Legendre rule on panels of equal width.
  *
- * @param points ascending
+ * @param from where the first panel begins
+ * @param half half the width of a panel
+ * @param points ascending, {@link #POINTS} to a panel
  * @param weights one per point
  */
-record Quadrature(double[] points, double[] weights) {
+record Quadrature(double from, double half, double[] points, double[] weights) {
 
     /**
      * Twelve points for every two standard deviations of the narrower neighbouring kernel. Boundaries then agree with
      * rules of sixteen and twenty points, which the reference files used, to 6e-14 in z over up to 168 looks.
      */
-    private static final int POINTS = 12;
+    static final int POINTS = 12;
 
     private static final double PANEL_WIDTH = 2;
 
@@ -33,7 +35,7 @@ record Quadrature(double[] points, double[] weights) {
     /** The rule over [from, to], fit for kernels of standard deviation {@code finest}; empty if the interval is. */
     static Quadrature over(double from, double to, double finest) {
         if (!(from < to)) {
-            return new Quadrature(new double[0], new double[0]);
+            return new Quadrature(from, 1, new double[0], new double[0]);
         }
         int panels = (int) StrictMath.max(1, StrictMath.ceil((to - from) / (PANEL_WIDTH * finest)));
         double half = 0.5 * (to - from) / panels;
@@ -46,17 +48,19 @@ record Quadrature(double[] points, double[] weights) {
                 weights[panel * POINTS + i] = half * COEFFICIENTS[i];
             }
         }
-        return new Quadrature(points, weights);
+        return new Quadrature(from, half, points, weights);
     }
 
-    /** The rule after a change of variable to {@code factor} times the old one. */
-    Quadrature scaled(double factor) {
-        double[] x = points.clone();
-        double[] w = weights.clone();
-        for (int i = 0; i < x.length; i++) {
-            x[i] *= factor;
-            w[i] *= factor;
-        }
-        return new Quadrature(x, w);
+    /** The position of a point within its panel, from -1 to 1; those of mirrored points differ in sign only. */
+    static double abscissa(int point) {
+        return ABSCISSAE[point];
+    }
+
+    int panels() {
+        return points.length / POINTS;
+    }
+
+    double middle(int panel) {
+        return from + (2 * panel + 1) * half;
     }
 }

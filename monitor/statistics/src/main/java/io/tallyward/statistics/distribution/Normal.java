@@ -36,6 +36,11 @@ public final class Normal {
         return x >= 0 ? tail(x) : 1 - tail(-x);
     }
 
+    /** Mills' ratio, {@link #survival} over {@link #density}, for {@code x >= 0}; relative error below 1e-15. */
+    public static double millsRatio(double x) {
+        return 1 / hazard(x);
+    }
+
     /** The natural logarithm of {@link #survival}; finite wherever {@code x*x} is. */
     public static double logSurvival(double x) {
         if (x <= 0) {

@@ -37,6 +37,24 @@ class BoundarySequenceTest {
     }
 
     @Test
+    void continuesBitForBitFromACopyAndLeavesTheOriginalAlone() {
+        Random random = new Random(SEED + 3);
+        for (int run = 0; run < 20; run++) {
+            List<Look> whole = randomLooks(random, 3 + random.nextInt(8));
+            BoundarySequence original = new BoundarySequence();
+            for (Look look : whole) {
+                BoundarySequence ahead = original.copy();
+                ahead.next(look.information() * 1.5, look.upperSpent(), look.lowerSpent());
+                BoundarySequence copy = original.copy();
+                String where = "seed " + (SEED + 3) + ", run " + run + ", look " + look.number();
+                assertEquals(look, copy.next(look.information(), look.upperSpent(), look.lowerSpent()), where);
+                assertEquals(look, original.next(look.information(), look.upperSpent(), look.lowerSpent()), where);
+                assertEquals(look.number(), ahead.looks(), where);
+            }
+        }
+    }
+
+    @Test
     void mirrorsItselfWhenTheTailsAreSwapped() {
         Random random = new Random(SEED + 1);
         for (int run = 0; run < 20; run++) {

@@ -9,6 +9,7 @@ import io.tallyward.statistics.ReferenceTable.Row;
 import io.tallyward.statistics.distribution.Normal;
 import java.util.Arrays;
 import java.util.Random;
+import java.util.function.DoubleUnaryOperator;
 import org.junit.jupiter.api.Test;
 
 class ExitProbabilitiesTest {
@@ -21,6 +22,9 @@ class ExitProbabilitiesTest {
 
     /** Published error rates are printed with three decimals. */
     private static final double PRINTED = 5e-4;
+
+    /** Absolute; rounding of 1e-15 over twice 1e-3, and a fifth derivative below 10. */
+    private static final double SLOPE = 5e-12;
 
     private static final long SEED = 7;
 
@@ -103,6 +107,32 @@ class ExitProbabilitiesTest {
             assertArrayEquals(exits.upper(), mirrored.lower(), PROBABILITY, "seed " + SEED + ", run " + run);
             assertArrayEquals(exits.lower(), mirrored.upper(), PROBABILITY, "seed " + SEED + ", run " + run);
         }
+    }
+
+    /** The slopes against differences of fourth order, whose own error is some 1e-12. */
+    @Test
+    void profileKnowsTotalsAndTheirSlopes() {
+        double[] t = {0.2, 0.23, 0.5, 1};
+        double[] upper = {4, Double.POSITIVE_INFINITY, 2.8, 2};
+        double[] lower = {-3, -2.5, Double.NEGATIVE_INFINITY, -1.2};
+        ExitProfile profile = ExitProfile.of(t, upper, lower, -6, 6);
+        for (double drift : new double[] {-4, -0.3, 0, 2.8, 5}) {
+            ExitProbabilities exits = ExitProbabilities.of(t, upper, lower, drift);
+            String where = "drift " + drift;
+            assertEquals(exits.totalUpper(), profile.upward(drift).probability(), PROBABILITY, where);
+            assertEquals(exits.totalLower(), profile.downward(drift).probability(), PROBABILITY, where);
+            double up = slope(theta -> profile.upward(theta).probability(), drift);
+            double down = slope(theta -> profile.downward(theta).probability(), drift);
+            assertEquals(up, profile.upward(drift).slope(), SLOPE, where);
+            assertEquals(down, profile.downward(drift).slope(), SLOPE, where);
+        }
+    }
+
+    private static double slope(DoubleUnaryOperator of, double at) {
+        double h = 1e-3;
+        double near = of.applyAsDouble(at + h) - of.applyAsDouble(at - h);
+        double far = of.applyAsDouble(at + 2 * h) - of.applyAsDouble(at - 2 * h);
+        return (8 * near - far) / (12 * h);
     }
 
     @Test

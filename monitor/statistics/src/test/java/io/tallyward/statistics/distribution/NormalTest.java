@@ -27,6 +27,9 @@ class NormalTest {
                 assertClose(row.number("density"), Normal.density(x), TAIL, "density at " + x);
                 assertClose(row.number("cdf"), Normal.cdf(x), TAIL, "cdf at " + x);
                 assertClose(row.number("survival"), Normal.survival(x), TAIL, "survival at " + x);
+                // The ratio is the same from either side of 0.
+                double ratio = Math.min(row.number("cdf"), row.number("survival")) / row.number("density");
+                assertClose(ratio, Normal.millsRatio(Math.abs(x)), TAIL, "Mills' ratio at " + x);
             }
         });
     }

@@ -2,14 +2,12 @@ package io.tallyward.statistics.inference;
 
 import static org.junit.jupiter.api.Assertions.assertEquals;
 import static org.junit.jupiter.api.Assertions.assertThrows;
-import static org.junit.jupiter.api.Assertions.assertTimeout;
 import static org.junit.jupiter.api.Assertions.assertTrue;
 
 import io.tallyward.statistics.boundary.BoundarySequence;
 import io.tallyward.statistics.boundary.Look;
 import io.tallyward.statistics.distribution.Normal;
 import io.tallyward.statistics.spending.SpendingFunction;
-import java.time.Duration;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Random;
@@ -157,15 +155,33 @@ class StagewiseInferenceTest {
     }
 
     @Test
-    void isQuickForManyLooks() {
+    void putsTheEndsWhereTheirProbabilitySaysAfterManyLooks() {
         double[] t = new double[60];
         for (int k = 0; k < t.length; k++) {
             t[k] = (k + 1.0) / t.length;
         }
-        List<Look> looks = looks(LATE, 0.025, 0.025, t);
-        // Half a second where this was written; the limit is generous for a busy machine.
-        assertTimeout(
-                Duration.ofSeconds(10), () -> StagewiseInference.of(looks, 2.3).estimate(0.95));
+        StagewiseInference stop = StagewiseInference.of(looks(LATE, 0.025, 0.025, t), 2.3);
+        Estimate estimate = stop.estimate(0.95);
+        assertEquals(0.5, stop.pUpper(estimate.value()), PROBABILITY);
+        assertEquals(0.025, stop.pUpper(estimate.interval().lower()), PROBABILITY);
+        assertEquals(0.975, stop.pUpper(estimate.interval().upper()), PROBABILITY);
+    }
+
+    /** A path that should have stopped long before, in either direction, and levels far beyond the usual. */
+    @Test
+    void findsDriftsFarFromTheNaiveOne() {
+        List<Look> looks = looks(EARLY, 0.025, 0.025, 0.2, 0.4, 0.6, 0.8, 1);
+        for (double z : new double[] {-9, -6, 6, 9}) {
+            StagewiseInference stop = StagewiseInference.of(looks, z);
+            double median = stop.medianUnbiasedDrift();
+            assertEquals(0.5, stop.pUpper(median), 1e-10, "z " + z);
+            assertTrue(Math.abs(median) < Math.abs(z), "z " + z + ", median " + median);
+        }
+        StagewiseInference stop = StagewiseInference.of(looks, 2.2);
+        Interval wide = stop.interval(1 - 2e-9);
+        assertEquals(1e-9, stop.pUpper(wide.lower()), 1e-15);
+        assertEquals(1 - 1e-9, stop.pUpper(wide.upper()), 1e-15);
+        assertEquals(stop.interval(0.9), stop.estimate(0.9).interval());
     }
 
     /** Far out, tails count relatively: 15 standard deviations, against the same after looks that hardly matter. */
