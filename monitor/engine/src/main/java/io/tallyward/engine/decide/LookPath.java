@@ -99,7 +99,7 @@ final class LookPath {
         return new Bounds(
                 look,
                 request.betaSpent() > 0 ? futility(request, look) : Double.NEGATIVE_INFINITY,
-                request.end() == null ? Double.POSITIVE_INFINITY : critical(request.end(), look));
+                request.end() == null ? Double.POSITIVE_INFINITY : critical(request.end()));
     }
 
     private double futility(Request request, Look look) {
@@ -117,10 +117,8 @@ final class LookPath {
         return futility.next(look.information(), benefit(look), request.betaSpent());
     }
 
-    private double critical(TailSpending end, Look look) {
-        List<Look> soFar = new ArrayList<>(looks());
-        soFar.add(look);
-        return benefit(BoundarySequence.resume(soFar).next(1, end.upper(), end.lower()));
+    private double critical(TailSpending end) {
+        return benefit(boundaries.copy().next(1, end.upper(), end.lower()));
     }
 
     private double benefit(Look look) {
