@@ -28,6 +28,11 @@ public final class SequentialSplitTest {
     /** Within this of 0, {@code h} is summed as a series; beyond, its closed form loses no more than two digits. */
     private static final double NEAR = 0.1;
 
+    /** Beyond this, quotients of counts and concentration leave the range of a double. */
+    private static final double LEAST = 1e-100;
+
+    private static final double MOST = 1e100;
+
     private SequentialSplitTest() {}
 
     /**
@@ -40,8 +45,9 @@ public final class SequentialSplitTest {
      * @return 0 for no counts; positive values speak against the planned split
      */
     public static double logBayesFactor(double concentration, double[] shares, long[] counts) {
-        if (!(concentration > 0 && concentration < Double.POSITIVE_INFINITY)) {
-            throw new IllegalArgumentException("concentration: " + concentration + " (expected: positive and finite)");
+        if (!(concentration >= LEAST && concentration <= MOST)) {
+            throw new IllegalArgumentException(
+                    "concentration: " + concentration + " (expected: in [" + LEAST + ", " + MOST + "])");
         }
         double[] share = Shares.normalised(shares, counts);
         double total = Shares.total(counts);
