@@ -13,8 +13,7 @@ import java.util.Optional;
  * variance of {@code p1 - p0} at the most likely rates that differ by {@code d0}, all per stratum: {@code difference = sum w
  * (p1 - p0) / sum w}, {@code information = (sum w)^2 / sum w^2 V}, {@code z = (difference - d0) sqrt(information)}, with the
  * sign reversed if a rise is guarded against. With {@code d0 = 0} this would be {@link StratifiedComparison}, whose weights
- * it shares (as Mantel and Haenszel's, fixed by the counts of trials alone, so that the increments of z over looks are as
- * good as independent).
+ * it shares: they depend on the counts of trials alone, so that what later looks add is as good as independent.
  *
  * <p>Unlike the test of no difference it is defined from the first trials on, whether or not there are successes. Error of z
  * below {@code 1e-14 |z| + 2e-16 |d0| sqrt(information)}.

@@ -13,9 +13,10 @@ import java.util.Optional;
  * all per stratum: {@code difference = sum w (p1 - p0) / sum w}, {@code information = (sum w)^2 / sum w p (1 - p)}, and
  * {@code z = difference sqrt(information)}.
  *
- * <p>Weights depend on the counts of trials alone, so rates that drift in both arms alike, or a ramp of the allocation,
- * leave z as it is. Relative error of all values below 2e-14; of z relative to 1e-6 standard deviations at least, as
- * differences of nearly equal rates over several strata may cancel.
+ * <p>Weights depend on the counts of trials alone, so neither rates that drift in both arms alike nor a ramp of the
+ * allocation can fake a difference. Over strata of unlike rates {@code sum w p (1 - p)}, by which independent increments
+ * of {@code z} add up, and {@code information} are two clocks; with one rate throughout they are one. Relative error of
+ * all values below 2e-14; of z relative to 1e-6 at least, as differences may cancel over strata.
  *
  * @param z the statistic of variant minus control; standard normal without an effect
  * @param difference the weighted difference of success rates, variant minus control; in [-1, 1]
