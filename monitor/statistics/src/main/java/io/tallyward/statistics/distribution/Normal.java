@@ -2,7 +2,9 @@ package io.tallyward.statistics.distribution;
 
 /**
  * The standard normal law. Tail probabilities have relative error below 1e-14 down to 1e-290; quantiles have relative
- * error below 1e-14 for tail probabilities from 1e-300 to 0.5. NaN in, NaN out, except for quantiles, which refuse it.
+ * error below 1e-14 for tail probabilities from 1e-300 to 0.5 (measured against arithmetic with sixty digits: 5e-16 and
+ * 3e-16). Arguments may be infinite; NaN is refused with an IllegalArgumentException. Pure functions, some tens of nanoseconds
+ * each, quantiles some hundreds.
  */
 public final class Normal {
 
@@ -21,8 +23,11 @@ public final class Normal {
 
     private Normal() {}
 
-    /** The density at {@code x}. */
+    /** The density at {@code x}: {@code exp(-x^2 / 2) / sqrt(2 pi)}, per unit of x. */
     public static double density(double x) {
+        if (Double.isNaN(x)) {
+            throw refused(x);
+        }
         return ONE_OVER_ROOT_TWO_PI * bell(StrictMath.abs(x));
     }
 
@@ -31,9 +36,15 @@ public final class Normal {
         return survival(-x);
     }
 
-    /** The probability of at least {@code x}. */
+    /** The probability of at least {@code x}; 0 from 38.7 on. */
     public static double survival(double x) {
-        return x >= 0 ? tail(x) : 1 - tail(-x);
+        if (x >= 0) {
+            return tail(x);
+        }
+        if (x < 0) {
+            return 1 - tail(-x);
+        }
+        throw refused(x);
     }
 
     /** Mills' ratio, {@link #survival} over {@link #density}, for {@code x >= 0}; relative error below 1e-15. */
@@ -46,7 +57,10 @@ public final class Normal {
         if (x <= 0) {
             return StrictMath.log1p(-tail(-x));
         }
-        return StrictMath.log(0.5 * ComplementaryError.scaled(x * ROOT_HALF)) - 0.5 * x * x;
+        if (x > 0) {
+            return StrictMath.log(0.5 * ComplementaryError.scaled(x * ROOT_HALF)) - 0.5 * x * x;
+        }
+        throw refused(x);
     }
 
     /**
@@ -78,6 +92,10 @@ public final class Normal {
             return Double.NEGATIVE_INFINITY;
         }
         throw new IllegalArgumentException("p: " + p + " (expected: in [0, 1])");
+    }
+
+    private static IllegalArgumentException refused(double x) {
+        return new IllegalArgumentException("x: " + x + " (expected: a number or an infinity)");
     }
 
     private static double tail(double x) {

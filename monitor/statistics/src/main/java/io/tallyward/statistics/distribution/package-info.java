@@ -7,5 +7,8 @@
  *
  * <p>Everything here uses {@link java.lang.StrictMath}: the same arguments give the same bits on every machine, which is
  * what lets a decision record be checked elsewhere.
+ *
+ * <p>What is out of its range, NaN included, is refused with an IllegalArgumentException that reads {@code name: value
+ * (expected: range)}. Everything here is a value or a pure function, and thread-safe.
  */
 package io.tallyward.statistics.distribution;

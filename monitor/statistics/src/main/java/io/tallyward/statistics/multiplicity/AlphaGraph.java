@@ -58,17 +58,29 @@ public record AlphaGraph(List<Double> weights, List<List<Double>> transitions) {
         }
     }
 
-    /** Even shares, nothing passed on: Bonferroni's split. */
+    /**
+     * Even shares, nothing passed on: Bonferroni's split.
+     *
+     * @param hypotheses number of them, from 1 to 200
+     */
     public static AlphaGraph bonferroni(int hypotheses) {
         return even(hypotheses, 0);
     }
 
-    /** Even shares, passed on evenly: Holm's procedure. */
+    /**
+     * Even shares, passed on evenly: Holm's procedure (1979).
+     *
+     * @param hypotheses number of them, from 1 to 200
+     */
     public static AlphaGraph holm(int hypotheses) {
         return even(hypotheses, hypotheses > 1 ? 1.0 / (hypotheses - 1) : 0);
     }
 
-    /** All to the first, and on to the next when it is rejected: tests in a fixed order. */
+    /**
+     * All to the first, and on to the next when it is rejected: tests in a fixed order.
+     *
+     * @param hypotheses number of them, from 1 to 200
+     */
     public static AlphaGraph fixedSequence(int hypotheses) {
         requireSize(hypotheses);
         List<Double> weights = new ArrayList<>(Collections.nCopies(hypotheses, 0.0));

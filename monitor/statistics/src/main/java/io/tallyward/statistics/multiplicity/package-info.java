@@ -7,5 +7,8 @@
  * io.tallyward.statistics.multiplicity.Dunnett} uses that comparisons with one control are correlated; it is exact, but for
  * a single look. {@link io.tallyward.statistics.multiplicity.AdjustedProbability} restates p-values so that each can be
  * held against alpha itself.
+ *
+ * <p>What is out of its range, NaN included, is refused with an IllegalArgumentException that reads {@code name: value
+ * (expected: range)}. Everything here is a value or a pure function, and thread-safe.
  */
 package io.tallyward.statistics.multiplicity;

@@ -67,6 +67,26 @@ final class ConstrainedRates {
         return to;
     }
 
+    /**
+     * The variance of the difference at the most likely rates that differ by {@code d}.
+     *
+     * @param stratum with trials in both arms
+     * @param d in (-1, 1)
+     */
+    static double variance(Stratum stratum, double d) {
+        return variance(
+                stratum.successes(),
+                (double) stratum.trials() - stratum.successes(),
+                stratum.controlSuccesses(),
+                (double) stratum.controlTrials() - stratum.controlSuccesses(),
+                d);
+    }
+
+    /** Likewise, for successes x and failures y that are expected and need not be whole. */
+    static double variance(double x1, double y1, double x0, double y0, double d) {
+        return new ConstrainedRates(x1, y1, x0, y0).variance(d, 1 - d, 1 + d);
+    }
+
     /** One minus the observed difference, rounded once. */
     private static double room(Stratum stratum) {
         BigInteger n1 = BigInteger.valueOf(stratum.trials());

@@ -36,6 +36,38 @@ public record ZStatistic(double z) {
         return StratifiedComparison.of(List.of(stratum)).map(comparison -> new ZStatistic(comparison.z()));
     }
 
+    /**
+     * The comparison of two proportions with each arm's own variance (Wald): {@code (p1 - p0) / sqrt(p1 (1 - p1) / n1 + p0 (1
+     * - p0) / n0)}. With equal arms never nearer to 0 than the pooled one; rejects too often for small counts. Relative error
+     * below 2e-14.
+     *
+     * @return empty while an arm has no trials, or each arm's trials all ended alike
+     */
+    public static Optional<ZStatistic> unpooled(Stratum stratum) {
+        return RateDifference.of(stratum).flatMap(RateDifference::z);
+    }
+
+    /**
+     * The comparison of two proportions by their ratio: {@code ln(p1 / p0) / sqrt(1/x1 - 1/n1 + 1/x0 - 1/n0)}, after Katz,
+     * Baptista, Azen and Pike (1978, recalled). The interval of {@link RateRatio} leaves out 1 where this is beyond the
+     * interval's own number of standard errors. Relative error below 2e-14, that of nearly equal rates included.
+     *
+     * @return empty while an arm has no success, or all trials succeeded
+     */
+    public static Optional<ZStatistic> ratio(Stratum stratum) {
+        Optional<RateRatio> ratio = RateRatio.of(stratum);
+        double error = ratio.map(found -> found.logStandardError().orElse(0)).orElse(0.0);
+        if (!(error > 0)) {
+            return Optional.empty();
+        }
+        double change = StratifiedComparison.crossDifference(stratum)
+                / ((double) stratum.trials() * stratum.controlSuccesses());
+        double log = StrictMath.abs(change) < 0.5
+                ? StrictMath.log1p(change)
+                : StrictMath.log(ratio.orElseThrow().value());
+        return Optional.of(new ZStatistic(log / error));
+    }
+
     /** The probability of at least {@code z}: small if the variant has the higher rate. 0 below 1e-308 or so. */
     public double pGreater() {
         return Normal.survival(z);

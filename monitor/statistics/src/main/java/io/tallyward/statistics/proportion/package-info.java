@@ -10,7 +10,13 @@
  * {@link io.tallyward.statistics.proportion.ZStatistic}, {@link io.tallyward.statistics.proportion.RateDifference}, {@link
  * io.tallyward.statistics.proportion.RateRatio} and the intervals of {@link
  * io.tallyward.statistics.proportion.ScoreInterval}; over strata {@link
- * io.tallyward.statistics.proportion.MantelHaenszelTest} and the estimates of a common effect. Where the data say nothing
+ * io.tallyward.statistics.proportion.MantelHaenszelTest} and the estimates of a common effect. Guardrails, which must not
+ * get worse by a {@link io.tallyward.statistics.proportion.Margin} or more, are judged by {@link
+ * io.tallyward.statistics.proportion.NonInferiority} and planned by {@link
+ * io.tallyward.statistics.proportion.MarginPlan}. Where the data say nothing
  * the answer is an empty optional, never a number.
+ *
+ * <p>What is out of its range, NaN included, is refused with an IllegalArgumentException that reads {@code name: value
+ * (expected: range)}. Everything here is a value or a pure function, and thread-safe.
  */
 package io.tallyward.statistics.proportion;

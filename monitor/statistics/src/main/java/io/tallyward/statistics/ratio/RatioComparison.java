@@ -29,7 +29,18 @@ public record RatioComparison(RatioEstimate variant, RatioEstimate control, doub
      * @param value natural logarithm of the ratio of ratios
      * @param standardError 0 or more
      */
-    public record LogRatio(double value, double standardError) {}
+    public record LogRatio(double value, double standardError) {
+
+        public LogRatio {
+            if (!(StrictMath.abs(value) < Double.POSITIVE_INFINITY)) {
+                throw new IllegalArgumentException("value: " + value + " (expected: finite)");
+            }
+            if (!(standardError >= 0 && standardError < Double.POSITIVE_INFINITY)) {
+                throw new IllegalArgumentException(
+                        "standardError: " + standardError + " (expected: 0 or more, finite)");
+            }
+        }
+    }
 
     /**
      * Compares.

@@ -73,7 +73,11 @@ public record UnitSums(
         return new UnitSums(1, x, y, x.multiply(x), x.multiply(y), y.multiply(y));
     }
 
-    /** The sums over the units of both. */
+    /**
+     * The sums over the units of both.
+     *
+     * @throws IllegalArgumentException if there are more than 2^53 units in all
+     */
     public UnitSums plus(UnitSums other) {
         return new UnitSums(
                 units + other.units,

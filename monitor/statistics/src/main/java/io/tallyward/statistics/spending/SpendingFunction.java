@@ -3,6 +3,9 @@ package io.tallyward.statistics.spending;
 /**
  * Cumulative error that may be spent by a fraction of the planned information. Implementations are values: equal if of
  * one family with one parameter, immutable, and free of state.
+ *
+ * <p>Relative error below 1e-14, but for the O'Brien-Fleming type far out in the tail: 1e-16 in the quantile of the level is
+ * 1e-13 in a tail thirty standard deviations away (measured over the reference designs: 2e-13).
  */
 public sealed interface SpendingFunction permits SpendingFamily {
 
@@ -10,22 +13,28 @@ public sealed interface SpendingFunction permits SpendingFamily {
      * The cumulative error spent: 0 at fraction 0, exactly {@code level} from fraction 1 on, never falling between.
      *
      * @param level the level of one tail, in (0, 1)
-     * @param fraction information over planned information, 0 or more
+     * @param fraction information over planned information, or another clock's time over its planned end; 0 or more, may be
+     *     infinite
+     * @throws IllegalArgumentException if the level or the fraction is out of range
      */
     double spent(double level, double fraction);
 
-    /** Spends almost nothing early: boundaries that fall like one over the root of the fraction. */
+    /**
+     * Spends almost nothing early: boundaries that fall like one over the root of the fraction. {@code 2 (1 - Phi(z / sqrt
+     * t))}, {@code z} being the upper {@code level/2} quantile (Lan and DeMets 1983).
+     */
     static SpendingFunction obrienFlemingType() {
         return new SpendingFamily.ObrienFlemingType();
     }
 
-    /** Spends early: boundaries that stay nearly level. */
+    /** Spends early: boundaries that stay nearly level. {@code level ln(1 + (e - 1) t)} (Lan and DeMets 1983). */
     static SpendingFunction pocockType() {
         return new SpendingFamily.PocockType();
     }
 
     /**
-     * An exponential family between and beyond the two classical shapes.
+     * An exponential family between and beyond the two classical shapes: {@code level (1 - exp(-gamma t)) / (1 -
+     * exp(-gamma))} (Hwang, Shih and DeCani 1990). With gamma -4 close to the O'Brien-Fleming type, with 1 to the Pocock type.
      *
      * @param gamma negative spends late, 0 evenly, positive early; in [-40, 40]
      */
@@ -34,7 +43,7 @@ public sealed interface SpendingFunction permits SpendingFamily {
     }
 
     /**
-     * A power of the fraction.
+     * A power of the fraction: {@code level t^rho} (Kim and DeMets 1987). With rho 3 close to the O'Brien-Fleming type.
      *
      * @param rho the power, in (0, 100]; 1 spends evenly, more spends late
      */

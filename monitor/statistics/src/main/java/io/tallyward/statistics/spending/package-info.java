@@ -12,5 +12,8 @@
  * ({@link io.tallyward.statistics.spending.SpendingFunction#startingAt}). The fraction need not be one of information: a
  * function of elapsed time serves as well (Lan and DeMets, "Group sequential procedures: calendar versus information
  * time", Statistics in Medicine 8 (1989) 1191-1198, recalled), as boundaries ask only for what has been spent.
+ *
+ * <p>What is out of its range, NaN included, is refused with an IllegalArgumentException that reads {@code name: value
+ * (expected: range)}. Everything here is a value or a pure function, and thread-safe.
  */
 package io.tallyward.statistics.spending;

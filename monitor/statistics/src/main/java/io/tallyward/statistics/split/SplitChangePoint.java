@@ -37,6 +37,12 @@ public record SplitChangePoint(int window, double logLikelihoodGain, List<Double
                     "logLikelihoodGain: " + logLikelihoodGain + " (expected: 0 or more, finite)");
         }
         sharesAfter = List.copyOf(sharesAfter);
+        for (int i = 0; i < sharesAfter.size(); i++) {
+            double share = sharesAfter.get(i);
+            if (!(share >= 0 && share <= 1)) {
+                throw new IllegalArgumentException("sharesAfter[" + i + "]: " + share + " (expected: in [0, 1])");
+            }
+        }
     }
 
     /**

@@ -2,10 +2,11 @@ package io.tallyward.statistics.distribution;
 
 import static org.junit.jupiter.api.Assertions.assertEquals;
 import static org.junit.jupiter.api.Assertions.assertThrows;
-import static org.junit.jupiter.api.Assertions.assertTrue;
 
 import io.tallyward.statistics.ReferenceTable;
+import java.util.List;
 import java.util.Random;
+import java.util.function.DoubleUnaryOperator;
 import org.junit.jupiter.api.Test;
 
 class NormalTest {
@@ -64,8 +65,17 @@ class NormalTest {
         assertEquals(0, Normal.density(Double.NEGATIVE_INFINITY));
         assertEquals(Double.POSITIVE_INFINITY, Normal.upperQuantile(0));
         assertEquals(Double.NEGATIVE_INFINITY, Normal.upperQuantile(1));
-        assertTrue(Double.isNaN(Normal.survival(Double.NaN)));
-        assertTrue(Double.isNaN(Normal.density(Double.NaN)));
+    }
+
+    @Test
+    void refusesWhatIsNoNumber() {
+        List<DoubleUnaryOperator> functions =
+                List.of(Normal::density, Normal::cdf, Normal::survival, Normal::logSurvival);
+        for (DoubleUnaryOperator function : functions) {
+            String message = assertThrows(IllegalArgumentException.class, () -> function.applyAsDouble(Double.NaN))
+                    .getMessage();
+            assertEquals("x: NaN (expected: a number or an infinity)", message);
+        }
     }
 
     @Test
