@@ -2,22 +2,21 @@ package io.tallyward.engine.decide;
 
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.Variant;
+import java.util.HashMap;
 import java.util.Map;
-import java.util.concurrent.ConcurrentHashMap;
-import java.util.concurrent.atomic.AtomicInteger;
 import java.util.function.Supplier;
 
 /**
  * Remembers what deciding under a plan takes long to compute and what depends on nothing but the plan and the information
  * at its looks: designs, and the bounds of looks. It changes how long a decision takes and never what is decided. Worth its
- * memory where one plan is decided many times, as in a rehearsal. Thread-safe; bounded.
+ * memory where one plan is decided many times, as in a rehearsal. Bounded; not thread-safe.
  */
 public final class DecisionMemo {
 
     private final int mostLooks;
-    private final AtomicInteger looks = new AtomicInteger();
-    private final Map<String, PlanDesign> designs = new ConcurrentHashMap<>();
-    private final Map<String, Node> paths = new ConcurrentHashMap<>();
+    private int looks;
+    private final Map<String, PlanDesign> designs = new HashMap<>();
+    private final Map<String, Node> paths = new HashMap<>();
 
     /**
      * A memo that knows nothing yet.
@@ -44,7 +43,7 @@ public final class DecisionMemo {
     }
 
     private boolean takeRoom() {
-        return looks.get() < mostLooks && looks.incrementAndGet() <= mostLooks;
+        return looks < mostLooks && looks++ < mostLooks;
     }
 
     /** A look of some path, and the looks that have been seen to follow it. */
@@ -60,7 +59,7 @@ public final class DecisionMemo {
         private Node(DecisionMemo memo, LookPath.Bounds bounds) {
             this.memo = memo;
             this.bounds = bounds;
-            following = memo == null ? Map.of() : new ConcurrentHashMap<>();
+            following = memo == null ? Map.of() : new HashMap<>();
         }
 
         /** The bounds of the look that follows this one with a request. */

@@ -55,6 +55,7 @@ final class LookReport {
         double lower = (z - look.upper()) / scale;
         double upper = (z - look.lower()) / scale;
         boolean ended = outcome.finding().settled();
+        boolean bare = detail == Detail.BARE;
         return new Comparison(
                 variant,
                 look.number(),
@@ -70,15 +71,15 @@ final class LookReport {
                 sitting.found().difference(),
                 finite(lower),
                 finite(upper),
-                liftScale(sitting.strata())
+                bare ? null : liftScale(sitting.strata())
                         .map(lift -> estimated(lift.lift(new Estimate(
                                 sitting.found().difference(), new Interval(lower, upper, 1 - levels.both())))))
                         .orElse(null),
                 ended && outcome.finding() != Verdict.STOP_FUTILITY ? null : outlook(look, z, bounds.critical()),
-                ended && detail == Detail.FULL ? adjusted(sitting, levels, looks) : null,
+                ended && !bare ? adjusted(sitting, levels, looks) : null,
                 outcome.verdict(),
                 outcome.heldOrNull(),
-                reason(z, look, outcome, sitting.caution()));
+                bare ? "" : reason(z, look, outcome, sitting.caution()));
     }
 
     private Outlook outlook(Look look, double z, double critical) {

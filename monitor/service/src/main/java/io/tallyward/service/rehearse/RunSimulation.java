@@ -84,8 +84,7 @@ final class RunSimulation {
 
     /** One run. */
     RunResult run(long index) {
-        RandomGenerator random = GENERATORS.create(mixed(mixed(request.seed()) + index));
-        Traffic traffic = new Traffic(rehearsed, rates, request.fixedSplit(), random);
+        Traffic traffic = traffic(index);
         DecideShard shard =
                 new DecideShard(List.of(rehearsed.plan()), memo, request.estimates() ? Detail.FULL : Detail.BARE);
         Follower follower = new Follower(rehearsed.plan());
@@ -99,7 +98,14 @@ final class RunSimulation {
         return result(follower);
     }
 
-    private TallyUpdate update(Traffic traffic, int from, int to) {
+    /** The traffic of a run, from its beginning. */
+    Traffic traffic(long index) {
+        RandomGenerator random = GENERATORS.create(mixed(mixed(request.seed()) + index));
+        return new Traffic(rehearsed, rates, request.fixedSplit(), random);
+    }
+
+    /** What the counting side would report of some steps, the last excluded. */
+    TallyUpdate update(Traffic traffic, int from, int to) {
         List<WindowTally> windows = new ArrayList<>(to - from);
         for (int step = from; step < to; step++) {
             List<Cell> cells = traffic.step(step);
