@@ -3,10 +3,13 @@ package io.tallyward.demo.truth;
 import io.tallyward.demo.story.Northwater;
 import io.tallyward.demo.story.Story;
 import io.tallyward.demo.story.StreamEvent;
+import java.nio.charset.StandardCharsets;
 import java.util.ArrayList;
 import java.util.Comparator;
+import java.util.HexFormat;
 import java.util.List;
 import java.util.Optional;
+import java.util.zip.CRC32;
 
 /**
  * The counting rules applied to everything one unit did in one experiment, read as a whole.
@@ -18,7 +21,14 @@ import java.util.Optional;
 record UnitVerdict(Optional<StreamEvent> firstView, boolean success, List<Fate> fates) {
 
     private static final Comparator<StreamEvent> EARLIEST =
-            Comparator.comparingLong(StreamEvent::atMillis).thenComparing(StreamEvent::id, Long::compareUnsigned);
+            Comparator.comparingLong(StreamEvent::atMillis).thenComparingLong(UnitVerdict::checksum);
+
+    /** The published breaker of ties: the CRC-32 of the id as it is written. */
+    private static long checksum(StreamEvent event) {
+        CRC32 checksum = new CRC32();
+        checksum.update(HexFormat.of().toHexDigits(event.id()).getBytes(StandardCharsets.US_ASCII));
+        return checksum.getValue();
+    }
 
     /** Judges the events of one unit in one experiment, none of them rejected, in the order of their arrival. */
     static UnitVerdict of(Story story, List<StreamEvent> events) {

@@ -5,7 +5,7 @@
  * sees records one by one and must decide with what it knows; here all events of a unit lie on the table at once, each
  * with the teller's own word on whether it was delivered in time. Windows, watermarks and open ledgers do not occur. The
  * rules are the published counting rules for units: the earliest view in time fixes variant and window, ties go to the
- * lesser event id, a click under the same variant within the attribution time (both ends included) makes a success.
+ * event whose id has the lesser CRC-32, a click under the same variant within the attribution time (both ends included) makes a success.
  *
  * <p>Partitions matter for one thing only: an experiment that outlasts the stream has windows at its end that no monitor
  * can have sealed. {@link io.tallyward.demo.truth.Truth#sealedUntilMillis} says up to where each partition must be sealed.

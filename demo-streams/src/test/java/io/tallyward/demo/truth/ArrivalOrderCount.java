@@ -4,10 +4,12 @@ import io.tallyward.demo.story.Flaw;
 import io.tallyward.demo.story.Northwater;
 import io.tallyward.demo.story.Story;
 import io.tallyward.demo.story.StreamEvent;
+import java.nio.charset.StandardCharsets;
 import java.util.ArrayList;
 import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
+import java.util.zip.CRC32;
 
 /**
  * A second opinion on the truth: a slow reading of the same counting rules, event by event in the order of arrival, with
@@ -75,11 +77,15 @@ final class ArrivalOrderCount {
                 && ledger.accepted.stream().noneMatch(other -> !other.isView() && inTime(other, first));
     }
 
+    private static long checksum(StreamEvent event) {
+        CRC32 checksum = new CRC32();
+        checksum.update(String.format("%016x", event.id()).getBytes(StandardCharsets.UTF_8));
+        return checksum.getValue();
+    }
+
     private static boolean earlier(StreamEvent one, StreamEvent other) {
         int byTime = Long.compare(one.atMillis(), other.atMillis());
-        return byTime != 0
-                ? byTime < 0
-                : String.format("%016x", one.id()).compareTo(String.format("%016x", other.id())) < 0;
+        return byTime != 0 ? byTime < 0 : checksum(one) < checksum(other);
     }
 
     private static boolean inTime(StreamEvent click, StreamEvent first) {

@@ -96,7 +96,8 @@ public final class CountShard {
         if (event.atMillis() > recordTimestampMillis + maxSkewMillis) {
             return Optional.of(reject(RejectReason.BAD_TIME));
         }
-        boolean inside = counter.accept(hasher.hash(event.unit()), event, variant, watermarks.of(source));
+        hasher.hash(event.unit());
+        boolean inside = counter.accept(hasher.high(), hasher.low(), event, variant, watermarks.of(source));
         if (inside && watermarks.advance(source, event.atMillis())) {
             shardChanged = true;
             sealPassed();

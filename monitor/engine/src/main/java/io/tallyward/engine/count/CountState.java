@@ -7,11 +7,9 @@ import io.tallyward.engine.plan.PlanChangedException;
 import io.tallyward.engine.shard.StateChange;
 import java.io.ByteArrayInputStream;
 import java.io.DataInputStream;
-import java.io.DataOutputStream;
 import java.io.IOException;
 import java.io.UncheckedIOException;
 import java.util.ArrayList;
-import java.util.Iterator;
 import java.util.List;
 import java.util.Map;
 import java.util.TreeMap;
@@ -37,7 +35,7 @@ final class CountState {
     private static final byte SEALED = 'S';
 
     /** A packed entry is closed once it is this large; well below a broker's usual record limit of 1 MB. */
-    private static final int PACKED_BYTES = 400_000;
+    static final int PACKED_BYTES = 400_000;
 
     private final int partitions;
     private final long keyFingerprint;
@@ -87,39 +85,21 @@ final class CountState {
     List<StateChange> open(ExperimentCounter counter) {
         String experiment = counter.plan().experiment();
         TreeMap<Long, Integer> entries = openEntries.computeIfAbsent(experiment, name -> new TreeMap<>());
+        OpenChunks chunks = new OpenChunks();
+        counter.ledger().takeChanged(chunks::add);
         List<StateChange> changes = new ArrayList<>();
-        counter.ledger().takeChanged().forEach((window, units) -> {
-            Iterator<Map.Entry<UnitHash, OpenUnit>> rest = units.entrySet().iterator();
-            while (rest.hasNext()) {
-                int sequence = entries.merge(window, 1, Integer::sum) - 1;
-                changes.add(new StateChange(key(OPEN, experiment, window, sequence), pack(out -> {
-                    while (rest.hasNext() && out.size() < PACKED_BYTES) {
-                        Map.Entry<UnitHash, OpenUnit> unit = rest.next();
-                        writeHash(out, unit.getKey());
-                        unit.getValue().write(out);
-                    }
-                })));
-            }
+        chunks.take((window, packed) -> {
+            int sequence = entries.merge(window, 1, Integer::sum) - 1;
+            changes.add(new StateChange(key(OPEN, experiment, window, sequence), packed));
         });
         return changes;
     }
 
-    /** The units of a window that was just sealed, and the removal of what was kept of the window while it was open. */
+    /** The units of a window that was just sealed. */
     List<StateChange> sealed(String experiment, ExperimentCounter.Sealed window) {
         List<StateChange> changes = new ArrayList<>();
-        long start = window.tally().startMillis();
-        Iterator<Map.Entry<UnitHash, SealedUnit>> rest =
-                window.units().entrySet().iterator();
-        for (int sequence = 0; rest.hasNext(); sequence++) {
-            changes.add(new StateChange(key(SEALED, experiment, start, sequence), pack(out -> {
-                while (rest.hasNext() && out.size() < PACKED_BYTES) {
-                    Map.Entry<UnitHash, SealedUnit> unit = rest.next();
-                    writeHash(out, unit.getKey());
-                    out.writeByte(unit.getValue().variant());
-                    out.writeLong(unit.getValue().first());
-                    out.writeBoolean(unit.getValue().success());
-                }
-            })));
+        for (byte[] packed : window.units()) {
+            changes.add(new StateChange(key(SEALED, experiment, window.tally().startMillis(), changes.size()), packed));
         }
         return changes;
     }
@@ -223,10 +203,12 @@ final class CountState {
             return;
         }
         DataInputStream in = reader(value);
-        int variants = counter.plan().variants().size();
         while (in.available() > 0) {
-            UnitHash hash = readHash(in);
-            counter.ledger().restoreOpen(hash, OpenUnit.read(in, variants));
+            long high = in.readLong();
+            long low = in.readLong();
+            OpenUnit unit = counter.ledger().fresh();
+            unit.read(in);
+            counter.ledger().restoreOpen(high, low, unit);
         }
     }
 
@@ -236,8 +218,7 @@ final class CountState {
         }
         DataInputStream in = reader(value);
         while (in.available() > 0) {
-            UnitHash hash = readHash(in);
-            counter.ledger().addSealed(hash, new SealedUnit(in.readByte(), in.readLong(), in.readBoolean()));
+            counter.ledger().restoreSealed(in);
         }
     }
 
@@ -248,14 +229,5 @@ final class CountState {
             out.writeLong(window);
             out.writeInt(sequence);
         });
-    }
-
-    private static void writeHash(DataOutputStream out, UnitHash hash) throws IOException {
-        out.writeLong(hash.high());
-        out.writeLong(hash.low());
-    }
-
-    private static UnitHash readHash(DataInputStream in) throws IOException {
-        return new UnitHash(in.readLong(), in.readLong());
     }
 }

@@ -1,6 +1,5 @@
 package io.tallyward.engine.count;
 
-import io.tallyward.engine.count.WindowTally.Cell;
 import io.tallyward.engine.event.Event;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanDigest;
@@ -41,8 +40,8 @@ final class ExperimentCounter {
         ledger = new Ledger(plan);
     }
 
-    /** A window that was just sealed, with the units whose trials fell into it. */
-    record Sealed(WindowTally tally, Map<UnitHash, SealedUnit> units) {}
+    /** A window that was just sealed, with the units whose trials fell into it, packed. */
+    record Sealed(WindowTally tally, List<byte[]> units) {}
 
     Plan plan() {
         return plan;
@@ -61,7 +60,7 @@ final class ExperimentCounter {
     }
 
     /** Takes an event of a known variant; returns whether it lies inside the run. */
-    boolean accept(UnitHash hash, Event event, int variant, long arrivalMillis) {
+    boolean accept(long high, long low, Event event, int variant, long arrivalMillis) {
         changed = true;
         if (!plan.run().contains(event.atMillis())) {
             finalOutcomes.add(Outcome.OUTSIDE, 1);
@@ -71,7 +70,7 @@ final class ExperimentCounter {
         long window = windowOf(event.atMillis());
         reach = Math.max(reach, window + windowMillis);
         boolean late = window < sealedUntil || arrivalMillis >= sealAt(window);
-        Outcome outcome = ledger.accept(hash, event, variant, arrivalMillis, late);
+        Outcome outcome = ledger.accept(high, low, event, variant, arrivalMillis, late);
         if (outcome != null) {
             finalOutcomes.add(outcome, 1);
             tellIn(window, outcome);
@@ -140,32 +139,18 @@ final class ExperimentCounter {
 
     private Sealed seal(long windowStart) {
         OutcomeCounts.Builder settled = new OutcomeCounts.Builder();
-        Map<UnitHash, SealedUnit> units = ledger.seal(windowStart, settled);
+        SealedChunks units = new SealedChunks(ledger.sealed());
+        CellCounts cells = new CellCounts(plan);
+        ledger.seal(windowStart, settled, (high, low, variant, first, success) -> {
+            units.add(high, low, variant, first, success);
+            cells.add(variant, first, success);
+        });
         OutcomeCounts fromLedger = settled.build();
         finalOutcomes.add(fromLedger);
         OutcomeCounts.Builder told = unsealedOutcomes.remove(windowStart);
         OutcomeCounts outcomes =
                 told == null ? fromLedger : told.add(fromLedger).build();
-        return new Sealed(new WindowTally(windowStart, cells(units), outcomes), units);
-    }
-
-    private List<Cell> cells(Map<UnitHash, SealedUnit> units) {
-        int variants = plan.variants().size();
-        int epochs = plan.epochs().size() + 1;
-        long[] trials = new long[epochs * variants];
-        long[] successes = new long[epochs * variants];
-        for (SealedUnit unit : units.values()) {
-            int cell = plan.epochAt(unit.first()) * variants + unit.variant();
-            trials[cell]++;
-            successes[cell] += unit.success() ? 1 : 0;
-        }
-        List<Cell> cells = new ArrayList<>();
-        for (int cell = 0; cell < trials.length; cell++) {
-            if (trials[cell] > 0) {
-                cells.add(new Cell(cell / variants, cell % variants, trials[cell], successes[cell]));
-            }
-        }
-        return cells;
+        return new Sealed(new WindowTally(windowStart, cells.list(), outcomes), units.take());
     }
 
     /** Final outcomes of all events so far, sealed windows or not. */

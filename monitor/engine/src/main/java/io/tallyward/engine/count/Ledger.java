@@ -3,11 +3,8 @@ package io.tallyward.engine.count;
 import io.tallyward.engine.event.Event;
 import io.tallyward.engine.event.EventKind;
 import io.tallyward.engine.plan.Plan;
-import java.util.HashMap;
-import java.util.LinkedHashMap;
-import java.util.LinkedHashSet;
-import java.util.Map;
-import java.util.Set;
+import java.io.DataInput;
+import java.io.IOException;
 import java.util.TreeMap;
 
 /**
@@ -19,104 +16,125 @@ final class Ledger {
     private final long attributionMillis;
     private final long windowMillis;
     private final long sealDelayMillis;
-    private final int variants;
 
-    private final Map<UnitHash, OpenUnit> open = new HashMap<>();
-    private final Map<UnitHash, SealedUnit> sealed = new HashMap<>();
-    private final TreeMap<Long, Set<UnitHash>> due = new TreeMap<>();
-    private final Set<UnitHash> changed = new LinkedHashSet<>();
+    private final OpenUnits open;
+    private final SealedUnits sealed;
+    private final TreeMap<Long, PrefixList> due = new TreeMap<>();
+    private final HashList changed = new HashList();
+    private long openEvents;
 
     Ledger(Plan plan) {
         attributionMillis = plan.count().attribution().toMillis();
         windowMillis = plan.count().window().toMillis();
         sealDelayMillis = plan.count().sealDelayMillis();
-        variants = plan.variants().size();
+        long runFrom = plan.run().from().toEpochMilli();
+        open = new OpenUnits(runFrom, plan.variants().size());
+        sealed = new SealedUnits(runFrom);
+    }
+
+    /** Takes a unit whose trial has become final. */
+    @FunctionalInterface
+    interface Settled {
+        void take(long high, long low, int variant, long first, boolean success);
+    }
+
+    /** Takes an open unit that has changed; the unit is valid during the call only. */
+    @FunctionalInterface
+    interface Changed {
+        /** @param window start of the window with which the last of what is open about the unit is sealed */
+        void take(long window, long high, long low, OpenUnit unit);
     }
 
     /**
      * Takes an event of the run.
      *
+     * @param high first half of the unit's hash
+     * @param low second half
      * @param arrivalMillis watermark of the event's source when the event arrived
      * @param late whether the event's own window is sealed, in the shard or by the reckoning of the event's source
      * @return its outcome when that is final at once, or null while it can still change
      */
-    Outcome accept(UnitHash hash, Event event, int variant, long arrivalMillis, boolean late) {
-        SealedUnit settled = sealed.get(hash);
-        if (settled != null) {
-            return event.kind() == EventKind.VIEW
-                    ? exposeAgain(settled, variant, event.atMillis())
-                    : clickAfterwards(settled, variant, event.atMillis());
+    Outcome accept(long high, long low, Event event, int variant, long arrivalMillis, boolean late) {
+        boolean view = event.kind() == EventKind.VIEW;
+        if (sealed.find(high, low)) {
+            return view ? exposeAgain(variant, event.atMillis()) : clickAfterwards(variant, event.atMillis());
         }
-        return event.kind() == EventKind.VIEW
-                ? expose(hash, event, variant, late)
-                : click(hash, event, variant, arrivalMillis, late);
+        Outcome outcome =
+                view ? expose(high, low, event, variant, late) : click(high, low, event, variant, arrivalMillis, late);
+        openEvents += outcome == null ? 1 : 0;
+        return outcome;
     }
 
-    private Outcome expose(UnitHash hash, Event event, int variant, boolean late) {
-        OpenUnit unit = open.get(hash);
-        if (late && (unit == null || !unit.hasTrial() || event.atMillis() < unit.first())) {
+    private Outcome expose(long high, long low, Event event, int variant, boolean late) {
+        boolean known = open.find(high, low);
+        if (!known && late) {
             return Outcome.LATE;
         }
+        OpenUnit unit = known ? open.load() : open.fresh();
+        boolean had = unit.hasTrial();
+        long before = unit.first();
         if (late) {
+            if (!had || event.atMillis() < before) {
+                return Outcome.LATE;
+            }
             unit.exposeAgain(variant);
-            changed.add(hash);
-            return null;
+        } else {
+            unit.expose(variant, event.atMillis(), event.tie(), attributionMillis);
         }
-        unit = unit == null ? new OpenUnit(variants) : unit;
-        unit.expose(variant, event.atMillis(), identity(event), attributionMillis);
-        put(hash, unit);
+        if (!had || windowOf(before) != windowOf(unit.first())) {
+            dueAt(windowOf(unit.first()), high);
+        }
+        put(high, low, unit, known);
         return null;
     }
 
-    private Outcome click(UnitHash hash, Event event, int variant, long arrivalMillis, boolean late) {
-        OpenUnit unit = open.get(hash);
-        boolean preceded = unit != null && unit.hasTrial() && unit.first() <= event.atMillis();
+    private Outcome click(long high, long low, Event event, int variant, long arrivalMillis, boolean late) {
+        boolean known = open.find(high, low);
+        if (!known && late) {
+            return Outcome.ORPHAN;
+        }
+        OpenUnit unit = known ? open.load() : open.fresh();
+        boolean preceded = unit.hasTrial() && unit.first() <= event.atMillis();
         if (late && !preceded) {
             return Outcome.ORPHAN;
         }
-        unit = unit == null ? new OpenUnit(variants) : unit;
+        int clicks = unit.clicks();
         unit.click(variant, event.atMillis(), arrivalMillis, attributionMillis);
-        put(hash, unit);
-        if (!preceded) {
-            dueAt(windowOf(event.atMillis()), hash);
+        if (!preceded && unit.clicks() > clicks) {
+            dueAt(windowOf(event.atMillis()), high);
         }
+        put(high, low, unit, known);
         return null;
     }
 
-    private static String identity(Event event) {
-        return event.source().isEmpty() ? event.id() : event.id() + "\n" + event.source();
+    private void put(long high, long low, OpenUnit unit, boolean known) {
+        if (open.store(high, low, unit, known)) {
+            changed.add(high, low);
+        }
     }
 
-    private static Outcome exposeAgain(SealedUnit unit, int variant, long atMillis) {
-        if (atMillis < unit.first()) {
+    private Outcome exposeAgain(int variant, long atMillis) {
+        if (atMillis < sealed.first()) {
             return Outcome.LATE;
         }
-        return variant == unit.variant() ? Outcome.REPEAT : Outcome.CROSSOVER;
+        return variant == sealed.variant() ? Outcome.REPEAT : Outcome.CROSSOVER;
     }
 
-    private Outcome clickAfterwards(SealedUnit unit, int variant, long atMillis) {
-        if (atMillis < unit.first()) {
+    private Outcome clickAfterwards(int variant, long atMillis) {
+        if (atMillis < sealed.first()) {
             return Outcome.ORPHAN;
         }
-        if (variant != unit.variant()) {
+        if (variant != sealed.variant()) {
             return Outcome.CROSSOVER;
         }
-        if (atMillis > unit.first() + attributionMillis) {
+        if (atMillis > sealed.first() + attributionMillis) {
             return Outcome.EXPIRED;
         }
-        return unit.success() ? Outcome.REPEAT : Outcome.LATE;
+        return sealed.success() ? Outcome.REPEAT : Outcome.LATE;
     }
 
-    private void put(UnitHash hash, OpenUnit unit) {
-        open.put(hash, unit);
-        changed.add(hash);
-        if (unit.hasTrial()) {
-            dueAt(windowOf(unit.first()), hash);
-        }
-    }
-
-    private void dueAt(long window, UnitHash hash) {
-        due.computeIfAbsent(window, start -> new LinkedHashSet<>()).add(hash);
+    private void dueAt(long window, long high) {
+        due.computeIfAbsent(window, start -> new PrefixList()).add(high);
     }
 
     /** The window with which the last of what is open about a unit is sealed. */
@@ -137,69 +155,87 @@ final class Ledger {
      * Seals a window: its trials become final, and clicks in it that no exposure precedes become orphans.
      *
      * @param outcomes receives the outcomes that become final
-     * @return the units sealed, in the order in which they were first seen
+     * @param settled receives the units sealed, in an order that the events before determine
      */
-    Map<UnitHash, SealedUnit> seal(long windowStart, OutcomeCounts.Builder outcomes) {
-        Set<UnitHash> hashes = due.remove(windowStart);
-        Map<UnitHash, SealedUnit> result = new LinkedHashMap<>();
-        if (hashes == null) {
-            return result;
-        }
-        for (UnitHash hash : hashes) {
-            OpenUnit unit = open.get(hash);
-            if (unit == null) {
-                continue;
-            }
-            if (unit.hasTrial() && windowOf(unit.first()) == windowStart) {
-                long sealAt = windowStart + windowMillis + sealDelayMillis;
-                unit.settle(sealAt, outcomes);
-                SealedUnit settled = new SealedUnit(unit.variant(), unit.first(), unit.successful(sealAt));
-                addSealed(hash, settled);
-                changed.remove(hash);
-                result.put(hash, settled);
-            } else {
-                dropOrphans(hash, unit, windowStart + windowMillis, outcomes);
+    void seal(long windowStart, OutcomeCounts.Builder outcomes, Settled settled) {
+        PrefixList prefixes = due.remove(windowStart);
+        for (int i = 0; prefixes != null && i < prefixes.size(); i++) {
+            int prefix = prefixes.get(i);
+            boolean more = open.findFirst(prefix);
+            while (more) {
+                more = sealFound(windowStart, outcomes, settled) ? open.holds(prefix) : open.next(prefix);
             }
         }
-        return result;
     }
 
-    private void dropOrphans(UnitHash hash, OpenUnit unit, long before, OutcomeCounts.Builder outcomes) {
-        int orphans = unit.removeOrphansBefore(before);
-        if (orphans == 0) {
-            return;
+    /** Seals what falls due of the unit last found; returns whether the unit is open no longer. */
+    private boolean sealFound(long windowStart, OutcomeCounts.Builder outcomes, Settled settled) {
+        OpenUnit unit = open.load();
+        if (unit.hasTrial() && windowOf(unit.first()) == windowStart) {
+            long sealAt = windowStart + windowMillis + sealDelayMillis;
+            openEvents -= unit.events();
+            unit.settle(sealAt, outcomes);
+            boolean success = unit.successful(sealAt);
+            sealed.add(open.high(), open.low(), unit.variant(), unit.first(), success);
+            settled.take(open.high(), open.low(), unit.variant(), unit.first(), success);
+            open.remove();
+            return true;
         }
+        int orphans = unit.removeOrphansBefore(windowStart + windowMillis);
+        if (orphans == 0) {
+            return false;
+        }
+        openEvents -= orphans;
         outcomes.add(Outcome.ORPHAN, orphans);
         if (unit.isEmpty()) {
-            open.remove(hash);
-            changed.remove(hash);
-        } else {
-            changed.add(hash);
+            open.remove();
+            return true;
         }
+        put(open.high(), open.low(), unit, true);
+        return false;
     }
 
-    /** Open units that changed since this was last asked, by the window in which they fall due. */
-    TreeMap<Long, Map<UnitHash, OpenUnit>> takeChanged() {
-        TreeMap<Long, Map<UnitHash, OpenUnit>> byWindow = new TreeMap<>();
-        for (UnitHash hash : changed) {
-            OpenUnit unit = open.get(hash);
-            byWindow.computeIfAbsent(dueWindow(unit), start -> new LinkedHashMap<>())
-                    .put(hash, unit);
+    /** Tells the open units that changed since this was last asked. */
+    void takeChanged(Changed taker) {
+        for (int i = 0; i < changed.size(); i++) {
+            if (open.find(changed.high(i), changed.low(i)) && open.isMarked()) {
+                open.unmark();
+                OpenUnit unit = open.load();
+                taker.take(dueWindow(unit), changed.high(i), changed.low(i), unit);
+            }
         }
         changed.clear();
-        return byWindow;
+    }
+
+    /** A unit to restore into. */
+    OpenUnit fresh() {
+        return open.fresh();
     }
 
     /** Restores an open unit as it was written; a later version of the same unit replaces it. */
-    void restoreOpen(UnitHash hash, OpenUnit unit) {
-        open.put(hash, unit);
-        if (unit.hasTrial()) {
-            dueAt(windowOf(unit.first()), hash);
+    void restoreOpen(long high, long low, OpenUnit unit) {
+        OpenUnit restored = unit.copy();
+        forgetOpen(high, low);
+        openEvents += restored.events();
+        open.find(high, low);
+        open.store(high, low, restored, false);
+        open.find(high, low);
+        open.unmark();
+        if (restored.hasTrial()) {
+            dueAt(windowOf(restored.first()), high);
         }
-        for (long click : unit.clickTimes()) {
-            if (!unit.hasTrial() || click < unit.first()) {
-                dueAt(windowOf(click), hash);
+        for (int click = 0; click < restored.clicks(); click++) {
+            long at = restored.clickTime(click);
+            if (!restored.hasTrial() || at < restored.first()) {
+                dueAt(windowOf(at), high);
             }
+        }
+    }
+
+    private void forgetOpen(long high, long low) {
+        if (open.find(high, low)) {
+            openEvents -= open.load().events();
+            open.remove();
         }
     }
 
@@ -208,26 +244,42 @@ final class Ledger {
      * that became orphans leave an entry behind, which a log that is not compacted yet still holds.
      */
     void forgetDueBefore(long sealedUntilMillis) {
-        Map<Long, Set<UnitHash>> past = due.headMap(sealedUntilMillis);
-        past.values()
-                .forEach(hashes -> hashes.forEach(hash -> {
-                    OpenUnit unit = open.get(hash);
-                    if (unit != null && dueWindow(unit) < sealedUntilMillis) {
-                        open.remove(hash);
-                    }
-                }));
-        past.clear();
+        due.headMap(sealedUntilMillis).values().forEach(prefixes -> {
+            for (int i = 0; i < prefixes.size(); i++) {
+                forgetDueBefore(prefixes.get(i), sealedUntilMillis);
+            }
+        });
+        due.headMap(sealedUntilMillis).clear();
     }
 
-    /** Adds a unit whose trial is final. */
-    void addSealed(UnitHash hash, SealedUnit unit) {
-        open.remove(hash);
-        sealed.put(hash, unit);
+    private void forgetDueBefore(int prefix, long sealedUntilMillis) {
+        boolean more = open.findFirst(prefix);
+        while (more) {
+            OpenUnit unit = open.load();
+            if (dueWindow(unit) < sealedUntilMillis) {
+                openEvents -= unit.events();
+                open.remove();
+                more = open.holds(prefix);
+            } else {
+                more = open.next(prefix);
+            }
+        }
+    }
+
+    /** The sealed units, for their durable form. */
+    SealedUnits sealed() {
+        return sealed;
+    }
+
+    /** Restores a unit whose trial is final from its durable form. */
+    void restoreSealed(DataInput in) throws IOException {
+        sealed.read(in);
+        forgetOpen(sealed.high(), sealed.low());
     }
 
     /** Events whose outcome can still change. */
     long openEvents() {
-        return open.values().stream().mapToLong(OpenUnit::events).sum();
+        return openEvents;
     }
 
     /** How many units are remembered, open and sealed. */

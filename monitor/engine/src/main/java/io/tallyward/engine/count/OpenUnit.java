@@ -21,7 +21,7 @@ final class OpenUnit {
 
     private int variant = NO_TRIAL;
     private long first;
-    private String firstId = "";
+    private int firstTie;
 
     private final int[] exposures;
     private final int[] tooLate;
@@ -66,15 +66,17 @@ final class OpenUnit {
     }
 
     /**
-     * Adds an exposure. The earliest by event time stands; ties are broken by event identity, then by variant, so that the
-     * order of arrival does not matter.
+     * Adds an exposure. The earliest by event time stands; ties are broken by a digest of the event, then by variant, so that
+     * the order of arrival does not matter.
+     *
+     * @param tie the event's digest, compared without sign
      */
-    void expose(int exposedVariant, long atMillis, String eventIdentity, long attributionMillis) {
+    void expose(int exposedVariant, long atMillis, int tie, long attributionMillis) {
         exposures[exposedVariant]++;
-        if (!hasTrial() || isEarlier(exposedVariant, atMillis, eventIdentity)) {
+        if (!hasTrial() || isEarlier(exposedVariant, atMillis, tie)) {
             variant = exposedVariant;
             first = atMillis;
-            firstId = eventIdentity;
+            firstTie = tie;
             foldClicksAfter(atMillis + attributionMillis);
         }
     }
@@ -84,12 +86,12 @@ final class OpenUnit {
         exposures[exposedVariant]++;
     }
 
-    private boolean isEarlier(int exposedVariant, long atMillis, String eventIdentity) {
+    private boolean isEarlier(int exposedVariant, long atMillis, int tie) {
         if (atMillis != first) {
             return atMillis < first;
         }
-        int byIdentity = eventIdentity.compareTo(firstId);
-        return byIdentity < 0 || (byIdentity == 0 && exposedVariant < variant);
+        int byTie = Integer.compareUnsigned(tie, firstTie);
+        return byTie < 0 || (byTie == 0 && exposedVariant < variant);
     }
 
     /**
@@ -107,6 +109,10 @@ final class OpenUnit {
             surplus[clickedVariant]++;
             return;
         }
+        keep(clickedVariant, atMillis, arrivalMillis);
+    }
+
+    private void keep(int clickedVariant, long atMillis, long arrivalMillis) {
         if (clicks == clickTimes.length) {
             clickTimes = Arrays.copyOf(clickTimes, 2 * clicks);
             clickVariants = Arrays.copyOf(clickVariants, 2 * clicks);
@@ -209,23 +215,102 @@ final class OpenUnit {
         }
     }
 
-    /** Every click time kept, for registering the windows in which it falls due. */
-    long[] clickTimes() {
-        return Arrays.copyOf(clickTimes, clicks);
+    /** Makes it a unit of which nothing is known yet. */
+    void clear() {
+        variant = NO_TRIAL;
+        first = 0;
+        firstTie = 0;
+        clicks = 0;
+        Arrays.fill(exposures, 0);
+        Arrays.fill(tooLate, 0);
+        Arrays.fill(surplus, 0);
+    }
+
+    /** An independent copy, no larger than it has to be. */
+    OpenUnit copy() {
+        OpenUnit copy = new OpenUnit(exposures.length);
+        copy.variant = variant;
+        copy.first = first;
+        copy.firstTie = firstTie;
+        System.arraycopy(exposures, 0, copy.exposures, 0, exposures.length);
+        System.arraycopy(tooLate, 0, copy.tooLate, 0, tooLate.length);
+        System.arraycopy(surplus, 0, copy.surplus, 0, surplus.length);
+        copy.clicks = clicks;
+        copy.clickTimes = Arrays.copyOf(clickTimes, Math.max(2, clicks));
+        copy.clickVariants = Arrays.copyOf(clickVariants, Math.max(2, clicks));
+        copy.clickArrivals = Arrays.copyOf(clickArrivals, Math.max(2, clicks));
+        return copy;
+    }
+
+    /** The standing exposure's digest. */
+    int firstTie() {
+        return firstTie;
+    }
+
+    int clicks() {
+        return clicks;
+    }
+
+    long clickTime(int click) {
+        return clickTimes[click];
+    }
+
+    int clickVariant(int click) {
+        return clickVariants[click];
+    }
+
+    long clickArrival(int click) {
+        return clickArrivals[click];
+    }
+
+    int exposures(int ofVariant) {
+        return exposures[ofVariant];
+    }
+
+    int tooLate(int ofVariant) {
+        return tooLate[ofVariant];
+    }
+
+    /** Whether clicks were only counted because there are too many. */
+    boolean hasSurplus() {
+        return sum(surplus) > 0;
+    }
+
+    /** Puts a standing exposure back in place, with the number of exposures to its variant. */
+    void restoreTrial(int standingVariant, long at, int tie, int times) {
+        variant = standingVariant;
+        first = at;
+        firstTie = tie;
+        exposures[standingVariant] = times;
+    }
+
+    /** Puts one more exposure back. */
+    void restoreExposure(int exposedVariant) {
+        exposures[exposedVariant]++;
+    }
+
+    /** Puts a click back that came past its attribution. */
+    void restoreTooLate(int clickedVariant) {
+        tooLate[clickedVariant]++;
+    }
+
+    /** Puts a kept click back. */
+    void restoreClick(int clickedVariant, long atMillis, long arrivalMillis) {
+        keep(clickedVariant, atMillis, arrivalMillis);
     }
 
     void write(DataOutput out) throws IOException {
         out.writeByte(variant);
         if (hasTrial()) {
             out.writeLong(first);
-            out.writeUTF(firstId);
+            out.writeInt(firstTie);
         }
         for (int i = 0; i < exposures.length; i++) {
-            out.writeInt(exposures[i]);
-            out.writeInt(tooLate[i]);
-            out.writeInt(surplus[i]);
+            VariableLength.write(out, exposures[i]);
+            VariableLength.write(out, tooLate[i]);
+            VariableLength.write(out, surplus[i]);
         }
-        out.writeInt(clicks);
+        VariableLength.write(out, clicks);
         for (int i = 0; i < clicks; i++) {
             out.writeLong(clickTimes[i]);
             out.writeByte(clickVariants[i]);
@@ -233,27 +318,24 @@ final class OpenUnit {
         }
     }
 
-    static OpenUnit read(DataInput in, int variants) throws IOException {
-        OpenUnit unit = new OpenUnit(variants);
-        unit.variant = in.readByte();
-        if (unit.hasTrial()) {
-            unit.first = in.readLong();
-            unit.firstId = in.readUTF();
+    /** Takes over what {@link #write} wrote. */
+    void read(DataInput in) throws IOException {
+        clear();
+        variant = in.readByte();
+        if (hasTrial()) {
+            first = in.readLong();
+            firstTie = in.readInt();
         }
-        for (int i = 0; i < variants; i++) {
-            unit.exposures[i] = in.readInt();
-            unit.tooLate[i] = in.readInt();
-            unit.surplus[i] = in.readInt();
+        for (int i = 0; i < exposures.length; i++) {
+            exposures[i] = VariableLength.read(in);
+            tooLate[i] = VariableLength.read(in);
+            surplus[i] = VariableLength.read(in);
         }
-        unit.clicks = in.readInt();
-        unit.clickTimes = new long[Math.max(2, unit.clicks)];
-        unit.clickVariants = new byte[Math.max(2, unit.clicks)];
-        unit.clickArrivals = new long[Math.max(2, unit.clicks)];
-        for (int i = 0; i < unit.clicks; i++) {
-            unit.clickTimes[i] = in.readLong();
-            unit.clickVariants[i] = in.readByte();
-            unit.clickArrivals[i] = in.readLong();
+        int stored = VariableLength.read(in);
+        for (int i = 0; i < stored; i++) {
+            long at = in.readLong();
+            int clickedVariant = in.readByte();
+            keep(clickedVariant, at, in.readLong());
         }
-        return unit;
     }
 }

@@ -6,6 +6,7 @@ import io.tallyward.engine.event.Event;
 import io.tallyward.engine.event.EventKind;
 import io.tallyward.engine.event.RejectReason;
 import io.tallyward.engine.plan.Plan;
+import java.nio.charset.StandardCharsets;
 import java.util.ArrayList;
 import java.util.Collection;
 import java.util.Comparator;
@@ -15,6 +16,7 @@ import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 import java.util.TreeMap;
+import java.util.zip.CRC32;
 
 /**
  * Counts a whole input in one go, from the rules alone. Of the order of arrival it uses nothing but the watermark that each
@@ -85,7 +87,7 @@ final class CountOracle {
                 .filter(admitted -> isView(admitted) && admitted.watermark() < sealedAt(plan, admitted.event()))
                 .min(Comparator.comparingLong(
                                 (Admitted admitted) -> admitted.event().atMillis())
-                        .thenComparing(admitted -> admitted.event().id())
+                        .thenComparing(admitted -> crc32(admitted.event().id()))
                         .thenComparing(
                                 admitted -> plan.variantIndex(admitted.event().variant())));
         if (trial.isEmpty()) {
@@ -114,6 +116,12 @@ final class CountOracle {
         long window = windowOf(plan, first);
         Place place = Place.of(window, plan.epochAt(first.atMillis()), plan.variantIndex(first.variant()));
         cells.get(plan.experiment()).merge(place, new Count(1, inTime > 0 ? 1 : 0), Count::plus);
+    }
+
+    private static long crc32(String id) {
+        CRC32 crc = new CRC32();
+        crc.update(id.getBytes(StandardCharsets.UTF_8));
+        return crc.getValue();
     }
 
     private static boolean isView(Admitted admitted) {

@@ -1,0 +1,46 @@
+package io.tallyward.engine.count;
+
+import java.io.ByteArrayOutputStream;
+import java.io.DataOutputStream;
+import java.io.IOException;
+import java.io.UncheckedIOException;
+import java.util.ArrayList;
+import java.util.List;
+
+/** Packs the units of a window into chunks that are each small enough for one record. */
+final class SealedChunks {
+
+    private final SealedUnits format;
+    private final List<byte[]> full = new ArrayList<>();
+    private final ByteArrayOutputStream bytes = new ByteArrayOutputStream(1024);
+    private final DataOutputStream out = new DataOutputStream(bytes);
+
+    /** @param format knows the durable form of a unit */
+    SealedChunks(SealedUnits format) {
+        this.format = format;
+    }
+
+    void add(long high, long low, int variant, long first, boolean success) {
+        try {
+            format.write(out, high, low, variant, first, success);
+        } catch (IOException e) {
+            throw new UncheckedIOException("a write to memory failed", e);
+        }
+        if (bytes.size() >= CountState.PACKED_BYTES) {
+            close();
+        }
+    }
+
+    private void close() {
+        full.add(bytes.toByteArray());
+        bytes.reset();
+    }
+
+    /** The chunks; empty when there was no unit. */
+    List<byte[]> take() {
+        if (bytes.size() > 0) {
+            close();
+        }
+        return List.copyOf(full);
+    }
+}
