@@ -36,6 +36,7 @@ final class ExperimentDecider {
     private final String planDigest;
     private final long windowMillis;
     private final NoticeWriter writer;
+    private final Detail detail;
 
     private final Completeness completeness;
     private final CumulativeCounts counts;
@@ -56,12 +57,14 @@ final class ExperimentDecider {
     private final List<DecisionRecord> decisions = new ArrayList<>();
     private final List<Notice> notices = new ArrayList<>();
     private final List<TakenLook> newLooks = new ArrayList<>();
+    private PassedOn passedOn = new PassedOn(Set.of(), Set.of());
     private boolean changed;
 
     ExperimentDecider(Plan plan, DecisionMemo memo, Detail detail) {
         this.plan = plan;
         planDigest = PlanDigest.of(plan);
         windowMillis = plan.count().window().toMillis();
+        this.detail = detail;
         writer = new NoticeWriter(plan);
         completeUntil = plan.run().from().toEpochMilli();
         completeness = new Completeness(completeUntil);
@@ -181,6 +184,10 @@ final class ExperimentDecider {
     private boolean passOn() {
         Set<Integer> benefits = positions(Verdict.STOP_BENEFIT);
         Set<Integer> harms = positions(Verdict.STOP_HARM);
+        if (benefits.equals(passedOn.benefits()) && harms.equals(passedOn.harms())) {
+            return false;
+        }
+        passedOn = new PassedOn(benefits, harms);
         boolean rose = false;
         for (int i = 0; i < tests.size(); i++) {
             if (!found(tests.get(i))) {
@@ -190,7 +197,13 @@ final class ExperimentDecider {
         return rose;
     }
 
+    /** The challengers whose levels the others have, by position. */
+    private record PassedOn(Set<Integer> benefits, Set<Integer> harms) {}
+
     private Set<Integer> positions(Verdict verdict) {
+        if (tests.stream().noneMatch(test -> test.verdict() == verdict)) {
+            return Set.of();
+        }
         Set<Integer> positions = new TreeSet<>();
         for (int i = 0; i < tests.size(); i++) {
             if (tests.get(i).verdict() == verdict) {
@@ -242,6 +255,9 @@ final class ExperimentDecider {
     }
 
     private void tell(boolean trustChanged, NoticeWriter.Told told, List<ChallengerTest> settled) {
+        if (detail == Detail.BARE) {
+            return;
+        }
         DecisionRecord record = decisions.get(decisions.size() - 1);
         if (trustChanged) {
             notices.add(writer.trust(record, told));

@@ -71,10 +71,12 @@ final class LookReport {
                 sitting.found().difference(),
                 finite(lower),
                 finite(upper),
-                bare ? null : liftScale(sitting.strata())
-                        .map(lift -> estimated(lift.lift(new Estimate(
-                                sitting.found().difference(), new Interval(lower, upper, 1 - levels.both())))))
-                        .orElse(null),
+                bare
+                        ? null
+                        : liftScale(sitting.strata())
+                                .map(lift -> estimated(lift.lift(new Estimate(
+                                        sitting.found().difference(), new Interval(lower, upper, 1 - levels.both())))))
+                                .orElse(null),
                 ended && outcome.finding() != Verdict.STOP_FUTILITY ? null : outlook(look, z, bounds.critical()),
                 ended && !bare ? adjusted(sitting, levels, looks) : null,
                 outcome.verdict(),

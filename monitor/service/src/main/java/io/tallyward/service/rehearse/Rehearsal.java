@@ -25,12 +25,13 @@ public final class Rehearsal {
     /** Blocks that may wait for each thread, so that a long rehearsal needs no more memory than a short one. */
     private static final int BLOCKS_AHEAD = 4;
 
-    /** Looks whose bounds are remembered: plenty where information is planned, and some tens of megabytes where it is not. */
-    private static final int LOOKS_REMEMBERED = 100_000;
+    /** Looks whose bounds a thread remembers: plenty where information is planned, and a few megabytes where it is not. */
+    private static final int LOOKS_REMEMBERED = 20_000;
 
     private final RehearsalRequest request;
     private final RehearsedPlan rehearsed;
     private final RunSimulation simulation;
+    private final ThreadLocal<DecisionMemo> memo = ThreadLocal.withInitial(() -> new DecisionMemo(LOOKS_REMEMBERED));
     private final double[] trueDifferences;
 
     /**
@@ -49,7 +50,7 @@ public final class Rehearsal {
             designs.put(challenger.name(), PlanDesign.of(plan, challenger));
         }
         rehearsed = RehearsedPlan.of(plan, designs, request.perDay());
-        simulation = new RunSimulation(rehearsed, request, new DecisionMemo(LOOKS_REMEMBERED));
+        simulation = new RunSimulation(rehearsed, request);
         trueDifferences = simulation.trueDifferences();
     }
 
@@ -89,7 +90,7 @@ public final class Rehearsal {
             if (Thread.interrupted()) {
                 throw new InterruptedException("the rehearsal was given up");
             }
-            statistics.add(simulation.run(index), trueDifferences);
+            statistics.add(simulation.run(index, memo.get()), trueDifferences);
         }
         return statistics;
     }

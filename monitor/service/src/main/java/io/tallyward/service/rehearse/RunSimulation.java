@@ -37,18 +37,16 @@ final class RunSimulation {
     private final RehearsedPlan rehearsed;
     private final RehearsalRequest request;
     private final double[] rates;
-    private final DecisionMemo memo;
     private final String planDigest;
     private final int stepsAtOnce;
     private final double[] trueDifferences;
     private final double naiveBenefit;
     private final double naiveHarm;
 
-    RunSimulation(RehearsedPlan rehearsed, RehearsalRequest request, DecisionMemo memo) {
+    RunSimulation(RehearsedPlan rehearsed, RehearsalRequest request) {
         this.rehearsed = rehearsed;
         this.request = request;
         rates = request.rates();
-        this.memo = memo;
         Plan plan = rehearsed.plan();
         planDigest = PlanDigest.of(plan);
         stepsAtOnce = stepsAtOnce(rehearsed);
@@ -82,8 +80,12 @@ final class RunSimulation {
         return trueDifferences.clone();
     }
 
-    /** One run. */
-    RunResult run(long index) {
+    /**
+     * One run.
+     *
+     * @param memo what earlier runs of the same thread have computed
+     */
+    RunResult run(long index, DecisionMemo memo) {
         Traffic traffic = traffic(index);
         DecideShard shard =
                 new DecideShard(List.of(rehearsed.plan()), memo, request.estimates() ? Detail.FULL : Detail.BARE);

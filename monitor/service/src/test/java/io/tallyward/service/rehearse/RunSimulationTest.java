@@ -25,18 +25,18 @@ class RunSimulationTest {
     void decidesAsIfEachStepHadComeAlone(String looks) {
         String text = Quay.TEN_LOOKS.replace("every: P2D", looks);
         RehearsedPlan rehearsed = rehearsed(text);
-        RunSimulation simulation = new RunSimulation(rehearsed, Quay.request(1, 0.12, 0.15), new DecisionMemo(1_000));
+        RunSimulation simulation = new RunSimulation(rehearsed, Quay.request(1, 0.12, 0.15));
         for (long index = 0; index < 12; index++) {
-            RunResult result = simulation.run(index);
+            RunResult result = simulation.run(index, new DecisionMemo(1_000));
             Follower follower = stepByStep(simulation, rehearsed, index);
             Challenger wide = follower.challengers().get(0);
             assertEquals(wide.ending(), result.arms().get(0).ending());
             assertEquals(wide.looks().size(), result.arms().get(0).looks());
             assertEquals(follower.looks(), result.looks());
             assertEquals(follower.endMillis() - rehearsed.startMillis(0), result.millis());
-            assertEquals(result, simulation.run(index));
+            assertEquals(result, simulation.run(index, new DecisionMemo(1_000)));
         }
-        assertNotEquals(simulation.run(0), simulation.run(1));
+        assertNotEquals(simulation.run(0, new DecisionMemo(1_000)), simulation.run(1, new DecisionMemo(1_000)));
     }
 
     private static Follower stepByStep(RunSimulation simulation, RehearsedPlan rehearsed, long index) {
@@ -53,7 +53,7 @@ class RunSimulationTest {
     @Test
     void countsTheTrialsUntilTheVerdict() {
         RehearsedPlan rehearsed = rehearsed(Quay.TEN_LOOKS);
-        RunResult result = new RunSimulation(rehearsed, Quay.request(1, 0.12, 0.5), new DecisionMemo(10)).run(3);
+        RunResult result = new RunSimulation(rehearsed, Quay.request(1, 0.12, 0.5)).run(3, new DecisionMemo(10));
         long days = result.millis() / 86_400_000;
         assertEquals(4, days);
         assertEquals(rehearsed.arrivalsBefore(4), result.trials());
