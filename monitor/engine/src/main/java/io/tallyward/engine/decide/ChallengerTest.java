@@ -118,6 +118,7 @@ final class ChallengerTest {
         List<Stratum> strata = counts.strata(variant);
         Optional<StratifiedComparison> comparison = StratifiedComparison.of(strata);
         double fraction = comparison.map(found -> fraction(found, strata)).orElse(0.0);
+        double clock = comparison.map(found -> clock(found, fraction)).orElse(0.0);
         boolean minimumRunOver = minimumRunOver(windowEnd);
         if (!runEnds && !calendar.isDue(windowEnd, fraction, minimumRunOver)) {
             return new Attempt.NotDue();
@@ -128,7 +129,7 @@ final class ChallengerTest {
         Optional<String> caution = readiness.tooSkew(
                 strata, TailSpending.at(plan, levels, time, benefitOpen), TailSpending.all(plan, levels));
         Optional<String> obstacle =
-                readiness.tooFew(counts).or(() -> runEnds ? Optional.empty() : growing(fraction, caution));
+                readiness.tooFew(counts).or(() -> runEnds ? Optional.empty() : growing(fraction, clock, caution));
         if (comparison.isEmpty() || obstacle.isPresent()) {
             return new Attempt.Delayed(obstacle.orElse(""), calendar.delayed());
         }
@@ -136,11 +137,12 @@ final class ChallengerTest {
                 strata,
                 comparison.get(),
                 fraction,
+                clock,
                 windowEnd,
                 time,
                 benefitOpen,
                 last,
-                runEnds && !looks.isEmpty() && Readiness.stands(fraction, lastInformation()),
+                runEnds && !looks.isEmpty() && stands(fraction, clock),
                 caution.orElse(""));
         calendar.taken(windowEnd, fraction);
         return new Attempt.Taken(judge(sound));
@@ -161,6 +163,18 @@ final class ChallengerTest {
         return trials / (planned * pooled * (1 - pooled));
     }
 
+    /**
+     * What the correlation of looks goes by: information, while there is a single stratum. With allocation epochs whose rates
+     * may differ it is the variance of the score, on the scale of the plan.
+     */
+    private double clock(StratifiedComparison found, double fraction) {
+        if (plan.epochs().isEmpty()) {
+            return fraction;
+        }
+        double pooled = design().pooledRate() * (1 - design().pooledRate());
+        return found.scoreVariance() / (design().maximumInformation() * pooled * pooled);
+    }
+
     private double spendingTime(double fraction, long windowEnd) {
         if (plan.test().clock() == SpendingClock.INFORMATION) {
             return StrictMath.min(fraction, 1);
@@ -170,15 +184,20 @@ final class ChallengerTest {
     }
 
     /** A look before the end of the run waits for information, and for counts that the normal law describes. */
-    private Optional<String> growing(double fraction, Optional<String> caution) {
-        double before = lastInformation();
-        return Readiness.stands(fraction, before)
-                ? Optional.of(Readiness.standing(fraction, before))
+    private Optional<String> growing(double fraction, double clock, Optional<String> caution) {
+        return stands(fraction, clock)
+                ? Optional.of(Readiness.standing(fraction, lastFraction()))
                 : caution.map(text -> text + " (a look needs " + Readiness.MOST_ERROR_PERCENT + " % or less)");
     }
 
-    private double lastInformation() {
-        return lastLook().map(look -> look.look().information()).orElse(0.0);
+    /** Whether hardly anything has come in since the last look, by either clock. */
+    private boolean stands(double fraction, double clock) {
+        double clockBefore = lastLook().map(look -> look.look().information()).orElse(0.0);
+        return Readiness.stands(fraction, lastFraction()) || Readiness.clockStands(clock, clockBefore);
+    }
+
+    private double lastFraction() {
+        return lastLook().map(look -> look.comparison().informationFraction()).orElse(0.0);
     }
 
     /**
@@ -229,7 +248,8 @@ final class ChallengerTest {
                 && sitting.fraction() <= 1 - Readiness.LEAST_GROWTH
                 && (futility.looksAhead() || detail == Detail.FULL);
         TailSpending end = foresee ? TailSpending.all(plan, levels) : null;
-        LookPath.Bounds found = path().next(new LookPath.Request(sitting.fraction(), spent, betaSpent, end));
+        LookPath.Bounds found =
+                path().next(new LookPath.Request(sitting.clock(), sitting.fraction(), spent, betaSpent, end));
         return futility.looksAhead() && foresee
                 ? new LookPath.Bounds(
                         found.look(),
@@ -317,6 +337,7 @@ final class ChallengerTest {
                 double time = taken.comparison().spendingTime();
                 LookPath.Request request = new LookPath.Request(
                         taken.look().information(),
+                        taken.comparison().informationFraction(),
                         TailSpending.at(plan, levels, time, taken.benefitOpen()),
                         taken.betaSpent(),
                         null);

@@ -36,12 +36,13 @@ final class LookPath {
     /**
      * What a look brings along.
      *
-     * @param information relative to the planned maximum
+     * @param clock what the correlation of looks goes by
+     * @param fraction information relative to the planned maximum
      * @param spent error the tails may have spent by now
      * @param betaSpent type II error that futility may have spent by now; 0 when it spends none
      * @param end error the tails may spend in all, if the boundary of a last look is to be foreseen; else null
      */
-    record Request(double information, TailSpending spent, double betaSpent, TailSpending end) {}
+    record Request(double clock, double fraction, TailSpending spent, double betaSpent, TailSpending end) {}
 
     /**
      * What a look gets.
@@ -95,11 +96,11 @@ final class LookPath {
             boundaries.resume(bounds.get(i).look());
         }
         Look look = boundaries.next(
-                request.information(), request.spent().upper(), request.spent().lower());
+                request.clock(), request.spent().upper(), request.spent().lower());
         return new Bounds(
                 look,
                 request.betaSpent() > 0 ? futility(request, look) : Double.NEGATIVE_INFINITY,
-                request.end() == null ? Double.POSITIVE_INFINITY : critical(request.end()));
+                request.end() == null ? Double.POSITIVE_INFINITY : critical(request));
     }
 
     private double futility(Request request, Look look) {
@@ -109,16 +110,22 @@ final class LookPath {
         for (int i = futility.looks(); i < bounds.size(); i++) {
             Look past = bounds.get(i).look();
             futility.resume(
-                    past.information(),
+                    requests.get(i).fraction(),
                     benefit(past),
                     requests.get(i).betaSpent(),
                     bounds.get(i).futility());
         }
-        return futility.next(look.information(), benefit(look), request.betaSpent());
+        return futility.next(request.fraction(), benefit(look), request.betaSpent());
     }
 
-    private double critical(TailSpending end) {
-        return benefit(boundaries.copy().next(1, end.upper(), end.lower()));
+    /** From here on both clocks are taken to run at the pace they have had so far. */
+    private double critical(Request request) {
+        return benefit(boundaries
+                .copy()
+                .next(
+                        request.clock() / request.fraction(),
+                        request.end().upper(),
+                        request.end().lower()));
     }
 
     private double benefit(Look look) {

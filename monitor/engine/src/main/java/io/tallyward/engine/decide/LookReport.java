@@ -61,7 +61,7 @@ final class LookReport {
                 look.number(),
                 z,
                 sitting.found().information(),
-                look.information(),
+                sitting.fraction(),
                 sitting.time(),
                 levels.both(),
                 look.upperSpent() + look.lowerSpent(),
@@ -77,19 +77,21 @@ final class LookReport {
                                 .map(lift -> estimated(lift.lift(new Estimate(
                                         sitting.found().difference(), new Interval(lower, upper, 1 - levels.both())))))
                                 .orElse(null),
-                ended && outcome.finding() != Verdict.STOP_FUTILITY ? null : outlook(look, z, bounds.critical()),
+                ended && outcome.finding() != Verdict.STOP_FUTILITY
+                        ? null
+                        : outlook(sitting.fraction(), z, bounds.critical()),
                 ended && !bare ? adjusted(sitting, levels, looks) : null,
                 outcome.verdict(),
                 outcome.heldOrNull(),
                 bare ? "" : reason(z, look, outcome, sitting.caution()));
     }
 
-    private Outlook outlook(Look look, double z, double critical) {
+    private Outlook outlook(double fraction, double z, double critical) {
         if (Double.isInfinite(critical) || detail == Detail.BARE) {
             return null;
         }
         ConditionalPower power = ConditionalPower.of(
-                look.information(), higherIsBetter ? z : -z, new double[] {1}, new double[] {critical}, new double[] {
+                fraction, higherIsBetter ? z : -z, new double[] {1}, new double[] {critical}, new double[] {
                     Double.NEGATIVE_INFINITY
                 });
         return new Outlook(power.underTrend(), power.under(drift), power.withoutEffect(), power.predictive());
@@ -100,17 +102,25 @@ final class LookReport {
         double upperLevel = higherIsBetter ? levels.benefit() : levels.harm();
         double lowerLevel = higherIsBetter ? levels.harm() : levels.benefit();
         Estimate estimate = new Estimate(stop.medianUnbiasedDrift(), interval(stop, upperLevel, lowerLevel));
-        Estimate difference =
-                new EffectScale(sitting.found().information() / sitting.fraction()).riskDifference(estimate);
+        double clock = looks.get(looks.size() - 1).information();
+        Estimate difference = new EffectScale(sitting.found().information() / clock).riskDifference(estimate);
         return new Adjusted(
                 pValue(stop, levels.both(), upperLevel, lowerLevel),
                 estimate.interval().level(),
-                estimated(estimate),
+                estimated(scaled(estimate, StrictMath.sqrt(clock / sitting.fraction()))),
                 estimated(difference),
                 liftScale(sitting.strata())
                         .filter(lift -> StrictMath.abs(difference.value()) <= 1)
                         .map(lift -> estimated(lift.lift(difference)))
                         .orElse(null));
+    }
+
+    /** From the clock of the looks to that of information. */
+    private static Estimate scaled(Estimate drift, double factor) {
+        Interval interval = drift.interval();
+        return new Estimate(
+                drift.value() * factor,
+                new Interval(interval.lower() * factor, interval.upper() * factor, interval.level()));
     }
 
     /** The smaller of the tails' p-values, each weighted by its share of the level; at most 1. */

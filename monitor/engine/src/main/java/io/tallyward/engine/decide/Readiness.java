@@ -17,6 +17,9 @@ final class Readiness {
      */
     static final double LEAST_GROWTH = 0.001;
 
+    /** Ten times what boundaries can still tell apart. */
+    private static final double LEAST_MOTION = 1e-5;
+
     /**
      * Per cent of a direction's level by which skewness may raise its error at a look. Small counts in arms of unequal size
      * make one tail heavier than the normal law says; a tenth of the level is what rounding to one digit would hide.
@@ -55,6 +58,11 @@ final class Readiness {
     /** Whether information has hardly grown since the last look. */
     static boolean stands(double fraction, double before) {
         return fraction - before < LEAST_GROWTH;
+    }
+
+    /** Whether a clock on another scale has hardly moved: by less than a hundred-thousandth of its reading. */
+    static boolean clockStands(double clock, double before) {
+        return clock - before < LEAST_MOTION * clock;
     }
 
     /** The same in words. */

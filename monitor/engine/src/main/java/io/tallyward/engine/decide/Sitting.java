@@ -10,6 +10,7 @@ import java.util.List;
  * @param strata the counts of challenger and control, one stratum per allocation epoch
  * @param found their comparison
  * @param fraction information relative to the planned maximum
+ * @param clock what the correlation of looks goes by, on about the same scale
  * @param windowEnd event time of the look, milliseconds since the epoch
  * @param time moment on the spending clock, in [0, 1]; 1 at the last look
  * @param benefitOpen whether the minimum run is over
@@ -21,6 +22,7 @@ record Sitting(
         List<Stratum> strata,
         StratifiedComparison found,
         double fraction,
+        double clock,
         long windowEnd,
         double time,
         boolean benefitOpen,

@@ -233,8 +233,8 @@ class DecideRecordTest {
         assertTrue(looks > 25, "looks: " + looks);
     }
 
-    /** What a look of the past spent by. */
-    private record Request(double information, double time, boolean benefitOpen) {}
+    /** What a look of the past spent by; over epochs looks are correlated by the variance of the score. */
+    private record Request(double clock, double time, boolean benefitOpen) {}
 
     /** Holm's procedure in each direction: alpha over the challengers whose finding in that direction is not told yet. */
     private static TailLevels levels(Plan plan, String variant, List<Notice> notices, DecisionRecord record) {
@@ -290,13 +290,17 @@ class DecideRecordTest {
                 || !record.windowEnd()
                         .isBefore(plan.run().from().plus(plan.run().atLeast()));
         boolean last = runEnds || (look.informationFraction() >= 1 && benefitOpen);
-        path.add(new Request(look.informationFraction(), last ? 1 : look.informationFraction(), benefitOpen));
+        double rate = design.pooledRate();
+        double clock = plan.epochs().isEmpty()
+                ? look.informationFraction()
+                : variance / (design.maximumInformation() * Math.pow(rate * (1 - rate), 2));
+        path.add(new Request(clock, last ? 1 : look.informationFraction(), benefitOpen));
         BoundarySequence sequence = new BoundarySequence();
         Look expected = null;
         for (Request request : path) {
             SpendingFunction spending = SpendingFunctions.of(plan.test().benefit());
             expected = sequence.next(
-                    request.information(),
+                    request.clock(),
                     request.benefitOpen() ? spending.spent(levels.benefit(), request.time()) : 0,
                     spending.spent(levels.harm(), request.time()));
         }

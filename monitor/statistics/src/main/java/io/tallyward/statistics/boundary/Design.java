@@ -27,6 +27,10 @@ public record Design(
 
     public Design {
         looks = List.copyOf(looks);
+        requirePositive("drift", drift);
+        requirePositive("fixedSampleDrift", fixedSampleDrift);
+        requirePositive("expectedFractionWithoutEffect", expectedFractionWithoutEffect);
+        requirePositive("expectedFraction", expectedFraction);
     }
 
     /**
@@ -112,5 +116,11 @@ public record Design(
             DesignRequest request, List<Look> boundaries, double[] futility, double drift) {
         double[] upper = boundaries.stream().mapToDouble(Look::upper).toArray();
         return ExitProbabilities.of(request.fractions(), upper, futility, drift);
+    }
+
+    private static void requirePositive(String name, double value) {
+        if (!(value > 0 && value < Double.POSITIVE_INFINITY)) {
+            throw new IllegalArgumentException(name + ": " + value + " (expected: positive and finite)");
+        }
     }
 }

@@ -36,6 +36,10 @@ public record DesignRequest(
         if (fractions.length == 0) {
             throw new IllegalArgumentException("fractions: none (expected: at least one look)");
         }
+        if (!(fractions[fractions.length - 1] > 0 && fractions[fractions.length - 1] <= BoundarySequence.MOST)) {
+            throw new IllegalArgumentException("fractions[" + (fractions.length - 1) + "]: "
+                    + fractions[fractions.length - 1] + " (expected: above 0, at most " + BoundarySequence.MOST + ")");
+        }
         for (int k = 0; k < fractions.length - 1; k++) {
             if (!(fractions[k] < 1)) {
                 throw new IllegalArgumentException("fractions[" + k + "]: " + fractions[k]

@@ -68,7 +68,16 @@ public final class ExitProfile {
      * @param probability that a path ever leaves this way first
      * @param slope derivative of {@code probability} with respect to the drift
      */
-    public record Exit(double probability, double slope) {}
+    public record Exit(double probability, double slope) {
+
+        public Exit {
+            if (!(StrictMath.abs(probability) < Double.POSITIVE_INFINITY
+                    && StrictMath.abs(slope) < Double.POSITIVE_INFINITY)) {
+                throw new IllegalArgumentException(
+                        "probability, slope: " + probability + ", " + slope + " (expected: finite)");
+            }
+        }
+    }
 
     /** The exit probabilities under a drift within the range prepared for. */
     public ExitProbabilities at(double drift) {

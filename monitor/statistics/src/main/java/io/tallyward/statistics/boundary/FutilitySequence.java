@@ -13,6 +13,9 @@ package io.tallyward.statistics.boundary;
  */
 public final class FutilitySequence {
 
+    /** Boundaries farther out than this are a mistake in units, and would need more nodes than there is room for. */
+    private static final double FARTHEST = 1000;
+
     private final double drift;
     private final ContinuationDensity density;
     private double spent;
@@ -78,8 +81,9 @@ public final class FutilitySequence {
 
     private void prepare(double information, double upperBoundary, double cumulativeBetaSpent) {
         BoundarySequence.requireGrowth("information", information, density.information());
-        if (Double.isNaN(upperBoundary)) {
-            throw new IllegalArgumentException("upperBoundary: NaN (expected: a number or an infinity)");
+        if (!(StrictMath.abs(upperBoundary) <= FARTHEST || Double.isInfinite(upperBoundary))) {
+            throw new IllegalArgumentException(
+                    "upperBoundary: " + upperBoundary + " (expected: within " + FARTHEST + " of 0, or an infinity)");
         }
         if (!(cumulativeBetaSpent >= spent && cumulativeBetaSpent < 1)) {
             throw new IllegalArgumentException(

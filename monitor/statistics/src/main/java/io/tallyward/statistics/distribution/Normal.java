@@ -47,9 +47,16 @@ public final class Normal {
         throw refused(x);
     }
 
-    /** Mills' ratio, {@link #survival} over {@link #density}, for {@code x >= 0}; relative error below 1e-15. */
+    /**
+     * Mills' ratio, {@link #survival} over {@link #density}; relative error below 1e-15.
+     *
+     * @param x 0 or more
+     */
     public static double millsRatio(double x) {
-        return 1 / hazard(x);
+        if (x >= 0) {
+            return 1 / hazard(x);
+        }
+        throw new IllegalArgumentException("x: " + x + " (expected: 0 or more)");
     }
 
     /** The natural logarithm of {@link #survival}; finite wherever {@code x*x} is. */

@@ -21,11 +21,17 @@ import java.util.Optional;
  * @param z the statistic of variant minus control; standard normal without an effect
  * @param difference the weighted difference of success rates, variant minus control; in [-1, 1]
  * @param information the inverse of the variance of {@code difference} without an effect; positive and finite
+ * @param scoreVariance {@code sum w p (1 - p)}, the variance of the score {@code sum w (p1 - p0)} without an effect. Scores of
+ *     disjoint data add up, so {@code Cov(z_j, z_k) = sqrt(V_j / V_k)} for an earlier look j and a later one k: over strata of
+ *     unlike rates this, and not {@code information}, is the clock that boundaries have to go by; positive and finite
  */
-public record StratifiedComparison(double z, double difference, double information) {
+public record StratifiedComparison(double z, double difference, double information, double scoreVariance) {
 
     public StratifiedComparison {
         requireValues(z, difference, information);
+        if (!(scoreVariance > 0 && scoreVariance < Double.POSITIVE_INFINITY)) {
+            throw new IllegalArgumentException("scoreVariance: " + scoreVariance + " (expected: positive and finite)");
+        }
     }
 
     /**
@@ -57,7 +63,8 @@ public record StratifiedComparison(double z, double difference, double informati
         return Optional.of(new StratifiedComparison(
                 excess / StrictMath.sqrt(variance),
                 StrictMath.max(-1, StrictMath.min(1, excess / weight)),
-                weight * (weight / variance)));
+                weight * (weight / variance),
+                variance));
     }
 
     /** {@code a n0 - b n1}, exact until it is rounded once: the products cancel to a small part of themselves. */
