@@ -127,7 +127,7 @@ final class ChallengerTest {
         boolean last = runEnds || (fraction >= 1 && benefitOpen);
         double time = last ? 1 : spendingTime(fraction, windowEnd);
         Optional<String> caution = readiness.tooSkew(
-                strata, TailSpending.at(plan, levels, time, benefitOpen), TailSpending.all(plan, levels));
+                strata, () -> TailSpending.at(plan, levels, time, benefitOpen), TailSpending.all(plan, levels));
         Optional<String> obstacle =
                 readiness.tooFew(counts).or(() -> runEnds ? Optional.empty() : growing(fraction, clock, caution));
         if (comparison.isEmpty() || obstacle.isPresent()) {

@@ -142,6 +142,19 @@ public final class DecideShard {
         return new DecideEffects(state, decisions, notices);
     }
 
+    /** The decisions since this was last asked, for a host that keeps no state and tells nobody. */
+    public List<DecisionRecord> drainDecisions() {
+        List<DecisionRecord> decisions = new ArrayList<>();
+        for (ExperimentDecider decider : deciders.values()) {
+            decisions.addAll(decider.takeDecisions());
+            decider.takeNotices();
+            decider.takeNewLooks();
+            decider.takeChangedWindows();
+            decider.takeChanged();
+        }
+        return decisions;
+    }
+
     private static byte[] experimentKey(String experiment) {
         return pack(out -> {
             out.writeByte(EXPERIMENT);

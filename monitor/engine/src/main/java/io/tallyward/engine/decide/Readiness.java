@@ -7,6 +7,7 @@ import io.tallyward.statistics.proportion.Stratum;
 import java.util.List;
 import java.util.Locale;
 import java.util.Optional;
+import java.util.function.Supplier;
 
 /** Whether the counts bear a look at one challenger. */
 final class Readiness {
@@ -25,6 +26,9 @@ final class Readiness {
      * make one tail heavier than the normal law says; a tenth of the level is what rounding to one digit would hide.
      */
     static final int MOST_ERROR_PERCENT = 10;
+
+    /** Where skewness adds most to a tail. */
+    private static final double WORST_BOUNDARY = Math.sqrt(3);
 
     private final Plan plan;
     private final int variant;
@@ -82,8 +86,14 @@ final class Readiness {
      * @param spent error the tails may have spent by this look
      * @param all error they may spend in all
      */
-    Optional<String> tooSkew(List<Stratum> strata, TailSpending spent, TailSpending all) {
+    Optional<String> tooSkew(List<Stratum> strata, Supplier<TailSpending> spent, TailSpending all) {
         double skewness = NormalError.skewness(strata);
+        double largest = NormalError.tail(Math.abs(skewness), WORST_BOUNDARY);
+        double least = Math.min(all.upper() > 0 ? all.upper() : 1, all.lower() > 0 ? all.lower() : 1);
+        return 100 * largest <= MOST_ERROR_PERCENT * least ? Optional.empty() : tooSkew(skewness, spent.get(), all);
+    }
+
+    private static Optional<String> tooSkew(double skewness, TailSpending spent, TailSpending all) {
         double error = StrictMath.max(
                 share(skewness, spent.upper(), all.upper()), share(-skewness, spent.lower(), all.lower()));
         return 100 * error > MOST_ERROR_PERCENT

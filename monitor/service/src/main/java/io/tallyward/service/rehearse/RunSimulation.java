@@ -92,7 +92,7 @@ final class RunSimulation {
         Follower follower = new Follower(rehearsed.plan());
         for (int step = 0; step < rehearsed.steps() && !follower.over(); step += stepsAtOnce) {
             shard.apply(update(traffic, step, Math.min(rehearsed.steps(), step + stepsAtOnce)));
-            shard.drain().decisions().forEach(follower::take);
+            shard.drainDecisions().forEach(follower::take);
             follower.challengers().stream()
                     .filter(Challenger::settled)
                     .forEach(challenger -> traffic.leaveOut(challenger.variant()));
