@@ -8,6 +8,7 @@ import io.tallyward.engine.plan.Tail;
 import io.tallyward.engine.plan.TestPlan;
 import io.tallyward.engine.plan.TestPlan.Better;
 import io.tallyward.service.command.PlannedComparison.Scenario;
+import io.tallyward.service.plan.PlanWords;
 import io.tallyward.statistics.boundary.Look;
 import io.tallyward.statistics.distribution.Normal;
 import io.tallyward.statistics.proportion.SampleSize;

@@ -3,6 +3,7 @@ package io.tallyward.service.command;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.TestPlan.Better;
 import io.tallyward.engine.plan.TestPlan.Sides;
+import io.tallyward.engine.plan.TestPlan.SpendingClock;
 import java.util.ArrayList;
 import java.util.List;
 
@@ -40,6 +41,9 @@ final class BoundariesLegend {
             entry("until", "event time up to which its data go, if traffic comes at an even pace");
         }
         entry("information", "share of the planned information that is in at that look");
+        if (plan.test().clock() == SpendingClock.CALENDAR) {
+            entry("", "the clock is the calendar; the tables take it that both go at an even pace");
+        }
         entry("trials", "planned trials of all variants by then");
         entry(
                 "alpha spent",

@@ -3,6 +3,7 @@ package io.tallyward.service.command;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.service.command.PlannedComparison.FirstCell;
 import io.tallyward.service.config.document.ScalarType;
+import io.tallyward.service.plan.PlanWords;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Locale;

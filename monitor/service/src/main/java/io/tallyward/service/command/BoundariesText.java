@@ -7,6 +7,7 @@ import io.tallyward.engine.plan.TestPlan;
 import io.tallyward.engine.plan.TestPlan.AlphaSharing;
 import io.tallyward.service.command.PlannedComparison.PassedOn;
 import io.tallyward.service.config.document.ScalarType;
+import io.tallyward.service.plan.PlanWords;
 import io.tallyward.statistics.proportion.SampleSize;
 import java.util.ArrayList;
 import java.util.HashMap;

@@ -32,8 +32,9 @@ final class Table {
     }
 
     /**
-     * Puts a title above the next columns that have none; the first column never has one.
+     * Puts a title above the next columns; the first column never has one.
      *
+     * @param title may be empty
      * @param columns how many columns it stands above
      */
     Table group(String title, int columns) {
@@ -67,10 +68,9 @@ final class Table {
         StringBuilder line = new StringBuilder(" ".repeat(widths[0]));
         for (Group group : groups) {
             int width = group.width(widths);
-            String title = width > group.title().length() + 1
-                    ? "-".repeat(width - group.title().length() - 1) + " " + group.title()
-                    : group.title();
-            line.append(GAP).append(title);
+            int rest = width - group.title().length();
+            String stroke = rest < 2 || group.title().isEmpty() ? " ".repeat(rest) : "-".repeat(rest - 1) + " ";
+            line.append(GAP).append(stroke).append(group.title());
         }
         return line.toString();
     }

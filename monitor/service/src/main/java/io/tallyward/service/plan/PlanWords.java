@@ -1,4 +1,4 @@
-package io.tallyward.service.command;
+package io.tallyward.service.plan;
 
 import io.tallyward.engine.plan.FutilityPlan;
 import io.tallyward.engine.plan.FutilityPlan.Assumption;
@@ -8,39 +8,39 @@ import java.math.BigDecimal;
 import java.math.RoundingMode;
 import java.util.Locale;
 
-/** The parts of a plan in words, as commands print them. */
-final class PlanWords {
+/** The parts of a plan in words, as commands print and pages show them. */
+public final class PlanWords {
 
     private PlanWords() {}
 
     /** The name of a constant as plans have it. */
-    static String code(Enum<?> constant) {
+    public static String code(Enum<?> constant) {
         return constant.name().toLowerCase(Locale.ROOT).replace('_', '-');
     }
 
     /** How a direction spends its error. */
-    static String spending(Tail tail) {
+    public static String spending(Tail tail) {
         return tail.spending().code()
                 + (tail.silentBefore() > 0
                         ? ", nothing before " + shortest(tail.silentBefore()) + " of the clock"
                         : "");
     }
 
-    static String clock(TestPlan test) {
+    public static String clock(TestPlan test) {
         return switch (test.clock()) {
             case INFORMATION -> "information: error is spent as information comes in";
-            case CALENDAR -> "calendar: error is spent as the longest run passes; the table shows an even pace";
+            case CALENDAR -> "calendar: error is spent as the longest run passes";
         };
     }
 
-    static String measure(TestPlan test) {
+    public static String measure(TestPlan test) {
         return switch (test.measure()) {
             case OBSERVED -> "observed: by trials and the success rates seen";
             case TRIALS -> "trials: as if the success rates were those of the plan";
         };
     }
 
-    static String futility(FutilityPlan rule) {
+    public static String futility(FutilityPlan rule) {
         if (rule instanceof FutilityPlan.ErrorSpending errors) {
             return "the chance of missing the smallest effect is spent by "
                     + errors.spending().code();
@@ -62,7 +62,7 @@ final class PlanWords {
     }
 
     /** A figure of the plan without the noise of binary arithmetic. */
-    static String shortest(double value) {
+    public static String shortest(double value) {
         return BigDecimal.valueOf(value)
                 .setScale(9, RoundingMode.HALF_EVEN)
                 .stripTrailingZeros()
