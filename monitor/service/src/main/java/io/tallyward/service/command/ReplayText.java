@@ -140,7 +140,7 @@ final class ReplayText {
 
     private static List<String> estimate(Comparison look) {
         Adjusted adjusted = look.adjusted();
-        Table table = new Table(look.variant() + " at the end", "estimate", "from", "to", "p-value");
+        Table table = new Table(look.variant() + ", when it ended", "estimate", "from", "to", "p-value");
         String interval = String.format(Locale.ROOT, "%.4g %%", 100 * adjusted.level());
         table.group("", 1).group("interval, " + interval, 2);
         table.row(

@@ -93,8 +93,8 @@ final class EffectFacts {
 
     private static String outlook(Comparison look) {
         Outlook outlook = look.outlook();
-        return (look.adjusted() == null ? "" : "If it were carried on: ")
-                + "chance to find a benefit at the planned end " + Figures.wholePercent(outlook.underTrend())
+        return (look.adjusted() == null ? "Chance" : "If it were carried on: chance")
+                + " to find a benefit at the planned end " + Figures.wholePercent(outlook.underTrend())
                 + " if the effect seen so far goes on, " + Figures.wholePercent(outlook.underDesign())
                 + " if it is the smallest worth finding, " + Figures.wholePercent(outlook.withoutEffect())
                 + " if there is none; " + Figures.wholePercent(outlook.predictive())

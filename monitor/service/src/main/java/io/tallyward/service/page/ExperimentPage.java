@@ -67,7 +67,10 @@ final class ExperimentPage {
 
     private static void verdict(Markup html, Standing standing) {
         Verdict verdict = standing.view().verdict();
-        Words words = Wording.of(verdict).with(action(standing, verdict));
+        List<String> ended = standing.ended();
+        Words words = verdict.settled() || ended.isEmpty()
+                ? Wording.of(verdict).with(action(standing, verdict))
+                : Wording.partly(verdict, ended, standing.endedActions());
         if (standing.view().trust() != Trust.SOUND && !verdict.settled()) {
             words = Wording.untrusted(words, standing.heldInWords());
         }

@@ -198,7 +198,7 @@ class PagesTest {
         assertTrue(text.contains("Difference so far, naive−0.05 points"), text);
         assertTrue(
                 text.contains(
-                        "Outlookchance to find a benefit at the planned end 42 % if the effect seen so far goes on,"
+                        "OutlookChance to find a benefit at the planned end 42 % if the effect seen so far goes on,"
                                 + " 81 % if it is the smallest worth finding, 3 % if there is none; 39 % averaged over what the data say."));
         assertFalse(
                 text(Northwater.with(Northwater.fareChip(), Verdict.CONTINUE, Trust.LATE))
@@ -211,6 +211,14 @@ class PagesTest {
         assertTrue(text(Northwater.deckMapPassedOn()).contains("Level in force0.05, raised from 0.025:"));
         assertFalse(text(Northwater.deckMap()).contains("Level in force"));
         assertFalse(text(Northwater.quayBanner()).contains("Level in force"));
+    }
+
+    @Test
+    void tellsThatSomeHaveTheirVerdictWhileOthersGoOn() {
+        String text = text(Northwater.deckMapPassedOn());
+        assertTrue(text.contains("The verdict on map is reached; no boundary was crossed by the others, which go on."));
+        assertTrue(text.contains("The owner may end the experiment and keep map. Let the others run."));
+        assertFalse(text.contains("neither a benefit nor a harm is established"));
     }
 
     @Test
