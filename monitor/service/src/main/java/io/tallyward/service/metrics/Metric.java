@@ -109,19 +109,19 @@ enum Metric {
     ADJUSTED_DIFFERENCE(
             "tallyward_adjusted_difference",
             Kind.GAUGE,
-            "Difference of rates adjusted for the looks taken; absent until the comparison has ended.",
+            "Difference of rates adjusted for the looks taken; absent until a final verdict is told.",
             "experiment",
             "variant"),
     ADJUSTED_DIFFERENCE_LOWER(
             "tallyward_adjusted_difference_lower",
             Kind.GAUGE,
-            "Lower end of its confidence interval; absent until the comparison has ended, or when unbounded.",
+            "Lower end of its confidence interval; absent until a final verdict is told, or when unbounded.",
             "experiment",
             "variant"),
     ADJUSTED_DIFFERENCE_UPPER(
             "tallyward_adjusted_difference_upper",
             Kind.GAUGE,
-            "Upper end of its confidence interval; absent until the comparison has ended, or when unbounded.",
+            "Upper end of its confidence interval; absent until a final verdict is told, or when unbounded.",
             "experiment",
             "variant"),
 

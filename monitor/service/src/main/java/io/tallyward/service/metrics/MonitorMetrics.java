@@ -160,7 +160,7 @@ public final class MonitorMetrics {
         if (look.outlook() != null) {
             sheet.put(Metric.PREDICTIVE_POWER, look.outlook().predictive(), labels);
         }
-        if (look.adjusted() != null) {
+        if (look.adjusted() != null && look.held() == null) {
             Estimated difference = look.adjusted().difference();
             sheet.put(Metric.ADJUSTED_DIFFERENCE, difference.value(), labels);
             sheet.putPresent(Metric.ADJUSTED_DIFFERENCE_LOWER, difference.lower(), labels);

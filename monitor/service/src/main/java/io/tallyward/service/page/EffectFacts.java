@@ -26,7 +26,7 @@ final class EffectFacts {
     static void write(Markup html, Standing standing, Comparison look) {
         html.open("dl", "class", "effect");
         if (look.adjusted() != null) {
-            adjusted(html, look.adjusted());
+            adjusted(html, look.adjusted(), look.held() != null);
         }
         OverviewPage.fact(html, naiveLabel(look), naive(look));
         level(html, standing, look);
@@ -36,8 +36,9 @@ final class EffectFacts {
         html.close();
     }
 
-    private static void adjusted(Markup html, Adjusted adjusted) {
-        html.open("div", "class", "adjusted").leaf("dt", "Effect, adjusted for the looks taken");
+    private static void adjusted(Markup html, Adjusted adjusted, boolean held) {
+        html.open("div", "class", "adjusted");
+        html.leaf("dt", "Effect, adjusted for the looks taken" + (held ? ", if the data could be trusted" : ""));
         html.open("dd").leaf("b", Figures.points(adjusted.difference().value()));
         html.text(" points, " + confidence(adjusted.level()) + " interval "
                 + ends(

@@ -133,7 +133,7 @@ class MonitorMetricsTest {
     }
 
     @Test
-    void adjustsOnceAComparisonHasEnded() {
+    void adjustsOnceAVerdictIsFinal() {
         board.publishExperiments(0, Map.of("deck-map", Northwater.deckMapPassedOn()));
         String text = exposition(board).text();
         String ended = "{experiment=\"deck-map\",variant=\"map\",} ";
@@ -144,6 +144,12 @@ class MonitorMetricsTest {
         }
         assertTrue(text.contains("tallyward_predictive_power" + open + "0.02"));
         assertFalse(text.contains("tallyward_predictive_power" + ended));
+    }
+
+    @Test
+    void keepsTheEstimatesOfAHeldVerdictBack() {
+        board.publishExperiments(0, Map.of("cabin-upsell", Northwater.cabinUpsell()));
+        assertFalse(exposition(board).text().contains("tallyward_adjusted_difference"));
     }
 
     @Test

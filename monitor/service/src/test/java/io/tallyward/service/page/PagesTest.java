@@ -187,6 +187,8 @@ class PagesTest {
         assertTrue(text.contains(naive), text);
         assertTrue(text.indexOf(adjusted) < text.indexOf(naive), "what may be quoted comes first");
         assertFalse(text.contains("Outlook"));
+        assertTrue(
+                text(Northwater.cabinUpsell()).contains("adjusted for the looks taken, if the data could be trusted+"));
         assertTrue(text(Northwater.cabinUpsell())
                 .contains("Not adjusted: a stop picks a moment at which it looks large."));
     }
