@@ -65,7 +65,9 @@ final class BoundariesCommand extends CommandBase {
                     file.toString(),
                     "the boundaries for " + challenger.name() + " cannot be computed: " + e.getMessage(),
                     "",
-                    "Choose fewer looks or another spending function.")));
+                    truth.isEmpty()
+                            ? "Choose fewer looks or another spending function."
+                            : "Choose rates that lie closer together, fewer looks or another spending function.")));
         }
     }
 }

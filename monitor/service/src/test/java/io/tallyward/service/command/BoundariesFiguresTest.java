@@ -192,6 +192,24 @@ class BoundariesFiguresTest {
         assertTrue(run.err().get(1).contains("plain=2"), run.err().get(1));
     }
 
+    /** Rates so far apart that z would be beyond 25 at the end: with futility there is no answer, and no wrong one. */
+    @Test
+    void refusesRatesThatLieTooFarApart() throws IOException {
+        String two = PlannedPathTest.PLAN.replace("sides: one", "sides: two");
+        CommandRun run = CommandRun.of("boundaries", "--plan", write(two).toString(), "--rates", "chip=0.5");
+        assertEquals(2, run.status());
+        assertEquals(1, run.err().size(), run.err().toString());
+        assertTrue(
+                run.err().get(0).contains("Choose rates that lie closer together"),
+                run.err().get(0));
+        JsonNode certain = json(PLAN, "--rates", "wide=0.5")
+                .get("comparisons")
+                .get(0)
+                .get("scenarios")
+                .get("rates");
+        assertEquals(1, certain.get("futilityObeyed").get("benefit").asDouble(), TOLERANCE);
+    }
+
     /** By hand: half of 0.06 and of 0.02 each; both shares pass on when the other challenger is found. */
     @Test
     void showsDirectionsAndHowLevelsArePassedOn() throws IOException {
