@@ -17,7 +17,7 @@ import java.util.Set;
  * @param benefit level of the direction of benefit, both over all looks
  * @param harm level of the direction of harm; 0 when harm is not tested
  */
-record TailLevels(double benefit, double harm) {
+public record TailLevels(double benefit, double harm) {
 
     /**
      * The levels of a challenger.
@@ -26,7 +26,7 @@ record TailLevels(double benefit, double harm) {
      * @param benefits positions of the challengers whose benefit is found
      * @param harms positions of the challengers whose harm is found
      */
-    static TailLevels of(Plan plan, int challenger, Set<Integer> benefits, Set<Integer> harms) {
+    public static TailLevels of(Plan plan, int challenger, Set<Integer> benefits, Set<Integer> harms) {
         return new TailLevels(
                 level(plan, plan.test().benefit(), challenger, benefits),
                 plan.test()

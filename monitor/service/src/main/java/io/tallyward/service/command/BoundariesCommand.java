@@ -1,27 +1,22 @@
 package io.tallyward.service.command;
 
-import com.fasterxml.jackson.databind.node.ArrayNode;
-import com.fasterxml.jackson.databind.node.ObjectNode;
 import io.tallyward.engine.decide.PlanDesign;
 import io.tallyward.engine.plan.Plan;
-import io.tallyward.engine.plan.TestPlan.Sides;
 import io.tallyward.engine.plan.Variant;
 import io.tallyward.service.config.document.BadInputException;
 import io.tallyward.service.config.document.Problem;
 import io.tallyward.service.plan.PlanReader;
-import io.tallyward.statistics.boundary.Look;
 import java.nio.file.Path;
-import java.util.LinkedHashMap;
+import java.util.ArrayList;
 import java.util.List;
-import java.util.Locale;
-import java.util.Map;
+import java.util.Optional;
 import picocli.CommandLine.Command;
 import picocli.CommandLine.Option;
 
 /** What a plan means before any data: its looks, boundaries and size. */
 @Command(
         name = "boundaries",
-        description = "Show the planned looks of a plan, their boundaries and how many trials it needs.",
+        description = "Show the planned looks of a plan: boundaries, trials, power and how likely it stops when.",
         mixinStandardHelpOptions = true,
         exitCodeListHeading = ExitCode.HEADING,
         exitCodeList = {
@@ -34,71 +29,45 @@ final class BoundariesCommand extends CommandBase {
     @Option(names = "--plan", required = true, paramLabel = "FILE", description = "The plan file.")
     private Path file;
 
+    @Option(
+            names = "--rates",
+            paramLabel = "NAME=RATE,...",
+            description =
+                    "Also show how the plan fares under these success rates, as in plain=0.12,wide=0.126. Variants that "
+                            + "are not named have the baseline of the plan.")
+    private String rates;
+
+    @Option(names = "--all-looks", description = "Print every look of a long plan, not one in every few.")
+    private boolean allLooks;
+
     @Override
     ExitCode run(Output output) throws BadInputException {
         Plan plan = PlanReader.read(file).orElseThrow();
-        Map<Variant, PlanDesign> designs = designs(plan);
+        Optional<double[]> truth = rates == null ? Optional.empty() : Optional.of(RateList.parse(rates, plan));
+        List<PlannedComparison> planned = new ArrayList<>();
+        for (Variant challenger : plan.challengers()) {
+            planned.add(planned(plan, challenger, truth));
+        }
         if (output.json()) {
-            output.line(json(plan, designs));
+            output.line(BoundariesJson.of(plan, planned));
         } else {
-            new BoundariesText(plan).lines(designs).forEach(output::line);
+            new BoundariesText(plan, allLooks).lines(planned).forEach(output::line);
         }
         return ExitCode.FINE;
     }
 
-    private Map<Variant, PlanDesign> designs(Plan plan) throws BadInputException {
-        Map<Variant, PlanDesign> designs = new LinkedHashMap<>();
-        for (Variant challenger : plan.challengers()) {
-            try {
-                designs.put(challenger, PlanDesign.of(plan, challenger));
-            } catch (IllegalArgumentException e) {
-                throw new BadInputException(List.of(Problem.of(
-                        file.toString(),
-                        "the boundaries for " + challenger.name() + " cannot be computed: " + e.getMessage(),
-                        "",
-                        "Choose fewer looks or another spending function.")));
-            }
+    private PlannedComparison planned(Plan plan, Variant challenger, Optional<double[]> truth)
+            throws BadInputException {
+        try {
+            return new PlannedComparison(plan, challenger, PlanDesign.of(plan, challenger), truth);
+        } catch (IllegalArgumentException e) {
+            throw new BadInputException(List.of(Problem.of(
+                    file.toString(),
+                    "the boundaries for " + challenger.name() + " cannot be computed: " + e.getMessage(),
+                    "",
+                    truth.isEmpty()
+                            ? "Choose fewer looks or another spending function."
+                            : "Choose rates that lie closer together, fewer looks or another spending function.")));
         }
-        return designs;
-    }
-
-    private static ObjectNode json(Plan plan, Map<Variant, PlanDesign> designs) {
-        ObjectNode object = Output.object().put("experiment", plan.experiment());
-        ArrayNode comparisons = object.putArray("comparisons");
-        designs.forEach((challenger, design) -> comparisons.add(comparison(plan, challenger, design)));
-        return object;
-    }
-
-    private static ObjectNode comparison(Plan plan, Variant challenger, PlanDesign design) {
-        ObjectNode object = Output.object()
-                .put("variant", challenger.name())
-                .put("alpha", design.alpha())
-                .put("sides", sides(plan.test().sides()))
-                .put("spending", plan.test().benefit().spending().code());
-        PlannedPath path = new PlannedPath(plan, design);
-        ArrayNode looks = object.putArray("looks");
-        for (Look look : design.looks()) {
-            ObjectNode entry = looks.addObject()
-                    .put("look", look.number())
-                    .put("informationFraction", look.information())
-                    .put("alphaSpent", look.upperSpent() + look.lowerSpent())
-                    .put("upper", finite(look.upper()))
-                    .put("lower", finite(look.lower()));
-            if (plan.futility().isPresent()) {
-                entry.put("futility", finite(path.futility(look.number() - 1)));
-            }
-        }
-        object.put("maximumInformation", design.maximumInformation());
-        ObjectNode trials = object.putObject("trialsPerVariant");
-        design.trials().forEach(trials::put);
-        return object.put("inflation", design.inflation());
-    }
-
-    static String sides(Sides sides) {
-        return sides.name().toLowerCase(Locale.ROOT);
-    }
-
-    private static Double finite(double boundary) {
-        return Double.isFinite(boundary) ? Double.valueOf(boundary) : null;
     }
 }

@@ -1,132 +1,230 @@
 package io.tallyward.service.command;
 
-import io.tallyward.engine.decide.PlanDesign;
 import io.tallyward.engine.plan.LookSchedule;
 import io.tallyward.engine.plan.Plan;
-import io.tallyward.engine.plan.TestPlan.Better;
-import io.tallyward.engine.plan.TestPlan.Sides;
-import io.tallyward.engine.plan.Variant;
+import io.tallyward.engine.plan.Tail;
+import io.tallyward.engine.plan.TestPlan;
+import io.tallyward.engine.plan.TestPlan.AlphaSharing;
+import io.tallyward.service.command.PlannedComparison.PassedOn;
 import io.tallyward.service.config.document.ScalarType;
-import io.tallyward.statistics.boundary.Look;
+import io.tallyward.service.plan.PlanWords;
+import io.tallyward.statistics.proportion.SampleSize;
 import java.util.ArrayList;
+import java.util.HashMap;
 import java.util.List;
 import java.util.Locale;
 import java.util.Map;
+import java.util.stream.Collectors;
 
-/** The design of a plan in words and tables. */
+/** The design of a plan in words and tables, at most 100 columns wide. */
 final class BoundariesText {
 
-    private static final String NONE = "-";
+    private static final int LABEL = 15;
+
+    /** What a line may take; terminals are rarely narrower. */
+    static final int WIDTH = 100;
 
     private final Plan plan;
+    private final TestPlan test;
+    private final BoundariesTables tables;
 
-    BoundariesText(Plan plan) {
+    /** @param allLooks whether long plans are shown look by look */
+    BoundariesText(Plan plan, boolean allLooks) {
         this.plan = plan;
+        this.test = plan.test();
+        tables = new BoundariesTables(plan, allLooks);
     }
 
-    List<String> lines(Map<Variant, PlanDesign> designs) {
-        List<String> lines = new ArrayList<>();
-        lines.add(plan.experiment() + ": " + plan.question());
-        designs.forEach((challenger, design) -> {
+    List<String> lines(List<PlannedComparison> planned) {
+        List<String> lines = new ArrayList<>(wrapped(plan.experiment() + ": " + plan.question(), 0));
+        Map<String, String> shown = new HashMap<>();
+        for (PlannedComparison comparison : planned) {
+            String name = comparison.challenger().name();
+            List<String> body = comparison(comparison);
+            String same = shown.putIfAbsent(String.join("\n", body).replace(name, "\0"), name);
             lines.add("");
-            lines.addAll(comparison(challenger, design));
-        });
+            lines.add(name + " against " + plan.control().name()
+                    + (same == null ? "" : ": the same numbers as for " + same + "."));
+            if (same == null) {
+                lines.addAll(body);
+            }
+        }
+        if (planned.size() > 1) {
+            lines.add("");
+            lines.addAll(sharing(planned.get(0)));
+        }
+        List<String> remarks = BoundariesRemarks.of(planned);
+        if (!remarks.isEmpty()) {
+            lines.add("");
+            lines.add("To be considered");
+            remarks.forEach(remark -> lines.addAll(wrapped("- " + remark, 2)));
+        }
         lines.add("");
-        lines.addAll(legend());
+        lines.addAll(new BoundariesLegend(plan, planned.get(0)).lines());
         return lines;
     }
 
-    private List<String> comparison(Variant challenger, PlanDesign design) {
+    private List<String> comparison(PlannedComparison comparison) {
+        List<String> lines = new ArrayList<>(facts(comparison));
+        lines.add("");
+        lines.add("When to stop" + tables.selection(comparison));
+        lines.addAll(tables.boundaries(comparison).lines());
+        lines.add("");
+        lines.add("What it takes to stop at that look");
+        lines.addAll(tables.readings(comparison).lines());
+        lines.add("");
+        lines.add("Chance to have stopped by then" + (plan.futility().isPresent() ? ", futility obeyed" : ""));
+        lines.addAll(tables.chances(comparison).lines());
+        lines.add("");
+        lines.add("How it ends");
+        lines.addAll(tables.endings(comparison).lines());
+        return lines;
+    }
+
+    private List<String> facts(PlannedComparison comparison) {
         List<String> lines = new ArrayList<>();
-        lines.add(challenger.name() + " against " + plan.control().name() + ": level " + shortest(design.alpha()) + ", "
-                + BoundariesCommand.sides(plan.test().sides()) + "-sided, spending "
-                + plan.test().benefit().spending().code() + ", power "
-                + shortest(plan.test().power()) + " for "
-                + shortest(plan.test().baseline()) + " -> " + shortest(rateUnderEffect()));
-        PlannedPath path = new PlannedPath(plan, design);
-        lines.addAll(looks(design, path).lines());
-        StringBuilder trials = new StringBuilder("planned trials:");
-        design.trials()
-                .forEach((variant, count) ->
-                        trials.append(' ').append(variant).append(' ').append(count));
-        lines.add(trials.append(", ")
-                .append(decimals(design.inflation(), 4))
-                .append(" times those of a single look")
-                .toString());
-        lines.add("expected looks: " + decimals(path.expectedLooksWithoutEffect(), 1) + " without an effect, "
-                + decimals(path.expectedLooks(), 1) + " with the smallest effect, of "
-                + design.looks().size() + (plan.futility().isPresent() ? ", futility obeyed" : ""));
+        lines.addAll(fact("tests", levels(comparison)));
+        lines.addAll(fact("spending", spending()));
+        lines.addAll(fact("clock", PlanWords.clock(test)));
+        lines.addAll(fact("information", PlanWords.measure(test)));
+        plan.futility()
+                .ifPresent(rule -> lines.addAll(fact(
+                        "futility",
+                        PlanWords.futility(rule) + "; advice that may be overruled at no cost in false alarms")));
+        double base = test.baseline();
+        lines.addAll(fact(
+                "looks for",
+                PlanWords.shortest(base) + " -> " + PlanWords.shortest(base + test.signedEffect()) + ", "
+                        + String.format(
+                                Locale.ROOT,
+                                "%+.3g points or %+.3g %% of the rate, with power ",
+                                100 * test.signedEffect(),
+                                100 * test.signedEffect() / base)
+                        + PlanWords.shortest(test.power())));
+        lines.addAll(fact("needs", needs(comparison)));
+        SampleSize single = comparison.singleLook();
+        lines.addAll(fact(
+                "single look",
+                count(Math.ceil(single.population()))
+                        + " trials if read once, at the end; looking on the way costs a factor of "
+                        + String.format(Locale.ROOT, "%.4f", comparison.design().inflation())));
+        lines.addAll(fact(
+                "drift",
+                String.format(
+                        Locale.ROOT,
+                        "%.4f, the z to expect at the end with the smallest effect%s; maximum information %,.0f",
+                        comparison.design().drift(),
+                        comparison.scenarios().stream()
+                                .skip(2)
+                                .map(rates ->
+                                        String.format(Locale.ROOT, " (%.4f under the given rates)", rates.drift()))
+                                .collect(Collectors.joining()),
+                        comparison.design().maximumInformation())));
         return lines;
     }
 
-    private Table looks(PlanDesign design, PlannedPath path) {
-        Table table = new Table(cells("futility z", "look", "information", "alpha spent", "upper z", "lower z"));
-        for (Look look : design.looks()) {
-            table.row(cells(
-                    boundary(path.futility(look.number() - 1)),
-                    String.valueOf(look.number()),
-                    decimals(look.information(), 4),
-                    decimals(look.upperSpent() + look.lowerSpent(), 6),
-                    boundary(look.upper()),
-                    boundary(look.lower())));
-        }
-        return table;
+    private String levels(PlannedComparison comparison) {
+        String benefit =
+                "benefit at level " + PlanWords.shortest(comparison.design().benefitLevel());
+        return test.harm().isEmpty()
+                ? benefit + ", one-sided; harm is not tested"
+                : benefit + ", harm at level "
+                        + PlanWords.shortest(comparison.design().harmLevel()) + "; two-sided, together "
+                        + PlanWords.shortest(comparison.design().alpha());
     }
 
-    /** The cells of a row, and the one about futility at its end if the plan has futility. */
-    private String[] cells(String futility, String... others) {
-        List<String> cells = new ArrayList<>(List.of(others));
-        if (plan.futility().isPresent()) {
-            cells.add(futility);
-        }
-        return cells.toArray(String[]::new);
+    private String spending() {
+        String benefit = PlanWords.spending(test.benefit());
+        String harm = test.harm().map(PlanWords::spending).orElse(benefit);
+        return harm.equals(benefit) ? benefit : "benefit " + benefit + "; harm " + harm;
     }
 
-    private List<String> legend() {
-        List<String> lines = new ArrayList<>(List.of(
-                "look         number of the look" + schedule(),
-                "information  share of the planned information that is in at that look",
-                "alpha spent  chance of a false alarm up to and including that look, "
-                        + (plan.test().sides() == Sides.TWO
-                                ? "both directions together"
-                                : "in the direction of benefit"),
-                "upper z      stop when the z-value of variant minus control is at or above it",
-                "lower z      stop when it is at or below it; " + NONE + " means no stop in that direction"));
-        if (plan.futility().isPresent()) {
-            lines.add("futility z   a benefit has become unlikely when it is "
-                    + (plan.test().better() == Better.HIGHER ? "below" : "above")
-                    + " it: advice to stop, not an obligation; none at the last look");
+    private String needs(PlannedComparison comparison) {
+        return count(Math.ceil(comparison.population())) + " trials of all variants ("
+                + comparison.design().trials().entrySet().stream()
+                        .map(entry -> entry.getKey() + " " + count(entry.getValue()))
+                        .collect(Collectors.joining(", "))
+                + "), " + count(Math.ceil(comparison.trialsPerDay())) + " a day to have them within "
+                + ScalarType.written(plan.run().atMost());
+    }
+
+    private List<String> sharing(PlannedComparison comparison) {
+        int challengers = plan.challengers().size();
+        boolean passOn = test.sharing() == AlphaSharing.PASS_ON;
+        List<String> lines = new ArrayList<>();
+        lines.add("How " + challengers + " comparisons share alpha " + PlanWords.shortest(test.alpha()));
+        lines.addAll(wrapped(
+                passOn
+                        ? "pass-on: each starts with an even share. One that is found leaves its share of that direction to"
+                                + " those still open, whose boundaries come closer from their next look on."
+                        : "split: each keeps an even share, whatever becomes of the others.",
+                0));
+        if (passOn) {
+            Table table = new Table("others found", "benefit level", "harm level");
+            table.row(
+                    "0",
+                    level(comparison.design().benefitLevel()),
+                    level(comparison.design().harmLevel()));
+            for (PassedOn after : comparison.passedOn()) {
+                table.row(
+                        String.valueOf(after.found()),
+                        level(after.levels().benefit()),
+                        level(after.levels().harm()));
+            }
+            lines.addAll(table.lines());
         }
-        if (!plan.run().atLeast().isZero()) {
-            lines.add("No benefit is declared in the first "
-                    + ScalarType.written(plan.run().atLeast()) + ".");
-        }
-        lines.add(
-                "Looks may come at other moments than planned: the boundaries then follow the information that is in.");
+        DunnettValue.of(plan)
+                .ifPresent(value -> lines.addAll(wrapped(
+                        String.format(
+                                Locale.ROOT,
+                                "For reference, all read once at one look: %s of %.4f is needed by Dunnett's test at %s, %.4f by"
+                                        + " an even split.",
+                                value.bothSides() ? "a z-value in either direction" : "a z-value towards the benefit",
+                                value.critical(),
+                                PlanWords.shortest(value.alpha()),
+                                value.evenSplit()),
+                        0)));
         return lines;
     }
 
-    private String schedule() {
+    private static String level(double level) {
+        return level == 0 ? BoundariesTables.NONE : PlanWords.shortest(level);
+    }
+
+    private static List<String> fact(String label, String text) {
+        return wrapped("  " + label + " ".repeat(LABEL - 2 - label.length()) + text, LABEL);
+    }
+
+    /** A sentence in lines that fit, all but the first indented. */
+    static List<String> wrapped(String text, int indent) {
+        List<String> lines = new ArrayList<>();
+        String rest = text;
+        while (rest.length() > WIDTH) {
+            int end = rest.lastIndexOf(' ', WIDTH);
+            if (end <= indent) {
+                break;
+            }
+            lines.add(rest.substring(0, end).stripTrailing());
+            rest = " ".repeat(indent) + rest.substring(end).strip();
+        }
+        lines.add(rest);
+        return lines;
+    }
+
+    private static String count(double value) {
+        return String.format(Locale.ROOT, "%,.0f", value);
+    }
+
+    /** How often a look is planned, if by time. */
+    static String schedule(Plan plan) {
         return plan.looks() instanceof LookSchedule.Every every
                 ? ", one every " + ScalarType.written(every.interval())
                 : "";
     }
 
-    private double rateUnderEffect() {
-        double effect = plan.test().smallestEffect();
-        return plan.test().baseline() + (plan.test().better() == Better.HIGHER ? effect : -effect);
-    }
-
-    private static String boundary(double z) {
-        return Double.isFinite(z) ? decimals(z, 4) : NONE;
-    }
-
-    private static String decimals(double value, int places) {
-        return String.format(Locale.ROOT, "%." + places + "f", value);
-    }
-
-    /** A figure of the plan without the noise of binary arithmetic. */
-    private static String shortest(double value) {
-        return String.valueOf(Math.round(value * 1e9) / 1e9);
+    /** Whether the directions differ in level or spending. */
+    static boolean unequal(Plan plan) {
+        Tail benefit = plan.test().benefit();
+        return plan.test().harm().filter(harm -> !harm.equals(benefit)).isPresent();
     }
 }

@@ -4,7 +4,6 @@ import io.tallyward.engine.decide.FutilityRule;
 import io.tallyward.engine.decide.PlanDesign;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.TestPlan.Better;
-import io.tallyward.statistics.boundary.ExitProbabilities;
 import io.tallyward.statistics.boundary.FutilitySequence;
 import io.tallyward.statistics.boundary.Look;
 import java.util.Arrays;
@@ -22,6 +21,7 @@ final class PlannedPath {
     private final double[] benefit;
     private final double[] harm;
     private final double[] futility;
+    private final StopChances.Walk walk;
 
     PlannedPath(Plan plan, PlanDesign design) {
         List<Look> looks = design.looks();
@@ -37,6 +37,7 @@ final class PlannedPath {
         futility = new double[information.length];
         Arrays.fill(futility, Double.NEGATIVE_INFINITY);
         plan(new FutilityRule(plan, design), plan, design);
+        walk = new StopChances.Walk(information, benefit, harm, futility);
     }
 
     /** Nothing is futile at the last look: whatever is no benefit there uses the plan up. */
@@ -60,30 +61,27 @@ final class PlannedPath {
         return higherIsBetter ? futility[index] : -futility[index];
     }
 
-    /** Mean number of looks without an effect until a boundary or the futility bound is crossed or the last is taken. */
-    double expectedLooksWithoutEffect() {
-        return expectedLooks(0);
+    /** The boundary for a benefit at a look as a z-value of variant minus control; infinite where it has none. */
+    double benefit(int index) {
+        return higherIsBetter ? benefit[index] : -benefit[index];
     }
 
-    /** The same with the smallest effect worth finding. */
-    double expectedLooks() {
-        return expectedLooks(drift);
+    /** The boundary for harm at a look as a z-value of variant minus control; infinite where it has none. */
+    double harm(int index) {
+        return higherIsBetter ? harm[index] : -harm[index];
     }
 
-    private double expectedLooks(double theta) {
-        double[] lower = new double[harm.length];
-        for (int k = 0; k < lower.length; k++) {
-            lower[k] = Math.max(harm[k], futility[k]);
-        }
-        ExitProbabilities exits = ExitProbabilities.of(information, benefit, lower, theta);
-        double[] up = exits.upper();
-        double[] down = exits.lower();
-        double expected = 0;
-        double running = 1;
-        for (int k = 0; k < up.length; k++) {
-            expected += running;
-            running -= up[k] + down[k];
-        }
-        return expected;
+    /**
+     * When and why a path stops if futility is obeyed.
+     *
+     * @param drifts expected z at full information, towards the benefit; one answer for each
+     */
+    StopChances[] obeyed(double... drifts) {
+        return walk.obeyed(drifts);
+    }
+
+    /** The same if futility is overruled. */
+    StopChances[] overruled(double... drifts) {
+        return walk.overruled(drifts);
     }
 }

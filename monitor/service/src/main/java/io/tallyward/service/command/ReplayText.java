@@ -4,8 +4,10 @@ import io.tallyward.engine.count.Outcome;
 import io.tallyward.engine.count.OutcomeCounts;
 import io.tallyward.engine.decide.ExperimentView;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.record.Adjusted;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
 import io.tallyward.service.command.Replay.WindowKey;
@@ -47,6 +49,7 @@ final class ReplayText {
         lines.addAll(counts(plan).lines());
         if (decisions.stream().anyMatch(decision -> !decision.comparisons().isEmpty())) {
             lines.addAll(looks(decisions).lines());
+            lines.addAll(estimates(decisions));
         }
         decisions.stream()
                 .filter(decision -> decision.trust() != Trust.SOUND)
@@ -120,6 +123,44 @@ final class ReplayText {
             }
         }
         return table;
+    }
+
+    /** The estimate of every comparison that has ended, adjusted for its looks, beside the naive one. */
+    private static List<String> estimates(List<DecisionRecord> decisions) {
+        List<String> lines = new ArrayList<>();
+        for (DecisionRecord decision : decisions) {
+            for (Comparison look : decision.comparisons()) {
+                if (look.adjusted() != null) {
+                    lines.addAll(estimate(look));
+                }
+            }
+        }
+        return lines;
+    }
+
+    private static List<String> estimate(Comparison look) {
+        Adjusted adjusted = look.adjusted();
+        Table table = new Table(look.variant() + ", when it ended", "estimate", "from", "to", "p-value");
+        String interval = String.format(Locale.ROOT, "%.4g %%", 100 * adjusted.level());
+        table.group("", 1).group("interval, " + interval, 2);
+        table.row(
+                "difference in points, adjusted for the looks",
+                points(adjusted.difference().value()),
+                points(adjusted.difference().lower()),
+                points(adjusted.difference().upper()),
+                String.format(Locale.ROOT, "%.3g", adjusted.pValue()));
+        Estimated lift = adjusted.lift();
+        if (lift != null) {
+            table.row(
+                    "relative to the control in %, adjusted",
+                    points(lift.value()), points(lift.lower()), points(lift.upper()), "");
+        }
+        table.row("difference in points, naive", points(look.difference()), "", "", "");
+        return table.lines();
+    }
+
+    private static String points(Double value) {
+        return value == null ? NONE : String.format(Locale.ROOT, "%+.3f", 100 * value);
     }
 
     private static String outcomes(OutcomeCounts outcomes) {

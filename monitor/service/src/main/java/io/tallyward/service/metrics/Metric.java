@@ -99,6 +99,31 @@ enum Metric {
             "Upper end of the repeated confidence interval of the difference; absent when unbounded.",
             "experiment",
             "variant"),
+    PREDICTIVE_POWER(
+            "tallyward_predictive_power",
+            Kind.GAUGE,
+            "Probability at that look, given the data so far, that a benefit is found at the planned end; absent when there"
+                    + " is no outlook.",
+            "experiment",
+            "variant"),
+    ADJUSTED_DIFFERENCE(
+            "tallyward_adjusted_difference",
+            Kind.GAUGE,
+            "Difference of rates adjusted for the looks taken; absent until a final verdict is told.",
+            "experiment",
+            "variant"),
+    ADJUSTED_DIFFERENCE_LOWER(
+            "tallyward_adjusted_difference_lower",
+            Kind.GAUGE,
+            "Lower end of its confidence interval; absent until a final verdict is told, or when unbounded.",
+            "experiment",
+            "variant"),
+    ADJUSTED_DIFFERENCE_UPPER(
+            "tallyward_adjusted_difference_upper",
+            Kind.GAUGE,
+            "Upper end of its confidence interval; absent until a final verdict is told, or when unbounded.",
+            "experiment",
+            "variant"),
 
     VERDICT("tallyward_verdict", Kind.GAUGE, "1 for the verdict that holds, else 0.", "experiment", "state"),
     COMPARISON_VERDICT(

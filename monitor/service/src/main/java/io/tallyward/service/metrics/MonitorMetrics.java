@@ -6,6 +6,7 @@ import io.tallyward.engine.event.RejectReason;
 import io.tallyward.engine.plan.Variant;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
 import io.tallyward.service.status.CountReport;
@@ -30,7 +31,7 @@ public final class MonitorMetrics {
 
     /**
      * How many variants are published at most, counted over all experiments. Chosen so that a scrape stays below about
-     * 60,000 series: a variant has up to 17 of its own, and an experiment, which has two variants at least, up to 26.
+     * 60,000 series: a variant has up to 21 of its own, and an experiment, which has two variants at least, up to 26.
      */
     static final int MAXIMUM_VARIANTS = 2_000;
 
@@ -156,6 +157,15 @@ public final class MonitorMetrics {
         sheet.put(Metric.DIFFERENCE, look.difference(), labels);
         sheet.putPresent(Metric.DIFFERENCE_LOWER, look.differenceLower(), labels);
         sheet.putPresent(Metric.DIFFERENCE_UPPER, look.differenceUpper(), labels);
+        if (look.outlook() != null) {
+            sheet.put(Metric.PREDICTIVE_POWER, look.outlook().predictive(), labels);
+        }
+        if (look.adjusted() != null && look.held() == null) {
+            Estimated difference = look.adjusted().difference();
+            sheet.put(Metric.ADJUSTED_DIFFERENCE, difference.value(), labels);
+            sheet.putPresent(Metric.ADJUSTED_DIFFERENCE_LOWER, difference.lower(), labels);
+            sheet.putPresent(Metric.ADJUSTED_DIFFERENCE_UPPER, difference.upper(), labels);
+        }
     }
 
     private static void runner(Sheet sheet, RunnerReport report) {

@@ -3,9 +3,6 @@ package io.tallyward.service.page;
 import io.tallyward.engine.count.Outcome;
 import io.tallyward.engine.decide.ExperimentView;
 import io.tallyward.engine.decide.ExperimentView.LookPoint;
-import io.tallyward.engine.plan.LookSchedule;
-import io.tallyward.engine.plan.Plan;
-import io.tallyward.engine.plan.TestPlan;
 import io.tallyward.engine.plan.Variant;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.Trust;
@@ -51,7 +48,7 @@ final class ExperimentPage {
         SplitSection.write(html, standing);
         LookTable.write(html, standing);
         outcomes(html, view);
-        plan(html, standing);
+        PlanSection.write(html, standing);
     }
 
     /** Trust before verdict where it is broken: then it is what matters. */
@@ -70,7 +67,10 @@ final class ExperimentPage {
 
     private static void verdict(Markup html, Standing standing) {
         Verdict verdict = standing.view().verdict();
-        Words words = Wording.of(verdict).with(action(standing, verdict));
+        List<String> ended = standing.ended();
+        Words words = verdict.settled() || ended.isEmpty()
+                ? Wording.of(verdict).with(action(standing, verdict))
+                : Wording.partly(verdict, ended, standing.endedActions());
         if (standing.view().trust() != Trust.SOUND && !verdict.settled()) {
             words = Wording.untrusted(words, standing.heldInWords());
         }
@@ -137,18 +137,16 @@ final class ExperimentPage {
         html.open("div", "class", "look");
         PathChart.draw(html, path.isEmpty() ? List.of(look) : path, standing.higherIsBetter());
         html.open("div");
-        latest(html, look);
+        latest(html, standing, look);
         html.close().close();
     }
 
-    private static void latest(Markup html, Comparison look) {
+    private static void latest(Markup html, Standing standing, Comparison look) {
         html.leaf("p", "At the latest look, number " + look.look() + ":", "class", "note");
         html.open("p", "class", "figures").text("z ").leaf("b", Figures.decimal(look.z()));
         html.text(", " + ZStrip.boundaries(look) + "; information " + Figures.wholePercent(look.informationFraction())
                 + "; alpha spent " + Figures.probability(look.alphaSpent()));
         html.close();
-        html.open("p", "class", "figures").text("Difference ").leaf("b", Figures.points(look.difference()));
-        html.text(" points, interval " + LookTable.interval(look)).close();
         if (look.held() != null) {
             html.leaf(
                     "p", "Held until trust returns: " + Wording.of(look.held()).label() + ".", "class", "reason");
@@ -156,6 +154,7 @@ final class ExperimentPage {
         if (look.reason() != null && !look.reason().isEmpty()) {
             html.leaf("p", "Why: " + Figures.prose(look.reason()), "class", "figures");
         }
+        EffectFacts.write(html, standing, look);
     }
 
     private static void outcomes(Markup html, ExperimentView view) {
@@ -178,55 +177,5 @@ final class ExperimentPage {
         }
         table.close();
         html.close();
-    }
-
-    private static void plan(Markup html, Standing standing) {
-        Plan plan = standing.view().plan();
-        TestPlan test = plan.test();
-        html.open("section").leaf("h2", "Plan").open("dl", "class", "facts");
-        OverviewPage.fact(
-                html,
-                "Test",
-                (test.sides() == TestPlan.Sides.TWO ? "two-sided" : "one-sided") + ", alpha " + test.alpha()
-                        + ", power " + test.power() + ", spending "
-                        + test.benefit().spending().code());
-        OverviewPage.fact(
-                html,
-                "Sized for",
-                "a difference of " + Figures.points(test.smallestEffect()) + " points from a rate of "
-                        + Figures.percent(test.baseline()) + "; "
-                        + (standing.higherIsBetter() ? "higher" : "lower") + " is better");
-        OverviewPage.fact(html, "Looks", schedule(plan.looks()));
-        OverviewPage.fact(
-                html,
-                "Run",
-                Figures.minute(plan.run().from()) + " to "
-                        + Figures.minute(plan.run().end()) + " at most"
-                        + (plan.run().atLeast().isZero()
-                                ? ""
-                                : ", no benefit before "
-                                        + Figures.span(plan.run().atLeast())));
-        OverviewPage.fact(
-                html,
-                "Counting",
-                "by unit, clicks within " + Figures.span(plan.count().attribution()) + ", grace "
-                        + Figures.span(plan.count().grace()) + ", windows of "
-                        + Figures.span(plan.count().window()));
-        OverviewPage.fact(html, "Plan digest", standing.view().planDigest());
-        OverviewPage.fact(html, "Newest record", standing.view().lastRecord());
-        html.close().close();
-    }
-
-    private static String schedule(LookSchedule looks) {
-        if (looks instanceof LookSchedule.Every every) {
-            return "every " + Figures.span(every.interval()) + " of event time";
-        }
-        LookSchedule.AtFractions fractions = (LookSchedule.AtFractions) looks;
-        return "at information "
-                + String.join(
-                        ", ",
-                        fractions.fractions().stream()
-                                .map(Figures::wholePercent)
-                                .toList());
     }
 }

@@ -32,8 +32,9 @@ final class LookTable {
         html.leaf(
                 "p",
                 "Differences are those of the rates, variant minus control, in percentage points; the intervals are"
-                        + " repeated confidence intervals, valid at every look. The difference itself is not adjusted"
-                        + " for stopping.",
+                        + " repeated confidence intervals, valid at every look. The difference itself is naive: not"
+                        + " adjusted for the looks taken. Where a comparison has ended, the adjusted estimate stands"
+                        + " with its path above.",
                 "class",
                 "note");
         html.close();
@@ -83,14 +84,7 @@ final class LookTable {
 
     /** A repeated confidence interval in percentage points; one end may be open. */
     static String interval(Comparison look) {
-        if (look.differenceLower() == null || look.differenceUpper() == null) {
-            return look.differenceLower() == null
-                    ? (look.differenceUpper() == null
-                            ? Figures.NONE
-                            : Figures.points(look.differenceUpper()) + " or less")
-                    : Figures.points(look.differenceLower()) + " or more";
-        }
-        return Figures.points(look.differenceLower()) + " to " + Figures.points(look.differenceUpper());
+        return EffectFacts.ends(EffectFacts.points(look.differenceLower()), EffectFacts.points(look.differenceUpper()));
     }
 
     private static void verdict(Markup html, Comparison look) {

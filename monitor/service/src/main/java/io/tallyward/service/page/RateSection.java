@@ -34,7 +34,8 @@ final class RateSection {
         html.leaf(
                 "p",
                 "Wilson intervals, for reading one rate at one time. Whether rates differ is not read from them but from"
-                        + " the looks below.",
+                        + " the looks below. The rates are naive: after an early stop they tend to lie further apart than"
+                        + " in truth.",
                 "class",
                 "note");
         html.close();

@@ -9,9 +9,11 @@ import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
 import java.time.Duration;
+import java.util.Comparator;
 import java.util.List;
 import java.util.Optional;
 import java.util.StringJoiner;
+import java.util.stream.Collectors;
 import java.util.stream.Stream;
 
 /**
@@ -71,6 +73,25 @@ record Standing(ExperimentView view) {
                         .map(Variant::name)
                         .filter(name -> view.verdicts().get(name) == verdict)
                         .toList());
+    }
+
+    /** Names of the variants whose verdict is told. */
+    List<String> ended() {
+        return challengers().stream()
+                .filter(challenger -> verdictOn(challenger).settled())
+                .map(Variant::name)
+                .toList();
+    }
+
+    /** What to do about the verdicts that are told, harm first. */
+    String endedActions() {
+        return challengers().stream()
+                .map(this::verdictOn)
+                .filter(Verdict::settled)
+                .distinct()
+                .sorted(Comparator.comparing(verdict -> verdict != Verdict.STOP_HARM))
+                .map(this::action)
+                .collect(Collectors.joining(" "));
     }
 
     List<Variant> challengers() {

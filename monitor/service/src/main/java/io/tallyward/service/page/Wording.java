@@ -97,6 +97,22 @@ final class Wording {
         };
     }
 
+    /**
+     * A verdict on an experiment that goes on although some of its variants have theirs.
+     *
+     * @param ended the variants whose verdict is told, at least one
+     * @param action what to do about those
+     */
+    static Words partly(Verdict verdict, List<String> ended, String action) {
+        Words words = of(verdict);
+        return new Words(
+                words.sign(),
+                words.label(),
+                "The verdict on " + String.join(" and ", ended)
+                        + " is reached; no boundary was crossed by the others, which go on.",
+                action + " Let the others run.");
+    }
+
     /** What it means that a verdict waits for trust to return. */
     static String held(Verdict verdict) {
         String found = switch (verdict) {

@@ -46,7 +46,7 @@ class BoundariesCommandTest {
     @Test
     void printsReferenceBoundaries() throws IOException {
         JsonNode root = json(PLAN);
-        assertEquals(List.of("experiment", "comparisons"), names(root));
+        assertEquals(List.of("experiment", "comparisons", "remarks"), names(root));
         assertEquals("quay-banner", root.get("experiment").asText());
         assertEquals(1, root.get("comparisons").size());
         JsonNode comparison = root.get("comparisons").get(0);
@@ -60,7 +60,8 @@ class BoundariesCommandTest {
                         "maximumInformation",
                         "trialsPerVariant",
                         "inflation"),
-                names(comparison));
+                names(comparison).subList(0, 8),
+                "what was published first stays first");
         assertEquals("wide", comparison.get("variant").asText());
         assertEquals(0.05, comparison.get("alpha").asDouble());
         assertEquals("two", comparison.get("sides").asText());
@@ -69,7 +70,9 @@ class BoundariesCommandTest {
         assertEquals(4, looks.size());
         for (int k = 0; k < 4; k++) {
             JsonNode look = looks.get(k);
-            assertEquals(List.of("look", "informationFraction", "alphaSpent", "upper", "lower"), names(look));
+            assertEquals(
+                    List.of("look", "informationFraction", "alphaSpent", "upper", "lower"),
+                    names(look).subList(0, 5));
             assertEquals(k + 1, look.get("look").asInt());
             assertEquals((k + 1) / 4.0, look.get("informationFraction").asDouble());
             assertEquals(REFERENCE_SPENT[k], look.get("alphaSpent").asDouble(), TOLERANCE);
@@ -122,65 +125,12 @@ class BoundariesCommandTest {
     }
 
     @Test
-    void explainsItselfToPeople() throws IOException {
-        CommandRun run = CommandRun.of("boundaries", "--plan", write(PLAN).toString());
-        assertEquals(0, run.status());
-        assertEquals(
-                List.of(
-                        "quay-banner: does the wide quay photo bring more timetable clicks?",
-                        "",
-                        "wide against plain: level 0.05, two-sided, spending obrien-fleming, power 0.8 for 0.12 -> 0.126",
-                        "look  information  alpha spent  upper z  lower z",
-                        "------------------------------------------------",
-                        "1          0.2500     0.000015   4.3326  -4.3326",
-                        "2          0.5000     0.003051   2.9631  -2.9631",
-                        "3          0.7500     0.019299   2.3590  -2.3590",
-                        "4          1.0000     0.050000   2.0141  -2.0141"),
-                run.out().subList(0, 9));
-        assertTrue(
-                run.out().get(9).startsWith("planned trials: plain "), run.out().get(9));
-        assertTrue(
-                run.out().get(10).matches("expected looks: 4\\.0 without an effect, 3\\.\\d with .*, of 4"),
-                run.out().get(10));
-        assertTrue(
-                run.out()
-                        .contains(
-                                "alpha spent  chance of a false alarm up to and including that look, both directions together"));
-    }
-
-    @Test
     void showsFutilityWhereThePlanHasIt() throws IOException {
-        CommandRun run = CommandRun.of(
-                "boundaries", "--plan", write(PlannedPathTest.PLAN).toString());
-        assertEquals(
-                List.of(
-                        "chip against bare: level 0.025, one-sided, spending obrien-fleming, power 0.8 for 0.12 -> 0.126",
-                        "look  information  alpha spent  upper z  lower z  futility z",
-                        "------------------------------------------------------------",
-                        "1          0.2000     0.000001   4.8769        -     -0.8465",
-                        "2          0.4000     0.000394   3.3570        -     -0.0273",
-                        "3          0.6000     0.003808   2.6803        -      0.6803",
-                        "4          0.8000     0.012212   2.2898        -      1.3395",
-                        "5          1.0000     0.025000   2.0310        -           -"),
-                run.out().subList(2, 10));
-        assertEquals(
-                List.of(
-                        "expected looks: 2.6 without an effect, 3.7 with the smallest effect, of 5, futility obeyed",
-                        "",
-                        "look         number of the look",
-                        "information  share of the planned information that is in at that look",
-                        "alpha spent  chance of a false alarm up to and including that look, in the direction of benefit",
-                        "upper z      stop when the z-value of variant minus control is at or above it",
-                        "lower z      stop when it is at or below it; - means no stop in that direction",
-                        "futility z   a benefit has become unlikely when it is below it: advice to stop, not an "
-                                + "obligation; none at the last look"),
-                run.out().subList(11, 19));
-
         JsonNode looks = json(PlannedPathTest.PLAN).get("comparisons").get(0).get("looks");
         for (int k = 0; k < 4; k++) {
             assertEquals(
                     List.of("look", "informationFraction", "alphaSpent", "upper", "lower", "futility"),
-                    names(looks.get(k)));
+                    names(looks.get(k)).subList(0, 6));
             assertEquals(
                     PlannedPathTest.REFERENCE[k], looks.get(k).get("futility").asDouble(), TOLERANCE);
         }

@@ -12,6 +12,7 @@ import java.util.ArrayList;
 import java.util.Collections;
 import java.util.Comparator;
 import java.util.List;
+import java.util.Locale;
 import java.util.Random;
 import org.junit.jupiter.api.BeforeEach;
 import org.junit.jupiter.api.Test;
@@ -186,6 +187,39 @@ class ReplayCommandTest {
                         "events read: 3000, rejected: none"),
                 run.out().subList(run.out().size() - 3, run.out().size()));
         assertEquals(List.of(), run.err());
+    }
+
+    /** The lines say what the record says, in points and per cent. */
+    @Test
+    void showsTheAdjustedEstimateWhereAComparisonEnded() throws IOException {
+        Stream stream = new Stream(7);
+        List<JsonNode> records = replay(stream.lines()).json().stream()
+                .filter(line -> line.get("type").asText().equals("decision"))
+                .toList();
+        JsonNode ended = records.get(records.size() - 1).get("comparisons").get(0);
+        JsonNode difference = ended.get("adjusted").get("difference");
+        List<String> text = CommandRun.of(
+                        "replay",
+                        "--plans",
+                        plans.toString(),
+                        "--events",
+                        directory.resolve("events.jsonl").toString())
+                .out();
+        List<String> adjusted = text.stream()
+                .filter(line -> line.startsWith("difference in points, adjusted for the looks"))
+                .toList();
+        assertEquals(1, adjusted.size(), text.toString());
+        for (String end : List.of("value", "lower", "upper")) {
+            String figure = String.format(
+                    Locale.ROOT, "%+.3f", 100 * difference.get(end).asDouble());
+            assertTrue(adjusted.get(0).contains(figure), figure + " in " + adjusted.get(0));
+        }
+        String naive = String.format(
+                Locale.ROOT, "%+.3f", 100 * ended.get("difference").asDouble());
+        assertTrue(
+                text.stream().anyMatch(line -> line.matches("difference in points, naive +\\Q" + naive + "\\E")),
+                text.toString());
+        assertTrue(text.stream().anyMatch(line -> line.startsWith("wide, when it ended ")));
     }
 
     @Test

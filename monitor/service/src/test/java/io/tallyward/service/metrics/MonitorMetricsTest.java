@@ -41,6 +41,9 @@ class MonitorMetricsTest {
                 .collect(Collectors.joining("\n"));
         assertEquals("""
                 tallyward_aborts_total{group}
+                tallyward_adjusted_difference_lower{experiment,variant}
+                tallyward_adjusted_difference_upper{experiment,variant}
+                tallyward_adjusted_difference{experiment,variant}
                 tallyward_alpha_spent_ratio{experiment,variant}
                 tallyward_boundary_futility{experiment,variant}
                 tallyward_boundary_lower{experiment,variant}
@@ -59,6 +62,7 @@ class MonitorMetricsTest {
                 tallyward_ledger_units{partition}
                 tallyward_looks_delayed_total{experiment}
                 tallyward_looks_total{experiment}
+                tallyward_predictive_power{experiment,variant}
                 tallyward_rejected_total{reason}
                 tallyward_restore_duration_seconds{group}
                 tallyward_split_p_value{experiment}
@@ -126,6 +130,26 @@ class MonitorMetricsTest {
         assertTrue(exposition(board).text().contains("tallyward_boundary_lower{experiment=\"return-prompt\""));
         board.publishExperiments(0, Map.of());
         assertFalse(exposition(board).text().contains("return-prompt"));
+    }
+
+    @Test
+    void adjustsOnceAVerdictIsFinal() {
+        board.publishExperiments(0, Map.of("deck-map", Northwater.deckMapPassedOn()));
+        String text = exposition(board).text();
+        String ended = "{experiment=\"deck-map\",variant=\"map\",} ";
+        String open = "{experiment=\"deck-map\",variant=\"tour\",} ";
+        for (String end : List.of("", "_lower", "_upper")) {
+            assertTrue(text.contains("tallyward_adjusted_difference" + end + ended), end);
+            assertFalse(text.contains("tallyward_adjusted_difference" + end + open), end);
+        }
+        assertTrue(text.contains("tallyward_predictive_power" + open + "0.02"));
+        assertFalse(text.contains("tallyward_predictive_power" + ended));
+    }
+
+    @Test
+    void keepsTheEstimatesOfAHeldVerdictBack() {
+        board.publishExperiments(0, Map.of("cabin-upsell", Northwater.cabinUpsell()));
+        assertFalse(exposition(board).text().contains("tallyward_adjusted_difference"));
     }
 
     @Test

@@ -12,6 +12,8 @@ import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
+import io.tallyward.service.config.document.BadInputException;
+import io.tallyward.service.plan.PlanReader;
 import io.tallyward.service.status.HealthSource.Health;
 import io.tallyward.service.status.HealthSource.State;
 import io.tallyward.service.status.Northwater;
@@ -172,6 +174,99 @@ class PagesTest {
         assertFalse(chart(bounded(look, 2.5, null), true).contains("harm"));
         assertFalse(chart(bounded(look, null, -2.5), false).contains("harm"));
         assertTrue(chart(bounded(look, null, -2.5), false).contains(">benefit<"));
+    }
+
+    /** The figures are those of the fixture, +0.603 and +0.634 points, as a page writes them. */
+    @Test
+    void showsTheAdjustedEstimateBesideTheNaiveOne() {
+        String text = text(Northwater.quayBanner());
+        String adjusted = "Effect, adjusted for the looks taken+0.60 points, 95\u00a0% interval +0.25 to +1.01;"
+                + " relative to the control +5.07\u00a0%, +1.90\u00a0% to +8.87\u00a0%; p-value 0.012";
+        String naive = "Difference as observed, naive+0.63 points, +5.28\u00a0% of the control's rate;";
+        assertTrue(text.contains(adjusted), text);
+        assertTrue(text.contains(naive), text);
+        assertTrue(text.indexOf(adjusted) < text.indexOf(naive), "what may be quoted comes first");
+        assertFalse(text.contains("Outlook"));
+        assertTrue(
+                text(Northwater.cabinUpsell()).contains("adjusted for the looks taken, if the data could be trusted+"));
+        assertTrue(text(Northwater.cabinUpsell())
+                .contains("Not adjusted: a stop picks a moment at which it looks large."));
+    }
+
+    @Test
+    void showsTheOutlookWhileGoingOn() {
+        String text = text(Northwater.fareChip());
+        assertFalse(text.contains("adjusted for the looks taken+"));
+        assertTrue(text.contains("Difference so far, naive−0.05 points"), text);
+        assertTrue(
+                text.contains(
+                        "OutlookChance to find a benefit at the planned end 42 % if the effect seen so far goes on,"
+                                + " 81 % if it is the smallest worth finding, 3 % if there is none; 39 % averaged over what the data say."));
+        assertFalse(
+                text(Northwater.with(Northwater.fareChip(), Verdict.CONTINUE, Trust.LATE))
+                        .contains("Outlook"),
+                "no outlook from data that are not trusted");
+    }
+
+    @Test
+    void showsALevelThatWasPassedOn() {
+        assertTrue(text(Northwater.deckMapPassedOn()).contains("Level in force0.05, raised from 0.025:"));
+        assertFalse(text(Northwater.deckMap()).contains("Level in force"));
+        assertFalse(text(Northwater.quayBanner()).contains("Level in force"));
+    }
+
+    @Test
+    void tellsThatSomeHaveTheirVerdictWhileOthersGoOn() {
+        String text = text(Northwater.deckMapPassedOn());
+        assertTrue(text.contains("The verdict on map is reached; no boundary was crossed by the others, which go on."));
+        assertTrue(text.contains("The owner may end the experiment and keep map. Let the others run."));
+        assertFalse(text.contains("neither a benefit nor a harm is established"));
+    }
+
+    @Test
+    void leavesEndsOpenThatAreOpen() {
+        assertEquals("1 to 2", EffectFacts.ends("1", "2"));
+        assertEquals("2 or less", EffectFacts.ends(null, "2"));
+        assertEquals("1 or more", EffectFacts.ends("1", null));
+        assertEquals(Figures.NONE, EffectFacts.ends(null, null));
+    }
+
+    @Test
+    void showsWhatThePlanHasOfItsOwn() throws BadInputException {
+        Plan plan = PlanReader.parse("deck.yaml", """
+                        experiment: deck-map
+                        question: which deck map helps people to choose a seat?
+                        owner: web-growth@northwater.example
+                        better: lower
+                        variants: {list: {share: 0.4, control: true}, map: {share: 0.3}, tour: {share: 0.3}}
+                        test:
+                          alpha: 0.05
+                          baseline: 0.12
+                          smallest-effect: {relative: 0.1}
+                          alpha-sharing: split
+                          clock: calendar
+                          information: trials
+                          benefit: {alpha: 0.02, spending: pocock, silent-before: 0.25}
+                        looks: {fractions: [0.5, 1]}
+                        futility: {predictive-power: 0.1}
+                        run: {from: 2026-05-04T00:00:00Z, at-most: P28D}
+                        """).orElseThrow();
+        Markup html = new Markup();
+        PlanSection.write(html, new Standing(Northwater.waiting(plan)));
+        String text = parse(html.document()).getDocumentElement().getTextContent();
+        for (String expected : List.of(
+                "Testtwo-sided, alpha 0.05, power 0.8",
+                "Benefitalpha 0.02, spending pocock, nothing before 0.25 of the clock",
+                "Harmalpha 0.03, spending obrien-fleming",
+                "Several variantsshare alpha evenly and for good",
+                "Spending clockcalendar: error is spent as the longest run passes",
+                "Measure of informationtrials: as if the success rates were those of the plan",
+                "averaged over what the data say, is below 0.1; advice only",
+                "a difference of −1.20 points from a rate of 12.00 %; lower is better",
+                "at information 50 %, 100 %")) {
+            assertTrue(text.contains(expected), expected + " in " + text);
+        }
+        assertTrue(text(Northwater.pierMap()).contains("Harmalpha 0.025, spending obrien-fleming"));
     }
 
     private static String chart(Comparison look, boolean higherIsBetter) {

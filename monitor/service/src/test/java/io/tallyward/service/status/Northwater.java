@@ -132,6 +132,66 @@ public final class Northwater {
         return view(plan, counts, Trust.SOUND, "", Verdict.CONTINUE, paths);
     }
 
+    /** One variant was found and has left its level to the other, which goes on. */
+    public static ExperimentView deckMapPassedOn() {
+        ExperimentView before = deckMap();
+        Comparison map = look("map", 4, 3.9, Verdict.STOP_BENEFIT, Trust.SOUND, 4, 0.025);
+        Comparison tour = before.comparisons().get("tour");
+        Map<String, Comparison> latest = new LinkedHashMap<>();
+        latest.put("map", map);
+        latest.put("tour", with(tour, 2 * tour.level(), new Outlook(0.004, 0.55, 0.012, 0.02), null));
+        return new ExperimentView(
+                before.plan(),
+                before.planDigest(),
+                before.completeUntil(),
+                before.counts(),
+                before.outcomes(),
+                before.split(),
+                before.trust(),
+                before.trustReason(),
+                Verdict.CONTINUE,
+                latest,
+                Map.of("map", Verdict.STOP_BENEFIT, "tour", Verdict.CONTINUE),
+                Map.of(),
+                before.history().stream()
+                        .map(point -> point.comparison().look() == 4
+                                ? new LookPoint(
+                                        point.windowEnd(),
+                                        latest.get(point.comparison().variant()))
+                                : point)
+                        .toList(),
+                before.looksTaken(),
+                before.looksDelayed(),
+                before.delayReason(),
+                before.maximumInformation(),
+                before.lastRecord());
+    }
+
+    /** The same look at another level, with another outlook and other adjusted estimates. */
+    public static Comparison with(Comparison look, double level, Outlook outlook, Adjusted adjusted) {
+        return new Comparison(
+                look.variant(),
+                look.look(),
+                look.z(),
+                look.information(),
+                look.informationFraction(),
+                look.spendingTime(),
+                level,
+                look.alphaSpent(),
+                look.upper(),
+                look.lower(),
+                look.futility(),
+                look.difference(),
+                look.differenceLower(),
+                look.differenceUpper(),
+                look.lift(),
+                outlook,
+                adjusted,
+                look.verdict(),
+                look.held(),
+                look.reason());
+    }
+
     /** Before the first look. */
     public static ExperimentView pierMap() {
         Plan plan = plan(
@@ -139,6 +199,11 @@ public final class Northwater {
                 "Does a map of the pier save calls to the desk?",
                 List.of(new Variant("text", 0.5, true), new Variant("map", 0.5, false)),
                 List.of());
+        return waiting(plan);
+    }
+
+    /** Any plan before its first look. */
+    public static ExperimentView waiting(Plan plan) {
         return view(plan, List.of(), Trust.SOUND, "", Verdict.WAITING, Map.of());
     }
 
@@ -204,7 +269,8 @@ public final class Northwater {
         int looks = paths.values().stream().mapToInt(path -> path.length).max().orElse(0);
         for (int look = 1; look <= looks; look++) {
             for (Map.Entry<String, double[]> path : paths.entrySet()) {
-                Comparison comparison = look(path.getKey(), look, path.getValue()[look - 1], verdict, trust, looks);
+                Comparison comparison = look(
+                        path.getKey(), look, path.getValue()[look - 1], verdict, trust, looks, 0.05 / paths.size());
                 history.add(new LookPoint(START.plus(Duration.ofHours(12L * look)), comparison));
                 latest.put(path.getKey(), comparison);
             }
@@ -255,17 +321,23 @@ public final class Northwater {
         return new Adjusted(
                 0.0123,
                 0.95,
-                new Estimated(0.95 * z, 0.4 * z, 1.6 * z),
-                new Estimated(0.95 * difference, 0.4 * difference, 1.6 * difference),
-                new Estimated(8 * difference, 3 * difference, 14 * difference));
+                ordered(0.95 * z, 0.4 * z, 1.6 * z),
+                ordered(0.95 * difference, 0.4 * difference, 1.6 * difference),
+                ordered(8 * difference, 3 * difference, 14 * difference));
     }
 
-    private static Comparison look(String variant, int look, double z, Verdict verdict, Trust trust, int looks) {
+    private static Estimated ordered(double value, double one, double other) {
+        return new Estimated(value, Math.min(one, other), Math.max(one, other));
+    }
+
+    private static Comparison look(
+            String variant, int look, double z, Verdict verdict, Trust trust, int looks, double level) {
         double fraction = 0.08 * look;
         double bound = Math.min(8, 1.99 / Math.sqrt(fraction));
         double difference = z * 0.00205 / Math.sqrt(fraction);
         double half = bound * 0.00205 / Math.sqrt(fraction);
         boolean last = look == looks;
+        boolean ended = last && (verdict.settled() || trust == Trust.MISMATCH);
         boolean benefitMayStop = look >= 4;
         return new Comparison(
                 variant,
@@ -274,8 +346,8 @@ public final class Northwater {
                 235_000.0 * fraction,
                 fraction,
                 fraction,
-                0.05,
-                0.05 * fraction * fraction * fraction,
+                level,
+                level * fraction * fraction * fraction,
                 benefitMayStop ? bound : null,
                 -bound,
                 fraction > 0.3 ? -2.2 + 3 * fraction : null,
@@ -283,11 +355,11 @@ public final class Northwater {
                 difference - half,
                 benefitMayStop ? difference + half : null,
                 new Estimated(difference / 0.12, (difference - half) / 0.12, null),
-                last ? null : new Outlook(0.42, 0.81, 0.03, 0.39),
-                last && verdict.settled() ? adjusted(z, difference) : null,
+                ended ? null : new Outlook(0.42, 0.81, 0.03, 0.39),
+                ended ? adjusted(z, difference) : null,
                 last ? verdict : Verdict.CONTINUE,
                 last && trust == Trust.MISMATCH ? Verdict.STOP_BENEFIT : null,
-                last && (verdict.settled() || trust == Trust.MISMATCH)
+                ended
                         ? String.format(Locale.ROOT, "z %.3f has reached the boundary", z)
                         : String.format(Locale.ROOT, "z %.3f lies between the boundaries", z));
     }
