@@ -44,12 +44,6 @@ public record PlanDesign(
         double pooledRate,
         Map<String, Long> trials) {
 
-    /**
-     * With more planned looks than this, drift and inflation are computed for this many equally spaced ones: beyond it
-     * they change by less than one part in two hundred, which is small against the guess of the baseline.
-     */
-    private static final int LOOKS_FOR_DESIGN = 60;
-
     /** A fraction of the form i / n, times n, is i but for rounding. */
     private static final double ROUNDING_MILLIS = 1;
 
@@ -123,8 +117,6 @@ public record PlanDesign(
     }
 
     private static double drift(Plan plan, TailLevels levels, double[] planned, List<Look> looks) {
-        boolean many = planned.length > LOOKS_FOR_DESIGN;
-        double[] fractions = many ? equalSteps(LOOKS_FOR_DESIGN) : planned;
         Optional<SpendingFunction> futility = plan.futility()
                 .filter(FutilityPlan.ErrorSpending.class::isInstance)
                 .map(rule -> SpendingFunctions.of(((FutilityPlan.ErrorSpending) rule).spending()));
@@ -134,18 +126,17 @@ public record PlanDesign(
                             plan.test().symmetric(),
                             benefitSpending(plan),
                             plan.test().power(),
-                            fractions,
+                            planned,
                             futility))
                     .drift();
         }
-        List<Look> design = many ? plannedLooks(plan, levels, fractions) : looks;
         boolean higher = plan.test().better() == Better.HIGHER;
         return DriftForPower.of(
-                fractions,
-                design.stream()
+                planned,
+                looks.stream()
                         .mapToDouble(look -> higher ? look.upper() : -look.lower())
                         .toArray(),
-                design.stream()
+                looks.stream()
                         .mapToDouble(look -> higher ? look.lower() : -look.upper())
                         .toArray(),
                 plan.test().power());
