@@ -14,6 +14,7 @@ import io.tallyward.statistics.boundary.DriftForPower;
 import io.tallyward.statistics.boundary.Look;
 import io.tallyward.statistics.distribution.Normal;
 import io.tallyward.statistics.proportion.SampleSize;
+import io.tallyward.statistics.proportion.Stratum;
 import io.tallyward.statistics.spending.SpendingFunction;
 import java.util.ArrayList;
 import java.util.LinkedHashMap;
@@ -91,6 +92,28 @@ public record PlanDesign(
         TailSpending all = TailSpending.all(plan, new TailLevels(benefitLevel, harmLevel));
         Look last = BoundarySequence.resume(looks.subList(0, taken)).next(1, all.upper(), all.lower());
         return plan.test().better() == Better.HIGHER ? last.upper() : -last.lower();
+    }
+
+    /**
+     * How many planned looks before the last are expected to wait, with the planned rates and trials, because few successes in
+     * arms of unequal size would distort their error.
+     */
+    public int looksExpectedToWait(Plan plan, Variant challenger) {
+        TailSpending all = TailSpending.all(plan, new TailLevels(benefitLevel, harmLevel));
+        Readiness readiness = new Readiness(plan, plan.variantIndex(challenger.name()));
+        long own = trials.get(challenger.name());
+        long control = trials.get(plan.control().name());
+        int waiting = 0;
+        for (Look look : looks.subList(0, looks.size() - 1)) {
+            Stratum expected = new Stratum(
+                    Math.round(own * look.information() * pooledRate),
+                    Math.round(own * look.information()),
+                    Math.round(control * look.information() * pooledRate),
+                    Math.round(control * look.information()));
+            TailSpending spent = new TailSpending(look.upperSpent(), look.lowerSpent());
+            waiting += readiness.tooSkew(List.of(expected), () -> spent, all).isPresent() ? 1 : 0;
+        }
+        return waiting;
     }
 
     /** Planned information fractions: the plan's own, or equal steps when it looks at regular times. */

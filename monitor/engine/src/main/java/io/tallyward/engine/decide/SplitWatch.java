@@ -50,7 +50,7 @@ final class SplitWatch {
             sum += SequentialSplitTest.logBayesFactor(CONCENTRATION, shares(epoch), trials(counts, epoch));
         }
         logBayesFactor = sum;
-        largest = Math.max(largest, sum);
+        largest = StrictMath.max(largest, sum);
     }
 
     /** Leaves a variant out from now on. At least two always stay. */
@@ -106,7 +106,7 @@ final class SplitWatch {
 
     /** The sequential p-value, in (0, 1]; it never rises. */
     double sequentialPValue() {
-        return Math.min(1, Math.exp(-largest));
+        return StrictMath.min(1, StrictMath.exp(-largest));
     }
 
     Split split(CumulativeCounts counts) {

@@ -26,6 +26,7 @@ final class BoundariesRemarks {
                     remarks.add(remark);
                 }
             });
+            waiting(comparison, remarks);
             futility(comparison, remarks);
         }
         plan(planned.get(0).plan(), remarks);
@@ -54,6 +55,19 @@ final class BoundariesRemarks {
                 cell.failures(),
                 PlannedComparison.FEW,
                 minimum);
+    }
+
+    private static void waiting(PlannedComparison comparison, List<String> remarks) {
+        int waiting = comparison.design().looksExpectedToWait(comparison.plan(), comparison.challenger());
+        if (waiting > 0) {
+            remarks.add(String.format(
+                    Locale.ROOT,
+                    "%s: %d of the %d looks are expected to wait for more successes; few of them in arms of unequal size"
+                            + " would distort the error. More even shares would help.",
+                    comparison.challenger().name(),
+                    waiting,
+                    comparison.design().looks().size()));
+        }
     }
 
     private static void futility(PlannedComparison comparison, List<String> remarks) {
