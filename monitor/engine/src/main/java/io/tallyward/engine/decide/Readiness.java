@@ -23,7 +23,8 @@ final class Readiness {
 
     /**
      * Per cent of a direction's level by which skewness may raise its error at a look. Small counts in arms of unequal size
-     * make one tail heavier than the normal law says; a tenth of the level is what rounding to one digit would hide.
+     * make one tail heavier than the normal law says, and looks add their excesses up: with a tenth, ten Pocock looks at one arm
+     * nine times the other stayed within the level of both directions in simulation; with a fifth they exceeded it.
      */
     static final int MOST_ERROR_PERCENT = 10;
 
