@@ -6,6 +6,7 @@ import io.tallyward.engine.plan.TestPlan.InformationMeasure;
 import io.tallyward.engine.plan.TestPlan.SpendingClock;
 import io.tallyward.engine.plan.Variant;
 import io.tallyward.engine.record.Verdict;
+import io.tallyward.statistics.boundary.BoundarySequence;
 import io.tallyward.statistics.boundary.Look;
 import io.tallyward.statistics.proportion.StratifiedComparison;
 import io.tallyward.statistics.proportion.Stratum;
@@ -118,7 +119,7 @@ final class ChallengerTest {
         List<Stratum> strata = counts.strata(variant);
         Optional<StratifiedComparison> comparison = StratifiedComparison.of(strata);
         double fraction = comparison.map(found -> fraction(found, strata)).orElse(0.0);
-        double clock = comparison.map(found -> clock(found, fraction)).orElse(0.0);
+        double clock = comparison.map(found -> clock(found, fraction, runEnds)).orElse(0.0);
         boolean minimumRunOver = minimumRunOver(windowEnd);
         if (!runEnds && !calendar.isDue(windowEnd, fraction, minimumRunOver)) {
             return new Attempt.NotDue();
@@ -142,7 +143,7 @@ final class ChallengerTest {
                 time,
                 benefitOpen,
                 last,
-                runEnds && !looks.isEmpty() && stands(fraction, clock),
+                runEnds && !looks.isEmpty() && Readiness.clockStands(clock, lastClock()),
                 caution.orElse(""));
         calendar.taken(windowEnd, fraction);
         return new Attempt.Taken(judge(sound));
@@ -165,14 +166,20 @@ final class ChallengerTest {
 
     /**
      * What the correlation of looks goes by: information, while there is a single stratum. With allocation epochs whose rates
-     * may differ it is the variance of the score, on the scale of the plan.
+     * may differ it is the variance of the score, on the scale of the plan. The same at the end of a run whose information has
+     * not grown since the last look though counts came in, because the rates moved: from that look on, then, by the score.
      */
-    private double clock(StratifiedComparison found, double fraction) {
-        if (plan.epochs().isEmpty()) {
-            return fraction;
+    private double clock(StratifiedComparison found, double fraction, boolean runEnds) {
+        double clock = fraction;
+        if (!plan.epochs().isEmpty()) {
+            double pooled = design().pooledRate() * (1 - design().pooledRate());
+            clock = found.scoreVariance() / (design().maximumInformation() * pooled * pooled);
+        } else if (runEnds && !looks.isEmpty() && Readiness.clockStands(fraction, lastClock())) {
+            clock = lastClock()
+                    * found.scoreVariance()
+                    / looks.lastEntry().getValue().scoreVariance();
         }
-        double pooled = design().pooledRate() * (1 - design().pooledRate());
-        return found.scoreVariance() / (design().maximumInformation() * pooled * pooled);
+        return StrictMath.min(clock, BoundarySequence.MOST);
     }
 
     private double spendingTime(double fraction, long windowEnd) {
@@ -192,8 +199,11 @@ final class ChallengerTest {
 
     /** Whether hardly anything has come in since the last look, by either clock. */
     private boolean stands(double fraction, double clock) {
-        double clockBefore = lastLook().map(look -> look.look().information()).orElse(0.0);
-        return Readiness.stands(fraction, lastFraction()) || Readiness.clockStands(clock, clockBefore);
+        return Readiness.stands(fraction, lastFraction()) || Readiness.clockStands(clock, lastClock());
+    }
+
+    private double lastClock() {
+        return lastLook().map(look -> look.look().information()).orElse(0.0);
     }
 
     private double lastFraction() {
@@ -235,6 +245,7 @@ final class ChallengerTest {
                 Instant.ofEpochMilli(sitting.windowEnd()),
                 sitting.benefitOpen(),
                 bounds.look(),
+                sitting.found().scoreVariance(),
                 betaSpent,
                 bounds.futility(),
                 report.write(sitting, levels, bounds, taken, new LookReport.Outcome(finding, verdict, held)));
@@ -250,7 +261,7 @@ final class ChallengerTest {
         TailSpending end = foresee ? TailSpending.all(plan, levels) : null;
         LookPath.Bounds found =
                 path().next(new LookPath.Request(sitting.clock(), sitting.fraction(), spent, betaSpent, end));
-        return futility.looksAhead() && foresee
+        return futility.looksAhead() && foresee && Double.isFinite(found.critical())
                 ? new LookPath.Bounds(
                         found.look(),
                         StrictMath.min(futility.ahead(sitting.fraction(), found.critical()), benefit(found.look())),

@@ -28,9 +28,9 @@ import java.util.Optional;
  */
 public final class DecideShard {
 
-    private static final byte EXPERIMENT = 'X';
-    private static final byte WINDOW = 'W';
-    private static final byte LOOK = 'L';
+    private static final byte EXPERIMENT = 'x';
+    private static final byte WINDOW = 'w';
+    private static final byte LOOK = 'l';
 
     private final DecisionMemo memo;
     private final Detail detail;
@@ -83,8 +83,9 @@ public final class DecideShard {
             } else if (kind == LOOK) {
                 decider(experiment).restoreLook(TakenLook.read(reader(value)));
             } else {
-                throw new IllegalStateException("stored decisions: entry of unknown kind " + kind
-                        + " (expected: X, W or L); the state was written by another version");
+                throw new IllegalStateException(
+                        "stored decisions: entry of unknown kind " + kind
+                                + " (expected: x, w or l); the state was written by another version, whose state topics have to be removed");
             }
         } catch (IOException e) {
             throw new UncheckedIOException("stored decisions: an entry is cut short", e);

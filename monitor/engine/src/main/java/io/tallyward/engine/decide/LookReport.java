@@ -54,7 +54,7 @@ final class LookReport {
         double scale = StrictMath.sqrt(sitting.found().information());
         double lower = (z - look.upper()) / scale;
         double upper = (z - look.lower()) / scale;
-        boolean ended = outcome.finding().settled();
+        boolean crossedOrUsedUp = outcome.finding().settled() && outcome.finding() != Verdict.STOP_FUTILITY;
         boolean bare = detail == Detail.BARE;
         return new Comparison(
                 variant,
@@ -77,10 +77,8 @@ final class LookReport {
                                 .map(lift -> estimated(lift.lift(new Estimate(
                                         sitting.found().difference(), new Interval(lower, upper, 1 - levels.both())))))
                                 .orElse(null),
-                ended && outcome.finding() != Verdict.STOP_FUTILITY
-                        ? null
-                        : outlook(sitting.fraction(), z, bounds.critical()),
-                ended && !bare ? adjusted(sitting, levels, looks) : null,
+                crossedOrUsedUp ? null : outlook(sitting.fraction(), z, bounds.critical()),
+                crossedOrUsedUp && !bare ? adjusted(sitting, levels, looks) : null,
                 outcome.verdict(),
                 outcome.heldOrNull(),
                 bare ? "" : reason(z, look, outcome, sitting.caution()));

@@ -45,7 +45,7 @@ public record PlanDesign(
         double pooledRate,
         Map<String, Long> trials) {
 
-    /** A fraction of the form i / n, times n, is i but for rounding. */
+    /** A share of a duration, times it, is whole milliseconds but for rounding. */
     private static final double ROUNDING_MILLIS = 1;
 
     /** The design of one challenger of a plan. */
@@ -116,27 +116,28 @@ public record PlanDesign(
         return waiting;
     }
 
-    /** Planned information fractions: the plan's own, or equal steps when it looks at regular times. */
+    /** Planned information fractions: the plan's own, or those of an even pace when it looks at regular times. */
     public static double[] plannedFractions(Plan plan) {
         if (plan.looks() instanceof LookSchedule.AtFractions fractions) {
             return fractions.fractions().stream()
                     .mapToDouble(Double::doubleValue)
                     .toArray();
         }
-        return equalSteps(lookCount(plan));
+        LookSchedule.Every every = (LookSchedule.Every) plan.looks();
+        double[] planned = new double[lookCount(plan)];
+        for (int i = 0; i < planned.length; i++) {
+            planned[i] = StrictMath.min(
+                    1,
+                    (i + 1.0)
+                            * every.interval().toMillis()
+                            / plan.run().atMost().toMillis());
+        }
+        return planned;
     }
 
     private static int lookCount(Plan plan) {
         long interval = ((LookSchedule.Every) plan.looks()).interval().toMillis();
         return Math.toIntExact((plan.run().atMost().toMillis() + interval - 1) / interval);
-    }
-
-    private static double[] equalSteps(int count) {
-        double[] fractions = new double[count];
-        for (int i = 0; i < count; i++) {
-            fractions[i] = (i + 1.0) / count;
-        }
-        return fractions;
     }
 
     private static double drift(Plan plan, TailLevels levels, double[] planned, List<Look> looks) {
@@ -186,10 +187,10 @@ public record PlanDesign(
 
     /** Whether the benefit tail may spend at a planned look; looks planned by fractions have no planned time. */
     private static boolean benefitIsOpen(Plan plan, double fraction) {
-        if (!(plan.looks() instanceof LookSchedule.Every every)) {
+        if (!(plan.looks() instanceof LookSchedule.Every)) {
             return true;
         }
-        double elapsed = fraction * lookCount(plan) * every.interval().toMillis();
+        double elapsed = fraction * plan.run().atMost().toMillis();
         return fraction >= 1
                 || elapsed + ROUNDING_MILLIS >= plan.run().atLeast().toMillis();
     }

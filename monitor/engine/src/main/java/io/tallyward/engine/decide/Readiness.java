@@ -72,17 +72,27 @@ final class Readiness {
 
     /** The same in words. */
     static String standing(double fraction, double before) {
-        return String.format(
-                Locale.ROOT,
-                "the information fraction has grown from %.4f to %.4f only (a look needs %.3f more)",
-                before,
-                fraction,
-                LEAST_GROWTH);
+        if (fraction < before) {
+            return String.format(
+                    Locale.ROOT,
+                    "the information fraction has fallen from %.4f to %.4f, as the rates have moved (a look needs %.3f more)",
+                    before,
+                    fraction,
+                    LEAST_GROWTH);
+        }
+        return stands(fraction, before)
+                ? String.format(
+                        Locale.ROOT,
+                        "the information fraction has grown from %.4f to %.4f only (a look needs %.3f more)",
+                        before,
+                        fraction,
+                        LEAST_GROWTH)
+                : "the counts since the last look carry next to no weight against those before (a look needs more of them)";
     }
 
     /**
      * Why the normal law is too far off for this look, if it is. Judged at the boundary that a first look with all the error
-     * spent so far would have: no boundary of a later look is closer.
+     * spent so far would have: no boundary of this look is closer. Skewness adds most at a distance of the root of three.
      *
      * @param spent error the tails may have spent by this look
      * @param all error they may spend in all
@@ -106,6 +116,8 @@ final class Readiness {
     }
 
     private static double share(double skewness, double spent, double all) {
-        return spent > 0 ? NormalError.tail(skewness, Normal.upperQuantile(spent)) / all : 0;
+        return spent > 0
+                ? NormalError.tail(skewness, StrictMath.max(WORST_BOUNDARY, Normal.upperQuantile(spent))) / all
+                : 0;
     }
 }

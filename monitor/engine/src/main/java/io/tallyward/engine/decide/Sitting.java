@@ -15,7 +15,7 @@ import java.util.List;
  * @param time moment on the spending clock, in [0, 1]; 1 at the last look
  * @param benefitOpen whether the minimum run is over
  * @param last whether no look follows
- * @param again whether nothing has come in since the look before: that look once more, as the last
+ * @param again whether nothing has come in since the look before, by the clock: that look once more, as the last
  * @param caution why the level may be off, in words; empty when it is not
  */
 record Sitting(

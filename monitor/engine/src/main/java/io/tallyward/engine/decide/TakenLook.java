@@ -13,12 +13,19 @@ import java.time.Instant;
  * @param windowEnd event time of the look
  * @param benefitOpen whether the minimum run was over
  * @param look its boundaries and the error spent, on the scale of z as variant minus control
+ * @param scoreVariance variance of the score that the look was taken with
  * @param betaSpent cumulative type II error spent on futility; 0 when there is none
  * @param futility futility boundary on the scale on which a benefit is positive; negative infinity when there is none
  * @param comparison what was recorded of it
  */
 record TakenLook(
-        Instant windowEnd, boolean benefitOpen, Look look, double betaSpent, double futility, Comparison comparison) {
+        Instant windowEnd,
+        boolean benefitOpen,
+        Look look,
+        double scoreVariance,
+        double betaSpent,
+        double futility,
+        Comparison comparison) {
 
     void write(DataOutput out) throws IOException {
         out.writeLong(windowEnd.toEpochMilli());
@@ -29,6 +36,7 @@ record TakenLook(
         out.writeDouble(look.lowerSpent());
         out.writeDouble(look.upper());
         out.writeDouble(look.lower());
+        out.writeDouble(scoreVariance);
         out.writeDouble(betaSpent);
         out.writeDouble(futility);
         ComparisonPacking.write(comparison, out);
@@ -45,6 +53,7 @@ record TakenLook(
                         in.readDouble(),
                         in.readDouble(),
                         in.readDouble()),
+                in.readDouble(),
                 in.readDouble(),
                 in.readDouble(),
                 ComparisonPacking.read(in));

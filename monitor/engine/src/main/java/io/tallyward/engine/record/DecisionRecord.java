@@ -106,7 +106,7 @@ public record DecisionRecord(
      * @param lift the same relative to the control's rate, with its repeated confidence interval; null while the control
      *     has no success
      * @param outlook how likely a benefit still is; null at a last look and where the record is bare
-     * @param adjusted estimates adjusted for the looks taken; null while the comparison goes on
+     * @param adjusted estimates adjusted for the looks taken; null while the comparison goes on and after futility
      * @param verdict the verdict on this comparison, as told
      * @param held the verdict that waits for trust to return, null when none does
      * @param reason why, in words

@@ -24,7 +24,9 @@ import io.tallyward.statistics.spending.SpendingFunction;
 import java.time.Duration;
 import java.util.ArrayList;
 import java.util.List;
+import java.util.Map;
 import java.util.Random;
+import java.util.TreeMap;
 import org.apache.commons.math3.distribution.NormalDistribution;
 import org.junit.jupiter.api.Test;
 
@@ -98,6 +100,33 @@ class EstimatesTest {
 
     private static long binomial(Random random, double rate) {
         return Math.round(1000 * rate + random.nextGaussian() * Math.sqrt(1000 * rate * (1 - rate)));
+    }
+
+    /** A futility stop comes because z is low; "as if it had been the last look" would be one more look for harm. */
+    @Test
+    void givesNoAdjustedEstimateAfterFutility() {
+        Comparison look = new DecideHost(
+                        days().futility(Spending.of(Family.POCOCK)).build())
+                .next(1000, 200, 1000, 175)
+                .lastLook();
+        assertEquals(Verdict.STOP_FUTILITY, look.verdict());
+        assertNull(look.adjusted());
+        assertNotNull(look.differenceLower());
+        assertNotNull(look.outlook());
+    }
+
+    @Test
+    void foreseesNothingAfterTheBenefitTailHasSpentAll() {
+        Plan plan = days().benefit(Tail.of(0.025, Spending.table(new TreeMap<>(Map.of(0.1, 1.0, 1.0, 1.0)))))
+                .futility(new FutilityPlan.PredictivePower(0.2))
+                .build();
+        Comparison look = new DecideHost(plan)
+                .next(10000, 2000, 10000, 2000)
+                .next(10000, 2000, 10000, 2000)
+                .lastLook();
+        assertNull(look.futility(), look.toString());
+        assertNull(look.outlook());
+        assertEquals(Verdict.CONTINUE, look.verdict());
     }
 
     /** The closed forms of conditional and predictive power, as in the reference file's conventions. */

@@ -84,8 +84,8 @@ public final class PlanKeys {
     }
 
     static final class Test {
-        static final Key<Double> ALPHA = Key.required(
-                "alpha", numberBetween(0, 0.5), "False-alarm rate over all challengers, looks and both directions.");
+        static final Key<Double> ALPHA =
+                Key.required("alpha", level(), "False-alarm rate over all challengers, looks and both directions.");
         static final Key<Sides> SIDES = Key.withDefault(
                 "sides",
                 oneOf(Sides.class, PlanKeys::code),
@@ -264,6 +264,11 @@ public final class PlanKeys {
             EPOCHS);
 
     private PlanKeys() {}
+
+    /** Below a billionth a level is a mistake: no experiment is so sure of its data. */
+    private static ScalarType<Double> level() {
+        return number("number from 1e-9 to below 0.5", value -> value >= 1e-9 && value < 0.5);
+    }
 
     private static String code(Enum<?> constant) {
         return constant.name().toLowerCase(Locale.ROOT).replace('_', '-');

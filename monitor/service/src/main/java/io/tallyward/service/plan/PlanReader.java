@@ -1,5 +1,6 @@
 package io.tallyward.service.plan;
 
+import io.tallyward.engine.decide.PlanDesign;
 import io.tallyward.engine.plan.AllocationEpoch;
 import io.tallyward.engine.plan.CountRule;
 import io.tallyward.engine.plan.CountRule.CountBy;
@@ -44,7 +45,28 @@ public final class PlanReader {
         }
         Values values = PlanKeys.SHAPE.readRoot(root.get(), problems);
         PlanRules.check(values);
-        return problems.isEmpty() ? Checked.of(plan(values)) : Checked.refused(problems.list());
+        if (!problems.isEmpty()) {
+            return Checked.refused(problems.list());
+        }
+        Plan plan = plan(values);
+        design(plan, values);
+        return problems.isEmpty() ? Checked.of(plan) : Checked.refused(problems.list());
+    }
+
+    /** A plan whose looks have no boundaries, or that needs more trials than can be counted, is found out here and not later. */
+    private static void design(Plan plan, Values values) {
+        for (Variant challenger : plan.challengers()) {
+            try {
+                PlanDesign.of(plan, challenger);
+            } catch (IllegalArgumentException e) {
+                values.refuse(
+                        PlanKeys.TEST,
+                        "a test of " + challenger.name() + " that cannot be designed, " + e.getMessage(),
+                        "looks, spending and effect that have a design",
+                        "Choose looks further apart, another spending, or a larger smallest-effect.");
+                return;
+            }
+        }
     }
 
     private static Plan plan(Values values) {

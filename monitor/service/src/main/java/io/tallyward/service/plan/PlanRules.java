@@ -21,6 +21,9 @@ final class PlanRules {
     /** How far shares may add up to something else than 1: rounding of decimals in binary, and nothing more. */
     private static final double SHARE_TOLERANCE = 1e-9;
 
+    /** Looks closer than this would wait for one another; a little less, as decimals are rounded in binary. */
+    private static final double LEAST_STEP = 0.001 - 1e-12;
+
     /** More looks than this say nothing new and make the design slow to compute. */
     static final int MAX_LOOKS = 1_000;
 
@@ -162,8 +165,10 @@ final class PlanRules {
         every.ifPresent(interval -> checkInterval(looks, interval));
         fractions
                 .filter(list -> !isAscendingToOne(list))
-                .ifPresent(list ->
-                        looks.refuse(PlanKeys.Looks.FRACTIONS, list.toString(), "ascending fractions, the last one 1"));
+                .ifPresent(list -> looks.refuse(
+                        PlanKeys.Looks.FRACTIONS,
+                        list.toString(),
+                        "fractions that ascend by 0.001 or more, the last one 1"));
     }
 
     private void checkInterval(Values looks, Duration interval) {
@@ -248,7 +253,7 @@ final class PlanRules {
 
     private static boolean isAscendingToOne(List<Double> fractions) {
         for (int i = 1; i < fractions.size(); i++) {
-            if (!(fractions.get(i) > fractions.get(i - 1))) {
+            if (!(fractions.get(i) - fractions.get(i - 1) >= LEAST_STEP)) {
                 return false;
             }
         }

@@ -114,14 +114,14 @@ class BoundariesCommandTest {
     }
 
     @Test
-    void spacesRegularLooksEvenly() throws IOException {
+    void placesRegularLooksAtAnEvenPaceAndTheLastAtTheEnd() throws IOException {
         JsonNode looks = json(PLAN.replace("fractions: [0.25, 0.5, 0.75, 1.0]", "every: P9D"))
                 .get("comparisons")
                 .get(0)
                 .get("looks");
         List<Double> fractions = new ArrayList<>();
         looks.forEach(look -> fractions.add(look.get("informationFraction").asDouble()));
-        assertEquals(List.of(0.25, 0.5, 0.75, 1.0), fractions);
+        assertEquals(List.of(9.0 / 28, 18.0 / 28, 27.0 / 28, 1.0), fractions);
     }
 
     @Test
@@ -141,7 +141,7 @@ class BoundariesCommandTest {
     void refusesABadPlan() throws IOException {
         Path file = write(PLAN.replace("0.05", "0.5").replace("P28D", "P28DT1M"));
         List<String> messages = List.of(
-                file + ":5: test.alpha: 0.5 (expected: number above 0 and below 0.5)",
+                file + ":5: test.alpha: 0.5 (expected: number from 1e-9 to below 0.5)",
                 file + ":7: run.at-most: PT672H1M (expected: a multiple of count.window, PT5M)");
         CommandRun text = CommandRun.of("boundaries", "--plan", file.toString());
         assertEquals(new CommandRun(2, List.of(), messages), text);
@@ -151,7 +151,7 @@ class BoundariesCommandTest {
         assertEquals(List.of(), json.err());
         assertEquals(
                 "{\"type\":\"problem\",\"where\":\"" + file + ":5\",\"key\":\"test.alpha\",\"found\":\"0.5\","
-                        + "\"expected\":\"number above 0 and below 0.5\",\"remedy\":\"\",\"message\":\""
+                        + "\"expected\":\"number from 1e-9 to below 0.5\",\"remedy\":\"\",\"message\":\""
                         + messages.get(0) + "\"}",
                 json.out().get(0));
         assertEquals(2, json.out().size());

@@ -86,7 +86,7 @@ class CheckCommandTest {
                         2,
                         List.of(),
                         List.of(
-                                plan + ":5: test.alpha: 2 (expected: number above 0 and below 0.5)",
+                                plan + ":5: test.alpha: 2 (expected: number from 1e-9 to below 0.5)",
                                 "input topic clicks does not exist on 127.0.0.1:9092: create it, or correct "
                                         + "input.topics in " + config)),
                 check((properties, topics) -> Map.of("views", 4)));

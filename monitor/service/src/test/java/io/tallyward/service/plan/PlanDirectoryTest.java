@@ -38,7 +38,7 @@ class PlanDirectoryTest {
         Path third = write("c.yaml", PlanReaderTest.MINIMAL);
         assertEquals(
                 List.of(
-                        second + ":5: test.alpha: 0.5 (expected: number above 0 and below 0.5)",
+                        second + ":5: test.alpha: 0.5 (expected: number from 1e-9 to below 0.5)",
                         third + ": experiment: quay-banner (expected: one plan per experiment; " + first
                                 + " has one already)"),
                 problems(directory));

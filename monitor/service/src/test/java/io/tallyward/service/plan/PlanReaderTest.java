@@ -1,6 +1,7 @@
 package io.tallyward.service.plan;
 
 import static org.junit.jupiter.api.Assertions.assertEquals;
+import static org.junit.jupiter.api.Assertions.assertTrue;
 
 import io.tallyward.engine.plan.AllocationEpoch;
 import io.tallyward.engine.plan.CountRule;
@@ -169,6 +170,17 @@ class PlanReaderTest {
                 .orElseThrow();
     }
 
+    /** What the design refuses is refused with the plan, before anything is counted under it. */
+    @Test
+    void refusesAPlanThatHasNoDesign() {
+        String tiny = problems(MINIMAL.replace("smallest-effect: 0.006", "smallest-effect: 1e-9"))
+                .get(0);
+        assertTrue(tiny.startsWith("bad.yaml:5: test: a test of wide that cannot be designed, "), tiny);
+        String close = problems(MINIMAL.replace("{every: PT6H}", "{fractions: [0.5, 0.5000001, 1]}"))
+                .get(0);
+        assertTrue(close.startsWith("bad.yaml:6: looks.fractions: "), close);
+    }
+
     @Test
     void refusesDirectionsAndRulesThatDoNotFit() {
         Map<String, String> refusals = new LinkedHashMap<>();
@@ -211,14 +223,14 @@ class PlanReaderTest {
                         "bad.yaml:3: count.window: PT7M (expected: a duration that divides a day)",
                         "bad.yaml:4: variants: no control (expected: exactly one variant with control: true)",
                         "bad.yaml:4: variants: shares that add up to 0.9 (expected: shares that add up to 1)",
-                        "bad.yaml:5: test.alpha: 0.7 (expected: number above 0 and below 0.5)",
+                        "bad.yaml:5: test.alpha: 0.7 (expected: number from 1e-9 to below 0.5)",
                         "bad.yaml:5: test.sides: both (expected: one or two)",
                         "bad.yaml:5: test.spending: fleming (expected: obrien-fleming, pocock, "
                                 + "{hwang-shih-decani: GAMMA}, {kim-demets: RHO} or {table: {FRACTION: SHARE, ..., 1: 1}})",
                         "bad.yaml:5: test.smallest-effect: 0.4 "
                                 + "(expected: a number that leaves baseline + smallest-effect below 1)",
                         "bad.yaml:6: looks: both are given (expected: either every or fractions)",
-                        "bad.yaml:6: looks.fractions: [0.5, 0.25] (expected: ascending fractions, the last one 1)",
+                        "bad.yaml:6: looks.fractions: [0.5, 0.25] (expected: fractions that ascend by 0.001 or more, the last one 1)",
                         "bad.yaml:7: run.at-least: P8D (expected: at most run.at-most, P7D)"),
                 problems("""
                         experiment: Quay Banner
