@@ -17,6 +17,7 @@ public final class Demo {
 
     static CommandLine commandLine() {
         CommandLine command = new CommandLine(new DemoCommand());
+        command.addSubcommand(new ChaosCommand());
         command.setParameterExceptionHandler(Demo::refuse);
         command.setExecutionExceptionHandler((failure, line, parsed) -> {
             line.getErr().println("tallyward-demo: " + failure.getMessage());

@@ -3,7 +3,6 @@ package io.tallyward.demo.stream;
 import io.tallyward.demo.story.StreamEvent;
 import java.nio.charset.StandardCharsets;
 import java.time.Duration;
-import java.util.List;
 import java.util.Map;
 import java.util.concurrent.atomic.AtomicReference;
 import java.util.concurrent.locks.LockSupport;
@@ -64,7 +63,7 @@ public final class StreamSender implements AutoCloseable {
      *
      * @throws IllegalStateException when a record cannot be delivered or the thread is interrupted
      */
-    public void send(List<StreamEvent> events, Pace pace, Progress progress) {
+    public void send(Iterable<StreamEvent> events, Pace pace, Progress progress) {
         long count = 0;
         for (StreamEvent event : events) {
             await(pace, event);
