@@ -33,7 +33,8 @@ public final class Demo {
     private static int refuse(ParameterException e, String[] arguments) {
         CommandLine command = e.getCommandLine();
         PrintWriter err = command.getErr();
-        err.println(e.getMessage().replaceAll("[.\\s]+$", "") + ". See " + command.getCommandName() + " --help.");
+        err.println(e.getMessage().replaceAll("[.\\s]+$", "") + ". See "
+                + command.getCommandSpec().qualifiedName() + " --help.");
         err.flush();
         return DemoCommand.WRONG_ARGUMENTS;
     }
