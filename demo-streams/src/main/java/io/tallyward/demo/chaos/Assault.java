@@ -31,6 +31,7 @@ final class Assault {
     private final FaultDeck deck;
     private final long share;
     private final List<Strike> strikes = new ArrayList<>();
+    private Runnable vigil = () -> {};
 
     /** Shares the events out over the faults. */
     Assault(Fleet fleet, BrokerProcess broker, Recoveries recoveries, Gate gate, Deadline deadline, Orders orders) {
@@ -57,8 +58,14 @@ final class Assault {
         return strikes;
     }
 
-    /** Strikes all faults; the stream is let through to its end after the last. */
-    void carryOut(int faults, Runnable eachTime) throws IOException, InterruptedException {
+    /**
+     * Strikes all faults; the stream is let through to its end after the last.
+     *
+     * @param eachTime called after every fault
+     * @param meanwhile called several times a second; throws when it makes no sense to go on
+     */
+    void carryOut(int faults, Runnable eachTime, Runnable meanwhile) throws IOException, InterruptedException {
+        vigil = meanwhile;
         awaitEvents(share / 2);
         boolean tooSoon = false;
         for (int number = 1; number <= faults; number++) {
@@ -96,6 +103,7 @@ final class Assault {
     /** Lets a little time pass and as many events through as belong to it, but not those of later faults. */
     private void pulse(int faults) throws IOException, InterruptedException {
         deadline.check();
+        vigil.run();
         fleet.replaceFallen();
         broker.requireAlive();
         if (faults > 0) {

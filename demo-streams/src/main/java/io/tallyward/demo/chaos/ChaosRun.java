@@ -142,10 +142,7 @@ public final class ChaosRun implements AutoCloseable {
         while (stormy.partitions(PARTITIONS).isEmpty()) {
             pause(stormy);
         }
-        assault.carryOut(options.faults(), () -> {
-            requireSending(sending);
-            say.accept(line(assault));
-        });
+        assault.carryOut(options.faults(), () -> say.accept(line(assault)), () -> requireSending(sending));
         say.accept("the last fault has struck; the rest of the stream follows");
         while (!sending.isDone()) {
             requireSending(sending);

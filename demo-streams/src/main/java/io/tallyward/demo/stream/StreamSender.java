@@ -39,7 +39,11 @@ public final class StreamSender implements AutoCloseable {
         this.topic = topic;
     }
 
-    /** A sender to a broker; every record is acknowledged and none is duplicated by a retry. */
+    /**
+     * A sender to a broker; every record is acknowledged and none is duplicated by a retry. One request at a time, because a
+     * broker that was killed remembers only the last batch of a producer: it would refuse an earlier one that is sent again,
+     * although it has it, and the producer would try in vain until it gives up.
+     */
     public static StreamSender to(String bootstrapServers, String topic) {
         Map<String, Object> properties = Map.of(
                 ProducerConfig.BOOTSTRAP_SERVERS_CONFIG,
@@ -48,6 +52,8 @@ public final class StreamSender implements AutoCloseable {
                 true,
                 ProducerConfig.ACKS_CONFIG,
                 "all",
+                ProducerConfig.MAX_IN_FLIGHT_REQUESTS_PER_CONNECTION,
+                1,
                 ProducerConfig.LINGER_MS_CONFIG,
                 20,
                 ProducerConfig.BATCH_SIZE_CONFIG,
