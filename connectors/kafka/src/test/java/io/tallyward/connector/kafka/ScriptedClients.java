@@ -27,6 +27,11 @@ final class ScriptedClients implements Clients, OutboxClients {
     final Input input = new Input();
     long stateEnd;
 
+    /** What the next questions for committed offsets and for a sign of life end in; null for an answer. */
+    RuntimeException committedFailure;
+
+    RuntimeException pingFailure;
+
     @Override
     public Cluster cluster() {
         return new ScriptedCluster();
@@ -92,6 +97,9 @@ final class ScriptedClients implements Clients, OutboxClients {
         public synchronized Map<TopicPartition, OffsetAndMetadata> committed(
                 Set<TopicPartition> partitions, Duration timeout) {
             journal.add("read committed offsets");
+            if (committedFailure != null) {
+                throw committedFailure;
+            }
             Map<TopicPartition, OffsetAndMetadata> answer = new HashMap<>();
             partitions.forEach(partition -> answer.put(partition, committed.get(partition)));
             return answer;
@@ -162,6 +170,9 @@ final class ScriptedClients implements Clients, OutboxClients {
         @Override
         public void ping() {
             journal.add("ping");
+            if (pingFailure != null) {
+                throw pingFailure;
+            }
         }
 
         @Override
