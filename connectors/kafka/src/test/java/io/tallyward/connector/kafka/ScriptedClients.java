@@ -6,6 +6,7 @@ import java.util.Collection;
 import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.Set;
 import org.apache.kafka.clients.consumer.Consumer;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
@@ -70,6 +71,19 @@ final class ScriptedClients implements Clients, OutboxClients {
                 };
         producers.add(producer);
         return producer;
+    }
+
+    @Override
+    public Optional<Producer<byte[], byte[]>> predecessor() {
+        return producers.isEmpty()
+                ? Optional.empty()
+                : Optional.of(new MockProducer<>(true, null, new ByteArraySerializer(), new ByteArraySerializer()) {
+                    @Override
+                    public void initTransactions() {
+                        journal.add("end what was left open");
+                        super.initTransactions();
+                    }
+                });
     }
 
     MockProducer<byte[], byte[]> producer() {

@@ -135,7 +135,11 @@ class ShardSessionTest {
 
         clients.state("states", 0, 0, "quay-banner", "40");
         clients.committed.put(VIEWS, new OffsetAndMetadata(40));
+        journal.clear();
         session.step();
+        assertEquals(
+                List.of("end what was left open", "init transactions", "read committed offsets"),
+                journal.subList(0, 3));
         clients.input("crossings", 0, 40, "quay-banner", "view");
         stepAfterInterval();
         assertEquals(2, clients.producers.size());
