@@ -68,6 +68,9 @@ final class ChaosCommand implements Callable<Integer> {
             description = "Give up, and fail, when the run takes longer (default: ${DEFAULT-VALUE}).")
     private int seconds;
 
+    @Option(names = "--spare-broker", description = "Strike instances of the monitor only, never the broker.")
+    private boolean brokerSpared;
+
     @Option(
             names = "--port",
             paramLabel = "N",
@@ -97,7 +100,8 @@ final class ChaosCommand implements Callable<Integer> {
         Screen screen = Screen.standard();
         Consumer<String> say = json ? line -> {} : screen::line;
         WorkDirectory directory = WorkDirectory.open(keep);
-        ChaosRun.Options options = new ChaosRun.Options(faults, events, seed, Duration.ofSeconds(seconds), port);
+        ChaosRun.Options options =
+                new ChaosRun.Options(faults, events, seed, brokerSpared, Duration.ofSeconds(seconds), port);
         ChaosRun run = new ChaosRun(options, directory.path(), say);
         Interruption interruption = Interruption.listen(screen, run::closeInHurry, directory);
         try (interruption;

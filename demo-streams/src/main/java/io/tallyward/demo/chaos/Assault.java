@@ -40,7 +40,7 @@ final class Assault {
         this.recoveries = recoveries;
         this.gate = gate;
         this.deadline = deadline;
-        this.deck = new FaultDeck(orders.seed());
+        this.deck = new FaultDeck(orders.seed(), orders.brokerSpared());
         this.share = orders.events() / (orders.faults() + 1);
     }
 
@@ -50,8 +50,9 @@ final class Assault {
      * @param faults how many
      * @param events about how many will be sent
      * @param seed of the faults
+     * @param brokerSpared whether only instances are struck
      */
-    record Orders(int faults, long events, long seed) {}
+    record Orders(int faults, long events, long seed, boolean brokerSpared) {}
 
     /** The faults so far. */
     List<Strike> strikes() {
@@ -122,15 +123,11 @@ final class Assault {
             fault = Fault.ADD;
         }
         Instance victim = awake.isEmpty() ? null : awake.get(deck.choose(awake.size()));
-        String whom = concernsBroker(fault) ? "broker" : fault == Fault.ADD ? "-" : victim.name();
+        String whom = fault.concernsBroker() ? "broker" : fault == Fault.ADD ? "-" : victim.name();
         Strike strike = new Strike(fault, whom, tooSoon, deadline.elapsed(), gate.passed());
         strikes.add(strike);
         goals.ifPresent(ends -> recoveries.await(strike, ends));
         carryOut(fault, victim);
-    }
-
-    private static boolean concernsBroker(Fault fault) {
-        return fault == Fault.BROKER_STOP || fault == Fault.BROKER_KILL;
     }
 
     private void carryOut(Fault fault, Instance victim) throws IOException, InterruptedException {

@@ -75,10 +75,11 @@ public final class ChaosRun implements AutoCloseable {
      * @param faults how many
      * @param events about how many
      * @param seed of stream and faults
+     * @param brokerSpared whether only instances of the monitor are struck
      * @param atMost after which time the run gives up
      * @param port of the first instance's page; 0 for any
      */
-    public record Options(int faults, long events, long seed, Duration atMost, int port) {}
+    public record Options(int faults, long events, long seed, boolean brokerSpared, Duration atMost, int port) {}
 
     /**
      * Prepares the files; nothing runs yet but the receiver of notices.
@@ -117,7 +118,7 @@ public final class ChaosRun implements AutoCloseable {
         for (int i = 1; i < FIRST_INSTANCES; i++) {
             stormy.add();
         }
-        Orders orders = new Orders(options.faults(), options.events(), options.seed());
+        Orders orders = new Orders(options.faults(), options.events(), options.seed(), options.brokerSpared());
         try (Recoveries recoveries = new Recoveries(broker.bootstrapServers(), groups(STORMY));
                 StreamSender open = StreamSender.to(broker.bootstrapServers(), TOPIC)) {
             sender = open;

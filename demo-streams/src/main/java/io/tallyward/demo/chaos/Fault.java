@@ -30,6 +30,11 @@ public enum Fault {
         return weight;
     }
 
+    /** Whether it is done to the broker and not to an instance. */
+    boolean concernsBroker() {
+        return this == BROKER_STOP || this == BROKER_KILL;
+    }
+
     /** As it is shown: {@code broker-kill}. */
     public String code() {
         return name().toLowerCase(Locale.ROOT).replace('_', '-');

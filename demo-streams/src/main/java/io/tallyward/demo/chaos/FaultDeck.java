@@ -19,10 +19,12 @@ final class FaultDeck {
     private static final int LONGEST_CALM_MILLIS = 2_500;
     private static final int LONGEST_ABSENCE_MILLIS = 3_000;
 
+    private final boolean brokerSpared;
     private final SplittableRandom random;
     private final List<Fault> cards = new ArrayList<>();
 
-    FaultDeck(long seed) {
+    FaultDeck(long seed, boolean brokerSpared) {
+        this.brokerSpared = brokerSpared;
         random = new SplittableRandom(seed);
     }
 
@@ -40,7 +42,8 @@ final class FaultDeck {
 
     private void shuffle() {
         for (Fault fault : Fault.values()) {
-            for (int i = 0; i < fault.weight(); i++) {
+            int copies = brokerSpared && fault.concernsBroker() ? 0 : fault.weight();
+            for (int i = 0; i < copies; i++) {
                 cards.add(random.nextInt(cards.size() + 1), fault);
             }
         }

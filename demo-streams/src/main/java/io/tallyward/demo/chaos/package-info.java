@@ -18,6 +18,10 @@
  * <ul>
  *   <li>Loss of acknowledged data: there is one broker with one disk, which is killed but keeps what it has written.
  *       Replication, a change of leader, a full disk and a machine that loses its page cache are Kafka's to survive.
+ *   <li>Transactions that the broker itself forgets. One Kafka node (4.4.0) that goes down, in good order or not, while a
+ *       transaction is ending may come back without the markers that end it in the partitions: its coordinator then says
+ *       that the transaction is over, and the partitions hold it open for good. The monitor stands still there and says so,
+ *       and the run ends as not done in time; {@code --spare-broker} leaves these faults out.
  *   <li>A network that is cut between some and not others, or that delays; here every process is whole, frozen or gone.
  *   <li>Clocks that jump, partitions that fall silent and are sealed for idleness (the wall clock would decide what is
  *       late), and topics that are deleted or grow.

@@ -20,7 +20,7 @@ class ChaosIT {
 
     @Test
     void countsAndDecidesThroughFaultsAsIfNothingHadHappened(@TempDir Path directory) throws Exception {
-        ChaosRun.Options options = new ChaosRun.Options(FAULTS, EVENTS, SEED, AT_MOST, 0);
+        ChaosRun.Options options = new ChaosRun.Options(FAULTS, EVENTS, SEED, true, AT_MOST, 0);
         try (ChaosRun run = new ChaosRun(options, directory, line -> {})) {
             ChaosReport report = run.carryOut();
             assertTrue(report.holds(), () -> String.join(System.lineSeparator(), report.lines()));

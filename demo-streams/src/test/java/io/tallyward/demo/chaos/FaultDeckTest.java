@@ -15,7 +15,7 @@ class FaultDeckTest {
             Arrays.stream(Fault.values()).mapToInt(Fault::weight).sum();
 
     private static List<Fault> deal(long seed, int count, int instances) {
-        FaultDeck deck = new FaultDeck(seed);
+        FaultDeck deck = new FaultDeck(seed, false);
         List<Fault> faults = new ArrayList<>();
         for (int i = 0; i < count; i++) {
             faults.add(deck.next(instances));
@@ -38,6 +38,15 @@ class FaultDeckTest {
     void dealsTheSameForTheSameSeedOnly() {
         assertEquals(deal(1, 5 * DECK, 2), deal(1, 5 * DECK, 2));
         assertNotEquals(deal(1, 5 * DECK, 2), deal(2, 5 * DECK, 2));
+    }
+
+    @Test
+    void sparesTheBrokerWhenTold() {
+        FaultDeck deck = new FaultDeck(1, true);
+        for (int i = 0; i < 5 * DECK; i++) {
+            Fault fault = deck.next(2);
+            assertTrue(!fault.concernsBroker(), fault.code());
+        }
     }
 
     @Test
