@@ -112,7 +112,7 @@ final class DemoCommand implements Callable<Integer> {
         DemoRun.Options options = new DemoRun.Options(Duration.ofSeconds(seconds), port, kills, replay);
         WorkDirectory directory = WorkDirectory.open(keep);
         DemoRun run = new DemoRun(scenario, options, directory.path(), screen);
-        Interruption interruption = Interruption.listen(screen, run, directory);
+        Interruption interruption = Interruption.listen(screen, run::stopInHurry, directory);
         try (interruption;
                 directory;
                 run) {

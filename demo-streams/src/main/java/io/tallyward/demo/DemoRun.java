@@ -15,6 +15,7 @@ import io.tallyward.demo.receiver.SignatureCheck;
 import io.tallyward.demo.receiver.WebhookReceiver;
 import io.tallyward.demo.story.Scenario;
 import io.tallyward.demo.story.Story;
+import io.tallyward.demo.stream.InputTopic;
 import io.tallyward.demo.stream.Pace;
 import io.tallyward.demo.stream.StreamSender;
 import io.tallyward.demo.truth.ExperimentTruth;
@@ -263,9 +264,10 @@ final class DemoRun implements AutoCloseable {
         }
     }
 
-    /** From now on whatever is stopped is given two seconds before it is killed. */
-    void hurry() {
+    /** Stops what runs, with two seconds for each part before it is killed. */
+    void stopInHurry() {
         hurried = true;
+        close();
     }
 
     /** Stops what runs, the latest first. May be called again. */

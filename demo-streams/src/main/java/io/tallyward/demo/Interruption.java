@@ -14,22 +14,26 @@ final class Interruption implements AutoCloseable {
     private static final Duration PATIENCE = Duration.ofSeconds(1);
 
     private final Screen screen;
-    private final DemoRun run;
+    private final Runnable stopInHurry;
     private final WorkDirectory directory;
     private final Thread main;
     private final CountDownLatch ended = new CountDownLatch(1);
     private volatile boolean happened;
 
-    private Interruption(Screen screen, DemoRun run, WorkDirectory directory, Thread main) {
+    private Interruption(Screen screen, Runnable stopInHurry, WorkDirectory directory, Thread main) {
         this.screen = screen;
-        this.run = run;
+        this.stopInHurry = stopInHurry;
         this.directory = directory;
         this.main = main;
     }
 
-    /** Listens from now on, on behalf of the current thread; closing says that this thread has nothing left to stop. */
-    static Interruption listen(Screen screen, DemoRun run, WorkDirectory directory) {
-        Interruption interruption = new Interruption(screen, run, directory, Thread.currentThread());
+    /**
+     * Listens from now on, on behalf of the current thread; closing says that this thread has nothing left to stop.
+     *
+     * @param stopInHurry stops everything that was started; called on another thread
+     */
+    static Interruption listen(Screen screen, Runnable stopInHurry, WorkDirectory directory) {
+        Interruption interruption = new Interruption(screen, stopInHurry, directory, Thread.currentThread());
         Runtime.getRuntime().addShutdownHook(new Thread(interruption::stop, "demo-stop"));
         return interruption;
     }
@@ -51,9 +55,8 @@ final class Interruption implements AutoCloseable {
         }
         happened = true;
         screen.lastLine("stopping ...");
-        run.hurry();
         main.interrupt();
-        run.close();
+        stopInHurry.run();
         try {
             ended.await(PATIENCE.toMillis(), TimeUnit.MILLISECONDS);
             directory.close();

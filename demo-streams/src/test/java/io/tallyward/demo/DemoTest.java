@@ -30,6 +30,14 @@ class DemoTest {
     }
 
     @Test
+    void refusesAChaosOfTooFewEventsInOneSentence() {
+        assertEquals(DemoCommand.WRONG_ARGUMENTS, run("chaos", "--events", "5"));
+        assertEquals(
+                "--events: 5 (expected: 100000 to 1000000000). See tallyward-demo chaos --help.",
+                said.toString().strip());
+    }
+
+    @Test
     void saysFirstWhatIsToCome() {
         Scenario scenario = ToldScenario.withDefaultSeed();
         assertEquals(

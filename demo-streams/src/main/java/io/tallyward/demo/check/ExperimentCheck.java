@@ -58,6 +58,14 @@ public record ExperimentCheck(
         List<Finding> findings = new ArrayList<>();
         challengers().forEach(challenger -> findings.add(verdictFinding(challenger)));
         findings.add(trustFinding());
+        findings.addAll(countFindings());
+        truth.story().expectation().notice().ifPresent(notice -> findings.add(noticeFinding(notice)));
+        return findings;
+    }
+
+    /** The comparisons that are about counts and not about what is concluded from them. */
+    public List<Finding> countFindings() {
+        List<Finding> findings = new ArrayList<>();
         findings.add(cellsFinding());
         findings.add(outcomesFinding());
         findings.add(outsideFinding());
@@ -65,7 +73,6 @@ public record ExperimentCheck(
                 experiment() + ": totals in the API",
                 Differences.between(
                         truth.totals(standing.completeUntil().toEpochMilli()), standing.counts(), Count.NONE)));
-        truth.story().expectation().notice().ifPresent(notice -> findings.add(noticeFinding(notice)));
         return findings;
     }
 

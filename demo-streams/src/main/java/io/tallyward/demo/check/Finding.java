@@ -14,7 +14,8 @@ public record Finding(String subject, List<String> differences) {
         differences = List.copyOf(differences);
     }
 
-    static Finding of(String subject, boolean holds, String difference) {
+    /** A finding that holds or does not. */
+    public static Finding of(String subject, boolean holds, String difference) {
         return new Finding(subject, holds ? List.of() : List.of(difference));
     }
 

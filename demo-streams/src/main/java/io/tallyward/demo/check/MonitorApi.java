@@ -60,18 +60,28 @@ public final class MonitorApi {
         return standings;
     }
 
-    /** Events of an experiment outside its run since the first event, as the API tells of every partition. */
-    public long outside(String experiment) {
-        long events = 0;
+    /** What this instance has counted in each input partition that it hosts; empty while it does not answer. */
+    public Map<Integer, JsonNode> partitions() {
+        Map<Integer, JsonNode> partitions = new LinkedHashMap<>();
         Optional<String> answer = get(base.resolve("api/partitions"));
         if (answer.isPresent()) {
             for (JsonNode partition : tree(answer.get())) {
-                JsonNode outcomes =
-                        partition.path("experiments").path(experiment).path("outcomes");
-                events += outcomes.path("outside").asLong();
+                partitions.put(partition.path("partition").asInt(), partition);
             }
         }
-        return events;
+        return partitions;
+    }
+
+    /** Events of an experiment outside its run since the first event, as the API tells of every partition. */
+    public long outside(String experiment) {
+        return partitions().values().stream()
+                .mapToLong(partition -> partition
+                        .path("experiments")
+                        .path(experiment)
+                        .path("outcomes")
+                        .path("outside")
+                        .asLong())
+                .sum();
     }
 
     private JsonNode tree(String answer) {

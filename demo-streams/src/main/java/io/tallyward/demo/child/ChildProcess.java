@@ -7,6 +7,7 @@ import java.nio.file.Files;
 import java.nio.file.Path;
 import java.time.Duration;
 import java.util.List;
+import java.util.OptionalInt;
 import java.util.concurrent.TimeUnit;
 import java.util.stream.Stream;
 
@@ -108,6 +109,30 @@ public final class ChildProcess implements AutoCloseable {
         }
     }
 
+    /**
+     * Asks the process to stop, as {@code kill -TERM} does, and waits.
+     *
+     * @return the code it ended with; empty when it has not ended in time, and then it is still running
+     */
+    public OptionalInt terminate(Duration patience) {
+        process.destroy();
+        return endsWithin(patience) ? OptionalInt.of(process.exitValue()) : OptionalInt.empty();
+    }
+
+    /**
+     * Freezes the process, as {@code kill -STOP} does, and thaws it after a number of seconds. A shell does both, so that
+     * the process is thawed even if this one is gone by then.
+     *
+     * @throws IOException when no shell can be started
+     */
+    public void freeze(int seconds) throws IOException {
+        String pid = Long.toString(process.pid());
+        new ProcessBuilder("sh", "-c", "kill -STOP " + pid + "; sleep " + seconds + "; kill -CONT " + pid)
+                .redirectErrorStream(true)
+                .redirectOutput(ProcessBuilder.Redirect.DISCARD)
+                .start();
+    }
+
     /** Stops the process: by the end of its input, then by a signal, then by force; takes 25 seconds at most. */
     @Override
     public void close() {
@@ -161,7 +186,8 @@ public final class ChildProcess implements AutoCloseable {
                 + String.join(System.lineSeparator() + "  ", last);
     }
 
-    private String output() {
+    /** What the process has written so far. */
+    public String output() {
         try {
             return new String(Files.readAllBytes(log), StandardCharsets.UTF_8);
         } catch (IOException notYet) {

@@ -8,7 +8,8 @@ package io.tallyward.demo.story;
 final class Ids {
 
     private final long salt;
-    private long next;
+    private final long first;
+    private long used;
 
     /**
      * Ids of one story.
@@ -18,11 +19,16 @@ final class Ids {
      */
     Ids(long seed, int story) {
         salt = mix(seed);
-        next = ((long) story << 40) + 1;
+        first = ((long) story << 40) + 1;
     }
 
     long next() {
-        return mix(next++ ^ salt);
+        return at(used++);
+    }
+
+    /** The id that the call of {@link #next()} with this number, from 0, returns. */
+    long at(long index) {
+        return mix((first + index) ^ salt);
     }
 
     static long mix(long value) {

@@ -23,6 +23,15 @@ final class Rhythm {
         }
     }
 
+    /** Share of a day's visitors who come in one of its hours, 0 to 23. */
+    static double share(int hour) {
+        double sum = 0;
+        for (double weight : HOURS) {
+            sum += weight;
+        }
+        return HOURS[hour] / sum;
+    }
+
     /** A moment of the fourteen days, in milliseconds since the epoch. */
     long draw(SplittableRandom random) {
         long days = Duration.between(Northwater.START, Northwater.END).toDays();

@@ -23,7 +23,15 @@ public record Scenario(long seed, List<Story> stories, List<StreamEvent> events)
     /** The seed of the demo unless another one is asked for. */
     public static final long DEFAULT_SEED = 20_260_504L;
 
-    private static final int DEBRIS = 200;
+    /** In the order in which they are shown. */
+    static final List<Story> STORIES =
+            List.of(new QuayBanner(), new FareChip(), new ReturnPrompt(), new CabinUpsell(), new DeckMap());
+
+    /** Number of the ids of records that belong to no story. */
+    static final int DEBRIS = 200;
+
+    /** The unit of the program that fetches the page of the quay banner. */
+    static final String BOT = "u-fetcher";
 
     public Scenario {
         stories = List.copyOf(stories);
@@ -32,8 +40,7 @@ public record Scenario(long seed, List<Story> stories, List<StreamEvent> events)
 
     /** Tells all stories. Takes about a second and 80 MB. */
     public static Scenario of(long seed) {
-        List<Story> stories =
-                List.of(new QuayBanner(), new FareChip(), new ReturnPrompt(), new CabinUpsell(), new DeckMap());
+        List<Story> stories = STORIES;
         List<StreamEvent> events = new ArrayList<>(600_000);
         Roster roster = new Roster(seed);
         SplittableRandom seeds = new SplittableRandom(seed);
@@ -43,7 +50,7 @@ public record Scenario(long seed, List<Story> stories, List<StreamEvent> events)
             Teller teller = new Teller(story, roster, new Ids(seed, number), seeds.split(), out);
             teller.tell();
             if (story instanceof QuayBanner) {
-                teller.tellBot("u-fetcher");
+                teller.tellBot(BOT);
             }
         }
         Debris.scatter(roster, new Ids(seed, DEBRIS), seeds.split(), out);
@@ -64,7 +71,7 @@ public record Scenario(long seed, List<Story> stories, List<StreamEvent> events)
         }
     }
 
-    private static byte[] plan(String file) {
+    static byte[] plan(String file) {
         try (InputStream plan = Scenario.class.getResourceAsStream(file)) {
             if (plan == null) {
                 throw new IllegalStateException("plan " + file

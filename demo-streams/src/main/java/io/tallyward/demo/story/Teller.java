@@ -22,7 +22,7 @@ final class Teller {
     private static final double SEEN_BEFORE_RUN = 0.01;
 
     /** Units that are first seen after the fourteen days; about five a minute. */
-    private static final int LAST_VISITORS = 900;
+    static final int LAST_VISITORS = 900;
 
     private static final int BOT_VIEWS = 3_000;
     private static final int BOT_CLICKS = 600;
@@ -44,13 +44,18 @@ final class Teller {
 
     void tell() {
         for (int i = 0; i < story.units(); i++) {
-            tellUnit(roster.unit(i));
+            tellUnit(roster.unit(i), rhythm.draw(random));
         }
-        if (story.runsAt(Northwater.STREAM_END.toEpochMilli())) {
+        if (outlastsStream()) {
             for (int i = 0; i < LAST_VISITORS; i++) {
                 tellLastVisitor(roster.unit(story.units() + i));
             }
         }
+    }
+
+    /** Whether visitors come even after the fourteen days. */
+    boolean outlastsStream() {
+        return story.runsAt(Northwater.STREAM_END.toEpochMilli());
     }
 
     /** A program that fetches the page thousands of times in two days under one unit: one trial, however busy it is. */
@@ -67,8 +72,9 @@ final class Teller {
         }
     }
 
-    private void tellUnit(String unit) {
-        long at = rhythm.draw(random);
+    /** Tells of a unit that is first seen at about this moment. */
+    void tellUnit(String unit, long aboutMillis) {
+        long at = aboutMillis;
         if (random.nextDouble() < ON_WINDOW_EDGE) {
             at = Northwater.windowStart(at) + (random.nextBoolean() ? 0 : Northwater.WINDOW.toMillis() - 1);
         }
@@ -84,7 +90,8 @@ final class Teller {
         }
     }
 
-    private void tellLastVisitor(String unit) {
+    /** Tells of a unit that comes after the fourteen days and looks once. */
+    void tellLastVisitor(String unit) {
         long end = Northwater.END.toEpochMilli();
         long at = end + random.nextLong(Northwater.STREAM_END.toEpochMilli() - end - Delivery.PROMPT.mostMillis());
         script(unit, at).lastView();

@@ -3,7 +3,6 @@ package io.tallyward.demo.stream;
 import io.tallyward.demo.story.StreamEvent;
 import java.nio.charset.StandardCharsets;
 import java.time.Duration;
-import java.util.List;
 import java.util.Map;
 import java.util.concurrent.atomic.AtomicReference;
 import java.util.concurrent.locks.LockSupport;
@@ -40,7 +39,11 @@ public final class StreamSender implements AutoCloseable {
         this.topic = topic;
     }
 
-    /** A sender to a broker; every record is acknowledged and none is duplicated by a retry. */
+    /**
+     * A sender to a broker; every record is acknowledged and none is duplicated by a retry. One request at a time, because a
+     * broker that was killed remembers only the last batch of a producer: it would refuse an earlier one that is sent again,
+     * although it has it, and the producer would try in vain until it gives up.
+     */
     public static StreamSender to(String bootstrapServers, String topic) {
         Map<String, Object> properties = Map.of(
                 ProducerConfig.BOOTSTRAP_SERVERS_CONFIG,
@@ -49,6 +52,8 @@ public final class StreamSender implements AutoCloseable {
                 true,
                 ProducerConfig.ACKS_CONFIG,
                 "all",
+                ProducerConfig.MAX_IN_FLIGHT_REQUESTS_PER_CONNECTION,
+                1,
                 ProducerConfig.LINGER_MS_CONFIG,
                 20,
                 ProducerConfig.BATCH_SIZE_CONFIG,
@@ -64,7 +69,7 @@ public final class StreamSender implements AutoCloseable {
      *
      * @throws IllegalStateException when a record cannot be delivered or the thread is interrupted
      */
-    public void send(List<StreamEvent> events, Pace pace, Progress progress) {
+    public void send(Iterable<StreamEvent> events, Pace pace, Progress progress) {
         long count = 0;
         for (StreamEvent event : events) {
             await(pace, event);

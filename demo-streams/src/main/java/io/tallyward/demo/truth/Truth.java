@@ -7,7 +7,6 @@ import io.tallyward.demo.story.Story;
 import io.tallyward.demo.story.StreamEvent;
 import java.nio.charset.StandardCharsets;
 import java.util.ArrayList;
-import java.util.Arrays;
 import java.util.HashMap;
 import java.util.LinkedHashMap;
 import java.util.List;
@@ -19,37 +18,36 @@ public final class Truth {
 
     private final int partitions;
     private final long[] latestMillis;
-    private final Map<String, ExperimentTruth> experiments = new LinkedHashMap<>();
-    private final Map<String, Long> rejects = new HashMap<>();
+    private final Map<String, ExperimentTruth> experiments;
+    private final Map<String, Long> rejects;
 
-    private Truth(int partitions) {
+    Truth(int partitions, long[] latestMillis, Map<String, Long> rejects) {
         this.partitions = partitions;
-        latestMillis = new long[partitions];
-        Arrays.fill(latestMillis, Long.MIN_VALUE);
+        this.latestMillis = latestMillis.clone();
+        this.rejects = Map.copyOf(rejects);
+        experiments = new LinkedHashMap<>();
     }
 
     /** Judges every event of a scenario whose units are spread over a number of partitions. Takes about two seconds. */
     public static Truth of(Scenario scenario, int partitions) {
-        Truth truth = new Truth(partitions);
         Map<String, Story> stories = new LinkedHashMap<>();
         Map<String, Map<String, List<StreamEvent>>> byUnit = new HashMap<>();
         for (Story story : scenario.stories()) {
             stories.put(story.experiment(), story);
             byUnit.put(story.experiment(), new HashMap<>());
         }
+        TruthKeeper keeper = new TruthKeeper(scenario.stories(), partitions);
         for (StreamEvent event : scenario.events()) {
             if (event.flaw() != Flaw.NONE) {
-                truth.rejects.merge(event.flaw().reason(), 1L, Long::sum);
+                keeper.flawed(event);
                 continue;
             }
-            String experiment = event.subject().experiment();
-            truth.noteTime(stories.get(experiment), event);
-            byUnit.get(experiment)
+            byUnit.get(event.subject().experiment())
                     .computeIfAbsent(event.subject().unit(), unit -> new ArrayList<>(4))
                     .add(event);
         }
-        stories.forEach((name, story) -> truth.experiments.put(name, truth.judge(story, byUnit.get(name))));
-        return truth;
+        stories.forEach((name, story) -> byUnit.get(name).values().forEach(events -> keeper.unit(story, events)));
+        return keeper.truth();
     }
 
     /** The partition of a unit: Kafka's own choice for a record whose key is the unit in UTF-8. */
@@ -86,40 +84,7 @@ public final class Truth {
         return least;
     }
 
-    private void noteTime(Story story, StreamEvent event) {
-        if (story.runsAt(event.atMillis())) {
-            int partition = partition(event.subject().unit(), partitions);
-            latestMillis[partition] = Math.max(latestMillis[partition], event.atMillis());
-        }
-    }
-
-    private ExperimentTruth judge(Story story, Map<String, List<StreamEvent>> byUnit) {
-        Map<Cell, Count> cells = new HashMap<>();
-        long[] fates = new long[Fate.values().length];
-        byUnit.forEach((unit, events) -> {
-            UnitVerdict verdict = UnitVerdict.of(story, events);
-            verdict.fates().forEach(fate -> fates[fate.ordinal()]++);
-            verdict.firstView().ifPresent(view -> {
-                Cell cell = cell(story, view);
-                if (cell.windowStartMillis() < sealedUntilMillis(cell.partition())) {
-                    cells.merge(cell, new Count(1, verdict.success() ? 1 : 0), Count::plus);
-                } else {
-                    fates[Fate.TRIAL.ordinal()]--;
-                }
-            });
-        });
-        Map<String, Long> outcomes = new HashMap<>();
-        for (Fate fate : Fate.values()) {
-            outcomes.put(fate.code(), fates[fate.ordinal()]);
-        }
-        return new ExperimentTruth(story, cells, outcomes);
-    }
-
-    private Cell cell(Story story, StreamEvent view) {
-        return new Cell(
-                partition(view.subject().unit(), partitions),
-                Northwater.windowStart(view.atMillis()),
-                story.epochAt(view.atMillis()),
-                story.variants().indexOf(view.subject().variant()));
+    void add(ExperimentTruth experiment) {
+        experiments.put(experiment.story().experiment(), experiment);
     }
 }

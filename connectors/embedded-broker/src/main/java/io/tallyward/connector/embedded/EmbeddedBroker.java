@@ -170,7 +170,12 @@ public final class EmbeddedBroker implements AutoCloseable {
         settings.put("num.partitions", "1");
     }
 
-    /** One node cannot replicate, one client group need not wait for others, and a stop should be quick. */
+    /**
+     * One node cannot replicate, one client group need not wait for others, and a stop should be quick. How often the broker
+     * looks for abandoned transactions is left at its own ten seconds: a broker that comes back after a crash and looks
+     * before its partitions have a leader again takes them for deleted, drops the markers that should end the transaction
+     * there, and leaves it hanging for good.
+     */
     private static void runAlone(Properties settings) {
         settings.put("default.replication.factor", "1");
         settings.put("min.insync.replicas", "1");
@@ -183,7 +188,6 @@ public final class EmbeddedBroker implements AutoCloseable {
         settings.put("share.coordinator.state.topic.min.isr", "1");
         settings.put("share.coordinator.state.topic.num.partitions", "1");
         settings.put("transaction.max.timeout.ms", "60000");
-        settings.put("transaction.abort.timed.out.transaction.cleanup.interval.ms", "1000");
         settings.put("group.initial.rebalance.delay.ms", "0");
         settings.put("group.min.session.timeout.ms", "1000");
         settings.put("log.cleaner.dedupe.buffer.size", Integer.toString(4 * 1024 * 1024));

@@ -88,9 +88,14 @@ final class ClientSettings {
         return layered(group.clientProperties(), Map.of("max.poll.records", "5000"), fixed);
     }
 
-    static Map<String, Object> output(ShardGroup group, int worker) {
+    /**
+     * For writing in transactions.
+     *
+     * @param number counts the producers of a worker, so that each has a transactional id of its own
+     */
+    static Map<String, Object> output(ShardGroup group, int worker, int number) {
         Map<String, String> fixed = new HashMap<>();
-        fixed.put("transactional.id", clientId(group, worker));
+        fixed.put("transactional.id", clientId(group, worker) + "-" + number);
         fixed.put("client.id", clientId(group, worker));
         fixed.put("acks", "all");
         fixed.put("enable.idempotence", "true");

@@ -1,5 +1,6 @@
 package io.tallyward.connector.kafka;
 
+import java.util.Optional;
 import org.apache.kafka.clients.consumer.Consumer;
 import org.apache.kafka.clients.producer.Producer;
 
@@ -14,6 +15,12 @@ interface Clients {
     /** Reads committed state, outside any group. */
     Consumer<byte[], byte[]> state();
 
-    /** Writes in transactions, always under the same transactional id. */
+    /** Writes in transactions, under a transactional id that was never used before. */
     Producer<byte[], byte[]> output();
+
+    /**
+     * Stands in for the producer that {@link #output()} made last, under its transactional id, for ending what that one may
+     * have left open and for nothing else; empty before the first.
+     */
+    Optional<Producer<byte[], byte[]>> predecessor();
 }

@@ -1,5 +1,7 @@
 package io.tallyward.connector.kafka;
 
+import java.util.Map;
+import java.util.Optional;
 import org.apache.kafka.clients.consumer.Consumer;
 import org.apache.kafka.clients.consumer.KafkaConsumer;
 import org.apache.kafka.clients.producer.KafkaProducer;
@@ -7,8 +9,17 @@ import org.apache.kafka.clients.producer.Producer;
 import org.apache.kafka.common.serialization.ByteArrayDeserializer;
 import org.apache.kafka.common.serialization.ByteArraySerializer;
 
-/** The real clients of one worker. */
-record KafkaClients(ShardGroup group, int worker) implements Clients {
+/** The real clients of one worker. Not thread-safe. */
+final class KafkaClients implements Clients {
+
+    private final ShardGroup group;
+    private final int worker;
+    private int outputs;
+
+    KafkaClients(ShardGroup group, int worker) {
+        this.group = group;
+        this.worker = worker;
+    }
 
     @Override
     public Cluster cluster() {
@@ -17,19 +28,31 @@ record KafkaClients(ShardGroup group, int worker) implements Clients {
 
     @Override
     public Consumer<byte[], byte[]> input() {
-        return new KafkaConsumer<>(
-                ClientSettings.input(group, worker), new ByteArrayDeserializer(), new ByteArrayDeserializer());
+        return consumer(ClientSettings.input(group, worker));
     }
 
     @Override
     public Consumer<byte[], byte[]> state() {
-        return new KafkaConsumer<>(
-                ClientSettings.state(group, worker), new ByteArrayDeserializer(), new ByteArrayDeserializer());
+        return consumer(ClientSettings.state(group, worker));
     }
 
     @Override
     public Producer<byte[], byte[]> output() {
+        outputs++;
+        return producer();
+    }
+
+    @Override
+    public Optional<Producer<byte[], byte[]>> predecessor() {
+        return outputs == 0 ? Optional.empty() : Optional.of(producer());
+    }
+
+    private Producer<byte[], byte[]> producer() {
         return new KafkaProducer<>(
-                ClientSettings.output(group, worker), new ByteArraySerializer(), new ByteArraySerializer());
+                ClientSettings.output(group, worker, outputs), new ByteArraySerializer(), new ByteArraySerializer());
+    }
+
+    private static Consumer<byte[], byte[]> consumer(Map<String, Object> settings) {
+        return new KafkaConsumer<>(settings, new ByteArrayDeserializer(), new ByteArrayDeserializer());
     }
 }

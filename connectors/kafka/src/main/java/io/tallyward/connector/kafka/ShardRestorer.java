@@ -10,6 +10,7 @@ import org.apache.kafka.clients.consumer.Consumer;
 import org.apache.kafka.clients.consumer.OffsetAndMetadata;
 import org.apache.kafka.common.KafkaException;
 import org.apache.kafka.common.TopicPartition;
+import org.apache.kafka.common.errors.TimeoutException;
 import org.slf4j.Logger;
 import org.slf4j.LoggerFactory;
 
@@ -53,7 +54,7 @@ final class ShardRestorer {
 
     Restored restore(int partition, Set<TopicPartition> inputs, BooleanSupplier stopping) {
         Map<TopicPartition, Long> committed = new HashMap<>();
-        consumer.committed(inputs, OFFSETS_PATIENCE).forEach((input, offset) -> keep(committed, input, offset));
+        committedOffsets(inputs).forEach((input, offset) -> keep(committed, input, offset));
         GuardedShard shard = new GuardedShard(group, partition, partitions);
         boolean done = false;
         try {
@@ -71,6 +72,20 @@ final class ShardRestorer {
                 shard.released();
                 pause();
             }
+        }
+    }
+
+    /** A broker that answers everything else and not this has a transaction with these offsets in it that does not end. */
+    private Map<TopicPartition, OffsetAndMetadata> committedOffsets(Set<TopicPartition> inputs) {
+        try {
+            return consumer.committed(inputs, OFFSETS_PATIENCE);
+        } catch (TimeoutException undecided) {
+            cluster.ping();
+            throw new BrokerException(
+                    "the committed offsets of group " + group.id() + " for " + inputs + " are undecided on "
+                            + group.broker() + ", because a transaction does not end: wait a minute, and if this stays,"
+                            + " have Kafka's kafka-transactions.sh find-hanging look for it and abort it",
+                    undecided);
         }
     }
 

@@ -13,8 +13,10 @@ import org.apache.kafka.common.errors.RecordTooLargeException;
 import org.apache.kafka.common.errors.TimeoutException;
 
 /**
- * One worker's transactions: outputs and offsets together or not at all. After a failure the producer is thrown away; the
- * next one carries the same transactional id, so that making it ready also ends whatever its predecessor left open.
+ * One worker's transactions: outputs and offsets together or not at all. After a failure the producer is thrown away.
+ * Before the next is made, whatever it left open is ended under its transactional id; that id is then never used again,
+ * since a broker that has failed to end a transaction in some partition would commit it there with the next one of the
+ * same id.
  */
 final class Transactions implements AutoCloseable {
 
@@ -32,14 +34,23 @@ final class Transactions implements AutoCloseable {
         if (producer != null) {
             return;
         }
+        clients.predecessor().ifPresent(last -> {
+            begin(last);
+            last.close(CLOSE_PATIENCE);
+        });
         Producer<byte[], byte[]> fresh = clients.output();
+        begin(fresh);
+        producer = fresh;
+    }
+
+    /** Takes a transactional id over, which ends an open transaction under it. */
+    private static void begin(Producer<byte[], byte[]> fresh) {
         try {
             fresh.initTransactions();
         } catch (RuntimeException failure) {
             fresh.close(Duration.ZERO);
             throw failure;
         }
-        producer = fresh;
     }
 
     /**

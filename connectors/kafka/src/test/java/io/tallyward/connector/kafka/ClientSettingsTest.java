@@ -24,8 +24,8 @@ class ClientSettingsTest {
         assertEquals("read_committed", input.get("isolation.level"));
         assertEquals("false", input.get("enable.auto.commit"));
         assertFalse(input.containsKey("group.instance.id"));
-        Map<String, Object> output = ClientSettings.output(group, 1);
-        assertEquals("counters-blue-1", output.get("transactional.id"));
+        Map<String, Object> output = ClientSettings.output(group, 1, 7);
+        assertEquals("counters-blue-1-7", output.get("transactional.id"));
         assertEquals("all", output.get("acks"));
     }
 

@@ -6,6 +6,7 @@ import java.util.Collection;
 import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.Set;
 import org.apache.kafka.clients.consumer.Consumer;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
@@ -26,6 +27,11 @@ final class ScriptedClients implements Clients, OutboxClients {
     final List<MockProducer<byte[], byte[]>> producers = new ArrayList<>();
     final Input input = new Input();
     long stateEnd;
+
+    /** What the next questions for committed offsets and for a sign of life end in; null for an answer. */
+    RuntimeException committedFailure;
+
+    RuntimeException pingFailure;
 
     @Override
     public Cluster cluster() {
@@ -67,6 +73,19 @@ final class ScriptedClients implements Clients, OutboxClients {
         return producer;
     }
 
+    @Override
+    public Optional<Producer<byte[], byte[]>> predecessor() {
+        return producers.isEmpty()
+                ? Optional.empty()
+                : Optional.of(new MockProducer<>(true, null, new ByteArraySerializer(), new ByteArraySerializer()) {
+                    @Override
+                    public void initTransactions() {
+                        journal.add("end what was left open");
+                        super.initTransactions();
+                    }
+                });
+    }
+
     MockProducer<byte[], byte[]> producer() {
         return producers.get(producers.size() - 1);
     }
@@ -92,6 +111,9 @@ final class ScriptedClients implements Clients, OutboxClients {
         public synchronized Map<TopicPartition, OffsetAndMetadata> committed(
                 Set<TopicPartition> partitions, Duration timeout) {
             journal.add("read committed offsets");
+            if (committedFailure != null) {
+                throw committedFailure;
+            }
             Map<TopicPartition, OffsetAndMetadata> answer = new HashMap<>();
             partitions.forEach(partition -> answer.put(partition, committed.get(partition)));
             return answer;
@@ -162,6 +184,9 @@ final class ScriptedClients implements Clients, OutboxClients {
         @Override
         public void ping() {
             journal.add("ping");
+            if (pingFailure != null) {
+                throw pingFailure;
+            }
         }
 
         @Override

@@ -9,6 +9,7 @@ import java.time.Duration;
 import java.time.Instant;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.concurrent.atomic.AtomicInteger;
 import java.util.function.Consumer;
 import org.apache.kafka.clients.producer.KafkaProducer;
@@ -111,7 +112,7 @@ class ShardRunnerIT {
         try (ShardRunner runner = bench.run(builder -> builder.instance("quay"))) {
             bench.produce(100);
             bench.awaitTold(100);
-            transactional(bench.group + "-quay-0").close();
+            transactional(bench.group + "-quay-0-1").close();
             bench.produce(100);
             bench.assertExact();
             WorkerStatus worker = runner.status().workers().get(0);
@@ -212,6 +213,11 @@ class ShardRunnerIT {
         public Producer<byte[], byte[]> output() {
             KafkaProducer<byte[], byte[]> producer = (KafkaProducer<byte[], byte[]>) real.output();
             return InterceptedCommits.of(producer, commit);
+        }
+
+        @Override
+        public Optional<Producer<byte[], byte[]>> predecessor() {
+            return real.predecessor();
         }
     }
 }

@@ -50,6 +50,29 @@ class ShardSessionTest {
     }
 
     @Test
+    void saysThatATransactionDoesNotEndWhenOffsetsStayUndecided() {
+        clients.committedFailure = new TimeoutException("the last committed offset could not be determined");
+        assign();
+        BrokerException undecided = assertThrows(BrokerException.class, session::step);
+        assertTrue(undecided.getMessage().contains("a transaction does not end"), undecided.getMessage());
+        assertTrue(undecided.getMessage().contains("crossings-0"), undecided.getMessage());
+        assertFalse(session.mustBeAbandoned());
+        clients.committedFailure = null;
+        session.forget();
+        session.step();
+        assertFalse(session.restoring());
+    }
+
+    @Test
+    void blamesNoTransactionWhenTheBrokerDoesNotAnswerAtAll() {
+        clients.committedFailure = new TimeoutException("the last committed offset could not be determined");
+        clients.pingFailure = new TimeoutException("nobody there");
+        assign();
+        TimeoutException silent = assertThrows(TimeoutException.class, session::step);
+        assertEquals("nobody there", silent.getMessage());
+    }
+
+    @Test
     void readsNothingBeforeTheShardIsRestored() {
         assign();
         assertEquals(List.of("seek crossings-0 to 0", "pause 1"), journal.subList(0, 2));
@@ -112,7 +135,11 @@ class ShardSessionTest {
 
         clients.state("states", 0, 0, "quay-banner", "40");
         clients.committed.put(VIEWS, new OffsetAndMetadata(40));
+        journal.clear();
         session.step();
+        assertEquals(
+                List.of("end what was left open", "init transactions", "read committed offsets"),
+                journal.subList(0, 3));
         clients.input("crossings", 0, 40, "quay-banner", "view");
         stepAfterInterval();
         assertEquals(2, clients.producers.size());
