@@ -172,9 +172,9 @@ public final class EmbeddedBroker implements AutoCloseable {
 
     /**
      * One node cannot replicate, one client group need not wait for others, and a stop should be quick. How often the broker
-     * looks for abandoned transactions is left at its own ten seconds: a broker that comes back after a crash and looks
-     * before its partitions have a leader again takes them for deleted, drops the markers that should end the transaction
-     * there, and leaves it hanging for good.
+     * looks for abandoned transactions is left at its own ten seconds: a lone node that comes back has been seen to drop the
+     * markers that should end a transaction in some partitions, which then hangs for good; the less often it looks right
+     * after its start, the rarer that is. It is not excluded.
      */
     private static void runAlone(Properties settings) {
         settings.put("default.replication.factor", "1");
