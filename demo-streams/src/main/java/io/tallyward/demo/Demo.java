@@ -1,5 +1,6 @@
 package io.tallyward.demo;
 
+import io.tallyward.demo.bench.BenchCommand;
 import java.io.PrintWriter;
 import picocli.CommandLine;
 import picocli.CommandLine.ParameterException;
@@ -17,6 +18,7 @@ public final class Demo {
 
     static CommandLine commandLine() {
         CommandLine command = new CommandLine(new DemoCommand());
+        command.addSubcommand(new BenchCommand());
         command.setParameterExceptionHandler(Demo::refuse);
         command.setExecutionExceptionHandler((failure, line, parsed) -> {
             line.getErr().println("tallyward-demo: " + failure.getMessage());
@@ -32,7 +34,8 @@ public final class Demo {
     private static int refuse(ParameterException e, String[] arguments) {
         CommandLine command = e.getCommandLine();
         PrintWriter err = command.getErr();
-        err.println(e.getMessage().replaceAll("[.\\s]+$", "") + ". See " + command.getCommandName() + " --help.");
+        err.println(e.getMessage().replaceAll("[.\\s]+$", "") + ". See "
+                + command.getCommandSpec().qualifiedName() + " --help.");
         err.flush();
         return DemoCommand.WRONG_ARGUMENTS;
     }

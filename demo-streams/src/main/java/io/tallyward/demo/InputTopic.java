@@ -10,7 +10,7 @@ import org.apache.kafka.clients.admin.AdminClientConfig;
 import org.apache.kafka.clients.admin.NewTopic;
 
 /** The topic of the page's events. */
-final class InputTopic {
+public final class InputTopic {
 
     private static final long PATIENCE_SECONDS = 30;
 
@@ -20,7 +20,7 @@ final class InputTopic {
      * Creates a topic that keeps records whatever their timestamps: the stream's time is neither the broker's past nor its
      * future, but its own.
      */
-    static void create(String bootstrapServers, String topic, int partitions) throws InterruptedException {
+    public static void create(String bootstrapServers, String topic, int partitions) throws InterruptedException {
         Map<String, String> settings = Map.of(
                 "retention.ms",
                 "-1",

@@ -9,9 +9,10 @@ import java.util.List;
  * @param headings one per column
  * @param rows cells, as many per row as there are headings
  */
-record TextTable(List<String> headings, List<List<String>> rows) {
+public record TextTable(List<String> headings, List<List<String>> rows) {
 
-    List<String> lines() {
+    /** The table, line by line. */
+    public List<String> lines() {
         int[] widths = new int[headings.size()];
         List<List<String>> all = new ArrayList<>();
         all.add(headings);
