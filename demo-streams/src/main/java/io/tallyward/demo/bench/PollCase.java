@@ -1,9 +1,12 @@
 package io.tallyward.demo.bench;
 
-import io.tallyward.connector.format.Decoded;
 import io.tallyward.connector.format.EventMapping;
-import io.tallyward.connector.format.JsonEventReader;
+import io.tallyward.connector.format.EventSlotReader;
 import io.tallyward.demo.bench.CaseMain.Task;
+import io.tallyward.engine.event.EventSlot;
+import io.tallyward.engine.plan.PlanNames;
+import io.tallyward.service.config.document.BadInputException;
+import io.tallyward.service.plan.PlanDirectory;
 import java.time.Duration;
 import java.util.List;
 import java.util.Map;
@@ -22,8 +25,11 @@ final class PollCase {
 
     private PollCase() {}
 
-    static Measurement measure(Task task, boolean parse) {
-        JsonEventReader reader = new JsonEventReader(EventMapping.DEFAULT, MAX_EVENT_BYTES);
+    static Measurement measure(Task task, boolean parse) throws BadInputException {
+        PlanNames names = new PlanNames(
+                PlanDirectory.read(task.directory().resolve("plans")).orElseThrow());
+        EventSlotReader reader = new EventSlotReader(EventMapping.DEFAULT, MAX_EVENT_BYTES, names);
+        EventSlot event = new EventSlot();
         Stopwatch stopwatch = new Stopwatch(task.warmUp());
         long seen = 0;
         try (KafkaConsumer<byte[], byte[]> consumer = new KafkaConsumer<>(
@@ -36,7 +42,7 @@ final class PollCase {
             while (seen < task.events()) {
                 ConsumerRecords<byte[], byte[]> records = consumer.poll(POLL);
                 for (ConsumerRecord<byte[], byte[]> record : records) {
-                    if (parse && !(reader.read(record.value()) instanceof Decoded.Accepted)) {
+                    if (parse && !reader.read(record.value(), event)) {
                         throw new IllegalStateException("record " + record.offset() + ": not read as an event");
                     }
                     seen++;

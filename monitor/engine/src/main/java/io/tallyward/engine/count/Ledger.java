@@ -1,7 +1,7 @@
 package io.tallyward.engine.count;
 
-import io.tallyward.engine.event.Event;
 import io.tallyward.engine.event.EventKind;
+import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.plan.Plan;
 import java.io.DataInput;
 import java.io.IOException;
@@ -54,18 +54,18 @@ final class Ledger {
      * @param late whether the event's own window is sealed, in the shard or by the reckoning of the event's source
      * @return its outcome when that is final at once, or null while it can still change
      */
-    Outcome accept(long high, long low, Event event, int variant, long arrivalMillis, boolean late) {
+    Outcome accept(long high, long low, EventSlot event, long arrivalMillis, boolean late) {
+        int variant = event.variant();
         boolean view = event.kind() == EventKind.VIEW;
         if (sealed.find(high, low)) {
             return view ? exposeAgain(variant, event.atMillis()) : clickAfterwards(variant, event.atMillis());
         }
-        Outcome outcome =
-                view ? expose(high, low, event, variant, late) : click(high, low, event, variant, arrivalMillis, late);
+        Outcome outcome = view ? expose(high, low, event, late) : click(high, low, event, arrivalMillis, late);
         openEvents += outcome == null ? 1 : 0;
         return outcome;
     }
 
-    private Outcome expose(long high, long low, Event event, int variant, boolean late) {
+    private Outcome expose(long high, long low, EventSlot event, boolean late) {
         boolean known = open.find(high, low);
         if (!known && late) {
             return Outcome.LATE;
@@ -77,9 +77,9 @@ final class Ledger {
             if (!had || event.atMillis() < before) {
                 return Outcome.LATE;
             }
-            unit.exposeAgain(variant);
+            unit.exposeAgain(event.variant());
         } else {
-            unit.expose(variant, event.atMillis(), event.tie(), attributionMillis);
+            unit.expose(event.variant(), event.atMillis(), event.tie(), attributionMillis);
         }
         if (!had || windowOf(before) != windowOf(unit.first())) {
             dueAt(windowOf(unit.first()), high);
@@ -88,7 +88,7 @@ final class Ledger {
         return null;
     }
 
-    private Outcome click(long high, long low, Event event, int variant, long arrivalMillis, boolean late) {
+    private Outcome click(long high, long low, EventSlot event, long arrivalMillis, boolean late) {
         boolean known = open.find(high, low);
         if (!known && late) {
             return Outcome.ORPHAN;
@@ -99,7 +99,7 @@ final class Ledger {
             return Outcome.ORPHAN;
         }
         int clicks = unit.clicks();
-        unit.click(variant, event.atMillis(), arrivalMillis, attributionMillis);
+        unit.click(event.variant(), event.atMillis(), arrivalMillis, attributionMillis);
         if (!preceded && unit.clicks() > clicks) {
             dueAt(windowOf(event.atMillis()), high);
         }

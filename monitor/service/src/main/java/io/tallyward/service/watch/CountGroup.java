@@ -1,5 +1,6 @@
 package io.tallyward.service.watch;
 
+import io.tallyward.connector.format.EventSlotReader;
 import io.tallyward.connector.format.JsonEventReader;
 import io.tallyward.connector.kafka.ShardGroup;
 import io.tallyward.connector.kafka.StartPosition;
@@ -43,15 +44,13 @@ public final class CountGroup {
                 .internalTopics(names::forCounting)
                 .start(startPosition(config.input().start()))
                 .workers(config.workers())
-                .shards((partition, partitions) -> new CountHost(
-                        new CountShard(partition, partitions, plans, settings, topics.size()),
-                        partition,
-                        partitions,
-                        topics,
-                        names,
-                        reader,
-                        trafficLog,
-                        board))
+                .shards((partition, partitions) -> {
+                    CountShard shard = new CountShard(partition, partitions, plans, settings, topics.size());
+                    EventSlotReader slotReader = new EventSlotReader(
+                            config.input().mapping(), config.input().maxEventBytes(), shard.names());
+                    return new CountHost(
+                            shard, partition, partitions, topics, names, reader, slotReader, trafficLog, board);
+                })
                 .build();
     }
 
