@@ -25,6 +25,7 @@ public final class EventSlotReader {
     private static final int TEXT_OR_NUMBER = bit(EventField.UNIT) | bit(EventField.ID) | bit(EventField.VIEW);
     private static final int TIME = bit(EventField.AT) | bit(EventField.RECEIVED);
     private static final int ASCII_END = 0x80;
+    private static final OutputStream NOWHERE = OutputStream.nullOutputStream();
 
     private final PointerTree pointers;
     private final int maxEventBytes;
@@ -115,7 +116,7 @@ public final class EventSlotReader {
     }
 
     private boolean ended() throws IOException {
-        return parser.releaseBuffered(OutputStream.nullOutputStream()) == 0;
+        return parser.releaseBuffered(NOWHERE) == 0;
     }
 
     private void forget() {
