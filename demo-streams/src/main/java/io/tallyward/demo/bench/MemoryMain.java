@@ -11,6 +11,7 @@ import io.tallyward.service.config.document.BadInputException;
 import io.tallyward.service.plan.PlanDirectory;
 import java.io.IOException;
 import java.lang.management.ManagementFactory;
+import java.lang.management.ThreadMXBean;
 import java.nio.file.Path;
 import java.time.Duration;
 import java.util.ArrayList;
@@ -23,6 +24,8 @@ import java.util.Map;
  * in eight with a click. Prints its figures.
  */
 public final class MemoryMain {
+
+    private static final ThreadMXBean THREADS = ManagementFactory.getThreadMXBean();
 
     private static final int UNITS = 5_000_000;
     private static final int CLICK_EVERY = 8;
@@ -125,15 +128,15 @@ public final class MemoryMain {
         double best = 0;
         for (int attempt = 0; attempt < 3; attempt++) {
             CountShard shard = shard();
-            long began = System.nanoTime();
+            long began = THREADS.getCurrentThreadCpuTime();
             state.forEach(change -> shard.restore(change.key(), change.value()));
-            double seconds = (System.nanoTime() - began) / 1e9;
+            double seconds = (THREADS.getCurrentThreadCpuTime() - began) / 1e9;
             best = Math.max(best, MILLIONS / seconds);
             if (shard.view().experiments().get(plan.experiment()).units() != UNITS) {
                 throw new IllegalStateException(what + ": not all were restored");
             }
         }
-        System.out.println(
-                String.format(Locale.ROOT, "%s: %.1f million restored per second (goal: at least 1)", what, best));
+        System.out.println(String.format(
+                Locale.ROOT, "%s: %.1f million restored per second of CPU time (goal: at least 1)", what, best));
     }
 }

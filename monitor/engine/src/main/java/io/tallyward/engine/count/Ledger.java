@@ -21,7 +21,13 @@ final class Ledger {
     private final SealedUnits sealed;
     private final TreeMap<Long, PrefixList> due = new TreeMap<>();
     private final HashList changed = new HashList();
+    private final OpenUnit restoring;
     private long openEvents;
+
+    /** Most units fall due in the window of the unit before. */
+    private long lastDue = Long.MIN_VALUE;
+
+    private PrefixList lastDuePrefixes;
 
     Ledger(Plan plan) {
         attributionMillis = plan.count().attribution().toMillis();
@@ -30,6 +36,7 @@ final class Ledger {
         long runFrom = plan.run().from().toEpochMilli();
         open = new OpenUnits(runFrom, plan.variants().size());
         sealed = new SealedUnits(runFrom);
+        restoring = new OpenUnit(plan.variants().size());
     }
 
     /** Takes a unit whose trial has become final. */
@@ -134,7 +141,11 @@ final class Ledger {
     }
 
     private void dueAt(long window, long high) {
-        due.computeIfAbsent(window, start -> new PrefixList()).add(high);
+        if (window != lastDue) {
+            lastDuePrefixes = due.computeIfAbsent(window, start -> new PrefixList());
+            lastDue = window;
+        }
+        lastDuePrefixes.add(high);
     }
 
     /** The window with which the last of what is open about a unit is sealed. */
@@ -159,6 +170,7 @@ final class Ledger {
      */
     void seal(long windowStart, OutcomeCounts.Builder outcomes, Settled settled) {
         PrefixList prefixes = due.remove(windowStart);
+        lastDue = Long.MIN_VALUE;
         for (int i = 0; prefixes != null && i < prefixes.size(); i++) {
             int prefix = prefixes.get(i);
             boolean more = open.findFirst(prefix);
@@ -207,26 +219,23 @@ final class Ledger {
         changed.clear();
     }
 
-    /** A unit to restore into. */
-    OpenUnit fresh() {
-        return open.fresh();
+    /** A unit to restore into, always the same. */
+    OpenUnit restoring() {
+        return restoring;
     }
 
     /** Restores an open unit as it was written; a later version of the same unit replaces it. */
     void restoreOpen(long high, long low, OpenUnit unit) {
-        OpenUnit restored = unit.copy();
-        forgetOpen(high, low);
-        openEvents += restored.events();
-        open.find(high, low);
-        open.store(high, low, restored, false);
-        open.find(high, low);
+        boolean known = open.find(high, low);
+        openEvents += unit.events() - (known ? open.load().events() : 0);
+        open.store(high, low, unit, known);
         open.unmark();
-        if (restored.hasTrial()) {
-            dueAt(windowOf(restored.first()), high);
+        if (unit.hasTrial()) {
+            dueAt(windowOf(unit.first()), high);
         }
-        for (int click = 0; click < restored.clicks(); click++) {
-            long at = restored.clickTime(click);
-            if (!restored.hasTrial() || at < restored.first()) {
+        for (int click = 0; click < unit.clicks(); click++) {
+            long at = unit.clickTime(click);
+            if (!unit.hasTrial() || at < unit.first()) {
                 dueAt(windowOf(at), high);
             }
         }
@@ -250,6 +259,7 @@ final class Ledger {
             }
         });
         due.headMap(sealedUntilMillis).clear();
+        lastDue = Long.MIN_VALUE;
     }
 
     private void forgetDueBefore(int prefix, long sealedUntilMillis) {
