@@ -64,16 +64,18 @@ final class Ledger {
     Outcome accept(long high, long low, EventSlot event, long arrivalMillis, boolean late) {
         int variant = event.variant();
         boolean view = event.kind() == EventKind.VIEW;
-        if (sealed.find(high, low)) {
+        // A unit is open or sealed, never both; most events are about open ones.
+        boolean known = open.find(high, low);
+        if (!known && sealed.find(high, low)) {
             return view ? exposeAgain(variant, event.atMillis()) : clickAfterwards(variant, event.atMillis());
         }
-        Outcome outcome = view ? expose(high, low, event, late) : click(high, low, event, arrivalMillis, late);
+        Outcome outcome =
+                view ? expose(high, low, event, known, late) : click(high, low, event, arrivalMillis, known, late);
         openEvents += outcome == null ? 1 : 0;
         return outcome;
     }
 
-    private Outcome expose(long high, long low, EventSlot event, boolean late) {
-        boolean known = open.find(high, low);
+    private Outcome expose(long high, long low, EventSlot event, boolean known, boolean late) {
         if (!known && late) {
             return Outcome.LATE;
         }
@@ -95,8 +97,7 @@ final class Ledger {
         return null;
     }
 
-    private Outcome click(long high, long low, EventSlot event, long arrivalMillis, boolean late) {
-        boolean known = open.find(high, low);
+    private Outcome click(long high, long low, EventSlot event, long arrivalMillis, boolean known, boolean late) {
         if (!known && late) {
             return Outcome.ORPHAN;
         }
