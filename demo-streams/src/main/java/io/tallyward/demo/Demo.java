@@ -1,5 +1,6 @@
 package io.tallyward.demo;
 
+import io.tallyward.demo.bench.BenchCommand;
 import java.io.PrintWriter;
 import picocli.CommandLine;
 import picocli.CommandLine.ParameterException;
@@ -18,6 +19,7 @@ public final class Demo {
     static CommandLine commandLine() {
         CommandLine command = new CommandLine(new DemoCommand());
         command.addSubcommand(new ChaosCommand());
+        command.addSubcommand(new BenchCommand());
         command.setParameterExceptionHandler(Demo::refuse);
         command.setExecutionExceptionHandler((failure, line, parsed) -> {
             line.getErr().println("tallyward-demo: " + failure.getMessage());

@@ -9,7 +9,7 @@ import java.util.List;
 import java.util.stream.Stream;
 
 /** Where the demo puts its files. A temporary directory disappears with the demo, a named one stays. Thread-safe. */
-final class WorkDirectory implements AutoCloseable {
+public final class WorkDirectory implements AutoCloseable {
 
     private final Path path;
     private final boolean temporary;
@@ -24,7 +24,7 @@ final class WorkDirectory implements AutoCloseable {
      *
      * @param keepOrNull a directory to keep, which must be empty or absent; null for a temporary one
      */
-    static WorkDirectory open(Path keepOrNull) throws IOException {
+    public static WorkDirectory open(Path keepOrNull) throws IOException {
         if (keepOrNull == null) {
             return new WorkDirectory(Files.createTempDirectory("tallyward-demo-"), true);
         }
@@ -38,7 +38,7 @@ final class WorkDirectory implements AutoCloseable {
         return new WorkDirectory(keepOrNull.toAbsolutePath(), false);
     }
 
-    Path path() {
+    public Path path() {
         return path;
     }
 

@@ -26,7 +26,6 @@ final class EventDraft {
     static final int MAX_SEGMENT_TEXT = 64;
 
     private static final EventField[] FIELDS = EventField.values();
-    private static final int LONGEST_EPOCH_MILLIS = 15;
 
     private final EventMapping mapping;
     private final String[] texts = new String[FIELDS.length];
@@ -183,16 +182,8 @@ final class EventDraft {
     }
 
     private long millis(EventField field) {
-        String text = text(field);
-        if (tokens[field.ordinal()] == JsonToken.VALUE_STRING) {
-            return inRange(Rfc3339.millis(text));
-        }
-        boolean whole = tokens[field.ordinal()] == JsonToken.VALUE_NUMBER_INT && text.length() <= LONGEST_EPOCH_MILLIS;
-        return whole ? inRange(Long.parseLong(text)) : Rfc3339.UNREADABLE;
-    }
-
-    private static long inRange(long millis) {
-        return millis >= Rfc3339.EARLIEST_MILLIS && millis <= Rfc3339.LATEST_MILLIS ? millis : Rfc3339.UNREADABLE;
+        char[] text = text(field).toCharArray();
+        return EventTime.millis(tokens[field.ordinal()], text, 0, text.length);
     }
 
     private void refuse(EventField field, RejectReason reason, String what) {

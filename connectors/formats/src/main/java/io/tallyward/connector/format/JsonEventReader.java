@@ -42,8 +42,13 @@ public final class JsonEventReader {
         this.mapping = mapping;
         this.pointers = PointerTree.of(mapping.pointers());
         this.maxEventBytes = maxEventBytes;
+        this.factory = factory(maxEventBytes);
+    }
+
+    /** Makes parsers for documents of a limited size. */
+    static JsonFactory factory(int maxEventBytes) {
         // Member names come from outside: interning them would fill a table of the whole process.
-        this.factory = new JsonFactoryBuilder()
+        return new JsonFactoryBuilder()
                 .streamReadConstraints(StreamReadConstraints.builder()
                         .maxNestingDepth(MAX_NESTING)
                         .maxNameLength(maxEventBytes)

@@ -23,23 +23,29 @@ final class Rfc3339 {
 
     /** Milliseconds since the epoch, or {@link #UNREADABLE}. */
     static long millis(String text) {
-        if (text.length() < FRACTION_AT + 1 || !punctuated(text)) {
+        return millis(text.toCharArray(), 0, text.length());
+    }
+
+    /** The same for some characters. */
+    static long millis(char[] text, int from, int length) {
+        if (length < FRACTION_AT + 1 || !punctuated(text, from)) {
             return UNREADABLE;
         }
-        int year = digits(text, 0, 4);
-        int month = digits(text, 5, 2);
-        int day = digits(text, 8, 2);
-        int hour = digits(text, 11, 2);
-        int minute = digits(text, 14, 2);
-        int second = digits(text, 17, 2);
+        int year = digits(text, from, 4);
+        int month = digits(text, from + 5, 2);
+        int day = digits(text, from + 8, 2);
+        int hour = digits(text, from + 11, 2);
+        int minute = digits(text, from + 14, 2);
+        int second = digits(text, from + 17, 2);
         if (year < 0 || month < 1 || month > 12 || day < 1 || day > daysIn(year, month)) {
             return UNREADABLE;
         }
         if (hour < 0 || hour > 23 || minute < 0 || minute > 59 || second < 0 || second > 60) {
             return UNREADABLE;
         }
-        int zoneAt = zoneAt(text);
-        int offset = zoneAt < 0 ? Integer.MIN_VALUE : offsetSeconds(text, zoneAt);
+        int end = from + length;
+        int zoneAt = zoneAt(text, from + FRACTION_AT, end);
+        int offset = zoneAt < 0 ? Integer.MIN_VALUE : offsetSeconds(text, zoneAt, end);
         if (offset == Integer.MIN_VALUE) {
             return UNREADABLE;
         }
@@ -47,44 +53,44 @@ final class Rfc3339 {
         if (second == 60 && Math.floorMod(seconds, SECONDS_PER_DAY) != 0) {
             return UNREADABLE;
         }
-        return seconds * 1000 + fractionMillis(text, zoneAt);
+        return seconds * 1000 + fractionMillis(text, from + FRACTION_AT, zoneAt);
     }
 
-    private static boolean punctuated(String text) {
-        char separator = text.charAt(10);
-        return text.charAt(4) == '-'
-                && text.charAt(7) == '-'
+    private static boolean punctuated(char[] text, int from) {
+        char separator = text[from + 10];
+        return text[from + 4] == '-'
+                && text[from + 7] == '-'
                 && (separator == 'T' || separator == 't')
-                && text.charAt(13) == ':'
-                && text.charAt(16) == ':';
+                && text[from + 13] == ':'
+                && text[from + 16] == ':';
     }
 
-    private static int zoneAt(String text) {
-        if (text.charAt(FRACTION_AT) != '.') {
-            return FRACTION_AT;
+    private static int zoneAt(char[] text, int fractionAt, int end) {
+        if (text[fractionAt] != '.') {
+            return fractionAt;
         }
-        int end = FRACTION_AT + 1;
-        while (end < text.length() && isDigit(text.charAt(end))) {
-            end++;
+        int at = fractionAt + 1;
+        while (at < end && isDigit(text[at])) {
+            at++;
         }
-        return end == FRACTION_AT + 1 || end == text.length() ? -1 : end;
+        return at == fractionAt + 1 || at == end ? -1 : at;
     }
 
-    private static int fractionMillis(String text, int zoneAt) {
+    private static int fractionMillis(char[] text, int fractionAt, int zoneAt) {
         int millis = 0;
         int unit = 100;
-        for (int i = FRACTION_AT + 1; i < zoneAt && unit > 0; i++, unit /= 10) {
-            millis += (text.charAt(i) - '0') * unit;
+        for (int i = fractionAt + 1; i < zoneAt && unit > 0; i++, unit /= 10) {
+            millis += (text[i] - '0') * unit;
         }
         return millis;
     }
 
-    private static int offsetSeconds(String text, int zoneAt) {
-        char sign = text.charAt(zoneAt);
+    private static int offsetSeconds(char[] text, int zoneAt, int end) {
+        char sign = text[zoneAt];
         if (sign == 'Z' || sign == 'z') {
-            return text.length() == zoneAt + 1 ? 0 : Integer.MIN_VALUE;
+            return end == zoneAt + 1 ? 0 : Integer.MIN_VALUE;
         }
-        if ((sign != '+' && sign != '-') || text.length() != zoneAt + 6 || text.charAt(zoneAt + 3) != ':') {
+        if ((sign != '+' && sign != '-') || end != zoneAt + 6 || text[zoneAt + 3] != ':') {
             return Integer.MIN_VALUE;
         }
         int hours = digits(text, zoneAt + 1, 2);
@@ -96,10 +102,10 @@ final class Rfc3339 {
         return sign == '-' ? -seconds : seconds;
     }
 
-    private static int digits(String text, int from, int count) {
+    private static int digits(char[] text, int from, int count) {
         int value = 0;
         for (int i = from; i < from + count; i++) {
-            char c = text.charAt(i);
+            char c = text[i];
             if (!isDigit(c)) {
                 return -1;
             }

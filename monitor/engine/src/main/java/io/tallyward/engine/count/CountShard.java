@@ -1,8 +1,10 @@
 package io.tallyward.engine.count;
 
 import io.tallyward.engine.event.Event;
+import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.event.RejectReason;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanNames;
 import io.tallyward.engine.shard.StateChange;
 import java.util.ArrayList;
 import java.util.Collection;
@@ -28,7 +30,10 @@ public final class CountShard {
     private final long maxSkewMillis;
     private final UnitHasher hasher;
     private final Watermarks watermarks;
+    private final PlanNames names;
     private final Map<String, ExperimentCounter> counters = new LinkedHashMap<>();
+    private final ExperimentCounter[] countersByPosition;
+    private final EventSlot slot = new EventSlot();
     private final Map<RejectReason, Long> rejected = new EnumMap<>(RejectReason.class);
     private final CountState state;
     private final SealedTallies tallies;
@@ -60,6 +65,8 @@ public final class CountShard {
         for (Plan plan : plans) {
             counters.put(plan.experiment(), new ExperimentCounter(plan));
         }
+        names = new PlanNames(plans);
+        countersByPosition = counters.values().toArray(ExperimentCounter[]::new);
         for (RejectReason reason : RejectReason.values()) {
             rejected.put(reason, 0L);
         }
@@ -77,6 +84,11 @@ public final class CountShard {
         nextSealAt = Long.MIN_VALUE;
     }
 
+    /** The experiments and variants that are counted here, by position. */
+    public PlanNames names() {
+        return names;
+    }
+
     /**
      * Takes one event.
      *
@@ -85,19 +97,32 @@ public final class CountShard {
      * @return why it was rejected; empty when it was admitted
      */
     public Optional<RejectReason> apply(int source, long recordTimestampMillis, Event event) {
-        ExperimentCounter counter = counters.get(event.experiment());
-        if (counter == null) {
+        int experiment = names.experiment(event.experiment());
+        if (experiment < 0) {
             return Optional.of(reject(RejectReason.UNKNOWN_EXPERIMENT));
         }
-        int variant = counter.plan().variantIndex(event.variant());
+        int variant = names.variant(experiment, event.variant());
         if (variant < 0) {
             return Optional.of(reject(RejectReason.UNKNOWN_VARIANT));
         }
+        slot.take(event, experiment, variant);
+        return apply(source, recordTimestampMillis, slot);
+    }
+
+    /**
+     * Takes one event of a known experiment and variant; nothing of the slot is kept.
+     *
+     * @param source index of the input topic it came from
+     * @param recordTimestampMillis when it reached the log, by the record's timestamp
+     * @return why it was rejected; empty when it was admitted
+     */
+    public Optional<RejectReason> apply(int source, long recordTimestampMillis, EventSlot event) {
         if (event.atMillis() > recordTimestampMillis + maxSkewMillis) {
             return Optional.of(reject(RejectReason.BAD_TIME));
         }
-        hasher.hash(event.unit());
-        boolean inside = counter.accept(hasher.high(), hasher.low(), event, variant, watermarks.of(source));
+        hasher.hash(event.unit(), 0, event.unitLength());
+        boolean inside = countersByPosition[event.experiment()].accept(
+                hasher.high(), hasher.low(), event, watermarks.of(source));
         if (inside && watermarks.advance(source, event.atMillis())) {
             shardChanged = true;
             sealPassed();

@@ -206,7 +206,7 @@ final class CountState {
         while (in.available() > 0) {
             long high = in.readLong();
             long low = in.readLong();
-            OpenUnit unit = counter.ledger().fresh();
+            OpenUnit unit = counter.ledger().restoring();
             unit.read(in);
             counter.ledger().restoreOpen(high, low, unit);
         }

@@ -18,6 +18,7 @@ final class EventPool {
     private long[][] second = new long[0][];
     private int[][] next = new int[0][];
     private int used;
+    private int held;
     private int free = NONE;
 
     /** Puts a fact before a list; returns the longer list. */
@@ -31,6 +32,7 @@ final class EventPool {
         } else {
             free = next(place);
         }
+        held++;
         first[place >> PAGE_BITS][place & PAGE - 1] = firstNumber;
         second[place >> PAGE_BITS][place & PAGE - 1] = secondNumber;
         next[place >> PAGE_BITS][place & PAGE - 1] = list;
@@ -62,14 +64,28 @@ final class EventPool {
         return next[list >> PAGE_BITS][list & PAGE - 1];
     }
 
-    /** Gives the places of a list back. */
+    /** Gives the places of a list back; the memory too, once nothing is held any more. */
     void release(int list) {
         int place = list;
         while (place != NONE) {
             int following = next(place);
             next[place >> PAGE_BITS][place & PAGE - 1] = free;
             free = place;
+            held--;
             place = following;
+        }
+        if (held == 0) {
+            forgetAll();
+        }
+    }
+
+    private void forgetAll() {
+        if (used > PAGE) {
+            first = new long[0][];
+            second = new long[0][];
+            next = new int[0][];
+            used = 0;
+            free = NONE;
         }
     }
 }

@@ -1,6 +1,6 @@
 package io.tallyward.engine.count;
 
-import io.tallyward.engine.event.Event;
+import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanDigest;
 import java.util.ArrayList;
@@ -60,7 +60,7 @@ final class ExperimentCounter {
     }
 
     /** Takes an event of a known variant; returns whether it lies inside the run. */
-    boolean accept(long high, long low, Event event, int variant, long arrivalMillis) {
+    boolean accept(long high, long low, EventSlot event, long arrivalMillis) {
         changed = true;
         if (!plan.run().contains(event.atMillis())) {
             finalOutcomes.add(Outcome.OUTSIDE, 1);
@@ -70,7 +70,7 @@ final class ExperimentCounter {
         long window = windowOf(event.atMillis());
         reach = Math.max(reach, window + windowMillis);
         boolean late = window < sealedUntil || arrivalMillis >= sealAt(window);
-        Outcome outcome = ledger.accept(high, low, event, variant, arrivalMillis, late);
+        Outcome outcome = ledger.accept(high, low, event, arrivalMillis, late);
         if (outcome != null) {
             finalOutcomes.add(outcome, 1);
             tellIn(window, outcome);

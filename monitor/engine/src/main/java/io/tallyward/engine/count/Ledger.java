@@ -1,7 +1,7 @@
 package io.tallyward.engine.count;
 
-import io.tallyward.engine.event.Event;
 import io.tallyward.engine.event.EventKind;
+import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.plan.Plan;
 import java.io.DataInput;
 import java.io.IOException;
@@ -21,7 +21,13 @@ final class Ledger {
     private final SealedUnits sealed;
     private final TreeMap<Long, PrefixList> due = new TreeMap<>();
     private final HashList changed = new HashList();
+    private final OpenUnit restoring;
     private long openEvents;
+
+    /** Most units fall due in the window of the unit before. */
+    private long lastDue = Long.MIN_VALUE;
+
+    private PrefixList lastDuePrefixes;
 
     Ledger(Plan plan) {
         attributionMillis = plan.count().attribution().toMillis();
@@ -30,6 +36,7 @@ final class Ledger {
         long runFrom = plan.run().from().toEpochMilli();
         open = new OpenUnits(runFrom, plan.variants().size());
         sealed = new SealedUnits(runFrom);
+        restoring = new OpenUnit(plan.variants().size());
     }
 
     /** Takes a unit whose trial has become final. */
@@ -54,19 +61,21 @@ final class Ledger {
      * @param late whether the event's own window is sealed, in the shard or by the reckoning of the event's source
      * @return its outcome when that is final at once, or null while it can still change
      */
-    Outcome accept(long high, long low, Event event, int variant, long arrivalMillis, boolean late) {
+    Outcome accept(long high, long low, EventSlot event, long arrivalMillis, boolean late) {
+        int variant = event.variant();
         boolean view = event.kind() == EventKind.VIEW;
-        if (sealed.find(high, low)) {
+        // A unit is open or sealed, never both; most events are about open ones.
+        boolean known = open.find(high, low);
+        if (!known && sealed.find(high, low)) {
             return view ? exposeAgain(variant, event.atMillis()) : clickAfterwards(variant, event.atMillis());
         }
         Outcome outcome =
-                view ? expose(high, low, event, variant, late) : click(high, low, event, variant, arrivalMillis, late);
+                view ? expose(high, low, event, known, late) : click(high, low, event, arrivalMillis, known, late);
         openEvents += outcome == null ? 1 : 0;
         return outcome;
     }
 
-    private Outcome expose(long high, long low, Event event, int variant, boolean late) {
-        boolean known = open.find(high, low);
+    private Outcome expose(long high, long low, EventSlot event, boolean known, boolean late) {
         if (!known && late) {
             return Outcome.LATE;
         }
@@ -77,9 +86,9 @@ final class Ledger {
             if (!had || event.atMillis() < before) {
                 return Outcome.LATE;
             }
-            unit.exposeAgain(variant);
+            unit.exposeAgain(event.variant());
         } else {
-            unit.expose(variant, event.atMillis(), event.tie(), attributionMillis);
+            unit.expose(event.variant(), event.atMillis(), event.tie(), attributionMillis);
         }
         if (!had || windowOf(before) != windowOf(unit.first())) {
             dueAt(windowOf(unit.first()), high);
@@ -88,8 +97,7 @@ final class Ledger {
         return null;
     }
 
-    private Outcome click(long high, long low, Event event, int variant, long arrivalMillis, boolean late) {
-        boolean known = open.find(high, low);
+    private Outcome click(long high, long low, EventSlot event, long arrivalMillis, boolean known, boolean late) {
         if (!known && late) {
             return Outcome.ORPHAN;
         }
@@ -99,7 +107,7 @@ final class Ledger {
             return Outcome.ORPHAN;
         }
         int clicks = unit.clicks();
-        unit.click(variant, event.atMillis(), arrivalMillis, attributionMillis);
+        unit.click(event.variant(), event.atMillis(), arrivalMillis, attributionMillis);
         if (!preceded && unit.clicks() > clicks) {
             dueAt(windowOf(event.atMillis()), high);
         }
@@ -134,7 +142,11 @@ final class Ledger {
     }
 
     private void dueAt(long window, long high) {
-        due.computeIfAbsent(window, start -> new PrefixList()).add(high);
+        if (window != lastDue) {
+            lastDuePrefixes = due.computeIfAbsent(window, start -> new PrefixList());
+            lastDue = window;
+        }
+        lastDuePrefixes.add(high);
     }
 
     /** The window with which the last of what is open about a unit is sealed. */
@@ -159,6 +171,7 @@ final class Ledger {
      */
     void seal(long windowStart, OutcomeCounts.Builder outcomes, Settled settled) {
         PrefixList prefixes = due.remove(windowStart);
+        lastDue = Long.MIN_VALUE;
         for (int i = 0; prefixes != null && i < prefixes.size(); i++) {
             int prefix = prefixes.get(i);
             boolean more = open.findFirst(prefix);
@@ -207,26 +220,23 @@ final class Ledger {
         changed.clear();
     }
 
-    /** A unit to restore into. */
-    OpenUnit fresh() {
-        return open.fresh();
+    /** A unit to restore into, always the same. */
+    OpenUnit restoring() {
+        return restoring;
     }
 
     /** Restores an open unit as it was written; a later version of the same unit replaces it. */
     void restoreOpen(long high, long low, OpenUnit unit) {
-        OpenUnit restored = unit.copy();
-        forgetOpen(high, low);
-        openEvents += restored.events();
-        open.find(high, low);
-        open.store(high, low, restored, false);
-        open.find(high, low);
+        boolean known = open.find(high, low);
+        openEvents += unit.events() - (known ? open.load().events() : 0);
+        open.store(high, low, unit, known);
         open.unmark();
-        if (restored.hasTrial()) {
-            dueAt(windowOf(restored.first()), high);
+        if (unit.hasTrial()) {
+            dueAt(windowOf(unit.first()), high);
         }
-        for (int click = 0; click < restored.clicks(); click++) {
-            long at = restored.clickTime(click);
-            if (!restored.hasTrial() || at < restored.first()) {
+        for (int click = 0; click < unit.clicks(); click++) {
+            long at = unit.clickTime(click);
+            if (!unit.hasTrial() || at < unit.first()) {
                 dueAt(windowOf(at), high);
             }
         }
@@ -250,6 +260,7 @@ final class Ledger {
             }
         });
         due.headMap(sealedUntilMillis).clear();
+        lastDue = Long.MIN_VALUE;
     }
 
     private void forgetDueBefore(int prefix, long sealedUntilMillis) {

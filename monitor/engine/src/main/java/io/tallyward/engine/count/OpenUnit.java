@@ -62,7 +62,11 @@ final class OpenUnit {
     }
 
     private static int sum(int[] counts) {
-        return Arrays.stream(counts).sum();
+        int sum = 0;
+        for (int count : counts) {
+            sum += count;
+        }
+        return sum;
     }
 
     /**

@@ -142,7 +142,7 @@ final class OpenUnits {
         int list = EventPool.NONE;
         if (isRich(unit)) {
             state |= RICH;
-            rich.put(new UnitHash(high, low), unit == working ? unit.copy() : unit);
+            rich.compute(new UnitHash(high, low), (hash, held) -> held == unit ? held : unit.copy());
         } else {
             if ((before & RICH) != 0) {
                 rich.remove(new UnitHash(high, low));

@@ -1,9 +1,7 @@
 package io.tallyward.engine.event;
 
-import java.nio.charset.StandardCharsets;
 import java.util.Map;
 import java.util.Objects;
-import java.util.zip.CRC32;
 
 /**
  * One view or click.
@@ -38,16 +36,6 @@ public record Event(
         requireText("id", id);
         Objects.requireNonNull(viewId, "viewId");
         segments = Map.copyOf(segments);
-    }
-
-    /**
-     * Breaks ties between exposures of one unit at one moment: the CRC-32 of the id in UTF-8, to be compared without sign.
-     * Like the ids themselves it favours no variant, and unlike them it takes four bytes to remember.
-     */
-    public int tie() {
-        CRC32 crc = new CRC32();
-        crc.update(id.getBytes(StandardCharsets.UTF_8));
-        return (int) crc.getValue();
     }
 
     private static void requireText(String name, String value) {

@@ -1,6 +1,7 @@
 package io.tallyward.service.watch;
 
 import io.tallyward.connector.format.Decoded;
+import io.tallyward.connector.format.EventSlotReader;
 import io.tallyward.connector.format.JsonEventReader;
 import io.tallyward.connector.format.TallyJson;
 import io.tallyward.connector.kafka.HostedShard;
@@ -10,6 +11,7 @@ import io.tallyward.engine.count.CountShard;
 import io.tallyward.engine.count.CountView;
 import io.tallyward.engine.count.TallyUpdate;
 import io.tallyward.engine.event.Event;
+import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.event.RejectReason;
 import io.tallyward.engine.shard.StateChange;
 import io.tallyward.service.status.CountReport;
@@ -39,6 +41,8 @@ final class CountHost implements HostedShard {
     private final List<String> topics;
     private final TopicNames names;
     private final JsonEventReader reader;
+    private final EventSlotReader slotReader;
+    private final EventSlot slot = new EventSlot();
     private final TrafficLog trafficLog;
     private final StatusBoard board;
     private final KeyCheck keyCheck;
@@ -53,6 +57,7 @@ final class CountHost implements HostedShard {
             List<String> topics,
             TopicNames names,
             JsonEventReader reader,
+            EventSlotReader slotReader,
             TrafficLog trafficLog,
             StatusBoard board) {
         this.shard = shard;
@@ -60,6 +65,7 @@ final class CountHost implements HostedShard {
         this.topics = topics;
         this.names = names;
         this.reader = reader;
+        this.slotReader = slotReader;
         this.trafficLog = trafficLog;
         this.board = board;
         keyCheck = new KeyCheck(partition, partitions);
@@ -72,6 +78,25 @@ final class CountHost implements HostedShard {
 
     @Override
     public void apply(ConsumerRecord<byte[], byte[]> record) {
+        if (slotReader.read(record.value(), slot)) {
+            admit(record, slot);
+        } else {
+            applyUnusual(record);
+        }
+    }
+
+    private void admit(ConsumerRecord<byte[], byte[]> record, EventSlot event) {
+        Optional<RejectReason> rejected = shard.apply(topics.indexOf(record.topic()), record.timestamp(), event);
+        if (rejected.isPresent()) {
+            Decoded.Accepted read = (Decoded.Accepted) reader.read(record.value());
+            reject(record, rejected.get(), RejectDetail.of(rejected.get(), read.event(), record.timestamp()));
+        } else {
+            observeKey(record, event.unit(), event.unitLength());
+        }
+    }
+
+    /** A document that has to be looked at more closely, most often because there is something wrong with it. */
+    private void applyUnusual(ConsumerRecord<byte[], byte[]> record) {
         Decoded decoded = reader.read(record.value());
         if (decoded instanceof Decoded.Refused refused) {
             reject(record, shard.reject(refused.reason()), refused.detail());
@@ -84,7 +109,14 @@ final class CountHost implements HostedShard {
         Optional<RejectReason> rejected = shard.apply(topics.indexOf(record.topic()), record.timestamp(), event);
         if (rejected.isPresent()) {
             reject(record, rejected.get(), RejectDetail.of(rejected.get(), event, record.timestamp()));
-        } else if (keyCheck.observe(record.key(), event.unit())) {
+        } else {
+            byte[] unit = utf8(event.unit());
+            observeKey(record, unit, unit.length);
+        }
+    }
+
+    private void observeKey(ConsumerRecord<byte[], byte[]> record, byte[] unit, int unitLength) {
+        if (keyCheck.observe(record.key(), unit, unitLength)) {
             trafficLog.keying(record.topic(), !keyCheck.unkeyed());
         }
     }

@@ -1,7 +1,6 @@
 package io.tallyward.service.watch;
 
 import io.tallyward.connector.kafka.KeyPartitions;
-import java.nio.charset.StandardCharsets;
 import java.util.Arrays;
 
 /**
@@ -33,12 +32,17 @@ final class KeyCheck {
         this.partitions = partitions;
     }
 
-    /** Looks at an event; returns whether the verdict has just changed. */
-    boolean observe(byte[] key, String unit) {
+    /**
+     * Looks at an event; returns whether the verdict has just changed.
+     *
+     * @param unit begins with the unit in UTF-8
+     * @param unitLength how many bytes of it belong to the unit
+     */
+    boolean observe(byte[] key, byte[] unit, int unitLength) {
         if (partitions == 1 || (judged && ++seen % STRIDE != 0)) {
             return false;
         }
-        byte[] expected = unit.getBytes(StandardCharsets.UTF_8);
+        byte[] expected = Arrays.copyOf(unit, unitLength);
         boolean agrees = Arrays.equals(key, expected) || KeyPartitions.partitionOf(expected, partitions) == partition;
         sampled++;
         disagreeing += agrees ? 0 : 1;

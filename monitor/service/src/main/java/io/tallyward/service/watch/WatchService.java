@@ -1,15 +1,10 @@
 package io.tallyward.service.watch;
 
-import io.tallyward.connector.format.JsonEventReader;
 import io.tallyward.connector.kafka.RunnerListener;
 import io.tallyward.connector.kafka.ShardGroup;
 import io.tallyward.connector.kafka.ShardRunner;
-import io.tallyward.connector.kafka.StartPosition;
-import io.tallyward.engine.count.CountSettings;
-import io.tallyward.engine.count.CountShard;
 import io.tallyward.engine.decide.DecideShard;
 import io.tallyward.engine.plan.Plan;
-import io.tallyward.service.config.InputStart;
 import io.tallyward.service.config.ServiceConfig;
 import io.tallyward.service.http.StatusServer;
 import io.tallyward.service.http.StatusSite;
@@ -24,7 +19,6 @@ import io.tallyward.service.status.WebhookReport;
 import java.net.URI;
 import java.time.Clock;
 import java.time.InstantSource;
-import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
@@ -65,8 +59,7 @@ public final class WatchService implements AutoCloseable {
         this.config = config;
         this.plans = List.copyOf(plans);
         names = new TopicNames(config.name());
-        clientProperties = new HashMap<>(config.kafka().properties());
-        clientProperties.put("bootstrap.servers", config.kafka().bootstrapServers());
+        clientProperties = CountGroup.clientProperties(config);
 
         exposition =
                 new PrometheusExposition(new MonitorMetrics(board, this::runnerReports, this::webhookReport, version));
@@ -75,7 +68,7 @@ public final class WatchService implements AutoCloseable {
         server = StatusServer.start(config.http().host(), config.http().port(), site);
         InstantSource clock = InstantSource.system();
         deciding = ShardRunner.start(decideGroup(), clock, listener);
-        counting = ShardRunner.start(countGroup(), clock, listener);
+        counting = ShardRunner.start(CountGroup.of(config, this.plans, board), clock, listener);
         add("counting", "count", counting);
         add("deciding", "decide", deciding);
         config.webhook().ifPresent(webhook -> {
@@ -114,36 +107,10 @@ public final class WatchService implements AutoCloseable {
         return server.address();
     }
 
-    private ShardGroup countGroup() {
-        byte[] unitKey = UnitKey.of(config);
-        CountSettings settings =
-                new CountSettings(config.input().maxSkew(), config.input().idleAfter(), unitKey);
-        JsonEventReader reader =
-                new JsonEventReader(config.input().mapping(), config.input().maxEventBytes());
-        // State tells topics apart by their place in this list: another order in the configuration must not mix them
-        // up.
-        List<String> topics = config.input().topics().stream().sorted().toList();
-        TrafficLog trafficLog = new TrafficLog(names.rejects());
-        return group(names.countGroup())
-                .inputTopics(topics)
-                .stateTopic(names.countState())
-                .internalTopics(names::forCounting)
-                .start(startPosition(config.input().start()))
-                .workers(config.workers())
-                .shards((partition, partitions) -> new CountHost(
-                        new CountShard(partition, partitions, plans, settings, topics.size()),
-                        partition,
-                        partitions,
-                        topics,
-                        names,
-                        reader,
-                        trafficLog,
-                        board))
-                .build();
-    }
-
     private ShardGroup decideGroup() {
-        return group(names.decideGroup())
+        return ShardGroup.builder(names.decideGroup())
+                .clientProperties(clientProperties)
+                .commitInterval(config.commitInterval())
                 .inputTopics(List.of(names.tallies()))
                 .missingInput("counting creates it once it has found its own input topics; nothing to do here")
                 .stateTopic(names.decideState())
@@ -159,17 +126,6 @@ public final class WatchService implements AutoCloseable {
                 .filter(experiment -> TopicNames.partitionOf(experiment) == partition)
                 .forEach(shard::expect);
         return shard;
-    }
-
-    private ShardGroup.Builder group(String id) {
-        return ShardGroup.builder(id).clientProperties(clientProperties).commitInterval(config.commitInterval());
-    }
-
-    private static StartPosition startPosition(InputStart start) {
-        if (start instanceof InputStart.At at) {
-            return StartPosition.at(at.time());
-        }
-        return start instanceof InputStart.Latest ? StartPosition.latest() : StartPosition.earliest();
     }
 
     private List<RunnerReport> runnerReports() {

@@ -20,7 +20,7 @@ class KeyCheckTest {
         int changes = 0;
         for (int unit = 0; unit < MANY; unit++) {
             String name = "visitor-" + unit;
-            changes += check.observe(keyOf.apply(name), name) ? 1 : 0;
+            changes += check.observe(keyOf.apply(name), utf8(name), utf8(name).length) ? 1 : 0;
         }
         return changes;
     }
@@ -47,7 +47,7 @@ class KeyCheckTest {
         for (int unit = 0; unit < MANY; unit++) {
             String name = "visitor-" + unit;
             if (KeyPartitions.partitionOf(utf8(name), PARTITIONS) == PARTITION) {
-                check.observe(utf8("\"" + name + "\""), name);
+                check.observe(utf8("\"" + name + "\""), utf8(name), utf8(name).length);
             }
         }
         assertFalse(check.unkeyed());
@@ -64,7 +64,7 @@ class KeyCheckTest {
     void hasNothingToSayAboutASinglePartition() {
         KeyCheck single = new KeyCheck(0, 1);
         for (int unit = 0; unit < MANY; unit++) {
-            single.observe(null, "visitor-" + unit);
+            single.observe(null, utf8("visitor-" + unit), utf8("visitor-" + unit).length);
         }
         assertFalse(single.unkeyed());
     }

@@ -1,0 +1,68 @@
+package io.tallyward.engine.event;
+
+import java.util.Collection;
+
+/**
+ * A fixed list of names, found by their characters where there is no {@code String} of them: open addressing under the hash
+ * that strings have. Immutable; may be shared.
+ */
+public final class NameTable {
+
+    /** Slots per name at least; short probes matter more than a few bytes. */
+    private static final int ROOM = 4;
+
+    private final String[] names;
+    private final int[] indices;
+
+    /** @param names different names; each is found by its position here */
+    public NameTable(Collection<String> names) {
+        int slots = Integer.highestOneBit(Math.max(1, names.size()) * ROOM);
+        this.names = new String[slots];
+        indices = new int[slots];
+        int index = 0;
+        for (String name : names) {
+            int slot = name.hashCode() & slots - 1;
+            while (this.names[slot] != null) {
+                if (this.names[slot].equals(name)) {
+                    throw new IllegalArgumentException("names: " + name + " twice (expected: different names)");
+                }
+                slot = slot + 1 & slots - 1;
+            }
+            this.names[slot] = name;
+            indices[slot] = index++;
+        }
+    }
+
+    /** Position of the name that some characters spell, or -1 when there is none. */
+    public int find(char[] text, int from, int length) {
+        int hash = 0;
+        for (int i = from; i < from + length; i++) {
+            hash = 31 * hash + text[i];
+        }
+        int slot = hash & names.length - 1;
+        while (names[slot] != null) {
+            if (spells(text, from, length, names[slot])) {
+                return indices[slot];
+            }
+            slot = slot + 1 & names.length - 1;
+        }
+        return -1;
+    }
+
+    /** Position of a name, or -1 when it is not in the list. */
+    public int find(String name) {
+        return find(name.toCharArray(), 0, name.length());
+    }
+
+    private static boolean spells(char[] text, int from, int length, String name) {
+        if (name.length() != length) {
+            return false;
+        }
+        for (int i = 0; i < length; i++) {
+            if (text[from + i] != name.charAt(i)) {
+                return false;
+            }
+        }
+        return true;
+    }
+}

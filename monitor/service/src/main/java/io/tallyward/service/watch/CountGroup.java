@@ -1,0 +1,69 @@
+package io.tallyward.service.watch;
+
+import io.tallyward.connector.format.EventSlotReader;
+import io.tallyward.connector.format.JsonEventReader;
+import io.tallyward.connector.kafka.ShardGroup;
+import io.tallyward.connector.kafka.StartPosition;
+import io.tallyward.engine.count.CountSettings;
+import io.tallyward.engine.count.CountShard;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.service.config.InputStart;
+import io.tallyward.service.config.ServiceConfig;
+import io.tallyward.service.status.StatusBoard;
+import java.util.HashMap;
+import java.util.List;
+import java.util.Map;
+
+/** The counting side of an instance: what is read, by which shards, and where it goes. */
+public final class CountGroup {
+
+    private CountGroup() {}
+
+    /**
+     * The group that counts.
+     *
+     * @param config the instance's configuration
+     * @param plans the plans to count under
+     * @param board where the shards publish their reports, after each commit
+     */
+    public static ShardGroup of(ServiceConfig config, List<Plan> plans, StatusBoard board) {
+        TopicNames names = new TopicNames(config.name());
+        CountSettings settings =
+                new CountSettings(config.input().maxSkew(), config.input().idleAfter(), UnitKey.of(config));
+        JsonEventReader reader =
+                new JsonEventReader(config.input().mapping(), config.input().maxEventBytes());
+        // State tells topics apart by their place in this list: another order in the configuration must not mix them
+        // up.
+        List<String> topics = config.input().topics().stream().sorted().toList();
+        TrafficLog trafficLog = new TrafficLog(names.rejects());
+        return ShardGroup.builder(names.countGroup())
+                .clientProperties(clientProperties(config))
+                .commitInterval(config.commitInterval())
+                .inputTopics(topics)
+                .stateTopic(names.countState())
+                .internalTopics(names::forCounting)
+                .start(startPosition(config.input().start()))
+                .workers(config.workers())
+                .shards((partition, partitions) -> {
+                    CountShard shard = new CountShard(partition, partitions, plans, settings, topics.size());
+                    EventSlotReader slotReader = new EventSlotReader(
+                            config.input().mapping(), config.input().maxEventBytes(), shard.names());
+                    return new CountHost(
+                            shard, partition, partitions, topics, names, reader, slotReader, trafficLog, board);
+                })
+                .build();
+    }
+
+    static Map<String, String> clientProperties(ServiceConfig config) {
+        Map<String, String> properties = new HashMap<>(config.kafka().properties());
+        properties.put("bootstrap.servers", config.kafka().bootstrapServers());
+        return properties;
+    }
+
+    private static StartPosition startPosition(InputStart start) {
+        if (start instanceof InputStart.At at) {
+            return StartPosition.at(at.time());
+        }
+        return start instanceof InputStart.Latest ? StartPosition.latest() : StartPosition.earliest();
+    }
+}
