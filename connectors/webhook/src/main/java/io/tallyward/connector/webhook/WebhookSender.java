@@ -10,6 +10,7 @@ import java.net.http.HttpClient;
 import java.net.http.HttpConnectTimeoutException;
 import java.net.http.HttpRequest;
 import java.net.http.HttpResponse;
+import java.net.http.HttpTimeoutException;
 import java.time.Duration;
 import java.time.Instant;
 import java.util.Optional;
@@ -71,9 +72,9 @@ public final class WebhookSender implements NoticeTransport, AutoCloseable {
         try {
             answer.get(target.requestTimeout().toMillis(), TimeUnit.MILLISECONDS);
         } catch (TimeoutException e) {
-            trouble = target.origin() + " did not answer within " + target.requestTimeout();
+            trouble = target.origin() + silence();
         } catch (ExecutionException e) {
-            trouble = target.origin() + " " + cause(e.getCause());
+            trouble = target.origin() + (isSilence(e.getCause()) ? silence() : " " + cause(e.getCause()));
         } finally {
             answer.cancel(true);
         }
@@ -85,6 +86,15 @@ public final class WebhookSender implements NoticeTransport, AutoCloseable {
     @Override
     public void close() {
         executor.shutdownNow();
+    }
+
+    private String silence() {
+        return " did not answer within " + target.requestTimeout();
+    }
+
+    /** The client has a timer of its own for the same time, and either may be the first. */
+    private static boolean isSilence(Throwable failure) {
+        return failure instanceof HttpTimeoutException && !(failure instanceof HttpConnectTimeoutException);
     }
 
     private HttpRequest request(Notice notice, Instant now) {

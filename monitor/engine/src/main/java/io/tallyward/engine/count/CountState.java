@@ -29,10 +29,10 @@ import java.util.TreeMap;
  */
 final class CountState {
 
-    private static final byte SHARD = 'H';
-    private static final byte EXPERIMENT = 'E';
-    private static final byte OPEN = 'O';
-    private static final byte SEALED = 'S';
+    private static final byte SHARD = 'h';
+    private static final byte EXPERIMENT = 'e';
+    private static final byte OPEN = 'o';
+    private static final byte SEALED = 's';
 
     /** A packed entry is closed once it is this large; well below a broker's usual record limit of 1 MB. */
     static final int PACKED_BYTES = 400_000;
@@ -144,8 +144,9 @@ final class CountState {
             } else if (kind == SEALED) {
                 restoreSealed(value, counter);
             } else {
-                throw new IllegalStateException("stored counts: entry of unknown kind " + kind
-                        + " (expected: H, E, O or S); the state was written by another version");
+                throw new IllegalStateException(
+                        "stored counts: entry of unknown kind " + kind
+                                + " (expected: h, e, o or s); the state was written by another version, whose state topics have to be removed");
             }
         } catch (IOException e) {
             throw new UncheckedIOException("stored counts: an entry is cut short", e);
