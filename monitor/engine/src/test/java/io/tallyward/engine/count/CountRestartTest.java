@@ -178,7 +178,7 @@ class CountRestartTest {
             host.end();
             assertBounded(host, "seed " + seed + ", after the end");
             assertTrue(
-                    keys(host).stream().noneMatch(key -> key.kind() == 'O'),
+                    keys(host).stream().noneMatch(key -> key.kind() == 'o'),
                     "seed " + seed + ": open entries are left after the end");
         }
     }
@@ -189,8 +189,8 @@ class CountRestartTest {
         static Key of(StateChange change) {
             try (DataInputStream in = new DataInputStream(new ByteArrayInputStream(change.key()))) {
                 char kind = (char) in.readByte();
-                String experiment = kind == 'H' ? "" : in.readUTF();
-                return new Key(kind, experiment, kind == 'O' || kind == 'S' ? in.readLong() : 0);
+                String experiment = kind == 'h' ? "" : in.readUTF();
+                return new Key(kind, experiment, kind == 'o' || kind == 's' ? in.readLong() : 0);
             } catch (IOException e) {
                 throw new UncheckedIOException(e);
             }
