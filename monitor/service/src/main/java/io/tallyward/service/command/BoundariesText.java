@@ -96,6 +96,12 @@ final class BoundariesText {
                 .ifPresent(rule -> lines.addAll(fact(
                         "futility",
                         PlanWords.futility(rule) + "; advice that may be overruled at no cost in false alarms")));
+        lines.addAll(size(comparison));
+        return lines;
+    }
+
+    private List<String> size(PlannedComparison comparison) {
+        List<String> lines = new ArrayList<>();
         double base = test.baseline();
         lines.addAll(fact(
                 "looks for",
@@ -199,12 +205,13 @@ final class BoundariesText {
         return wrapped("  " + label + " ".repeat(LABEL - 2 - label.length()) + text, LABEL);
     }
 
-    /** A sentence in lines that fit, all but the first indented. */
+    /** A sentence in lines that fit, all but the first indented; a number keeps its per cent sign. */
     static List<String> wrapped(String text, int indent) {
         List<String> lines = new ArrayList<>();
         String rest = text;
         while (rest.length() > WIDTH) {
             int end = rest.lastIndexOf(' ', WIDTH);
+            end = rest.startsWith(" %", end) ? rest.lastIndexOf(' ', end - 1) : end;
             if (end <= indent) {
                 break;
             }

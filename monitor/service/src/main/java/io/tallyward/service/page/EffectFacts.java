@@ -23,13 +23,13 @@ final class EffectFacts {
 
     private EffectFacts() {}
 
-    static void write(Markup html, Standing standing, Comparison look) {
+    static void write(Markup html, Standing standing, Variant challenger, Comparison look) {
         html.open("dl", "class", "effect");
         if (look.adjusted() != null) {
             adjusted(html, look.adjusted(), look.held() != null);
         }
         OverviewPage.fact(html, naiveLabel(look), naive(look));
-        level(html, standing, look);
+        level(html, standing, challenger, look);
         if (look.outlook() != null && standing.view().trust() == Trust.SOUND) {
             OverviewPage.fact(html, "Outlook", outlook(look));
         }
@@ -74,8 +74,8 @@ final class EffectFacts {
         };
     }
 
-    private static void level(Markup html, Standing standing, Comparison look) {
-        double initial = initialLevel(standing, look.variant());
+    private static void level(Markup html, Standing standing, Variant challenger, Comparison look) {
+        double initial = initialLevel(standing, challenger);
         if (look.level() > initial + ROUNDING) {
             OverviewPage.fact(
                     html,
@@ -85,10 +85,9 @@ final class EffectFacts {
         }
     }
 
-    private static double initialLevel(Standing standing, String variant) {
-        int challenger =
-                standing.challengers().stream().map(Variant::name).toList().indexOf(variant);
-        TailLevels levels = TailLevels.of(standing.view().plan(), Math.max(0, challenger), Set.of(), Set.of());
+    private static double initialLevel(Standing standing, Variant challenger) {
+        int position = standing.challengers().indexOf(challenger);
+        TailLevels levels = TailLevels.of(standing.view().plan(), position, Set.of(), Set.of());
         return levels.benefit() + levels.harm();
     }
 
