@@ -51,7 +51,7 @@ final class EffectFacts {
     }
 
     private static String naiveLabel(Comparison look) {
-        return look.adjusted() == null ? "Difference so far, naive" : "Difference as observed, naive";
+        return ended(look) ? "Difference as observed, naive" : "Difference so far, naive";
     }
 
     private static String naive(Comparison look) {
@@ -62,8 +62,15 @@ final class EffectFacts {
         return text + "; repeated interval " + LookTable.interval(look) + bias(look);
     }
 
+    /** A stop for futility ends a comparison as well, but has no adjusted estimate. */
+    private static boolean ended(Comparison look) {
+        return look.adjusted() != null
+                || look.verdict().settled()
+                || (look.held() != null && look.held().settled());
+    }
+
     private static String bias(Comparison look) {
-        if (look.adjusted() == null) {
+        if (!ended(look)) {
             return "";
         }
         Verdict end = look.held() == null ? look.verdict() : look.held();
@@ -93,7 +100,7 @@ final class EffectFacts {
 
     private static String outlook(Comparison look) {
         Outlook outlook = look.outlook();
-        return (look.adjusted() == null ? "Chance" : "If it were carried on: chance")
+        return (ended(look) ? "If it were carried on: chance" : "Chance")
                 + " to find a benefit at the planned end " + Figures.wholePercent(outlook.underTrend())
                 + " if the effect seen so far goes on, " + Figures.wholePercent(outlook.underDesign())
                 + " if it is the smallest worth finding, " + Figures.wholePercent(outlook.withoutEffect())
