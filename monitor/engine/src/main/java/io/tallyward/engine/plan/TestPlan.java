@@ -45,7 +45,10 @@ public record TestPlan(
 
     /** What becomes of the level of a challenger that has been found to be a benefit or to do harm. */
     public enum AlphaSharing {
-        /** It passes to the challengers that are still open, evenly (Holm 1979; Maurer and Bretz 2013). */
+        /**
+         * Direction by direction it passes to the challengers not found in that direction, ended or not, evenly (Holm 1979;
+         * Maurer and Bretz 2013).
+         */
         PASS_ON,
         /** Nothing: every challenger keeps its share (Bonferroni). */
         SPLIT

@@ -1,13 +1,9 @@
 package io.tallyward.service.command;
 
-import io.tallyward.engine.decide.PlanDesign;
 import io.tallyward.engine.plan.Plan;
-import io.tallyward.engine.plan.Variant;
 import io.tallyward.service.config.document.BadInputException;
-import io.tallyward.service.config.document.Problem;
 import io.tallyward.service.plan.PlanReader;
 import java.nio.file.Path;
-import java.util.ArrayList;
 import java.util.List;
 import java.util.Optional;
 import picocli.CommandLine.Command;
@@ -44,30 +40,12 @@ final class BoundariesCommand extends CommandBase {
     ExitCode run(Output output) throws BadInputException {
         Plan plan = PlanReader.read(file).orElseThrow();
         Optional<double[]> truth = rates == null ? Optional.empty() : Optional.of(RateList.parse(rates, plan));
-        List<PlannedComparison> planned = new ArrayList<>();
-        for (Variant challenger : plan.challengers()) {
-            planned.add(planned(plan, challenger, truth));
-        }
+        List<PlannedComparison> planned = PlannedComparison.all(file, plan, truth);
         if (output.json()) {
             output.line(BoundariesJson.of(plan, planned));
         } else {
             new BoundariesText(plan, allLooks).lines(planned).forEach(output::line);
         }
         return ExitCode.FINE;
-    }
-
-    private PlannedComparison planned(Plan plan, Variant challenger, Optional<double[]> truth)
-            throws BadInputException {
-        try {
-            return new PlannedComparison(plan, challenger, PlanDesign.of(plan, challenger), truth);
-        } catch (IllegalArgumentException e) {
-            throw new BadInputException(List.of(Problem.of(
-                    file.toString(),
-                    "the boundaries for " + challenger.name() + " cannot be computed: " + e.getMessage(),
-                    "",
-                    truth.isEmpty()
-                            ? "Choose fewer looks or another spending function."
-                            : "Choose rates that lie closer together, fewer looks or another spending function.")));
-        }
     }
 }

@@ -26,6 +26,8 @@ final class BoundariesJson {
         ArrayNode comparisons = object.putArray("comparisons");
         planned.forEach(comparison -> comparisons.add(comparison(comparison)));
         object.set("remarks", remarks(BoundariesRemarks.of(planned)));
+        OverallNeed need = new OverallNeed(planned);
+        object.put("plannedTrials", need.trials()).put("trialsPerDay", need.perDay());
         return object;
     }
 
@@ -50,11 +52,12 @@ final class BoundariesJson {
                 .put("baseline", test.baseline())
                 .put("smallestEffect", test.signedEffect())
                 .put("drift", planned.design().drift())
-                .put("plannedTrials", (long) Math.ceil(planned.population()))
+                .put("plannedTrials", planned.plannedTrials())
                 .put("trialsPerDay", planned.trialsPerDay());
         singleLook(object.putObject("singleLook"), planned);
         ObjectNode scenarios = object.putObject("scenarios");
         planned.scenarios().forEach(scenario -> scenario(scenarios.putObject(scenario.name()), scenario));
+        planned.asMuchWorse().ifPresent(worse -> scenario(scenarios.putObject(worse.name()), worse));
         firstLook(object.putObject("firstLook"), planned);
         others(object, planned);
         return object;
@@ -151,8 +154,8 @@ final class BoundariesJson {
         planned.passedOn()
                 .forEach(after -> levels.addObject()
                         .put("found", after.found())
-                        .put("benefit", after.levels().benefit())
-                        .put("harm", after.levels().harm()));
+                        .put("benefit", after.benefit())
+                        .put("harm", after.harm()));
         Optional<DunnettValue> dunnett = DunnettValue.of(planned.plan());
         if (dunnett.isPresent()) {
             object.putObject("dunnett")

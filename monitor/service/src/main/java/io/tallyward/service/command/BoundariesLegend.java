@@ -44,13 +44,20 @@ final class BoundariesLegend {
         if (plan.test().clock() == SpendingClock.CALENDAR) {
             entry("", "the clock is the calendar; the tables take it that both go at an even pace");
         }
-        entry("trials", "planned trials of all variants by then");
+        entry("trials", "planned trials of all variants by then, with the smallest effect");
         entry(
                 "alpha spent",
                 "chance of a false alarm up to and including that look, "
                         + (two ? "both directions together" : "in the direction of benefit"));
-        entry("upper z", "stop when the z-value of variant minus control is at or above it");
-        entry("lower z", "stop when it is at or below it; - means no stop in that direction");
+        boolean higher = plan.test().better() == Better.HIGHER;
+        entry(
+                "upper z",
+                "stop for " + (higher ? "benefit" : "harm")
+                        + " when the z-value of variant minus control is at or above it");
+        entry(
+                "lower z",
+                "stop for " + (higher ? "harm" : "benefit")
+                        + " when it is at or below it; - means no stop in that direction");
         if (plan.futility().isPresent()) {
             entry(
                     "futility z",
@@ -80,6 +87,9 @@ final class BoundariesLegend {
         entry(
                 "with the smallest effect",
                 "if the effect is the smallest worth finding: benefit in the last row is the power");
+        if (comparison.asMuchWorse().isPresent()) {
+            entry("as much worse", "if the variant is worse by as much as the smallest effect is better");
+        }
         if (comparison.scenarios().size() > 2) {
             entry("under the given rates", "if the success rates are those of --rates");
         }
@@ -87,7 +97,9 @@ final class BoundariesLegend {
         entry(
                 "expected",
                 "averages over many runs of this plan, at the end of a run"
-                        + (plan.challengers().size() > 1 ? " that ends with this comparison" : ""));
+                        + (plan.challengers().size() > 1 ? " that ends with this comparison" : "")
+                        + "; how many trials bring the same information depends on the rates, so that trials and looks"
+                        + " need not rise together");
     }
 
     private void entry(String column, String meaning) {

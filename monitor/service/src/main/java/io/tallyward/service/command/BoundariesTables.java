@@ -71,6 +71,9 @@ final class BoundariesTables {
         Cells header = new Cells("look").add(timed, "until, UTC").add("information", "trials", "alpha spent");
         Table table = new Table(
                 header.add("upper z", "lower z").add(futility, "futility z").all());
+        boolean higher = plan.test().better() == Better.HIGHER;
+        String down = harm ? "harm" : "";
+        table.group("", timed ? 4 : 3).group(higher ? "benefit" : down, 1).group(higher ? down : "benefit", 1);
         for (Look look : selected(comparison)) {
             Cells row = new Cells(String.valueOf(look.number()));
             comparison.plannedTime(look).ifPresent(time -> row.add(minute(time)));
@@ -151,7 +154,9 @@ final class BoundariesTables {
                 .add("no stop", "looks", "information", "trials")
                 .all());
         table.group("probability of", 2 + (harm ? 1 : 0) + (futility ? 1 : 0)).group("expected", 3);
-        for (Scenario scenario : comparison.scenarios()) {
+        List<Scenario> scenarios = new ArrayList<>(comparison.scenarios());
+        comparison.asMuchWorse().ifPresent(worse -> scenarios.add(2, worse));
+        for (Scenario scenario : scenarios) {
             table.row(ending(scenario.words(), scenario, scenario.obeyed()));
             if (futility) {
                 table.row(ending("  futility overruled", scenario, scenario.overruled()));

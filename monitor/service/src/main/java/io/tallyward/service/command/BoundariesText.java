@@ -37,11 +37,16 @@ final class BoundariesText {
 
     List<String> lines(List<PlannedComparison> planned) {
         List<String> lines = new ArrayList<>(wrapped(plan.experiment() + ": " + plan.question(), 0));
+        OverallNeed need = new OverallNeed(planned);
+        if (need.differs()) {
+            lines.add("");
+            lines.addAll(wrapped(need.sentence(), 0));
+        }
         Map<String, String> shown = new HashMap<>();
         for (PlannedComparison comparison : planned) {
             String name = comparison.challenger().name();
             List<String> body = comparison(comparison);
-            String same = shown.putIfAbsent(String.join("\n", body).replace(name, "\0"), name);
+            String same = shown.putIfAbsent(String.join("\n", body), name);
             lines.add("");
             lines.add(name + " against " + plan.control().name()
                     + (same == null ? "" : ": the same numbers as for " + same + "."));
@@ -91,6 +96,12 @@ final class BoundariesText {
                 .ifPresent(rule -> lines.addAll(fact(
                         "futility",
                         PlanWords.futility(rule) + "; advice that may be overruled at no cost in false alarms")));
+        lines.addAll(size(comparison));
+        return lines;
+    }
+
+    private List<String> size(PlannedComparison comparison) {
+        List<String> lines = new ArrayList<>();
         double base = test.baseline();
         lines.addAll(fact(
                 "looks for",
@@ -112,7 +123,7 @@ final class BoundariesText {
                 "drift",
                 String.format(
                         Locale.ROOT,
-                        "%.4f, the z to expect at the end with the smallest effect%s; maximum information %,.0f",
+                        "%.4f towards the benefit, the z to expect at the end with the smallest effect%s; maximum information %,.0f",
                         comparison.design().drift(),
                         comparison.scenarios().stream()
                                 .skip(2)
@@ -140,8 +151,8 @@ final class BoundariesText {
     }
 
     private String needs(PlannedComparison comparison) {
-        return count(Math.ceil(comparison.population())) + " trials of all variants ("
-                + comparison.design().trials().entrySet().stream()
+        return count(comparison.plannedTrials()) + " trials of all variants ("
+                + comparison.trialsPerVariant().entrySet().stream()
                         .map(entry -> entry.getKey() + " " + count(entry.getValue()))
                         .collect(Collectors.joining(", "))
                 + "), " + count(Math.ceil(comparison.trialsPerDay())) + " a day to have them within "
@@ -155,8 +166,10 @@ final class BoundariesText {
         lines.add("How " + challengers + " comparisons share alpha " + PlanWords.shortest(test.alpha()));
         lines.addAll(wrapped(
                 passOn
-                        ? "pass-on: each starts with an even share. One that is found leaves its share of that direction to"
-                                + " those still open, whose boundaries come closer from their next look on."
+                        ? "pass-on: each starts with an even share. One that is found in a direction leaves its share of it to"
+                                + " all that are not found in that direction, ended or not; the boundaries of those still open"
+                                + " come closer from their next look on. Below: the level of benefit if so many others were"
+                                + " found for benefit, that of harm if so many were found for harm."
                         : "split: each keeps an even share, whatever becomes of the others.",
                 0));
         if (passOn) {
@@ -166,10 +179,7 @@ final class BoundariesText {
                     level(comparison.design().benefitLevel()),
                     level(comparison.design().harmLevel()));
             for (PassedOn after : comparison.passedOn()) {
-                table.row(
-                        String.valueOf(after.found()),
-                        level(after.levels().benefit()),
-                        level(after.levels().harm()));
+                table.row(String.valueOf(after.found()), level(after.benefit()), level(after.harm()));
             }
             lines.addAll(table.lines());
         }
@@ -195,12 +205,13 @@ final class BoundariesText {
         return wrapped("  " + label + " ".repeat(LABEL - 2 - label.length()) + text, LABEL);
     }
 
-    /** A sentence in lines that fit, all but the first indented. */
+    /** A sentence in lines that fit, all but the first indented; a number keeps its per cent sign. */
     static List<String> wrapped(String text, int indent) {
         List<String> lines = new ArrayList<>();
         String rest = text;
         while (rest.length() > WIDTH) {
             int end = rest.lastIndexOf(' ', WIDTH);
+            end = rest.startsWith(" %", end) ? rest.lastIndexOf(' ', end - 1) : end;
             if (end <= indent) {
                 break;
             }

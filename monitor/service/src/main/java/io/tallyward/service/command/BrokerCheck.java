@@ -7,6 +7,7 @@ import java.util.List;
 import java.util.Map;
 import java.util.TreeMap;
 import java.util.TreeSet;
+import java.util.regex.Pattern;
 
 /**
  * What the brokers say about the input topics.
@@ -22,6 +23,9 @@ record BrokerCheck(Map<String, Integer> partitions, List<String> problems) {
     /** A person is waiting, so we give up sooner than the service would. */
     private static final String PATIENCE_MILLIS = "5000";
 
+    /** What the client library says of a broker that does not answer; it helps nobody who waits for a sentence. */
+    private static final Pattern TIMEOUT = Pattern.compile(" \\(Timed out waiting for a node assignment[^)]*\\)");
+
     /** Asks the brokers, for ten seconds or so at most. */
     static BrokerCheck of(ServiceConfig config, TopicLookup lookup) {
         List<String> topics = config.input().topics();
@@ -29,7 +33,9 @@ record BrokerCheck(Map<String, Integer> partitions, List<String> problems) {
             Map<String, Integer> partitions = new TreeMap<>(lookup.partitions(clientProperties(config), topics));
             return new BrokerCheck(partitions, problems(config, partitions));
         } catch (RuntimeException e) {
-            return new BrokerCheck(Map.of(), List.of(String.valueOf(e.getMessage())));
+            return new BrokerCheck(
+                    Map.of(),
+                    List.of(TIMEOUT.matcher(String.valueOf(e.getMessage())).replaceFirst("")));
         }
     }
 

@@ -46,16 +46,14 @@ final class CheckCommand extends CommandBase {
         ServiceConfig config = new ConfigReader(environment).read(file).orElseThrow();
         Checked<List<Plan>> plans = PlanDirectory.read(config.plans());
         BrokerCheck broker = withoutBroker ? BrokerCheck.SKIPPED : BrokerCheck.of(config, lookup);
-        output.problems(plans.problems());
-        broker.problems().forEach(output::problem);
         if (!plans.problems().isEmpty()) {
+            output.problems(plans.problems());
+            broker.problems().forEach(output::problem);
             return ExitCode.BAD_INPUT;
         }
-        if (!broker.problems().isEmpty()) {
-            return ExitCode.BROKEN_SURROUNDINGS;
-        }
         report(output, config, plans.orElseThrow(), broker);
-        return ExitCode.FINE;
+        broker.problems().forEach(output::problem);
+        return broker.problems().isEmpty() ? ExitCode.FINE : ExitCode.BROKEN_SURROUNDINGS;
     }
 
     private void report(Output output, ServiceConfig config, List<Plan> plans, BrokerCheck broker) {
@@ -67,12 +65,20 @@ final class CheckCommand extends CommandBase {
             object.put("brokerChecked", !withoutBroker);
             ObjectNode topics = object.putObject("topics");
             broker.partitions().forEach(topics::put);
+            object.put("problems", broker.problems().size());
             output.line(object);
             return;
         }
         output.line("configuration  fine: " + file);
         output.line("plans          fine: " + String.join(", ", experiments));
-        output.line("broker         " + (withoutBroker ? "not asked" : "fine: " + topics(config, broker)));
+        output.line("broker         " + broker(config, broker));
+    }
+
+    private String broker(ServiceConfig config, BrokerCheck broker) {
+        if (withoutBroker) {
+            return "not asked";
+        }
+        return broker.problems().isEmpty() ? "fine: " + topics(config, broker) : "not as it has to be";
     }
 
     private static String topics(ServiceConfig config, BrokerCheck broker) {

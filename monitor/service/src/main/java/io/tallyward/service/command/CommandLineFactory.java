@@ -3,6 +3,7 @@ package io.tallyward.service.command;
 import io.tallyward.engine.EngineVersion;
 import io.tallyward.service.config.document.Suggestion;
 import java.io.PrintWriter;
+import java.util.Collection;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
@@ -83,6 +84,12 @@ public final class CommandLineFactory {
         if (e instanceof UnmatchedArgumentException unmatched && unmatched.isUnknownOption() && unknown.isPresent()) {
             return unknown.get();
         }
+        if (e instanceof UnmatchedArgumentException unmatched
+                && !command.getSubcommands().isEmpty()) {
+            String written = unmatched.getUnmatched().get(0);
+            return "Unknown command: '" + written + "'."
+                    + didYouMean(written, command.getSubcommands().keySet());
+        }
         String message = e.getMessage().replaceAll("[.\\s]+$", "") + ".";
         return unknown.map(text -> message + " " + text).orElse(message);
     }
@@ -91,9 +98,12 @@ public final class CommandLineFactory {
         List<String> known = spec.optionsMap().keySet().stream()
                 .filter(name -> name.startsWith("--"))
                 .toList();
-        return "Unknown option: '" + option + "'."
-                + Suggestion.among(option, known)
-                        .map(name -> " Did you mean " + name + "?")
-                        .orElse("");
+        return "Unknown option: '" + option + "'." + didYouMean(option, known);
+    }
+
+    private static String didYouMean(String written, Collection<String> known) {
+        return Suggestion.among(written, known)
+                .map(name -> " Did you mean " + name + "?")
+                .orElse("");
     }
 }

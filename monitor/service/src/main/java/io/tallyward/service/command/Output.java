@@ -72,12 +72,6 @@ final class Output {
         err.flush();
     }
 
-    /** Writes a sentence about the input of a command that did its work all the same; never among the results. */
-    void remark(String sentence) {
-        err.println(sentence);
-        err.flush();
-    }
-
     /** Writes a problem that is one sentence. */
     void problem(String sentence) {
         if (json) {

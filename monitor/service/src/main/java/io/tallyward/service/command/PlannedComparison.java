@@ -6,8 +6,11 @@ import io.tallyward.engine.plan.LookSchedule;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.TestPlan.InformationMeasure;
 import io.tallyward.engine.plan.Variant;
+import io.tallyward.service.config.document.BadInputException;
+import io.tallyward.service.config.document.Problem;
 import io.tallyward.statistics.boundary.Look;
 import io.tallyward.statistics.proportion.SampleSize;
+import java.nio.file.Path;
 import java.time.Instant;
 import java.util.ArrayList;
 import java.util.HashSet;
@@ -32,6 +35,7 @@ final class PlannedComparison {
     private final double controlShare;
     private final double share;
     private final List<Scenario> scenarios;
+    private final Optional<Scenario> asMuchWorse;
 
     /**
      * @param rates success rate of every variant, in the plan's order, for one more scenario; empty for none
@@ -44,7 +48,38 @@ final class PlannedComparison {
         double[] shares = plan.sharesIn(plan.epochs().size());
         controlShare = shares[plan.variantIndex(plan.control().name())];
         share = shares[plan.variantIndex(challenger.name())];
-        scenarios = scenarios(rates);
+        List<Truth> truths = truths(rates);
+        Optional<Truth> worse = mirrored();
+        List<Truth> all = new ArrayList<>(truths);
+        worse.ifPresent(all::add);
+        List<Scenario> answers = scenarios(all);
+        scenarios = List.copyOf(answers.subList(0, truths.size()));
+        asMuchWorse = worse.map(truth -> answers.get(truths.size()));
+    }
+
+    /**
+     * What a plan means for each of its challengers, in the plan's order.
+     *
+     * @param file where the plan was read from, for messages
+     * @param rates as for one comparison
+     * @throws BadInputException if boundaries cannot be computed
+     */
+    static List<PlannedComparison> all(Path file, Plan plan, Optional<double[]> rates) throws BadInputException {
+        List<PlannedComparison> planned = new ArrayList<>();
+        for (Variant challenger : plan.challengers()) {
+            try {
+                planned.add(new PlannedComparison(plan, challenger, PlanDesign.of(plan, challenger), rates));
+            } catch (IllegalArgumentException e) {
+                throw new BadInputException(List.of(Problem.of(
+                        file.toString(),
+                        "the boundaries for " + challenger.name() + " cannot be computed: " + e.getMessage(),
+                        "",
+                        rates.isEmpty()
+                                ? "Choose fewer looks or another spending function."
+                                : "Choose rates that lie closer together, fewer looks or another spending function.")));
+            }
+        }
+        return planned;
     }
 
     /**
@@ -75,8 +110,15 @@ final class PlannedComparison {
         }
     }
 
-    /** The level of the comparison once some of the other challengers have been found. */
-    record PassedOn(int found, TailLevels levels) {}
+    /**
+     * The levels of the comparison once some of the other challengers have been found, each direction by itself: nobody is
+     * found in both.
+     *
+     * @param found how many others
+     * @param benefit level of the benefit if they were found to be a benefit
+     * @param harm level of harm if they were found to do harm
+     */
+    record PassedOn(int found, double benefit, double harm) {}
 
     /**
      * What a variant brings to the first look.
@@ -98,7 +140,7 @@ final class PlannedComparison {
         }
     }
 
-    private List<Scenario> scenarios(Optional<double[]> rates) {
+    private List<Truth> truths(Optional<double[]> rates) {
         double base = plan.test().baseline();
         double improved = base + plan.test().signedEffect();
         List<Truth> truths = new ArrayList<>();
@@ -109,6 +151,19 @@ final class PlannedComparison {
             double own = each[plan.variantIndex(challenger.name())];
             truths.add(new Truth("rates", "under the given rates", control, own, driftUnder(control, own)));
         });
+        return truths;
+    }
+
+    /** The mirror image of the smallest effect, where harm is tested and rates can be that low or high. */
+    private Optional<Truth> mirrored() {
+        double base = plan.test().baseline();
+        double worse = base - plan.test().signedEffect();
+        return plan.test().harm().isPresent() && worse > 0 && worse < 1
+                ? Optional.of(new Truth("asMuchWorse", "as much worse", base, worse, driftUnder(base, worse)))
+                : Optional.empty();
+    }
+
+    private List<Scenario> scenarios(List<Truth> truths) {
         double[] drifts = truths.stream().mapToDouble(Truth::drift).toArray();
         StopChances[] obeyed = path.obeyed(drifts);
         StopChances[] overruled = plan.futility().isPresent() ? path.overruled(drifts) : obeyed;
@@ -186,14 +241,35 @@ final class PlannedComparison {
         return scenarios.get(1);
     }
 
-    /** Planned trials of all variants at the end, other challengers included. */
+    /** A variant that is as much worse as the smallest effect is better; empty where harm is not tested. */
+    Optional<Scenario> asMuchWorse() {
+        return asMuchWorse;
+    }
+
+    /** Planned trials of every variant at the end, in the plan's order: whole ones, rounded up. */
+    Map<String, Long> trialsPerVariant() {
+        Map<String, Long> trials = new LinkedHashMap<>();
+        double[] shares = plan.sharesIn(plan.epochs().size());
+        for (Variant variant : plan.variants()) {
+            double expected = population() * shares[plan.variantIndex(variant.name())];
+            trials.put(variant.name(), design.trials().getOrDefault(variant.name(), (long) Math.ceil(expected)));
+        }
+        return trials;
+    }
+
+    /** Planned trials of all variants at the end, in whole trials of each. */
+    long plannedTrials() {
+        return trialsPerVariant().values().stream().mapToLong(Long::longValue).sum();
+    }
+
+    /** Expected trials of all variants at the end, other challengers included. */
     double population() {
         return underSmallestEffect().population();
     }
 
     /** Planned trials of all variants by a look. */
     long trials(Look look) {
-        return (long) Math.ceil(population() * look.information());
+        return look.information() == 1 ? plannedTrials() : (long) Math.ceil(population() * look.information());
     }
 
     /** Trials of all variants that have to come in each day for the planned information to be in at the end of the run. */
@@ -245,7 +321,10 @@ final class PlannedComparison {
         for (int other = 0; other < plan.challengers().size(); other++) {
             if (other != own) {
                 found.add(other);
-                levels.add(new PassedOn(found.size(), TailLevels.of(plan, own, found, found)));
+                levels.add(new PassedOn(
+                        found.size(),
+                        TailLevels.of(plan, own, found, Set.of()).benefit(),
+                        TailLevels.of(plan, own, Set.of(), found).harm()));
             }
         }
         return levels;

@@ -10,6 +10,7 @@ import io.tallyward.service.rehearse.RehearsalReport;
 import io.tallyward.service.rehearse.RehearsalRequest;
 import java.nio.file.Path;
 import java.util.List;
+import java.util.Optional;
 import java.util.OptionalLong;
 import me.tongfei.progressbar.ConsoleProgressBarConsumer;
 import me.tongfei.progressbar.ProgressBar;
@@ -57,6 +58,7 @@ final class RehearseCommand extends CommandBase {
             names = "--seed",
             paramLabel = "S",
             defaultValue = "1",
+            converter = Seed.class,
             description = "Where chance starts; same seed, same result (default: ${DEFAULT-VALUE}).")
     private long seed;
 
@@ -103,11 +105,13 @@ final class RehearseCommand extends CommandBase {
                 fixedSplit,
                 !withoutEstimates,
                 threads == null ? processors() : threads);
-        RehearsalReport report = carryOut(prepared(plan, request), !output.json() && System.console() != null);
+        Rehearsal rehearsal = prepared(plan, request);
+        List<PlannedComparison> planned = PlannedComparison.all(file, plan, Optional.empty());
+        RehearsalReport report = carryOut(rehearsal, !output.json() && System.console() != null);
         if (output.json()) {
-            output.line(RehearseJson.object(plan, request, report));
+            output.line(RehearseJson.object(plan, request, report, planned));
         } else {
-            new RehearseText(plan, request, report).lines().forEach(output::line);
+            new RehearseText(plan, request, report, planned).lines().forEach(output::line);
         }
         return ExitCode.FINE;
     }
@@ -157,6 +161,19 @@ final class RehearseCommand extends CommandBase {
             return type.parse()
                     .apply(text)
                     .orElseThrow(() -> new TypeConversionException(text + " (expected: " + type.expected() + ")"));
+        }
+    }
+
+    /** Any 64-bit number. */
+    private static final class Seed implements ITypeConverter<Long> {
+        @Override
+        public Long convert(String text) {
+            try {
+                return Long.valueOf(text);
+            } catch (NumberFormatException e) {
+                throw new TypeConversionException(
+                        text + " (expected: whole number from " + Long.MIN_VALUE + " to " + Long.MAX_VALUE + ")");
+            }
         }
     }
 

@@ -3,6 +3,7 @@ package io.tallyward.service.command;
 import com.fasterxml.jackson.databind.node.ArrayNode;
 import com.fasterxml.jackson.databind.node.ObjectNode;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.service.config.document.ScalarType;
 import io.tallyward.service.rehearse.Ending;
 import io.tallyward.service.rehearse.Mean;
 import io.tallyward.service.rehearse.Rate;
@@ -12,17 +13,19 @@ import io.tallyward.service.rehearse.RehearsalReport.Estimates;
 import io.tallyward.service.rehearse.RehearsalReport.Stop;
 import io.tallyward.service.rehearse.RehearsalRequest;
 import io.tallyward.statistics.proportion.Interval;
+import java.util.List;
 import java.util.Locale;
 
 /**
  * A rehearsal as one JSON object. Beside every figure {@code x} stands its Monte Carlo standard error, {@code
- * xStandardError}, and beside every rate its 95 % interval, {@code xInterval}.
+ * xStandardError}, and beside every rate its 95 % interval, {@code xInterval}. Members are only ever added, at the end.
  */
 final class RehearseJson {
 
     private RehearseJson() {}
 
-    static ObjectNode object(Plan plan, RehearsalRequest request, RehearsalReport report) {
+    static ObjectNode object(
+            Plan plan, RehearsalRequest request, RehearsalReport report, List<PlannedComparison> planned) {
         ObjectNode object = Output.object().put("experiment", plan.experiment()).put("runs", request.runs());
         object.put("seed", request.seed());
         ObjectNode rates = object.putObject("rates");
@@ -31,7 +34,7 @@ final class RehearseJson {
             rates.put(plan.variants().get(i).name(), trueRates[i]);
         }
         object.put("split", request.fixedSplit() ? "fixed" : "random")
-                .put("step", report.step().toString())
+                .put("step", ScalarType.written(report.step()))
                 .put("steps", report.steps())
                 .put("trialsOfFullRun", report.arrivals());
         rate(object, "rejectionRate", report.rejection());
@@ -46,11 +49,18 @@ final class RehearseJson {
         mean(object, "expectedTrials", report.trials());
         mean(object, "expectedDays", report.days());
         ArrayNode challengers = object.putArray("challengers");
-        report.arms().forEach(arm -> challengers.add(challenger(arm)));
+        for (int i = 0; i < planned.size(); i++) {
+            challengers.add(challenger(report.arms().get(i), planned.get(i)));
+        }
+        object.put("alpha", plan.test().alpha())
+                .put("power", plan.test().power())
+                .put("plannedTrials", new OverallNeed(planned).trials());
+        mean(object, "expectedWaitingLooks", report.waited());
+        report.falseAlarm().ifPresent(rate -> rate(object, "falseAlarmRate", rate));
         return object;
     }
 
-    private static ObjectNode challenger(Arm arm) {
+    private static ObjectNode challenger(Arm arm, PlannedComparison planned) {
         ObjectNode object = Output.object().put("variant", arm.variant()).put("trueDifference", arm.trueDifference());
         rate(object, "rejectionRate", arm.rejection());
         for (Ending ending : Ending.values()) {
@@ -61,6 +71,7 @@ final class RehearseJson {
         ArrayNode stops = object.putArray("stops");
         arm.stops().forEach(stop -> stops.add(stop(stop)));
         arm.estimates().ifPresent(estimates -> object.set("estimates", estimates(estimates)));
+        object.put("powerFutilityObeyed", planned.underSmallestEffect().obeyed().power());
         return object;
     }
 

@@ -1,7 +1,6 @@
 package io.tallyward.service.command;
 
 import io.tallyward.engine.plan.Plan;
-import io.tallyward.engine.plan.TestPlan.Sides;
 import io.tallyward.service.config.document.ScalarType;
 import io.tallyward.service.rehearse.Ending;
 import io.tallyward.service.rehearse.Mean;
@@ -21,14 +20,22 @@ final class RehearseText {
     /** More rows than this in the table of stops are put together. */
     private static final int MOST_ROWS = 20;
 
+    /** Stands for an error that these runs do not tell. */
+    private static final String UNKNOWN = "-";
+
     private final Plan plan;
     private final RehearsalRequest request;
     private final RehearsalReport report;
+    private final List<PlannedComparison> planned;
+    private final boolean several;
 
-    RehearseText(Plan plan, RehearsalRequest request, RehearsalReport report) {
+    /** @param planned what the plan means for every challenger */
+    RehearseText(Plan plan, RehearsalRequest request, RehearsalReport report, List<PlannedComparison> planned) {
         this.plan = plan;
         this.request = request;
         this.report = report;
+        this.planned = planned;
+        several = report.arms().size() > 1;
     }
 
     List<String> lines() {
@@ -44,7 +51,7 @@ final class RehearseText {
             lines.addAll(challenger(arm));
         }
         lines.add("");
-        lines.addAll(legend());
+        lines.addAll(new RehearseLegend(plan, report, planned).lines());
         return lines;
     }
 
@@ -57,22 +64,30 @@ final class RehearseText {
                     .append(' ')
                     .append(trueRates[i]);
         }
-        return List.of(
+        List<String> lines = new ArrayList<>(List.of(
                 counted(request.runs(), "run") + ", seed " + request.seed() + "; up to "
                         + counted(report.arrivals(), "unit") + " in "
                         + ScalarType.written(plan.run().atMost()) + ", split "
                         + (request.fixedSplit() ? "exactly as planned" : "at random"),
                 rates.toString(),
-                "counts are looked through every " + ScalarType.written(report.step()) + ", "
-                        + counted(report.steps(), "time") + " in a full run");
+                "counts are considered every " + ScalarType.written(report.step()) + ", "
+                        + counted(report.steps(), "time") + " in a full run"));
+        if (several) {
+            lines.add("a variant whose verdict is told is no longer shown; its units go to the others");
+        }
+        RehearseRemarks.traffic(report, planned).ifPresent(remark -> lines.addAll(BoundariesText.wrapped(remark, 0)));
+        return lines;
     }
 
     private Table whatHappened() {
         Table table = new Table("of all runs", "share", "error", "95 % interval");
-        row(table, "verdict of benefit or harm", report.rejection());
-        row(table, "  benefit", report.benefit());
-        row(table, "  harm", report.harm());
-        row(table, "given up as futile", report.futility());
+        row(table, (several ? "at least one variant with " : "verdict of ") + "benefit or harm", report.rejection());
+        row(table, several ? "  at least one with benefit" : "  benefit", report.benefit());
+        row(table, several ? "  at least one with harm" : "  harm", report.harm());
+        if (several) {
+            report.falseAlarm().ifPresent(rate -> row(table, "  at least one that has no true difference", rate));
+        }
+        row(table, several ? "all given up as futile" : "given up as futile", report.futility());
         row(table, "used up without a finding", report.exhausted());
         row(table, "verdict withheld", report.withheld());
         row(table, "false alarm of the split check", report.mismatch());
@@ -83,6 +98,7 @@ final class RehearseText {
     private Table howLong() {
         Table table = new Table("until the last verdict", "mean", "error");
         row(table, "looks", report.looks(), 2);
+        row(table, "looks that waited", report.waited(), 2);
         row(table, "trials, all variants", report.trials(), 0);
         row(table, "days", report.days(), 2);
         return table;
@@ -91,8 +107,8 @@ final class RehearseText {
     private List<String> challenger(Arm arm) {
         List<String> lines = new ArrayList<>();
         lines.add(arm.variant() + " against " + plan.control().name() + ", true difference "
-                + shortest(arm.trueDifference()));
-        if (report.arms().size() > 1) {
+                + trueDifference(arm.trueDifference()));
+        if (several) {
             lines.addAll(endings(arm).lines());
         }
         lines.addAll(stops(arm).lines());
@@ -131,9 +147,9 @@ final class RehearseText {
                 first == 0 && last == 0
                         ? "without a look"
                         : first == last ? String.valueOf(first) : first + " to " + last);
-        cells.add(String.valueOf(stops.stream().mapToLong(Stop::total).sum()));
+        cells.add(count(stops.stream().mapToLong(Stop::total).sum()));
         for (Ending ending : Ending.values()) {
-            cells.add(String.valueOf(
+            cells.add(count(
                     stops.stream().mapToLong(stop -> stop.runs().get(ending)).sum()));
         }
         table.row(cells.toArray(String[]::new));
@@ -141,92 +157,82 @@ final class RehearseText {
 
     private static Table estimates(Estimates estimates) {
         Table table = new Table(
-                "difference, at the last look", "bias", "error", "too low", "interval holds the truth", "error");
+                "difference in points, at the last look",
+                "bias",
+                "error",
+                "too low",
+                "interval holds the truth",
+                "error");
         table.row(
                 "naive: as observed",
                 signed(estimates.naiveBias().value()),
-                plain(estimates.naiveBias().standardError()),
+                error(estimates.naiveBias()),
                 percent(estimates.naiveTooLow().value()),
                 percent(estimates.naiveCoverage().value()),
-                percent(estimates.naiveCoverage().standardError()));
+                error(estimates.naiveCoverage()));
         table.row(
                 "adjusted: median-unbiased, stage-wise",
                 signed(estimates.adjustedBias().value()),
-                plain(estimates.adjustedBias().standardError()),
+                error(estimates.adjustedBias()),
                 percent(estimates.adjustedTooLow().value()),
                 percent(estimates.stagewiseCoverage().value()),
-                percent(estimates.stagewiseCoverage().standardError()));
+                error(estimates.stagewiseCoverage()));
         return table.row(
                 "repeated confidence interval",
                 "-",
                 "-",
                 "-",
                 percent(estimates.repeatedCoverage().value()),
-                percent(estimates.repeatedCoverage().standardError()));
-    }
-
-    private List<String> legend() {
-        boolean effect = report.arms().stream().anyMatch(arm -> arm.trueDifference() != 0);
-        boolean two = plan.test().sides() == Sides.TWO;
-        List<String> lines = new ArrayList<>(List.of(
-                "error        how far chance in this rehearsal may have moved the figure (one standard error); more runs make it smaller",
-                (effect
-                        ? "verdict      with a true difference this is the chance to find it; the plan asks for "
-                                + percent(plan.test().power()) + " at the smallest effect"
-                        : "verdict      without a true difference every one is a false alarm; the plan allows "
-                                + percent(plan.test().alpha())),
-                "uncorrected  a single-look test at " + percent(plan.test().alpha())
-                        + (two ? ", two-sided" : ", one-sided")
-                        + ", read at every look as if it were the only one: why peeking needs boundaries",
-                "withheld     the data were not trusted at the end, so no verdict was told"));
-        report.arms().stream()
-                .flatMap(arm -> arm.estimates().stream())
-                .findFirst()
-                .ifPresent(estimates -> {
-                    lines.add(
-                            "bias         mean estimate less the truth; a naive estimate exaggerates because runs stop when it is large");
-                    lines.add("too low      share of estimates below the truth: 50 % is right");
-                    lines.add("interval     promises " + percent(estimates.level())
-                            + "; a repeated one at least that, at every look");
-                });
-        return lines;
+                error(estimates.repeatedCoverage()));
     }
 
     private static void row(Table table, String name, Rate rate) {
         table.row(
                 name,
                 percent(rate.value()),
-                percent(rate.standardError()),
+                error(rate),
                 percent(rate.interval().lower()) + " to "
                         + percent(rate.interval().upper()));
     }
 
     private static void row(Table table, String name, Mean mean, int places) {
-        table.row(name, decimals(mean.value(), places), decimals(mean.standardError(), places + 1));
+        table.row(
+                name,
+                decimals(mean.value(), places),
+                mean.count() > 1 ? decimals(mean.standardError(), places + 1) : UNKNOWN);
     }
 
-    private static String percent(double share) {
+    /** What happened never or always has an error too, but these runs do not tell which. */
+    private static String error(Rate rate) {
+        return rate.count() == 0 || rate.count() == rate.of() ? UNKNOWN : percent(rate.standardError());
+    }
+
+    /** The error of a mean difference, in points. */
+    private static String error(Mean difference) {
+        return difference.count() > 1 ? decimals(100 * difference.standardError(), 4) : UNKNOWN;
+    }
+
+    static String percent(double share) {
         return decimals(100 * share, 2) + " %";
     }
 
     private static String signed(double value) {
-        return String.format(Locale.ROOT, "%+.6f", value);
+        return String.format(Locale.ROOT, "%+.4f", 100 * value);
     }
 
-    private static String plain(double value) {
-        return decimals(value, 6);
+    private static String trueDifference(double value) {
+        return value == 0 ? "0" : String.format(Locale.ROOT, "%+.3f points", 100 * value);
     }
 
     private static String decimals(double value, int places) {
-        return String.format(Locale.ROOT, "%." + places + "f", value);
+        return String.format(Locale.ROOT, "%,." + places + "f", value);
     }
 
     private static String counted(long count, String what) {
-        return count + " " + what + (count == 1 ? "" : "s");
+        return count(count) + " " + what + (count == 1 ? "" : "s");
     }
 
-    /** A figure without the noise of binary arithmetic. */
-    private static String shortest(double value) {
-        return String.valueOf(Math.round(value * 1e9) / 1e9);
+    private static String count(long count) {
+        return String.format(Locale.ROOT, "%,d", count);
     }
 }

@@ -77,7 +77,7 @@ final class ReplayCommand extends CommandBase {
         } else {
             new ReplayText(replay).lines().forEach(output::line);
         }
-        replay.rejections().sentences(file).forEach(output::remark);
+        output.problems(replay.rejections().problems(file));
         return ExitCode.FINE;
     }
 

@@ -4,9 +4,11 @@ import io.tallyward.engine.count.Outcome;
 import io.tallyward.engine.count.OutcomeCounts;
 import io.tallyward.engine.decide.ExperimentView;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.TestPlan.Sides;
 import io.tallyward.engine.record.Adjusted;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
+import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
@@ -38,18 +40,33 @@ final class ReplayText {
             lines.addAll(experiment(plan, decisions));
             lines.add("");
         }
-        lines.add("Windows still open at the end of the file are counted too.");
+        lines.addAll(legend());
         lines.add("events read: " + replay.events() + ", rejected: " + rejected());
+        return lines;
+    }
+
+    private List<String> legend() {
+        List<String> lines = new ArrayList<>();
+        lines.add("Windows still open at the end of the file are counted too.");
+        if (replay.decisions().stream()
+                .anyMatch(decision -> !decision.comparisons().isEmpty())) {
+            lines.addAll(BoundariesText.wrapped(
+                    "At each look z, of variant minus control, is held against its boundaries; information is the share of"
+                            + " the planned information that was in. What a comparison ended with rests on the counts of"
+                            + " that look; later ones are in the counts at the end of the file and change no verdict.",
+                    0));
+        }
         return lines;
     }
 
     private List<String> experiment(Plan plan, List<DecisionRecord> decisions) {
         List<String> lines = new ArrayList<>();
         lines.add(plan.experiment() + ": " + standing(plan.experiment(), decisions));
+        lines.add("counts at the end of the file");
         lines.addAll(counts(plan).lines());
         if (decisions.stream().anyMatch(decision -> !decision.comparisons().isEmpty())) {
             lines.addAll(looks(decisions).lines());
-            lines.addAll(estimates(decisions));
+            lines.addAll(estimates(plan, decisions));
         }
         decisions.stream()
                 .filter(decision -> decision.trust() != Trust.SOUND)
@@ -62,12 +79,22 @@ final class ReplayText {
 
     /** What the last record says, whatever its occasion; before the first one, where the experiment stands. */
     private String standing(String experiment, List<DecisionRecord> decisions) {
+        ExperimentView view = replay.views().get(experiment);
+        if (view != null && !view.held().isEmpty()) {
+            return held(view) + ", held because of " + view.trust().code();
+        }
         if (!decisions.isEmpty()) {
             DecisionRecord last = decisions.get(decisions.size() - 1);
             return standing(last.verdict(), last.trust());
         }
-        ExperimentView view = replay.views().get(experiment);
         return view == null ? "no events" : standing(view.verdict(), view.trust());
+    }
+
+    private static String held(ExperimentView view) {
+        return view.held().entrySet().stream()
+                .map(entry -> (view.held().size() > 1 ? entry.getKey() + " " : "")
+                        + entry.getValue().code())
+                .collect(Collectors.joining(", "));
     }
 
     private static String standing(Verdict verdict, Trust trust) {
@@ -126,21 +153,61 @@ final class ReplayText {
     }
 
     /** The estimate of every comparison that has ended, adjusted for its looks, beside the naive one. */
-    private static List<String> estimates(List<DecisionRecord> decisions) {
+    private static List<String> estimates(Plan plan, List<DecisionRecord> decisions) {
         List<String> lines = new ArrayList<>();
         for (DecisionRecord decision : decisions) {
             for (Comparison look : decision.comparisons()) {
+                Verdict verdict = look.held() == null ? look.verdict() : look.held();
                 if (look.adjusted() != null) {
-                    lines.addAll(estimate(look));
+                    lines.addAll(estimate(plan, look));
+                    lines.add(countsThen(plan, decision, look));
+                } else if (verdict == Verdict.STOP_FUTILITY) {
+                    lines.addAll(repeated(look));
+                    lines.add(countsThen(plan, decision, look));
                 }
             }
         }
         return lines;
     }
 
-    private static List<String> estimate(Comparison look) {
+    /** The counts that a comparison ended with. */
+    private static String countsThen(Plan plan, DecisionRecord decision, Comparison look) {
+        List<String> parts = new ArrayList<>();
+        for (String variant : List.of(plan.control().name(), look.variant())) {
+            long trials = 0;
+            long successes = 0;
+            for (VariantCount count : decision.counts()) {
+                if (count.variant().equals(variant)) {
+                    trials += count.trials();
+                    successes += count.successes();
+                }
+            }
+            parts.add(String.format(Locale.ROOT, "%s %,d of %,d trials", variant, successes, trials));
+        }
+        return "successes at that look: " + String.join(", ", parts);
+    }
+
+    /** A stop for futility crosses no boundary: there is no adjusted estimate, and the repeated interval is what is valid. */
+    private static List<String> repeated(Comparison look) {
+        return new Table(look.variant() + ", when it was given up", "estimate", "from", "to")
+                .row(
+                        "difference in points, repeated interval",
+                        points(look.difference()),
+                        points(look.differenceLower()),
+                        points(look.differenceUpper()))
+                .lines();
+    }
+
+    private static String pValue(Plan plan) {
+        if (plan.test().sides() == Sides.ONE) {
+            return "one-sided p";
+        }
+        return plan.test().symmetric() ? "two-sided p" : "two-sided p, weighted";
+    }
+
+    private static List<String> estimate(Plan plan, Comparison look) {
         Adjusted adjusted = look.adjusted();
-        Table table = new Table(look.variant() + ", when it ended", "estimate", "from", "to", "p-value");
+        Table table = new Table(look.variant() + ", when it ended", "estimate", "from", "to", pValue(plan));
         String interval = String.format(Locale.ROOT, "%.4g %%", 100 * adjusted.level());
         table.group("", 1).group("interval, " + interval, 2);
         table.row(

@@ -72,7 +72,7 @@ final class Table {
             String stroke = rest < 2 || group.title().isEmpty() ? " ".repeat(rest) : "-".repeat(rest - 1) + " ";
             line.append(GAP).append(stroke).append(group.title());
         }
-        return line.toString();
+        return line.toString().stripTrailing();
     }
 
     /** Widens the columns of a group until its title fits above them. */

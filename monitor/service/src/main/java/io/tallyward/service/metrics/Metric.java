@@ -103,7 +103,7 @@ enum Metric {
             "tallyward_predictive_power",
             Kind.GAUGE,
             "Probability at that look, given the data so far, that a benefit is found at the planned end; absent when there"
-                    + " is no outlook.",
+                    + " is no outlook and while the data are not trusted.",
             "experiment",
             "variant"),
     ADJUSTED_DIFFERENCE(

@@ -142,12 +142,12 @@ public final class MonitorMetrics {
             }
             Comparison look = view.comparisons().get(challenger.name());
             if (look != null) {
-                comparison(sheet, look, name, challenger.name());
+                comparison(sheet, look, view.trust() == Trust.SOUND, name, challenger.name());
             }
         }
     }
 
-    private static void comparison(Sheet sheet, Comparison look, String... labels) {
+    private static void comparison(Sheet sheet, Comparison look, boolean sound, String... labels) {
         sheet.put(Metric.Z, look.z(), labels);
         sheet.putPresent(Metric.BOUNDARY_UPPER, look.upper(), labels);
         sheet.putPresent(Metric.BOUNDARY_LOWER, look.lower(), labels);
@@ -157,7 +157,7 @@ public final class MonitorMetrics {
         sheet.put(Metric.DIFFERENCE, look.difference(), labels);
         sheet.putPresent(Metric.DIFFERENCE_LOWER, look.differenceLower(), labels);
         sheet.putPresent(Metric.DIFFERENCE_UPPER, look.differenceUpper(), labels);
-        if (look.outlook() != null) {
+        if (look.outlook() != null && sound) {
             sheet.put(Metric.PREDICTIVE_POWER, look.outlook().predictive(), labels);
         }
         if (look.adjusted() != null && look.held() == null) {

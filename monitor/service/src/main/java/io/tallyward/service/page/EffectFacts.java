@@ -23,13 +23,13 @@ final class EffectFacts {
 
     private EffectFacts() {}
 
-    static void write(Markup html, Standing standing, Comparison look) {
+    static void write(Markup html, Standing standing, Variant challenger, Comparison look) {
         html.open("dl", "class", "effect");
         if (look.adjusted() != null) {
             adjusted(html, look.adjusted(), look.held() != null);
         }
         OverviewPage.fact(html, naiveLabel(look), naive(look));
-        level(html, standing, look);
+        level(html, standing, challenger, look);
         if (look.outlook() != null && standing.view().trust() == Trust.SOUND) {
             OverviewPage.fact(html, "Outlook", outlook(look));
         }
@@ -51,7 +51,7 @@ final class EffectFacts {
     }
 
     private static String naiveLabel(Comparison look) {
-        return look.adjusted() == null ? "Difference so far, naive" : "Difference as observed, naive";
+        return ended(look) ? "Difference as observed, naive" : "Difference so far, naive";
     }
 
     private static String naive(Comparison look) {
@@ -62,8 +62,15 @@ final class EffectFacts {
         return text + "; repeated interval " + LookTable.interval(look) + bias(look);
     }
 
+    /** A stop for futility ends a comparison as well, but has no adjusted estimate. */
+    private static boolean ended(Comparison look) {
+        return look.adjusted() != null
+                || look.verdict().settled()
+                || (look.held() != null && look.held().settled());
+    }
+
     private static String bias(Comparison look) {
-        if (look.adjusted() == null) {
+        if (!ended(look)) {
             return "";
         }
         Verdict end = look.held() == null ? look.verdict() : look.held();
@@ -74,8 +81,8 @@ final class EffectFacts {
         };
     }
 
-    private static void level(Markup html, Standing standing, Comparison look) {
-        double initial = initialLevel(standing, look.variant());
+    private static void level(Markup html, Standing standing, Variant challenger, Comparison look) {
+        double initial = initialLevel(standing, challenger);
         if (look.level() > initial + ROUNDING) {
             OverviewPage.fact(
                     html,
@@ -85,16 +92,15 @@ final class EffectFacts {
         }
     }
 
-    private static double initialLevel(Standing standing, String variant) {
-        int challenger =
-                standing.challengers().stream().map(Variant::name).toList().indexOf(variant);
-        TailLevels levels = TailLevels.of(standing.view().plan(), Math.max(0, challenger), Set.of(), Set.of());
+    private static double initialLevel(Standing standing, Variant challenger) {
+        int position = standing.challengers().indexOf(challenger);
+        TailLevels levels = TailLevels.of(standing.view().plan(), position, Set.of(), Set.of());
         return levels.benefit() + levels.harm();
     }
 
     private static String outlook(Comparison look) {
         Outlook outlook = look.outlook();
-        return (look.adjusted() == null ? "Chance" : "If it were carried on: chance")
+        return (ended(look) ? "If it were carried on: chance" : "Chance")
                 + " to find a benefit at the planned end " + Figures.wholePercent(outlook.underTrend())
                 + " if the effect seen so far goes on, " + Figures.wholePercent(outlook.underDesign())
                 + " if it is the smallest worth finding, " + Figures.wholePercent(outlook.withoutEffect())

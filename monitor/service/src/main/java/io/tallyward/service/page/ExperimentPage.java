@@ -137,11 +137,11 @@ final class ExperimentPage {
         html.open("div", "class", "look");
         PathChart.draw(html, path.isEmpty() ? List.of(look) : path, standing.higherIsBetter());
         html.open("div");
-        latest(html, standing, look);
+        latest(html, standing, challenger, look);
         html.close().close();
     }
 
-    private static void latest(Markup html, Standing standing, Comparison look) {
+    private static void latest(Markup html, Standing standing, Variant challenger, Comparison look) {
         html.leaf("p", "At the latest look, number " + look.look() + ":", "class", "note");
         html.open("p", "class", "figures").text("z ").leaf("b", Figures.decimal(look.z()));
         html.text(", " + ZStrip.boundaries(look) + "; information " + Figures.wholePercent(look.informationFraction())
@@ -154,7 +154,7 @@ final class ExperimentPage {
         if (look.reason() != null && !look.reason().isEmpty()) {
             html.leaf("p", "Why: " + Figures.prose(look.reason()), "class", "figures");
         }
-        EffectFacts.write(html, standing, look);
+        EffectFacts.write(html, standing, challenger, look);
     }
 
     private static void outcomes(Markup html, ExperimentView view) {

@@ -40,6 +40,14 @@ final class PlanSection {
                 "a difference of " + Figures.points(test.signedEffect()) + " points from a rate of "
                         + Figures.percent(test.baseline()) + "; "
                         + (standing.higherIsBetter() ? "higher" : "lower") + " is better");
+        course(html, plan);
+        OverviewPage.fact(html, "Plan digest", standing.view().planDigest());
+        OverviewPage.fact(html, "Newest record", standing.view().lastRecord());
+        html.close().close();
+    }
+
+    /** When it is looked at, how long it runs and how events are counted. */
+    private static void course(Markup html, Plan plan) {
         OverviewPage.fact(html, "Looks", schedule(plan.looks()));
         OverviewPage.fact(html, "Run", run(plan));
         OverviewPage.fact(
@@ -48,9 +56,6 @@ final class PlanSection {
                 "by unit, clicks within " + Figures.span(plan.count().attribution()) + ", grace "
                         + Figures.span(plan.count().grace()) + ", windows of "
                         + Figures.span(plan.count().window()));
-        OverviewPage.fact(html, "Plan digest", standing.view().planDigest());
-        OverviewPage.fact(html, "Newest record", standing.view().lastRecord());
-        html.close().close();
     }
 
     private static String test(TestPlan test) {

@@ -31,8 +31,8 @@ final class DirectionRules {
             if (!(Math.abs(sum - alpha.get()) <= ROUNDING)) {
                 test.refuse(
                         PlanKeys.Test.ALPHA,
-                        String.valueOf(alpha.get()),
-                        "the sum of benefit.alpha and harm.alpha, " + sum);
+                        "benefit.alpha + harm.alpha = " + PlanWords.shortest(sum),
+                        "both to add up to test.alpha, " + PlanWords.shortest(alpha.get()));
             }
             return;
         }

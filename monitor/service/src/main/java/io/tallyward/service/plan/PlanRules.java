@@ -183,7 +183,7 @@ final class PlanRules {
         if (interval.compareTo(atMost.get()) > 0) {
             looks.refuse(PlanKeys.Looks.EVERY, written(interval), "at most run.at-most, " + length);
         }
-        if (atMost.get().dividedBy(interval) > MAX_LOOKS) {
+        if (atMost.get().minusMillis(1).dividedBy(interval) >= MAX_LOOKS) {
             looks.refuse(
                     PlanKeys.Looks.EVERY,
                     written(interval),

@@ -26,6 +26,7 @@ public final class PlanWords {
                         : "");
     }
 
+    /** What error is spent by. */
     public static String clock(TestPlan test) {
         return switch (test.clock()) {
             case INFORMATION -> "information: error is spent as information comes in";
@@ -33,6 +34,7 @@ public final class PlanWords {
         };
     }
 
+    /** What the information fraction of a look is measured by. */
     public static String measure(TestPlan test) {
         return switch (test.measure()) {
             case OBSERVED -> "observed: by trials and the success rates seen";
@@ -40,6 +42,7 @@ public final class PlanWords {
         };
     }
 
+    /** When a benefit counts as unlikely, as the rest of a sentence. */
     public static String futility(FutilityPlan rule) {
         if (rule instanceof FutilityPlan.ErrorSpending errors) {
             return "the chance of missing the smallest effect is spent by "

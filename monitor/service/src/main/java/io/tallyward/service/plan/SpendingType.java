@@ -62,7 +62,13 @@ final class SpendingType implements ValueType<Spending> {
                         .map(value -> new Spending(family.get(), value));
             }
         }
-        place.refuse(node, expected());
+        place.refuse(
+                node,
+                expected(),
+                Arrays.stream(Family.values())
+                        .filter(family -> !family.parametric() && family != Family.TABLE)
+                        .map(Family::code)
+                        .toList());
         return Optional.empty();
     }
 

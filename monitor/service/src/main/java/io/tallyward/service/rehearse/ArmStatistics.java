@@ -19,18 +19,22 @@ final class ArmStatistics {
     private final Moments levels = new Moments();
     private final Moments naiveError = new Moments();
     private final Moments adjustedError = new Moments();
-    private long naiveRejections;
-    private long estimates;
-    private long naiveTooLow;
-    private long adjustedTooLow;
-    private long naiveCovers;
-    private long repeatedCovers;
-    private long stagewiseCovers;
+    private final Counters<Count> counts = new Counters<>(Count.class);
+
+    private enum Count {
+        NAIVE_REJECTION,
+        ESTIMATE,
+        NAIVE_TOO_LOW,
+        ADJUSTED_TOO_LOW,
+        NAIVE_COVERS,
+        REPEATED_COVERS,
+        STAGEWISE_COVERS
+    }
 
     void add(RunResult.Arm arm, double trueDifference) {
         at(arm.looks())[arm.ending().ordinal()]++;
         looks.add(arm.looks());
-        naiveRejections += arm.naiveRejection() ? 1 : 0;
+        counts.count(Count.NAIVE_REJECTION, arm.naiveRejection());
         arm.estimate().ifPresent(estimate -> add(estimate, trueDifference));
     }
 
@@ -39,15 +43,15 @@ final class ArmStatistics {
     }
 
     private void add(StopEstimate estimate, double trueDifference) {
-        estimates++;
+        counts.count(Count.ESTIMATE, true);
         levels.add(estimate.level());
         naiveError.add(estimate.naive() - trueDifference);
         adjustedError.add(estimate.adjusted() - trueDifference);
-        naiveTooLow += estimate.naive() < trueDifference ? 1 : 0;
-        adjustedTooLow += estimate.adjusted() < trueDifference ? 1 : 0;
-        naiveCovers += estimate.naiveCovers() ? 1 : 0;
-        repeatedCovers += estimate.repeatedCovers() ? 1 : 0;
-        stagewiseCovers += estimate.stagewiseCovers() ? 1 : 0;
+        counts.count(Count.NAIVE_TOO_LOW, estimate.naive() < trueDifference);
+        counts.count(Count.ADJUSTED_TOO_LOW, estimate.adjusted() < trueDifference);
+        counts.count(Count.NAIVE_COVERS, estimate.naiveCovers());
+        counts.count(Count.REPEATED_COVERS, estimate.repeatedCovers());
+        counts.count(Count.STAGEWISE_COVERS, estimate.stagewiseCovers());
     }
 
     void add(ArmStatistics later) {
@@ -61,13 +65,7 @@ final class ArmStatistics {
         levels.add(later.levels);
         naiveError.add(later.naiveError);
         adjustedError.add(later.adjustedError);
-        naiveRejections += later.naiveRejections;
-        estimates += later.estimates;
-        naiveTooLow += later.naiveTooLow;
-        adjustedTooLow += later.adjustedTooLow;
-        naiveCovers += later.naiveCovers;
-        repeatedCovers += later.repeatedCovers;
-        stagewiseCovers += later.stagewiseCovers;
+        counts.add(later.counts);
     }
 
     RehearsalReport.Arm report(String variant, double trueDifference, long runs) {
@@ -80,10 +78,10 @@ final class ArmStatistics {
                 trueDifference,
                 new Rate(total(Ending.BENEFIT) + total(Ending.HARM), runs),
                 endings,
-                new Rate(naiveRejections, runs),
+                new Rate(counts.get(Count.NAIVE_REJECTION), runs),
                 looks.mean().orElseThrow(),
                 stopList(),
-                estimates == 0 ? Optional.empty() : Optional.of(estimates()));
+                counts.get(Count.ESTIMATE) == 0 ? Optional.empty() : Optional.of(estimates()));
     }
 
     private long total(Ending ending) {
@@ -106,11 +104,16 @@ final class ArmStatistics {
         return new RehearsalReport.Estimates(
                 naiveError.mean().orElseThrow(),
                 adjustedError.mean().orElseThrow(),
-                new Rate(naiveTooLow, estimates),
-                new Rate(adjustedTooLow, estimates),
-                new Rate(naiveCovers, estimates),
-                new Rate(repeatedCovers, estimates),
-                new Rate(stagewiseCovers, estimates),
+                estimated(Count.NAIVE_TOO_LOW),
+                estimated(Count.ADJUSTED_TOO_LOW),
+                estimated(Count.NAIVE_COVERS),
+                estimated(Count.REPEATED_COVERS),
+                estimated(Count.STAGEWISE_COVERS),
                 levels.mean().orElseThrow().value());
+    }
+
+    /** How often among the runs that have an estimate. */
+    private Rate estimated(Count what) {
+        return new Rate(counts.get(what), counts.get(Count.ESTIMATE));
     }
 }

@@ -25,6 +25,8 @@ import java.util.Optional;
  * @param trials trials until then, all variants
  * @param days days until then
  * @param arms one entry per challenger, in the plan's order
+ * @param falseAlarm runs with a verdict of benefit or harm on a challenger without a true difference; empty if each has one
+ * @param waited looks that were due and had to wait for more data
  */
 public record RehearsalReport(
         Duration step,
@@ -41,7 +43,9 @@ public record RehearsalReport(
         Mean looks,
         Mean trials,
         Mean days,
-        List<Arm> arms) {
+        List<Arm> arms,
+        Optional<Rate> falseAlarm,
+        Mean waited) {
 
     public RehearsalReport {
         arms = List.copyOf(arms);
@@ -57,7 +61,8 @@ public record RehearsalReport(
      * @param naivePeeking runs in which an uncorrected test would have rejected at one of the looks at it
      * @param looks looks taken at it
      * @param stops number of runs by the look it ended at, ascending, and ending; look 0 stands for none
-     * @param estimates what was estimated at the look that ended it; empty when left out or when no run had one
+     * @param estimates what was estimated at the look that ended it; empty when left out or when no run had one; runs that
+     *     were given up as futile have none
      */
     public record Arm(
             String variant,

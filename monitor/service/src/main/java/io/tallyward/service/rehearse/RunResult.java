@@ -10,9 +10,10 @@ import java.util.Optional;
  * @param trials trials of all variants until the last verdict was told, or the run ended
  * @param millis how long that took
  * @param mismatch whether the split check raised an alarm
+ * @param waited how many looks were due and had to wait for more data
  * @param arms one entry per challenger, in the plan's order
  */
-record RunResult(int looks, long trials, long millis, boolean mismatch, List<Arm> arms) {
+record RunResult(int looks, long trials, long millis, boolean mismatch, int waited, List<Arm> arms) {
 
     /**
      * How it went for one challenger.
@@ -20,7 +21,8 @@ record RunResult(int looks, long trials, long millis, boolean mismatch, List<Arm
      * @param ending how the comparison ended
      * @param looks looks taken at it; the last is the one at which it stopped
      * @param naiveRejection whether an uncorrected test would have rejected at one of these looks
-     * @param estimate what the last look says; empty without a look, or when estimates are left out
+     * @param estimate what the last look says; empty without a look, after futility, or when estimates are left
+     *     out
      */
     record Arm(Ending ending, int looks, boolean naiveRejection, Optional<StopEstimate> estimate) {
 

@@ -97,7 +97,8 @@ final class RunSimulation {
                     .filter(Challenger::settled)
                     .forEach(challenger -> traffic.leaveOut(challenger.variant()));
         }
-        return result(follower);
+        int waited = shard.views().get(rehearsed.plan().experiment()).looksDelayed();
+        return result(follower, waited);
     }
 
     /** The traffic of a run, from its beginning. */
@@ -127,23 +128,27 @@ final class RunSimulation {
                 windows);
     }
 
-    private RunResult result(Follower follower) {
+    private RunResult result(Follower follower, int waited) {
         long millis = follower.endMillis() - rehearsed.startMillis(0);
         int steps = Math.toIntExact(millis / rehearsed.step().toMillis());
         List<RunResult.Arm> arms = new ArrayList<>(trueDifferences.length);
         for (int i = 0; i < trueDifferences.length; i++) {
             arms.add(arm(follower.challengers().get(i), trueDifferences[i]));
         }
-        return new RunResult(follower.looks(), rehearsed.arrivalsBefore(steps), millis, follower.mismatch(), arms);
+        return new RunResult(
+                follower.looks(), rehearsed.arrivalsBefore(steps), millis, follower.mismatch(), waited, arms);
     }
 
+    /** A stop for futility crosses no boundary, so that there is no estimate adjusted for it. */
     private RunResult.Arm arm(Challenger challenger, double trueDifference) {
         List<Comparison> looks = challenger.looks();
         return new RunResult.Arm(
                 challenger.ending(),
                 looks.size(),
                 looks.stream().anyMatch(this::naivelyRejects),
-                looks.isEmpty() ? Optional.empty() : StopEstimate.of(looks.get(looks.size() - 1), trueDifference));
+                looks.isEmpty() || challenger.ending() == Ending.FUTILITY
+                        ? Optional.empty()
+                        : StopEstimate.of(looks.get(looks.size() - 1), trueDifference));
     }
 
     /** The test somebody would do who knows of no other looks and no other challengers. */

@@ -46,7 +46,7 @@ class BoundariesCommandTest {
     @Test
     void printsReferenceBoundaries() throws IOException {
         JsonNode root = json(PLAN);
-        assertEquals(List.of("experiment", "comparisons", "remarks"), names(root));
+        assertEquals(List.of("experiment", "comparisons", "remarks", "plannedTrials", "trialsPerDay"), names(root));
         assertEquals("quay-banner", root.get("experiment").asText());
         assertEquals(1, root.get("comparisons").size());
         JsonNode comparison = root.get("comparisons").get(0);

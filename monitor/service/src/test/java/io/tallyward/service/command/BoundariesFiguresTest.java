@@ -284,7 +284,7 @@ class BoundariesFiguresTest {
         assertEquals(0.8, effect.get("futilityOverruled").get("benefit").asDouble(), TOLERANCE);
         double power = effect.get("futilityObeyed").get("benefit").asDouble();
         assertTrue(power < 0.75, "power " + power);
-        assertEquals(1, remarks(eager).size());
+        assertEquals(2, remarks(eager).size());
         assertTrue(
                 remarks(eager).get(0).contains("with futility obeyed the power is 0."),
                 remarks(eager).get(0));

@@ -48,20 +48,21 @@ class BoundariesTextTest {
                   futility     the chance of missing the smallest effect is spent by hwang-shih-decani(-2.0); advice
                                that may be overruled at no cost in false alarms
                   looks for    0.12 -> 0.126, +0.600 points or +5.00 % of the rate, with power 0.8
-                  needs        103,355 trials of all variants (bare 51,678, chip 51,678), 3,692 a day to have them
+                  needs        103,356 trials of all variants (bare 51,678, chip 51,678), 3,692 a day to have them
                                within P28D
                   single look  94,075 trials if read once, at the end; looking on the way costs a factor of 1.0987
-                  drift        2.9365, the z to expect at the end with the smallest effect; maximum information
-                               239,533
+                  drift        2.9365 towards the benefit, the z to expect at the end with the smallest effect;
+                               maximum information 239,533
 
                 When to stop
+                                                         benefit
                 look  information   trials  alpha spent  upper z  lower z  futility z
                 ---------------------------------------------------------------------
                 1          0.2000   20,671      5.4e-07   4.8769        -     -0.8465
                 2          0.4000   41,342     0.000394   3.3570        -     -0.0273
                 3          0.6000   62,013     0.003808   2.6803        -      0.6803
                 4          0.8000   82,684     0.012212   2.2898        -      1.3395
-                5          1.0000  103,355     0.025000   2.0310        -           -
+                5          1.0000  103,356     0.025000   2.0310        -           -
 
                 What it takes to stop at that look
                       one-look p  difference in points
@@ -95,11 +96,13 @@ class BoundariesTextTest {
                 What the columns mean
                   look                      number of the look
                   information               share of the planned information that is in at that look
-                  trials                    planned trials of all variants by then
+                  trials                    planned trials of all variants by then, with the smallest effect
                   alpha spent               chance of a false alarm up to and including that look, in the direction
                                             of benefit
-                  upper z                   stop when the z-value of variant minus control is at or above it
-                  lower z                   stop when it is at or below it; - means no stop in that direction
+                  upper z                   stop for benefit when the z-value of variant minus control is at or
+                                            above it
+                  lower z                   stop for harm when it is at or below it; - means no stop in that
+                                            direction
                   futility z                a benefit has become unlikely when it is below it: advice to stop, not
                                             an obligation; none at the last look
                   one-look p                one-sided p-value of a z just at the boundary, as if this were the only
@@ -111,7 +114,9 @@ class BoundariesTextTest {
                   with the smallest effect  if the effect is the smallest worth finding: benefit in the last row is
                                             the power
                   no stop                   planned information used up without any stop
-                  expected                  averages over many runs of this plan, at the end of a run
+                  expected                  averages over many runs of this plan, at the end of a run; how many
+                                            trials bring the same information depends on the rates, so that trials
+                                            and looks need not rise together
                 Looks may come at other moments than planned: the boundaries then follow the information that is in.
                 All figures rest on the planned rates and the normal approximation. The plan's owner decides; not
                 for clinical or safety decisions.

@@ -57,7 +57,7 @@ class CheckCommandTest {
                 check((properties, topics) -> Map.of("views", 4, "clicks", 4)));
         assertEquals(
                 List.of("{\"type\":\"check\",\"config\":\"" + config + "\",\"experiments\":[\"quay-banner\"],"
-                        + "\"brokerChecked\":true,\"topics\":{\"clicks\":4,\"views\":4}}"),
+                        + "\"brokerChecked\":true,\"topics\":{\"clicks\":4,\"views\":4},\"problems\":0}"),
                 check((properties, topics) -> Map.of("views", 4, "clicks", 4), "--json")
                         .out());
     }
@@ -97,11 +97,27 @@ class CheckCommandTest {
         assertEquals(
                 new CommandRun(
                         3,
-                        List.of(),
+                        List.of(
+                                "configuration  fine: " + config,
+                                "plans          fine: quay-banner",
+                                "broker         not as it has to be"),
                         List.of("input topics have different numbers of partitions {clicks=2, views=4} (expected: the "
                                 + "same number, so that the events of a unit meet): give them as many partitions, or "
                                 + "leave all but one out of input.topics in " + config)),
                 check((properties, topics) -> Map.of("views", 4, "clicks", 2)));
+    }
+
+    @Test
+    void saysWhatIsFineWhileTheBrokerIsDown() {
+        TopicLookup down = (properties, topics) -> {
+            throw new IllegalStateException("the broker at 127.0.0.1:9092 does not answer (Timed out waiting for a node"
+                    + " assignment. Call: listNodes): start it");
+        };
+        CommandRun run = check(down);
+        assertEquals(3, run.status());
+        assertEquals("configuration  fine: " + config, run.out().get(0));
+        assertEquals("plans          fine: quay-banner", run.out().get(1));
+        assertEquals(List.of("the broker at 127.0.0.1:9092 does not answer: start it"), run.err());
     }
 
     @Test

@@ -102,7 +102,14 @@ class CommandLineTest {
     @Test
     void refusesArgumentsInSentences() {
         assertRefused("Missing required subcommand. See tallyward --help.");
-        assertRefused("Unmatched argument at index 0: 'wach'. See tallyward --help.", "wach");
+        assertRefused("Unknown command: 'wach'. Did you mean watch? See tallyward --help.", "wach");
+        assertRefused("Unknown command: 'stop'. See tallyward --help.", "stop");
+        assertRefused(
+                "Invalid value for option '--seed': x (expected: whole number from -9223372036854775808 to "
+                        + "9223372036854775807). See tallyward rehearse --help.",
+                "rehearse",
+                "--plan=p",
+                "--seed=x");
         assertRefused("Missing required option: '--config=FILE'. See tallyward watch --help.", "watch");
         assertRefused(
                 "Invalid value for option '--partitions': 0 (expected: whole number from 1 to 4096). "
@@ -112,7 +119,7 @@ class CommandLineTest {
                 "--events=e",
                 "--partitions=0");
         assertRefused(
-                "Invalid value for option '--max-skew': 5m (expected: ISO 8601 duration from PT0S to P1D). "
+                "Invalid value for option '--max-skew': 5m (expected: ISO 8601 duration from PT0S to P1D, such as PT6H). "
                         + "See tallyward replay --help.",
                 "replay",
                 "--plans=p",

@@ -44,7 +44,7 @@ class ReadmeTest {
         List<String> printed =
                 CommandRun.of("boundaries", "--plan", file.toString()).out();
         List<String> shown = blocks("").stream()
-                .filter(block -> block.startsWith("return-prompt: does asking"))
+                .filter(block -> block.startsWith("return-first: does asking"))
                 .flatMap(block -> Arrays.stream(block.split("\n")))
                 .filter(line -> !line.equals(CUT))
                 .toList();
@@ -55,6 +55,23 @@ class ReadmeTest {
             assertTrue(at >= 0, "not printed, or not there: " + line);
             from += at + 1;
         }
+    }
+
+    /** The rehearsal shown, legend aside, is the one that its seed gives. */
+    @Test
+    void showsTheRehearsalThatIsPrinted() throws IOException {
+        String plan = plans().get(0).replaceFirst("looks: \\{every: PT6H\\}.*", "looks: {every: P4D}");
+        Path file = Files.writeString(directory.resolve("quay.yaml"), plan);
+        List<String> shown = blocks("").stream()
+                .filter(block -> block.contains("runs, seed 1;"))
+                .flatMap(String::lines)
+                .toList();
+        assertTrue(shown.size() > 30, "lines shown: " + shown.size());
+        List<String> printed = CommandRun.of(
+                        "rehearse", "--plan", file.toString(), "--runs=1000", "--seed=1", "--rates=wide=0.126")
+                .out();
+        assertEquals(shown, printed.subList(0, shown.size()));
+        assertTrue(printed.get(shown.size() + 1).startsWith("error "), "the legend follows");
     }
 
     private static List<String> plans() throws IOException {

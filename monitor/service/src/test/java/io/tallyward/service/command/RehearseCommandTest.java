@@ -129,21 +129,62 @@ class RehearseCommandTest {
                 run.out().get(1));
         assertEquals("true rates: plain 0.12, wide 0.15", run.out().get(2));
         assertEquals(
-                "counts are looked through every P1D, 20 times in a full run",
+                "counts are considered every P1D, 20 times in a full run",
                 run.out().get(3));
         for (String start : List.of(
                 "verdict of benefit or harm ",
                 "uncorrected peeking would find something ",
                 "trials, all variants ",
-                "wide against plain, true difference 0.03",
+                "looks that waited ",
+                "wide against plain, true difference +3.000 points",
                 "stopped at look ",
                 "naive: as observed ",
                 "adjusted: median-unbiased, stage-wise ",
                 "repeated confidence interval ",
-                "verdict      with a true difference this is the chance to find it; the plan asks for 80.00 %")) {
+                "benefit      with a true benefit this is the chance to find it; the plan asks for 80.00 %")) {
             assertTrue(run.out().stream().anyMatch(line -> line.startsWith(start)), start);
         }
         assertTrue(run("--runs=3").out().stream().anyMatch(line -> line.contains("every one is a false alarm")));
+    }
+
+    /** One variant has an effect and the other has none; the rows say what they count. */
+    @Test
+    void namesRowsForSeveralVariants() throws IOException {
+        Files.writeString(
+                plan,
+                PLAN.replace("wide: {share: 0.5}", "wide: {share: 0.3}, tall: {share: 0.2}")
+                        + "futility: {predictive-power: 0.05}\n");
+        List<String> out = run("--runs=40", "--seed=7", "--rates=wide=0.16").out();
+        for (String start : List.of(
+                "a variant whose verdict is told is no longer shown",
+                "at least one variant with benefit or harm ",
+                "  at least one that has no true difference ",
+                "all given up as futile ",
+                "tall against plain, true difference 0",
+                "verdict      on a variant without a true difference every one is a false alarm",
+                "benefit      of each variant by itself",
+                "futility     runs given up as futile have no adjusted estimate")) {
+            assertTrue(out.stream().anyMatch(line -> line.startsWith(start)), start);
+        }
+        out.forEach(line -> assertTrue(line.length() <= BoundariesText.WIDTH, line));
+        JsonNode root = json("--runs=40", "--seed=7", "--rates=wide=0.16");
+        assertRate(root, "falseAlarmRate");
+        JsonNode tall = root.get("challengers").get(1);
+        assertEquals(
+                tall.get("rejectionRate").asDouble(), root.get("falseAlarmRate").asDouble(), 1e-12);
+        assertTrue(tall.get("powerFutilityObeyed").asDouble() < 0.8);
+        long futile = Math.round(40 * tall.get("futilityRate").asDouble());
+        assertEquals(40 - futile, tall.get("estimates").get("runs").asLong(), "no estimate after futility");
+        assertEquals(0.8, root.get("power").asDouble());
+        assertEquals("P1D", root.get("step").asText());
+    }
+
+    @Test
+    void saysWhereTheTrafficIsTooLittleAndErrorsAreUnknown() {
+        List<String> out = run("--runs=1", "--per-day=10").out();
+        assertTrue(out.stream().anyMatch(line -> line.startsWith("Too little traffic: the plan needs ")));
+        assertTrue(out.stream().anyMatch(line -> line.matches("days +20.00 +-")), out.toString());
+        assertFalse(run("--runs=1").out().stream().anyMatch(line -> line.startsWith("Too little traffic")));
     }
 
     @Test

@@ -112,14 +112,22 @@ class ReplayCommandTest {
                 List.of(
                         events
                                 + ":3: unknown-variant: the plan of quay-banner has no variant \"tall\" (1 of this kind)",
-                        events + ":4: unparsable: the value is not JSON, at byte 0 (2 of this kind)",
+                        events + ":4: unparsable: the value is not JSON, at byte 0 (1 of this kind)",
                         events + ":5: unknown-experiment: no plan names the experiment \"fare-chip\" (1 of this kind)",
+                        events + ":6: unparsable: the value is an array (expected: a JSON object) (1 of this kind)",
                         events + ":7: bad-time: the event time 2026-05-04T00:20:00Z lies more than PT5M ahead of its "
                                 + "receipt at 2026-05-04T00:14:59Z (2 of this kind)",
                         events + ":9: oversized: the record has more than 65536 bytes (1 of this kind)",
                         events + ":10: missing-field: kind at /kind: missing (expected: \"click\" or \"view\") "
                                 + "(1 of this kind)"),
-                run.err());
+                json ? problems(run) : run.err());
+    }
+
+    private static List<String> problems(CommandRun run) {
+        return run.json().stream()
+                .filter(line -> line.get("type").asText().equals("problem"))
+                .map(line -> line.get("message").asText())
+                .toList();
     }
 
     /** The run ends with too little in it for a look: there is one record, of the end, and the text says what it says. */
@@ -146,6 +154,26 @@ class ReplayCommandTest {
                 "quay-banner: " + last.get("verdict").asText() + ", data "
                         + last.get("trust").asText(),
                 text.out().get(0));
+    }
+
+    /** Four of five units are shown the control of an even split; half of all click. */
+    @Test
+    void saysFirstThatAVerdictIsHeld() throws IOException {
+        List<String> lines = new ArrayList<>();
+        for (int unit = 0; unit < 400; unit++) {
+            String variant = unit % 5 == 0 ? "wide" : "plain";
+            lines.add(event("view", variant, "u" + unit, "v" + unit, Stream.time(36 * unit)));
+            if (unit % 2 == 0) {
+                lines.add(event("click", variant, "u" + unit, "c" + unit, Stream.time(36 * unit + 10)));
+            }
+        }
+        Path events = Files.write(directory.resolve("events.jsonl"), lines);
+        List<String> text = CommandRun.of("replay", "--plans", plans.toString(), "--events", events.toString())
+                .out();
+        assertEquals("quay-banner: exhausted, held because of mismatch", text.get(0));
+        assertTrue(
+                text.contains("successes at that look: plain 160 of 320 trials, wide 40 of 80 trials"),
+                text.toString());
     }
 
     @ParameterizedTest
@@ -179,13 +207,13 @@ class ReplayCommandTest {
         assertTrue(
                 run.out().get(0).matches("quay-banner: [a-z-]+, data [a-z]+"),
                 run.out().get(0));
-        assertEquals("variant  epoch  trials  successes    rate", run.out().get(1));
+        assertEquals("counts at the end of the file", run.out().get(1));
+        assertEquals("variant  epoch  trials  successes    rate", run.out().get(2));
+        int legend = run.out().indexOf("Windows still open at the end of the file are counted too.");
+        assertEquals("", run.out().get(legend - 1));
+        assertTrue(run.out().get(legend + 1).startsWith("At each look z, of variant minus control, is held against"));
         assertEquals(
-                List.of(
-                        "",
-                        "Windows still open at the end of the file are counted too.",
-                        "events read: 3000, rejected: none"),
-                run.out().subList(run.out().size() - 3, run.out().size()));
+                "events read: 3000, rejected: none", run.out().get(run.out().size() - 1));
         assertEquals(List.of(), run.err());
     }
 

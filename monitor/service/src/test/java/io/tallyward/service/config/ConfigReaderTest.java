@@ -152,7 +152,7 @@ class ConfigReaderTest {
                         ":7: input.kinds.click: seen (expected: texts that do not mean a view as well)",
                         ":8: input.max-skw: unknown key (expected: topics, start, fields, kinds, max-skew, idle-after, "
                                 + "max-event-bytes). Did you mean input.max-skew?",
-                        ":9: input.idle-after: 5m (expected: ISO 8601 duration from PT1S to P1D)",
+                        ":9: input.idle-after: 5m (expected: ISO 8601 duration from PT1S to P1D, such as PT6H)",
                         ":10: workers: 65 (expected: whole number from 1 to 64)",
                         ":12: http.port: 65536 (expected: whole number from 0 to 65535)",
                         ":13: wokers: unknown key (expected: name, kafka, input, plans, commit-interval, workers, "

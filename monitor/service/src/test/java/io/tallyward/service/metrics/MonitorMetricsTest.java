@@ -7,6 +7,8 @@ import static org.junit.jupiter.api.Assertions.assertTrue;
 import io.tallyward.engine.count.OutcomeCounts;
 import io.tallyward.engine.decide.ExperimentView;
 import io.tallyward.engine.event.RejectReason;
+import io.tallyward.engine.record.Trust;
+import io.tallyward.engine.record.Verdict;
 import io.tallyward.service.status.CountReport;
 import io.tallyward.service.status.CountReport.ExperimentCount;
 import io.tallyward.service.status.Northwater;
@@ -144,6 +146,14 @@ class MonitorMetricsTest {
         }
         assertTrue(text.contains("tallyward_predictive_power" + open + "0.02"));
         assertFalse(text.contains("tallyward_predictive_power" + ended));
+    }
+
+    /** As the page does: what is not trusted has no outlook. */
+    @Test
+    void keepsTheOutlookBackWhileTheDataAreNotTrusted() {
+        board.publishExperiments(
+                0, Map.of("deck-map", Northwater.with(Northwater.deckMapPassedOn(), Verdict.CONTINUE, Trust.LATE)));
+        assertFalse(exposition(board).text().contains("tallyward_predictive_power{"));
     }
 
     @Test

@@ -186,7 +186,7 @@ class PlanReaderTest {
         Map<String, String> refusals = new LinkedHashMap<>();
         refusals.put(
                 "alpha: 0.05, benefit: {alpha: 0.02}, harm: {alpha: 0.02}",
-                "test.alpha: 0.05 (expected: the sum of benefit.alpha and harm.alpha, 0.04)");
+                "test.alpha: benefit.alpha + harm.alpha = 0.04 (expected: both to add up to test.alpha, 0.05)");
         refusals.put(
                 "alpha: 0.05, harm: {alpha: 0.05}",
                 "test.harm.alpha: 0.05 (expected: less than test.alpha, 0.05, so that the other direction has some left)");
@@ -273,6 +273,11 @@ class PlanReaderTest {
                         + "Choose a longer interval."),
                 problems(MINIMAL.replace("PT6H", "PT5M")));
         assertEquals(
+                List.of("bad.yaml:6: looks.every: PT10M (expected: at most 1000 looks in run.at-most, PT166H45M). "
+                        + "Choose a longer interval."),
+                problems(MINIMAL.replace("PT6H", "PT10M").replace("P28D", "PT10005M")),
+                "the end of the run is look 1,001");
+        assertEquals(
                 List.of("bad.yaml:6: looks.every: P29D (expected: at most run.at-most, P28D)"),
                 problems(MINIMAL.replace("PT6H", "P29D")));
     }
@@ -338,6 +343,18 @@ class PlanReaderTest {
                 List.of("bad.yaml:5: test.spending: kim-demets (expected: obrien-fleming, pocock, "
                         + "{hwang-shih-decani: GAMMA}, {kim-demets: RHO} or {table: {FRACTION: SHARE, ..., 1: 1}})"),
                 problems(MINIMAL.replace("0.006", "0.006, spending: kim-demets")));
+    }
+
+    @Test
+    void guessesWhichValueWasMeant() {
+        assertEquals(
+                List.of("bad.yaml:5: test.spending: obrien-flemming (expected: obrien-fleming, pocock, "
+                        + "{hwang-shih-decani: GAMMA}, {kim-demets: RHO} or {table: {FRACTION: SHARE, ..., 1: 1}}). "
+                        + "Did you mean obrien-fleming?"),
+                problems(MINIMAL.replace("0.006", "0.006, spending: obrien-flemming")));
+        assertEquals(
+                List.of("bad.yaml:5: test.clock: calender (expected: information or calendar). Did you mean calendar?"),
+                problems(MINIMAL.replace("0.006", "0.006, clock: calender")));
     }
 
     private static List<String> problems(String text) {

@@ -1,5 +1,7 @@
 package io.tallyward.service.config.document;
 
+import java.util.List;
+
 /**
  * Where a value is being read: its path from the top of the file, and where to say what is wrong with it.
  *
@@ -27,6 +29,16 @@ public record Place(String path, Shape root, Problems problems) {
     /** Refuses the value here, naming it otherwise than by its text. */
     public void refuse(Node node, String found, String expected) {
         problems.add(node.line(), path, found, expected);
+    }
+
+    /** Refuses the value here and names the accepted one that was probably meant. */
+    public void refuse(Node node, String expected, List<String> choices) {
+        String remedy = node instanceof Node.Scalar scalar
+                ? Suggestion.among(scalar.text(), choices)
+                        .map(near -> "Did you mean " + near + "?")
+                        .orElse("")
+                : "";
+        problems.add(node.line(), path, node.describe(), expected, remedy);
     }
 
     static String join(String path, String key) {

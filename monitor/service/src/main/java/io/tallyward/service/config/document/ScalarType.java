@@ -10,20 +10,32 @@ import java.util.Optional;
 import java.util.function.Function;
 import java.util.function.Predicate;
 import java.util.regex.Pattern;
+import java.util.stream.Stream;
 
 /**
  * The type of a value that is written as one piece of text.
  *
  * @param expected what is expected, in words
  * @param parse the value of a text; empty when the text is none
+ * @param choices the texts that are accepted, where they are few and fixed; empty else
  */
-public record ScalarType<T>(String expected, Function<String, Optional<T>> parse) implements ValueType<T> {
+public record ScalarType<T>(String expected, Function<String, Optional<T>> parse, List<String> choices)
+        implements ValueType<T> {
 
     /** The form of names: of experiments, variants and of the service itself. */
     public static final String NAME = "[a-z0-9][a-z0-9-]{0,63}";
 
     private static final Pattern DECIMAL = Pattern.compile("[+-]?(\\d+\\.?\\d*|\\.\\d+)([eE][+-]?\\d{1,3})?");
     private static final Pattern WHOLE = Pattern.compile("-?\\d{1,18}");
+
+    public ScalarType {
+        choices = List.copyOf(choices);
+    }
+
+    /** A type whose texts are too many to list. */
+    public ScalarType(String expected, Function<String, Optional<T>> parse) {
+        this(expected, parse, List.of());
+    }
 
     @Override
     public Optional<T> read(Node node, Place place) {
@@ -33,7 +45,7 @@ public record ScalarType<T>(String expected, Function<String, Optional<T>> parse
                 return value;
             }
         }
-        place.refuse(node, expected);
+        place.refuse(node, expected, choices);
         return Optional.empty();
     }
 
@@ -87,9 +99,17 @@ public record ScalarType<T>(String expected, Function<String, Optional<T>> parse
     /** A length of time of whole milliseconds in a closed range. */
     public static ScalarType<Duration> duration(Duration min, Duration max) {
         return accepted(
-                "ISO 8601 duration from " + written(min) + " to " + written(max),
+                "ISO 8601 duration from " + written(min) + " to " + written(max) + ", such as " + example(min, max),
                 ScalarType::parseDuration,
                 value -> value.compareTo(min) >= 0 && value.compareTo(max) <= 0 && value.getNano() % 1_000_000 == 0);
+    }
+
+    private static String example(Duration min, Duration max) {
+        return Stream.of(Duration.ofHours(6), Duration.ofSeconds(30))
+                .filter(some -> some.compareTo(min) >= 0 && some.compareTo(max) <= 0)
+                .findFirst()
+                .orElse(max)
+                .toString();
     }
 
     /** A moment with its offset from UTC, to the millisecond. */
@@ -113,7 +133,7 @@ public record ScalarType<T>(String expected, Function<String, Optional<T>> parse
 
     /** The same texts, with values of another type. */
     public <U> ScalarType<U> mapped(Function<T, U> mapping) {
-        return new ScalarType<>(expected, text -> parse.apply(text).map(mapping));
+        return new ScalarType<>(expected, text -> parse.apply(text).map(mapping), choices);
     }
 
     /** An RFC 3339 time; empty when the text is none. */
@@ -145,7 +165,8 @@ public record ScalarType<T>(String expected, Function<String, Optional<T>> parse
                 expected,
                 text -> values.stream()
                         .filter(value -> code.apply(value).equals(text))
-                        .findFirst());
+                        .findFirst(),
+                values.stream().map(code).toList());
     }
 
     private static <T> ScalarType<T> accepted(
