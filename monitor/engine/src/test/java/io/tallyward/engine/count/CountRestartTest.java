@@ -211,12 +211,12 @@ class CountRestartTest {
                 .filter(window -> !window.cells().isEmpty())
                 .count();
         assertEquals(
-                sealedWindows, keys.stream().filter(key -> key.kind() == 'S').count(), where);
-        assertTrue(keys.stream().filter(key -> key.kind() == 'H').count() <= 1, where);
-        assertTrue(keys.stream().filter(key -> key.kind() == 'E').count() <= PLANS.size(), where);
+                sealedWindows, keys.stream().filter(key -> key.kind() == 's').count(), where);
+        assertTrue(keys.stream().filter(key -> key.kind() == 'h').count() <= 1, where);
+        assertTrue(keys.stream().filter(key -> key.kind() == 'e').count() <= PLANS.size(), where);
         for (Key key : keys) {
             long sealed = sealedUntil.getOrDefault(key.experiment(), Long.MIN_VALUE);
-            assertTrue(key.kind() != 'O' || key.window() >= sealed, () -> where + ": " + key + " is past " + sealed);
+            assertTrue(key.kind() != 'o' || key.window() >= sealed, () -> where + ": " + key + " is past " + sealed);
         }
     }
 
