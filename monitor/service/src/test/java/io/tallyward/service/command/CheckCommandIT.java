@@ -44,7 +44,12 @@ class CheckCommandIT {
                         config.toString()));
 
         assertEquals(3, run.status());
-        assertEquals(List.of(), run.out());
+        assertEquals(
+                List.of(
+                        "configuration  fine: " + config,
+                        "plans          fine: quay-banner",
+                        "broker         not as it has to be"),
+                run.out());
         assertEquals(1, run.err().size(), () -> run.err().toString());
         assertTrue(
                 run.err()
