@@ -1,9 +1,9 @@
 package io.tallyward.demo.bench;
 
-import io.tallyward.demo.InputTopic;
 import io.tallyward.demo.child.ChildProcess;
 import io.tallyward.demo.child.LoopbackPorts;
 import io.tallyward.demo.child.TiedToParent;
+import io.tallyward.demo.stream.InputTopic;
 import java.io.IOException;
 import java.nio.file.Files;
 import java.nio.file.Path;
