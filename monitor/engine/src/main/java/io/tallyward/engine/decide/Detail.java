@@ -4,6 +4,6 @@ package io.tallyward.engine.decide;
 public enum Detail {
     /** Everything: estimates adjusted for the looks, and the outlook on the rest of the run. */
     FULL,
-    /** Only what decides, without reasons and notices; for rehearsals that count verdicts. */
+    /** Only what decides, without reasons, digests and notices; for rehearsals that count verdicts. */
     BARE
 }

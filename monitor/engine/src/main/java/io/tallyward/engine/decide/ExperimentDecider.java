@@ -233,7 +233,7 @@ final class ExperimentDecider {
 
     private void write(Occasion occasion, List<Comparison> looks) {
         sequence++;
-        DecisionRecord record = RecordDigest.seal(new DecisionRecord(
+        DecisionRecord record = sealed(new DecisionRecord(
                 plan.experiment(),
                 sequence,
                 occasion,
@@ -252,6 +252,11 @@ final class ExperimentDecider {
                 ""));
         lastHash = record.hash();
         decisions.add(record);
+    }
+
+    /** A bare record is counted and thrown away, and needs no digest. */
+    private DecisionRecord sealed(DecisionRecord record) {
+        return detail == Detail.BARE ? record : RecordDigest.seal(record);
     }
 
     private void tell(boolean trustChanged, NoticeWriter.Told told, List<ChallengerTest> settled) {
