@@ -21,8 +21,13 @@ record TailSpending(double upper, double lower) {
      */
     static TailSpending at(Plan plan, TailLevels levels, double time, boolean benefitOpen) {
         double benefit = benefitOpen ? spent(plan.test().benefit(), levels.benefit(), time) : 0;
-        double harm =
-                plan.test().harm().map(tail -> spent(tail, levels.harm(), time)).orElse(0.0);
+        boolean alike = benefitOpen && plan.test().symmetric() && levels.harm() == levels.benefit();
+        double harm = alike
+                ? benefit
+                : plan.test()
+                        .harm()
+                        .map(tail -> spent(tail, levels.harm(), time))
+                        .orElse(0.0);
         return of(plan, benefit, harm);
     }
 
