@@ -3,6 +3,7 @@ package io.tallyward.engine.decide;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.DecisionRecord.Split;
 import io.tallyward.statistics.split.PearsonSplit;
+import io.tallyward.statistics.split.SequentialEvidence;
 import io.tallyward.statistics.split.SequentialSplitTest;
 import java.io.DataInput;
 import java.io.DataOutput;
@@ -33,7 +34,7 @@ final class SplitWatch {
     private double earlierEvidence;
     private PearsonSplit earlierPearson = PearsonSplit.NONE;
     private double logBayesFactor;
-    private double largest;
+    private SequentialEvidence evidence = SequentialEvidence.NONE;
 
     SplitWatch(Plan plan) {
         this.plan = plan;
@@ -50,7 +51,7 @@ final class SplitWatch {
             sum += SequentialSplitTest.logBayesFactor(CONCENTRATION, shares(epoch), trials(counts, epoch));
         }
         logBayesFactor = sum;
-        largest = StrictMath.max(largest, sum);
+        evidence = evidence.after(sum);
     }
 
     /** Leaves a variant out from now on. At least two always stay. */
@@ -106,7 +107,7 @@ final class SplitWatch {
 
     /** The sequential p-value, in (0, 1]; it never rises. */
     double sequentialPValue() {
-        return StrictMath.min(1, StrictMath.exp(-largest));
+        return evidence.pValue();
     }
 
     Split split(CumulativeCounts counts) {
@@ -128,7 +129,7 @@ final class SplitWatch {
 
     void write(DataOutput out) throws IOException {
         out.writeDouble(logBayesFactor);
-        out.writeDouble(largest);
+        out.writeDouble(evidence.largestLogBayesFactor());
         out.writeDouble(earlierEvidence);
         out.writeDouble(earlierPearson.chiSquare());
         out.writeInt(earlierPearson.degreesOfFreedom());
@@ -143,7 +144,7 @@ final class SplitWatch {
 
     void read(DataInput in) throws IOException {
         logBayesFactor = in.readDouble();
-        largest = in.readDouble();
+        evidence = new SequentialEvidence(in.readDouble());
         earlierEvidence = in.readDouble();
         earlierPearson = new PearsonSplit(in.readDouble(), in.readInt(), in.readDouble());
         for (int variant = 0; variant < watched.length; variant++) {
