@@ -63,7 +63,7 @@ public class DecideBenchmark {
 
     private static final String DIGEST = PlanDigest.of(PLAN);
 
-    private static final List<Cell> CELLS = List.of(new Cell(0, 0, 500, 60), new Cell(0, 1, 500, 61));
+    private static final List<Cell> CELLS = List.of(Cell.ofUnits(0, 0, 500, 60), Cell.ofUnits(0, 1, 500, 61));
 
     private static final OutcomeCounts OUTCOMES = new OutcomeCounts.Builder()
             .add(Outcome.TRIAL, 1000)

@@ -5,6 +5,7 @@ import io.tallyward.engine.count.SealCause;
 import io.tallyward.engine.count.TallyUpdate;
 import io.tallyward.engine.count.WindowTally;
 import io.tallyward.engine.count.WindowTally.Cell;
+import io.tallyward.engine.count.WindowTally.SegmentCell;
 import java.io.IOException;
 
 /**
@@ -50,6 +51,7 @@ public final class TallyJson {
     private static void window(JsonGenerator json, WindowTally window) throws IOException {
         json.writeNumberField("startMillis", window.startMillis());
         JsonBytes.list(json, "cells", window.cells(), TallyJson::cell);
+        JsonBytes.list(json, "segments", window.segments(), TallyJson::segment);
         OutcomesJson.write(json, window.outcomes());
     }
 
@@ -58,15 +60,51 @@ public final class TallyJson {
         json.writeNumberField("variant", cell.variant());
         json.writeNumberField("trials", cell.trials());
         json.writeNumberField("successes", cell.successes());
+        if (cell.unitsAreTrials()) {
+            json.writeNullField("clusters");
+            return;
+        }
+        json.writeObjectFieldStart("clusters");
+        json.writeNumberField("units", cell.units());
+        json.writeNumberField("trialSquares", cell.trialSquares());
+        json.writeNumberField("products", cell.products());
+        json.writeNumberField("successSquares", cell.successSquares());
+        json.writeEndObject();
     }
 
     private static WindowTally window(JsonMembers window) {
         return new WindowTally(
-                window.whole("startMillis"), window.list("cells", TallyJson::cell), OutcomesJson.read(window));
+                window.whole("startMillis"),
+                window.list("cells", TallyJson::cell),
+                window.list("segments", TallyJson::segment),
+                OutcomesJson.read(window));
     }
 
     private static Cell cell(JsonMembers cell) {
-        return cell.build(
-                it -> new Cell(it.index("epoch"), it.index("variant"), it.whole("trials"), it.whole("successes")));
+        return cell.build(it -> it.objectOrNull("clusters")
+                .map(clusters -> new Cell(
+                        it.index("epoch"),
+                        it.index("variant"),
+                        clusters.whole("units"),
+                        it.whole("trials"),
+                        it.whole("successes"),
+                        clusters.whole("trialSquares"),
+                        clusters.whole("products"),
+                        clusters.whole("successSquares")))
+                .orElseGet(() -> Cell.ofUnits(
+                        it.index("epoch"), it.index("variant"), it.whole("trials"), it.whole("successes"))));
+    }
+
+    private static void segment(JsonGenerator json, SegmentCell cell) throws IOException {
+        JsonBytes.text(json, "field", cell.field());
+        JsonBytes.text(json, "value", cell.value());
+        json.writeNumberField("epoch", cell.epoch());
+        json.writeNumberField("variant", cell.variant());
+        json.writeNumberField("units", cell.units());
+    }
+
+    private static SegmentCell segment(JsonMembers cell) {
+        return cell.build(it -> new SegmentCell(
+                it.text("field"), it.text("value"), it.index("epoch"), it.index("variant"), it.whole("units")));
     }
 }

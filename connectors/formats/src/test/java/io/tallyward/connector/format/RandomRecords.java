@@ -54,7 +54,7 @@ final class RandomRecords {
                 partitions,
                 random.nextLong(),
                 any(SealCause.values()),
-                list(() -> new WindowTally(random.nextLong(), list(this::cell), outcomes())));
+                list(() -> new WindowTally(random.nextLong(), list(this::cell), list(this::segment), outcomes())));
     }
 
     DecisionRecord decision() {
@@ -145,8 +145,29 @@ final class RandomRecords {
 
     private WindowTally.Cell cell() {
         long trials = count();
+        long successes = trials == 0 ? 0 : random.nextLong(trials + 1);
+        if (random.nextBoolean()) {
+            return WindowTally.Cell.ofUnits(random.nextInt(5), random.nextInt(5), trials, successes);
+        }
+        long products = upTo(successes, Long.MAX_VALUE);
         return new WindowTally.Cell(
-                random.nextInt(5), random.nextInt(5), trials, trials == 0 ? 0 : random.nextLong(trials + 1));
+                random.nextInt(5),
+                random.nextInt(5),
+                upTo(0, trials),
+                trials,
+                successes,
+                upTo(StrictMath.max(trials, products), Long.MAX_VALUE),
+                products,
+                upTo(successes, products));
+    }
+
+    private WindowTally.SegmentCell segment() {
+        return new WindowTally.SegmentCell(
+                word(), word(), random.nextInt(5), random.nextInt(5), upTo(1, Long.MAX_VALUE));
+    }
+
+    private long upTo(long least, long most) {
+        return least + (most == least ? 0 : random.nextLong(most - least));
     }
 
     private OutcomeCounts outcomes() {

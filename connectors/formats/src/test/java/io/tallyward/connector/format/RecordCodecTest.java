@@ -65,7 +65,7 @@ class RecordCodecTest {
     void writesTalliesInTheAgreedForm() {
         WindowTally window = new WindowTally(
                 1_777_852_800_000L,
-                List.of(new WindowTally.Cell(0, 1, 12, 3)),
+                List.of(WindowTally.Cell.ofUnits(0, 1, 12, 3)),
                 OutcomeCounts.of(12, 3, 1, 0, 0, 0, 0, 0, 0));
         TallyUpdate tally =
                 new TallyUpdate("quay-banner", "ab", 1, 4, 1_777_853_100_000L, SealCause.WATERMARK, List.of(window));
@@ -73,7 +73,7 @@ class RecordCodecTest {
                 "{\"experiment\":\"quay-banner\",\"planDigest\":\"ab\",\"partition\":1,\"partitions\":4,"
                         + "\"sealedUntilMillis\":1777853100000,\"cause\":\"watermark\",\"windows\":["
                         + "{\"startMillis\":1777852800000,"
-                        + "\"cells\":[{\"epoch\":0,\"variant\":1,\"trials\":12,\"successes\":3}],"
+                        + "\"cells\":[{\"epoch\":0,\"variant\":1,\"trials\":12,\"successes\":3,\"clusters\":null}],\"segments\":[],"
                         + "\"outcomes\":{\"trial\":12,\"success\":3,\"repeat\":1,\"expired\":0,\"crossover\":0,"
                         + "\"orphan\":0,\"late\":0,\"outside\":0,\"duplicate\":0}}]}",
                 text(TallyJson.write(tally)));

@@ -31,7 +31,7 @@ final class CellCounts {
         List<Cell> cells = new ArrayList<>();
         for (int cell = 0; cell < trials.length; cell++) {
             if (trials[cell] > 0) {
-                cells.add(new Cell(cell / variants, cell % variants, trials[cell], successes[cell]));
+                cells.add(Cell.ofUnits(cell / variants, cell % variants, trials[cell], successes[cell]));
             }
         }
         return cells;

@@ -67,13 +67,7 @@ final class Completeness {
             for (int i = 0; i < cells.size(); i++) {
                 Cell present = cells.get(i);
                 if (present.epoch() == cell.epoch() && present.variant() == cell.variant()) {
-                    cells.set(
-                            i,
-                            new Cell(
-                                    cell.epoch(),
-                                    cell.variant(),
-                                    present.trials() + cell.trials(),
-                                    present.successes() + cell.successes()));
+                    cells.set(i, present.plus(cell));
                     return;
                 }
             }
@@ -86,8 +80,12 @@ final class Completeness {
             for (Cell cell : cells) {
                 out.writeInt(cell.epoch());
                 out.writeInt(cell.variant());
+                out.writeLong(cell.units());
                 out.writeLong(cell.trials());
                 out.writeLong(cell.successes());
+                out.writeLong(cell.trialSquares());
+                out.writeLong(cell.products());
+                out.writeLong(cell.successSquares());
             }
         }
 
@@ -95,7 +93,15 @@ final class Completeness {
             OutcomeCounts outcomes = OutcomeCounts.read(in);
             List<Cell> cells = new ArrayList<>();
             for (int rest = in.readInt(); rest > 0; rest--) {
-                cells.add(new Cell(in.readInt(), in.readInt(), in.readLong(), in.readLong()));
+                cells.add(new Cell(
+                        in.readInt(),
+                        in.readInt(),
+                        in.readLong(),
+                        in.readLong(),
+                        in.readLong(),
+                        in.readLong(),
+                        in.readLong(),
+                        in.readLong()));
             }
             return new Parts(cells, outcomes);
         }

@@ -15,7 +15,9 @@ public record CountRule(CountBy by, Duration attribution, Duration grace, Durati
     /** What one trial is. */
     public enum CountBy {
         /** A unit that was exposed at least once; matches randomisation by unit. */
-        UNIT
+        UNIT,
+        /** A view; the views of a unit are not independent, so variances go by the spread between units. */
+        VIEW
     }
 
     /** How long after the end of a window it is sealed: attribution plus grace. */

@@ -50,7 +50,7 @@ class CountShardSealingTest {
         assertEquals(
                 List.of(new WindowTally(
                         at(0),
-                        List.of(new WindowTally.Cell(0, 1, 1, 0)),
+                        List.of(WindowTally.Cell.ofUnits(0, 1, 1, 0)),
                         new OutcomeCounts.Builder().add(Outcome.TRIAL, 1).build())),
                 update.windows());
     }

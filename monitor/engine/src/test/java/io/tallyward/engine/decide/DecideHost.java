@@ -52,7 +52,7 @@ final class DecideHost {
             long trials = trialsAndSuccesses[2 * variant];
             long successes = trialsAndSuccesses[2 * variant + 1];
             if (trials > 0) {
-                cells.add(new Cell(plan.epochAt(start), variant, trials, successes));
+                cells.add(Cell.ofUnits(plan.epochAt(start), variant, trials, successes));
                 outcomes.add(Outcome.TRIAL, trials).add(Outcome.SUCCESS, successes);
             }
         }

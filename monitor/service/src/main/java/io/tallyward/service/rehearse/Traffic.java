@@ -51,7 +51,7 @@ final class Traffic {
         for (int variant = 0; variant < rates.length; variant++) {
             if (trials[variant] > 0) {
                 long successes = BinomialSampler.draw(random, trials[variant], rates[variant]);
-                cells.add(new Cell(epoch, variant, trials[variant], successes));
+                cells.add(Cell.ofUnits(epoch, variant, trials[variant], successes));
             }
         }
         return cells;
