@@ -2,6 +2,7 @@ package io.tallyward.engine;
 
 import io.tallyward.engine.event.Event;
 import io.tallyward.engine.event.EventKind;
+import java.util.HashMap;
 import java.util.Map;
 
 /** Builds events, timed in minutes from the start of the run. */
@@ -22,6 +23,24 @@ public final class Events {
 
     public static Event click(String experiment, String variant, String unit, String id, double minute) {
         return event(EventKind.CLICK, experiment, variant, unit, id, at(minute));
+    }
+
+    /** The same event with segments: names and values in turn. */
+    public static Event with(Event event, String... namesAndValues) {
+        Map<String, String> segments = new HashMap<>();
+        for (int i = 0; i < namesAndValues.length; i += 2) {
+            segments.put(namesAndValues[i], namesAndValues[i + 1]);
+        }
+        return new Event(
+                event.kind(),
+                event.experiment(),
+                event.variant(),
+                event.unit(),
+                event.source(),
+                event.id(),
+                event.atMillis(),
+                event.viewId(),
+                segments);
     }
 
     public static Event event(

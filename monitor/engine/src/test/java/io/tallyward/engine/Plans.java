@@ -55,6 +55,7 @@ public final class Plans {
     private Duration atLeast = Duration.ZERO;
     private Duration atMost = Duration.ofDays(5);
     private List<AllocationEpoch> epochs = List.of();
+    private List<String> segments = List.of();
 
     private Plans(String experiment) {
         this.experiment = experiment;
@@ -173,6 +174,11 @@ public final class Plans {
         return this;
     }
 
+    public Plans segments(String... fields) {
+        segments = List.of(fields);
+        return this;
+    }
+
     public Plan build() {
         return new Plan(
                 experiment,
@@ -193,7 +199,7 @@ public final class Plans {
                         TestPlan.DEFAULT_MINIMUM_PER_CELL),
                 looks,
                 futility,
-                new SplitCheckPlan(SplitCheckPlan.DEFAULT_ALPHA),
+                new SplitCheckPlan(SplitCheckPlan.DEFAULT_ALPHA, segments),
                 trust,
                 new Run(FROM, atLeast, atMost),
                 epochs);

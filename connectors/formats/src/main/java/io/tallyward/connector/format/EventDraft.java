@@ -5,6 +5,7 @@ import com.fasterxml.jackson.core.JsonToken;
 import io.tallyward.connector.format.Decoded.Accepted;
 import io.tallyward.connector.format.Decoded.Refused;
 import io.tallyward.engine.event.Event;
+import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.event.RejectReason;
 import java.io.IOException;
 import java.util.HashMap;
@@ -22,7 +23,7 @@ final class EventDraft {
     /** Longest text of a field, in UTF-16 characters. */
     static final int MAX_TEXT = 256;
 
-    static final int MAX_SEGMENTS = 8;
+    static final int MAX_SEGMENTS = EventSlot.MOST_SEGMENTS;
     static final int MAX_SEGMENT_TEXT = 64;
 
     private static final EventField[] FIELDS = EventField.values();

@@ -31,6 +31,7 @@ public final class EventSlotReader {
     private final int maxEventBytes;
     private final JsonFactory factory;
     private final PlanNames names;
+    private final NameTable segmentFields;
     private final NameTable kinds;
     private final EventKind[] meanings;
     private final SegmentNames segmentNames = new SegmentNames();
@@ -51,13 +52,14 @@ public final class EventSlotReader {
      *
      * @param mapping where the fields are
      * @param maxEventBytes the largest document that is read, at least 1
-     * @param names the experiments and variants that are known
+     * @param names the experiments and variants that are known, and the segment fields to keep
      */
     public EventSlotReader(EventMapping mapping, int maxEventBytes, PlanNames names) {
         this.pointers = PointerTree.of(mapping.pointers());
         this.maxEventBytes = maxEventBytes;
         this.factory = JsonEventReader.factory(maxEventBytes);
         this.names = names;
+        this.segmentFields = names.segments();
         this.kinds = new NameTable(mapping.kinds().keySet());
         this.meanings = mapping.kinds().values().toArray(EventKind[]::new);
     }
@@ -90,6 +92,7 @@ public final class EventSlotReader {
         boolean plain = false;
         try {
             feed(value, length);
+            slot.clearSegments();
             plain = parser.nextToken() == JsonToken.START_OBJECT && members(pointers, slot) && ended() && finish(slot);
         } catch (IOException notWellFormed) {
             plain = false;
@@ -170,7 +173,7 @@ public final class EventSlotReader {
             return (bit & REQUIRED) == 0;
         }
         if (field == EventField.SEGMENTS) {
-            return token == JsonToken.START_OBJECT && segments();
+            return token == JsonToken.START_OBJECT && segments(slot);
         }
         boolean number = token == JsonToken.VALUE_NUMBER_INT || token == JsonToken.VALUE_NUMBER_FLOAT;
         boolean typed = token == JsonToken.VALUE_STRING || (number && (bit & (TEXT_OR_NUMBER | TIME)) != 0);
@@ -217,8 +220,8 @@ public final class EventSlotReader {
         }
     }
 
-    /** Nothing counts by segment yet; they must be well-formed all the same. */
-    private boolean segments() throws IOException {
+    /** Segments that no plan names must be well-formed all the same. */
+    private boolean segments(EventSlot slot) throws IOException {
         segmentNames.clear();
         JsonToken token = parser.nextToken();
         while (token == JsonToken.FIELD_NAME) {
@@ -231,12 +234,22 @@ public final class EventSlotReader {
                         || !segmentNames.add(name)) {
                     return false;
                 }
+                if (segmentFields.size() > 0) {
+                    keep(name, length, slot);
+                }
             } else if (value != JsonToken.VALUE_NULL) {
                 return false;
             }
             token = parser.nextToken();
         }
         return token == JsonToken.END_OBJECT;
+    }
+
+    private void keep(String name, int length, EventSlot slot) throws IOException {
+        int field = segmentFields.find(name);
+        if (field >= 0) {
+            slot.segment(field, parser.getTextCharacters(), parser.getTextOffset(), length);
+        }
     }
 
     private static boolean isAscii(char[] text, int from, int length) {

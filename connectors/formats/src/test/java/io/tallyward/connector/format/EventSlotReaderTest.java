@@ -26,7 +26,9 @@ class EventSlotReaderTest {
 
     private static final int MAX_BYTES = 4096;
     private static final PlanNames NAMES = new PlanNames(
-            List.of("quay-banner", "deck-map"), List.of(List.of("plain", "wide"), List.of("list", "flat", "deep")));
+            List.of("quay-banner", "deck-map"),
+            List.of(List.of("plain", "wide"), List.of("list", "flat", "deep")),
+            List.of("b", "platform"));
     private static final String VIEW = "{\"kind\":\"view\",\"experiment\":\"quay-banner\",\"variant\":\"wide\","
             + "\"unit\":\"visitor-7\",\"id\":\"e1\",\"at\":\"2026-05-04T06:00:00Z\"}";
 
@@ -93,6 +95,19 @@ class EventSlotReaderTest {
     }
 
     @Test
+    void keepsTheSegmentsThatPlansNameAndNoneOfTheDocumentBefore() {
+        int platform = NAMES.segments().find("platform");
+        int b = NAMES.segments().find("b");
+        String json = VIEW.replace("}", ",\"segments\":{\"c\":\"x\",\"platform\":\"app\",\"b\":null}}");
+        assertTrue(slotReader.read(utf8(json), slot));
+        int place = slot.segment(platform);
+        assertEquals("app", new String(slot.segmentText(place), 0, slot.segmentLength(place)));
+        assertEquals(-1, slot.segment(b));
+        assertTrue(slotReader.read(utf8(VIEW), slot));
+        assertEquals(-1, slot.segment(platform));
+    }
+
+    @Test
     void agreesWithTheFriendlyReaderThroughAnotherMapping() {
         EventMapping mapping = EventMapping.DEFAULT
                 .with(EventField.KIND, "/type")
@@ -110,7 +125,7 @@ class EventSlotReaderTest {
 
     @Test
     void leavesNothingBehindPerDocument() {
-        byte[] json = utf8(VIEW);
+        byte[] json = utf8(VIEW.replace("}", ",\"segments\":{\"platform\":\"app\",\"version\":\"6.3\"}}"));
         ThreadMXBean threads = (ThreadMXBean) ManagementFactory.getThreadMXBean();
         long thread = Thread.currentThread().getId();
         int documents = 20_000;
@@ -143,7 +158,7 @@ class EventSlotReaderTest {
         Event event = assertInstanceOf(Accepted.class, decoded, shown).event();
         int experiment = NAMES.experiment(event.experiment());
         EventSlot expected = new EventSlot();
-        expected.take(event, experiment, NAMES.variant(experiment, event.variant()));
+        expected.take(event, experiment, NAMES.variant(experiment, event.variant()), NAMES.segments());
         assertTrue(slot.holdsTheSameAs(expected), shown);
     }
 
@@ -191,8 +206,9 @@ class EventSlotReaderTest {
             case AT, RECEIVED -> time(random);
             case SOURCE -> "\"web\"";
             case SEGMENTS ->
-                "{\"platform\":\"phone\",\"" + "abcdefgh".charAt(random.nextInt(8)) + "\":\"x\",\"b\":"
-                        + (random.nextInt(10) == 0 ? any(random) : "\"y\"") + "}";
+                "{\"platform\":\"" + (random.nextBoolean() ? "phone" : "web") + "\",\""
+                        + "abcdefgh".charAt(random.nextInt(8)) + "\":\"x\",\"b\":"
+                        + (random.nextInt(10) == 0 ? any(random) : "\"y" + random.nextInt(3) + "\"") + "}";
         };
     }
 

@@ -62,10 +62,10 @@ public final class CountShard {
         watermarks = new Watermarks(sources, settings.idleAfter().toMillis());
         state = new CountState(partitions, hasher.keyFingerprint());
         tallies = new SealedTallies(partition, partitions);
-        for (Plan plan : plans) {
-            counters.put(plan.experiment(), new ExperimentCounter(plan));
-        }
         names = new PlanNames(plans);
+        for (Plan plan : plans) {
+            counters.put(plan.experiment(), new ExperimentCounter(plan, names.segments()));
+        }
         countersByPosition = counters.values().toArray(ExperimentCounter[]::new);
         for (RejectReason reason : RejectReason.values()) {
             rejected.put(reason, 0L);
@@ -105,7 +105,7 @@ public final class CountShard {
         if (variant < 0) {
             return Optional.of(reject(RejectReason.UNKNOWN_VARIANT));
         }
-        slot.take(event, experiment, variant);
+        slot.take(event, experiment, variant, names.segments());
         return apply(source, recordTimestampMillis, slot);
     }
 
@@ -213,6 +213,7 @@ public final class CountShard {
         List<StateChange> changes = new ArrayList<>(sealedState);
         sealedState.clear();
         for (ExperimentCounter counter : counters.values()) {
+            changes.addAll(CountState.segments(counter));
             changes.addAll(state.open(counter));
             if (counter.takeChanged()) {
                 changes.add(CountState.experiment(counter));

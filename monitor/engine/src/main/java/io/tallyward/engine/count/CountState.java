@@ -15,11 +15,13 @@ import java.util.Map;
 import java.util.TreeMap;
 
 /**
- * The durable form of a COUNT shard. Four kinds of entry, told apart by the first byte of the key:
+ * The durable form of a COUNT shard. Five kinds of entry, told apart by the first byte of the key:
  *
  * <ul>
  *   <li>shard: what must not change (partitions, key of the unit hash), watermarks and reject counts, one entry, rewritten;
  *   <li>experiment: how far it is sealed and its outcomes, one entry each, rewritten;
+ *   <li>segments: combinations of segment values that were new in one commit, written once, before the units that refer to
+ *       them; and the values that are told, one entry, rewritten;
  *   <li>open units: those that changed in one commit, packed by the window in which they fall due; a later entry holds the
  *       later version of a unit;
  *   <li>sealed units: those of one window, packed; when a window is sealed, its open entries are removed.
@@ -31,6 +33,7 @@ final class CountState {
 
     private static final byte SHARD = 'h';
     private static final byte EXPERIMENT = 'e';
+    private static final byte SEGMENTS = 'g';
     private static final byte OPEN = 'o';
     private static final byte SEALED = 's';
 
@@ -79,6 +82,21 @@ final class CountState {
                 window.getValue().write(out);
             }
         }));
+    }
+
+    /** Segments that are new since the last commit. */
+    static List<StateChange> segments(ExperimentCounter counter) {
+        List<StateChange> changes = new ArrayList<>();
+        counter.segments()
+                .ifPresent(table -> table.takeNew(PACKED_BYTES, (sequence, packed) -> {
+                    byte[] key = pack(out -> {
+                        out.writeByte(SEGMENTS);
+                        out.writeUTF(counter.plan().experiment());
+                        out.writeInt(sequence);
+                    });
+                    changes.add(new StateChange(key, packed));
+                }));
+        return changes;
     }
 
     /** Open units that changed since the last commit. */
@@ -139,6 +157,8 @@ final class CountState {
             ExperimentCounter counter = counters.get(experiment);
             if (kind == EXPERIMENT) {
                 restoreExperiment(value, counter);
+            } else if (kind == SEGMENTS) {
+                restoreSegments(keyIn.readInt(), value, counter);
             } else if (kind == OPEN) {
                 restoreOpen(experiment, keyIn.readLong(), keyIn.readInt(), value, counter);
             } else if (kind == SEALED) {
@@ -146,7 +166,7 @@ final class CountState {
             } else {
                 throw new IllegalStateException(
                         "stored counts: entry of unknown kind " + kind
-                                + " (expected: h, e, o or s); the state was written by another version, whose state topics have to be removed");
+                                + " (expected: h, e, g, o or s); the state was written by another version, whose state topics have to be removed");
             }
         } catch (IOException e) {
             throw new UncheckedIOException("stored counts: an entry is cut short", e);
@@ -190,6 +210,12 @@ final class CountState {
             unsealed.put(window, OutcomeCounts.read(in));
         }
         counter.restore(sealedUntil, outcomes, unsealed);
+    }
+
+    private static void restoreSegments(int sequence, byte[] value, ExperimentCounter counter) throws IOException {
+        if (counter != null && counter.segments().isPresent()) {
+            counter.segments().get().restore(sequence, reader(value));
+        }
     }
 
     private void restoreOpen(String experiment, long window, int sequence, byte[] value, ExperimentCounter counter)

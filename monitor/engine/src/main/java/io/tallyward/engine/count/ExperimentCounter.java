@@ -1,11 +1,14 @@
 package io.tallyward.engine.count;
 
+import io.tallyward.engine.count.WindowTally.SegmentCell;
 import io.tallyward.engine.event.EventSlot;
+import io.tallyward.engine.event.NameTable;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanDigest;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.TreeMap;
 
 /**
@@ -19,6 +22,7 @@ final class ExperimentCounter {
     private final long windowMillis;
     private final long sealDelayMillis;
     private final long runEnd;
+    private final Optional<SegmentTable> segments;
     private final Ledger ledger;
 
     private long sealedUntil;
@@ -29,7 +33,8 @@ final class ExperimentCounter {
     /** How far the events of this process reached; a file replay ends there. */
     private long reach;
 
-    ExperimentCounter(Plan plan) {
+    /** @param fields the segment fields that any plan names */
+    ExperimentCounter(Plan plan, NameTable fields) {
         this.plan = plan;
         planDigest = PlanDigest.of(plan);
         windowMillis = plan.count().window().toMillis();
@@ -37,7 +42,9 @@ final class ExperimentCounter {
         runEnd = plan.run().end().toEpochMilli();
         sealedUntil = plan.run().from().toEpochMilli();
         reach = sealedUntil;
-        ledger = new Ledger(plan);
+        List<String> named = plan.splitCheck().segments();
+        segments = named.isEmpty() ? Optional.empty() : Optional.of(new SegmentTable(named, fields));
+        ledger = new Ledger(plan, segments);
     }
 
     /** A window that was just sealed, with the units whose trials fell into it, packed. */
@@ -57,6 +64,11 @@ final class ExperimentCounter {
 
     Ledger ledger() {
         return ledger;
+    }
+
+    /** The segments that were seen, if the plan names any. */
+    Optional<SegmentTable> segments() {
+        return segments;
     }
 
     /** Takes an event of a known variant; returns whether it lies inside the run. */
@@ -141,16 +153,21 @@ final class ExperimentCounter {
         OutcomeCounts.Builder settled = new OutcomeCounts.Builder();
         SealedChunks units = new SealedChunks(ledger.sealed());
         CellCounts cells = new CellCounts(plan);
-        ledger.seal(windowStart, settled, (high, low, variant, first, success) -> {
+        Optional<SegmentCounts> bySegment = segments.map(table -> new SegmentCounts(plan, table));
+        ledger.seal(windowStart, settled, (high, low, variant, first, success, code) -> {
             units.add(high, low, variant, first, success);
             cells.add(variant, first, success);
+            if (bySegment.isPresent()) {
+                bySegment.get().add(variant, first, code);
+            }
         });
         OutcomeCounts fromLedger = settled.build();
         finalOutcomes.add(fromLedger);
         OutcomeCounts.Builder told = unsealedOutcomes.remove(windowStart);
         OutcomeCounts outcomes =
                 told == null ? fromLedger : told.add(fromLedger).build();
-        return new Sealed(new WindowTally(windowStart, cells.list(), outcomes), units.take());
+        List<SegmentCell> traced = bySegment.map(SegmentCounts::list).orElse(List.of());
+        return new Sealed(new WindowTally(windowStart, cells.list(), traced, outcomes), units.take());
     }
 
     /** Final outcomes of all events so far, sealed windows or not. */

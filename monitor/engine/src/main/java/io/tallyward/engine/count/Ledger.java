@@ -5,6 +5,7 @@ import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.plan.Plan;
 import java.io.DataInput;
 import java.io.IOException;
+import java.util.Optional;
 import java.util.TreeMap;
 
 /**
@@ -17,6 +18,7 @@ final class Ledger {
     private final long windowMillis;
     private final long sealDelayMillis;
 
+    private final Optional<SegmentTable> segments;
     private final OpenUnits open;
     private final SealedUnits sealed;
     private final TreeMap<Long, PrefixList> due = new TreeMap<>();
@@ -29,12 +31,14 @@ final class Ledger {
 
     private PrefixList lastDuePrefixes;
 
-    Ledger(Plan plan) {
+    /** @param segments where the segments of exposures are, if the plan names any */
+    Ledger(Plan plan, Optional<SegmentTable> segments) {
+        this.segments = segments;
         attributionMillis = plan.count().attribution().toMillis();
         windowMillis = plan.count().window().toMillis();
         sealDelayMillis = plan.count().sealDelayMillis();
         long runFrom = plan.run().from().toEpochMilli();
-        open = new OpenUnits(runFrom, plan.variants().size());
+        open = new OpenUnits(runFrom, plan.variants().size(), segments.isPresent());
         sealed = new SealedUnits(runFrom);
         restoring = new OpenUnit(plan.variants().size());
     }
@@ -42,7 +46,8 @@ final class Ledger {
     /** Takes a unit whose trial has become final. */
     @FunctionalInterface
     interface Settled {
-        void take(long high, long low, int variant, long first, boolean success);
+        /** @param segments code of the segments of the unit's first exposure */
+        void take(long high, long low, int variant, long first, boolean success, int segments);
     }
 
     /** Takes an open unit that has changed; the unit is valid during the call only. */
@@ -87,8 +92,9 @@ final class Ledger {
                 return Outcome.LATE;
             }
             unit.exposeAgain(event.variant());
-        } else {
-            unit.expose(event.variant(), event.atMillis(), event.tie(), attributionMillis);
+        } else if (unit.expose(event.variant(), event.atMillis(), event.tie(), attributionMillis)
+                && segments.isPresent()) {
+            unit.segments(segments.get().code(event));
         }
         if (!had || windowOf(before) != windowOf(unit.first())) {
             dueAt(windowOf(unit.first()), high);
@@ -190,7 +196,7 @@ final class Ledger {
             unit.settle(sealAt, outcomes);
             boolean success = unit.successful(sealAt);
             sealed.add(open.high(), open.low(), unit.variant(), unit.first(), success);
-            settled.take(open.high(), open.low(), unit.variant(), unit.first(), success);
+            settled.take(open.high(), open.low(), unit.variant(), unit.first(), success, unit.segments());
             open.remove();
             return true;
         }

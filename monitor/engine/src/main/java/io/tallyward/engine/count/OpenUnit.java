@@ -22,6 +22,7 @@ final class OpenUnit {
     private int variant = NO_TRIAL;
     private long first;
     private int firstTie;
+    private int segments;
 
     private final int[] exposures;
     private final int[] tooLate;
@@ -74,15 +75,28 @@ final class OpenUnit {
      * the order of arrival does not matter.
      *
      * @param tie the event's digest, compared without sign
+     * @return whether it is the exposure that stands now; what is known of the segments is then of another one
      */
-    void expose(int exposedVariant, long atMillis, int tie, long attributionMillis) {
+    boolean expose(int exposedVariant, long atMillis, int tie, long attributionMillis) {
         exposures[exposedVariant]++;
-        if (!hasTrial() || isEarlier(exposedVariant, atMillis, tie)) {
+        boolean stands = !hasTrial() || isEarlier(exposedVariant, atMillis, tie);
+        if (stands) {
             variant = exposedVariant;
             first = atMillis;
             firstTie = tie;
             foldClicksAfter(atMillis + attributionMillis);
         }
+        return stands;
+    }
+
+    /** Code of the standing first exposure's segments; 0 where the plan names none. */
+    int segments() {
+        return segments;
+    }
+
+    /** Sets the code of the standing first exposure's segments. */
+    void segments(int code) {
+        segments = code;
     }
 
     /** Adds an exposure that came too late to stand, even where it ties with the one that does. */
@@ -224,6 +238,7 @@ final class OpenUnit {
         variant = NO_TRIAL;
         first = 0;
         firstTie = 0;
+        segments = 0;
         clicks = 0;
         Arrays.fill(exposures, 0);
         Arrays.fill(tooLate, 0);
@@ -236,6 +251,7 @@ final class OpenUnit {
         copy.variant = variant;
         copy.first = first;
         copy.firstTie = firstTie;
+        copy.segments = segments;
         System.arraycopy(exposures, 0, copy.exposures, 0, exposures.length);
         System.arraycopy(tooLate, 0, copy.tooLate, 0, tooLate.length);
         System.arraycopy(surplus, 0, copy.surplus, 0, surplus.length);
@@ -308,6 +324,7 @@ final class OpenUnit {
         if (hasTrial()) {
             out.writeLong(first);
             out.writeInt(firstTie);
+            VariableLength.write(out, segments);
         }
         for (int i = 0; i < exposures.length; i++) {
             VariableLength.write(out, exposures[i]);
@@ -329,6 +346,7 @@ final class OpenUnit {
         if (hasTrial()) {
             first = in.readLong();
             firstTie = in.readInt();
+            segments = VariableLength.read(in);
         }
         for (int i = 0; i < exposures.length; i++) {
             exposures[i] = VariableLength.read(in);

@@ -14,12 +14,12 @@ import java.util.Map;
  */
 final class OpenUnits {
 
-    /** Row beside the hash: six bytes of state, four of digest, four for its list of events. */
+    /** Row beside the hash: six bytes of state, four of digest, four for its list of events, two of segments if need be. */
     private static final int STATE = 6;
 
     private static final int TIE = STATE;
     private static final int EVENTS = TIE + Integer.BYTES;
-    private static final int PAYLOAD = EVENTS + Integer.BYTES;
+    private static final int SEGMENTS = EVENTS + Integer.BYTES;
 
     /** State: 35 bits of first exposure, 4 of variant plus one, 7 of exposures, and two marks. */
     private static final int EXPOSURE_BITS = 7;
@@ -43,14 +43,17 @@ final class OpenUnits {
 
     private final long runFrom;
     private final int variants;
-    private final HashedRows rows = new HashedRows(PAYLOAD);
+    private final boolean bySegment;
+    private final HashedRows rows;
     private final EventPool events = new EventPool();
     private final Map<UnitHash, OpenUnit> rich = new HashMap<>();
     private final OpenUnit working;
 
-    OpenUnits(long runFrom, int variants) {
+    OpenUnits(long runFrom, int variants, boolean bySegment) {
         this.runFrom = runFrom;
         this.variants = variants;
+        this.bySegment = bySegment;
+        rows = new HashedRows(bySegment ? SEGMENTS + Short.BYTES : SEGMENTS);
         working = new OpenUnit(variants);
     }
 
@@ -109,6 +112,9 @@ final class OpenUnits {
                     (int) INTS.get(bytes, at + TIE),
                     (int) (state >>> 2) & MOST_EXPOSURES);
         }
+        if (bySegment) {
+            working.segments((short) SHORTS.get(bytes, at + SEGMENTS));
+        }
         for (int list = list(bytes, at); list != EventPool.NONE; list = events.next(list)) {
             restore(events.first(list), events.second(list));
         }
@@ -151,6 +157,9 @@ final class OpenUnits {
             list = pool(unit);
         }
         put(state, unit.firstTie(), list);
+        if (bySegment) {
+            SHORTS.set(rows.bytes(), rows.payload() + SEGMENTS, (short) unit.segments());
+        }
         return (before & CHANGED) == 0;
     }
 

@@ -12,6 +12,9 @@ import java.util.zip.CRC32;
  */
 public final class EventSlot {
 
+    /** Most segments of one event. */
+    public static final int MOST_SEGMENTS = 8;
+
     private static final int ASCII_END = 0x80;
 
     private final CRC32 crc = new CRC32();
@@ -23,6 +26,11 @@ public final class EventSlot {
     private byte[] id = new byte[256];
     private int tie;
     private long atMillis;
+
+    private final int[] segmentFields = new int[MOST_SEGMENTS];
+    private final int[] segmentLengths = new int[MOST_SEGMENTS];
+    private final char[][] segmentTexts = new char[MOST_SEGMENTS][];
+    private int segments;
 
     /** Sets what happened. */
     public void kind(EventKind happened) {
@@ -55,6 +63,48 @@ public final class EventSlot {
         return ascii;
     }
 
+    /** Forgets the segments of the event before. */
+    public void clearSegments() {
+        segments = 0;
+    }
+
+    /**
+     * Adds a segment.
+     *
+     * @param field position of its name among the fields that plans name
+     */
+    public void segment(int field, char[] text, int from, int length) {
+        if (segments == MOST_SEGMENTS) {
+            throw new IllegalStateException("segments: more than " + MOST_SEGMENTS + " (expected: at most that many)");
+        }
+        if (segmentTexts[segments] == null || segmentTexts[segments].length < length) {
+            segmentTexts[segments] = new char[Math.max(64, length)];
+        }
+        System.arraycopy(text, from, segmentTexts[segments], 0, length);
+        segmentFields[segments] = field;
+        segmentLengths[segments++] = length;
+    }
+
+    /** Where the slot keeps the segment of a field, or -1 when the event has none. */
+    public int segment(int field) {
+        for (int i = 0; i < segments; i++) {
+            if (segmentFields[i] == field) {
+                return i;
+            }
+        }
+        return -1;
+    }
+
+    /** Characters of a segment that is kept here; only the first {@link #segmentLength} belong to it. */
+    public char[] segmentText(int place) {
+        return segmentTexts[place];
+    }
+
+    /** How many characters a segment has that is kept here. */
+    public int segmentLength(int place) {
+        return segmentLengths[place];
+    }
+
     private static byte[] room(byte[] bytes, int length) {
         return bytes.length < length ? new byte[length] : bytes;
     }
@@ -75,8 +125,12 @@ public final class EventSlot {
         tie = (int) crc.getValue();
     }
 
-    /** Takes an event whose experiment and variant have the given positions. */
-    public void take(Event event, int experimentIndex, int variantIndex) {
+    /**
+     * Takes an event whose experiment and variant have the given positions.
+     *
+     * @param fields the segment fields that plans name; others are left
+     */
+    public void take(Event event, int experimentIndex, int variantIndex, NameTable fields) {
         kind = event.kind();
         place(experimentIndex, variantIndex);
         unit = event.unit().getBytes(StandardCharsets.UTF_8);
@@ -84,6 +138,16 @@ public final class EventSlot {
         byte[] name = event.id().getBytes(StandardCharsets.UTF_8);
         digest(name, name.length);
         atMillis = event.atMillis();
+        clearSegments();
+        if (fields.size() > 0) {
+            event.segments().forEach((field, value) -> takeSegment(fields.find(field), value));
+        }
+    }
+
+    private void takeSegment(int field, String value) {
+        if (field >= 0) {
+            segment(field, value.toCharArray(), 0, value.length());
+        }
     }
 
     /** What happened. */
@@ -137,6 +201,23 @@ public final class EventSlot {
                 && variant == other.variant
                 && tie == other.tie
                 && atMillis == other.atMillis
-                && Arrays.equals(unit, 0, unitLength, other.unit, 0, other.unitLength);
+                && Arrays.equals(unit, 0, unitLength, other.unit, 0, other.unitLength)
+                && holdsTheSameSegmentsAs(other);
+    }
+
+    private boolean holdsTheSameSegmentsAs(EventSlot other) {
+        boolean same = segments == other.segments;
+        for (int i = 0; i < segments && same; i++) {
+            int place = other.segment(segmentFields[i]);
+            same = place >= 0
+                    && Arrays.equals(
+                            segmentTexts[i],
+                            0,
+                            segmentLengths[i],
+                            other.segmentTexts[place],
+                            0,
+                            other.segmentLengths[place]);
+        }
+        return same;
     }
 }

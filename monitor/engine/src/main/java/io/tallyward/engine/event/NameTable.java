@@ -13,6 +13,7 @@ public final class NameTable {
 
     private final String[] names;
     private final int[] indices;
+    private final int size;
 
     /** @param names different names; each is found by its position here */
     public NameTable(Collection<String> names) {
@@ -31,6 +32,12 @@ public final class NameTable {
             this.names[slot] = name;
             indices[slot] = index++;
         }
+        size = index;
+    }
+
+    /** How many names there are. */
+    public int size() {
+        return size;
     }
 
     /** Position of the name that some characters spell, or -1 when there is none. */
@@ -51,7 +58,14 @@ public final class NameTable {
 
     /** Position of a name, or -1 when it is not in the list. */
     public int find(String name) {
-        return find(name.toCharArray(), 0, name.length());
+        int slot = name.hashCode() & names.length - 1;
+        while (names[slot] != null) {
+            if (names[slot].equals(name)) {
+                return indices[slot];
+            }
+            slot = slot + 1 & names.length - 1;
+        }
+        return -1;
     }
 
     private static boolean spells(char[] text, int from, int length, String name) {

@@ -25,7 +25,7 @@ public final class PlanDigest {
         addTest(digest, plan.test());
         addLooks(digest, plan.looks());
         digest.text(plan.futility().map(FutilityPlan::code).orElse("none"));
-        digest.real(plan.splitCheck().alpha());
+        addSplitCheck(digest, plan.splitCheck());
         digest.real(plan.trust().crossoverShare())
                 .real(plan.trust().lateShare())
                 .number(plan.trust().starvedAfter().toMillis());
@@ -40,6 +40,15 @@ public final class PlanDigest {
             }
         }
         return digest.hex();
+    }
+
+    /** A plan without segments has the digest that it had before there were any. */
+    private static void addSplitCheck(Digest digest, SplitCheckPlan splitCheck) {
+        digest.real(splitCheck.alpha());
+        if (!splitCheck.segments().isEmpty()) {
+            digest.text("segments").number(splitCheck.segments().size());
+            splitCheck.segments().forEach(digest::text);
+        }
     }
 
     private static void addTest(Digest digest, TestPlan test) {

@@ -29,6 +29,7 @@ final class CountOracle {
 
     private final Map<String, Plan> plans = new HashMap<>();
     private final Map<String, Map<Place, Count>> cells = new HashMap<>();
+    private final Map<String, Map<String, Map<Place, Long>>> segments = new HashMap<>();
     private final Map<String, OutcomeCounts.Builder> outcomes = new HashMap<>();
     private final Map<RejectReason, Long> rejected = new EnumMap<>(RejectReason.class);
 
@@ -44,6 +45,7 @@ final class CountOracle {
         for (Plan plan : plans) {
             this.plans.put(plan.experiment(), plan);
             cells.put(plan.experiment(), new TreeMap<>());
+            segments.put(plan.experiment(), new TreeMap<>());
             outcomes.put(plan.experiment(), new OutcomeCounts.Builder());
         }
     }
@@ -116,6 +118,12 @@ final class CountOracle {
         long window = windowOf(plan, first);
         Place place = Place.of(window, plan.epochAt(first.atMillis()), plan.variantIndex(first.variant()));
         cells.get(plan.experiment()).merge(place, new Count(1, inTime > 0 ? 1 : 0), Count::plus);
+        for (String field : plan.splitCheck().segments()) {
+            String value = first.segments().getOrDefault(field, "");
+            segments.get(plan.experiment())
+                    .computeIfAbsent(field + "=" + (value.isEmpty() ? "none" : value), segment -> new TreeMap<>())
+                    .merge(place, 1L, Long::sum);
+        }
     }
 
     private static long crc32(String id) {
@@ -168,7 +176,7 @@ final class CountOracle {
     }
 
     Counted counted(String experiment) {
-        return new Counted(cells.get(experiment));
+        return new Counted(cells.get(experiment), segments.get(experiment));
     }
 
     OutcomeCounts outcomes(String experiment) {

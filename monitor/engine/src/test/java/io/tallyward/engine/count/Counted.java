@@ -9,8 +9,9 @@ import java.util.TreeMap;
  * The counts of one experiment, merged over partitions and commits.
  *
  * @param cells trials and successes of every window, epoch and variant that has any trials
+ * @param segments units by segment, as {@code field=value}, and place
  */
-record Counted(Map<Place, Count> cells) {
+record Counted(Map<Place, Count> cells, Map<String, Map<Place, Long>> segments) {
 
     /**
      * Where a count belongs.
@@ -41,16 +42,24 @@ record Counted(Map<Place, Count> cells) {
 
     Counted {
         cells = new TreeMap<>(cells);
+        segments = new TreeMap<>(segments);
+    }
+
+    /** Counts of a plan without segments. */
+    Counted(Map<Place, Count> cells) {
+        this(cells, Map.of());
     }
 
     static Counted of(String experiment, Collection<TallyUpdate> updates) {
         Map<Place, Count> cells = new TreeMap<>();
+        Map<String, Map<Place, Long>> segments = new TreeMap<>();
         for (TallyUpdate update : updates) {
             if (update.experiment().equals(experiment)) {
                 update.windows().forEach(window -> add(cells, window));
+                update.windows().forEach(window -> addSegments(segments, window));
             }
         }
-        return new Counted(cells);
+        return new Counted(cells, segments);
     }
 
     private static void add(Map<Place, Count> cells, WindowTally window) {
@@ -59,6 +68,13 @@ record Counted(Map<Place, Count> cells) {
                     Place.of(window.startMillis(), cell.epoch(), cell.variant()),
                     new Count(cell.trials(), cell.successes()),
                     Count::plus);
+        }
+    }
+
+    private static void addSegments(Map<String, Map<Place, Long>> segments, WindowTally window) {
+        for (WindowTally.SegmentCell cell : window.segments()) {
+            segments.computeIfAbsent(cell.field() + "=" + cell.value(), segment -> new TreeMap<>())
+                    .merge(Place.of(window.startMillis(), cell.epoch(), cell.variant()), cell.units(), Long::sum);
         }
     }
 

@@ -31,7 +31,7 @@ class OpenUnitsTest {
     @Test
     void keepsEveryUnitAsItWas() throws IOException {
         Random random = new Random(SEED);
-        OpenUnits units = new OpenUnits(FROM, VARIANTS);
+        OpenUnits units = new OpenUnits(FROM, VARIANTS, true);
         Map<Long, OpenUnit> expected = new HashMap<>();
         for (int i = 0; i < 40_000; i++) {
             long key = random.nextInt(500);
@@ -66,7 +66,10 @@ class OpenUnitsTest {
             int variant = random.nextInt(20) == 0 ? random.nextInt(VARIANTS) : 9;
             long at = FROM + (random.nextInt(9) == 0 ? 31_535_999_999L : random.nextInt(10_000_000));
             if (random.nextBoolean()) {
-                unit.expose(variant, at, random.nextInt(), ATTRIBUTION);
+                int segments = random.nextInt(1 << 12);
+                if (unit.expose(variant, at, random.nextInt(), ATTRIBUTION)) {
+                    unit.segments(segments);
+                }
             } else {
                 long arrival = random.nextBoolean() ? Long.MIN_VALUE : at + random.nextInt(1_000);
                 unit.click(variant, at, arrival, ATTRIBUTION);
@@ -94,7 +97,7 @@ class OpenUnitsTest {
 
     @Test
     void tellsAChangeOnceUntilTheMarkIsTaken() {
-        OpenUnits units = new OpenUnits(FROM, VARIANTS);
+        OpenUnits units = new OpenUnits(FROM, VARIANTS, false);
         units.find(1, 1);
         OpenUnit unit = units.fresh();
         unit.expose(0, FROM, 0, ATTRIBUTION);

@@ -39,10 +39,14 @@ final class RandomStream {
     static List<Plan> plans() {
         Duration run = Duration.ofMinutes(RUN_MINUTES);
         return List.of(
-                Plans.plan("quay-banner").atMost(run).build(),
+                Plans.plan("quay-banner")
+                        .atMost(run)
+                        .segments("platform", "version")
+                        .build(),
                 Plans.plan("fare-chip")
                         .counting(Duration.ofMinutes(12), Duration.ofMinutes(GRACE_MINUTES), Duration.ofMinutes(10))
                         .atMost(run)
+                        .segments("version")
                         .epochs(
                                 new AllocationEpoch(
                                         Plans.FROM.plus(Duration.ofMinutes(95)), Map.of("plain", 0.3, "wide", 0.7)),
@@ -116,7 +120,16 @@ final class RandomStream {
         EventKind kind = random.nextInt(5) < 2 ? EventKind.VIEW : EventKind.CLICK;
         String id = Integer.toString(random.nextInt(40), 36);
         long jitter = random.nextInt(8) == 0 ? random.nextInt(-1, 2) : 0;
-        return Events.event(kind, experiment, variant, "unit-" + unit, id, Events.at(minute) + jitter);
+        Event event = Events.event(kind, experiment, variant, "unit-" + unit, id, Events.at(minute) + jitter);
+        // The same id at the same time is the same event, so that a tie is broken the same way in any order of arrival.
+        Random segment = new Random(31 * event.atMillis() + id.hashCode());
+        return switch (segment.nextInt(4)) {
+            case 0 -> event;
+            case 1 -> Events.with(event, "version", "6." + segment.nextInt(4), "platform", "");
+            default ->
+                Events.with(
+                        event, "platform", segment.nextBoolean() ? "ios" : "web", "version", "6." + segment.nextInt(4));
+        };
     }
 
     private String pick(String... choices) {

@@ -3,6 +3,7 @@ package io.tallyward.service.plan;
 import static io.tallyward.service.config.document.ScalarType.duration;
 import static io.tallyward.service.config.document.ScalarType.flag;
 import static io.tallyward.service.config.document.ScalarType.instant;
+import static io.tallyward.service.config.document.ScalarType.matching;
 import static io.tallyward.service.config.document.ScalarType.name;
 import static io.tallyward.service.config.document.ScalarType.number;
 import static io.tallyward.service.config.document.ScalarType.numberBetween;
@@ -175,7 +176,17 @@ public final class PlanKeys {
                 numberBetween(0, 0.5),
                 String.valueOf(SplitCheckPlan.DEFAULT_ALPHA),
                 "False-alarm rate of the split check over the whole run.");
-        static final Shape SHAPE = Shape.of(ALPHA);
+        static final Key<List<String>> SEGMENTS = Key.optional(
+                "segments",
+                new ListType<>(field(), 1, SplitCheckPlan.MOST_SEGMENTS, "fields"),
+                "Segment fields of few values by which a mismatch is traced; none else.");
+        static final Shape SHAPE = Shape.of(ALPHA, SEGMENTS);
+
+        private static ScalarType<String> field() {
+            return matching(
+                    "[A-Za-z0-9_.-]{1,64}",
+                    "a field name of at most 64 letters, digits, dots, hyphens and underscores");
+        }
     }
 
     static final class Trust {

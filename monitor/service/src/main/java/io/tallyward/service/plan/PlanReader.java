@@ -79,7 +79,7 @@ public final class PlanReader {
                 test(values),
                 looks(values.get(PlanKeys.LOOKS)),
                 values.find(PlanKeys.FUTILITY).map(PlanReader::futility),
-                new SplitCheckPlan(values.get(PlanKeys.SPLIT_CHECK).get(PlanKeys.SplitCheck.ALPHA)),
+                splitCheck(values.get(PlanKeys.SPLIT_CHECK)),
                 trust(values.get(PlanKeys.TRUST)),
                 run(values.get(PlanKeys.RUN)),
                 epochs(values));
@@ -125,6 +125,12 @@ public final class PlanReader {
                 .or(() -> futility.find(PlanKeys.Futility.CONDITIONAL_POWER)
                         .map(below -> new FutilityPlan.ConditionalPower(below, futility.get(PlanKeys.Futility.UNDER))))
                 .orElseGet(() -> new FutilityPlan.PredictivePower(futility.get(PlanKeys.Futility.PREDICTIVE_POWER)));
+    }
+
+    private static SplitCheckPlan splitCheck(Values splitCheck) {
+        return new SplitCheckPlan(
+                splitCheck.get(PlanKeys.SplitCheck.ALPHA),
+                splitCheck.find(PlanKeys.SplitCheck.SEGMENTS).orElse(List.of()));
     }
 
     private static LookSchedule looks(Values looks) {

@@ -48,6 +48,7 @@ final class PlanRules {
         plan.find(PlanKeys.TEST).ifPresent(rules::checkTest);
         plan.find(PlanKeys.TEST).ifPresent(DirectionRules::check);
         plan.find(PlanKeys.FUTILITY).ifPresent(PlanRules::checkFutility);
+        plan.find(PlanKeys.SPLIT_CHECK).ifPresent(PlanRules::checkSplitCheck);
         plan.find(PlanKeys.RUN).ifPresent(rules::checkRun);
         plan.find(PlanKeys.LOOKS).ifPresent(rules::checkLooks);
         plan.find(PlanKeys.EPOCHS).ifPresent(rules::checkEpochs);
@@ -137,6 +138,14 @@ final class PlanRules {
                             .toLowerCase(Locale.ROOT),
                     "nothing: only conditional-power assumes an effect");
         }
+    }
+
+    private static void checkSplitCheck(Values splitCheck) {
+        splitCheck
+                .find(PlanKeys.SplitCheck.SEGMENTS)
+                .filter(fields -> new TreeSet<>(fields).size() < fields.size())
+                .ifPresent(fields ->
+                        splitCheck.refuse(PlanKeys.SplitCheck.SEGMENTS, String.join(", ", fields), "different fields"));
     }
 
     private void checkRun(Values run) {

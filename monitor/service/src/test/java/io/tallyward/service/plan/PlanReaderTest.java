@@ -1,6 +1,7 @@
 package io.tallyward.service.plan;
 
 import static org.junit.jupiter.api.Assertions.assertEquals;
+import static org.junit.jupiter.api.Assertions.assertNotEquals;
 import static org.junit.jupiter.api.Assertions.assertTrue;
 
 import io.tallyward.engine.plan.AllocationEpoch;
@@ -10,6 +11,7 @@ import io.tallyward.engine.plan.FutilityPlan;
 import io.tallyward.engine.plan.FutilityPlan.Assumption;
 import io.tallyward.engine.plan.LookSchedule;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanDigest;
 import io.tallyward.engine.plan.Run;
 import io.tallyward.engine.plan.Spending;
 import io.tallyward.engine.plan.Spending.Family;
@@ -91,7 +93,7 @@ class PlanReaderTest {
                           minimum-per-cell: 20
                         looks: {fractions: [0.25, 0.5, 0.75, 1.0]}
                         futility: {spending: {kim-demets: 3}}
-                        split-check: {alpha: 0.01}
+                        split-check: {alpha: 0.01, segments: [version, platform]}
                         trust: {crossover-share: 0.05, late-share: 0.01, starved-after: PT2H}
                         run: {from: 2026-05-04T00:00:00+02:00, at-least: P7D, at-most: P14D}
                         epochs:
@@ -117,6 +119,7 @@ class PlanReaderTest {
                 plan.test());
         assertEquals(new LookSchedule.AtFractions(List.of(0.25, 0.5, 0.75, 1.0)), plan.looks());
         assertEquals(Optional.of(new FutilityPlan.ErrorSpending(new Spending(Family.KIM_DEMETS, 3))), plan.futility());
+        assertEquals(new SplitCheckPlan(0.01, List.of("platform", "version")), plan.splitCheck());
         assertEquals(new TrustLimits(0.05, 0.01, Duration.ofHours(2)), plan.trust());
         assertEquals(
                 new Run(Instant.parse("2026-05-03T22:00:00Z"), Duration.ofDays(7), Duration.ofDays(14)), plan.run());
@@ -137,6 +140,36 @@ class PlanReaderTest {
         TestPlan neither = test("alpha: 0.05, harm: {spending: pocock}");
         assertEquals(0.025, neither.benefit().alpha(), 0);
         assertEquals(0.025, neither.harm().orElseThrow().alpha(), 0);
+    }
+
+    @Test
+    void refusesSegmentsThatAreNoFieldsTooManyOrTheSame() {
+        assertEquals(
+                List.of(
+                        "bad.yaml:8: split-check.segments[0]: app version (expected: a field name of at most 64 letters,"
+                                + " digits, dots, hyphens and underscores)"),
+                problems(MINIMAL + "split-check: {segments: [app version, platform]}\n"));
+        assertEquals(
+                List.of("bad.yaml:8: split-check.segments: a list of 5 (expected: a list of 1 to 4 fields)"),
+                problems(MINIMAL + "split-check: {segments: [a, b, c, d, e]}\n"));
+        assertEquals(
+                List.of("bad.yaml:8: split-check.segments: a, b, a (expected: different fields)"),
+                problems(MINIMAL + "split-check: {segments: [a, b, a]}\n"));
+    }
+
+    @Test
+    void takesSegmentsInAnyOrderForTheSamePlan() throws Exception {
+        Plan plan = PlanReader.parse("a.yaml", MINIMAL + "split-check: {segments: [platform, version]}\n")
+                .orElseThrow();
+        Plan other = PlanReader.parse("b.yaml", MINIMAL + "split-check: {segments: [version, platform]}\n")
+                .orElseThrow();
+        Plan less = PlanReader.parse("c.yaml", MINIMAL + "split-check: {segments: [version]}\n")
+                .orElseThrow();
+        assertEquals(PlanDigest.of(plan), PlanDigest.of(other));
+        assertNotEquals(PlanDigest.of(plan), PlanDigest.of(less));
+        assertNotEquals(
+                PlanDigest.of(less),
+                PlanDigest.of(PlanReader.parse("d.yaml", MINIMAL).orElseThrow()));
     }
 
     private static TestPlan test(String start) throws Exception {
