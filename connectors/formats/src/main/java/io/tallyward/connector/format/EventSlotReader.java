@@ -92,7 +92,7 @@ public final class EventSlotReader {
         boolean plain = false;
         try {
             feed(value, length);
-            slot.clearSegments();
+            slot.clear();
             plain = parser.nextToken() == JsonToken.START_OBJECT && members(pointers, slot) && ended() && finish(slot);
         } catch (IOException notWellFormed) {
             plain = false;
@@ -194,6 +194,10 @@ public final class EventSlotReader {
                 return slot.unit(text, from, length);
             case ID:
                 return slot.id(text, from, length);
+            case SOURCE:
+                return slot.source(text, from, length);
+            case VIEW:
+                return slot.viewId(text, from, length);
             case AT:
                 long at = EventTime.millis(token, text, from, length);
                 slot.at(at);

@@ -64,7 +64,7 @@ public final class CountShard {
         tallies = new SealedTallies(partition, partitions);
         names = new PlanNames(plans);
         for (Plan plan : plans) {
-            counters.put(plan.experiment(), new ExperimentCounter(plan, names.segments()));
+            counters.put(plan.experiment(), new ExperimentCounter(plan, names.segments(), settings.unitKey()));
         }
         countersByPosition = counters.values().toArray(ExperimentCounter[]::new);
         for (RejectReason reason : RejectReason.values()) {

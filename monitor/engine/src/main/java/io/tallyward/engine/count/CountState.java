@@ -104,7 +104,7 @@ final class CountState {
         String experiment = counter.plan().experiment();
         TreeMap<Long, Integer> entries = openEntries.computeIfAbsent(experiment, name -> new TreeMap<>());
         OpenChunks chunks = new OpenChunks();
-        counter.ledger().takeChanged(chunks::add);
+        counter.ledger().takeChanged(chunks);
         List<StateChange> changes = new ArrayList<>();
         chunks.take((window, packed) -> {
             int sequence = entries.merge(window, 1, Integer::sum) - 1;
@@ -231,11 +231,7 @@ final class CountState {
         }
         DataInputStream in = reader(value);
         while (in.available() > 0) {
-            long high = in.readLong();
-            long low = in.readLong();
-            OpenUnit unit = counter.ledger().restoring();
-            unit.read(in);
-            counter.ledger().restoreOpen(high, low, unit);
+            counter.ledger().restoreOpen(in);
         }
     }
 

@@ -1,8 +1,9 @@
 package io.tallyward.engine.count;
 
-import io.tallyward.engine.count.WindowTally.SegmentCell;
+import io.tallyward.engine.event.EventKind;
 import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.event.NameTable;
+import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanDigest;
 import java.util.ArrayList;
@@ -21,9 +22,10 @@ final class ExperimentCounter {
     private final String planDigest;
     private final long windowMillis;
     private final long sealDelayMillis;
+    private final long viewPatienceMillis;
     private final long runEnd;
     private final Optional<SegmentTable> segments;
-    private final Ledger ledger;
+    private final CountLedger ledger;
 
     private long sealedUntil;
     private final TreeMap<Long, OutcomeCounts.Builder> unsealedOutcomes = new TreeMap<>();
@@ -33,18 +35,26 @@ final class ExperimentCounter {
     /** How far the events of this process reached; a file replay ends there. */
     private long reach;
 
-    /** @param fields the segment fields that any plan names */
-    ExperimentCounter(Plan plan, NameTable fields) {
+    /**
+     * Counts under a plan.
+     *
+     * @param fields the segment fields that any plan names
+     * @param unitKey key of the hash of what must not be told, here of the names of views
+     */
+    ExperimentCounter(Plan plan, NameTable fields, byte[] unitKey) {
         this.plan = plan;
         planDigest = PlanDigest.of(plan);
         windowMillis = plan.count().window().toMillis();
         sealDelayMillis = plan.count().sealDelayMillis();
+        viewPatienceMillis = plan.count().viewPatienceMillis();
         runEnd = plan.run().end().toEpochMilli();
         sealedUntil = plan.run().from().toEpochMilli();
         reach = sealedUntil;
         List<String> named = plan.splitCheck().segments();
         segments = named.isEmpty() ? Optional.empty() : Optional.of(new SegmentTable(named, fields));
-        ledger = new Ledger(plan, segments);
+        ledger = plan.count().by() == CountBy.VIEW
+                ? new ViewLedger(plan, segments, new UnitHasher(unitKey))
+                : new Ledger(plan, segments);
     }
 
     /** A window that was just sealed, with the units whose trials fell into it, packed. */
@@ -62,7 +72,7 @@ final class ExperimentCounter {
         return sealedUntil;
     }
 
-    Ledger ledger() {
+    CountLedger ledger() {
         return ledger;
     }
 
@@ -81,7 +91,7 @@ final class ExperimentCounter {
         }
         long window = windowOf(event.atMillis());
         reach = Math.max(reach, window + windowMillis);
-        boolean late = window < sealedUntil || arrivalMillis >= sealAt(window);
+        boolean late = window < sealedUntil || arrivalMillis >= lateAt(window, event.kind());
         Outcome outcome = ledger.accept(high, low, event, arrivalMillis, late);
         if (outcome != null) {
             finalOutcomes.add(outcome, 1);
@@ -102,6 +112,11 @@ final class ExperimentCounter {
 
     private long windowOf(long atMillis) {
         return Math.floorDiv(atMillis, windowMillis) * windowMillis;
+    }
+
+    /** The watermark at which an event of a window comes too late for it. */
+    private long lateAt(long windowStart, EventKind kind) {
+        return kind == EventKind.VIEW ? windowStart + windowMillis + viewPatienceMillis : sealAt(windowStart);
     }
 
     private long sealAt(long windowStart) {
@@ -151,23 +166,14 @@ final class ExperimentCounter {
 
     private Sealed seal(long windowStart) {
         OutcomeCounts.Builder settled = new OutcomeCounts.Builder();
-        SealedChunks units = new SealedChunks(ledger.sealed());
-        CellCounts cells = new CellCounts(plan);
-        Optional<SegmentCounts> bySegment = segments.map(table -> new SegmentCounts(plan, table));
-        ledger.seal(windowStart, settled, (high, low, variant, first, success, code) -> {
-            units.add(high, low, variant, first, success);
-            cells.add(variant, first, success);
-            if (bySegment.isPresent()) {
-                bySegment.get().add(variant, first, code);
-            }
-        });
+        WindowCounts counts = new WindowCounts(plan, segments);
+        List<byte[]> units = ledger.seal(windowStart, settled, counts);
         OutcomeCounts fromLedger = settled.build();
         finalOutcomes.add(fromLedger);
         OutcomeCounts.Builder told = unsealedOutcomes.remove(windowStart);
         OutcomeCounts outcomes =
                 told == null ? fromLedger : told.add(fromLedger).build();
-        List<SegmentCell> traced = bySegment.map(SegmentCounts::list).orElse(List.of());
-        return new Sealed(new WindowTally(windowStart, cells.list(), traced, outcomes), units.take());
+        return new Sealed(new WindowTally(windowStart, counts.cells(), counts.segments(), outcomes), units);
     }
 
     /** Final outcomes of all events so far, sealed windows or not. */

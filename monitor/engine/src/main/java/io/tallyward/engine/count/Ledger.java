@@ -5,14 +5,15 @@ import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.plan.Plan;
 import java.io.DataInput;
 import java.io.IOException;
+import java.util.List;
 import java.util.Optional;
 import java.util.TreeMap;
 
 /**
- * Every unit of one experiment in one partition: the open ones with what may still change, the sealed ones with what must
- * be remembered of them. The ledger says what became of an event as soon as that is final.
+ * The units of an experiment that counts by unit: the open ones with what may still change, the sealed ones with what must be
+ * remembered of them.
  */
-final class Ledger {
+final class Ledger implements CountLedger {
 
     private final long attributionMillis;
     private final long windowMillis;
@@ -43,30 +44,8 @@ final class Ledger {
         restoring = new OpenUnit(plan.variants().size());
     }
 
-    /** Takes a unit whose trial has become final. */
-    @FunctionalInterface
-    interface Settled {
-        /** @param segments code of the segments of the unit's first exposure */
-        void take(long high, long low, int variant, long first, boolean success, int segments);
-    }
-
-    /** Takes an open unit that has changed; the unit is valid during the call only. */
-    @FunctionalInterface
-    interface Changed {
-        /** @param window start of the window with which the last of what is open about the unit is sealed */
-        void take(long window, long high, long low, OpenUnit unit);
-    }
-
-    /**
-     * Takes an event of the run.
-     *
-     * @param high first half of the unit's hash
-     * @param low second half
-     * @param arrivalMillis watermark of the event's source when the event arrived
-     * @param late whether the event's own window is sealed, in the shard or by the reckoning of the event's source
-     * @return its outcome when that is final at once, or null while it can still change
-     */
-    Outcome accept(long high, long low, EventSlot event, long arrivalMillis, boolean late) {
+    @Override
+    public Outcome accept(long high, long low, EventSlot event, long arrivalMillis, boolean late) {
         int variant = event.variant();
         boolean view = event.kind() == EventKind.VIEW;
         // A unit is open or sealed, never both; most events are about open ones.
@@ -164,31 +143,31 @@ final class Ledger {
         return Math.floorDiv(atMillis, windowMillis) * windowMillis;
     }
 
-    /** The first window in which anything falls due, or {@code Long.MAX_VALUE} when nothing does. */
-    long firstDue() {
+    @Override
+    public long firstDue() {
         return due.isEmpty() ? Long.MAX_VALUE : due.firstKey();
     }
 
-    /**
-     * Seals a window: its trials become final, and clicks in it that no exposure precedes become orphans.
-     *
-     * @param outcomes receives the outcomes that become final
-     * @param settled receives the units sealed, in an order that the events before determine
-     */
-    void seal(long windowStart, OutcomeCounts.Builder outcomes, Settled settled) {
+    /** Its trials become final, and clicks in it that no exposure precedes become orphans. */
+    @Override
+    public List<byte[]> seal(long windowStart, OutcomeCounts.Builder outcomes, WindowCounts counts) {
+        SealedChunks chunks = new SealedChunks();
         PrefixList prefixes = due.remove(windowStart);
         lastDue = Long.MIN_VALUE;
         for (int i = 0; prefixes != null && i < prefixes.size(); i++) {
             int prefix = prefixes.get(i);
             boolean more = open.findFirst(prefix);
             while (more) {
-                more = sealFound(windowStart, outcomes, settled) ? open.holds(prefix) : open.next(prefix);
+                boolean removed = sealFound(windowStart, outcomes, counts, chunks);
+                more = removed ? open.holds(prefix) : open.next(prefix);
             }
         }
+        return chunks.take();
     }
 
     /** Seals what falls due of the unit last found; returns whether the unit is open no longer. */
-    private boolean sealFound(long windowStart, OutcomeCounts.Builder outcomes, Settled settled) {
+    private boolean sealFound(
+            long windowStart, OutcomeCounts.Builder outcomes, WindowCounts counts, SealedChunks chunks) {
         OpenUnit unit = open.load();
         if (unit.hasTrial() && windowOf(unit.first()) == windowStart) {
             long sealAt = windowStart + windowMillis + sealDelayMillis;
@@ -196,7 +175,8 @@ final class Ledger {
             unit.settle(sealAt, outcomes);
             boolean success = unit.successful(sealAt);
             sealed.add(open.high(), open.low(), unit.variant(), unit.first(), success);
-            settled.take(open.high(), open.low(), unit.variant(), unit.first(), success, unit.segments());
+            chunks.add(out -> sealed.write(out, open.high(), open.low(), unit.variant(), unit.first(), success));
+            counts.add(unit.variant(), unit.first(), success, unit.segments());
             open.remove();
             return true;
         }
@@ -214,25 +194,24 @@ final class Ledger {
         return false;
     }
 
-    /** Tells the open units that changed since this was last asked. */
-    void takeChanged(Changed taker) {
+    @Override
+    public void takeChanged(OpenChunks chunks) {
         for (int i = 0; i < changed.size(); i++) {
             if (open.find(changed.high(i), changed.low(i)) && open.isMarked()) {
                 open.unmark();
                 OpenUnit unit = open.load();
-                taker.take(dueWindow(unit), changed.high(i), changed.low(i), unit);
+                chunks.add(dueWindow(unit), changed.high(i), changed.low(i), unit::write);
             }
         }
         changed.clear();
     }
 
-    /** A unit to restore into, always the same. */
-    OpenUnit restoring() {
-        return restoring;
-    }
-
-    /** Restores an open unit as it was written; a later version of the same unit replaces it. */
-    void restoreOpen(long high, long low, OpenUnit unit) {
+    @Override
+    public void restoreOpen(DataInput in) throws IOException {
+        long high = in.readLong();
+        long low = in.readLong();
+        OpenUnit unit = restoring;
+        unit.read(in);
         boolean known = open.find(high, low);
         openEvents += unit.events() - (known ? open.load().events() : 0);
         open.store(high, low, unit, known);
@@ -255,11 +234,9 @@ final class Ledger {
         }
     }
 
-    /**
-     * Forgets restored versions of units that were replaced or gone when the windows before a moment were sealed: clicks
-     * that became orphans leave an entry behind, which a log that is not compacted yet still holds.
-     */
-    void forgetDueBefore(long sealedUntilMillis) {
+    /** Clicks that became orphans leave an entry behind, which a log that is not compacted yet still holds. */
+    @Override
+    public void forgetDueBefore(long sealedUntilMillis) {
         due.headMap(sealedUntilMillis).values().forEach(prefixes -> {
             for (int i = 0; i < prefixes.size(); i++) {
                 forgetDueBefore(prefixes.get(i), sealedUntilMillis);
@@ -283,24 +260,19 @@ final class Ledger {
         }
     }
 
-    /** The sealed units, for their durable form. */
-    SealedUnits sealed() {
-        return sealed;
-    }
-
-    /** Restores a unit whose trial is final from its durable form. */
-    void restoreSealed(DataInput in) throws IOException {
+    @Override
+    public void restoreSealed(DataInput in) throws IOException {
         sealed.read(in);
         forgetOpen(sealed.high(), sealed.low());
     }
 
-    /** Events whose outcome can still change. */
-    long openEvents() {
+    @Override
+    public long openEvents() {
         return openEvents;
     }
 
-    /** How many units are remembered, open and sealed. */
-    int units() {
+    @Override
+    public int units() {
         return open.size() + sealed.size();
     }
 }

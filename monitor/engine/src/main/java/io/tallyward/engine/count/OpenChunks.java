@@ -1,6 +1,7 @@
 package io.tallyward.engine.count;
 
 import java.io.ByteArrayOutputStream;
+import java.io.DataOutput;
 import java.io.DataOutputStream;
 import java.io.IOException;
 import java.io.UncheckedIOException;
@@ -25,7 +26,14 @@ final class OpenChunks {
         }
     }
 
-    void add(long windowStart, long high, long low, OpenUnit unit) {
+    /** Writes what there is to be packed. */
+    @FunctionalInterface
+    interface Packed {
+        void write(DataOutput out) throws IOException;
+    }
+
+    /** @param windowStart the window with which the last of what is open about the unit is sealed */
+    void add(long windowStart, long high, long low, Packed unit) {
         Window window = windows.computeIfAbsent(windowStart, start -> new Window());
         try {
             window.out.writeLong(high);

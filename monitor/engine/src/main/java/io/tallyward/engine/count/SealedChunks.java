@@ -10,19 +10,13 @@ import java.util.List;
 /** Packs the units of a window into chunks that are each small enough for one record. */
 final class SealedChunks {
 
-    private final SealedUnits format;
     private final List<byte[]> full = new ArrayList<>();
     private final ByteArrayOutputStream bytes = new ByteArrayOutputStream(1024);
     private final DataOutputStream out = new DataOutputStream(bytes);
 
-    /** @param format knows the durable form of a unit */
-    SealedChunks(SealedUnits format) {
-        this.format = format;
-    }
-
-    void add(long high, long low, int variant, long first, boolean success) {
+    void add(OpenChunks.Packed unit) {
         try {
-            format.write(out, high, low, variant, first, success);
+            unit.write(out);
         } catch (IOException e) {
             throw new UncheckedIOException("a write to memory failed", e);
         }

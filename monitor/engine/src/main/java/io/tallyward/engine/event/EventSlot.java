@@ -24,6 +24,11 @@ public final class EventSlot {
     private byte[] unit = new byte[256];
     private int unitLength;
     private byte[] id = new byte[256];
+    private int idLength;
+    private byte[] source = new byte[256];
+    private int sourceLength;
+    private byte[] viewId = new byte[256];
+    private int viewIdLength;
     private int tie;
     private long atMillis;
 
@@ -55,17 +60,34 @@ public final class EventSlot {
         return narrow(text, from, length, unit);
     }
 
+    /** Makes what an event need not have empty; the rest of it is set in any case. */
+    public void clear() {
+        sourceLength = 0;
+        viewIdLength = 0;
+        segments = 0;
+    }
+
+    /** Sets the source from ASCII characters; returns false, and leaves it undefined, when there are others among them. */
+    public boolean source(char[] text, int from, int length) {
+        source = room(source, length);
+        sourceLength = length;
+        return narrow(text, from, length, source);
+    }
+
+    /** Sets the view id from ASCII characters; returns false, and leaves it undefined, when there are others among them. */
+    public boolean viewId(char[] text, int from, int length) {
+        viewId = room(viewId, length);
+        viewIdLength = length;
+        return narrow(text, from, length, viewId);
+    }
+
     /** Sets the id from ASCII characters; returns false, and leaves it undefined, when there are others among them. */
     public boolean id(char[] text, int from, int length) {
         id = room(id, length);
+        idLength = length;
         boolean ascii = narrow(text, from, length, id);
         digest(id, length);
         return ascii;
-    }
-
-    /** Forgets the segments of the event before. */
-    public void clearSegments() {
-        segments = 0;
     }
 
     /**
@@ -135,10 +157,15 @@ public final class EventSlot {
         place(experimentIndex, variantIndex);
         unit = event.unit().getBytes(StandardCharsets.UTF_8);
         unitLength = unit.length;
-        byte[] name = event.id().getBytes(StandardCharsets.UTF_8);
-        digest(name, name.length);
+        id = event.id().getBytes(StandardCharsets.UTF_8);
+        idLength = id.length;
+        digest(id, idLength);
+        source = event.source().getBytes(StandardCharsets.UTF_8);
+        sourceLength = source.length;
+        viewId = event.viewId().getBytes(StandardCharsets.UTF_8);
+        viewIdLength = viewId.length;
         atMillis = event.atMillis();
-        clearSegments();
+        segments = 0;
         if (fields.size() > 0) {
             event.segments().forEach((field, value) -> takeSegment(fields.find(field), value));
         }
@@ -175,6 +202,36 @@ public final class EventSlot {
         return unitLength;
     }
 
+    /** The id in UTF-8; only the first {@link #idLength()} bytes belong to it, and only until the slot is used again. */
+    public byte[] id() {
+        return id;
+    }
+
+    /** How many bytes the id has. */
+    public int idLength() {
+        return idLength;
+    }
+
+    /** The emitter of the event in UTF-8, as {@link #id()} is given. */
+    public byte[] source() {
+        return source;
+    }
+
+    /** How many bytes the source has; 0 when the event names none. */
+    public int sourceLength() {
+        return sourceLength;
+    }
+
+    /** The id of the view that was clicked in UTF-8, as {@link #id()} is given. */
+    public byte[] viewId() {
+        return viewId;
+    }
+
+    /** How many bytes the view id has; 0 when the event names none. */
+    public int viewIdLength() {
+        return viewIdLength;
+    }
+
     /**
      * Breaks ties between exposures of one unit at one moment: the CRC-32 of the id in UTF-8, to be compared without sign.
      * Like the ids themselves it favours no variant, and unlike them it takes four bytes to remember.
@@ -202,6 +259,9 @@ public final class EventSlot {
                 && tie == other.tie
                 && atMillis == other.atMillis
                 && Arrays.equals(unit, 0, unitLength, other.unit, 0, other.unitLength)
+                && Arrays.equals(id, 0, idLength, other.id, 0, other.idLength)
+                && Arrays.equals(source, 0, sourceLength, other.source, 0, other.sourceLength)
+                && Arrays.equals(viewId, 0, viewIdLength, other.viewId, 0, other.viewIdLength)
                 && holdsTheSameSegmentsAs(other);
     }
 

@@ -20,8 +20,24 @@ public record CountRule(CountBy by, Duration attribution, Duration grace, Durati
         VIEW
     }
 
-    /** How long after the end of a window it is sealed: attribution plus grace. */
+    /**
+     * How long after the end of a window it is sealed: attribution plus grace. In counting by view, attribution is rounded up
+     * to whole windows: a click belongs to the latest view before it, and a view that could take a click away from a window
+     * that is being sealed must be late by then.
+     */
     public long sealDelayMillis() {
-        return attribution.toMillis() + grace.toMillis();
+        long wait = attribution.toMillis();
+        if (by == CountBy.VIEW) {
+            wait = Math.floorDiv(wait + window.toMillis() - 1, window.toMillis()) * window.toMillis();
+        }
+        return wait + grace.toMillis();
+    }
+
+    /**
+     * How long after the end of its window a view may still arrive. In counting by unit that is until the window is sealed; in
+     * counting by view it is the grace, so that nothing can move between views while clicks are still awaited.
+     */
+    public long viewPatienceMillis() {
+        return by == CountBy.VIEW ? grace.toMillis() : sealDelayMillis();
     }
 }
