@@ -70,6 +70,12 @@ public final class Plans {
         return this;
     }
 
+    /** The same rhythm, a trial being a view. */
+    public Plans byView() {
+        count = new CountRule(CountBy.VIEW, count.attribution(), count.grace(), count.window());
+        return this;
+    }
+
     public Plans variants(Variant... all) {
         variants = List.of(all);
         return this;
