@@ -5,6 +5,7 @@ import static org.junit.jupiter.api.Assertions.assertEquals;
 import io.tallyward.engine.Events;
 import io.tallyward.engine.Plans;
 import io.tallyward.engine.count.WindowTally.Cell;
+import io.tallyward.engine.count.WindowTally.SegmentCell;
 import io.tallyward.engine.event.Event;
 import io.tallyward.engine.event.EventKind;
 import io.tallyward.engine.plan.Plan;
@@ -161,6 +162,41 @@ class CountByViewTest {
         host.feed(click("wide", "ada", "a", 1), view("wide", "ben", "b", 2), click("wide", "ben", "no-such-view", 3))
                 .end();
         assertEquals(outcomes(Outcome.TRIAL, Outcome.ORPHAN, Outcome.ORPHAN), outcomes());
+    }
+
+    @Test
+    void countsAUnitOnceUnderTheSegmentOfItsFirstView() {
+        Plan traced = Plans.plan(BANNER)
+                .byView()
+                .segments("platform")
+                .atMost(Duration.ofHours(6))
+                .build();
+        CountHost tracing = CountHost.of(traced)
+                .feed(
+                        on("web", view("wide", "ada", "b", 3)),
+                        on("app", view("wide", "ada", "a", 1)),
+                        on("web", view("wide", "ada", "c", 7)),
+                        on("web", view("plain", "ben", "d", 8)))
+                .end();
+        assertEquals(
+                List.of(new SegmentCell("platform", "app", 0, 1, 1), new SegmentCell("platform", "web", 0, 0, 1)),
+                tracing.tallies().stream()
+                        .flatMap(update -> update.windows().stream())
+                        .flatMap(window -> window.segments().stream())
+                        .toList());
+    }
+
+    private static Event on(String platform, Event view) {
+        return new Event(
+                view.kind(),
+                view.experiment(),
+                view.variant(),
+                view.unit(),
+                view.source(),
+                view.id(),
+                view.atMillis(),
+                view.viewId(),
+                Map.of("platform", platform));
     }
 
     @Test
