@@ -3,7 +3,7 @@ package io.tallyward.connector.format;
 import com.fasterxml.jackson.core.JsonFactory;
 import com.fasterxml.jackson.core.JsonParser;
 import com.fasterxml.jackson.core.JsonToken;
-import com.fasterxml.jackson.core.async.ByteArrayFeeder;
+import io.tallyward.connector.format.MemberOrder.Member;
 import io.tallyward.engine.event.EventKind;
 import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.event.NameTable;
@@ -27,7 +27,7 @@ public final class EventSlotReader {
     private static final int ASCII_END = 0x80;
     private static final OutputStream NOWHERE = OutputStream.nullOutputStream();
 
-    private final PointerTree pointers;
+    private final MemberOrder order;
     private final int maxEventBytes;
     private final JsonFactory factory;
     private final PlanNames names;
@@ -36,10 +36,10 @@ public final class EventSlotReader {
     private final EventKind[] meanings;
     private final SegmentNames segmentNames = new SegmentNames();
 
+    private final DocumentStream document = new DocumentStream();
+
     /** Null until the next document, and after one that was not plain. */
     private JsonParser parser;
-
-    private ByteArrayFeeder feeder;
 
     private int seen;
     private final char[] experimentText = new char[EventDraft.MAX_TEXT];
@@ -55,7 +55,7 @@ public final class EventSlotReader {
      * @param names the experiments and variants that are known, and the segment fields to keep
      */
     public EventSlotReader(EventMapping mapping, int maxEventBytes, PlanNames names) {
-        this.pointers = PointerTree.of(mapping.pointers());
+        this.order = new MemberOrder(PointerTree.of(mapping.pointers()));
         this.maxEventBytes = maxEventBytes;
         this.factory = JsonEventReader.factory(maxEventBytes);
         this.names = names;
@@ -93,7 +93,7 @@ public final class EventSlotReader {
         try {
             feed(value, length);
             slot.clear();
-            plain = parser.nextToken() == JsonToken.START_OBJECT && members(pointers, slot) && ended() && finish(slot);
+            plain = parser.nextToken() == JsonToken.START_OBJECT && members(order, slot) && ended() && finish(slot);
         } catch (IOException notWellFormed) {
             plain = false;
         } finally {
@@ -110,16 +110,15 @@ public final class EventSlotReader {
 
     /** One document follows another in the same parser as long as all end where their last bracket does. */
     private void feed(byte[] value, int length) throws IOException {
-        if (parser == null) {
-            parser = factory.createNonBlockingByteArrayParser();
-            feeder = (ByteArrayFeeder) parser.getNonBlockingInputFeeder();
-        }
         seen = 0;
-        feeder.feedInput(value, 0, length);
+        document.set(value, length);
+        if (parser == null) {
+            parser = factory.createParser(document);
+        }
     }
 
     private boolean ended() throws IOException {
-        return parser.releaseBuffered(NOWHERE) == 0;
+        return document.available() == 0 && parser.releaseBuffered(NOWHERE) == 0;
     }
 
     private void forget() {
@@ -134,26 +133,34 @@ public final class EventSlotReader {
         }
     }
 
-    private boolean members(PointerTree node, EventSlot slot) throws IOException {
-        JsonToken token = parser.nextToken();
-        while (token == JsonToken.FIELD_NAME) {
-            PointerTree child = node.child(parser.currentName());
-            if (!place(child, parser.nextToken(), slot)) {
+    private boolean members(MemberOrder members, EventSlot slot) throws IOException {
+        Member member = members.start();
+        while (true) {
+            Member expected = member.next();
+            if (expected != null && parser.nextFieldName(expected.name())) {
+                member = expected;
+            } else {
+                JsonToken token = expected == null ? parser.nextToken() : parser.currentToken();
+                if (token != JsonToken.FIELD_NAME) {
+                    return token == JsonToken.END_OBJECT;
+                }
+                member = members.follow(member, parser.currentName());
+            }
+            if (!place(member, parser.nextToken(), slot)) {
                 return false;
             }
-            token = parser.nextToken();
         }
-        return token == JsonToken.END_OBJECT;
     }
 
-    private boolean place(PointerTree node, JsonToken token, EventSlot slot) throws IOException {
+    private boolean place(Member member, JsonToken token, EventSlot slot) throws IOException {
+        PointerTree node = member.node();
         if (node == null) {
             parser.skipChildren();
-            return token != JsonToken.NOT_AVAILABLE;
+            return true;
         }
         List<EventField> fields = node.fields();
         if (fields.isEmpty()) {
-            return token == JsonToken.START_OBJECT ? members(node, slot) : token.isScalarValue();
+            return token == JsonToken.START_OBJECT ? members(member.below(), slot) : token.isScalarValue();
         }
         for (int i = 0; i < fields.size(); i++) {
             if (!take(fields.get(i), token, slot)) {

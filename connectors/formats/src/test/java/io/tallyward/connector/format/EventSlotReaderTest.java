@@ -124,6 +124,35 @@ class EventSlotReaderTest {
     }
 
     @Test
+    void readsDocumentsThatNeverLookTheSame() {
+        Random random = new Random(7);
+        List<String> members =
+                new ArrayList<>(List.of(VIEW.substring(1, VIEW.length() - 1).split(",")));
+        for (int i = 0; i < 1_000; i++) {
+            List<String> shown = new ArrayList<>(members);
+            shown.add("\"name-" + i + "\":" + i);
+            shown.add("\"name-" + random.nextInt(i + 1) + "\":{\"kind\":\"click\",\"unit\":[" + i + "]}");
+            shown.add("\"" + "long".repeat(50) + i + "\":\"view\"");
+            Collections.shuffle(shown, random);
+            byte[] json = utf8("{" + String.join(",", shown) + "}");
+            assertTrue(assertAgrees(json, "document " + i), "plain: " + i);
+        }
+    }
+
+    @Test
+    void readsAcrossTheParsersOwnPieces() {
+        int largest = 40_000;
+        EventSlotReader large = new EventSlotReader(EventMapping.DEFAULT, largest, NAMES);
+        for (int padding = 7_700; padding < 8_100; padding++) {
+            String json = "{\"x\":\"" + "y".repeat(padding) + "\"," + VIEW.substring(1);
+            assertTrue(large.read(utf8(json), slot), padding + " bytes before");
+            assertEquals("EventSlot[VIEW, 0/1, 1777874400000]", slot.toString());
+            assertFalse(large.read(utf8(json + json), slot), "twice " + padding + " bytes");
+            assertFalse(large.read(utf8(json.substring(0, json.length() - 1)), slot), "cut short");
+        }
+    }
+
+    @Test
     void leavesNothingBehindPerDocument() {
         byte[] json = utf8(VIEW.replace("}", ",\"segments\":{\"platform\":\"app\",\"version\":\"6.3\"}}"));
         ThreadMXBean threads = (ThreadMXBean) ManagementFactory.getThreadMXBean();
