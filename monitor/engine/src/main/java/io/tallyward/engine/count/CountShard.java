@@ -188,6 +188,10 @@ public final class CountShard {
         nextSealAt = Long.MAX_VALUE;
         for (ExperimentCounter counter : counters.values()) {
             seal(counter, watermark, cause);
+            if (counter.isToBeArchived(watermark)) {
+                sealedState.addAll(state.forgetSealed(counter));
+                counter.archive();
+            }
             nextSealAt = Math.min(nextSealAt, counter.nextSealAt());
         }
         return true;
@@ -203,7 +207,7 @@ public final class CountShard {
             return;
         }
         String experiment = counter.plan().experiment();
-        windows.forEach(window -> sealedState.addAll(state.sealed(experiment, window)));
+        windows.forEach(window -> sealedState.addAll(state.sealed(counter, window)));
         sealedState.addAll(state.forgetOpenBefore(experiment, counter.sealedUntil()));
         tallies.add(counter, cause, windows);
     }

@@ -24,7 +24,8 @@ import java.util.TreeMap;
  *       them; and the values that are told, one entry, rewritten;
  *   <li>open units: those that changed in one commit, packed by the window in which they fall due; a later entry holds the
  *       later version of a unit;
- *   <li>sealed units: those of one window, packed; when a window is sealed, its open entries are removed.
+ *   <li>sealed units: those of one window, packed; when a window is sealed, its open entries are removed, and when an
+ *       experiment is archived, all of its units are.
  * </ul>
  *
  * So the log compacts to one packed entry per sealed window and a bounded number of open ones.
@@ -43,6 +44,7 @@ final class CountState {
     private final int partitions;
     private final long keyFingerprint;
     private final Map<String, TreeMap<Long, Integer>> openEntries = new TreeMap<>();
+    private final Map<String, SealedEntries> sealedEntries = new TreeMap<>();
 
     /**
      * The state of a shard that has counted nothing yet.
@@ -74,6 +76,7 @@ final class CountState {
         return new StateChange(key, pack(out -> {
             out.writeUTF(counter.planDigest());
             out.writeLong(counter.sealedUntil());
+            out.writeBoolean(counter.isArchived());
             counter.outcomes().write(out);
             Map<Long, OutcomeCounts> unsealed = counter.unsealedOutcomes();
             out.writeInt(unsealed.size());
@@ -114,11 +117,31 @@ final class CountState {
     }
 
     /** The units of a window that was just sealed. */
-    List<StateChange> sealed(String experiment, ExperimentCounter.Sealed window) {
+    List<StateChange> sealed(ExperimentCounter counter, ExperimentCounter.Sealed window) {
+        String experiment = counter.plan().experiment();
+        long start = window.tally().startMillis();
         List<StateChange> changes = new ArrayList<>();
         for (byte[] packed : window.units()) {
-            changes.add(new StateChange(key(SEALED, experiment, window.tally().startMillis(), changes.size()), packed));
+            entriesOf(counter).add(start, changes.size());
+            changes.add(new StateChange(key(SEALED, experiment, start, changes.size()), packed));
         }
+        return changes;
+    }
+
+    private SealedEntries entriesOf(ExperimentCounter counter) {
+        return sealedEntries.computeIfAbsent(
+                counter.plan().experiment(),
+                name -> new SealedEntries(
+                        counter.plan().run().from().toEpochMilli(),
+                        counter.plan().count().window().toMillis()));
+    }
+
+    /** Removes the sealed units of an experiment that is over. */
+    List<StateChange> forgetSealed(ExperimentCounter counter) {
+        List<StateChange> changes = new ArrayList<>();
+        entriesOf(counter)
+                .takeAll((start, sequence) ->
+                        changes.add(new StateChange(key(SEALED, counter.plan().experiment(), start, sequence), null)));
         return changes;
     }
 
@@ -162,7 +185,7 @@ final class CountState {
             } else if (kind == OPEN) {
                 restoreOpen(experiment, keyIn.readLong(), keyIn.readInt(), value, counter);
             } else if (kind == SEALED) {
-                restoreSealed(value, counter);
+                restoreSealed(keyIn.readLong(), keyIn.readInt(), value, counter);
             } else {
                 throw new IllegalStateException(
                         "stored counts: entry of unknown kind " + kind
@@ -203,6 +226,7 @@ final class CountState {
             throw new PlanChangedException(counter.plan().experiment(), digest, counter.planDigest());
         }
         long sealedUntil = in.readLong();
+        boolean archived = in.readBoolean();
         OutcomeCounts outcomes = OutcomeCounts.read(in);
         Map<Long, OutcomeCounts> unsealed = new TreeMap<>();
         for (int rest = in.readInt(); rest > 0; rest--) {
@@ -210,6 +234,9 @@ final class CountState {
             unsealed.put(window, OutcomeCounts.read(in));
         }
         counter.restore(sealedUntil, outcomes, unsealed);
+        if (archived) {
+            counter.archive();
+        }
     }
 
     private static void restoreSegments(int sequence, byte[] value, ExperimentCounter counter) throws IOException {
@@ -235,10 +262,11 @@ final class CountState {
         }
     }
 
-    private static void restoreSealed(byte[] value, ExperimentCounter counter) throws IOException {
+    private void restoreSealed(long window, int sequence, byte[] value, ExperimentCounter counter) throws IOException {
         if (counter == null || value == null) {
             return;
         }
+        entriesOf(counter).add(window, sequence);
         DataInputStream in = reader(value);
         while (in.available() > 0) {
             counter.ledger().restoreSealed(in);

@@ -6,6 +6,7 @@ import io.tallyward.engine.event.NameTable;
 import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanDigest;
+import java.time.Duration;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Map;
@@ -18,14 +19,22 @@ import java.util.TreeMap;
  */
 final class ExperimentCounter {
 
+    /**
+     * How long after the end of a run is sealed its units are still remembered, in milliseconds of event time: until then events
+     * that come late are told exactly what they are.
+     */
+    static final long ARCHIVE_AFTER = Duration.ofDays(1).toMillis();
+
     private final Plan plan;
     private final String planDigest;
     private final long windowMillis;
     private final long sealDelayMillis;
     private final long viewPatienceMillis;
     private final long runEnd;
+    private final byte[] unitKey;
     private final Optional<SegmentTable> segments;
-    private final CountLedger ledger;
+    private CountLedger ledger;
+    private boolean archived;
 
     private long sealedUntil;
     private final TreeMap<Long, OutcomeCounts.Builder> unsealedOutcomes = new TreeMap<>();
@@ -52,7 +61,12 @@ final class ExperimentCounter {
         reach = sealedUntil;
         List<String> named = plan.splitCheck().segments();
         segments = named.isEmpty() ? Optional.empty() : Optional.of(new SegmentTable(named, fields));
-        ledger = plan.count().by() == CountBy.VIEW
+        this.unitKey = unitKey;
+        ledger = newLedger();
+    }
+
+    private CountLedger newLedger() {
+        return plan.count().by() == CountBy.VIEW
                 ? new ViewLedger(plan, segments, new UnitHasher(unitKey))
                 : new Ledger(plan, segments);
     }
@@ -91,6 +105,10 @@ final class ExperimentCounter {
         }
         long window = windowOf(event.atMillis());
         reach = Math.max(reach, window + windowMillis);
+        if (archived) {
+            finalOutcomes.add(Outcome.LATE, 1);
+            return true;
+        }
         boolean late = window < sealedUntil || arrivalMillis >= lateAt(window, event.kind());
         Outcome outcome = ledger.accept(high, low, event, arrivalMillis, late);
         if (outcome != null) {
@@ -128,14 +146,39 @@ final class ExperimentCounter {
         return reach;
     }
 
-    /** The watermark at which the next window is sealed, or {@code Long.MAX_VALUE} when all are. */
+    /** The watermark at which the next window is sealed or the units are archived; {@code Long.MAX_VALUE} after that. */
     long nextSealAt() {
-        return sealedUntil >= runEnd ? Long.MAX_VALUE : sealAt(sealedUntil);
+        if (sealedUntil < runEnd) {
+            return sealAt(sealedUntil);
+        }
+        return archived ? Long.MAX_VALUE : archiveAt();
+    }
+
+    private long archiveAt() {
+        return runEnd + sealDelayMillis + ARCHIVE_AFTER;
+    }
+
+    /** Whether the run has been over for so long that its units need not be remembered. */
+    boolean isToBeArchived(long watermark) {
+        return !archived && sealedUntil >= runEnd && watermark >= archiveAt();
+    }
+
+    /** Forgets every unit. What still comes for the run is late, whatever it would have been. */
+    void archive() {
+        archived = true;
+        changed = true;
+        ledger = newLedger();
+    }
+
+    boolean isArchived() {
+        return archived;
     }
 
     /** Seals every window that a watermark has passed; windows in which nothing happened are sealed without a trace. */
     List<Sealed> sealUpTo(long watermark) {
-        return watermark < nextSealAt() ? List.of() : sealThrough(windowOf(watermark - sealDelayMillis));
+        return sealedUntil >= runEnd || watermark < nextSealAt()
+                ? List.of()
+                : sealThrough(windowOf(watermark - sealDelayMillis));
     }
 
     /** Seals every window that ends at or before a moment, whatever the watermark; at most to the end of the run. */
