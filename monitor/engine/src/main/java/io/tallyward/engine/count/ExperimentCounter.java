@@ -28,6 +28,7 @@ final class ExperimentCounter {
     private final Plan plan;
     private final String planDigest;
     private final long windowMillis;
+    private final WindowGrid windows;
     private final long sealDelayMillis;
     private final long viewPatienceMillis;
     private final long runEnd;
@@ -54,6 +55,7 @@ final class ExperimentCounter {
         this.plan = plan;
         planDigest = PlanDigest.of(plan);
         windowMillis = plan.count().window().toMillis();
+        windows = new WindowGrid(windowMillis);
         sealDelayMillis = plan.count().sealDelayMillis();
         viewPatienceMillis = plan.count().viewPatienceMillis();
         runEnd = plan.run().end().toEpochMilli();
@@ -129,7 +131,7 @@ final class ExperimentCounter {
     }
 
     private long windowOf(long atMillis) {
-        return Math.floorDiv(atMillis, windowMillis) * windowMillis;
+        return windows.of(atMillis);
     }
 
     /** The watermark at which an event of a window comes too late for it. */

@@ -27,27 +27,42 @@ final class HashedRows {
 
     private static final VarHandle LONGS = MethodHandles.byteArrayViewVarHandle(long[].class, ByteOrder.BIG_ENDIAN);
 
+    /** Rows to a place of the directory below which it is not doubled, so that crowding hashes cannot make it grow. */
+    private static final int LEAST_ROWS_PER_PLACE = 32;
+
     private final int stride;
-    private Leaf[] directory = {new Leaf(0, new byte[0])};
+
+    /** What is known of a leaf stands in the directory itself: the first thing read from the leaf is the row. */
+    private byte[][] leaves;
+
+    private int[] counts;
+    private byte[] depths;
     private int depth;
     private int size;
-    private Leaf at;
+
+    private int place;
+    private byte[] at;
     private int offset;
-
-    private static final class Leaf {
-        private int depth;
-        private byte[] bytes;
-        private int rows;
-
-        Leaf(int depth, byte[] bytes) {
-            this.depth = depth;
-            this.bytes = bytes;
-        }
-    }
 
     /** @param payload bytes of a row beside its hash */
     HashedRows(int payload) {
         stride = HASH + payload;
+        reset();
+    }
+
+    private void reset() {
+        leaves = new byte[][] {new byte[0]};
+        counts = new int[1];
+        depths = new byte[1];
+        depth = 0;
+        size = 0;
+        go(0);
+    }
+
+    private void go(int toPlace) {
+        place = toPlace;
+        at = leaves[toPlace];
+        offset = 0;
     }
 
     /** Visits a row. */
@@ -63,7 +78,7 @@ final class HashedRows {
 
     /** Bytes of the leaf that holds the row last found; what lies at {@link #payload()} may be changed. */
     byte[] bytes() {
-        return at.bytes;
+        return at;
     }
 
     /** Where the payload of the row last found begins. */
@@ -73,102 +88,112 @@ final class HashedRows {
 
     /** The first half of the hash of the row last found. */
     long high() {
-        return (long) LONGS.get(at.bytes, offset);
+        return (long) LONGS.get(at, offset);
     }
 
     /** The second half. */
     long low() {
-        return (long) LONGS.get(at.bytes, offset + Long.BYTES);
+        return (long) LONGS.get(at, offset + Long.BYTES);
     }
 
     /** Looks a row up; returns whether there is one. */
     boolean find(long high, long low) {
-        at = leaf(high);
-        offset = position(at, high, low) * stride;
-        return offset < at.rows * stride && high() == high && low() == low;
+        go(placeOf(high));
+        offset = position(high, low) * stride;
+        return isRow() && high() == high && low() == low;
     }
 
     /** The first row, in the order of hashes, whose hash begins with 32 given bits; returns whether there is one. */
     boolean findFirst(int prefix) {
         long least = (long) prefix << 32;
-        at = leaf(least);
-        offset = position(at, least, 0) * stride;
-        return offset < at.rows * stride && (int) (high() >>> 32) == prefix;
+        go(placeOf(least));
+        offset = position(least, 0) * stride;
+        return holds(prefix);
     }
 
     /** Moves on to the next row; returns whether there is one whose hash begins with the same bits. */
     boolean next(int prefix) {
         offset += stride;
-        return offset < at.rows * stride && (int) (high() >>> 32) == prefix;
+        return holds(prefix);
+    }
+
+    /** Whether the place last found holds a row whose hash begins with 32 given bits. */
+    boolean holds(int prefix) {
+        return isRow() && (int) (high() >>> 32) == prefix;
+    }
+
+    private boolean isRow() {
+        return offset < counts[place] * stride;
     }
 
     /** Adds a row that was just looked for and not found. Its payload is all zeros. */
     void insert(long high, long low) {
-        if (at.rows == MOST_ROWS && at.depth < DEEPEST) {
-            split(high);
+        while (counts[place] >= MOST_ROWS && canSplit()) {
+            split();
             find(high, low);
         }
-        if (at.rows * stride == at.bytes.length) {
-            at.bytes = Arrays.copyOf(at.bytes, at.bytes.length + SPARE_ROWS * stride);
+        int used = counts[place] * stride;
+        if (used == at.length) {
+            at = Arrays.copyOf(at, used + SPARE_ROWS * stride);
         }
-        byte[] bytes = at.bytes;
-        System.arraycopy(bytes, offset, bytes, offset + stride, at.rows * stride - offset);
-        LONGS.set(bytes, offset, high);
-        LONGS.set(bytes, offset + Long.BYTES, low);
-        Arrays.fill(bytes, offset + HASH, offset + stride, (byte) 0);
-        at.rows++;
+        System.arraycopy(at, offset, at, offset + stride, used - offset);
+        LONGS.set(at, offset, high);
+        LONGS.set(at, offset + Long.BYTES, low);
+        Arrays.fill(at, offset + HASH, offset + stride, (byte) 0);
+        keep(counts[place] + 1);
         size++;
     }
 
     /** Removes the row last found; what is then found is the row after it, if any. */
     void remove() {
-        byte[] bytes = at.bytes;
-        System.arraycopy(bytes, offset + stride, bytes, offset, at.rows * stride - offset - stride);
-        at.rows--;
+        int rest = counts[place] - 1;
+        System.arraycopy(at, offset + stride, at, offset, rest * stride - offset);
         size--;
         if (size == 0) {
-            directory = new Leaf[] {new Leaf(0, new byte[0])};
-            depth = 0;
-            at = directory[0];
-            offset = 0;
-        } else if (bytes.length > (at.rows + 4 * SPARE_ROWS) * stride) {
-            at.bytes = Arrays.copyOf(bytes, (at.rows + SPARE_ROWS) * stride);
+            reset();
+            return;
         }
+        if (at.length > (rest + 4 * SPARE_ROWS) * stride) {
+            at = Arrays.copyOf(at, (rest + SPARE_ROWS) * stride);
+        }
+        keep(rest);
     }
 
-    /** Whether the place last found holds a row whose hash begins with 32 given bits. */
-    boolean holds(int prefix) {
-        return offset < at.rows * stride && (int) (high() >>> 32) == prefix;
+    /** Enters the current leaf, with a number of rows, at each of its places. */
+    private void keep(int rows) {
+        int span = 1 << (depth - depths[place]);
+        int first = place & -span;
+        for (int i = first; i < first + span; i++) {
+            leaves[i] = at;
+            counts[i] = rows;
+        }
     }
 
     /** Visits every row, in the order of hashes. */
     void forEach(Visitor visitor) {
-        Leaf before = null;
-        for (Leaf leaf : directory) {
-            if (leaf != before) {
-                for (int row = 0; row < leaf.rows; row++) {
-                    visitor.visit(leaf.bytes, row * stride);
-                }
+        for (int i = 0; i < leaves.length; i += 1 << (depth - depths[i])) {
+            for (int row = 0; row < counts[i]; row++) {
+                visitor.visit(leaves[i], row * stride);
             }
-            before = leaf;
         }
     }
 
-    private Leaf leaf(long high) {
-        return directory[depth == 0 ? 0 : (int) (high >>> (Long.SIZE - depth))];
+    private int placeOf(long high) {
+        return depth == 0 ? 0 : (int) (high >>> (Long.SIZE - depth));
     }
 
     /**
-     * Number of rows before a hash. Hashes are spread evenly, so the place is guessed and then walked to.
+     * Number of rows of the current leaf before a hash. Hashes are spread evenly, so the place is guessed and then walked to.
      */
-    private int position(Leaf leaf, long high, long low) {
-        int rows = leaf.rows;
-        long spread = (high << leaf.depth) >>> 32;
+    private int position(long high, long low) {
+        byte[] bytes = at;
+        int rows = counts[place];
+        long spread = (high << depths[place]) >>> 32;
         int row = (int) ((spread * rows) >>> 32);
-        while (row < rows && precedes(leaf.bytes, row * stride, high, low)) {
+        while (row < rows && precedes(bytes, row * stride, high, low)) {
             row++;
         }
-        while (row > 0 && !precedes(leaf.bytes, (row - 1) * stride, high, low)) {
+        while (row > 0 && !precedes(bytes, (row - 1) * stride, high, low)) {
             row--;
         }
         return row;
@@ -180,30 +205,46 @@ final class HashedRows {
                 || (compared == 0 && Long.compareUnsigned((long) LONGS.get(bytes, at + Long.BYTES), low) < 0);
     }
 
-    private void split(long high) {
-        Leaf full = leaf(high);
-        if (full.depth == depth) {
-            Leaf[] doubled = new Leaf[2 * directory.length];
-            for (int i = 0; i < directory.length; i++) {
-                doubled[2 * i] = directory[i];
-                doubled[2 * i + 1] = directory[i];
-            }
-            directory = doubled;
-            depth++;
+    private boolean canSplit() {
+        return depths[place] < depth || (depth < DEEPEST && (long) leaves.length * LEAST_ROWS_PER_PLACE <= size);
+    }
+
+    /** Makes two leaves of the current one. */
+    private void split() {
+        if (depths[place] == depth) {
+            doubleDirectory();
         }
-        int bit = Long.SIZE - 1 - full.depth;
+        int span = 1 << (depth - depths[place] - 1);
+        int first = place & -(2 * span);
+        int bit = Long.SIZE - 1 - depths[place];
+        byte[] full = at;
+        int rows = counts[place];
         int lower = 0;
-        while (lower < full.rows && ((long) LONGS.get(full.bytes, lower * stride) >>> bit & 1) == 0) {
+        while (lower < rows && ((long) LONGS.get(full, lower * stride) >>> bit & 1) == 0) {
             lower++;
         }
-        full.depth++;
-        Leaf upper = new Leaf(full.depth, trimmed(full.bytes, lower, full.rows));
-        upper.rows = full.rows - lower;
-        full.bytes = trimmed(full.bytes, 0, lower);
-        full.rows = lower;
-        int span = 1 << (depth - full.depth);
-        int first = (int) (high >>> (Long.SIZE - depth)) & -(2 * span);
-        Arrays.fill(directory, first + span, first + 2 * span, upper);
+        byte deeper = (byte) (depths[place] + 1);
+        Arrays.fill(depths, first, first + 2 * span, deeper);
+        Arrays.fill(leaves, first, first + span, trimmed(full, 0, lower));
+        Arrays.fill(counts, first, first + span, lower);
+        Arrays.fill(leaves, first + span, first + 2 * span, trimmed(full, lower, rows));
+        Arrays.fill(counts, first + span, first + 2 * span, rows - lower);
+    }
+
+    private void doubleDirectory() {
+        byte[][] leavesBefore = leaves;
+        int[] countsBefore = counts;
+        byte[] depthsBefore = depths;
+        leaves = new byte[2 * leavesBefore.length][];
+        counts = new int[leaves.length];
+        depths = new byte[leaves.length];
+        for (int i = 0; i < leaves.length; i++) {
+            leaves[i] = leavesBefore[i / 2];
+            counts[i] = countsBefore[i / 2];
+            depths[i] = depthsBefore[i / 2];
+        }
+        depth++;
+        place *= 2;
     }
 
     private byte[] trimmed(byte[] bytes, int from, int to) {

@@ -19,6 +19,7 @@ final class Ledger implements CountLedger {
     private final long windowMillis;
     private final long sealDelayMillis;
 
+    private final WindowGrid windows;
     private final Optional<SegmentTable> segments;
     private final OpenUnits open;
     private final SealedUnits sealed;
@@ -38,6 +39,7 @@ final class Ledger implements CountLedger {
         attributionMillis = plan.count().attribution().toMillis();
         windowMillis = plan.count().window().toMillis();
         sealDelayMillis = plan.count().sealDelayMillis();
+        windows = new WindowGrid(windowMillis);
         long runFrom = plan.run().from().toEpochMilli();
         open = new OpenUnits(runFrom, plan.variants().size(), segments.isPresent());
         sealed = new SealedUnits(runFrom);
@@ -53,10 +55,22 @@ final class Ledger implements CountLedger {
         if (!known && sealed.find(high, low)) {
             return view ? exposeAgain(variant, event.atMillis()) : clickAfterwards(variant, event.atMillis());
         }
+        if (known && view && open.isFurtherView(variant, event.atMillis())) {
+            countFurtherView(high, low);
+            return null;
+        }
         Outcome outcome =
                 view ? expose(high, low, event, known, late) : click(high, low, event, arrivalMillis, known, late);
         openEvents += outcome == null ? 1 : 0;
         return outcome;
+    }
+
+    /** The most frequent event by far; late or not, it can only become a repeat. */
+    private void countFurtherView(long high, long low) {
+        if (open.addFurtherView()) {
+            changed.add(high, low);
+        }
+        openEvents++;
     }
 
     private Outcome expose(long high, long low, EventSlot event, boolean known, boolean late) {
@@ -140,7 +154,7 @@ final class Ledger implements CountLedger {
     }
 
     private long windowOf(long atMillis) {
-        return Math.floorDiv(atMillis, windowMillis) * windowMillis;
+        return windows.of(atMillis);
     }
 
     @Override

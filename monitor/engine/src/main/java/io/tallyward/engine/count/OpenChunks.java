@@ -1,6 +1,5 @@
 package io.tallyward.engine.count;
 
-import java.io.ByteArrayOutputStream;
 import java.io.DataOutput;
 import java.io.DataOutputStream;
 import java.io.IOException;
@@ -17,12 +16,11 @@ final class OpenChunks {
 
     private static final class Window {
         private final List<byte[]> full = new ArrayList<>();
-        private final ByteArrayOutputStream bytes = new ByteArrayOutputStream(256);
+        private final ChunkBytes bytes = new ChunkBytes();
         private final DataOutputStream out = new DataOutputStream(bytes);
 
         private void close() {
-            full.add(bytes.toByteArray());
-            bytes.reset();
+            full.add(bytes.take());
         }
     }
 

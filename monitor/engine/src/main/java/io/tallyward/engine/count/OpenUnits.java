@@ -121,6 +121,27 @@ final class OpenUnits {
         return working;
     }
 
+    /**
+     * Whether an exposure of the unit last found only adds to the number of exposures that its row holds: to the variant
+     * that stands, after the exposure that stands.
+     */
+    boolean isFurtherView(int variant, long atMillis) {
+        long state = state(rows.bytes(), rows.payload());
+        return (state & RICH) == 0
+                && (state >>> (EXPOSURE_BITS + 2) & (1 << VARIANT_BITS) - 1) == variant + 1
+                && atMillis - runFrom > state >>> (VARIANT_BITS + EXPOSURE_BITS + 2)
+                && (state >>> 2 & MOST_EXPOSURES) < MOST_EXPOSURES;
+    }
+
+    /** Adds it in place and marks the unit as changed; returns whether it was not marked before. */
+    boolean addFurtherView() {
+        byte[] bytes = rows.bytes();
+        int at = rows.payload();
+        long state = state(bytes, at);
+        putState(bytes, at, state + (1 << 2) | CHANGED);
+        return (state & CHANGED) == 0;
+    }
+
     private void restore(long packed, long arrival) {
         int variant = (int) (packed >>> 2) & (1 << VARIANT_BITS) - 1;
         switch ((int) packed & 3) {
@@ -208,10 +229,14 @@ final class OpenUnits {
     private void put(long state, int tie, int list) {
         byte[] bytes = rows.bytes();
         int at = rows.payload();
-        INTS.set(bytes, at, (int) (state >>> Short.SIZE));
-        SHORTS.set(bytes, at + Integer.BYTES, (short) state);
+        putState(bytes, at, state);
         INTS.set(bytes, at + TIE, tie);
         INTS.set(bytes, at + EVENTS, list + 1);
+    }
+
+    private static void putState(byte[] bytes, int at, long state) {
+        INTS.set(bytes, at, (int) (state >>> Short.SIZE));
+        SHORTS.set(bytes, at + Integer.BYTES, (short) state);
     }
 
     /** Takes the mark of change from the unit last found. */

@@ -1,6 +1,5 @@
 package io.tallyward.engine.count;
 
-import java.io.ByteArrayOutputStream;
 import java.io.DataOutputStream;
 import java.io.IOException;
 import java.io.UncheckedIOException;
@@ -11,7 +10,7 @@ import java.util.List;
 final class SealedChunks {
 
     private final List<byte[]> full = new ArrayList<>();
-    private final ByteArrayOutputStream bytes = new ByteArrayOutputStream(1024);
+    private final ChunkBytes bytes = new ChunkBytes();
     private final DataOutputStream out = new DataOutputStream(bytes);
 
     void add(OpenChunks.Packed unit) {
@@ -26,8 +25,7 @@ final class SealedChunks {
     }
 
     private void close() {
-        full.add(bytes.toByteArray());
-        bytes.reset();
+        full.add(bytes.take());
     }
 
     /** The chunks; empty when there was no unit. */
