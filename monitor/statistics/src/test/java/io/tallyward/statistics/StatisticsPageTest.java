@@ -53,8 +53,7 @@ class StatisticsPageTest {
 
     private void says(String format, Object... values) {
         String text = String.format(Locale.ROOT, format, values);
-
-        // X assertTrue(page.contains(text), "STATISTICS.md says: " + text);
+        assertTrue(page.contains(text), "STATISTICS.md says: " + text);
     }
 
     @Test
