@@ -18,6 +18,8 @@ import io.tallyward.statistics.proportion.Stratum;
 import io.tallyward.statistics.proportion.ZStatistic;
 import io.tallyward.statistics.ratio.RatioComparison;
 import io.tallyward.statistics.ratio.RatioEstimate;
+import io.tallyward.statistics.ratio.RatioStratum;
+import io.tallyward.statistics.ratio.StratifiedRatioComparison;
 import io.tallyward.statistics.ratio.UnitSums;
 import io.tallyward.statistics.split.PearsonSplit;
 import io.tallyward.statistics.split.SplitChangePoint;
@@ -155,6 +157,7 @@ class HostileCountsTest {
             UnitSums two = sums.get(random.nextInt(sums.size())).plus(sums.get(random.nextInt(sums.size())));
             ask(() -> RatioEstimate.of(one));
             ask(() -> RatioComparison.of(one, two));
+            ask(() -> StratifiedRatioComparison.of(List.of(new RatioStratum(one, two), new RatioStratum(two, one))));
             ask(() -> one.minus(two)).ifPresent(rest -> ask(() -> RatioEstimate.of(rest)));
             BigInteger[] any = new BigInteger[5];
             for (int i = 0; i < any.length; i++) {
