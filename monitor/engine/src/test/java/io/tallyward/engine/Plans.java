@@ -70,7 +70,13 @@ public final class Plans {
         return this;
     }
 
-    /** The same rhythm, a trial being a view. */
+    /** Counts units, with the attribution, grace and windows set so far. */
+    public Plans byUnit() {
+        count = new CountRule(CountBy.UNIT, count.attribution(), count.grace(), count.window());
+        return this;
+    }
+
+    /** Counts views, with the attribution, grace and windows set so far. */
     public Plans byView() {
         count = new CountRule(CountBy.VIEW, count.attribution(), count.grace(), count.window());
         return this;

@@ -85,11 +85,16 @@ public final class DecisionJson {
         JsonBytes.text(json, "variant", count.variant());
         json.writeNumberField("trials", count.trials());
         json.writeNumberField("successes", count.successes());
+        EstimatesJson.write(json, "unitTotals", count.unitTotals());
     }
 
     private static VariantCount count(JsonMembers count) {
         return new VariantCount(
-                count.index("epoch"), count.text("variant"), count.whole("trials"), count.whole("successes"));
+                count.index("epoch"),
+                count.text("variant"),
+                count.whole("trials"),
+                count.whole("successes"),
+                EstimatesJson.unitTotals(count, "unitTotals"));
     }
 
     private static void split(JsonGenerator json, Split split) throws IOException {
@@ -129,6 +134,7 @@ public final class DecisionJson {
         EstimatesJson.write(json, "lift", comparison.lift());
         EstimatesJson.write(json, "outlook", comparison.outlook());
         EstimatesJson.write(json, "adjusted", comparison.adjusted());
+        EstimatesJson.write(json, "clustering", comparison.clustering());
         JsonBytes.text(json, "verdict", comparison.verdict().code());
         json.writeStringField(
                 "held", comparison.held() == null ? null : comparison.held().code());
@@ -154,6 +160,7 @@ public final class DecisionJson {
                 EstimatesJson.estimated(comparison, "lift"),
                 EstimatesJson.outlook(comparison, "outlook"),
                 EstimatesJson.adjusted(comparison, "adjusted"),
+                EstimatesJson.clustering(comparison, "clustering"),
                 verdict(comparison, "verdict"),
                 comparison.codeOrNull("held", Verdict.values(), Verdict::code),
                 comparison.text("reason"));

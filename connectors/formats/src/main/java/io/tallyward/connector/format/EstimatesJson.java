@@ -2,8 +2,10 @@ package io.tallyward.connector.format;
 
 import com.fasterxml.jackson.core.JsonGenerator;
 import io.tallyward.engine.record.Adjusted;
+import io.tallyward.engine.record.Clustering;
 import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Outlook;
+import io.tallyward.engine.record.UnitTotals;
 import java.io.IOException;
 import java.util.Optional;
 
@@ -75,6 +77,40 @@ final class EstimatesJson {
     private static Estimated present(JsonMembers members, String name) {
         return Optional.ofNullable(estimated(members, name))
                 .orElseThrow(() -> new RecordFormatException(name + ": null (expected: an object)"));
+    }
+
+    static void write(JsonGenerator json, String name, Clustering clustering) throws IOException {
+        if (begin(json, name, clustering)) {
+            JsonBytes.real(json, "independentZ", clustering.independentZ());
+            JsonBytes.real(json, "designEffect", clustering.designEffect());
+            json.writeEndObject();
+        }
+    }
+
+    static Clustering clustering(JsonMembers members, String name) {
+        return members.objectOrNull(name)
+                .map(clustering -> new Clustering(clustering.real("independentZ"), clustering.real("designEffect")))
+                .orElse(null);
+    }
+
+    static void write(JsonGenerator json, String name, UnitTotals totals) throws IOException {
+        if (begin(json, name, totals)) {
+            json.writeNumberField("units", totals.units());
+            json.writeNumberField("trialSquares", totals.trialSquares());
+            json.writeNumberField("products", totals.products());
+            json.writeNumberField("successSquares", totals.successSquares());
+            json.writeEndObject();
+        }
+    }
+
+    static UnitTotals unitTotals(JsonMembers members, String name) {
+        return members.objectOrNull(name)
+                .map(totals -> new UnitTotals(
+                        totals.whole("units"),
+                        totals.whole("trialSquares"),
+                        totals.whole("products"),
+                        totals.whole("successSquares")))
+                .orElse(null);
     }
 
     private static boolean begin(JsonGenerator json, String name, Object value) throws IOException {

@@ -6,6 +6,7 @@ import io.tallyward.engine.count.SealCause;
 import io.tallyward.engine.count.TallyUpdate;
 import io.tallyward.engine.count.WindowTally;
 import io.tallyward.engine.record.Adjusted;
+import io.tallyward.engine.record.Clustering;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.Occasion;
@@ -15,6 +16,7 @@ import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.record.Outlook;
 import io.tallyward.engine.record.Trust;
+import io.tallyward.engine.record.UnitTotals;
 import io.tallyward.engine.record.Verdict;
 import java.time.Instant;
 import java.util.LinkedHashMap;
@@ -64,7 +66,12 @@ final class RandomRecords {
                 any(Occasion.values()),
                 instant(),
                 digest(),
-                list(() -> new VariantCount(random.nextInt(4), word(), count(), count())),
+                list(() -> new VariantCount(
+                        random.nextInt(4),
+                        word(),
+                        count(),
+                        count(),
+                        random.nextBoolean() ? null : new UnitTotals(count(), count(), count(), count()))),
                 outcomes(),
                 count(),
                 new Split(real(), random.nextDouble(), Math.abs(real()), random.nextInt(9), random.nextDouble()),
@@ -125,6 +132,7 @@ final class RandomRecords {
                         : new Outlook(
                                 random.nextDouble(), random.nextDouble(), random.nextDouble(), random.nextDouble()),
                 random.nextBoolean() ? null : adjusted(),
+                random.nextBoolean() ? null : new Clustering(real(), Math.abs(real())),
                 any(Verdict.values()),
                 random.nextBoolean() ? null : any(Verdict.values()),
                 word());

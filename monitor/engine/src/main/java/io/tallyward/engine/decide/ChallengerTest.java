@@ -8,8 +8,6 @@ import io.tallyward.engine.plan.Variant;
 import io.tallyward.engine.record.Verdict;
 import io.tallyward.statistics.boundary.BoundarySequence;
 import io.tallyward.statistics.boundary.Look;
-import io.tallyward.statistics.proportion.StratifiedComparison;
-import io.tallyward.statistics.proportion.Stratum;
 import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
@@ -116,27 +114,30 @@ final class ChallengerTest {
      * @param sound whether the data are trusted; if not, a final verdict is held
      */
     Attempt attempt(CumulativeCounts counts, long windowEnd, boolean runEnds, boolean sound) {
-        List<Stratum> strata = counts.strata(variant);
-        Optional<StratifiedComparison> comparison = StratifiedComparison.of(strata);
-        double fraction = comparison.map(found -> fraction(found, strata)).orElse(0.0);
-        double clock = comparison.map(found -> clock(found, fraction, runEnds)).orElse(0.0);
+        Optional<Evidence> evidence = counts.evidence(variant);
+        double fraction = evidence.map(this::fraction).orElse(0.0);
+        double clock = evidence.map(found -> clock(found, fraction, runEnds)).orElse(0.0);
         boolean minimumRunOver = minimumRunOver(windowEnd);
         if (!runEnds && !calendar.isDue(windowEnd, fraction, minimumRunOver)) {
             return new Attempt.NotDue();
+        }
+        if (evidence.isEmpty()) {
+            return new Attempt.Delayed(readiness.tooFew(counts).orElse(Readiness.NOTHING_VARIES), calendar.delayed());
         }
         boolean benefitOpen = runEnds || minimumRunOver;
         boolean last = runEnds || (fraction >= 1 && benefitOpen);
         double time = last ? 1 : spendingTime(fraction, windowEnd);
         Optional<String> caution = readiness.tooSkew(
-                strata, () -> TailSpending.at(plan, levels, time, benefitOpen), TailSpending.all(plan, levels));
+                evidence.get().skewness(),
+                () -> TailSpending.at(plan, levels, time, benefitOpen),
+                TailSpending.all(plan, levels));
         Optional<String> obstacle =
                 readiness.tooFew(counts).or(() -> runEnds ? Optional.empty() : growing(fraction, clock, caution));
-        if (comparison.isEmpty() || obstacle.isPresent()) {
-            return new Attempt.Delayed(obstacle.orElse(""), calendar.delayed());
+        if (obstacle.isPresent()) {
+            return new Attempt.Delayed(obstacle.get(), calendar.delayed());
         }
         sitting = new Sitting(
-                strata,
-                comparison.get(),
+                evidence.get(),
                 fraction,
                 clock,
                 windowEnd,
@@ -149,19 +150,13 @@ final class ChallengerTest {
         return new Attempt.Taken(judge(sound));
     }
 
-    private double fraction(StratifiedComparison found, List<Stratum> strata) {
+    private double fraction(Evidence found) {
         double planned = design().maximumInformation();
         if (plan.test().measure() == InformationMeasure.OBSERVED) {
             return found.information() / planned;
         }
         double pooled = design().pooledRate();
-        double trials = 0;
-        for (Stratum stratum : strata) {
-            double own = stratum.trials();
-            double others = stratum.controlTrials();
-            trials += own + others > 0 ? own * (others / (own + others)) : 0;
-        }
-        return trials / (planned * pooled * (1 - pooled));
+        return found.weight() / (planned * pooled * (1 - pooled));
     }
 
     /**
@@ -169,7 +164,7 @@ final class ChallengerTest {
      * may differ it is the variance of the score, on the scale of the plan. The same at the end of a run whose information has
      * not grown since the last look though counts came in, because the rates moved: from that look on, then, by the score.
      */
-    private double clock(StratifiedComparison found, double fraction, boolean runEnds) {
+    private double clock(Evidence found, double fraction, boolean runEnds) {
         double clock = fraction;
         if (!plan.epochs().isEmpty()) {
             double pooled = design().pooledRate() * (1 - design().pooledRate());
@@ -248,7 +243,12 @@ final class ChallengerTest {
                 sitting.found().scoreVariance(),
                 betaSpent,
                 bounds.futility(),
-                report.write(sitting, levels, bounds, taken, new LookReport.Outcome(finding, verdict, held)));
+                report.write(
+                        sitting,
+                        levels,
+                        bounds,
+                        taken,
+                        new LookReport.Outcome(finding, verdict, held, findingOfIndependentViews(bounds, finding))));
         looks.put(bounds.look().number(), look);
         return look;
     }
@@ -306,6 +306,14 @@ final class ChallengerTest {
         }
         double towardsBenefit = higherIsBetter() ? z : -z;
         return towardsBenefit < bounds.futility() ? Verdict.STOP_FUTILITY : Verdict.CONTINUE;
+    }
+
+    /** What the look would have found by the same boundaries, had the views of a unit been independent. */
+    private Verdict findingOfIndependentViews(LookPath.Bounds bounds, Verdict finding) {
+        return sitting.found()
+                .clustering()
+                .map(clustering -> finding(clustering.independentZ(), bounds))
+                .orElse(finding);
     }
 
     private void settle(Verdict finding, boolean sound) {

@@ -1,6 +1,7 @@
 package io.tallyward.engine.decide;
 
 import io.tallyward.engine.record.Adjusted;
+import io.tallyward.engine.record.Clustering;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Outlook;
@@ -32,6 +33,7 @@ final class ComparisonPacking {
         write(comparison.lift(), out);
         write(comparison.outlook(), out);
         write(comparison.adjusted(), out);
+        write(comparison.clustering(), out);
         out.writeUTF(comparison.verdict().name());
         out.writeUTF(comparison.held() == null ? "" : comparison.held().name());
         out.writeUTF(comparison.reason());
@@ -56,6 +58,7 @@ final class ComparisonPacking {
                 estimated(in),
                 outlook(in),
                 adjusted(in),
+                clustering(in),
                 Verdict.valueOf(in.readUTF()),
                 heldVerdict(in),
                 in.readUTF());
@@ -122,5 +125,16 @@ final class ComparisonPacking {
         return in.readBoolean()
                 ? new Adjusted(in.readDouble(), in.readDouble(), estimated(in), estimated(in), estimated(in))
                 : null;
+    }
+
+    private static void write(Clustering clustering, DataOutput out) throws IOException {
+        if (flag(clustering, out)) {
+            out.writeDouble(clustering.independentZ());
+            out.writeDouble(clustering.designEffect());
+        }
+    }
+
+    private static Clustering clustering(DataInput in) throws IOException {
+        return in.readBoolean() ? new Clustering(in.readDouble(), in.readDouble()) : null;
     }
 }

@@ -1,94 +1,143 @@
 package io.tallyward.engine.decide;
 
 import io.tallyward.engine.count.WindowTally.Cell;
+import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.UnitTotals;
 import io.tallyward.statistics.proportion.Stratum;
+import io.tallyward.statistics.ratio.RatioStratum;
+import io.tallyward.statistics.ratio.UnitSums;
 import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
+import java.math.BigInteger;
 import java.util.ArrayList;
 import java.util.List;
+import java.util.Optional;
+import java.util.function.ToLongFunction;
 
-/** Trials and successes of the complete windows, by allocation epoch and variant. */
+/**
+ * Trials and successes of the complete windows, by allocation epoch and variant; with the sums over units where a plan counts
+ * views. Sums beyond 2^63 are refused by the cells that would hold them.
+ */
 final class CumulativeCounts {
 
     private final Plan plan;
-    private final int variants;
-    private final long[][] trials;
-    private final long[][] successes;
+    private final boolean byView;
+    private final Cell[][] cells;
 
     CumulativeCounts(Plan plan) {
         this.plan = plan;
-        variants = plan.variants().size();
-        trials = new long[plan.epochs().size() + 1][variants];
-        successes = new long[plan.epochs().size() + 1][variants];
+        byView = plan.count().by() == CountBy.VIEW;
+        cells = new Cell[plan.epochs().size() + 1][plan.variants().size()];
+        for (int epoch = 0; epoch < cells.length; epoch++) {
+            for (int variant = 0; variant < cells[epoch].length; variant++) {
+                cells[epoch][variant] = Cell.ofUnits(epoch, variant, 0, 0);
+            }
+        }
     }
 
     void add(Cell cell) {
-        trials[cell.epoch()][cell.variant()] += cell.trials();
-        successes[cell.epoch()][cell.variant()] += cell.successes();
+        cells[cell.epoch()][cell.variant()] = cells[cell.epoch()][cell.variant()].plus(cell);
     }
 
     int epochs() {
-        return trials.length;
+        return cells.length;
     }
 
-    /** Trials of each variant during an epoch, in the plan's order. */
-    long[] trialsIn(int epoch) {
-        return trials[epoch].clone();
+    /** Units of each variant during an epoch, in the plan's order: what was allocated, whatever a trial is. */
+    long[] unitsIn(int epoch) {
+        long[] units = new long[cells[epoch].length];
+        for (int variant = 0; variant < units.length; variant++) {
+            units[variant] = cells[epoch][variant].units();
+        }
+        return units;
     }
 
     long trials(int variant) {
-        long sum = 0;
-        for (long[] epoch : trials) {
-            sum += epoch[variant];
-        }
-        return sum;
+        return sum(variant, Cell::trials);
     }
 
     long successes(int variant) {
+        return sum(variant, Cell::successes);
+    }
+
+    /**
+     * How many units with equally many trials each would weigh as much as those of a variant do: {@code (sum x)^2 / sum x^2}
+     * (Kish 1965, recalled). No unit has more than one over its root of all trials. Where every unit is one trial it is their
+     * number.
+     */
+    double effectiveUnits(int variant) {
+        double trials = trials(variant);
+        double squares = sum(variant, Cell::trialSquares);
+        return squares > 0 ? trials * (trials / squares) : 0;
+    }
+
+    private long sum(int variant, ToLongFunction<Cell> number) {
         long sum = 0;
-        for (long[] epoch : successes) {
-            sum += epoch[variant];
+        for (Cell[] epoch : cells) {
+            sum = Math.addExact(sum, number.applyAsLong(epoch[variant]));
         }
         return sum;
     }
 
-    /** The comparison of a variant with the control, one stratum per epoch. */
-    List<Stratum> strata(int variant) {
+    /** The comparison of a variant with the control, one stratum per epoch; empty while there is no information. */
+    Optional<Evidence> evidence(int variant) {
         int control = plan.variantIndex(plan.control().name());
-        List<Stratum> strata = new ArrayList<>();
-        for (int epoch = 0; epoch < trials.length; epoch++) {
-            strata.add(new Stratum(
-                    successes[epoch][variant],
-                    trials[epoch][variant],
-                    successes[epoch][control],
-                    trials[epoch][control]));
+        if (byView) {
+            List<RatioStratum> strata = new ArrayList<>();
+            for (Cell[] epoch : cells) {
+                strata.add(new RatioStratum(sums(epoch[variant]), sums(epoch[control])));
+            }
+            return Evidence.Views.of(strata);
         }
-        return strata;
+        List<Stratum> strata = new ArrayList<>();
+        for (Cell[] epoch : cells) {
+            strata.add(new Stratum(
+                    epoch[variant].successes(),
+                    epoch[variant].trials(),
+                    epoch[control].successes(),
+                    epoch[control].trials()));
+        }
+        return Evidence.Trials.of(strata);
+    }
+
+    private static UnitSums sums(Cell cell) {
+        return new UnitSums(
+                cell.units(),
+                BigInteger.valueOf(cell.trials()),
+                BigInteger.valueOf(cell.successes()),
+                BigInteger.valueOf(cell.trialSquares()),
+                BigInteger.valueOf(cell.products()),
+                BigInteger.valueOf(cell.successSquares()));
     }
 
     /** All counts, by epoch then variant; epochs that have not begun are left out. */
     List<VariantCount> list() {
         List<VariantCount> list = new ArrayList<>();
-        for (int epoch = 0; epoch < trials.length; epoch++) {
+        for (int epoch = 0; epoch < cells.length; epoch++) {
             if (epoch == 0 || anyTrials(epoch)) {
-                for (int variant = 0; variant < variants; variant++) {
+                for (Cell cell : cells[epoch]) {
                     list.add(new VariantCount(
                             epoch,
-                            plan.variants().get(variant).name(),
-                            trials[epoch][variant],
-                            successes[epoch][variant]));
+                            plan.variants().get(cell.variant()).name(),
+                            cell.trials(),
+                            cell.successes(),
+                            byView ? totals(cell) : null));
                 }
             }
         }
         return list;
     }
 
+    private static UnitTotals totals(Cell cell) {
+        return new UnitTotals(cell.units(), cell.trialSquares(), cell.products(), cell.successSquares());
+    }
+
     private boolean anyTrials(int epoch) {
-        for (long count : trials[epoch]) {
-            if (count > 0) {
+        for (Cell cell : cells[epoch]) {
+            if (cell.trials() > 0) {
                 return true;
             }
         }
@@ -96,19 +145,36 @@ final class CumulativeCounts {
     }
 
     void write(DataOutput out) throws IOException {
-        for (int epoch = 0; epoch < trials.length; epoch++) {
-            for (int variant = 0; variant < variants; variant++) {
-                out.writeLong(trials[epoch][variant]);
-                out.writeLong(successes[epoch][variant]);
+        for (Cell[] epoch : cells) {
+            for (Cell cell : epoch) {
+                out.writeLong(cell.trials());
+                out.writeLong(cell.successes());
+                if (byView) {
+                    out.writeLong(cell.units());
+                    out.writeLong(cell.trialSquares());
+                    out.writeLong(cell.products());
+                    out.writeLong(cell.successSquares());
+                }
             }
         }
     }
 
     void read(DataInput in) throws IOException {
-        for (int epoch = 0; epoch < trials.length; epoch++) {
-            for (int variant = 0; variant < variants; variant++) {
-                trials[epoch][variant] = in.readLong();
-                successes[epoch][variant] = in.readLong();
+        for (int epoch = 0; epoch < cells.length; epoch++) {
+            for (int variant = 0; variant < cells[epoch].length; variant++) {
+                long trials = in.readLong();
+                long successes = in.readLong();
+                cells[epoch][variant] = byView
+                        ? new Cell(
+                                epoch,
+                                variant,
+                                in.readLong(),
+                                trials,
+                                successes,
+                                in.readLong(),
+                                in.readLong(),
+                                in.readLong())
+                        : Cell.ofUnits(epoch, variant, trials, successes);
             }
         }
     }

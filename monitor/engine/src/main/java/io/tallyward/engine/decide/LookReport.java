@@ -12,12 +12,9 @@ import io.tallyward.statistics.inference.ConditionalPower;
 import io.tallyward.statistics.inference.EffectScale;
 import io.tallyward.statistics.inference.Estimate;
 import io.tallyward.statistics.inference.Interval;
-import io.tallyward.statistics.inference.LiftScale;
 import io.tallyward.statistics.inference.StagewiseInference;
-import io.tallyward.statistics.proportion.Stratum;
 import java.util.List;
 import java.util.Locale;
-import java.util.Optional;
 
 /** Puts a look into numbers and words for the record. */
 final class LookReport {
@@ -40,8 +37,10 @@ final class LookReport {
      * @param finding what the look found
      * @param verdict the verdict as told
      * @param heldOrNull the verdict that waits for trust
+     * @param independent what the look would have found had the views of a unit been independent; the finding itself where
+     *     units are counted
      */
-    record Outcome(Verdict finding, Verdict verdict, Verdict heldOrNull) {}
+    record Outcome(Verdict finding, Verdict verdict, Verdict heldOrNull, Verdict independent) {}
 
     /**
      * Writes a comparison.
@@ -73,15 +72,17 @@ final class LookReport {
                 finite(upper),
                 bare
                         ? null
-                        : liftScale(sitting.strata())
+                        : sitting.found()
+                                .liftScale()
                                 .map(lift -> estimated(lift.lift(new Estimate(
                                         sitting.found().difference(), new Interval(lower, upper, 1 - levels.both())))))
                                 .orElse(null),
                 crossedOrUsedUp ? null : outlook(sitting.fraction(), z, bounds.critical()),
                 crossedOrUsedUp && !bare ? adjusted(sitting, levels, looks) : null,
+                bare ? null : sitting.found().clustering().orElse(null),
                 outcome.verdict(),
                 outcome.heldOrNull(),
-                bare ? "" : reason(z, look, outcome, sitting.caution()));
+                bare ? "" : reason(look, outcome, sitting));
     }
 
     private Outlook outlook(double fraction, double z, double critical) {
@@ -107,7 +108,8 @@ final class LookReport {
                 estimate.interval().level(),
                 estimated(scaled(estimate, StrictMath.sqrt(clock / sitting.fraction()))),
                 estimated(difference),
-                liftScale(sitting.strata())
+                sitting.found()
+                        .liftScale()
                         .filter(lift -> StrictMath.abs(difference.value()) <= 1)
                         .map(lift -> estimated(lift.lift(difference)))
                         .orElse(null));
@@ -142,32 +144,6 @@ final class LookReport {
         return new Interval(fromBelow.lower(), upperEnd, 1 - below - above);
     }
 
-    /** The rates behind the stratified difference, weighted as it is. Empty while the control has no success. */
-    private static Optional<LiftScale> liftScale(List<Stratum> strata) {
-        double weight = 0;
-        double rate = 0;
-        double controlVariance = 0;
-        double variantVariance = 0;
-        for (Stratum stratum : strata) {
-            if (stratum.trials() == 0 || stratum.controlTrials() == 0) {
-                continue;
-            }
-            double n1 = stratum.trials();
-            double n0 = stratum.controlTrials();
-            double w = n1 * (n0 / (n1 + n0));
-            double p1 = stratum.successes() / n1;
-            double p0 = stratum.controlSuccesses() / n0;
-            weight += w;
-            rate += w * p0;
-            variantVariance += w * w * p1 * (1 - p1) / n1;
-            controlVariance += w * w * p0 * (1 - p0) / n0;
-        }
-        return rate > 0 && variantVariance + controlVariance > 0
-                ? Optional.of(new LiftScale(
-                        rate / weight, controlVariance / (weight * weight), variantVariance / (weight * weight)))
-                : Optional.empty();
-    }
-
     private static Estimated estimated(Estimate estimate) {
         return new Estimated(
                 estimate.value(),
@@ -179,7 +155,8 @@ final class LookReport {
         return Double.isInfinite(value) ? null : value;
     }
 
-    private static String reason(double z, Look look, Outcome outcome, String caution) {
+    private static String reason(Look look, Outcome outcome, Sitting sitting) {
+        double z = sitting.found().z();
         String text = switch (outcome.finding()) {
             case STOP_BENEFIT -> "z %.3f has reached the benefit boundary %.3f";
             case STOP_HARM -> "z %.3f has reached the harm boundary %.3f";
@@ -190,7 +167,25 @@ final class LookReport {
         double crossed = z >= look.upper() ? look.upper() : look.lower();
         String reason = String.format(Locale.ROOT, text, z, crossed);
         return reason
-                + (caution.isEmpty() ? "" : "; " + caution)
+                + (sitting.caution().isEmpty() ? "" : "; " + sitting.caution())
+                + warning(outcome, sitting)
                 + (outcome.heldOrNull() == null ? "" : "; held until the data are trusted again");
+    }
+
+    /** Said only where it matters: whoever takes views for independent would have been told something else. */
+    private static String warning(Outcome outcome, Sitting sitting) {
+        if (outcome.independent() == outcome.finding()) {
+            return "";
+        }
+        return sitting.found()
+                .clustering()
+                .map(clustering -> String.format(
+                        Locale.ROOT,
+                        "; taking views for independent would give z %.3f and say %s instead, but the views of a unit are not"
+                                + " (design effect %.2f)",
+                        clustering.independentZ(),
+                        outcome.independent().code(),
+                        clustering.designEffect()))
+                .orElse("");
     }
 }

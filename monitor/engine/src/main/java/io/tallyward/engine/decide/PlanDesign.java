@@ -13,6 +13,7 @@ import io.tallyward.statistics.boundary.DesignRequest;
 import io.tallyward.statistics.boundary.DriftForPower;
 import io.tallyward.statistics.boundary.Look;
 import io.tallyward.statistics.distribution.Normal;
+import io.tallyward.statistics.proportion.NormalError;
 import io.tallyward.statistics.proportion.SampleSize;
 import io.tallyward.statistics.proportion.Stratum;
 import io.tallyward.statistics.spending.SpendingFunction;
@@ -111,7 +112,11 @@ public record PlanDesign(
                     Math.round(control * look.information() * pooledRate),
                     Math.round(control * look.information()));
             TailSpending spent = new TailSpending(look.upperSpent(), look.lowerSpent());
-            waiting += readiness.tooSkew(List.of(expected), () -> spent, all).isPresent() ? 1 : 0;
+            waiting += readiness
+                            .tooSkew(NormalError.skewness(List.of(expected)), () -> spent, all)
+                            .isPresent()
+                    ? 1
+                    : 0;
         }
         return waiting;
     }

@@ -1,10 +1,9 @@
 package io.tallyward.engine.decide;
 
+import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.statistics.distribution.Normal;
 import io.tallyward.statistics.proportion.NormalError;
-import io.tallyward.statistics.proportion.Stratum;
-import java.util.List;
 import java.util.Locale;
 import java.util.Optional;
 import java.util.function.Supplier;
@@ -28,6 +27,16 @@ final class Readiness {
      */
     static final int MOST_ERROR_PERCENT = 10;
 
+    /**
+     * Least number of units in an arm of a plan that counts views, each weighted by its views (Kish's effective number). Common
+     * practice asks for forty or fifty clusters before a variance between them is relied upon; twice that, as looks add their
+     * errors up and as it keeps every unit below a tenth of its arm's views.
+     */
+    static final int LEAST_EFFECTIVE_UNITS = 100;
+
+    /** Why there is no look though there are counts enough. */
+    static final String NOTHING_VARIES = "the counts do not vary within the variants (a look needs some variation)";
+
     /** Where skewness adds most to a tail. */
     private static final double WORST_BOUNDARY = Math.sqrt(3);
 
@@ -41,7 +50,10 @@ final class Readiness {
         control = plan.variantIndex(plan.control().name());
     }
 
-    /** Why an arm has too few successes or failures, if it has; common practice for a normal approximation. */
+    /**
+     * Why an arm has too few successes or failures, if it has; common practice for a normal approximation. Where views are
+     * counted, why it has too few units, or why too few of them have most of its views.
+     */
     Optional<String> tooFew(CumulativeCounts counts) {
         int least = plan.test().minimumPerCell();
         for (int arm : new int[] {control, variant}) {
@@ -55,6 +67,21 @@ final class Readiness {
                         successes,
                         failures,
                         least));
+            }
+        }
+        return plan.count().by() == CountBy.VIEW ? tooFewUnits(counts) : Optional.empty();
+    }
+
+    private Optional<String> tooFewUnits(CumulativeCounts counts) {
+        for (int arm : new int[] {control, variant}) {
+            double units = counts.effectiveUnits(arm);
+            if (units < LEAST_EFFECTIVE_UNITS) {
+                return Optional.of(String.format(
+                        Locale.ROOT,
+                        "the views of %s weigh as much as those of %.1f units with equally many each (a look needs %d)",
+                        plan.variants().get(arm).name(),
+                        units,
+                        LEAST_EFFECTIVE_UNITS));
             }
         }
         return Optional.empty();
@@ -94,17 +121,17 @@ final class Readiness {
      * Why the normal law is too far off for this look, if it is. Judged at the boundary that a first look with all the error
      * spent so far would have: no boundary of this look is closer. Skewness adds most at a distance of the root of three.
      *
+     * @param skewness of the statistic without an effect
      * @param spent error the tails may have spent by this look
      * @param all error they may spend in all
      */
-    Optional<String> tooSkew(List<Stratum> strata, Supplier<TailSpending> spent, TailSpending all) {
-        double skewness = NormalError.skewness(strata);
+    Optional<String> tooSkew(double skewness, Supplier<TailSpending> spent, TailSpending all) {
         double largest = NormalError.tail(Math.abs(skewness), WORST_BOUNDARY);
         double least = Math.min(all.upper() > 0 ? all.upper() : 1, all.lower() > 0 ? all.lower() : 1);
-        return 100 * largest <= MOST_ERROR_PERCENT * least ? Optional.empty() : tooSkew(skewness, spent.get(), all);
+        return 100 * largest <= MOST_ERROR_PERCENT * least ? Optional.empty() : skewed(skewness, spent.get(), all);
     }
 
-    private static Optional<String> tooSkew(double skewness, TailSpending spent, TailSpending all) {
+    private static Optional<String> skewed(double skewness, TailSpending spent, TailSpending all) {
         double error = StrictMath.max(
                 share(skewness, spent.upper(), all.upper()), share(-skewness, spent.lower(), all.lower()));
         return 100 * error > MOST_ERROR_PERCENT

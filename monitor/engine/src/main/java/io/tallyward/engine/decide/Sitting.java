@@ -1,14 +1,9 @@
 package io.tallyward.engine.decide;
 
-import io.tallyward.statistics.proportion.StratifiedComparison;
-import io.tallyward.statistics.proportion.Stratum;
-import java.util.List;
-
 /**
  * What a look finds on the table.
  *
- * @param strata the counts of challenger and control, one stratum per allocation epoch
- * @param found their comparison
+ * @param found what the counts say
  * @param fraction information relative to the planned maximum
  * @param clock what the correlation of looks goes by, on about the same scale
  * @param windowEnd event time of the look, milliseconds since the epoch
@@ -19,8 +14,7 @@ import java.util.List;
  * @param caution why the level may be off, in words; empty when it is not
  */
 record Sitting(
-        List<Stratum> strata,
-        StratifiedComparison found,
+        Evidence found,
         double fraction,
         double clock,
         long windowEnd,
@@ -28,9 +22,4 @@ record Sitting(
         boolean benefitOpen,
         boolean last,
         boolean again,
-        String caution) {
-
-    Sitting {
-        strata = List.copyOf(strata);
-    }
-}
+        String caution) {}

@@ -63,7 +63,7 @@ final class SplitWatch {
         earlierEvidence = logBayesFactor;
         earlierPearson = pearson(counts);
         for (int epoch = 0; epoch < epochs; epoch++) {
-            before[epoch] = counts.trialsIn(epoch);
+            before[epoch] = counts.unitsIn(epoch);
         }
         watched[variant] = false;
     }
@@ -94,7 +94,7 @@ final class SplitWatch {
     }
 
     private long[] trials(CumulativeCounts counts, int epoch) {
-        long[] all = counts.trialsIn(epoch);
+        long[] all = counts.unitsIn(epoch);
         long[] trials = new long[watchedCount()];
         int next = 0;
         for (int variant = 0; variant < all.length; variant++) {

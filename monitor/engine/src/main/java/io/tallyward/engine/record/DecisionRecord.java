@@ -67,8 +67,27 @@ public record DecisionRecord(
         }
     }
 
-    /** Cumulative counts of one variant during one allocation epoch. */
-    public record VariantCount(int epoch, String variant, long trials, long successes) {}
+    /**
+     * Cumulative counts of one variant during one allocation epoch.
+     *
+     * @param epoch index of the allocation epoch
+     * @param variant name of the variant
+     * @param trials units, or views where the plan counts views
+     * @param successes trials with a click in time
+     * @param unitTotals sums over units; null where the plan counts units, as each is one trial
+     */
+    public record VariantCount(int epoch, String variant, long trials, long successes, UnitTotals unitTotals) {
+
+        /** Counts of units of which each is one trial. */
+        public VariantCount(int epoch, String variant, long trials, long successes) {
+            this(epoch, variant, trials, successes, null);
+        }
+
+        /** How many units there are. */
+        public long units() {
+            return unitTotals == null ? trials : unitTotals.units();
+        }
+    }
 
     /**
      * What the split checks say.
@@ -91,7 +110,8 @@ public record DecisionRecord(
      *
      * @param variant the challenger
      * @param look number of this look for this comparison, from 1
-     * @param z pooled two-proportion statistic of variant minus control, stratified by epoch
+     * @param z statistic of variant minus control, stratified by epoch: pooled two-proportion, or, where the plan counts
+     *     views, with each arm's own variance between units
      * @param information Fisher information about the difference of rates, 1 / variance
      * @param informationFraction information over its planned maximum; may exceed 1 at the last look
      * @param spendingTime moment on the clock that error is spent by, in [0, 1]; 1 at the last look
@@ -107,6 +127,8 @@ public record DecisionRecord(
      *     has no success
      * @param outlook how likely a benefit still is; null at a last look and where the record is bare
      * @param adjusted estimates adjusted for the looks taken; null while the comparison goes on and after futility
+     * @param clustering how much the views of a unit depend on each other; null where the plan counts units and where the
+     *     record is bare
      * @param verdict the verdict on this comparison, as told
      * @param held the verdict that waits for trust to return, null when none does
      * @param reason why, in words
@@ -129,9 +151,56 @@ public record DecisionRecord(
             Estimated lift,
             Outlook outlook,
             Adjusted adjusted,
+            Clustering clustering,
             Verdict verdict,
             Verdict held,
             String reason) {
+
+        /** A look at counts of units. */
+        public Comparison(
+                String variant,
+                int look,
+                double z,
+                double information,
+                double informationFraction,
+                double spendingTime,
+                double level,
+                double alphaSpent,
+                Double upper,
+                Double lower,
+                Double futility,
+                double difference,
+                Double differenceLower,
+                Double differenceUpper,
+                Estimated lift,
+                Outlook outlook,
+                Adjusted adjusted,
+                Verdict verdict,
+                Verdict held,
+                String reason) {
+            this(
+                    variant,
+                    look,
+                    z,
+                    information,
+                    informationFraction,
+                    spendingTime,
+                    level,
+                    alphaSpent,
+                    upper,
+                    lower,
+                    futility,
+                    difference,
+                    differenceLower,
+                    differenceUpper,
+                    lift,
+                    outlook,
+                    adjusted,
+                    null,
+                    verdict,
+                    held,
+                    reason);
+        }
 
         /** This look with the verdict as it is now: a held verdict may have been told since. */
         public Comparison standing(Verdict now, Verdict heldNow) {
@@ -153,6 +222,7 @@ public record DecisionRecord(
                     lift,
                     outlook,
                     adjusted,
+                    clustering,
                     now,
                     heldNow,
                     reason);

@@ -12,7 +12,7 @@ public final class RecordDigest {
 
     /** SHA-256 over the meaning of a record, as 64 hexadecimal digits; the record's own {@code hash} is left out. */
     public static String of(DecisionRecord record) {
-        Digest digest = new Digest("decision/2");
+        Digest digest = new Digest("decision/3");
         digest.text(record.experiment())
                 .number(record.sequence())
                 .text(record.occasion().code())
@@ -24,6 +24,7 @@ public final class RecordDigest {
                     .text(count.variant())
                     .number(count.trials())
                     .number(count.successes());
+            add(digest, count.unitTotals());
         }
         for (long outcome : record.outcomes().toArray()) {
             digest.number(outcome);
@@ -86,6 +87,7 @@ public final class RecordDigest {
         add(digest, comparison.lift());
         add(digest, comparison.outlook());
         add(digest, comparison.adjusted());
+        add(digest, comparison.clustering());
         digest.text(comparison.verdict().code())
                 .text(comparison.held() == null ? "" : comparison.held().code())
                 .text(comparison.reason());
@@ -112,6 +114,21 @@ public final class RecordDigest {
             add(digest, adjusted.drift());
             add(digest, adjusted.difference());
             add(digest, adjusted.lift());
+        }
+    }
+
+    private static void add(Digest digest, UnitTotals totals) {
+        if (present(digest, totals)) {
+            digest.number(totals.units())
+                    .number(totals.trialSquares())
+                    .number(totals.products())
+                    .number(totals.successSquares());
+        }
+    }
+
+    private static void add(Digest digest, Clustering clustering) {
+        if (present(digest, clustering)) {
+            digest.real(clustering.independentZ()).real(clustering.designEffect());
         }
     }
 

@@ -82,6 +82,20 @@ final class DecideHost {
         return take(update(plan, 0, 1, nextWindow, window));
     }
 
+    /** The next window, with the sums over units that it raises. */
+    DecideHost nextCells(Cell... cells) {
+        WindowTally window = window(plan, nextWindow, List.of(cells));
+        nextWindow++;
+        return take(update(plan, 0, 1, nextWindow, window));
+    }
+
+    /** A window of cells in which every event made a trial or a success. */
+    static WindowTally window(Plan plan, int window, List<Cell> cells) {
+        OutcomeCounts.Builder outcomes = new OutcomeCounts.Builder();
+        cells.forEach(cell -> outcomes.add(Outcome.TRIAL, cell.trials()).add(Outcome.SUCCESS, cell.successes()));
+        return new WindowTally(startOf(plan, window), cells, outcomes.build());
+    }
+
     /** Several quiet windows. */
     DecideHost quiet(int windows) {
         nextWindow += windows;

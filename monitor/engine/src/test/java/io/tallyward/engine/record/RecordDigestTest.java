@@ -45,12 +45,14 @@ class RecordDigestTest {
                     new Estimated(2, 0.1, 4.0),
                     new Estimated(0.009, 0.0, 0.03),
                     new Estimated(0.045, 0.0, 0.2)),
+            new Clustering(1.75, 1.96),
             Verdict.CONTINUE,
             null,
             "z 1.250 lies between the boundaries");
 
     /** What a record may lack. */
-    private static final Set<Class<?>> OPTIONAL = Set.of(Estimated.class, Outlook.class, Adjusted.class);
+    private static final Set<Class<?>> OPTIONAL =
+            Set.of(Estimated.class, Outlook.class, Adjusted.class, Clustering.class, UnitTotals.class);
 
     private static final DecisionRecord RECORD = new DecisionRecord(
             "quay-banner",
@@ -58,7 +60,9 @@ class RecordDigestTest {
             Occasion.LOOK,
             Instant.parse("2026-05-05T00:00:00Z"),
             "a".repeat(64),
-            List.of(new VariantCount(0, "plain", 100, 20), new VariantCount(0, "wide", 101, 25)),
+            List.of(
+                    new VariantCount(0, "plain", 100, 20, new UnitTotals(40, 310, 62, 24)),
+                    new VariantCount(0, "wide", 101, 25, new UnitTotals(41, 315, 77, 31))),
             OutcomeCounts.of(201, 45, 3, 2, 1, 5, 6, 7, 0),
             4,
             new Split(-1.5, 1, 0.25, 1, 0.6),
