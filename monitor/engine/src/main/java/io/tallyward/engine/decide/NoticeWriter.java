@@ -2,6 +2,7 @@ package io.tallyward.engine.decide;
 
 import io.tallyward.engine.count.Outcome;
 import io.tallyward.engine.digest.Digest;
+import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.Adjusted;
 import io.tallyward.engine.record.DecisionRecord;
@@ -90,7 +91,8 @@ final class NoticeWriter {
         facts.put("crossovers", Long.toString(record.outcomes().get(Outcome.CROSSOVER)));
         facts.put("late", Long.toString(record.outcomes().get(Outcome.LATE)));
         for (VariantCount count : record.counts()) {
-            facts.merge("trials." + count.variant(), Long.toString(count.trials()), NoticeWriter::sum);
+            addUnits(facts, count);
+            add(facts, trials(), count, count.trials());
         }
         return notice(record, "", trustMessage(record, told), facts);
     }
@@ -161,6 +163,9 @@ final class NoticeWriter {
         facts.put("alphaSpent", figure("%.4g", look.alphaSpent()));
         facts.put("difference", figure("%+.5f", look.difference()));
         facts.put("repeatedInterval", interval(look.differenceLower(), look.differenceUpper()));
+        if (look.clustering() != null) {
+            facts.put("designEffect", figure("%.2f", look.clustering().designEffect()));
+        }
         addAdjusted(facts, look.adjusted());
     }
 
@@ -184,10 +189,30 @@ final class NoticeWriter {
         for (VariantCount count : record.counts()) {
             if (count.variant().equals(variant)
                     || count.variant().equals(plan.control().name())) {
-                facts.merge("trials." + count.variant(), Long.toString(count.trials()), NoticeWriter::sum);
-                facts.merge("successes." + count.variant(), Long.toString(count.successes()), NoticeWriter::sum);
+                addUnits(facts, count);
+                add(facts, trials(), count, count.trials());
+                add(facts, countsViews() ? "clickedViews" : "successes", count, count.successes());
             }
         }
+    }
+
+    private boolean countsViews() {
+        return plan.count().by() == CountBy.VIEW;
+    }
+
+    private String trials() {
+        return countsViews() ? "views" : "trials";
+    }
+
+    /** Where every unit is one trial, trials say it. */
+    private void addUnits(Map<String, String> facts, VariantCount count) {
+        if (countsViews()) {
+            add(facts, "units", count, count.units());
+        }
+    }
+
+    private static void add(Map<String, String> facts, String name, VariantCount count, long number) {
+        facts.merge(name + "." + count.variant(), Long.toString(number), NoticeWriter::sum);
     }
 
     private static String sum(String left, String right) {

@@ -154,6 +154,23 @@ class ViewCountingTest {
     }
 
     @Test
+    void tellsViewsAndUnitsInNotices() {
+        DecideHost host =
+                oneDay(days().byView().build(), allOrNothing(0, 4000, 3, 800), allOrNothing(1, 4000, 3, 1100));
+        assertEquals(List.of("stop wide"), host.noticeKinds());
+        Map<String, String> facts = host.notices().get(0).facts();
+        assertEquals("4000", facts.get("units.wide"));
+        assertEquals("12000", facts.get("views.wide"));
+        assertEquals("3300", facts.get("clickedViews.wide"));
+        assertEquals("3.00", facts.get("designEffect"));
+        assertFalse(facts.containsKey("trials.wide") || facts.containsKey("successes.wide"));
+        DecideHost units = oneDay(days().build(), Cell.ofUnits(0, 0, 4000, 800), Cell.ofUnits(0, 1, 4000, 1100));
+        Map<String, String> unitFacts = units.notices().get(0).facts();
+        assertEquals("4000", unitFacts.get("trials.wide"));
+        assertFalse(unitFacts.containsKey("units.wide") || unitFacts.containsKey("designEffect"));
+    }
+
+    @Test
     void doesNotWarnWhereBothAgree() {
         Comparison look = oneDay(
                         days().byView().build(), allOrNothing(0, 2000, 16, 400), allOrNothing(1, 2000, 16, 402))

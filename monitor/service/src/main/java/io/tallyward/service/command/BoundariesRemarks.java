@@ -52,6 +52,12 @@ final class BoundariesRemarks {
     }
 
     private static void plan(Plan plan, List<String> remarks) {
+        if (PlanWords.countsViews(plan)) {
+            remarks.add(
+                    "A trial is a view. All numbers of trials are those of independent views; views of a unit resemble"
+                            + " each other, so multiply them by the design effect (1 + (views per unit - 1) times the correlation"
+                            + " of views of a unit, if all units have equally many; every look of a run says what it was).");
+        }
         if (!plan.run().atLeast().isZero()) {
             remarks.add("No benefit is declared in the first "
                     + ScalarType.written(plan.run().atLeast())

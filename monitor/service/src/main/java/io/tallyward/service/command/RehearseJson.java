@@ -56,6 +56,7 @@ final class RehearseJson {
                 .put("power", plan.test().power())
                 .put("plannedTrials", new OverallNeed(planned).trials());
         mean(object, "expectedWaitingLooks", report.waited());
+        RehearseRemarks.views(plan).ifPresent(remark -> object.put("remark", remark));
         report.falseAlarm().ifPresent(rate -> rate(object, "falseAlarmRate", rate));
         return object;
     }

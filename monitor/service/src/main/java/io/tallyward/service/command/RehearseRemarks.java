@@ -1,5 +1,7 @@
 package io.tallyward.service.command;
 
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.service.plan.PlanWords;
 import io.tallyward.service.rehearse.RehearsalReport;
 import java.util.List;
 import java.util.Locale;
@@ -12,6 +14,15 @@ final class RehearseRemarks {
     private static final double ENOUGH = 0.9;
 
     private RehearseRemarks() {}
+
+    /** Says so if views are rehearsed as if they were independent. */
+    static Optional<String> views(Plan plan) {
+        return PlanWords.countsViews(plan)
+                ? Optional.of(
+                        "Every unit is rehearsed with one view. Views of a unit resemble each other, so a run needs more"
+                                + " of them by the design effect, and until then has less power than shown; the error is kept.")
+                : Optional.empty();
+    }
 
     /** Says so if far fewer units come in than the plan needs. */
     static Optional<String> traffic(RehearsalReport report, List<PlannedComparison> planned) {

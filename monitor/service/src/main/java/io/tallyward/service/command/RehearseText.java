@@ -75,6 +75,7 @@ final class RehearseText {
         if (several) {
             lines.add("a variant whose verdict is told is no longer shown; its units go to the others");
         }
+        RehearseRemarks.views(plan).ifPresent(remark -> lines.addAll(BoundariesText.wrapped(remark, 0)));
         RehearseRemarks.traffic(report, planned).ifPresent(remark -> lines.addAll(BoundariesText.wrapped(remark, 0)));
         return lines;
     }

@@ -13,6 +13,7 @@ import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
 import io.tallyward.service.command.Replay.WindowKey;
+import io.tallyward.service.plan.PlanWords;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Locale;
@@ -110,7 +111,7 @@ final class ReplayText {
                         new WindowKey(plan.experiment(), Integer.MAX_VALUE, Long.MAX_VALUE))
                 .forEach((key, counts) ->
                         add(epochs.computeIfAbsent(key.epoch(), epoch -> new long[variants][2]), counts));
-        Table table = new Table("variant", "epoch", "trials", "successes", "rate");
+        Table table = new Table("variant", "epoch", PlanWords.trials(plan), PlanWords.successes(plan), "rate");
         epochs.forEach((epoch, counts) -> {
             for (int i = 0; i < variants; i++) {
                 double rate = (double) counts[i][1] / counts[i][0];
@@ -182,9 +183,10 @@ final class ReplayText {
                     successes += count.successes();
                 }
             }
-            parts.add(String.format(Locale.ROOT, "%s %,d of %,d trials", variant, successes, trials));
+            parts.add(
+                    String.format(Locale.ROOT, "%s %,d of %,d %s", variant, successes, trials, PlanWords.trials(plan)));
         }
-        return "successes at that look: " + String.join(", ", parts);
+        return PlanWords.successes(plan) + " at that look: " + String.join(", ", parts);
     }
 
     /** A stop for futility crosses no boundary: there is no adjusted estimate, and the repeated interval is what is valid. */

@@ -2,6 +2,7 @@ package io.tallyward.service.http;
 
 import com.fasterxml.jackson.databind.node.ObjectNode;
 import io.tallyward.engine.record.Adjusted;
+import io.tallyward.engine.record.Clustering;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Outlook;
@@ -15,6 +16,17 @@ final class EstimatesJson {
         put(node, "lift", look.lift());
         put(node, look.outlook());
         put(node, look.adjusted());
+        put(node, look.clustering());
+    }
+
+    private static void put(ObjectNode node, Clustering clusteringOrNull) {
+        if (clusteringOrNull == null) {
+            node.putNull("clustering");
+        } else {
+            node.putObject("clustering")
+                    .put("independentZ", clusteringOrNull.independentZ())
+                    .put("designEffect", clusteringOrNull.designEffect());
+        }
     }
 
     private static void put(ObjectNode node, String name, Estimated estimatedOrNull) {

@@ -85,6 +85,7 @@ final class ExperimentJson {
                 .forEach(count -> counts.addObject()
                         .put("epoch", count.epoch())
                         .put("variant", count.variant())
+                        .put("units", count.units())
                         .put("trials", count.trials())
                         .put("successes", count.successes()));
         ObjectNode outcomes = node.putObject("outcomes");

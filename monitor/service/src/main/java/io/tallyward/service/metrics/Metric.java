@@ -30,7 +30,18 @@ enum Metric {
             Kind.GAUGE,
             "1 while no partition has seen a unit that belongs to another one, else 0; counts need 1."),
 
-    TRIALS("tallyward_trials", Kind.GAUGE, "Trials in complete windows, over all epochs.", "experiment", "variant"),
+    UNITS(
+            "tallyward_units",
+            Kind.GAUGE,
+            "Units in complete windows, over all epochs; as many as trials where the plan counts units.",
+            "experiment",
+            "variant"),
+    TRIALS(
+            "tallyward_trials",
+            Kind.GAUGE,
+            "Trials (units, or views where the plan counts views) in complete windows, over all epochs.",
+            "experiment",
+            "variant"),
     SUCCESSES(
             "tallyward_successes",
             Kind.GAUGE,
@@ -79,6 +90,12 @@ enum Metric {
             "tallyward_alpha_spent_ratio",
             Kind.GAUGE,
             "Type I error spent up to that look, both tails, as a probability.",
+            "experiment",
+            "variant"),
+    DESIGN_EFFECT(
+            "tallyward_design_effect",
+            Kind.GAUGE,
+            "Variance of the difference over that of independent views, at the latest look; only where views are counted.",
             "experiment",
             "variant"),
     DIFFERENCE(

@@ -124,14 +124,17 @@ public final class MonitorMetrics {
 
     private static void variants(Sheet sheet, String name, ExperimentView view) {
         for (Variant variant : view.plan().variants()) {
+            long units = 0;
             long trials = 0;
             long successes = 0;
             for (VariantCount count : view.counts()) {
                 if (count.variant().equals(variant.name())) {
+                    units += count.units();
                     trials += count.trials();
                     successes += count.successes();
                 }
             }
+            sheet.put(Metric.UNITS, units, name, variant.name());
             sheet.put(Metric.TRIALS, trials, name, variant.name());
             sheet.put(Metric.SUCCESSES, successes, name, variant.name());
         }
@@ -157,6 +160,9 @@ public final class MonitorMetrics {
         sheet.put(Metric.DIFFERENCE, look.difference(), labels);
         sheet.putPresent(Metric.DIFFERENCE_LOWER, look.differenceLower(), labels);
         sheet.putPresent(Metric.DIFFERENCE_UPPER, look.differenceUpper(), labels);
+        if (look.clustering() != null) {
+            sheet.put(Metric.DESIGN_EFFECT, look.clustering().designEffect(), labels);
+        }
         if (look.outlook() != null && sound) {
             sheet.put(Metric.PREDICTIVE_POWER, look.outlook().predictive(), labels);
         }

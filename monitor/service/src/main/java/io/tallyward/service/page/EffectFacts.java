@@ -30,6 +30,7 @@ final class EffectFacts {
         }
         OverviewPage.fact(html, naiveLabel(look), naive(look));
         level(html, standing, challenger, look);
+        clustering(html, look);
         if (look.outlook() != null && standing.view().trust() == Trust.SOUND) {
             OverviewPage.fact(html, "Outlook", outlook(look));
         }
@@ -89,6 +90,17 @@ final class EffectFacts {
                     "Level in force",
                     PlanWords.shortest(look.level()) + ", raised from " + PlanWords.shortest(initial)
                             + ": another variant was found and has passed its share on");
+        }
+    }
+
+    private static void clustering(Markup html, Comparison look) {
+        if (look.clustering() != null) {
+            OverviewPage.fact(
+                    html,
+                    "Design effect",
+                    Figures.decimal(look.clustering().designEffect())
+                            + ": variance between units over that of independent views. Taken for independent, z would be "
+                            + Figures.decimal(look.clustering().independentZ()) + "; no decision rests on that.");
         }
     }
 

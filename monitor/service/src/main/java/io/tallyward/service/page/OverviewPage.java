@@ -198,14 +198,14 @@ final class OverviewPage {
         }
         int epoch = epochs.get(epochs.size() - 1);
         double[] plan = standing.view().plan().sharesIn(epoch);
-        double total = standing.trialsIn(epoch);
+        double total = standing.unitsIn(epoch);
         StringBuilder text = new StringBuilder();
         List<Variant> variants = standing.view().plan().variants();
         for (int i = 0; i < variants.size(); i++) {
             text.append(i == 0 ? "" : " · ")
                     .append(variants.get(i).name())
                     .append(' ')
-                    .append(Figures.percent(standing.trials(variants.get(i), epoch) / total))
+                    .append(Figures.percent(standing.units(variants.get(i), epoch) / total))
                     .append(" (planned ")
                     .append(Figures.percent(plan[i]))
                     .append(')');

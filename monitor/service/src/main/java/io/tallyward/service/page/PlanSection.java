@@ -53,7 +53,8 @@ final class PlanSection {
         OverviewPage.fact(
                 html,
                 "Counting",
-                "by unit, clicks within " + Figures.span(plan.count().attribution()) + ", grace "
+                "by " + PlanWords.code(plan.count().by()) + ", clicks within "
+                        + Figures.span(plan.count().attribution()) + ", grace "
                         + Figures.span(plan.count().grace()) + ", windows of "
                         + Figures.span(plan.count().window()));
     }

@@ -30,7 +30,7 @@ final class SplitSection {
                 html,
                 "Shares against the plan" + (several ? ", allocation epoch " + epoch : ""),
                 Column.text("Variant"),
-                Column.number("Trials"),
+                Column.number(standing.countsViews() ? "Units" : "Trials"),
                 Column.number("Share"),
                 Column.number("Planned"),
                 Column.number("Off by, points"),
@@ -39,22 +39,22 @@ final class SplitSection {
         double[] plan = standing.view().plan().sharesIn(epoch);
         double[] bands = new double[plan.length];
         double widest = 0;
-        long total = standing.trialsIn(epoch);
+        long total = standing.unitsIn(epoch);
         for (int i = 0; i < plan.length; i++) {
-            double share = standing.trials(variants.get(i), epoch) / (double) total;
+            double share = standing.units(variants.get(i), epoch) / (double) total;
             bands[i] = band(plan[i], total, alpha);
             widest = Math.max(widest, Math.max(Math.abs(share - plan[i]), bands[i]));
         }
         for (int i = 0; i < plan.length; i++) {
-            long trials = standing.trials(variants.get(i), epoch);
-            double share = trials / (double) total;
+            long units = standing.units(variants.get(i), epoch);
+            double share = units / (double) total;
             double planned = plan[i];
             double[] range = {planned - bands[i], planned + bands[i]};
             RangeBar bar = new RangeBar(planned - widest * 1.1, planned + widest * 1.1);
             String words = "share " + Figures.percent(share) + ", band of the plan " + Figures.percent(range[0])
                     + " to " + Figures.percent(range[1]);
             table.row(variants.get(i).name())
-                    .number(Figures.count(trials))
+                    .number(Figures.count(units))
                     .number(Figures.percent(share))
                     .number(Figures.percent(planned))
                     .number(Figures.points(share - planned))

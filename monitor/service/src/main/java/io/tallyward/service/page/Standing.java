@@ -8,6 +8,9 @@ import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
+import io.tallyward.service.plan.PlanWords;
+import io.tallyward.statistics.ratio.UnitSums;
+import java.math.BigInteger;
 import java.time.Duration;
 import java.util.Comparator;
 import java.util.List;
@@ -119,18 +122,46 @@ record Standing(ExperimentView view) {
         return counts(variant).mapToLong(VariantCount::successes).sum();
     }
 
-    long trials(Variant variant, int epoch) {
+    /** Whether trials are views, of which a unit may have several. */
+    boolean countsViews() {
+        return PlanWords.countsViews(view.plan());
+    }
+
+    long units(Variant variant) {
+        return counts(variant).mapToLong(VariantCount::units).sum();
+    }
+
+    /** Units are what was allocated, whatever a trial is. */
+    long units(Variant variant, int epoch) {
         return counts(variant)
                 .filter(count -> count.epoch() == epoch)
-                .mapToLong(VariantCount::trials)
+                .mapToLong(VariantCount::units)
                 .sum();
     }
 
-    long trialsIn(int epoch) {
+    long unitsIn(int epoch) {
         return view.counts().stream()
                 .filter(count -> count.epoch() == epoch)
-                .mapToLong(VariantCount::trials)
+                .mapToLong(VariantCount::units)
                 .sum();
+    }
+
+    /** The sums over all units of a variant; empty where units are counted. */
+    Optional<UnitSums> unitSums(Variant variant) {
+        return counts(variant)
+                .filter(count -> count.unitTotals() != null)
+                .map(Standing::unitSums)
+                .reduce(UnitSums::plus);
+    }
+
+    private static UnitSums unitSums(VariantCount count) {
+        return new UnitSums(
+                count.units(),
+                BigInteger.valueOf(count.trials()),
+                BigInteger.valueOf(count.successes()),
+                BigInteger.valueOf(count.unitTotals().trialSquares()),
+                BigInteger.valueOf(count.unitTotals().products()),
+                BigInteger.valueOf(count.unitTotals().successSquares()));
     }
 
     /** Epochs that have trials, ascending. */

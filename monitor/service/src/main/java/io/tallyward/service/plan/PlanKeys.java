@@ -12,6 +12,7 @@ import static io.tallyward.service.config.document.ScalarType.share;
 import static io.tallyward.service.config.document.ScalarType.text;
 import static io.tallyward.service.config.document.ScalarType.wholeNumber;
 
+import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.FutilityPlan.Assumption;
 import io.tallyward.engine.plan.Spending;
 import io.tallyward.engine.plan.SplitCheckPlan;
@@ -46,8 +47,11 @@ public final class PlanKeys {
     private static final int MAX_VARIANTS = 10;
 
     static final class Count {
-        static final Key<String> BY =
-                Key.withDefault("by", text(20), "unit", "What one trial is: a unit exposed at least once.");
+        static final Key<CountBy> BY = Key.withDefault(
+                "by",
+                oneOf(CountBy.class, PlanKeys::code),
+                "unit",
+                "What one trial is: a unit exposed at least once, or a view; variances of views go by units.");
         static final Key<Duration> ATTRIBUTION = Key.withDefault(
                 "attribution",
                 duration(MILLISECOND, WEEK),

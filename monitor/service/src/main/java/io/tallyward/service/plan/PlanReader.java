@@ -3,7 +3,6 @@ package io.tallyward.service.plan;
 import io.tallyward.engine.decide.PlanDesign;
 import io.tallyward.engine.plan.AllocationEpoch;
 import io.tallyward.engine.plan.CountRule;
-import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.FutilityPlan;
 import io.tallyward.engine.plan.LookSchedule;
 import io.tallyward.engine.plan.Plan;
@@ -87,7 +86,7 @@ public final class PlanReader {
 
     private static CountRule count(Values count) {
         return new CountRule(
-                CountBy.UNIT,
+                count.get(PlanKeys.Count.BY),
                 count.get(PlanKeys.Count.ATTRIBUTION),
                 count.get(PlanKeys.Count.GRACE),
                 count.get(PlanKeys.Count.WINDOW));

@@ -2,7 +2,9 @@ package io.tallyward.service.plan;
 
 import static io.tallyward.service.config.document.ScalarType.written;
 
+import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.TestPlan.Better;
+import io.tallyward.engine.plan.TestPlan.InformationMeasure;
 import io.tallyward.service.config.document.Key;
 import io.tallyward.service.config.document.Values;
 import java.time.Duration;
@@ -55,15 +57,26 @@ final class PlanRules {
     }
 
     private void checkCount(Values count) {
-        count.find(PlanKeys.Count.BY).filter(by -> !by.equals("unit")).ifPresent(by -> {
-            String remedy = by.equals("view") ? "This version counts by unit only." : "";
-            count.refuse(PlanKeys.Count.BY, by, "unit", remedy);
-        });
+        count.find(PlanKeys.Count.BY)
+                .filter(by -> by == CountBy.VIEW)
+                .flatMap(by -> plan.find(PlanKeys.TEST))
+                .ifPresent(PlanRules::checkMeasureOfViews);
         count.find(PlanKeys.Count.WINDOW)
                 .filter(width -> !isMultiple(Duration.ofDays(1), width))
                 .ifPresent(
                         width -> count.refuse(PlanKeys.Count.WINDOW, written(width), "a duration that divides a day"));
         window.ifPresent(width -> checkOpenWindows(count, width));
+    }
+
+    /** How much a view tells depends on how alike the views of a unit are, which no plan knows. */
+    private static void checkMeasureOfViews(Values test) {
+        test.find(PlanKeys.Test.INFORMATION)
+                .filter(measure -> measure == InformationMeasure.TRIALS)
+                .ifPresent(measure -> test.refuse(
+                        PlanKeys.Test.INFORMATION,
+                        "trials",
+                        "observed, as count.by is view",
+                        "Views of a unit are not independent, so their number does not say how much is known."));
     }
 
     private static void checkOpenWindows(Values count, Duration width) {

@@ -1,7 +1,9 @@
 package io.tallyward.service.plan;
 
+import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.FutilityPlan;
 import io.tallyward.engine.plan.FutilityPlan.Assumption;
+import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.Tail;
 import io.tallyward.engine.plan.TestPlan;
 import java.math.BigDecimal;
@@ -16,6 +18,21 @@ public final class PlanWords {
     /** The name of a constant as plans have it. */
     public static String code(Enum<?> constant) {
         return constant.name().toLowerCase(Locale.ROOT).replace('_', '-');
+    }
+
+    /** What the trials of a plan are called. */
+    public static String trials(Plan plan) {
+        return countsViews(plan) ? "views" : "trials";
+    }
+
+    /** What its successes are called. */
+    public static String successes(Plan plan) {
+        return countsViews(plan) ? "clicked views" : "successes";
+    }
+
+    /** Whether a unit may have several trials. */
+    public static boolean countsViews(Plan plan) {
+        return plan.count().by() == CountBy.VIEW;
     }
 
     /** How a direction spends its error. */

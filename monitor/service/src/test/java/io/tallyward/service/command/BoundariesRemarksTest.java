@@ -70,6 +70,14 @@ class BoundariesRemarksTest {
         assertTrue(remarks.get(1).startsWith("wide, tall: with futility obeyed, a variant as much worse"));
     }
 
+    @Test
+    void saysThatViewsAreTakenForIndependent() throws IOException {
+        List<String> remarks = remarks(PLAN + "count: {by: view}\n");
+        assertEquals(1, remarks.size(), remarks.toString());
+        assertTrue(remarks.get(0).startsWith("A trial is a view."), remarks.get(0));
+        assertTrue(remarks.get(0).contains("multiply them by the design effect"), remarks.get(0));
+    }
+
     /** Successes follow the information: 0.5 at 0.02, so 1.2 at 0.05, 4.8 at 0.2 and 9.6 at 0.4. */
     @Test
     void saysWhichLooksWait() throws IOException {

@@ -188,6 +188,19 @@ class RehearseCommandTest {
     }
 
     @Test
+    void saysThatViewsAreRehearsedAsIfIndependent() throws IOException {
+        assertFalse(json("--runs=1").has("remark"));
+        Files.writeString(plan, PLAN + "count: {by: view}\n");
+        List<String> out = run("--runs=20").out();
+        assertTrue(
+                out.stream().anyMatch(line -> line.startsWith("Every unit is rehearsed with one view.")),
+                out.toString());
+        JsonNode root = json("--runs=20");
+        assertTrue(root.get("remark").asText().startsWith("Every unit is rehearsed with one view."));
+        assertTrue(root.get("expectedLooks").asDouble() > 1, root.toString());
+    }
+
+    @Test
     void refusesRatesItCannotUse() {
         assertRefused(
                 "--rates: unknown variant wied (expected: plain or wide). Did you mean wide?", "--rates=wied=0.1");

@@ -71,6 +71,7 @@ class ExperimentJsonTest {
                     "lift" : null,
                     "outlook" : null,
                     "adjusted" : null,
+                    "clustering" : null,
                     "reason" : null
                   } ],
                   "lastRecord" : "%s",
@@ -95,6 +96,20 @@ class ExperimentJsonTest {
         assertEquals("2026-05-04T12:00:00Z", first.get("windowEnd").textValue());
         assertTrue(first.get("upper").isNull(), "a tail that spends nothing");
         assertTrue(first.get("differenceUpper").isNull(), "an unbounded interval");
+    }
+
+    @Test
+    void tellsUnitsBesideViewsAndHowTheyDepend() {
+        ObjectNode node = ExperimentJson.one(Northwater.boardNews());
+        JsonNode count = node.get("counts").get(0);
+        assertEquals(14_020, count.get("units").longValue());
+        assertEquals(61_240, count.get("trials").longValue());
+        JsonNode clustering = node.get("comparisons").get(0).get("clustering");
+        assertEquals(-0.31, clustering.get("independentZ").doubleValue());
+        assertEquals(2.4, clustering.get("designEffect").doubleValue());
+        JsonNode units = ExperimentJson.one(Northwater.fareChip());
+        assertEquals(22_105, units.get("counts").get(0).get("units").longValue());
+        assertTrue(units.get("comparisons").get(0).get("clustering").isNull());
     }
 
     @Test

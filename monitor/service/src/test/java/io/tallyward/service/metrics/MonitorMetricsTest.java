@@ -72,6 +72,7 @@ class MonitorMetricsTest {
                 tallyward_topic_keyed_by_unit
                 tallyward_trials{experiment,variant}
                 tallyward_trust{experiment,state}
+                tallyward_units{experiment,variant}
                 tallyward_variants_unpublished
                 tallyward_verdict{experiment,state}
                 tallyward_watermark_timestamp_seconds{partition}
@@ -123,6 +124,17 @@ class MonitorMetricsTest {
         assertTrue(text.contains("tallyward_events_total{experiment=\"pier-map\",outcome=\"trial\",} 0.0"));
         assertTrue(text.contains("tallyward_rejected_total{reason=\"bad-time\",} 0.0"));
         assertTrue(text.contains("tallyward_trials{experiment=\"pier-map\",variant=\"map\",} 0.0"));
+    }
+
+    @Test
+    void tellsUnitsAndTheDesignEffectWhereViewsAreCounted() {
+        board.publishExperiments(0, Map.of("board-news", Northwater.boardNews(), "fare-chip", Northwater.fareChip()));
+        String text = exposition(board).text();
+        assertTrue(text.contains("tallyward_units{experiment=\"board-news\",variant=\"long\",} 14105.0"));
+        assertTrue(text.contains("tallyward_trials{experiment=\"board-news\",variant=\"long\",} 60987.0"));
+        assertTrue(text.contains("tallyward_design_effect{experiment=\"board-news\",variant=\"long\",} 2.4"));
+        assertTrue(text.contains("tallyward_units{experiment=\"fare-chip\",variant=\"chip\",} 22240.0"));
+        assertFalse(text.contains("tallyward_design_effect{experiment=\"fare-chip\""));
     }
 
     @Test

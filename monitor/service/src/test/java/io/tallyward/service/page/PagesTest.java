@@ -55,6 +55,27 @@ class PagesTest {
     }
 
     @Test
+    void speaksOfViewsWhereViewsAreCounted() {
+        String text = parse(pages.experiment(Northwater.boardNews(), FINE))
+                .getDocumentElement()
+                .getTextContent();
+        for (String word : List.of("Units", "Views", "Clicked views", "Design effect", "by view, clicks within")) {
+            assertTrue(text.contains(word), word);
+        }
+        assertTrue(text.contains("14,020"), "units");
+        assertTrue(text.contains("61,240"), "views");
+        assertTrue(text.contains("Taken for independent, z would be"), text);
+        assertFalse(text.contains("Wilson"));
+        // By hand: variance 1.0000713 (15000 - 2 R 64000 + R^2 520000) / 61240^2 with R = 7402 / 61240.
+        assertTrue(text.replace('\u00a0', ' ').contains("11.82 % to 12.36 %"), text);
+        String units = parse(pages.experiment(Northwater.fareChip(), FINE))
+                .getDocumentElement()
+                .getTextContent();
+        assertFalse(units.contains("Design effect") || units.contains("Clicked views"));
+        parse(pages.overview(List.of(Northwater.boardNews()), FINE));
+    }
+
+    @Test
     void escapesWhateverComesFromOutside() {
         ExperimentView view = nasty();
         MonitorState monitor = new MonitorState(List.of(new Health(NASTY, State.DOWN, NASTY)), true, 1);

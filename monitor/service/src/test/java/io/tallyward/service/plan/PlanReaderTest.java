@@ -246,13 +246,28 @@ class PlanReaderTest {
     }
 
     @Test
+    void countsViewsWhereAsked() throws Exception {
+        Plan units = PlanReader.parse("plan.yaml", MINIMAL).orElseThrow();
+        Plan views =
+                PlanReader.parse("plan.yaml", MINIMAL + "count: {by: view}\n").orElseThrow();
+        assertEquals(CountBy.UNIT, units.count().by());
+        assertEquals(CountBy.VIEW, views.count().by());
+        assertEquals(units.count().attribution(), views.count().attribution());
+        assertNotEquals(PlanDigest.of(units), PlanDigest.of(views));
+        assertEquals(
+                List.of("bad.yaml:5: test.information: trials (expected: observed, as count.by is view)."
+                        + " Views of a unit are not independent, so their number does not say how much is known."),
+                problems(MINIMAL.replace("test: {", "test: {information: trials, ") + "count: {by: view}\n"));
+    }
+
+    @Test
     void reportsAllProblemsTogether() {
         assertEquals(
                 List.of(
                         "bad.yaml:1: experiment: Quay Banner "
                                 + "(expected: a name of at most 64 lower-case letters, digits and hyphens)",
                         "bad.yaml:1: owner: missing (expected: text of at most 200 characters)",
-                        "bad.yaml:3: count.by: view (expected: unit). This version counts by unit only.",
+                        "bad.yaml:3: count.by: visit (expected: unit or view)",
                         "bad.yaml:3: count.window: PT7M (expected: a duration that divides a day)",
                         "bad.yaml:4: variants: no control (expected: exactly one variant with control: true)",
                         "bad.yaml:4: variants: shares that add up to 0.9 (expected: shares that add up to 1)",
@@ -268,7 +283,7 @@ class PlanReaderTest {
                 problems("""
                         experiment: Quay Banner
                         question: does it?
-                        count: {by: view, window: PT7M}
+                        count: {by: visit, window: PT7M}
                         variants: {plain: {share: 0.5}, wide: {share: 0.4}}
                         test: {alpha: 0.7, sides: both, baseline: 0.7, smallest-effect: 0.4, spending: fleming}
                         looks: {every: PT6H, fractions: [0.5, 0.25]}

@@ -15,12 +15,14 @@ import io.tallyward.engine.plan.TestPlan;
 import io.tallyward.engine.plan.TrustLimits;
 import io.tallyward.engine.plan.Variant;
 import io.tallyward.engine.record.Adjusted;
+import io.tallyward.engine.record.Clustering;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.Split;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Outlook;
 import io.tallyward.engine.record.Trust;
+import io.tallyward.engine.record.UnitTotals;
 import io.tallyward.engine.record.Verdict;
 import java.time.Duration;
 import java.time.Instant;
@@ -187,6 +189,80 @@ public final class Northwater {
                 look.lift(),
                 outlook,
                 adjusted,
+                look.verdict(),
+                look.held(),
+                look.reason());
+    }
+
+    /** Views are counted, several a unit; not among {@link #all}. */
+    public static ExperimentView boardNews() {
+        Plan units = plan(
+                "board-news",
+                "Do longer news on the departure board bring more clicks a view?",
+                List.of(new Variant("short", 0.5, true), new Variant("long", 0.5, false)),
+                List.of());
+        Plan plan = new Plan(
+                units.experiment(),
+                units.question(),
+                units.owner(),
+                new CountRule(
+                        CountRule.CountBy.VIEW,
+                        units.count().attribution(),
+                        units.count().grace(),
+                        units.count().window()),
+                units.variants(),
+                units.test(),
+                units.looks(),
+                units.futility(),
+                units.splitCheck(),
+                units.trust(),
+                units.run(),
+                units.epochs());
+        List<VariantCount> counts = List.of(
+                new VariantCount(0, "short", 61_240, 7_402, new UnitTotals(14_020, 520_000, 64_000, 15_000)),
+                new VariantCount(0, "long", 60_987, 7_411, new UnitTotals(14_105, 515_000, 63_500, 14_900)));
+        ExperimentView before = view(plan, counts, Trust.SOUND, "", Verdict.CONTINUE, Map.of("long", NOTHING));
+        return new ExperimentView(
+                plan,
+                before.planDigest(),
+                before.completeUntil(),
+                before.counts(),
+                before.outcomes(),
+                before.split(),
+                before.trust(),
+                before.trustReason(),
+                before.verdict(),
+                Map.of("long", clustered(before.comparisons().get("long"), new Clustering(-0.31, 2.4))),
+                before.verdicts(),
+                before.held(),
+                before.history(),
+                before.looksTaken(),
+                before.looksDelayed(),
+                before.delayReason(),
+                before.maximumInformation(),
+                before.lastRecord());
+    }
+
+    private static Comparison clustered(Comparison look, Clustering clustering) {
+        return new Comparison(
+                look.variant(),
+                look.look(),
+                look.z(),
+                look.information(),
+                look.informationFraction(),
+                look.spendingTime(),
+                look.level(),
+                look.alphaSpent(),
+                look.upper(),
+                look.lower(),
+                look.futility(),
+                look.difference(),
+                look.differenceLower(),
+                look.differenceUpper(),
+                look.lift(),
+                look.outlook(),
+                look.adjusted(),
+                clustering,
                 look.verdict(),
                 look.held(),
                 look.reason());
