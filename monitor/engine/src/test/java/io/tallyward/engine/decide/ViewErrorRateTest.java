@@ -9,6 +9,9 @@ import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.Spending;
 import io.tallyward.engine.plan.Spending.Family;
 import io.tallyward.engine.record.Verdict;
+import java.io.IOException;
+import java.nio.file.Files;
+import java.nio.file.Path;
 import java.time.Duration;
 import java.util.List;
 import java.util.Locale;
@@ -17,7 +20,7 @@ import java.util.Random;
 import org.junit.jupiter.api.Tag;
 import org.junit.jupiter.api.Test;
 import org.junit.jupiter.params.ParameterizedTest;
-import org.junit.jupiter.params.provider.EnumSource;
+import org.junit.jupiter.params.provider.CsvSource;
 
 /**
  * False stops of plans that count views, through the whole deciding side, with fixed seeds: ten days without an effect, a look
@@ -31,6 +34,7 @@ class ViewErrorRateTest {
     private static final double ALPHA = 0.05;
     private static final double STANDARD_ERRORS = 3;
     private static final long SEED = 20260504L;
+    private static final Path PAGE = Path.of("../statistics/STATISTICS.md");
 
     /** How the units of a day are split between the variants; days count from 0. */
     private interface Arrivals {
@@ -44,6 +48,12 @@ class ViewErrorRateTest {
             assertTrue(stops <= allowed, () -> this + " (expected: stops at most " + allowed + "), seed " + SEED);
             assertTrue(stops >= ALPHA / 4, () -> this + " (expected: stops of a test that looks), seed " + SEED);
             assertTrue(independent > 2 * ALPHA, () -> this + " (expected: independent beyond twice the level)");
+        }
+
+        /** STATISTICS.md quotes them. */
+        void areThoseOfThePage(String plan) throws IOException {
+            String row = String.format(Locale.ROOT, "| %s | %.4f | %.4f |", plan, stops, independent);
+            assertTrue(Files.readString(PAGE).contains(row), () -> PAGE + " (expected: " + row + ")");
         }
     }
 
@@ -76,14 +86,7 @@ class ViewErrorRateTest {
             stops += stopped(byView) ? 1 : 0;
             independent += stopped(naive) ? 1 : 0;
         }
-        Errors errors = new Errors((double) stops / runs, (double) independent / runs, runs);
-        System.out.printf(
-                Locale.ROOT,
-                "false stops of %d runs: %.4f, views taken for independent: %.4f%n",
-                runs,
-                errors.stops(),
-                errors.independent());
-        return errors;
+        return new Errors((double) stops / runs, (double) independent / runs, runs);
     }
 
     private static List<Cell> trials(List<Cell> cells) {
@@ -121,14 +124,21 @@ class ViewErrorRateTest {
 
     @Tag("slow")
     @ParameterizedTest
-    @EnumSource(names = {"POCOCK", "OBRIEN_FLEMING"})
-    void keepsTheLevelInManyRuns(Family family) {
-        errors(plan(family), ViewErrorRateTest::even, 10_000).areThoseOfAValidTestOnly();
+    @CsvSource(
+            delimiter = ';',
+            quoteCharacter = '"',
+            value = {"OBRIEN_FLEMING; O'Brien-Fleming type", "POCOCK; Pocock type"})
+    void keepsTheLevelInManyRuns(Family family, String name) throws IOException {
+        Errors errors = errors(plan(family), ViewErrorRateTest::even, 10_000);
+        errors.areThoseOfAValidTestOnly();
+        errors.areThoseOfThePage(name);
     }
 
     @Tag("slow")
     @Test
-    void keepsTheLevelThroughARampInManyRuns() {
-        withARamp(10_000).areThoseOfAValidTestOnly();
+    void keepsTheLevelThroughARampInManyRuns() throws IOException {
+        Errors errors = withARamp(10_000);
+        errors.areThoseOfAValidTestOnly();
+        errors.areThoseOfThePage("Pocock type, a ramp from 1:1 to 3:7 after four days");
     }
 }
