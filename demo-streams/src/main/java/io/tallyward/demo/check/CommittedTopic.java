@@ -19,7 +19,7 @@ public final class CommittedTopic {
     private CommittedTopic() {}
 
     /**
-     * Hands every committed record over, in the order of each partition.
+     * Hands every committed record with a value over, in the order of each partition.
      *
      * @throws IllegalStateException when the topic does not exist or its end is not reached within a minute
      */
@@ -58,7 +58,12 @@ public final class CommittedTopic {
                 throw new IllegalStateException(
                         "topic " + topic + ": its end was not reached within " + PATIENCE.toSeconds() + " s");
             }
-            consumer.poll(POLL).forEach(reader);
+            for (ConsumerRecord<byte[], byte[]> record : consumer.poll(POLL)) {
+                // A record without a value says nothing; it only carried the end of a transaction.
+                if (record.value() != null) {
+                    reader.accept(record);
+                }
+            }
         }
     }
 }

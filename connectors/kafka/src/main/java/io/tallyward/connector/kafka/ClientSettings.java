@@ -75,10 +75,11 @@ final class ClientSettings {
         Map<String, String> fixed = new HashMap<>(FIXED_FOR_READING);
         fixed.put("group.id", group.id());
         fixed.put("client.id", clientId(group, worker));
-        fixed.put("group.protocol", "classic");
-        fixed.put("partition.assignment.strategy", "org.apache.kafka.clients.consumer.RangeAssignor");
+        fixed.putAll(group.protocol().settings());
         fixed.put("auto.offset.reset", "none");
-        return layered(group.clientProperties(), proposed, fixed);
+        Map<String, Object> settings = layered(group.clientProperties(), proposed, fixed);
+        settings.keySet().removeAll(group.protocol().refused());
+        return settings;
     }
 
     static Map<String, Object> state(ShardGroup group, int worker) {
@@ -94,8 +95,13 @@ final class ClientSettings {
      * @param number counts the producers of a worker, so that each has a transactional id of its own
      */
     static Map<String, Object> output(ShardGroup group, int worker, int number) {
+        return output(group, worker, transactionalId(group, worker, number));
+    }
+
+    /** For ending what was written under a transactional id. */
+    static Map<String, Object> output(ShardGroup group, int worker, String transactionalId) {
         Map<String, String> fixed = new HashMap<>();
-        fixed.put("transactional.id", clientId(group, worker) + "-" + number);
+        fixed.put("transactional.id", transactionalId);
         fixed.put("client.id", clientId(group, worker));
         fixed.put("acks", "all");
         fixed.put("enable.idempotence", "true");
@@ -111,6 +117,17 @@ final class ClientSettings {
         fixed.put("auto.offset.reset", "earliest");
         fixed.put("max.poll.records", Integer.toString(mostRecords));
         return layered(clientProperties, proposed, fixed);
+    }
+
+    /** The transactional id of a worker's producer by its number. */
+    static String transactionalId(ShardGroup group, int worker, int number) {
+        return clientId(group, worker) + "-" + number;
+    }
+
+    /** Whether a transactional id is one that some worker of the group has used. */
+    static boolean isOurs(ShardGroup group, String transactionalId) {
+        return transactionalId.startsWith(group.id() + "-")
+                && transactionalId.substring(group.id().length()).matches("-.+-\\d+-\\d+");
     }
 
     private static String clientId(ShardGroup group, int worker) {

@@ -18,9 +18,12 @@ interface Clients {
     /** Writes in transactions, under a transactional id that was never used before. */
     Producer<byte[], byte[]> output();
 
+    /** The transactional id of the producer that {@link #output()} made last; empty before the first. */
+    Optional<String> lastTransactionalId();
+
     /**
-     * Stands in for the producer that {@link #output()} made last, under its transactional id, for ending what that one may
-     * have left open and for nothing else; empty before the first.
+     * Stands in for a producer that was made earlier, by this worker or another, under its transactional id: for ending what
+     * that one has left open and for nothing else.
      */
-    Optional<Producer<byte[], byte[]>> predecessor();
+    Producer<byte[], byte[]> standIn(String transactionalId);
 }

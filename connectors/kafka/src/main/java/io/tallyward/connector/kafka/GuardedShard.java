@@ -39,6 +39,10 @@ final class GuardedShard {
         });
     }
 
+    long pendingBytes() {
+        return shard.pendingBytes();
+    }
+
     List<Output> drain() {
         return guarded("failed to hand out its effects", shard::drain);
     }

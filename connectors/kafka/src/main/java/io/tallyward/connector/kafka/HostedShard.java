@@ -42,6 +42,14 @@ public interface HostedShard {
      */
     List<Output> drain();
 
+    /**
+     * About how many bytes of foreign data the next drain will hand out. When it is much, it is drained and committed before
+     * the interval has passed, so that memory stays bounded whatever the input; asked after every poll, so it must be cheap.
+     */
+    default long pendingBytes() {
+        return 0;
+    }
+
     /** All that was drained (or restored) so far is durable: the moment to publish metrics and snapshots. */
     void committed();
 

@@ -39,17 +39,21 @@ final class KafkaClients implements Clients {
     @Override
     public Producer<byte[], byte[]> output() {
         outputs++;
-        return producer();
+        return producer(ClientSettings.output(group, worker, outputs));
     }
 
     @Override
-    public Optional<Producer<byte[], byte[]>> predecessor() {
-        return outputs == 0 ? Optional.empty() : Optional.of(producer());
+    public Optional<String> lastTransactionalId() {
+        return outputs == 0 ? Optional.empty() : Optional.of(ClientSettings.transactionalId(group, worker, outputs));
     }
 
-    private Producer<byte[], byte[]> producer() {
-        return new KafkaProducer<>(
-                ClientSettings.output(group, worker, outputs), new ByteArraySerializer(), new ByteArraySerializer());
+    @Override
+    public Producer<byte[], byte[]> standIn(String transactionalId) {
+        return producer(ClientSettings.output(group, worker, transactionalId));
+    }
+
+    private static Producer<byte[], byte[]> producer(Map<String, Object> settings) {
+        return new KafkaProducer<>(settings, new ByteArraySerializer(), new ByteArraySerializer());
     }
 
     private static Consumer<byte[], byte[]> consumer(Map<String, Object> settings) {

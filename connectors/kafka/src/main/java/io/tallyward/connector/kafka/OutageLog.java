@@ -5,13 +5,15 @@ import java.time.Instant;
 import java.time.InstantSource;
 import java.util.HashMap;
 import java.util.HashSet;
+import java.util.List;
 import java.util.Map;
 import java.util.Set;
 import org.slf4j.Logger;
 import org.slf4j.LoggerFactory;
 
 /**
- * Says once what is wrong and once that it is over, however many workers notice and however often they try. What heals
+ * Says what is wrong and that it is over, however many workers notice and however often they try: once when it has lasted
+ * for a moment, again at growing intervals for as long as it lasts (after 5 min, 30 min, then every 6 h), and once at its end. What heals
  * within moments is not said at all: a service that starts for the first time waits for topics that another part of it is
  * just creating. Thread-safe.
  */
@@ -21,6 +23,10 @@ final class OutageLog {
 
     /** How long work must have been impossible before it is said. */
     private static final Duration MOMENT = Duration.ofSeconds(3);
+
+    /** Between what was said and its repetition. */
+    private static final List<Duration> SILENCES =
+            List.of(Duration.ofMinutes(5), Duration.ofMinutes(30), Duration.ofHours(6));
 
     private final String who;
     private final InstantSource clock;
@@ -33,6 +39,11 @@ final class OutageLog {
 
     private Instant lastWell;
 
+    /** How often it was repeated since all was last well; guarded by this object's monitor. */
+    private int repeated;
+
+    private Instant lastSaid = Instant.EPOCH;
+
     OutageLog(String who, InstantSource clock) {
         this.who = who;
         this.clock = clock;
@@ -42,10 +53,20 @@ final class OutageLog {
     /** A worker met an obstacle; logged once it has lasted, unless the same was said before. */
     synchronized void met(int worker, BrokerSentence sentence) {
         ongoing.put(worker, sentence.condition());
-        boolean lasting = Duration.between(lastWell, clock.instant()).compareTo(MOMENT) >= 0;
-        if (lasting && said.add(sentence.condition())) {
+        Instant now = clock.instant();
+        Duration lasted = Duration.between(lastWell, now);
+        if (lasted.compareTo(MOMENT) >= 0 && said.add(sentence.condition())) {
+            lastSaid = now;
             LOG.warn("{}: {}; trying again by itself", who, sentence.text());
+        } else if (!said.isEmpty() && Duration.between(lastSaid, now).compareTo(silence()) >= 0) {
+            lastSaid = now;
+            repeated++;
+            LOG.warn("{}: for {} min now: {}; trying again by itself", who, lasted.toMinutes(), sentence.text());
         }
+    }
+
+    private Duration silence() {
+        return SILENCES.get(Math.min(repeated, SILENCES.size() - 1));
     }
 
     /** A worker is doing its work again. */
@@ -57,6 +78,7 @@ final class OutageLog {
         lastWell = clock.instant();
         if (!said.isEmpty()) {
             said.clear();
+            repeated = 0;
             LOG.info("{}: working again", who);
         }
     }

@@ -64,7 +64,12 @@ final class OutboxSession implements ConsumerRebalanceListener {
             consumer.resume(consumer.paused());
         }
         for (ConsumerRecord<byte[], byte[]> record : consumer.poll(POLL)) {
-            delivery.deliver(ledger.hand(record));
+            OutboxRecord notice = ledger.hand(record);
+            if (Filler.is(record)) {
+                notice.done();
+            } else {
+                delivery.deliver(notice);
+            }
         }
         contact.refresh(clock.millis());
         commitDone();

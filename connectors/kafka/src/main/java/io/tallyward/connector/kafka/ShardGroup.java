@@ -23,6 +23,7 @@ import java.util.function.IntFunction;
  * @param start where to read from while nothing is committed
  * @param commitInterval how often effects become durable, 10 ms to 1 min
  * @param workers how many threads share the partitions, 1 to 64
+ * @param protocol how the members agree on who reads what
  * @param clientProperties properties of the Kafka clients; {@code bootstrap.servers} at least. Those on which exactness
  *     rests are set by the runner and cannot be changed here.
  */
@@ -37,6 +38,7 @@ public record ShardGroup(
         StartPosition start,
         Duration commitInterval,
         int workers,
+        GroupProtocol protocol,
         Map<String, String> clientProperties) {
 
     static final Duration SHORTEST_INTERVAL = Duration.ofMillis(10);
@@ -53,6 +55,7 @@ public record ShardGroup(
         Objects.requireNonNull(shards, "shards");
         Objects.requireNonNull(start, "start");
         Objects.requireNonNull(commitInterval, "commitInterval");
+        Objects.requireNonNull(protocol, "protocol");
         clientProperties = Map.copyOf(clientProperties);
         if (inputTopics.isEmpty() || inputTopics.stream().distinct().count() != inputTopics.size()) {
             throw new IllegalArgumentException("inputTopics: " + inputTopics + " (expected: at least one, each once)");
@@ -84,7 +87,7 @@ public record ShardGroup(
         return new Builder(id);
     }
 
-    /** Starts from: an instance name drawn at random, earliest, one second, one worker, no internal topics. */
+    /** Starts from: an instance name drawn at random, earliest, one second, one worker, the classic protocol, no internal topics. */
     public static final class Builder {
         private final String id;
         private final Map<String, String> clientProperties = new HashMap<>();
@@ -97,6 +100,7 @@ public record ShardGroup(
         private StartPosition start = StartPosition.earliest();
         private Duration commitInterval = Duration.ofSeconds(1);
         private int workers = 1;
+        private GroupProtocol protocol = GroupProtocol.CLASSIC;
 
         private Builder(String id) {
             this.id = id;
@@ -148,6 +152,11 @@ public record ShardGroup(
             return this;
         }
 
+        public Builder protocol(GroupProtocol groupProtocol) {
+            this.protocol = groupProtocol;
+            return this;
+        }
+
         public Builder bootstrapServers(String servers) {
             clientProperties.put("bootstrap.servers", servers);
             return this;
@@ -170,6 +179,7 @@ public record ShardGroup(
                     start,
                     commitInterval,
                     workers,
+                    protocol,
                     clientProperties);
         }
     }

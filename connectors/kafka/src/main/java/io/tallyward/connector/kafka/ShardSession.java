@@ -3,6 +3,7 @@ package io.tallyward.connector.kafka;
 import java.time.Duration;
 import java.time.InstantSource;
 import java.util.ArrayList;
+import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
@@ -32,6 +33,15 @@ final class ShardSession {
     private static final Duration POLL = Duration.ofMillis(100);
     private static final Duration CLOSE_PATIENCE = Duration.ofSeconds(2);
 
+    /** How often to see whether topics are still what they were, and whether a transaction hangs. */
+    static final Duration UPKEEP = Duration.ofSeconds(10);
+
+    /** A transaction of more input than this is committed before its time; it would take seconds and much memory. */
+    static final int MOST_RECORDS = 1_000_000;
+
+    /** The same for what shards have ready to be written, in bytes. */
+    static final long MOST_PENDING_BYTES = 32L * 1024 * 1024;
+
     private final ShardGroup group;
     private final InstantSource clock;
     private final BooleanSupplier stopping;
@@ -44,9 +54,15 @@ final class ShardSession {
     private final Contact contact;
     private final AssignedShards assigned;
 
+    private final InputIdentity identity;
+    private final TransactionMender mender;
+
     private long lastCycleMillis;
+    private long lastUpkeepMillis;
+    private long uncommittedRecords;
     private long cycles;
     private boolean pollFailed;
+    private boolean outdated;
 
     /**
      * Connects, checks the topics and joins the group.
@@ -62,44 +78,58 @@ final class ShardSession {
         this.cluster = clients.cluster();
         try {
             this.partitions = GroupLayout.resolve(group, cluster);
+            this.identity = new InputIdentity(group, cluster, partitions);
             this.consumer = clients.input();
         } catch (RuntimeException failure) {
             cluster.close();
             throw failure;
         }
-        this.transactions = new Transactions(clients);
+        this.transactions = new Transactions(clients, cluster);
         this.contact = new Contact(consumer, cluster);
-        this.restorer = new ShardRestorer(group, clients, cluster, consumer, partitions);
-        this.assigned = new AssignedShards(consumer, partitions, this::commitBeforeRevocation, contact::reset);
+        this.restorer = new ShardRestorer(group, clients, cluster, consumer, identity, partitions, clock);
+        this.mender = new TransactionMender(group, clients, cluster, consumer, partitions, transactions::retire);
+        this.assigned = new AssignedShards(consumer, group.inputTopics().size(), partitions, new Consequences());
         this.lastCycleMillis = clock.millis();
+        this.lastUpkeepMillis = lastCycleMillis;
         consumer.subscribe(group.inputTopics(), assigned);
     }
 
-    /** Restores at most one shard, reads once, and commits if the interval has passed. */
+    /** Brings a shard forward that waits to be restored, reads once, and commits if it is time to. */
     void step() {
         if (assigned.layoutChanged()) {
             throw new BrokerException("a topic of " + group.inputTopics() + " has grown beyond " + partitions
                     + " partitions on " + group.broker() + ": its shards are being laid out anew");
         }
-        if (assigned.hasWaiting()) {
-            restoreNext();
+        Optional<Integer> next = restorer.next(assigned.waiting());
+        if (next.isPresent()) {
+            restore(next.get());
         }
         apply(poll());
+        board.restoring(restorer.progress(assigned.waiting()));
         board.hosting(assigned.running().keySet());
         long now = clock.millis();
         if (Elapsed.since(lastCycleMillis, now, group.commitInterval())) {
             lastCycleMillis = now;
             cycle(now);
+        } else if (uncommittedRecords >= MOST_RECORDS || pendingBytes() >= MOST_PENDING_BYTES) {
+            commit();
         }
     }
 
-    private void restoreNext() {
-        long began = System.nanoTime();
-        int partition = assigned.firstWaiting();
+    private long pendingBytes() {
+        long bytes = 0;
+        for (GuardedShard shard : assigned.running().values()) {
+            bytes += shard.pendingBytes();
+        }
+        return bytes;
+    }
+
+    private void restore(int partition) {
         transactions.ready();
-        ShardRestorer.Restored restored = restorer.restore(partition, assigned.inputs(partition), stopping);
-        assigned.started(partition, restored);
-        board.restored(Duration.ofNanos(System.nanoTime() - began).toMillis());
+        restorer.advance(partition, assigned::inputs, stopping).ifPresent(restored -> {
+            assigned.started(partition, restored);
+            board.restored(Math.max(1, clock.millis() - restored.startedMillis()));
+        });
         if (!assigned.hasWaiting()) {
             restorer.pause();
         }
@@ -108,7 +138,7 @@ final class ShardSession {
     private ConsumerRecords<byte[], byte[]> poll() {
         ConsumerRecords<byte[], byte[]> records;
         try {
-            records = consumer.poll(assigned.hasWaiting() ? Duration.ZERO : POLL);
+            records = consumer.poll(restorer.next(assigned.waiting()).isPresent() ? Duration.ZERO : POLL);
         } catch (OffsetOutOfRangeException deleted) {
             skipDeleted(deleted);
             records = ConsumerRecords.empty();
@@ -124,6 +154,7 @@ final class ShardSession {
     }
 
     private void skipDeleted(OffsetOutOfRangeException deleted) {
+        verifyInputs();
         Map<TopicPartition, Long> wanted = deleted.offsetOutOfRangePartitions();
         Map<TopicPartition, Long> oldest = consumer.beginningOffsets(wanted.keySet());
         wanted.forEach((partition, offset) -> {
@@ -146,6 +177,7 @@ final class ShardSession {
                 shard.apply(record);
             }
         }
+        uncommittedRecords += records.count();
         board.consumed(records.count());
     }
 
@@ -156,20 +188,37 @@ final class ShardSession {
                         shard.passTime(nowMillis, topic -> contact.caughtUp(new TopicPartition(topic, partition))));
         commit();
         board.lag(lag());
-        if (contact.trouble().isEmpty() && !assigned.hasWaiting()) {
+        if (trouble().isEmpty() && !assigned.hasWaiting()) {
             cycles++;
+        }
+        if (contact.trouble().isEmpty() && Elapsed.since(lastUpkeepMillis, nowMillis, UPKEEP)) {
+            lastUpkeepMillis = nowMillis;
+            verifyInputs();
+            mender.look(assigned.holds(0));
+        }
+    }
+
+    private void verifyInputs() {
+        try {
+            identity.verify();
+        } catch (BrokerException changed) {
+            outdated = true;
+            throw changed;
         }
     }
 
     private void commit() {
         List<Output> outputs = new ArrayList<>();
         assigned.running().values().forEach(shard -> outputs.addAll(shard.drain()));
-        Map<TopicPartition, OffsetAndMetadata> positions = assigned.positions();
+        Map<TopicPartition, Long> positions = assigned.positions();
+        uncommittedRecords = 0;
         if (outputs.isEmpty() && assigned.isCommitted(positions)) {
             return;
         }
         try {
-            transactions.commit(outputs, positions, consumer.groupMetadata());
+            Map<TopicPartition, OffsetAndMetadata> offsets = new HashMap<>();
+            positions.forEach((input, position) -> offsets.put(input, identity.offset(input, position)));
+            transactions.commit(outputs, offsets, consumer.groupMetadata());
         } catch (RuntimeException failure) {
             board.aborted();
             throw failure;
@@ -207,6 +256,7 @@ final class ShardSession {
     void forget() {
         assigned.forgetRunning();
         restorer.pause();
+        uncommittedRecords = 0;
         board.hosting(List.of());
     }
 
@@ -217,7 +267,7 @@ final class ShardSession {
 
     /** Whether the membership itself is beyond use. */
     boolean mustBeAbandoned() {
-        return pollFailed || assigned.layoutChanged();
+        return pollFailed || outdated || assigned.layoutChanged();
     }
 
     /** How many commit cycles have ended well, with all shards restored and all brokers answering. */
@@ -237,8 +287,20 @@ final class ShardSession {
         return assigned.joined() ? WorkerState.RUNNING : WorkerState.STARTING;
     }
 
-    Optional<KafkaException> trouble() {
-        return contact.trouble();
+    /** What keeps the session from doing all of its work, although it can do some. */
+    Optional<RuntimeException> trouble() {
+        if (contact.trouble().isPresent()) {
+            return Optional.of(contact.trouble().get());
+        }
+        return restorer.obstacle().map(obstacle -> new BrokerException(obstacle + remedy()));
+    }
+
+    private String remedy() {
+        return mender.undecided().stream()
+                .findFirst()
+                .map(transaction -> "; " + TransactionMender.remedy(transaction, group.broker()))
+                .orElse(": if it has hung, the instance that reads partition 0 ends it within half a minute, or its log"
+                        + " says what to do");
     }
 
     void wakeup() {
@@ -258,12 +320,31 @@ final class ShardSession {
     void abandon() {
         try {
             assigned.releaseAll();
+            restorer.forgetAll();
         } finally {
             restorer.pause();
             closeQuietly(() -> consumer.close(CloseOptions.timeout(CLOSE_PATIENCE)));
             closeQuietly(transactions::close);
             closeQuietly(cluster::close);
             board.hosting(List.of());
+        }
+    }
+
+    /** What follows from a change of the assignment. */
+    private final class Consequences implements AssignedShards.Changes {
+        @Override
+        public void beforeRevocation() {
+            commitBeforeRevocation();
+        }
+
+        @Override
+        public void forget(int partition) {
+            restorer.forget(partition);
+        }
+
+        @Override
+        public void changed() {
+            contact.reset();
         }
     }
 

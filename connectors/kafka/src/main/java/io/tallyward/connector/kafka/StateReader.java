@@ -11,16 +11,17 @@ import org.apache.kafka.common.TopicPartition;
 import org.apache.kafka.common.errors.WakeupException;
 
 /**
- * Reads a shard's committed state, from the beginning of its partition of the state topic to the high watermark as it was
- * when the reading began. Going to the high watermark, and not only to the last stable offset, waits for transactions that
- * are just ending: the coordinator may have made a predecessor's offsets visible a moment before its state.
+ * Reads the committed state of shards, of each from the beginning of its partition of the state topic to the high watermark
+ * as it was when the reading began. Going to the high watermark, and not only to the last stable offset, waits for
+ * transactions that are just ending: the coordinator may have made a predecessor's offsets visible a moment before its
+ * state.
  */
 final class StateReader implements AutoCloseable {
 
     private static final Duration POLL = Duration.ofMillis(200);
 
-    /** Polls without progress before giving up; together half a minute, twice the transaction timeout. */
-    static final int PATIENCE = 150;
+    /** Records after which the worker looks after its other shards; reading them takes about a tenth of a second. */
+    private static final int CHUNK = 100_000;
 
     private static final Duration CLOSE_PATIENCE = Duration.ofSeconds(1);
 
@@ -34,39 +35,44 @@ final class StateReader implements AutoCloseable {
         this.stateTopic = stateTopic;
     }
 
-    /**
-     * Restores a shard and returns how many records that took.
-     *
-     * @throws BrokerException if reading makes no progress
-     * @throws WakeupException if the worker is to stop
-     */
-    long restore(int partition, GuardedShard shard, BooleanSupplier stopping) {
-        TopicPartition source = new TopicPartition(stateTopic, partition);
+    /** Finds out how much there is to read. */
+    void begin(Restoration restoration) {
+        TopicPartition source = new TopicPartition(stateTopic, restoration.partition());
         long end = cluster.endOffset(source);
         consumer.assign(List.of(source));
         consumer.seekToBeginning(List.of(source));
-        long restored = 0;
-        long position = consumer.position(source);
-        for (int waited = 0; position < end; waited++) {
+        restoration.begin(consumer.position(source), end);
+    }
+
+    /**
+     * Reads a part of what is left.
+     *
+     * @return whether that was anything at all
+     * @throws WakeupException if the worker is to stop
+     */
+    boolean advance(Restoration restoration, BooleanSupplier stopping) {
+        TopicPartition source = new TopicPartition(stateTopic, restoration.partition());
+        if (!consumer.assignment().contains(source)) {
+            consumer.assign(List.of(source));
+            consumer.seek(source, restoration.position());
+        }
+        long began = restoration.position();
+        for (int read = 0; read < CHUNK && !restoration.complete(); ) {
             if (stopping.getAsBoolean()) {
                 throw new WakeupException();
             }
-            if (waited == PATIENCE) {
-                throw new BrokerException("restoring from " + source + " stands still at offset " + position + " of "
-                        + end + ": a broker is missing, or a transaction there does not end");
-            }
             ConsumerRecords<byte[], byte[]> records = consumer.poll(POLL);
             for (ConsumerRecord<byte[], byte[]> record : records) {
-                shard.restore(record);
+                restoration.take(record);
             }
-            restored += records.count();
-            long before = position;
-            position = consumer.position(source);
-            if (position > before) {
-                waited = 0;
+            long before = restoration.position();
+            restoration.reached(consumer.position(source));
+            if (restoration.position() == before) {
+                break;
             }
+            read += records.count();
         }
-        return restored;
+        return restoration.position() > began;
     }
 
     @Override

@@ -19,6 +19,7 @@ final class StatusBoard {
     private long aborts;
     private long restoreMillis;
     private OptionalLong lag = OptionalLong.empty();
+    private RestoreProgress restoring = RestoreProgress.NONE;
 
     private volatile WorkerStatus published;
 
@@ -55,6 +56,10 @@ final class StatusBoard {
         restoreMillis = millis;
     }
 
+    void restoring(RestoreProgress now) {
+        restoring = now;
+    }
+
     void lag(OptionalLong records) {
         lag = records;
     }
@@ -74,7 +79,8 @@ final class StatusBoard {
                 commits,
                 aborts,
                 restoreMillis,
-                lag);
+                lag,
+                restoring);
     }
 
     WorkerStatus published() {

@@ -3,6 +3,7 @@ package io.tallyward.connector.kafka;
 import java.time.Duration;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import org.apache.kafka.clients.consumer.ConsumerGroupMetadata;
 import org.apache.kafka.clients.consumer.OffsetAndMetadata;
 import org.apache.kafka.clients.producer.Producer;
@@ -23,10 +24,12 @@ final class Transactions implements AutoCloseable {
     private static final Duration CLOSE_PATIENCE = Duration.ofSeconds(1);
 
     private final Clients clients;
+    private final Cluster cluster;
     private Producer<byte[], byte[]> producer;
 
-    Transactions(Clients clients) {
+    Transactions(Clients clients, Cluster cluster) {
         this.clients = clients;
+        this.cluster = cluster;
     }
 
     /** Makes a producer if there is none, and waits until no earlier transaction of this worker is open. */
@@ -34,13 +37,33 @@ final class Transactions implements AutoCloseable {
         if (producer != null) {
             return;
         }
-        clients.predecessor().ifPresent(last -> {
-            begin(last);
-            last.close(CLOSE_PATIENCE);
-        });
+        clients.lastTransactionalId().ifPresent(this::endWhatIsOpen);
         Producer<byte[], byte[]> fresh = clients.output();
         begin(fresh);
         producer = fresh;
+    }
+
+    /**
+     * Ends the last transaction, unless its coordinator has ended it already. In that case the id is left alone: taking it
+     * over would wipe out how it ended, which {@link OwedMarker} may have to know.
+     */
+    private void endWhatIsOpen(String transactionalId) {
+        Optional<CoordinatedTransaction> last = cluster.coordinated(transactionalId);
+        if (last.isEmpty() || last.get().ended()) {
+            return;
+        }
+        if (last.get().ending()) {
+            throw new BrokerException("the last transaction of " + transactionalId
+                    + " is being ended by its coordinator, which takes moments: if this stays, see the broker's log");
+        }
+        Producer<byte[], byte[]> standIn = clients.standIn(transactionalId);
+        begin(standIn);
+        standIn.close(CLOSE_PATIENCE);
+    }
+
+    /** Puts the producer aside, between two transactions; the next will have an id of its own. */
+    void retire() {
+        close();
     }
 
     /** Takes a transactional id over, which ends an open transaction under it. */

@@ -18,6 +18,7 @@ import java.util.OptionalLong;
  * @param aborts transactions that failed since the runner started
  * @param restoreMillis how long the last restoration of a shard took; 0 before the first
  * @param lag input records not yet read in the hosted partitions; empty while not known
+ * @param restoring how far it is with bringing shards back
  */
 public record WorkerStatus(
         int worker,
@@ -29,7 +30,8 @@ public record WorkerStatus(
         long commits,
         long aborts,
         long restoreMillis,
-        OptionalLong lag) {
+        OptionalLong lag,
+        RestoreProgress restoring) {
 
     public WorkerStatus {
         partitions = List.copyOf(partitions);
@@ -46,6 +48,7 @@ public record WorkerStatus(
                 0,
                 0,
                 0,
-                OptionalLong.empty());
+                OptionalLong.empty(),
+                RestoreProgress.NONE);
     }
 }

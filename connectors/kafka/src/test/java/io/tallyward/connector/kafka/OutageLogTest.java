@@ -58,6 +58,25 @@ class OutageLogTest {
                 said());
     }
 
+    @Test
+    void repeatsItselfAtGrowingIntervalsThroughoutADay() {
+        clock.advance(Duration.ofSeconds(3));
+        for (int second = 0; second < 24 * 3600; second += 10) {
+            outages.met(second % 2, second % 20 == 0 ? MISSING : new BrokerSentence("other", "no leader"));
+            clock.advance(Duration.ofSeconds(10));
+        }
+        List<String> minutes = said().stream()
+                .filter(line -> line.contains("min now"))
+                .map(line -> line.replaceAll(".*for (\\d+) min now.*", "$1"))
+                .toList();
+        assertEquals(List.of("5", "35", "395", "755", "1115"), minutes);
+        assertEquals(7, said().size(), "two conditions, each once, and the repetitions");
+        outages.over(0);
+        outages.over(1);
+        outages.met(0, MISSING);
+        assertEquals(8, said().size(), "it is over, and a new one has to last before it is said");
+    }
+
     private List<String> said() {
         return heard.list.stream().map(ILoggingEvent::getFormattedMessage).toList();
     }

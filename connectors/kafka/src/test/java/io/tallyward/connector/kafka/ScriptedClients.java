@@ -4,16 +4,21 @@ import java.time.Duration;
 import java.util.ArrayList;
 import java.util.Collection;
 import java.util.HashMap;
+import java.util.HashSet;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 import java.util.Set;
+import java.util.concurrent.Future;
 import org.apache.kafka.clients.consumer.Consumer;
+import org.apache.kafka.clients.consumer.ConsumerGroupMetadata;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
 import org.apache.kafka.clients.consumer.MockConsumer;
 import org.apache.kafka.clients.consumer.OffsetAndMetadata;
 import org.apache.kafka.clients.producer.MockProducer;
 import org.apache.kafka.clients.producer.Producer;
+import org.apache.kafka.clients.producer.ProducerRecord;
+import org.apache.kafka.clients.producer.RecordMetadata;
 import org.apache.kafka.common.TopicPartition;
 import org.apache.kafka.common.serialization.ByteArraySerializer;
 
@@ -32,6 +37,17 @@ final class ScriptedClients implements Clients, OutboxClients {
     RuntimeException committedFailure;
 
     RuntimeException pingFailure;
+
+    /** What the brokers say of transactions. */
+    final List<OpenTransaction> open = new ArrayList<>();
+
+    final Map<Long, CoordinatedTransaction> coordinated = new HashMap<>();
+    final Set<String> members = new HashSet<>();
+    final Map<String, String> ids = new HashMap<>();
+    boolean numbered = true;
+
+    /** What happens while a worker proves that it is a member. */
+    Runnable onProof = () -> {};
 
     @Override
     public Cluster cluster() {
@@ -74,16 +90,38 @@ final class ScriptedClients implements Clients, OutboxClients {
     }
 
     @Override
-    public Optional<Producer<byte[], byte[]>> predecessor() {
-        return producers.isEmpty()
-                ? Optional.empty()
-                : Optional.of(new MockProducer<>(true, null, new ByteArraySerializer(), new ByteArraySerializer()) {
-                    @Override
-                    public void initTransactions() {
-                        journal.add("end what was left open");
-                        super.initTransactions();
-                    }
-                });
+    public Optional<String> lastTransactionalId() {
+        return producers.isEmpty() ? Optional.empty() : Optional.of("counters-blue-0-" + producers.size());
+    }
+
+    @Override
+    public Producer<byte[], byte[]> standIn(String transactionalId) {
+        return new MockProducer<>(true, null, new ByteArraySerializer(), new ByteArraySerializer()) {
+            @Override
+            public void initTransactions() {
+                journal.add("take over " + transactionalId);
+                super.initTransactions();
+            }
+
+            @Override
+            public synchronized Future<RecordMetadata> send(ProducerRecord<byte[], byte[]> record) {
+                journal.add("fill " + record.topic() + "-" + record.partition());
+                return super.send(record);
+            }
+
+            @Override
+            public void sendOffsetsToTransaction(
+                    Map<TopicPartition, OffsetAndMetadata> offsets, ConsumerGroupMetadata member) {
+                journal.add("fill offsets");
+                super.sendOffsetsToTransaction(offsets, member);
+            }
+
+            @Override
+            public void commitTransaction() {
+                super.commitTransaction();
+                journal.add("commit " + transactionalId);
+            }
+        };
     }
 
     MockProducer<byte[], byte[]> producer() {
@@ -121,6 +159,12 @@ final class ScriptedClients implements Clients, OutboxClients {
 
         @Override
         public void commitSync(Map<TopicPartition, OffsetAndMetadata> offsets, Duration timeout) {
+            if (offsets.keySet().stream()
+                    .anyMatch(partition -> partition.topic().equals("states"))) {
+                journal.add("prove membership");
+                onProof.run();
+                return;
+            }
             committed.putAll(offsets);
             super.commitSync(offsets, timeout);
         }
@@ -179,6 +223,52 @@ final class ScriptedClients implements Clients, OutboxClients {
         public long endOffset(TopicPartition partition) {
             journal.add("ask for the end of the state");
             return stateEnd;
+        }
+
+        @Override
+        public Map<String, String> ids(Collection<String> names) {
+            Map<String, String> found = new HashMap<>(ids);
+            found.keySet().retainAll(names);
+            return found;
+        }
+
+        @Override
+        public List<OpenTransaction> openTransactions(Collection<TopicPartition> partitions) {
+            return open.stream()
+                    .filter(transaction -> partitions.contains(transaction.partition()))
+                    .toList();
+        }
+
+        @Override
+        public Optional<CoordinatedTransaction> coordinated(long producerId) {
+            return Optional.ofNullable(coordinated.get(producerId));
+        }
+
+        @Override
+        public Optional<CoordinatedTransaction> coordinated(String transactionalId) {
+            return coordinated.values().stream()
+                    .filter(known -> known.transactionalId().equals(transactionalId))
+                    .findFirst();
+        }
+
+        @Override
+        public boolean numbersTransactions() {
+            return numbered;
+        }
+
+        @Override
+        public void abort(OpenTransaction transaction) {
+            journal.add("abort in " + transaction.partition());
+        }
+
+        @Override
+        public Set<String> memberClientIds(String group) {
+            return members;
+        }
+
+        @Override
+        public void forgetOffsets(String group, Set<TopicPartition> partitions) {
+            journal.add("forget offsets of " + partitions);
         }
 
         @Override

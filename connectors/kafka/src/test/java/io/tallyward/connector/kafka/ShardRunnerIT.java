@@ -216,8 +216,13 @@ class ShardRunnerIT {
         }
 
         @Override
-        public Optional<Producer<byte[], byte[]>> predecessor() {
-            return real.predecessor();
+        public Optional<String> lastTransactionalId() {
+            return real.lastTransactionalId();
+        }
+
+        @Override
+        public Producer<byte[], byte[]> standIn(String transactionalId) {
+            return real.standIn(transactionalId);
         }
     }
 }

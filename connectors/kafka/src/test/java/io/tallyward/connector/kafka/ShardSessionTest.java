@@ -9,6 +9,7 @@ import io.tallyward.testkit.ManualClock;
 import java.time.Duration;
 import java.util.List;
 import java.util.Map;
+import org.apache.kafka.clients.admin.TransactionState;
 import org.apache.kafka.clients.consumer.OffsetAndMetadata;
 import org.apache.kafka.clients.consumer.OffsetOutOfRangeException;
 import org.apache.kafka.clients.producer.MockProducer;
@@ -53,14 +54,19 @@ class ShardSessionTest {
     void saysThatATransactionDoesNotEndWhenOffsetsStayUndecided() {
         clients.committedFailure = new TimeoutException("the last committed offset could not be determined");
         assign();
-        BrokerException undecided = assertThrows(BrokerException.class, session::step);
-        assertTrue(undecided.getMessage().contains("a transaction does not end"), undecided.getMessage());
-        assertTrue(undecided.getMessage().contains("crossings-0"), undecided.getMessage());
-        assertFalse(session.mustBeAbandoned());
+        session.step();
+        assertTrue(session.trouble().isEmpty(), "a transaction may take its time");
+        clock.advance(ShardRestorer.TOO_LONG);
+        session.step();
+        String undecided = session.trouble().orElseThrow().getMessage();
+        assertTrue(undecided.contains("a transaction does not end"), undecided);
+        assertTrue(undecided.contains("crossings-0"), undecided);
+        assertTrue(session.restoring());
         clients.committedFailure = null;
-        session.forget();
+        clock.advance(ShardRestorer.STANDS_BACK);
         session.step();
         assertFalse(session.restoring());
+        assertTrue(session.trouble().isEmpty());
     }
 
     @Test
@@ -135,10 +141,11 @@ class ShardSessionTest {
 
         clients.state("states", 0, 0, "quay-banner", "40");
         clients.committed.put(VIEWS, new OffsetAndMetadata(40));
+        clients.coordinated.put(7L, new CoordinatedTransaction("counters-blue-0-1", TransactionState.ONGOING, 7, 3));
         journal.clear();
         session.step();
         assertEquals(
-                List.of("end what was left open", "init transactions", "read committed offsets"),
+                List.of("take over counters-blue-0-1", "init transactions", "read committed offsets"),
                 journal.subList(0, 3));
         clients.input("crossings", 0, 40, "quay-banner", "view");
         stepAfterInterval();

@@ -7,6 +7,7 @@ import static io.tallyward.service.config.document.ScalarType.text;
 import static io.tallyward.service.config.document.ScalarType.wholeNumber;
 
 import io.tallyward.connector.format.EventField;
+import io.tallyward.connector.kafka.GroupProtocol;
 import io.tallyward.service.config.document.Key;
 import io.tallyward.service.config.document.ListType;
 import io.tallyward.service.config.document.MapType;
@@ -37,7 +38,12 @@ public final class ConfigKeys {
                         200,
                         "client properties"),
                 "Any property of the Kafka clients, passed through; values are never printed.");
-        static final Shape SHAPE = Shape.of(BOOTSTRAP_SERVERS, PROPERTIES);
+        static final Key<GroupProtocol> GROUP_PROTOCOL = Key.withDefault(
+                "group-protocol",
+                new ScalarType<>("classic or consumer", ConfigKeys::parseProtocol),
+                "classic",
+                "How instances share the partitions: classic, or consumer (KIP-848, brokers from 4.0); the same everywhere.");
+        static final Shape SHAPE = Shape.of(BOOTSTRAP_SERVERS, GROUP_PROTOCOL, PROPERTIES);
     }
 
     static final class Fields {
@@ -185,6 +191,14 @@ public final class ConfigKeys {
             Shape.of(NAME, KAFKA, INPUT, PLANS, COMMIT_INTERVAL, WORKERS, HTTP, WEBHOOK, UNIT_KEY);
 
     private ConfigKeys() {}
+
+    private static Optional<GroupProtocol> parseProtocol(String text) {
+        return switch (text) {
+            case "classic" -> Optional.of(GroupProtocol.CLASSIC);
+            case "consumer" -> Optional.of(GroupProtocol.CONSUMER);
+            default -> Optional.empty();
+        };
+    }
 
     private static Optional<InputStart> parseStart(String text) {
         return switch (text) {

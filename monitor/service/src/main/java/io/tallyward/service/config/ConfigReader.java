@@ -29,6 +29,8 @@ public final class ConfigReader {
             "group.id",
             "group.instance.id",
             "group.protocol",
+            "group.remote.assignor",
+            "partition.assignment.strategy",
             "client.id",
             "enable.auto.commit",
             "auto.offset.reset",
@@ -80,6 +82,7 @@ public final class ConfigReader {
                 values.get(ConfigKeys.NAME),
                 new KafkaConfig(
                         kafka.get(ConfigKeys.Kafka.BOOTSTRAP_SERVERS),
+                        kafka.get(ConfigKeys.Kafka.GROUP_PROTOCOL),
                         kafka.find(ConfigKeys.Kafka.PROPERTIES).orElse(Map.of())),
                 input(values.get(ConfigKeys.INPUT)),
                 directory.resolve(values.get(ConfigKeys.PLANS)).normalize(),

@@ -1,14 +1,16 @@
 package io.tallyward.service.config;
 
+import io.tallyward.connector.kafka.GroupProtocol;
 import java.util.Map;
 
 /**
  * How to reach the brokers.
  *
  * @param bootstrapServers host:port pairs separated by commas
+ * @param groupProtocol how instances share the partitions
  * @param properties further client properties, passed through as they are
  */
-public record KafkaConfig(String bootstrapServers, Map<String, String> properties) {
+public record KafkaConfig(String bootstrapServers, GroupProtocol groupProtocol, Map<String, String> properties) {
 
     public KafkaConfig {
         properties = Map.copyOf(properties);
@@ -17,7 +19,7 @@ public record KafkaConfig(String bootstrapServers, Map<String, String> propertie
     /** Names the properties without their values, for these may be passwords. */
     @Override
     public String toString() {
-        return "KafkaConfig[bootstrapServers=" + bootstrapServers + ", properties="
+        return "KafkaConfig[bootstrapServers=" + bootstrapServers + ", groupProtocol=" + groupProtocol + ", properties="
                 + properties.keySet().stream().sorted().toList() + "]";
     }
 }

@@ -169,6 +169,21 @@ enum Metric {
             Kind.GAUGE,
             "Duration of the latest restore of a group's state; absent before the first has ended.",
             "group"),
+    RESTORE_WAITING(
+            "tallyward_restore_waiting_partitions",
+            Kind.GAUGE,
+            "Partitions here whose state is not restored.",
+            "group"),
+    RESTORE_REMAINING(
+            "tallyward_restore_remaining_records",
+            Kind.GAUGE,
+            "State records still to be read by the restores that have begun, at most.",
+            "group"),
+    REACHED(
+            "tallyward_broker_reached",
+            Kind.GAUGE,
+            "Whether a group of shards can do all of its work with the broker.",
+            "group"),
 
     WEBHOOK_ATTEMPTS("tallyward_webhook_attempts_total", Kind.COUNTER, "Webhook requests sent."),
     WEBHOOK_FAILURES("tallyward_webhook_failures_total", Kind.COUNTER, "Webhook requests that did not succeed."),

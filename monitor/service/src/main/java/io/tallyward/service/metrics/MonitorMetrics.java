@@ -178,6 +178,9 @@ public final class MonitorMetrics {
         sheet.put(Metric.COMMITS, report.commits(), report.group());
         sheet.put(Metric.ABORTS, report.aborts(), report.group());
         report.restoreSeconds().ifPresent(seconds -> sheet.put(Metric.RESTORE, seconds, report.group()));
+        sheet.put(Metric.RESTORE_WAITING, report.waitingPartitions(), report.group());
+        sheet.put(Metric.RESTORE_REMAINING, report.remainingRecords(), report.group());
+        sheet.putState(Metric.REACHED, report.brokerReached(), report.group());
     }
 
     private static void webhook(Sheet sheet, WebhookReport report) {

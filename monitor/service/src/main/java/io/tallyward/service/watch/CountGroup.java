@@ -38,6 +38,7 @@ public final class CountGroup {
         TrafficLog trafficLog = new TrafficLog(names.rejects());
         return ShardGroup.builder(names.countGroup())
                 .clientProperties(clientProperties(config))
+                .protocol(config.kafka().groupProtocol())
                 .commitInterval(config.commitInterval())
                 .inputTopics(topics)
                 .stateTopic(names.countState())

@@ -3,6 +3,7 @@ package io.tallyward.service.watch;
 import io.tallyward.connector.format.DecisionJson;
 import io.tallyward.connector.format.NoticeJson;
 import io.tallyward.connector.format.TallyJson;
+import io.tallyward.connector.kafka.Filler;
 import io.tallyward.connector.kafka.HostedShard;
 import io.tallyward.connector.kafka.Output;
 import io.tallyward.engine.decide.DecideEffects;
@@ -48,6 +49,9 @@ final class DecideHost implements HostedShard {
 
     @Override
     public void apply(ConsumerRecord<byte[], byte[]> record) {
+        if (Filler.is(record)) {
+            return;
+        }
         shard.apply(TallyJson.read(record.value()));
         for (String experiment : shard.unplanned().keySet()) {
             if (saidUnplanned.add(experiment)) {

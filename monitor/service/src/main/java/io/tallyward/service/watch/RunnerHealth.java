@@ -35,7 +35,7 @@ final class RunnerHealth implements HealthSource {
             return new Health(name, State.DOWN, "Stopped.");
         }
         if (states.contains(WorkerState.RESTORING)) {
-            return new Health(name, State.STARTING, "Restoring state from " + now.group() + "'s topic.");
+            return new Health(name, State.STARTING, restoring(now));
         }
         if (states.contains(WorkerState.STARTING)) {
             return new Health(name, State.STARTING, "Joining the group " + now.group() + ".");
@@ -46,6 +46,26 @@ final class RunnerHealth implements HealthSource {
                 now.partitions().isEmpty()
                         ? "Standing by: the group's partitions are all with other members."
                         : "Hosting partitions " + now.partitions() + ".");
+    }
+
+    /** As in "Restoring state: 2 partitions of tallyward-count left, 40 % of 1000 records read where reading has begun." */
+    private static String restoring(RunnerStatus now) {
+        int waiting = 0;
+        long remaining = 0;
+        long total = 0;
+        for (WorkerStatus worker : now.workers()) {
+            waiting += worker.restoring().waiting().size();
+            remaining += worker.restoring().remaining();
+            total += worker.restoring().total();
+        }
+        if (waiting == 0) {
+            return "Restoring the state of " + now.group() + ".";
+        }
+        String partitions = waiting == 1 ? "1 partition" : waiting + " partitions";
+        String read = total == 0
+                ? ""
+                : ", " + 100 * (total - remaining) / total + " % of " + total + " records read where reading has begun";
+        return "Restoring state: " + partitions + " of " + now.group() + " left" + read + ".";
     }
 
     private static String lastError(RunnerStatus status, String otherwise) {
@@ -61,15 +81,24 @@ final class RunnerHealth implements HealthSource {
         long commits = 0;
         long aborts = 0;
         long restoreMillis = 0;
+        int waiting = 0;
+        long remaining = 0;
+        boolean reached = true;
         for (WorkerStatus worker : status.workers()) {
             commits += worker.commits();
             aborts += worker.aborts();
             restoreMillis = Math.max(restoreMillis, worker.restoreMillis());
+            waiting += worker.restoring().waiting().size();
+            remaining += worker.restoring().remaining();
+            reached &= worker.state() != WorkerState.BROKER_UNREACHABLE;
         }
         return new RunnerReport(
                 group,
                 commits,
                 aborts,
-                restoreMillis == 0 ? OptionalDouble.empty() : OptionalDouble.of(restoreMillis / 1000.0));
+                restoreMillis == 0 ? OptionalDouble.empty() : OptionalDouble.of(restoreMillis / 1000.0),
+                waiting,
+                remaining,
+                reached);
     }
 }

@@ -110,6 +110,7 @@ public final class WatchService implements AutoCloseable {
     private ShardGroup decideGroup() {
         return ShardGroup.builder(names.decideGroup())
                 .clientProperties(clientProperties)
+                .protocol(config.kafka().groupProtocol())
                 .commitInterval(config.commitInterval())
                 .inputTopics(List.of(names.tallies()))
                 .missingInput("counting creates it once it has found its own input topics; nothing to do here")

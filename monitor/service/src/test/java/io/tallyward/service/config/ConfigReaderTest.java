@@ -6,6 +6,7 @@ import static org.junit.jupiter.api.Assertions.assertThrows;
 
 import io.tallyward.connector.format.EventField;
 import io.tallyward.connector.format.EventMapping;
+import io.tallyward.connector.kafka.GroupProtocol;
 import io.tallyward.engine.event.EventKind;
 import io.tallyward.service.config.document.BadInputException;
 import io.tallyward.service.config.document.Checked;
@@ -43,7 +44,7 @@ class ConfigReaderTest {
         ServiceConfig config = read(MINIMAL).orElseThrow();
 
         assertEquals("tallyward", config.name());
-        assertEquals(new KafkaConfig("127.0.0.1:9092", Map.of()), config.kafka());
+        assertEquals(new KafkaConfig("127.0.0.1:9092", GroupProtocol.CLASSIC, Map.of()), config.kafka());
         assertEquals(
                 new InputConfig(
                         List.of("northwater-events"),

@@ -50,6 +50,7 @@ class MonitorMetricsTest {
                 tallyward_boundary_futility{experiment,variant}
                 tallyward_boundary_lower{experiment,variant}
                 tallyward_boundary_upper{experiment,variant}
+                tallyward_broker_reached{group}
                 tallyward_build_info{version}
                 tallyward_commits_total{group}
                 tallyward_comparison_verdict{experiment,variant,state}
@@ -67,6 +68,8 @@ class MonitorMetricsTest {
                 tallyward_predictive_power{experiment,variant}
                 tallyward_rejected_total{reason}
                 tallyward_restore_duration_seconds{group}
+                tallyward_restore_remaining_records{group}
+                tallyward_restore_waiting_partitions{group}
                 tallyward_split_p_value{experiment}
                 tallyward_successes{experiment,variant}
                 tallyward_topic_keyed_by_unit
@@ -230,7 +233,7 @@ class MonitorMetricsTest {
     static MonitorMetrics metrics(StatusBoard board) {
         return new MonitorMetrics(
                 board,
-                () -> List.of(new RunnerReport("count", 10, 1, OptionalDouble.of(2.5))),
+                () -> List.of(new RunnerReport("count", 10, 1, OptionalDouble.of(2.5), 2, 400, true)),
                 () -> Optional.of(new WebhookReport(5, 2, 1, OptionalDouble.of(30), 0)),
                 "0.1.0");
     }
