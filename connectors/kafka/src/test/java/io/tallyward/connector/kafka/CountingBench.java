@@ -16,6 +16,7 @@ import java.util.concurrent.atomic.AtomicReference;
 import java.util.function.IntFunction;
 import java.util.function.UnaryOperator;
 import java.util.stream.Collectors;
+import java.util.stream.Stream;
 import org.apache.kafka.clients.producer.ProducerRecord;
 import org.awaitility.Awaitility;
 
@@ -30,15 +31,25 @@ final class CountingBench {
     final BrokerUnderTest broker;
     final String group;
     final String input;
+    final List<String> inputs;
+    final GroupProtocol protocol;
     final String states;
     final String told;
     final AtomicReference<Throwable> fatal = new AtomicReference<>();
     private int produced;
 
     CountingBench(BrokerUnderTest broker) {
+        this(broker, GroupProtocol.CLASSIC, 1);
+    }
+
+    CountingBench(BrokerUnderTest broker, GroupProtocol protocol, int inputTopics) {
         this.broker = broker;
+        this.protocol = protocol;
         this.group = broker.uniqueName("counters");
-        this.input = broker.newTopic("crossings", PARTITIONS);
+        this.inputs = Stream.generate(() -> broker.newTopic("crossings", PARTITIONS))
+                .limit(inputTopics)
+                .toList();
+        this.input = inputs.get(0);
         this.states = group + "-states";
         this.told = group + "-told";
     }
@@ -47,7 +58,8 @@ final class CountingBench {
         return changes.apply(ShardGroup.builder(group)
                         .bootstrapServers(broker.bootstrapServers())
                         .clientProperties(Map.of("heartbeat.interval.ms", "300", "session.timeout.ms", "6000"))
-                        .inputTopics(List.of(input))
+                        .protocol(protocol)
+                        .inputTopics(inputs)
                         .stateTopic(states)
                         .internalTopics(partitions ->
                                 List.of(InternalTopic.compacted(states, partitions), InternalTopic.kept(told, 1)))
@@ -74,7 +86,10 @@ final class CountingBench {
         for (int i = 0; i < count; i++, produced++) {
             String experiment = EXPERIMENTS.get(produced % EXPERIMENTS.size());
             records.add(new ProducerRecord<>(
-                    input, produced % PARTITIONS, bytes(experiment), bytes(Integer.toString(produced))));
+                    inputs.get(produced / PARTITIONS % inputs.size()),
+                    produced % PARTITIONS,
+                    bytes(experiment),
+                    bytes(Integer.toString(produced))));
         }
         broker.produce(records);
     }

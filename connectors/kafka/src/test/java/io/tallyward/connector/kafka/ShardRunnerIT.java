@@ -21,12 +21,22 @@ import org.awaitility.Awaitility;
 import org.junit.jupiter.api.AfterAll;
 import org.junit.jupiter.api.BeforeAll;
 import org.junit.jupiter.api.Test;
+import org.junit.jupiter.params.ParameterizedClass;
+import org.junit.jupiter.params.provider.EnumSource;
 
+@ParameterizedClass
+@EnumSource(GroupProtocol.class)
 class ShardRunnerIT {
 
     private static BrokerUnderTest broker;
 
-    private final CountingBench bench = new CountingBench(broker);
+    private final GroupProtocol protocol;
+    private final CountingBench bench;
+
+    ShardRunnerIT(GroupProtocol protocol) {
+        this.protocol = protocol;
+        this.bench = new CountingBench(broker, protocol, 1);
+    }
 
     @BeforeAll
     static void connect() {
@@ -80,6 +90,26 @@ class ShardRunnerIT {
             bench.produce(200);
             bench.awaitRunning(second, 4);
             bench.assertExact();
+        }
+    }
+
+    @Test
+    void bringsAllInputsOfAPartitionTogetherWhileInstancesComeAndGo() {
+        CountingBench two = new CountingBench(broker, protocol, 2);
+        two.produce(200);
+        ShardRunner first = two.run(builder -> builder.workers(2));
+        two.awaitRunning(first, 4);
+        two.produce(200);
+        try (ShardRunner second = two.run()) {
+            two.produce(200);
+            Awaitility.await()
+                    .atMost(CountingBench.PATIENCE)
+                    .until(() -> !second.status().partitions().isEmpty());
+            two.produce(200);
+            first.close();
+            two.produce(200);
+            two.awaitRunning(second, 4);
+            two.assertExact();
         }
     }
 
@@ -152,7 +182,7 @@ class ShardRunnerIT {
             bench.awaitTold(2);
             assertEquals(2, runner.status().recordsConsumed());
         }
-        CountingBench other = new CountingBench(broker);
+        CountingBench other = new CountingBench(broker, protocol, 1);
         other.produce(40);
         try (ShardRunner runner = other.run(builder -> builder.start(StartPosition.latest()))) {
             other.awaitRunning(runner, 4);
