@@ -36,6 +36,9 @@ final class ShardSession {
     /** How often to see whether topics are still what they were, and whether a transaction hangs. */
     static final Duration UPKEEP = Duration.ofSeconds(10);
 
+    /** How long the inputs of one partition number may be with several members. */
+    static final Duration APART = Duration.ofMinutes(1);
+
     /** A transaction of more input than this is committed before its time; it would take seconds and much memory. */
     static final int MOST_RECORDS = 1_000_000;
 
@@ -59,6 +62,7 @@ final class ShardSession {
 
     private long lastCycleMillis;
     private long lastUpkeepMillis;
+    private long apartSinceMillis;
     private long uncommittedRecords;
     private long cycles;
     private boolean pollFailed;
@@ -91,6 +95,7 @@ final class ShardSession {
         this.assigned = new AssignedShards(consumer, group.inputTopics().size(), partitions, new Consequences());
         this.lastCycleMillis = clock.millis();
         this.lastUpkeepMillis = lastCycleMillis;
+        this.apartSinceMillis = lastCycleMillis;
         consumer.subscribe(group.inputTopics(), assigned);
     }
 
@@ -99,6 +104,9 @@ final class ShardSession {
         if (assigned.layoutChanged()) {
             throw new BrokerException("a topic of " + group.inputTopics() + " has grown beyond " + partitions
                     + " partitions on " + group.broker() + ": its shards are being laid out anew");
+        }
+        if (assigned.incomplete().isEmpty()) {
+            apartSinceMillis = clock.millis();
         }
         Optional<Integer> next = restorer.next(assigned.waiting());
         if (next.isPresent()) {
@@ -292,7 +300,20 @@ final class ShardSession {
         if (contact.trouble().isPresent()) {
             return Optional.of(contact.trouble().get());
         }
-        return restorer.obstacle().map(obstacle -> new BrokerException(obstacle + remedy()));
+        Optional<String> obstacle = restorer.obstacle().map(blocked -> blocked + remedy());
+        return obstacle.or(this::apart).map(BrokerException::new);
+    }
+
+    /** The broker may move the partitions of one number one after the other, but not for long. */
+    private Optional<String> apart() {
+        if (assigned.incomplete().isEmpty() || !Elapsed.since(apartSinceMillis, clock.millis(), APART)) {
+            return Optional.empty();
+        }
+        int number = assigned.incomplete().first();
+        return Optional.of("partition " + number + " of "
+                + assigned.inputs(number).stream().map(TopicPartition::topic).toList()
+                + " is here and of the other input topics is not, so that it is not counted: stop instances that have"
+                + " another input.topics or another kafka.group-protocol under the group " + group.id());
     }
 
     private String remedy() {

@@ -24,6 +24,9 @@ final class CountingShard implements HostedShard {
     private final TreeSet<String> changed = new TreeSet<>();
     private final List<Output> told = new ArrayList<>();
 
+    /** What it says that it has ready, until the next drain. */
+    long pending;
+
     CountingShard(String stateTopic, String toldTopic, int partition, Consumer<String> journal) {
         this.stateTopic = stateTopic;
         this.toldTopic = toldTopic;
@@ -57,7 +60,13 @@ final class CountingShard implements HostedShard {
     }
 
     @Override
+    public long pendingBytes() {
+        return pending;
+    }
+
+    @Override
     public List<Output> drain() {
+        pending = 0;
         List<Output> outputs = new ArrayList<>(told);
         for (String key : changed) {
             outputs.add(Output.state(

@@ -15,6 +15,7 @@ import org.apache.kafka.clients.consumer.ConsumerGroupMetadata;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
 import org.apache.kafka.clients.consumer.MockConsumer;
 import org.apache.kafka.clients.consumer.OffsetAndMetadata;
+import org.apache.kafka.clients.consumer.OffsetAndTimestamp;
 import org.apache.kafka.clients.producer.MockProducer;
 import org.apache.kafka.clients.producer.Producer;
 import org.apache.kafka.clients.producer.ProducerRecord;
@@ -32,6 +33,15 @@ final class ScriptedClients implements Clients, OutboxClients {
     final List<MockProducer<byte[], byte[]>> producers = new ArrayList<>();
     final Input input = new Input();
     long stateEnd;
+
+    /** Where the state of some partitions ends, if it is not where the scripted records end. */
+    final Map<Integer, Long> stateEnds = new HashMap<>();
+
+    /** The first record that is not before any time; null if there is none. */
+    Long timedOffset;
+
+    /** What setting up the next producer ends in; null for a producer. */
+    RuntimeException initFailure;
 
     /** What the next questions for committed offsets and for a sign of life end in; null for an answer. */
     RuntimeException committedFailure;
@@ -76,6 +86,11 @@ final class ScriptedClients implements Clients, OutboxClients {
                     @Override
                     public void initTransactions() {
                         journal.add("init transactions");
+                        if (initFailure != null) {
+                            RuntimeException failure = initFailure;
+                            initFailure = null;
+                            throw failure;
+                        }
                         super.initTransactions();
                     }
 
@@ -170,6 +185,14 @@ final class ScriptedClients implements Clients, OutboxClients {
         }
 
         @Override
+        public synchronized Map<TopicPartition, OffsetAndTimestamp> offsetsForTimes(Map<TopicPartition, Long> times) {
+            Map<TopicPartition, OffsetAndTimestamp> found = new HashMap<>();
+            times.forEach((partition, millis) ->
+                    found.put(partition, timedOffset == null ? null : new OffsetAndTimestamp(timedOffset, millis)));
+            return found;
+        }
+
+        @Override
         public synchronized void seek(TopicPartition partition, long offset) {
             journal.add("seek " + partition + " to " + offset);
             super.seek(partition, offset);
@@ -222,7 +245,7 @@ final class ScriptedClients implements Clients, OutboxClients {
         @Override
         public long endOffset(TopicPartition partition) {
             journal.add("ask for the end of the state");
-            return stateEnd;
+            return stateEnds.getOrDefault(partition.partition(), stateEnd);
         }
 
         @Override

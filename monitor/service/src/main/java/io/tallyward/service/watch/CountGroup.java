@@ -50,7 +50,14 @@ public final class CountGroup {
                     EventSlotReader slotReader = new EventSlotReader(
                             config.input().mapping(), config.input().maxEventBytes(), shard.names());
                     return new CountHost(
-                            shard, partition, partitions, topics, names, reader, slotReader, trafficLog, board);
+                            shard,
+                            partition,
+                            partitions,
+                            topics,
+                            names,
+                            EventParser.of(reader, slotReader),
+                            trafficLog,
+                            board);
                 })
                 .build();
     }

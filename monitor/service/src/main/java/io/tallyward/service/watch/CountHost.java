@@ -1,8 +1,6 @@
 package io.tallyward.service.watch;
 
 import io.tallyward.connector.format.Decoded;
-import io.tallyward.connector.format.EventSlotReader;
-import io.tallyward.connector.format.JsonEventReader;
 import io.tallyward.connector.format.TallyJson;
 import io.tallyward.connector.kafka.HostedShard;
 import io.tallyward.connector.kafka.Output;
@@ -36,18 +34,21 @@ final class CountHost implements HostedShard {
     /** A rejected record is copied up to this size, so that the copy always fits into a record of its own. */
     private static final int COPIED_BYTES = 256 * 1024;
 
+    /** What a rejected record takes in memory besides its key and value, about. */
+    private static final int REJECT_OVERHEAD = 1024;
+
     private final CountShard shard;
     private final int partition;
     private final List<String> topics;
     private final TopicNames names;
-    private final JsonEventReader reader;
-    private final EventSlotReader slotReader;
+    private final EventParser parser;
     private final EventSlot slot = new EventSlot();
     private final TrafficLog trafficLog;
     private final StatusBoard board;
     private final KeyCheck keyCheck;
 
     private final List<Output> rejects = new ArrayList<>();
+    private long rejectedBytes;
     private boolean published;
 
     CountHost(
@@ -56,16 +57,14 @@ final class CountHost implements HostedShard {
             int partitions,
             List<String> topics,
             TopicNames names,
-            JsonEventReader reader,
-            EventSlotReader slotReader,
+            EventParser parser,
             TrafficLog trafficLog,
             StatusBoard board) {
         this.shard = shard;
         this.partition = partition;
         this.topics = topics;
         this.names = names;
-        this.reader = reader;
-        this.slotReader = slotReader;
+        this.parser = parser;
         this.trafficLog = trafficLog;
         this.board = board;
         keyCheck = new KeyCheck(partition, partitions);
@@ -78,7 +77,13 @@ final class CountHost implements HostedShard {
 
     @Override
     public void apply(ConsumerRecord<byte[], byte[]> record) {
-        if (slotReader.read(record.value(), slot)) {
+        boolean usual;
+        try {
+            usual = parser.read(record.value(), slot);
+        } catch (RuntimeException unexpected) {
+            usual = false;
+        }
+        if (usual) {
             admit(record, slot);
         } else {
             applyUnusual(record);
@@ -88,8 +93,10 @@ final class CountHost implements HostedShard {
     private void admit(ConsumerRecord<byte[], byte[]> record, EventSlot event) {
         Optional<RejectReason> rejected = shard.apply(topics.indexOf(record.topic()), record.timestamp(), event);
         if (rejected.isPresent()) {
-            Decoded.Accepted read = (Decoded.Accepted) reader.read(record.value());
-            reject(record, rejected.get(), RejectDetail.of(rejected.get(), read.event(), record.timestamp()));
+            String detail = parse(record) instanceof Decoded.Accepted read
+                    ? RejectDetail.of(rejected.get(), read.event(), record.timestamp())
+                    : rejected.get().code();
+            reject(record, rejected.get(), detail);
         } else {
             observeKey(record, event.unit(), event.unitLength());
         }
@@ -97,12 +104,28 @@ final class CountHost implements HostedShard {
 
     /** A document that has to be looked at more closely, most often because there is something wrong with it. */
     private void applyUnusual(ConsumerRecord<byte[], byte[]> record) {
-        Decoded decoded = reader.read(record.value());
+        Decoded decoded = parse(record);
         if (decoded instanceof Decoded.Refused refused) {
             reject(record, shard.reject(refused.reason()), refused.detail());
         } else if (decoded instanceof Decoded.Accepted accepted) {
             admit(record, accepted.event());
         }
+    }
+
+    /** Whatever a record does to the parser, it is the record that is set aside and not the worker. */
+    private Decoded parse(ConsumerRecord<byte[], byte[]> record) {
+        try {
+            return parser.read(record.value());
+        } catch (RuntimeException unexpected) {
+            String failure = unexpected.getClass().getSimpleName();
+            trafficLog.parserFailed(origin(record), failure);
+            // Its message may quote the record, and the unit with it.
+            return new Decoded.Refused(RejectReason.UNPARSABLE, "the parser failed with " + failure);
+        }
+    }
+
+    private static String origin(ConsumerRecord<byte[], byte[]> record) {
+        return record.topic() + "-" + record.partition() + "@" + record.offset();
     }
 
     private void admit(ConsumerRecord<byte[], byte[]> record, Event event) {
@@ -122,7 +145,7 @@ final class CountHost implements HostedShard {
     }
 
     private void reject(ConsumerRecord<byte[], byte[]> record, RejectReason reason, String detail) {
-        String origin = record.topic() + "-" + record.partition() + "@" + record.offset();
+        String origin = origin(record);
         trafficLog.rejected(origin, reason, detail);
         Map<String, byte[]> headers = new TreeMap<>();
         headers.put("tallyward-reason", utf8(reason.code()));
@@ -137,7 +160,13 @@ final class CountHost implements HostedShard {
         if (key != null && key.length > COPIED_BYTES) {
             key = Arrays.copyOf(key, COPIED_BYTES);
         }
+        rejectedBytes += REJECT_OVERHEAD + (value == null ? 0 : value.length) + (key == null ? 0 : key.length);
         rejects.add(new Output(names.rejects(), partition, key, value, headers));
+    }
+
+    @Override
+    public long pendingBytes() {
+        return rejectedBytes;
     }
 
     private static byte[] utf8(String text) {
@@ -156,6 +185,7 @@ final class CountHost implements HostedShard {
         CountEffects effects = shard.drain();
         List<Output> outputs = new ArrayList<>(rejects);
         rejects.clear();
+        rejectedBytes = 0;
         for (StateChange change : effects.state()) {
             outputs.add(Output.state(names.countState(), partition, change.key(), change.value()));
         }

@@ -16,6 +16,7 @@ final class TrafficLog {
 
     private final String rejectsTopic;
     private final Set<RejectReason> rejected = ConcurrentHashMap.newKeySet();
+    private final Set<String> parserFailures = ConcurrentHashMap.newKeySet();
     private final Set<String> unkeyed = ConcurrentHashMap.newKeySet();
 
     /** @param rejectsTopic where rejected records are kept */
@@ -31,6 +32,18 @@ final class TrafficLog {
                     origin,
                     reason.code(),
                     detail,
+                    rejectsTopic);
+        }
+    }
+
+    /** The parser met something that it was not made for. */
+    void parserFailed(String origin, String failure) {
+        if (parserFailures.add(failure)) {
+            LOG.error(
+                    "The parser failed at {} with {}: the record is rejected and kept in {}. Please report it with that"
+                            + " record; further ones are counted, not logged.",
+                    origin,
+                    failure,
                     rejectsTopic);
         }
     }
