@@ -91,7 +91,7 @@ final class BoundariesText {
         lines.addAll(fact("tests", levels(comparison)));
         lines.addAll(fact("spending", spending()));
         lines.addAll(fact("clock", PlanWords.clock(test)));
-        lines.addAll(fact("information", PlanWords.measure(test)));
+        lines.addAll(fact("information", PlanWords.measure(plan)));
         plan.futility()
                 .ifPresent(rule -> lines.addAll(fact(
                         "futility",

@@ -27,7 +27,7 @@ final class PlanSection {
             OverviewPage.fact(html, "Several variants", sharing(test.sharing()));
         }
         OverviewPage.fact(html, "Spending clock", PlanWords.clock(test));
-        OverviewPage.fact(html, "Measure of information", PlanWords.measure(test));
+        OverviewPage.fact(html, "Measure of information", PlanWords.measure(plan));
         OverviewPage.fact(
                 html,
                 "Futility",

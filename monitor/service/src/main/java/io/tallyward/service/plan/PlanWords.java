@@ -52,9 +52,12 @@ public final class PlanWords {
     }
 
     /** What the information fraction of a look is measured by. */
-    public static String measure(TestPlan test) {
-        return switch (test.measure()) {
-            case OBSERVED -> "observed: by trials and the success rates seen";
+    public static String measure(Plan plan) {
+        return switch (plan.test().measure()) {
+            case OBSERVED ->
+                countsViews(plan)
+                        ? "observed: by the variance between units seen"
+                        : "observed: by trials and the success rates seen";
             case TRIALS -> "trials: as if the success rates were those of the plan";
         };
     }

@@ -59,7 +59,13 @@ class PagesTest {
         String text = parse(pages.experiment(Northwater.boardNews(), FINE))
                 .getDocumentElement()
                 .getTextContent();
-        for (String word : List.of("Units", "Views", "Clicked views", "Design effect", "by view, clicks within")) {
+        for (String word : List.of(
+                "Units",
+                "Views",
+                "Clicked views",
+                "Design effect",
+                "by view, clicks within",
+                "variance between units seen")) {
             assertTrue(text.contains(word), word);
         }
         assertTrue(text.contains("14,020"), "units");
