@@ -24,7 +24,7 @@ import picocli.CommandLine.Spec;
         description = {
             "Runs Tallyward beside an invented event stream whose truth is known, and compares.",
             "",
-            "Starts a broker and the monitor on this machine, streams two weeks of views and clicks of five"
+            "Starts a broker and the monitor on this machine, streams two weeks of views and clicks of six"
                     + " experiments, prints every webhook notice as it arrives and ends with the truth beside the verdicts."
         },
         exitCodeListHeading = "%nExit codes:%n",

@@ -57,9 +57,7 @@ public final class MonitorCounts {
                         start,
                         node.path("epoch").asInt(),
                         node.path("variant").asInt());
-                Count count = new Count(
-                        node.path("trials").asLong(), node.path("successes").asLong());
-                cells.computeIfAbsent(experiment, name -> new HashMap<>()).merge(cell, count, Count::plus);
+                cells.computeIfAbsent(experiment, name -> new HashMap<>()).merge(cell, count(node), Count::plus);
             }
             Map<String, Long> byOutcome = outcomes.computeIfAbsent(experiment, name -> new HashMap<>());
             window.path("outcomes")
@@ -67,6 +65,22 @@ public final class MonitorCounts {
                     .forEach(outcome ->
                             byOutcome.merge(outcome.getKey(), outcome.getValue().asLong(), Long::sum));
         }
+    }
+
+    private static Count count(JsonNode cell) {
+        long trials = cell.path("trials").asLong();
+        long successes = cell.path("successes").asLong();
+        JsonNode clusters = cell.path("clusters");
+        if (!clusters.isObject()) {
+            return new Count(trials, successes);
+        }
+        return new Count(
+                trials,
+                successes,
+                clusters.path("units").asLong(),
+                clusters.path("trialSquares").asLong(),
+                clusters.path("products").asLong(),
+                clusters.path("successSquares").asLong());
     }
 
     private void addReject(ConsumerRecord<byte[], byte[]> reject) {

@@ -16,7 +16,7 @@ import java.util.function.Consumer;
  *
  * @param seed what everything follows from
  * @param stories the stories, in the order in which they are shown
- * @param events the events of all stories in the order of arrival; some 550,000
+ * @param events the events of all stories in the order of arrival; some 630,000
  */
 public record Scenario(long seed, List<Story> stories, List<StreamEvent> events) {
 
@@ -24,8 +24,8 @@ public record Scenario(long seed, List<Story> stories, List<StreamEvent> events)
     public static final long DEFAULT_SEED = 20_260_504L;
 
     /** In the order in which they are shown. */
-    static final List<Story> STORIES =
-            List.of(new QuayBanner(), new FareChip(), new ReturnPrompt(), new CabinUpsell(), new DeckMap());
+    static final List<Story> STORIES = List.of(
+            new QuayBanner(), new FareChip(), new ReturnPrompt(), new CabinUpsell(), new DeckMap(), new PierWebcam());
 
     /** Number of the ids of records that belong to no story. */
     static final int DEBRIS = 200;

@@ -30,7 +30,7 @@ import java.util.regex.Pattern;
 public record Season(long seed, double scale) {
 
     /** Events that come with the scale of 1, within a few in a hundred. */
-    private static final double EVENTS_AT_SCALE_1 = 551_000;
+    private static final double EVENTS_AT_SCALE_1 = 632_000;
 
     private static final long HOUR_MILLIS = Duration.ofHours(1).toMillis();
     private static final int HOURS =

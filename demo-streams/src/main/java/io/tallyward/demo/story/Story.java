@@ -12,6 +12,11 @@ public interface Story {
     /** Names of the variants in the order of the plan, the control first. */
     List<String> variants();
 
+    /** Whether every view is a trial, rather than every unit. */
+    default boolean countsByView() {
+        return false;
+    }
+
     /** The first moment that is no longer part of the run. */
     default Instant runEnd() {
         return Northwater.END;

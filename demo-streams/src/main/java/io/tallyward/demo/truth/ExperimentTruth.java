@@ -19,12 +19,13 @@ public record ExperimentTruth(Story story, Map<Cell, Count> cells, Map<String, L
         outcomes = Map.copyOf(outcomes);
     }
 
-    /** Sums over partitions and windows, for windows that end at or before a moment; keyed by epoch and variant. */
+    /** Trials and successes summed over partitions and windows, for windows that end at or before a moment; keyed by epoch and variant. */
     public Map<Stratum, Count> totals(long untilMillis) {
         Map<Stratum, Count> totals = new HashMap<>();
         cells.forEach((cell, count) -> {
             if (cell.windowStartMillis() < untilMillis) {
-                totals.merge(new Stratum(cell.epoch(), story.variants().get(cell.variant())), count, Count::plus);
+                totals.merge(
+                        new Stratum(cell.epoch(), story.variants().get(cell.variant())), count.plain(), Count::plus);
             }
         });
         return totals;

@@ -11,7 +11,8 @@ public enum Fate {
     CROSSOVER,
     ORPHAN,
     LATE,
-    OUTSIDE;
+    OUTSIDE,
+    DUPLICATE;
 
     /** The published code, as in {@code crossover}. */
     public String code() {

@@ -50,11 +50,26 @@ public final class TruthKeeper implements Season.Listener {
             }
         }
         Judged counts = judged.get(story.experiment());
+        if (story.countsByView()) {
+            ViewVerdict verdict = ViewVerdict.of(story, events);
+            tell(counts, verdict.fates());
+            verdict.counts()
+                    .forEach((window, count) -> counts.cells()
+                            .merge(cell(story, verdict.firstView().get(), window, partition), count, Count::plus));
+            return;
+        }
         UnitVerdict verdict = UnitVerdict.of(story, events);
-        verdict.fates().forEach(fate -> counts.fates()[fate.ordinal()]++);
+        tell(counts, verdict.fates());
         verdict.firstView()
                 .ifPresent(view -> counts.cells()
-                        .merge(cell(story, view, partition), new Count(1, verdict.success() ? 1 : 0), Count::plus));
+                        .merge(
+                                cell(story, view, Northwater.windowStart(view.atMillis()), partition),
+                                new Count(1, verdict.success() ? 1 : 0),
+                                Count::plus));
+    }
+
+    private static void tell(Judged counts, List<Fate> fates) {
+        fates.forEach(fate -> counts.fates()[fate.ordinal()]++);
     }
 
     /** The truth about all units heard of. */
@@ -80,11 +95,12 @@ public final class TruthKeeper implements Season.Listener {
         return new ExperimentTruth(counts.story(), cells, outcomes);
     }
 
-    private static Cell cell(Story story, StreamEvent view, int partition) {
+    /** A unit belongs to the epoch and the variant of its first view. */
+    private static Cell cell(Story story, StreamEvent firstView, long window, int partition) {
         return new Cell(
                 partition,
-                Northwater.windowStart(view.atMillis()),
-                story.epochAt(view.atMillis()),
-                story.variants().indexOf(view.subject().variant()));
+                window,
+                story.epochAt(firstView.atMillis()),
+                story.variants().indexOf(firstView.subject().variant()));
     }
 }

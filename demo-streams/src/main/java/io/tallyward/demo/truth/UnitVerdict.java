@@ -20,7 +20,7 @@ import java.util.zip.CRC32;
  */
 record UnitVerdict(Optional<StreamEvent> firstView, boolean success, List<Fate> fates) {
 
-    private static final Comparator<StreamEvent> EARLIEST =
+    static final Comparator<StreamEvent> EARLIEST =
             Comparator.comparingLong(StreamEvent::atMillis).thenComparingLong(UnitVerdict::checksum);
 
     /** The published breaker of ties: the CRC-32 of the id as it is written. */
@@ -87,7 +87,7 @@ record UnitVerdict(Optional<StreamEvent> firstView, boolean success, List<Fate> 
         return sameVariant(click, view) && after >= 0 && after <= Northwater.ATTRIBUTION.toMillis();
     }
 
-    private static boolean sameVariant(StreamEvent one, StreamEvent other) {
+    static boolean sameVariant(StreamEvent one, StreamEvent other) {
         return one.subject().variant().equals(other.subject().variant());
     }
 }

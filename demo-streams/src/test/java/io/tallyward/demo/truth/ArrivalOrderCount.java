@@ -44,6 +44,10 @@ final class ArrivalOrderCount {
             return;
         }
         String experiment = event.subject().experiment();
+        if (!stories.containsKey(experiment)) {
+            advance(event);
+            return;
+        }
         if (!stories.get(experiment).runsAt(event.atMillis())) {
             note(experiment, Fate.OUTSIDE);
             return;
@@ -56,7 +60,18 @@ final class ArrivalOrderCount {
         } else {
             accept(ledger, event);
         }
-        watermark[partition] = Math.max(watermark[partition], event.atMillis());
+        advance(event);
+    }
+
+    /** A story told besides moves the watermark too; its run ends with the fourteen days. */
+    private void advance(StreamEvent event) {
+        boolean runs =
+                event.atMillis() >= Northwater.START.toEpochMilli() && event.atMillis() < Northwater.END.toEpochMilli();
+        Story story = stories.get(event.subject().experiment());
+        if (story != null || runs) {
+            int partition = Truth.partition(event.subject().unit(), partitions);
+            watermark[partition] = Math.max(watermark[partition], event.atMillis());
+        }
     }
 
     private static void accept(Ledger ledger, StreamEvent event) {

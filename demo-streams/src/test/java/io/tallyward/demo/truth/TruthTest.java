@@ -60,7 +60,10 @@ class TruthTest {
     void everyOutcomeOccursInEveryExperiment() {
         truth.experiments()
                 .forEach((name, experiment) -> experiment.outcomes().forEach((outcome, events) -> {
-                    boolean none = outcome.equals("outside") && name.equals("deck-map") && events == 0;
+                    boolean none = (outcome.equals("outside") && name.equals("deck-map") && events == 0)
+                            || (outcome.equals("duplicate")
+                                    && !experiment.story().countsByView()
+                                    && events == 0);
                     assertTrue(events > 10 || none, () -> name + " " + outcome + ": " + events);
                 }));
     }
@@ -87,12 +90,14 @@ class TruthTest {
     void agreesWithAReadingInTheOrderOfArrival(long seed) {
         Scenario told = seed == scenario.seed() ? scenario : Scenario.of(seed);
         Truth toldTruth = seed == scenario.seed() ? truth : Truth.of(told, PARTITIONS);
-        Map<String, Story> stories =
-                told.stories().stream().collect(Collectors.toMap(Story::experiment, Function.identity()));
+        Map<String, Story> stories = told.stories().stream()
+                .filter(story -> !story.countsByView())
+                .collect(Collectors.toMap(Story::experiment, Function.identity()));
         ArrivalOrderCount count = new ArrivalOrderCount(stories, PARTITIONS);
         told.events().forEach(count::read);
         Map<String, Map<Cell, Count>> cells = count.settle();
-        toldTruth.experiments().forEach((name, experiment) -> {
+        stories.forEach((name, story) -> {
+            ExperimentTruth experiment = toldTruth.experiments().get(name);
             assertEquals(experiment.cells(), cells.get(name), () -> "seed " + seed + ", " + name);
             for (Fate fate : Fate.values()) {
                 assertEquals(

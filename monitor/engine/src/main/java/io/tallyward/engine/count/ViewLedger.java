@@ -108,17 +108,24 @@ final class ViewLedger implements CountLedger {
 
     /** What became of a click that came when nothing could count it any more. */
     private Outcome clickAfterwards(ViewedUnit unit, EventSlot event) {
-        int earliest = unit.isFixed() ? -1 : unit.earliestView();
+        int earliest = unit.earliestView();
         if (!unit.isFixed() && earliest < 0) {
             return Outcome.ORPHAN;
         }
-        if (event.atMillis() < (unit.isFixed() ? unit.first() : unit.time(earliest))) {
+        long first = unit.isFixed() ? unit.first() : unit.time(earliest);
+        int variant = unit.isFixed() ? unit.variant() : unit.variant(earliest);
+        if (event.atMillis() < first) {
             return Outcome.ORPHAN;
         }
-        if (event.variant() != (unit.isFixed() ? unit.variant() : unit.variant(earliest))) {
+        if (event.variant() != variant) {
             return Outcome.CROSSOVER;
         }
-        long latest = Math.max(unit.isFixed() ? unit.lastTrial() : Long.MIN_VALUE, unit.latestView());
+        long latest = unit.isFixed() ? unit.lastTrial() : first;
+        for (int i = 0; i < unit.size(); i++) {
+            if (!unit.isClick(i) && unit.variant(i) == variant) {
+                latest = Math.max(latest, unit.time(i));
+            }
+        }
         return event.atMillis() > latest + attributionMillis ? Outcome.EXPIRED : Outcome.LATE;
     }
 

@@ -211,15 +211,6 @@ final class ViewedUnit {
         return earliest;
     }
 
-    /** Event time of the latest view kept here, or {@code Long.MIN_VALUE}. */
-    long latestView() {
-        long latest = Long.MIN_VALUE;
-        for (int i = 0; i < size; i++) {
-            latest = clicks[i] ? latest : Math.max(latest, times[i]);
-        }
-        return latest;
-    }
-
     /** Whether one view comes before another: by time, then by the digest of its id, then by variant. */
     boolean isEarlier(int event, int other) {
         if (times[event] != times[other]) {
