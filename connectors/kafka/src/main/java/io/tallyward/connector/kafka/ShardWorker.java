@@ -191,7 +191,8 @@ final class ShardWorker implements Runnable {
         } catch (RuntimeException alsoBroken) {
             broken.addSuppressed(alsoBroken);
         }
-        board.error(broken.getMessage() == null ? broken.toString() : broken.getMessage());
+        Throwable telling = root instanceof RefusedStateException ? root : broken;
+        board.error(telling.getMessage() == null ? telling.toString() : telling.getMessage());
         board.state(WorkerState.FAILED);
         listener.onFatal(group.id(), broken);
     }

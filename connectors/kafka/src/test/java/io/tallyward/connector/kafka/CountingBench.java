@@ -17,7 +17,9 @@ import java.util.function.IntFunction;
 import java.util.function.UnaryOperator;
 import java.util.stream.Collectors;
 import java.util.stream.Stream;
+import org.apache.kafka.clients.consumer.OffsetAndMetadata;
 import org.apache.kafka.clients.producer.ProducerRecord;
+import org.apache.kafka.common.TopicPartition;
 import org.awaitility.Awaitility;
 
 /** Topics and a group for counting shards, and the truth to compare what was counted with. */
@@ -92,6 +94,15 @@ final class CountingBench {
                     bytes(Integer.toString(produced))));
         }
         broker.produce(records);
+    }
+
+    /** The beginning of every input partition, as an operator would set it. */
+    Map<TopicPartition, OffsetAndMetadata> beginnings() {
+        Map<TopicPartition, OffsetAndMetadata> beginnings = new HashMap<>();
+        for (int partition = 0; partition < PARTITIONS; partition++) {
+            beginnings.put(new TopicPartition(input, partition), new OffsetAndMetadata(0));
+        }
+        return beginnings;
     }
 
     int told() {
