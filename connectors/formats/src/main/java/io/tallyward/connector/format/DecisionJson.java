@@ -104,6 +104,7 @@ public final class DecisionJson {
         JsonBytes.real(json, "pearsonChiSquare", split.pearsonChiSquare());
         json.writeNumberField("pearsonDegreesOfFreedom", split.pearsonDegreesOfFreedom());
         JsonBytes.real(json, "pearsonPValue", split.pearsonPValue());
+        SplitOriginJson.write(json, split.origin());
         json.writeEndObject();
     }
 
@@ -113,7 +114,8 @@ public final class DecisionJson {
                 split.real("sequentialPValue"),
                 split.real("pearsonChiSquare"),
                 split.index("pearsonDegreesOfFreedom"),
-                split.real("pearsonPValue"));
+                split.real("pearsonPValue"),
+                SplitOriginJson.read(split));
     }
 
     private static void comparison(JsonGenerator json, Comparison comparison) throws IOException {

@@ -80,6 +80,14 @@ final class JsonMembers {
         return value.doubleValue();
     }
 
+    boolean flag(String name) {
+        JsonNode value = value(name);
+        if (!value.isBoolean()) {
+            throw unexpected(name, value, "true or false");
+        }
+        return value.booleanValue();
+    }
+
     Double realOrNull(String name) {
         return value(name).isNull() ? null : real(name);
     }

@@ -15,6 +15,9 @@ import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.record.Outlook;
+import io.tallyward.engine.record.SplitOrigin;
+import io.tallyward.engine.record.SplitOrigin.PlannedUnits;
+import io.tallyward.engine.record.SplitOrigin.SegmentSplit;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.UnitTotals;
 import io.tallyward.engine.record.Verdict;
@@ -74,7 +77,13 @@ final class RandomRecords {
                         random.nextBoolean() ? null : new UnitTotals(count(), count(), count(), count()))),
                 outcomes(),
                 count(),
-                new Split(real(), random.nextDouble(), Math.abs(real()), random.nextInt(9), random.nextDouble()),
+                new Split(
+                        real(),
+                        random.nextDouble(),
+                        Math.abs(real()),
+                        random.nextInt(9),
+                        random.nextDouble(),
+                        random.nextBoolean() ? null : origin()),
                 any(Trust.values()),
                 word(),
                 any(Verdict.values()),
@@ -82,6 +91,31 @@ final class RandomRecords {
                 "1.0",
                 digest(),
                 digest());
+    }
+
+    private SplitOrigin origin() {
+        return new SplitOrigin(
+                random.nextInt(5),
+                instant(),
+                instant(),
+                real(),
+                list(this::plannedUnits),
+                random.nextBoolean()
+                        ? null
+                        : new SegmentSplit(
+                                word(),
+                                word(),
+                                list(this::plannedUnits),
+                                list(this::plannedUnits),
+                                real(),
+                                random.nextDouble(),
+                                random.nextDouble(),
+                                random.nextInt(99),
+                                random.nextBoolean()));
+    }
+
+    private PlannedUnits plannedUnits() {
+        return new PlannedUnits(word(), random.nextDouble(), count());
     }
 
     Notice notice() {

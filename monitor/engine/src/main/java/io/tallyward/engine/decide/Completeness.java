@@ -6,11 +6,13 @@ import io.tallyward.engine.count.SealCause;
 import io.tallyward.engine.count.TallyUpdate;
 import io.tallyward.engine.count.WindowTally;
 import io.tallyward.engine.count.WindowTally.Cell;
+import io.tallyward.engine.count.WindowTally.SegmentCell;
 import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
 import java.util.ArrayList;
 import java.util.Arrays;
+import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.NavigableMap;
@@ -51,16 +53,37 @@ final class Completeness {
      * The merged counts of one window.
      *
      * @param cells counts from all partitions, each cell once
+     * @param segments units by segment from all partitions, each segment, epoch and variant once
      * @param outcomes outcomes from all partitions
      */
-    record Parts(List<Cell> cells, OutcomeCounts outcomes) {
+    record Parts(List<Cell> cells, List<SegmentCell> segments, OutcomeCounts outcomes) {
 
-        static final Parts NONE = new Parts(List.of(), OutcomeCounts.NONE);
+        static final Parts NONE = new Parts(List.of(), List.of(), OutcomeCounts.NONE);
 
         Parts plus(WindowTally tally) {
             List<Cell> merged = new ArrayList<>(cells);
             tally.cells().forEach(cell -> add(merged, cell));
-            return new Parts(merged, outcomes.plus(tally.outcomes()));
+            return new Parts(merged, mergedSegments(tally), outcomes.plus(tally.outcomes()));
+        }
+
+        private List<SegmentCell> mergedSegments(WindowTally tally) {
+            if (segments.isEmpty() || tally.segments().isEmpty()) {
+                return segments.isEmpty() ? tally.segments() : segments;
+            }
+            Map<Segment, Long> units = new LinkedHashMap<>();
+            segments.forEach(cell -> units.merge(Segment.of(cell), cell.units(), Long::sum));
+            tally.segments().forEach(cell -> units.merge(Segment.of(cell), cell.units(), Long::sum));
+            List<SegmentCell> merged = new ArrayList<>();
+            units.forEach((place, sum) ->
+                    merged.add(new SegmentCell(place.field, place.value, place.epoch, place.variant, sum)));
+            return merged;
+        }
+
+        private record Segment(String field, String value, int epoch, int variant) {
+
+            static Segment of(SegmentCell cell) {
+                return new Segment(cell.field(), cell.value(), cell.epoch(), cell.variant());
+            }
         }
 
         private static void add(List<Cell> cells, Cell cell) {
@@ -87,6 +110,14 @@ final class Completeness {
                 out.writeLong(cell.products());
                 out.writeLong(cell.successSquares());
             }
+            out.writeInt(segments.size());
+            for (SegmentCell cell : segments) {
+                out.writeUTF(cell.field());
+                out.writeUTF(cell.value());
+                out.writeInt(cell.epoch());
+                out.writeInt(cell.variant());
+                out.writeLong(cell.units());
+            }
         }
 
         static Parts read(DataInput in) throws IOException {
@@ -103,7 +134,11 @@ final class Completeness {
                         in.readLong(),
                         in.readLong()));
             }
-            return new Parts(cells, outcomes);
+            List<SegmentCell> segments = new ArrayList<>();
+            for (int rest = in.readInt(); rest > 0; rest--) {
+                segments.add(new SegmentCell(in.readUTF(), in.readUTF(), in.readInt(), in.readInt(), in.readLong()));
+            }
+            return new Parts(cells, segments, outcomes);
         }
     }
 

@@ -12,6 +12,7 @@ import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.Occasion;
 import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.record.RecordDigest;
+import io.tallyward.engine.record.SplitOrigin;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
 import java.io.DataInput;
@@ -41,6 +42,7 @@ final class ExperimentDecider {
     private final Completeness completeness;
     private final CumulativeCounts counts;
     private final SplitWatch splitWatch;
+    private final SplitTrace splitTrace;
     private final TrustWatch trustWatch;
     private final List<ChallengerTest> tests = new ArrayList<>();
 
@@ -70,6 +72,7 @@ final class ExperimentDecider {
         completeness = new Completeness(completeUntil);
         counts = new CumulativeCounts(plan);
         splitWatch = new SplitWatch(plan);
+        splitTrace = new SplitTrace(plan);
         trustWatch = new TrustWatch(plan);
         for (Variant challenger : plan.challengers()) {
             tests.add(new ChallengerTest(plan, planDigest, challenger, memo, detail));
@@ -98,8 +101,28 @@ final class ExperimentDecider {
         trustWatch.observe(windowStart, completeUntil, parts.cells());
         if (!parts.cells().isEmpty()) {
             splitWatch.observe(counts);
+            traceSplit(windowStart, parts);
         }
         decide();
+    }
+
+    /** A bare record does not say where a mismatch comes from. */
+    private void traceSplit(long windowStart, Completeness.Parts parts) {
+        if (detail != Detail.BARE) {
+            splitTrace.observe(windowStart, parts.cells(), parts.segments());
+        }
+    }
+
+    private SplitOrigin splitOrigin() {
+        boolean mismatch = judgement.trust() == Trust.MISMATCH && detail != Detail.BARE;
+        return mismatch ? splitTrace.origin(splitWatch).orElse(null) : null;
+    }
+
+    /** The complaint, and where it comes from as far as that is known. */
+    private TrustWatch.Judgement judgement(SplitOrigin origin) {
+        return origin == null
+                ? judgement
+                : new TrustWatch.Judgement(judgement.trust(), judgement.reason() + "; " + SplitWords.of(origin));
     }
 
     private void decide() {
@@ -233,6 +256,7 @@ final class ExperimentDecider {
 
     private void write(Occasion occasion, List<Comparison> looks) {
         sequence++;
+        SplitOrigin origin = splitOrigin();
         DecisionRecord record = sealed(new DecisionRecord(
                 plan.experiment(),
                 sequence,
@@ -242,9 +266,9 @@ final class ExperimentDecider {
                 counts.list(),
                 outcomes,
                 idleSealed,
-                splitWatch.split(counts),
+                splitWatch.split(counts, origin),
                 judgement.trust(),
-                judgement.reason(),
+                judgement(origin).reason(),
                 verdict(),
                 looks,
                 EngineVersion.CURRENT,
@@ -324,6 +348,7 @@ final class ExperimentDecider {
     }
 
     ExperimentView view() {
+        SplitOrigin origin = splitOrigin();
         return ViewWriter.view(
                 plan,
                 planDigest,
@@ -332,8 +357,8 @@ final class ExperimentDecider {
                         : Optional.of(Instant.ofEpochMilli(completeUntil)),
                 counts.list(),
                 outcomes,
-                splitWatch.split(counts),
-                judgement,
+                splitWatch.split(counts, origin),
+                judgement(origin),
                 verdict(),
                 tests,
                 new ViewWriter.Looks(looksTaken, looksDelayed, delayReason),
@@ -355,6 +380,7 @@ final class ExperimentDecider {
         completeness.write(out);
         counts.write(out);
         splitWatch.write(out);
+        splitTrace.write(out);
         trustWatch.write(out);
         out.writeLong(completeUntil);
         outcomes.write(out);
@@ -379,6 +405,7 @@ final class ExperimentDecider {
         completeness.read(in);
         counts.read(in);
         splitWatch.read(in);
+        splitTrace.read(in);
         trustWatch.read(in);
         completeUntil = in.readLong();
         outcomes = OutcomeCounts.read(in);

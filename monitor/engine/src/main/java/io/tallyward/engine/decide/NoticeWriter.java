@@ -87,6 +87,9 @@ final class NoticeWriter {
     Notice trust(DecisionRecord record, Told told) {
         Map<String, String> facts = new LinkedHashMap<>();
         facts.put("splitPValue", figure("%.3g", record.split().sequentialPValue()));
+        if (record.split().origin() != null) {
+            SplitWords.addFacts(facts, record.split().origin());
+        }
         facts.put("events", Long.toString(record.outcomes().total()));
         facts.put("crossovers", Long.toString(record.outcomes().get(Outcome.CROSSOVER)));
         facts.put("late", Long.toString(record.outcomes().get(Outcome.LATE)));

@@ -2,6 +2,7 @@ package io.tallyward.engine.decide;
 
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.DecisionRecord.Split;
+import io.tallyward.engine.record.SplitOrigin;
 import io.tallyward.statistics.split.PearsonSplit;
 import io.tallyward.statistics.split.SequentialEvidence;
 import io.tallyward.statistics.split.SequentialSplitTest;
@@ -76,7 +77,20 @@ final class SplitWatch {
         return count;
     }
 
-    private double[] shares(int epoch) {
+    /** Positions of the variants that are watched, ascending. */
+    int[] watched() {
+        int[] positions = new int[watchedCount()];
+        int next = 0;
+        for (int variant = 0; variant < watched.length; variant++) {
+            if (watched[variant]) {
+                positions[next++] = variant;
+            }
+        }
+        return positions;
+    }
+
+    /** Planned shares of the variants that are watched, among themselves. */
+    double[] shares(int epoch) {
         double[] all = plan.sharesIn(epoch);
         double[] shares = new double[watchedCount()];
         double sum = 0;
@@ -110,10 +124,16 @@ final class SplitWatch {
         return evidence.pValue();
     }
 
-    Split split(CumulativeCounts counts) {
+    /** @param origin where a mismatch comes from; null while there is none */
+    Split split(CumulativeCounts counts, SplitOrigin origin) {
         PearsonSplit pearson = pearson(counts);
         return new Split(
-                logBayesFactor, sequentialPValue(), pearson.chiSquare(), pearson.degreesOfFreedom(), pearson.pValue());
+                logBayesFactor,
+                sequentialPValue(),
+                pearson.chiSquare(),
+                pearson.degreesOfFreedom(),
+                pearson.pValue(),
+                origin);
     }
 
     private PearsonSplit pearson(CumulativeCounts counts) {

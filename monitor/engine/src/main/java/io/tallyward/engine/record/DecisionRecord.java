@@ -97,13 +97,26 @@ public record DecisionRecord(
      * @param pearsonChiSquare Pearson's statistic on the current counts, summed over epochs; for the record only
      * @param pearsonDegreesOfFreedom its degrees of freedom; 0 before there are trials
      * @param pearsonPValue its p-value for a single reading
+     * @param origin where a mismatch comes from; null while there is none and where the record is bare
      */
     public record Split(
             double logBayesFactor,
             double sequentialPValue,
             double pearsonChiSquare,
             int pearsonDegreesOfFreedom,
-            double pearsonPValue) {}
+            double pearsonPValue,
+            SplitOrigin origin) {
+
+        /** What the split checks say while there is no mismatch. */
+        public Split(
+                double logBayesFactor,
+                double sequentialPValue,
+                double pearsonChiSquare,
+                int pearsonDegreesOfFreedom,
+                double pearsonPValue) {
+            this(logBayesFactor, sequentialPValue, pearsonChiSquare, pearsonDegreesOfFreedom, pearsonPValue, null);
+        }
+    }
 
     /**
      * One look at one challenger.

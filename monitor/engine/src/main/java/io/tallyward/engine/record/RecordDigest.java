@@ -4,6 +4,9 @@ import io.tallyward.engine.digest.Digest;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.Split;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.SplitOrigin.PlannedUnits;
+import io.tallyward.engine.record.SplitOrigin.SegmentSplit;
+import java.util.List;
 
 /** The digest that chains decision records: it covers every field of a record but the digest itself. */
 public final class RecordDigest {
@@ -67,6 +70,38 @@ public final class RecordDigest {
                 .real(split.pearsonChiSquare())
                 .number(split.pearsonDegreesOfFreedom())
                 .real(split.pearsonPValue());
+        add(digest, split.origin());
+    }
+
+    private static void add(Digest digest, SplitOrigin origin) {
+        if (present(digest, origin)) {
+            digest.number(origin.epoch())
+                    .number(origin.beganFrom().toEpochMilli())
+                    .number(origin.beganUntil().toEpochMilli())
+                    .real(origin.logLikelihoodGain());
+            add(digest, origin.since());
+            add(digest, origin.worst());
+        }
+    }
+
+    private static void add(Digest digest, SegmentSplit segment) {
+        if (present(digest, segment)) {
+            digest.text(segment.field()).text(segment.value());
+            add(digest, segment.units());
+            add(digest, segment.elsewhere());
+            digest.real(segment.chiSquare())
+                    .real(segment.adjustedPValue())
+                    .real(segment.contrastPValue())
+                    .number(segment.judged())
+                    .number(segment.standsOut() ? 1 : 0);
+        }
+    }
+
+    private static void add(Digest digest, List<PlannedUnits> variants) {
+        digest.number(variants.size());
+        for (PlannedUnits variant : variants) {
+            digest.text(variant.variant()).real(variant.planned()).number(variant.units());
+        }
     }
 
     private static void add(Digest digest, Comparison comparison) {

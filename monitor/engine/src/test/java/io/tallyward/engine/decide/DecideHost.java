@@ -7,6 +7,7 @@ import io.tallyward.engine.count.SealCause;
 import io.tallyward.engine.count.TallyUpdate;
 import io.tallyward.engine.count.WindowTally;
 import io.tallyward.engine.count.WindowTally.Cell;
+import io.tallyward.engine.count.WindowTally.SegmentCell;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanDigest;
 import io.tallyward.engine.record.DecisionRecord;
@@ -57,6 +58,22 @@ final class DecideHost {
             }
         }
         return new WindowTally(start, cells, outcomes.build());
+    }
+
+    /** The next window, with units by segment: the first variant's and the second's in turn for each value of a field. */
+    DecideHost nextBySegment(String field, String[] values, long... units) {
+        List<SegmentCell> segments = new ArrayList<>();
+        long[] trials = new long[4];
+        long start = startOf(plan, nextWindow);
+        for (int i = 0; i < units.length; i++) {
+            trials[i % 2 * 2] += units[i];
+            if (units[i] > 0) {
+                segments.add(new SegmentCell(field, values[i / 2], plan.epochAt(start), i % 2, units[i]));
+            }
+        }
+        WindowTally plain = window(plan, nextWindow, trials);
+        nextWindow++;
+        return take(update(plan, 0, 1, nextWindow, new WindowTally(start, plain.cells(), segments, plain.outcomes())));
     }
 
     /** What a partition tells when it has sealed all windows before the given one. */

@@ -9,6 +9,8 @@ import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.Occasion;
 import io.tallyward.engine.record.DecisionRecord.Split;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.SplitOrigin.PlannedUnits;
+import io.tallyward.engine.record.SplitOrigin.SegmentSplit;
 import java.lang.reflect.RecordComponent;
 import java.time.Instant;
 import java.util.ArrayList;
@@ -50,9 +52,27 @@ class RecordDigestTest {
             null,
             "z 1.250 lies between the boundaries");
 
+    private static final SplitOrigin ORIGIN = new SplitOrigin(
+            0,
+            Instant.parse("2026-05-04T06:00:00Z"),
+            Instant.parse("2026-05-04T06:40:00Z"),
+            12.5,
+            List.of(new PlannedUnits("plain", 0.5, 60), new PlannedUnits("wide", 0.5, 30)),
+            new SegmentSplit(
+                    "version",
+                    "6.3",
+                    List.of(new PlannedUnits("plain", 0.5, 50), new PlannedUnits("wide", 0.5, 20)),
+                    List.of(new PlannedUnits("plain", 0.5, 51), new PlannedUnits("wide", 0.5, 52)),
+                    12.9,
+                    0.001,
+                    0.002,
+                    6,
+                    true));
+
     /** What a record may lack. */
     private static final Set<Class<?>> OPTIONAL =
-            Set.of(Estimated.class, Outlook.class, Adjusted.class, Clustering.class, UnitTotals.class);
+            Set.of(Estimated.class, Outlook.class, Adjusted.class, Clustering.class, UnitTotals.class,
+                    SplitOrigin.class, SegmentSplit.class);
 
     private static final DecisionRecord RECORD = new DecisionRecord(
             "quay-banner",
@@ -65,7 +85,7 @@ class RecordDigestTest {
                     new VariantCount(0, "wide", 101, 25, new UnitTotals(41, 315, 77, 31))),
             OutcomeCounts.of(201, 45, 3, 2, 1, 5, 6, 7, 0),
             4,
-            new Split(-1.5, 1, 0.25, 1, 0.6),
+            new Split(-1.5, 1, 0.25, 1, 0.6, ORIGIN),
             Trust.SOUND,
             "",
             Verdict.CONTINUE,
@@ -104,6 +124,8 @@ class RecordDigestTest {
             others.put(name, number + 1);
         } else if (value instanceof Long number) {
             others.put(name, number + 1);
+        } else if (value instanceof Boolean flag) {
+            others.put(name, !flag);
         } else if (value instanceof Instant moment) {
             others.put(name, moment.plusMillis(1));
         } else if (value instanceof OutcomeCounts outcomes) {

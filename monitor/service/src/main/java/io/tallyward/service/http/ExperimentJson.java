@@ -105,6 +105,7 @@ final class ExperimentJson {
         real(node, "pearsonChiSquare", split.pearsonChiSquare());
         node.put("pearsonDegreesOfFreedom", split.pearsonDegreesOfFreedom());
         real(node, "pearsonPValue", split.pearsonPValue());
+        SplitOriginJson.put(node, split.origin());
     }
 
     private static ObjectNode comparison(ExperimentView view, Variant challenger) {

@@ -41,6 +41,13 @@ final class PlanSection {
                         + Figures.percent(test.baseline()) + "; "
                         + (standing.higherIsBetter() ? "higher" : "lower") + " is better");
         course(html, plan);
+        if (!plan.splitCheck().segments().isEmpty()) {
+            OverviewPage.fact(
+                    html,
+                    "Segments",
+                    "a mismatch is traced by "
+                            + String.join(", ", plan.splitCheck().segments()));
+        }
         OverviewPage.fact(html, "Plan digest", standing.view().planDigest());
         OverviewPage.fact(html, "Newest record", standing.view().lastRecord());
         html.close().close();

@@ -21,6 +21,9 @@ final class SplitSection {
             epoch(html, standing, epoch, alpha);
         }
         checks(html, standing.view().split(), alpha);
+        if (standing.view().split().origin() != null) {
+            OriginSection.write(html, standing.view().split().origin(), alpha);
+        }
         html.close();
     }
 

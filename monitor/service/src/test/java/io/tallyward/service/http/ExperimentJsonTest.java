@@ -48,7 +48,8 @@ class ExperimentJsonTest {
                     "sequentialPValue" : 1.0,
                     "pearsonChiSquare" : 0.0,
                     "pearsonDegreesOfFreedom" : 0,
-                    "pearsonPValue" : 1.0
+                    "pearsonPValue" : 1.0,
+                    "origin" : null
                   },
                   "comparisons" : [ {
                     "variant" : "map",
@@ -110,6 +111,21 @@ class ExperimentJsonTest {
         JsonNode units = ExperimentJson.one(Northwater.fareChip());
         assertEquals(22_105, units.get("counts").get(0).get("units").longValue());
         assertTrue(units.get("comparisons").get(0).get("clustering").isNull());
+    }
+
+    @Test
+    void saysWhereAMismatchComesFrom() {
+        JsonNode origin =
+                ExperimentJson.one(Northwater.cabinUpsell()).get("split").get("origin");
+        assertEquals("2026-05-05T08:00:00Z", origin.get("beganFrom").textValue());
+        assertEquals("2026-05-05T08:20:00Z", origin.get("beganUntil").textValue());
+        assertEquals(7_750, origin.get("since").get(1).get("units").longValue());
+        JsonNode worst = origin.get("worst");
+        assertEquals("platform", worst.get("field").textValue());
+        assertEquals("app", worst.get("value").textValue());
+        assertEquals(5_000, worst.get("units").get(1).get("units").longValue());
+        assertEquals("inside", worst.get("elsewhere").get(1).get("variant").textValue());
+        assertTrue(worst.get("standsOut").booleanValue());
     }
 
     @Test

@@ -111,6 +111,15 @@ class PagesTest {
     }
 
     @Test
+    void saysWhereAMismatchComesFrom() {
+        String text = text(Northwater.cabinUpsell());
+        assertTrue(text.contains("between 2026-05-05 08:00 UTC and 2026-05-05 08:20 UTC"), text);
+        assertTrue(text.contains("platform app of 5 segments"), text);
+        assertTrue(text.contains("other than platform app"), text);
+        assertFalse(text(Northwater.fareChip()).contains("Mismatch began"));
+    }
+
+    @Test
     void putsProblemsFirst() {
         String html = pages.overview(Northwater.all().values(), FINE);
         List<Integer> places = List.of("return-prompt", "cabin-upsell", "quay-banner", "fare-chip", "pier-map").stream()

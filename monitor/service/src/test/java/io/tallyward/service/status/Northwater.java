@@ -21,6 +21,9 @@ import io.tallyward.engine.record.DecisionRecord.Split;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Outlook;
+import io.tallyward.engine.record.SplitOrigin;
+import io.tallyward.engine.record.SplitOrigin.PlannedUnits;
+import io.tallyward.engine.record.SplitOrigin.SegmentSplit;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.UnitTotals;
 import io.tallyward.engine.record.Verdict;
@@ -91,6 +94,24 @@ public final class Northwater {
         return view(plan, counts, Trust.SOUND, "", Verdict.STOP_HARM, Map.of("first", HARM));
     }
 
+    /** Where the broken split of {@link #cabinUpsell} comes from. */
+    public static final SplitOrigin ORIGIN = new SplitOrigin(
+            0,
+            Instant.parse("2026-05-05T08:00:00Z"),
+            Instant.parse("2026-05-05T08:20:00Z"),
+            61.2,
+            List.of(new PlannedUnits("outside", 0.5, 9_100), new PlannedUnits("inside", 0.5, 7_750)),
+            new SegmentSplit(
+                    "platform",
+                    "app",
+                    List.of(new PlannedUnits("outside", 0.5, 7_000), new PlannedUnits("inside", 0.5, 5_000)),
+                    List.of(new PlannedUnits("outside", 0.5, 11_930), new PlannedUnits("inside", 0.5, 12_604)),
+                    333.3,
+                    1e-73,
+                    2e-66,
+                    5,
+                    true));
+
     /** A broken split, with a verdict that waits. */
     public static ExperimentView cabinUpsell() {
         Plan plan = plan(
@@ -104,8 +125,9 @@ public final class Northwater {
                 plan,
                 counts,
                 Trust.MISMATCH,
-                "The split contradicts the plan (p = 4.1e-09, limit 0.0010) since the window that ends at"
-                        + " 2026-05-06T14:35:00Z; worst segment: platform=app.",
+                "the observed split contradicts the planned one (sequential p-value 4.1e-09, limit 0.0010); it began between"
+                        + " 2026-05-05T08:00:00Z and 2026-05-05T08:20:00Z, with platform app: inside has 41.67 % of 12000"
+                        + " units, planned 50.00 %",
                 Verdict.CONTINUE,
                 Map.of("inside", new double[] {0.7, 1.8, 2.6, 3.4, 4.2}));
     }
@@ -389,7 +411,7 @@ public final class Northwater {
             return new Split(0, 1, 0, 0, 1);
         }
         return trust == Trust.MISMATCH
-                ? new Split(19.31, 4.1e-9, 48.1, 1, 4.0e-12)
+                ? new Split(19.31, 4.1e-9, 48.1, 1, 4.0e-12, ORIGIN)
                 : new Split(-3.2, 1.0, 0.02, 1, 0.887);
     }
 

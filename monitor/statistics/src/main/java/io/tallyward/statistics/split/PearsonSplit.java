@@ -1,5 +1,6 @@
 package io.tallyward.statistics.split;
 
+import java.util.Arrays;
 import org.apache.commons.math3.special.Gamma;
 
 /**
@@ -61,6 +62,40 @@ public record PearsonSplit(double chiSquare, int degreesOfFreedom, double pValue
             chiSquare += gap * gap / (theta[i] * total);
         }
         return of(chiSquare, theta.length - 1);
+    }
+
+    /**
+     * Compares two groups of counts with each other, without a plan: Pearson's statistic of the table with two rows, which is
+     * the sum of those of both rows against their pooled shares, with one degree of freedom less than there are cells with
+     * counts (Pearson, Philosophical Magazine 50 (1900) 157-175; degrees of freedom after Fisher, Journal of the Royal
+     * Statistical Society 85 (1922) 87-94, recalled). Valid for a single reading.
+     *
+     * @param one counts by cell, each 0 or more, at least two cells
+     * @param other counts of the same cells
+     * @return {@link #NONE} while one of them, or all cells but one, are empty
+     */
+    public static PearsonSplit between(long[] one, long[] other) {
+        double[] pooled = new double[one.length];
+        Arrays.fill(pooled, 1);
+        Shares.normalised(pooled, one);
+        Shares.normalised(pooled, other);
+        int cells = 0;
+        for (int i = 0; i < one.length; i++) {
+            pooled[i] = (double) one[i] + other[i];
+            cells += pooled[i] > 0 ? 1 : 0;
+        }
+        double total = Shares.total(one) + Shares.total(other);
+        if (cells < 2 || Shares.total(one) == 0 || Shares.total(other) == 0) {
+            return NONE;
+        }
+        double chiSquare = 0;
+        for (int i = 0; i < one.length; i++) {
+            // Both rows are off by as much; so are a cell and its neighbour.
+            double expected = pooled[i] * (Shares.total(one) / total);
+            double gap = one[i] - expected;
+            chiSquare += pooled[i] == 0 ? 0 : gap * gap * (1 / expected + 1 / (pooled[i] - expected));
+        }
+        return of(chiSquare, cells - 1);
     }
 
     /**
