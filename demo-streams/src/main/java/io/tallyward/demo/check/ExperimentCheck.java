@@ -5,12 +5,15 @@ import io.tallyward.demo.check.MonitorApi.Standing;
 import io.tallyward.demo.receiver.ReceivedNotice;
 import io.tallyward.demo.story.Expectation;
 import io.tallyward.demo.story.Expectation.ExpectedNotice;
+import io.tallyward.demo.story.Expectation.ExpectedOrigin;
 import io.tallyward.demo.truth.Count;
 import io.tallyward.demo.truth.ExperimentTruth;
+import java.time.Instant;
 import java.util.ArrayList;
 import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.Set;
 
 /**
@@ -60,6 +63,7 @@ public record ExperimentCheck(
         findings.add(trustFinding());
         findings.addAll(countFindings());
         truth.story().expectation().notice().ifPresent(notice -> findings.add(noticeFinding(notice)));
+        truth.story().expectation().origin().ifPresent(origin -> findings.addAll(originFindings(origin)));
         return findings;
     }
 
@@ -115,6 +119,56 @@ public record ExperimentCheck(
                 standing.trust().equals(right),
                 "right is " + right + ", the monitor says " + standing.trust() + " ("
                         + standing.node().path("trustReason").asText() + ")");
+    }
+
+    /** Where the mismatch comes from in truth, and by the monitor; empty where there is none. */
+    Optional<String> origins() {
+        return truth.story()
+                .expectation()
+                .origin()
+                .map(right -> experiment() + ": the mismatch began at " + right.began() + " with " + right.field() + " "
+                        + right.value() + "; the monitor says " + told());
+    }
+
+    private JsonNode origin() {
+        return standing.node().path("split").path("origin");
+    }
+
+    private String told() {
+        JsonNode worst = origin().path("worst");
+        return origin().isObject()
+                ? "between " + origin().path("beganFrom").asText() + " and "
+                        + origin().path("beganUntil").asText() + " with "
+                        + worst.path("field").asText() + " "
+                        + worst.path("value").asText()
+                        + (worst.path("standsOut").asBoolean() ? "" : ", which does not stand out")
+                : "nothing";
+    }
+
+    private List<Finding> originFindings(ExpectedOrigin right) {
+        JsonNode worst = origin().path("worst");
+        boolean segment = worst.path("field").asText().equals(right.field())
+                && worst.path("value").asText().equals(right.value())
+                && worst.path("standsOut").asBoolean();
+        String difference = "right is " + right.began() + " with " + right.field() + " " + right.value()
+                + ", the monitor says " + told();
+        boolean named = notices.stream()
+                .anyMatch(notice -> notice.kind().equals("mismatch")
+                        && notice.summary().contains(right.field() + " " + right.value()));
+        return List.of(
+                Finding.of(experiment() + ": segment of the mismatch", segment, difference),
+                Finding.of(experiment() + ": beginning of the mismatch", isNear(right), difference),
+                Finding.of(experiment() + ": segment in the notice", named, difference + " in no notice"));
+    }
+
+    private boolean isNear(ExpectedOrigin right) {
+        if (!origin().isObject()) {
+            return false;
+        }
+        Instant from = Instant.parse(origin().path("beganFrom").asText());
+        Instant until = Instant.parse(origin().path("beganUntil").asText());
+        return !from.isAfter(right.began().plus(right.within()))
+                && !until.isBefore(right.began().minus(right.within()));
     }
 
     private Finding noticeFinding(ExpectedNotice right) {

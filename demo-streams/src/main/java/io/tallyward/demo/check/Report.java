@@ -52,6 +52,7 @@ public record Report(List<ExperimentCheck> experiments, List<Finding> others) {
                 }
             }
         }
+        experiments.forEach(check -> check.origins().ifPresent(lines::add));
         List<Finding> differing =
                 findings().stream().filter(finding -> !finding.holds()).toList();
         for (Finding finding : differing) {

@@ -1,6 +1,7 @@
 package io.tallyward.demo.story;
 
 import io.tallyward.demo.story.Expectation.ExpectedNotice;
+import io.tallyward.demo.story.Expectation.ExpectedOrigin;
 import java.time.Duration;
 import java.time.Instant;
 import java.util.List;
@@ -24,6 +25,12 @@ public final class CabinUpsell implements Story {
     /** When the broken version of the app comes out. */
     static final Instant BREAK = Northwater.START.plus(Duration.ofDays(2));
 
+    /** The broken version of the app, on whatever platform it runs. */
+    static final String BROKEN_VERSION = "6.3";
+
+    /** How far off the monitor may be about the beginning: of the 700 units of six hours it would have to explain 16 nats away. */
+    private static final Duration NEAR = Duration.ofHours(6);
+
     private static final int OFFER = 1;
 
     @Override
@@ -38,21 +45,22 @@ public final class CabinUpsell implements Story {
 
     @Override
     public double clickRate(int variant, long atMillis, Device device) {
-        return device == Device.APP_NEW ? 0.15 : 0.12;
+        return device.version().equals(BROKEN_VERSION) ? 0.15 : 0.12;
     }
 
     @Override
     public boolean losesView(int variant, long atMillis, Device device) {
-        return variant == OFFER && device == Device.APP_NEW && atMillis >= BREAK.toEpochMilli();
+        return variant == OFFER && device.version().equals(BROKEN_VERSION) && atMillis >= BREAK.toEpochMilli();
     }
 
     @Override
     public Expectation expectation() {
         return new Expectation(
-                "split broken from day 3",
+                "version 6.3 loses views from day 3",
                 Map.of("offer", Set.of("waiting", "continue", "exhausted")),
                 0,
                 "mismatch",
-                Optional.of(new ExpectedNotice("mismatch", "")));
+                Optional.of(new ExpectedNotice("mismatch", "")),
+                Optional.of(new ExpectedOrigin("version", BROKEN_VERSION, BREAK, NEAR)));
     }
 }

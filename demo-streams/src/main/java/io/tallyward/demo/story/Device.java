@@ -5,8 +5,10 @@ import java.util.SplittableRandom;
 /** What a visitor uses. It becomes the source and the segments of the visitor's events. */
 public enum Device {
     WEB("web", "browser", "site", 0.35),
-    APP_OLD("app", "android", "6.2", 0.30),
-    APP_NEW("app", "ios", "6.3", 0.35);
+    ANDROID_OLD("app", "android", "6.2", 0.15),
+    IOS_OLD("app", "ios", "6.2", 0.15),
+    ANDROID_NEW("app", "android", "6.3", 0.15),
+    IOS_NEW("app", "ios", "6.3", 0.20);
 
     private final String source;
     private final String platform;
@@ -42,9 +44,13 @@ public enum Device {
 
     static Device draw(SplittableRandom random) {
         double point = random.nextDouble();
-        if (point < WEB.share) {
-            return WEB;
+        double upTo = 0;
+        for (Device device : values()) {
+            upTo += device.share;
+            if (point < upTo) {
+                return device;
+            }
         }
-        return point < WEB.share + APP_OLD.share ? APP_OLD : APP_NEW;
+        return IOS_NEW;
     }
 }

@@ -8,6 +8,7 @@ import com.fasterxml.jackson.databind.ObjectMapper;
 import com.fasterxml.jackson.databind.node.ObjectNode;
 import io.tallyward.demo.check.MonitorApi.Standing;
 import io.tallyward.demo.receiver.ReceivedNotice;
+import io.tallyward.demo.story.CabinUpsell;
 import io.tallyward.demo.story.FareChip;
 import io.tallyward.demo.story.Northwater;
 import io.tallyward.demo.story.QuayBanner;
@@ -15,7 +16,11 @@ import io.tallyward.demo.story.Story;
 import io.tallyward.demo.truth.Cell;
 import io.tallyward.demo.truth.Count;
 import io.tallyward.demo.truth.ExperimentTruth;
+import java.io.IOException;
+import java.io.UncheckedIOException;
 import java.nio.charset.StandardCharsets;
+import java.time.Duration;
+import java.time.Instant;
 import java.util.List;
 import java.util.Map;
 import org.junit.jupiter.api.Test;
@@ -64,6 +69,64 @@ class ReportTest {
         Report report = new Report(List.of(quayBanner("continue", 10, List.of())), List.of());
         assertEquals("2 of 7 checks do not hold", last(report));
         assertTrue(report.lines().contains("    right is stop-benefit, the monitor says continue"));
+    }
+
+    @Test
+    void showsWhereAMismatchComesFromAndNamesAWrongOrigin() {
+        String right = "right is 2026-05-06T00:00:00Z with version 6.3, the monitor says ";
+        assertEquals(List.of(), differences(origin("2026-05-06T05:20:00Z", "version", "6.3", true), "version 6.3"));
+        assertEquals(
+                List.of("segment of the mismatch", "segment in the notice"),
+                differences(origin("2026-05-05T23:20:00Z", "platform", "ios", true), "platform ios"));
+        assertEquals(
+                List.of("segment of the mismatch"),
+                differences(origin("2026-05-05T23:20:00Z", "version", "6.3", false), "version 6.3"));
+        assertEquals(
+                List.of("beginning of the mismatch"),
+                differences(origin("2026-05-06T06:00:01Z", "version", "6.3", true), "version 6.3"));
+        assertEquals(
+                List.of("beginning of the mismatch"),
+                differences(origin("2026-05-05T17:19:59Z", "version", "6.3", true), "version 6.3"));
+        assertEquals(
+                List.of("segment of the mismatch", "beginning of the mismatch"), differences("null", "version 6.3"));
+        ExperimentCheck check = cabinUpsell(origin("2026-05-05T23:20:00Z", "platform", "ios", true), "");
+        assertTrue(new Report(List.of(check), List.of())
+                .lines()
+                .contains("    " + right + "between 2026-05-05T23:20:00Z and 2026-05-06T00:00:00Z with platform"
+                        + " ios"));
+        assertEquals(
+                "cabin-upsell: the mismatch began at 2026-05-06T00:00:00Z with version 6.3; the monitor says between"
+                        + " 2026-05-05T23:20:00Z and 2026-05-06T00:00:00Z with platform ios",
+                check.origins().orElseThrow());
+    }
+
+    private static String origin(String from, String field, String value, boolean standsOut) {
+        return """
+                {"beganFrom": "%s", "beganUntil": "%s",
+                 "worst": {"field": "%s", "value": "%s", "standsOut": %b}}""".formatted(from, Instant.parse(from).plus(Duration.ofMinutes(40)), field, value, standsOut);
+    }
+
+    private ExperimentCheck cabinUpsell(String origin, String named) {
+        Story story = new CabinUpsell();
+        ExperimentTruth truth = new ExperimentTruth(story, Map.of(), Map.of("outside", 0L, "trial", 0L));
+        ReceivedNotice notice = new ReceivedNotice(
+                "n2", "mismatch", "page", "cabin-upsell", "", "", "a mismatch, with " + named, "find where");
+        ObjectNode node = (ObjectNode) standing(story, "continue", 0).node();
+        node.put("trust", "mismatch");
+        try {
+            node.putObject("split").set("origin", json.readTree(origin));
+        } catch (IOException e) {
+            throw new UncheckedIOException(e);
+        }
+        return new ExperimentCheck(truth, new Standing(node), new MonitorCounts(), 0, List.of(notice));
+    }
+
+    /** What differs, without the experiment. */
+    private List<String> differences(String origin, String named) {
+        return cabinUpsell(origin, named).findings().stream()
+                .filter(finding -> !finding.holds())
+                .map(finding -> finding.subject().replace("cabin-upsell: ", ""))
+                .toList();
     }
 
     @Test

@@ -88,7 +88,7 @@ class RecordCodecTest {
                         + "\"outcomes\":{\"trial\":0,\"success\":0,\"repeat\":0,\"expired\":0,\"crossover\":0,"
                         + "\"orphan\":0,\"late\":0,\"outside\":0,\"duplicate\":0},\"idleSealed\":0,"
                         + "\"split\":{\"logBayesFactor\":0.25,\"sequentialPValue\":1.0,\"pearsonChiSquare\":0.0,"
-                        + "\"pearsonDegreesOfFreedom\":0,\"pearsonPValue\":1.0},\"trust\":\"sound\","
+                        + "\"pearsonDegreesOfFreedom\":0,\"pearsonPValue\":1.0,\"origin\":null},\"trust\":\"sound\","
                         + "\"trustReason\":\"\",\"verdict\":\"stop-benefit\",\"comparisons\":[],"
                         + "\"engineVersion\":\"1\",\"previous\":\"" + DecisionRecord.NO_PREVIOUS
                         + "\",\"hash\":\"cd\"}",
