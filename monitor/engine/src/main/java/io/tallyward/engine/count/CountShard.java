@@ -190,6 +190,7 @@ public final class CountShard {
             seal(counter, watermark, cause);
             if (counter.isToBeArchived(watermark)) {
                 sealedState.addAll(state.forgetSealed(counter));
+                sealedState.addAll(CountState.forgetSegments(counter));
                 counter.archive();
             }
             nextSealAt = Math.min(nextSealAt, counter.nextSealAt());

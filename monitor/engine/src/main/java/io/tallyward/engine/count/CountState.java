@@ -91,15 +91,27 @@ final class CountState {
     static List<StateChange> segments(ExperimentCounter counter) {
         List<StateChange> changes = new ArrayList<>();
         counter.segments()
-                .ifPresent(table -> table.takeNew(PACKED_BYTES, (sequence, packed) -> {
-                    byte[] key = pack(out -> {
-                        out.writeByte(SEGMENTS);
-                        out.writeUTF(counter.plan().experiment());
-                        out.writeInt(sequence);
-                    });
-                    changes.add(new StateChange(key, packed));
-                }));
+                .ifPresent(table -> table.takeNew(
+                        PACKED_BYTES,
+                        (sequence, packed) -> changes.add(new StateChange(segmentKey(counter, sequence), packed))));
         return changes;
+    }
+
+    /** Removes the segments of an experiment that is over, the youngest first, so that what is left is without a gap. */
+    static List<StateChange> forgetSegments(ExperimentCounter counter) {
+        List<StateChange> changes = new ArrayList<>();
+        counter.segments()
+                .ifPresent(table -> table.clear()
+                        .forEach(sequence -> changes.add(new StateChange(segmentKey(counter, sequence), null))));
+        return changes;
+    }
+
+    private static byte[] segmentKey(ExperimentCounter counter, int sequence) {
+        return pack(out -> {
+            out.writeByte(SEGMENTS);
+            out.writeUTF(counter.plan().experiment());
+            out.writeInt(sequence);
+        });
     }
 
     /** Open units that changed since the last commit. */
@@ -240,7 +252,12 @@ final class CountState {
     }
 
     private static void restoreSegments(int sequence, byte[] value, ExperimentCounter counter) throws IOException {
-        if (counter != null && counter.segments().isPresent()) {
+        if (counter == null || counter.segments().isEmpty()) {
+            return;
+        }
+        if (value == null) {
+            counter.segments().get().clear();
+        } else {
             counter.segments().get().restore(sequence, reader(value));
         }
     }

@@ -169,6 +169,7 @@ final class ExperimentCounter {
     void archive() {
         archived = true;
         changed = true;
+        segments.ifPresent(SegmentTable::clear);
         ledger = newLedger();
     }
 

@@ -9,6 +9,7 @@ import java.io.DataOutput;
 import java.io.IOException;
 import java.util.ArrayList;
 import java.util.Arrays;
+import java.util.Collections;
 import java.util.List;
 import java.util.TreeSet;
 
@@ -48,6 +49,7 @@ final class SegmentTable {
     private final List<String[]> tuples = new ArrayList<>();
     private final List<TreeSet<String>> told = new ArrayList<>();
     private short[] slots = new short[16];
+    private final List<Integer> batches = new ArrayList<>();
     private int written;
     private int writtenValues;
 
@@ -172,7 +174,7 @@ final class SegmentTable {
     }
 
     /** Gives what was not given before: combinations in batches of bounded size by their first code, values by 0. */
-    void takeNew(int mostBytes, Batches batches) {
+    void takeNew(int mostBytes, Batches taker) {
         while (written < tuples.size()) {
             int from = written;
             int bytes = 0;
@@ -182,12 +184,29 @@ final class SegmentTable {
                 }
                 written++;
             }
-            batches.take(from + 1, pack(out -> write(out, from)));
+            batches.add(from + 1);
+            taker.take(from + 1, pack(out -> write(out, from)));
         }
         if (toldValues() > writtenValues) {
             writtenValues = toldValues();
-            batches.take(0, pack(this::writeTold));
+            taker.take(0, pack(this::writeTold));
         }
+    }
+
+    /** Forgets everything; returns the numbers of the batches there are, the youngest first. */
+    List<Integer> clear() {
+        List<Integer> given = new ArrayList<>(batches);
+        Collections.reverse(given);
+        if (writtenValues > 0) {
+            given.add(0, 0);
+        }
+        batches.clear();
+        tuples.clear();
+        told.forEach(TreeSet::clear);
+        Arrays.fill(slots, (short) 0);
+        written = 0;
+        writtenValues = 0;
+        return given;
     }
 
     private void write(DataOutput out, int from) throws IOException {
@@ -227,6 +246,7 @@ final class SegmentTable {
             throw new IllegalStateException("stored segments: batch " + sequence + " (expected: batch "
                     + (tuples.size() + 1) + ", as many combinations as are known)");
         }
+        batches.add(sequence);
         while (in.available() > 0) {
             String[] tuple = new String[fields.size()];
             for (int field = 0; field < tuple.length; field++) {

@@ -161,6 +161,23 @@ class SegmentCountTest {
     }
 
     @Test
+    void keepsNothingBySegmentOnceTheExperimentIsArchived() {
+        Plan other = Plans.plan("quay-banner").atMost(Duration.ofDays(9)).build();
+        CountHost host = new CountHost(
+                0, 1, List.of(Plans.plan(UPSELL).segments("version").build(), other), 1);
+        for (int version = 0; version < 9; version++) {
+            host.feed(view("u" + version, "6." + version, 5 + version)).commit();
+        }
+        host.feed(Events.view("quay-banner", "plain", "ada", "v", 8 * 24 * 60)).commit();
+        assertTrue(host.log().live().stream().noneMatch(change -> change.key()[0] == 'g'), "stored segments are left");
+        for (int cleaned = 0; cleaned <= host.log().size(); cleaned++) {
+            host.restart(cleaned);
+            host.feed(view("late", "6.1", 7));
+            assertEquals(1, host.outcomes(UPSELL).get(Outcome.LATE), "restart from " + cleaned);
+        }
+    }
+
+    @Test
     void spreadsWindowsWithManySegmentsOverSeveralUpdates() {
         Plan plan = Plans.plan(UPSELL)
                 .segments("version", "platform")

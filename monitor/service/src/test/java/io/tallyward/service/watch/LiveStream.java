@@ -34,6 +34,14 @@ final class LiveStream {
     /** A second experiment that runs longer, so that its events move the watermark past the end of the first. */
     static final String LONGER_PLAN = PLAN.replace("quay-banner", "fare-chip").replace("PT36H", "PT72H");
 
+    /** A third one, whose split is broken: from {@link #BREAK} on, version 6.3 loses every view of {@code wide}. */
+    static final String BROKEN_PLAN =
+            PLAN.replace("quay-banner", "cabin-upsell") + "split-check: {segments: [version, platform]}\n";
+
+    static final Instant BREAK = START.plus(Duration.ofHours(12));
+
+    private static final String[] VERSIONS = {"6.1", "6.2", "6.3"};
+
     private final String topic;
     private final Random random;
     private final List<ProducerRecord<byte[], byte[]>> records = new ArrayList<>();
@@ -47,6 +55,7 @@ final class LiveStream {
         LiveStream stream = new LiveStream(topic, seed);
         for (int unit = 0; unit < 12_960; unit++) {
             stream.unit(unit, START.plusSeconds(10L * unit));
+            stream.brokenUnit(unit, START.plusSeconds(10L * unit));
         }
         for (int partition = 0; partition < partitions; partition++) {
             stream.add(partition, "view", "fare-chip", "plain", "last-" + partition, START.plus(SEALED));
@@ -100,6 +109,26 @@ final class LiveStream {
         if (number % 1000 == 0) {
             records.add(new ProducerRecord<>(topic, null, bytes(unit), bytes("{not json")));
         }
+    }
+
+    /** What a unit does is told by its number alone. */
+    private void brokenUnit(int number, Instant at) {
+        Random own = new Random(number);
+        String version = VERSIONS[own.nextInt(3)];
+        String variant = own.nextBoolean() ? "wide" : "plain";
+        if (version.equals("6.3") && variant.equals("wide") && !at.isBefore(BREAK)) {
+            return;
+        }
+        String unit = "passenger-" + number;
+        String segments = own.nextInt(50) == 0
+                ? "null"
+                : "{\"platform\":\"" + (own.nextBoolean() ? "phone" : "tabl\\u0065t") + "\",\"language\":\"l" + number
+                        + "\",\"version\":\"" + version + "\"}";
+        String json = String.format(
+                "{\"kind\":\"view\",\"experiment\":\"cabin-upsell\",\"segments\":%s,\"variant\":\"%s\",\"unit\":\"%s\","
+                        + "\"id\":\"b%d\",\"at\":\"%s\"}",
+                segments, variant, unit, number, at);
+        records.add(new ProducerRecord<>(topic, null, bytes(unit), bytes(json)));
     }
 
     private void add(Integer partition, String kind, String experiment, String variant, String unit, Instant at) {

@@ -11,6 +11,9 @@ import io.tallyward.connector.format.EventMapping;
 import io.tallyward.connector.format.JsonEventReader;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.SplitOrigin;
+import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
 import io.tallyward.service.command.ReplayOracle;
 import io.tallyward.service.config.ConfigReader;
@@ -35,6 +38,7 @@ import java.util.List;
 import java.util.Map;
 import java.util.Queue;
 import java.util.concurrent.ConcurrentLinkedQueue;
+import java.util.regex.Pattern;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
 import org.apache.kafka.clients.producer.ProducerRecord;
 import org.awaitility.Awaitility;
@@ -80,10 +84,28 @@ class WatchServiceIT {
                     plans, PARTITIONS, broker.readAll(topic), new JsonEventReader(EventMapping.DEFAULT, 65_536));
             assertEquals(of("quay-banner", replayed), of("quay-banner", live));
             assertEquals(of("fare-chip", replayed), of("fare-chip", live));
+            assertEquals(of("cabin-upsell", replayed), of("cabin-upsell", live));
+            assertNamesTheBrokenVersion(last(of("cabin-upsell", live)));
             assertEquals(Verdict.STOP_BENEFIT, last(of("quay-banner", live)).verdict());
             receiver.awaitNotice("io.tallyward.notice.stop");
+            receiver.awaitNotice("\"worstSegment\":\"version 6.3\"");
             assertEquals(13, broker.readAll(config.name() + "-rejects").size(), "rejected records kept");
         }
+    }
+
+    private static void assertNamesTheBrokenVersion(DecisionRecord record) {
+        assertEquals(Trust.MISMATCH, record.trust());
+        SplitOrigin origin = record.split().origin();
+        assertEquals("version", origin.worst().field());
+        assertEquals("6.3", origin.worst().value());
+        assertTrue(origin.worst().standsOut(), origin.toString());
+        Duration off = Duration.between(LiveStream.BREAK, origin.beganFrom()).abs();
+        assertTrue(off.compareTo(Duration.ofHours(1)) <= 0, origin.toString());
+        VariantCount wide = record.counts().get(1);
+        assertEquals(
+                wide.trials(),
+                origin.worst().units().get(1).units()
+                        + origin.worst().elsewhere().get(1).units());
     }
 
     @Test
@@ -147,6 +169,7 @@ class WatchServiceIT {
         Path plans = Files.createDirectories(directory.resolve("plans"));
         Files.writeString(plans.resolve("quay-banner.yaml"), LiveStream.PLAN);
         Files.writeString(plans.resolve("fare-chip.yaml"), LiveStream.LONGER_PLAN);
+        Files.writeString(plans.resolve("cabin-upsell.yaml"), LiveStream.BROKEN_PLAN);
         Path secret = Files.writeString(directory.resolve("webhook.secret"), SECRET);
         Path file = Files.writeString(directory.resolve("tallyward.yaml"), """
                 name: %s
@@ -173,7 +196,11 @@ class WatchServiceIT {
         Awaitility.await().atMost(PATIENCE).untilAsserted(() -> {
             String known = get(first, "api/experiments").body()
                     + get(second, "api/experiments").body();
-            assertTrue(known.contains("\"completeUntil\":\"" + LiveStream.START.plus(LiveStream.RUN) + "\""), known);
+            for (String experiment : List.of("quay-banner", "cabin-upsell")) {
+                Pattern settled = Pattern.compile("\"experiment\":\"" + experiment + "\"[^{}]*\"completeUntil\":\""
+                        + LiveStream.START.plus(LiveStream.RUN) + "\"");
+                assertTrue(settled.matcher(known).find(), known);
+            }
         });
     }
 
