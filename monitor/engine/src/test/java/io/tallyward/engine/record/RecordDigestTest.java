@@ -70,9 +70,14 @@ class RecordDigestTest {
                     true));
 
     /** What a record may lack. */
-    private static final Set<Class<?>> OPTIONAL =
-            Set.of(Estimated.class, Outlook.class, Adjusted.class, Clustering.class, UnitTotals.class,
-                    SplitOrigin.class, SegmentSplit.class);
+    private static final Set<Class<?>> OPTIONAL = Set.of(
+            Estimated.class,
+            Outlook.class,
+            Adjusted.class,
+            Clustering.class,
+            UnitTotals.class,
+            SplitOrigin.class,
+            SegmentSplit.class);
 
     private static final DecisionRecord RECORD = new DecisionRecord(
             "quay-banner",
