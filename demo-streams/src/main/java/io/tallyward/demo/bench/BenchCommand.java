@@ -30,6 +30,9 @@ public final class BenchCommand implements Callable<Integer> {
     private static final long MOST_EVENTS = 200_000_000;
     private static final int MOST_REPEATS = 20;
 
+    /** Ended by a signal, as shells say it of SIGINT. */
+    private static final int STOPPED = 130;
+
     @Option(
             names = "--events",
             paramLabel = "N",
@@ -72,11 +75,18 @@ public final class BenchCommand implements Callable<Integer> {
         }
         PrintWriter out = spec.commandLine().getOut();
         PrintWriter err = spec.commandLine().getErr();
-        try (WorkDirectory directory = WorkDirectory.open(null)) {
-            if (memory) {
-                MemoryRun.measure(directory.path()).forEach(out::println);
-            } else {
-                bench(directory.path(), out, err);
+        try (OrderlyStop stop = OrderlyStop.listen()) {
+            try (WorkDirectory directory = WorkDirectory.open(null)) {
+                if (memory) {
+                    MemoryRun.measure(directory.path()).forEach(out::println);
+                } else {
+                    bench(directory.path(), out, err);
+                }
+            } catch (InterruptedException | RuntimeException failure) {
+                if (stop.happened()) {
+                    return STOPPED;
+                }
+                throw failure;
             }
         }
         out.flush();
