@@ -8,6 +8,8 @@ enum BenchCase {
     RAW_PARSE("raw-parse"),
     /** Counting by unit as the service does it: ledger, durable state, a transaction every second. */
     COUNT_UNIT("count-unit"),
+    /** The same host, counting by view. */
+    COUNT_VIEW("count-view"),
     /** A windowed count of all events, duplicates included, in a few lines of the Kafka Streams DSL, exactly once. */
     STREAMS_DSL("streams-dsl");
 
@@ -29,6 +31,6 @@ enum BenchCase {
             }
         }
         throw new IllegalArgumentException(
-                "case: " + code + " (expected: raw-poll, raw-parse, count-unit or" + " streams-dsl)");
+                "case: " + code + " (expected: raw-poll, raw-parse, count-unit, count-view or streams-dsl)");
     }
 }

@@ -14,7 +14,7 @@ import java.util.function.ToDoubleFunction;
 import java.util.stream.IntStream;
 
 /** The measurements of all rounds. A ratio is the median of the ratios within a round, which see the same machine. */
-final class BenchResults {
+final class BenchResults implements Findings {
 
     private final Map<BenchCase, List<Measurement>> measured = new EnumMap<>(BenchCase.class);
 
@@ -58,22 +58,26 @@ final class BenchResults {
         return sorted.length % 2 == 1 ? sorted[middle] : (sorted[middle - 1] + sorted[middle]) / 2;
     }
 
-    List<String> table() {
+    @Override
+    public List<String> lines() {
         List<List<String>> rows = new ArrayList<>();
         measured.forEach((each, runs) -> rows.add(List.of(
                 each.code(),
                 format("%.2f", cpuSecondsPerMillion(each)),
                 format("%.1f", ratioToRawPoll(each)),
                 format("%,.0f", eventsPerSecond(each)))));
-        return new TextTable(List.of("case", "CPU-s per million", "ratio to raw-poll", "events/s"), rows).lines();
+        List<String> lines = new ArrayList<>(
+                new TextTable(List.of("case", "CPU-s per million", "ratio to raw-poll", "events/s"), rows).lines());
+        lines.add("count-unit and count-view counted every event and called none late, in every round.");
+        return lines;
     }
 
     private static String format(String pattern, double value) {
         return String.format(Locale.ROOT, pattern, value);
     }
 
-    /** One JSON object on one line. */
-    String json() {
+    @Override
+    public String json() {
         ObjectNode all = new ObjectMapper().createObjectNode();
         ArrayNode cases = all.putArray("cases");
         measured.forEach((each, runs) -> cases.addObject()

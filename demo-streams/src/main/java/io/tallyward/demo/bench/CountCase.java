@@ -3,6 +3,8 @@ package io.tallyward.demo.bench;
 import io.tallyward.connector.kafka.ShardRunner;
 import io.tallyward.demo.bench.CaseMain.Task;
 import io.tallyward.engine.count.Outcome;
+import io.tallyward.engine.plan.CountRule;
+import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.service.config.ConfigReader;
 import io.tallyward.service.config.ServiceConfig;
@@ -37,17 +39,14 @@ final class CountCase {
 
     private CountCase() {}
 
-    static Measurement measure(Task task) throws IOException, InterruptedException, BadInputException {
+    static Measurement measure(Task task, CountBy by) throws IOException, InterruptedException, BadInputException {
         Path file = task.directory().resolve("bench-" + task.run() + ".yaml");
         Files.writeString(
-                file,
-                CONFIGURATION.formatted(
-                        task.run(),
-                        task.bootstrapServers(),
-                        BenchRun.TOPIC,
-                        task.directory().resolve("plans")));
+                file, CONFIGURATION.formatted(task.run(), task.bootstrapServers(), task.topic(), task.plans()));
         ServiceConfig config = new ConfigReader(Map.of()).read(file).orElseThrow();
-        List<Plan> plans = PlanDirectory.read(config.plans()).orElseThrow();
+        List<Plan> plans = PlanDirectory.read(config.plans()).orElseThrow().stream()
+                .map(plan -> countedBy(by, plan))
+                .toList();
         StatusBoard board = new StatusBoard();
         AtomicReference<Throwable> broken = new AtomicReference<>();
         Stopwatch stopwatch = new Stopwatch(task.warmUp());
@@ -64,6 +63,23 @@ final class CountCase {
             requireExact(task, board, runner.status().recordsConsumed());
             return measurement;
         }
+    }
+
+    private static Plan countedBy(CountBy by, Plan plan) {
+        CountRule rule = plan.count();
+        return new Plan(
+                plan.experiment(),
+                plan.question(),
+                plan.owner(),
+                new CountRule(by, rule.attribution(), rule.grace(), rule.window()),
+                plan.variants(),
+                plan.test(),
+                plan.looks(),
+                plan.futility(),
+                plan.splitCheck(),
+                plan.trust(),
+                plan.run(),
+                plan.epochs());
     }
 
     /** Events that a committed report accounts for. */

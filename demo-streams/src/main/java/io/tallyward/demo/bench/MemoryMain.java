@@ -44,7 +44,7 @@ public final class MemoryMain {
     /** Needs a directory to write the plans into. */
     public static void main(String[] arguments) throws IOException, BadInputException {
         Path plans = Path.of(arguments[0]).resolve("plans");
-        Traffic.SCENARIO.writePlans(plans);
+        Traffic.ofStories().writePlans(plans);
         Plan plan = PlanDirectory.read(plans).orElseThrow().stream()
                 .filter(each -> each.experiment().equals("quay-banner"))
                 .findFirst()

@@ -1,10 +1,8 @@
 package io.tallyward.demo.bench;
 
 import io.tallyward.demo.child.ChildProcess;
-import io.tallyward.demo.child.TiedToParent;
 import java.io.IOException;
 import java.nio.file.Files;
-import java.nio.file.Path;
 import java.time.Duration;
 import java.util.List;
 
@@ -15,15 +13,13 @@ final class MemoryRun {
 
     private MemoryRun() {}
 
-    static List<String> measure(Path directory) throws IOException, InterruptedException {
-        Path log = directory.resolve("memory.log");
-        try (ChildProcess child = ChildProcess.start(
+    static List<String> measure(Stage stage) throws IOException, InterruptedException {
+        try (ChildProcess child = stage.startTied(
                 "memory",
-                log,
                 List.of("-Xmx2g", "-XX:+UseParallelGC"),
-                List.of(TiedToParent.class.getName(), MemoryMain.class.getName(), directory.toString()))) {
+                List.of(MemoryMain.class.getName(), stage.directory().toString()))) {
             child.awaitEnd(PATIENCE);
         }
-        return Files.readAllLines(log);
+        return Files.readAllLines(stage.directory().resolve("memory.log"));
     }
 }

@@ -10,7 +10,6 @@ import io.tallyward.service.plan.PlanDirectory;
 import java.time.Duration;
 import java.util.List;
 import java.util.Map;
-import java.util.stream.IntStream;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
 import org.apache.kafka.clients.consumer.ConsumerRecords;
 import org.apache.kafka.clients.consumer.KafkaConsumer;
@@ -26,16 +25,15 @@ final class PollCase {
     private PollCase() {}
 
     static Measurement measure(Task task, boolean parse) throws BadInputException {
-        PlanNames names = new PlanNames(
-                PlanDirectory.read(task.directory().resolve("plans")).orElseThrow());
+        PlanNames names = new PlanNames(PlanDirectory.read(task.plans()).orElseThrow());
         EventSlotReader reader = new EventSlotReader(EventMapping.DEFAULT, MAX_EVENT_BYTES, names);
         EventSlot event = new EventSlot();
         Stopwatch stopwatch = new Stopwatch(task.warmUp());
         long seen = 0;
         try (KafkaConsumer<byte[], byte[]> consumer = new KafkaConsumer<>(
                 settings(task.bootstrapServers()), new ByteArrayDeserializer(), new ByteArrayDeserializer())) {
-            List<TopicPartition> partitions = IntStream.range(0, BenchRun.PARTITIONS)
-                    .mapToObj(partition -> new TopicPartition(BenchRun.TOPIC, partition))
+            List<TopicPartition> partitions = consumer.partitionsFor(task.topic()).stream()
+                    .map(info -> new TopicPartition(task.topic(), info.partition()))
                     .toList();
             consumer.assign(partitions);
             consumer.seekToBeginning(partitions);

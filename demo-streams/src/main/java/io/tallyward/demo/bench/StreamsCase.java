@@ -38,7 +38,8 @@ final class StreamsCase {
         InputTopic.create(task.bootstrapServers(), result, BenchRun.PARTITIONS);
         AtomicLong counted = new AtomicLong();
         Stopwatch stopwatch = new Stopwatch(task.warmUp());
-        try (KafkaStreams streams = new KafkaStreams(topology(result, counted).build(), settings(task, result))) {
+        try (KafkaStreams streams =
+                new KafkaStreams(topology(task.topic(), result, counted).build(), settings(task, result))) {
             streams.start();
             while (counted.get() < task.events()) {
                 if (streams.state().hasStartedOrFinishedShuttingDown()) {
@@ -53,10 +54,10 @@ final class StreamsCase {
         }
     }
 
-    private static StreamsBuilder topology(String result, AtomicLong counted) {
+    private static StreamsBuilder topology(String topic, String result, AtomicLong counted) {
         JsonEventReader reader = new JsonEventReader(EventMapping.DEFAULT, MAX_EVENT_BYTES);
         StreamsBuilder builder = new StreamsBuilder();
-        builder.stream(BenchRun.TOPIC, Consumed.with(Serdes.ByteArray(), Serdes.ByteArray()))
+        builder.stream(topic, Consumed.with(Serdes.ByteArray(), Serdes.ByteArray()))
                 .map((unit, value) -> KeyValue.pair(cell(reader.read(value)), value))
                 .repartition(Repartitioned.with(Serdes.String(), Serdes.ByteArray())
                         .withName("cells")

@@ -7,9 +7,15 @@ import io.tallyward.demo.story.QuayBanner;
 import io.tallyward.demo.story.ReturnPrompt;
 import io.tallyward.demo.story.Scenario;
 import io.tallyward.demo.story.Story;
+import java.io.IOException;
 import java.nio.charset.StandardCharsets;
+import java.nio.file.Files;
+import java.nio.file.Path;
 import java.time.Instant;
 import java.util.List;
+import java.util.Set;
+import java.util.stream.Collectors;
+import java.util.stream.IntStream;
 
 /**
  * Events without a plot, for measuring: as many as one likes, each a function of its number alone. Four to a unit on
@@ -17,12 +23,6 @@ import java.util.List;
  * it; 200 a second of event time, up to two seconds out of order.
  */
 final class Traffic {
-
-    /** Stories without their events: only their names and plans are of interest here. */
-    static final Scenario SCENARIO = new Scenario(
-            Scenario.DEFAULT_SEED,
-            List.of(new QuayBanner(), new FareChip(), new ReturnPrompt(), new CabinUpsell(), new DeckMap()),
-            List.of());
 
     private static final long START = Instant.parse("2026-05-04T06:00:00Z").toEpochMilli();
     private static final int DUPLICATE_EVERY = 50;
@@ -35,7 +35,60 @@ final class Traffic {
 
     private static final double CLICK_SHARE = 0.12;
 
-    private Traffic() {}
+    /** Stories without their events: only their names and plans are of interest here. */
+    private static final Scenario SCENARIO = new Scenario(
+            Scenario.DEFAULT_SEED,
+            List.of(new QuayBanner(), new FareChip(), new ReturnPrompt(), new CabinUpsell(), new DeckMap()),
+            List.of());
+
+    private static final Story MODEL = new QuayBanner();
+
+    private final List<Compared> experiments;
+
+    private Traffic(List<Compared> experiments) {
+        this.experiments = experiments;
+    }
+
+    /** What is compared: the name of an experiment and its variants. */
+    private record Compared(String experiment, List<String> variants) {}
+
+    /** The traffic of the five stories. */
+    static Traffic ofStories() {
+        return new Traffic(SCENARIO.stories().stream()
+                .map(story -> new Compared(story.experiment(), story.variants()))
+                .toList());
+    }
+
+    /** The same number of events of the same units, spread over any number of experiments. */
+    static Traffic over(int experiments) {
+        return new Traffic(IntStream.range(0, experiments)
+                .mapToObj(number -> new Compared("quay-" + number, MODEL.variants()))
+                .toList());
+    }
+
+    /** Names of the experiments. */
+    List<String> experiments() {
+        return experiments.stream().map(Compared::experiment).toList();
+    }
+
+    /** Writes a plan for every experiment into a directory, which is made if need be. */
+    void writePlans(Path directory) throws IOException {
+        SCENARIO.writePlans(directory);
+        Set<String> stories = SCENARIO.stories().stream().map(Story::experiment).collect(Collectors.toSet());
+        Path model = directory.resolve(MODEL.experiment() + ".yaml");
+        String text = Files.readString(model);
+        for (Compared each : experiments) {
+            if (!stories.remove(each.experiment())) {
+                Files.writeString(
+                        directory.resolve(each.experiment() + ".yaml"),
+                        text.replace(
+                                "experiment: " + MODEL.experiment() + "\n", "experiment: " + each.experiment() + "\n"));
+            }
+        }
+        for (String unused : stories) {
+            Files.delete(directory.resolve(unused + ".yaml"));
+        }
+    }
 
     /**
      * An event as it is sent.
@@ -47,19 +100,18 @@ final class Traffic {
     record Sent(byte[] key, byte[] value, long atMillis) {}
 
     /** The event of a number, 0 or more. */
-    static Sent event(long number) {
+    Sent event(long number) {
         if (number % DUPLICATE_EVERY == DUPLICATE_EVERY - 1) {
             return original(number - 1 - Long.remainderUnsigned(mix(number), DUPLICATE_EVERY - 1));
         }
         return original(number);
     }
 
-    private static Sent original(long number) {
+    private Sent original(long number) {
         long chance = mix(number);
         long unit = (number + Long.remainderUnsigned(chance, VISIT_EVENTS)) / EVENTS_PER_UNIT;
         long fate = mix(-unit - 1);
-        Story story = SCENARIO.stories()
-                .get((int) Long.remainderUnsigned(fate, SCENARIO.stories().size()));
+        Compared story = experiments.get((int) Long.remainderUnsigned(fate, experiments.size()));
         int variant = (int) Long.remainderUnsigned(fate >>> 8, story.variants().size());
         boolean click = (chance >>> 40) * 0x1p-24 < CLICK_SHARE;
         long at = START + number * MILLIS_PER_EVENT + (chance >>> 20) % DISORDER_MILLIS;

@@ -48,6 +48,25 @@ public final class MonitorApi {
         return get(base.resolve("api/experiments")).isPresent();
     }
 
+    /** Whether the monitor says that all its parts work. */
+    public boolean isReady() {
+        return get(base.resolve("health/ready")).isPresent();
+    }
+
+    /** The sum of all series of a metric; 0 when there are none or the monitor does not answer. */
+    public double metric(String name) {
+        return get(metrics()).map(text -> sum(text, name)).orElse(0.0);
+    }
+
+    /** The same, read from a text in the exposition format of Prometheus; labels may be given behind the name. */
+    static double sum(String exposition, String name) {
+        return exposition
+                .lines()
+                .filter(line -> line.startsWith(name + " ") || line.startsWith(name + "{"))
+                .mapToDouble(line -> Double.parseDouble(line.substring(line.lastIndexOf(' ') + 1)))
+                .sum();
+    }
+
     /** Where the experiments stand, by name; empty while the monitor does not answer, which is normal while it starts. */
     public Map<String, Standing> standings() {
         Map<String, Standing> standings = new LinkedHashMap<>();

@@ -19,6 +19,7 @@ public final class ChildProcess implements AutoCloseable {
     private static final long KILLED_SECONDS = 5;
     private static final long POLL_MILLIS = 50;
     private static final int TAIL_LINES = 25;
+    private static final double NANOS_PER_SECOND = 1e9;
 
     private final String name;
     private final Process process;
@@ -176,6 +177,11 @@ public final class ChildProcess implements AutoCloseable {
                 .onExit()
                 .completeOnTimeout(process, KILLED_SECONDS, TimeUnit.SECONDS)
                 .join();
+    }
+
+    /** CPU time the process has used so far, user and system, in seconds; 0 where the system does not tell. */
+    public double cpuSeconds() {
+        return process.info().totalCpuDuration().orElse(Duration.ZERO).toNanos() / NANOS_PER_SECOND;
     }
 
     /** The last lines the process wrote, under a heading; for messages. */

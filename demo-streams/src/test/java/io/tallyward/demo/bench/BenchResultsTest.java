@@ -20,6 +20,7 @@ class BenchResultsTest {
             results.add(BenchCase.RAW_POLL, new Measurement(2_000_000, slowness, 4));
             results.add(BenchCase.RAW_PARSE, new Measurement(2_000_000, 2.0 * slowness, 4));
             results.add(BenchCase.COUNT_UNIT, new Measurement(2_000_000, 3.0 * slowness, 8));
+            results.add(BenchCase.COUNT_VIEW, new Measurement(2_000_000, 4.0 * slowness, 8));
             results.add(BenchCase.STREAMS_DSL, new Measurement(2_000_000, 20.0 * slowness, 40));
         }
         return results;
@@ -30,7 +31,7 @@ class BenchResultsTest {
         JsonNode all = new ObjectMapper().readTree(results().json());
         List<String> names = new ArrayList<>();
         all.get("cases").forEach(each -> names.add(each.get("name").asText()));
-        assertEquals(List.of("raw-poll", "raw-parse", "count-unit", "streams-dsl"), names);
+        assertEquals(List.of("raw-poll", "raw-parse", "count-unit", "count-view", "streams-dsl"), names);
         JsonNode count = all.get("cases").get(2);
         assertEquals(3.0, count.get("cpuSecondsPerMillion").asDouble());
         assertEquals(3.0, count.get("ratioToRawPoll").asDouble());
@@ -60,6 +61,6 @@ class BenchResultsTest {
         Measurement said = new Measurement(20_000_000, 12.5, 31.25);
         assertEquals(said, Measurement.in("WARN something\n" + said.line() + "\n"));
         assertThrows(IllegalStateException.class, () -> Measurement.in("WARN something\n"));
-        assertTrue(results().table().get(4).startsWith("count-unit"), results().table()::toString);
+        assertTrue(results().lines().get(4).startsWith("count-unit"), results().lines()::toString);
     }
 }

@@ -77,6 +77,7 @@ final class ClientSettings {
         fixed.put("client.id", clientId(group, worker));
         fixed.putAll(group.protocol().settings());
         fixed.put("auto.offset.reset", "none");
+        group.member().ifPresent(member -> fixed.put("group.instance.id", member + "-" + worker));
         Map<String, Object> settings = layered(group.clientProperties(), proposed, fixed);
         settings.keySet().removeAll(group.protocol().refused());
         return settings;
@@ -134,8 +135,9 @@ final class ClientSettings {
         return group.id() + "-" + group.instance() + "-" + worker;
     }
 
+    /** A quarter of the commit interval: an event then shows within one and a quarter of it and the commit itself. */
     private static long fetchWaitMillis(Duration commitInterval) {
-        return Math.max(10, Math.min(LONGEST_FETCH_WAIT_MILLIS, commitInterval.toMillis() / 2));
+        return Math.max(10, Math.min(LONGEST_FETCH_WAIT_MILLIS, commitInterval.toMillis() / 4));
     }
 
     private static Map<String, Object> layered(

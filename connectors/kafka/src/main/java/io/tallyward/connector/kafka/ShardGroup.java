@@ -5,6 +5,7 @@ import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.Objects;
+import java.util.Optional;
 import java.util.UUID;
 import java.util.function.IntFunction;
 
@@ -24,6 +25,9 @@ import java.util.function.IntFunction;
  * @param commitInterval how often effects become durable, 10 ms to 1 min
  * @param workers how many threads share the partitions, 1 to 64
  * @param protocol how the members agree on who reads what
+ * @param member a name that this instance keeps when it is started again; it then takes its partitions back at once, and
+ *     whoever still runs under that name is shut out. Empty for an instance that the group has never seen before. Only
+ *     with the classic protocol.
  * @param clientProperties properties of the Kafka clients; {@code bootstrap.servers} at least. Those on which exactness
  *     rests are set by the runner and cannot be changed here.
  */
@@ -39,6 +43,7 @@ public record ShardGroup(
         Duration commitInterval,
         int workers,
         GroupProtocol protocol,
+        Optional<String> member,
         Map<String, String> clientProperties) {
 
     static final Duration SHORTEST_INTERVAL = Duration.ofMillis(10);
@@ -56,6 +61,7 @@ public record ShardGroup(
         Objects.requireNonNull(start, "start");
         Objects.requireNonNull(commitInterval, "commitInterval");
         Objects.requireNonNull(protocol, "protocol");
+        Objects.requireNonNull(member, "member");
         clientProperties = Map.copyOf(clientProperties);
         if (inputTopics.isEmpty() || inputTopics.stream().distinct().count() != inputTopics.size()) {
             throw new IllegalArgumentException("inputTopics: " + inputTopics + " (expected: at least one, each once)");
@@ -101,6 +107,7 @@ public record ShardGroup(
         private Duration commitInterval = Duration.ofSeconds(1);
         private int workers = 1;
         private GroupProtocol protocol = GroupProtocol.CLASSIC;
+        private Optional<String> member = Optional.empty();
 
         private Builder(String id) {
             this.id = id;
@@ -152,6 +159,12 @@ public record ShardGroup(
             return this;
         }
 
+        /** A name that is kept across restarts; empty for none. */
+        public Builder member(Optional<String> name) {
+            this.member = name;
+            return this;
+        }
+
         public Builder protocol(GroupProtocol groupProtocol) {
             this.protocol = groupProtocol;
             return this;
@@ -180,6 +193,7 @@ public record ShardGroup(
                     commitInterval,
                     workers,
                     protocol,
+                    member,
                     clientProperties);
         }
     }

@@ -17,6 +17,7 @@ import org.apache.kafka.clients.consumer.OffsetAndMetadata;
 import org.apache.kafka.clients.consumer.OffsetOutOfRangeException;
 import org.apache.kafka.common.KafkaException;
 import org.apache.kafka.common.TopicPartition;
+import org.apache.kafka.common.errors.FencedInstanceIdException;
 import org.apache.kafka.common.errors.WakeupException;
 import org.slf4j.Logger;
 import org.slf4j.LoggerFactory;
@@ -31,7 +32,10 @@ final class ShardSession {
     private static final Logger LOG = LoggerFactory.getLogger(ShardSession.class);
 
     private static final Duration POLL = Duration.ofMillis(100);
-    private static final Duration CLOSE_PATIENCE = Duration.ofSeconds(2);
+
+    /** Whoever stops in good order leaves the group, so that others go on at once, also if its name is kept. */
+    private static final CloseOptions LEAVING = CloseOptions.timeout(Duration.ofSeconds(2))
+            .withGroupMembershipOperation(CloseOptions.GroupMembershipOperation.LEAVE_GROUP);
 
     /** How often to see whether topics are still what they were, and whether a transaction hangs. */
     static final Duration UPKEEP = Duration.ofSeconds(10);
@@ -146,10 +150,15 @@ final class ShardSession {
     private ConsumerRecords<byte[], byte[]> poll() {
         ConsumerRecords<byte[], byte[]> records;
         try {
-            records = consumer.poll(restorer.next(assigned.waiting()).isPresent() ? Duration.ZERO : POLL);
+            records = consumer.poll(restorer.next(assigned.waiting()).isPresent() ? Duration.ZERO : untilNextCycle());
         } catch (OffsetOutOfRangeException deleted) {
             skipDeleted(deleted);
             records = ConsumerRecords.empty();
+        } catch (FencedInstanceIdException taken) {
+            throw new ShardFailure(
+                    "another instance has started as " + group.member().orElse("?") + " in group " + group.id()
+                            + ": this one stops; give every instance that runs a kafka.instance of its own",
+                    taken);
         } catch (WakeupException stop) {
             throw stop;
         } catch (RuntimeException failure) {
@@ -159,6 +168,12 @@ final class ShardSession {
             assigned.throwCallbackFailure();
         }
         return records;
+    }
+
+    /** A commit is not put off by waiting for records, which matters where the interval is short. */
+    private Duration untilNextCycle() {
+        long left = lastCycleMillis + group.commitInterval().toMillis() - clock.millis();
+        return Duration.ofMillis(Math.max(1, Math.min(POLL.toMillis(), left)));
     }
 
     private void skipDeleted(OffsetOutOfRangeException deleted) {
@@ -344,7 +359,7 @@ final class ShardSession {
             restorer.forgetAll();
         } finally {
             restorer.pause();
-            closeQuietly(() -> consumer.close(CloseOptions.timeout(CLOSE_PATIENCE)));
+            closeQuietly(() -> consumer.close(LEAVING));
             closeQuietly(transactions::close);
             closeQuietly(cluster::close);
             board.hosting(List.of());

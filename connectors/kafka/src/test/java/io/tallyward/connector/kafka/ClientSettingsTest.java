@@ -6,6 +6,7 @@ import static org.junit.jupiter.api.Assertions.assertFalse;
 import java.time.Duration;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import org.junit.jupiter.api.Test;
 
 class ClientSettingsTest {
@@ -27,6 +28,19 @@ class ClientSettingsTest {
         Map<String, Object> output = ClientSettings.output(group, 1, 7);
         assertEquals("counters-blue-1-7", output.get("transactional.id"));
         assertEquals("all", output.get("acks"));
+    }
+
+    @Test
+    void keepsANameForEveryWorkerOnlyIfToldTo() {
+        ShardGroup named = ShardGroup.builder("counters")
+                .bootstrapServers("broker:9092")
+                .inputTopics(List.of("views"))
+                .stateTopic("states")
+                .member(Optional.of("pier"))
+                .shards((partition, partitions) -> new CountingShard("states", "told", partition, line -> {}))
+                .build();
+        assertEquals("pier-1", ClientSettings.input(named, 1).get("group.instance.id"));
+        assertFalse(ClientSettings.input(group(Map.of()), 1).containsKey("group.instance.id"));
     }
 
     @Test

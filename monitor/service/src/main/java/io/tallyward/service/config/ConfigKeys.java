@@ -43,7 +43,11 @@ public final class ConfigKeys {
                 new ScalarType<>("classic or consumer", ConfigKeys::parseProtocol),
                 "classic",
                 "How instances share the partitions: classic, or consumer (KIP-848, brokers from 4.0); the same everywhere.");
-        static final Shape SHAPE = Shape.of(BOOTSTRAP_SERVERS, GROUP_PROTOCOL, PROPERTIES);
+        static final Key<String> INSTANCE = Key.optional(
+                "instance",
+                matching("[A-Za-z0-9._-]{1,200}", "letters, digits, dots, underscores and hyphens"),
+                "Name that this instance alone has and keeps: restarted after a kill, it takes its partitions back at once.");
+        static final Shape SHAPE = Shape.of(BOOTSTRAP_SERVERS, GROUP_PROTOCOL, INSTANCE, PROPERTIES);
     }
 
     static final class Fields {

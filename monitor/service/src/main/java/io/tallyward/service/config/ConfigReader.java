@@ -2,6 +2,7 @@ package io.tallyward.service.config;
 
 import io.tallyward.connector.format.EventField;
 import io.tallyward.connector.format.EventMapping;
+import io.tallyward.connector.kafka.GroupProtocol;
 import io.tallyward.engine.event.EventKind;
 import io.tallyward.service.config.document.Checked;
 import io.tallyward.service.config.document.DocumentReader;
@@ -63,7 +64,7 @@ public final class ConfigReader {
         }
         Values values = ConfigKeys.SHAPE.readRoot(root.get(), problems);
         Path directory = file.toAbsolutePath().normalize().getParent();
-        values.find(ConfigKeys.KAFKA).ifPresent(ConfigReader::checkProperties);
+        values.find(ConfigKeys.KAFKA).ifPresent(ConfigReader::checkKafka);
         values.find(ConfigKeys.INPUT).ifPresent(input -> checkInput(values, input));
         SecretReader secrets = new SecretReader(directory, environment);
         Optional<Secret> unitKey = values.find(ConfigKeys.UNIT_KEY).flatMap(secrets::unitKey);
@@ -83,6 +84,7 @@ public final class ConfigReader {
                 new KafkaConfig(
                         kafka.get(ConfigKeys.Kafka.BOOTSTRAP_SERVERS),
                         kafka.get(ConfigKeys.Kafka.GROUP_PROTOCOL),
+                        kafka.find(ConfigKeys.Kafka.INSTANCE),
                         kafka.find(ConfigKeys.Kafka.PROPERTIES).orElse(Map.of())),
                 input(values.get(ConfigKeys.INPUT)),
                 directory.resolve(values.get(ConfigKeys.PLANS)).normalize(),
@@ -118,13 +120,21 @@ public final class ConfigReader {
         return meanings;
     }
 
-    private static void checkProperties(Values kafka) {
+    private static void checkKafka(Values kafka) {
         kafka.find(ConfigKeys.Kafka.PROPERTIES).stream()
                 .flatMap(properties -> properties.keySet().stream())
                 .filter(RESERVED_PROPERTIES::contains)
                 .sorted()
                 .forEach(name -> kafka.refuse(
                         ConfigKeys.Kafka.PROPERTIES, name, "properties that the service does not set itself"));
+        Optional<String> instance = kafka.find(ConfigKeys.Kafka.INSTANCE);
+        if (instance.isPresent()
+                && kafka.find(ConfigKeys.Kafka.GROUP_PROTOCOL).equals(Optional.of(GroupProtocol.CONSUMER))) {
+            kafka.refuse(
+                    ConfigKeys.Kafka.INSTANCE,
+                    instance.get(),
+                    "none with group-protocol: consumer, whose broker lets nobody take over before a session ends");
+        }
     }
 
     private static void checkInput(Values values, Values input) {

@@ -39,6 +39,7 @@ public final class CountGroup {
         return ShardGroup.builder(names.countGroup())
                 .clientProperties(clientProperties(config))
                 .protocol(config.kafka().groupProtocol())
+                .member(config.kafka().instance())
                 .commitInterval(config.commitInterval())
                 .inputTopics(topics)
                 .stateTopic(names.countState())

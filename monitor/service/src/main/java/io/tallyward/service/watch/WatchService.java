@@ -111,6 +111,7 @@ public final class WatchService implements AutoCloseable {
         return ShardGroup.builder(names.decideGroup())
                 .clientProperties(clientProperties)
                 .protocol(config.kafka().groupProtocol())
+                .member(config.kafka().instance())
                 .commitInterval(config.commitInterval())
                 .inputTopics(List.of(names.tallies()))
                 .missingInput("counting creates it once it has found its own input topics; nothing to do here")

@@ -44,7 +44,8 @@ class ConfigReaderTest {
         ServiceConfig config = read(MINIMAL).orElseThrow();
 
         assertEquals("tallyward", config.name());
-        assertEquals(new KafkaConfig("127.0.0.1:9092", GroupProtocol.CLASSIC, Map.of()), config.kafka());
+        assertEquals(
+                new KafkaConfig("127.0.0.1:9092", GroupProtocol.CLASSIC, Optional.empty(), Map.of()), config.kafka());
         assertEquals(
                 new InputConfig(
                         List.of("northwater-events"),
@@ -69,6 +70,7 @@ class ConfigReaderTest {
                         name: harbour
                         kafka:
                           bootstrap-servers: a.example:9092,b.example:9093
+                          instance: pier-1
                           properties: {security.protocol: SSL, request.timeout.ms: 5000}
                         input:
                           topics: [views, clicks]
@@ -86,6 +88,7 @@ class ConfigReaderTest {
                         unit-key: {environment: UNIT_KEY}
                         """, Map.of("UNIT_KEY", "sixteen bytes ok")).orElseThrow();
 
+        assertEquals(Optional.of("pier-1"), config.kafka().instance());
         assertEquals(
                 Map.of("security.protocol", "SSL", "request.timeout.ms", "5000"),
                 config.kafka().properties());
