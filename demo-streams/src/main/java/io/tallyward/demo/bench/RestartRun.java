@@ -26,7 +26,7 @@ final class RestartRun {
     private static final double LEAST_RESTORE_SECONDS = 0.001;
     private static final String NAME = "restart";
     private static final String TOPIC = NAME + "-events";
-    private static final String RESTORE = "tallyward_restore_duration_seconds{group=\"count\"}";
+    private static final String RESTORE = "tallyward_restore_duration_seconds";
 
     private final Stage stage;
     private final long events;
@@ -127,7 +127,7 @@ final class RestartRun {
         long counting = awaitNews(monitor, sender, killed);
         Map<Integer, JsonNode> partitions = monitor.api().partitions();
         long units = CountedEvents.units(partitions);
-        double restore = monitor.api().metric(RESTORE);
+        double restore = monitor.api().metric(RESTORE, "group=\"count\"");
         return new RestartResults.Row(
                 named,
                 units,

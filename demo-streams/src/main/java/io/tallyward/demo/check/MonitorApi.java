@@ -17,6 +17,7 @@ import java.util.HashMap;
 import java.util.LinkedHashMap;
 import java.util.Map;
 import java.util.Optional;
+import java.util.stream.Collectors;
 
 /** The monitor's public faces: its API and its metrics. */
 public final class MonitorApi {
@@ -58,7 +59,15 @@ public final class MonitorApi {
         return get(metrics()).map(text -> sum(text, name)).orElse(0.0);
     }
 
-    /** The same, read from a text in the exposition format of Prometheus; labels may be given behind the name. */
+    /** The sum of those series of a metric that have a label, as in {@code group="count"}. */
+    public double metric(String name, String label) {
+        return get(metrics())
+                .map(text ->
+                        sum(text.lines().filter(line -> line.contains(label)).collect(Collectors.joining("\n")), name))
+                .orElse(0.0);
+    }
+
+    /** The sum over a text in the exposition format of Prometheus. */
     static double sum(String exposition, String name) {
         return exposition
                 .lines()
