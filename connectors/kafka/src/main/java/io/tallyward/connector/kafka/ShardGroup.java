@@ -22,6 +22,8 @@ import java.util.function.IntFunction;
  *     ones are created
  * @param shards makes the shards
  * @param start where to read from while nothing is committed
+ * @param rereads whether the shards can take their input again without taking it twice; if not, state without committed
+ *     offsets is refused
  * @param commitInterval how often effects become durable, 10 ms to 1 min
  * @param workers how many threads share the partitions, 1 to 64
  * @param protocol how the members agree on who reads what
@@ -40,6 +42,7 @@ public record ShardGroup(
         IntFunction<List<InternalTopic>> internalTopics,
         ShardFactory shards,
         StartPosition start,
+        boolean rereads,
         Duration commitInterval,
         int workers,
         GroupProtocol protocol,
@@ -93,7 +96,7 @@ public record ShardGroup(
         return new Builder(id);
     }
 
-    /** Starts from: an instance name drawn at random, earliest, one second, one worker, the classic protocol, no internal topics. */
+    /** Starts from: an instance name drawn at random, earliest, one second, one worker, the classic protocol, no internal topics, no rereading. */
     public static final class Builder {
         private final String id;
         private final Map<String, String> clientProperties = new HashMap<>();
@@ -104,6 +107,7 @@ public record ShardGroup(
         private IntFunction<List<InternalTopic>> internalTopics = partitions -> List.of();
         private ShardFactory shards;
         private StartPosition start = StartPosition.earliest();
+        private boolean rereads;
         private Duration commitInterval = Duration.ofSeconds(1);
         private int workers = 1;
         private GroupProtocol protocol = GroupProtocol.CLASSIC;
@@ -149,6 +153,12 @@ public record ShardGroup(
             return this;
         }
 
+        /** Says that the shards can take their input again without taking it twice. */
+        public Builder rereads() {
+            this.rereads = true;
+            return this;
+        }
+
         public Builder commitInterval(Duration interval) {
             this.commitInterval = interval;
             return this;
@@ -190,6 +200,7 @@ public record ShardGroup(
                     internalTopics,
                     shards,
                     start,
+                    rereads,
                     commitInterval,
                     workers,
                     protocol,

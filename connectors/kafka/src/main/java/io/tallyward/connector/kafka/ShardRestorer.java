@@ -254,9 +254,12 @@ final class ShardRestorer {
         Set<TopicPartition> unknown = new HashSet<>(inputs);
         unknown.removeAll(committed);
         if (!unknown.isEmpty() && stateRecords > 0) {
+            if (committed.isEmpty() && !group.rereads()) {
+                throw new LostOffsetsException(group, inputs);
+            }
             LOG.warn(
-                    "group {} has state but no committed offsets for {}: the broker has forgotten the offsets of a group"
-                            + " that was stopped for long, or a topic was added; reading there begins at {}",
+                    "group {} has state but no committed offsets for {}: a topic was added, or the broker has forgotten"
+                            + " offsets; reading there begins at {}",
                     group.id(),
                     unknown,
                     group.start());

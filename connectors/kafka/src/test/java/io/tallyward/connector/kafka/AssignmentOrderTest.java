@@ -236,9 +236,19 @@ class AssignmentOrderTest {
     }
 
     @Test
-    void warnsOfStateWithoutOffsets() {
-        ListAppender<ILoggingEvent> heard = listen(ShardRestorer.class);
+    void refusesStateWithoutOffsets() {
         clients.state("states", 0, 0, "quay-banner", "40");
+        scripted.assign(VIEWS_0);
+        LostOffsetsException lost = assertThrows(LostOffsetsException.class, scripted.session::step);
+        assertTrue(lost.getMessage().contains("no committed offsets for [" + VIEWS_0 + "]"), lost.getMessage());
+        assertTrue(lost.getMessage().contains("kafka-consumer-groups.sh --reset-offsets"), lost.getMessage());
+    }
+
+    @Test
+    void warnsOfStateWithoutOffsetsWhereRereadingDoesNoHarm() {
+        ListAppender<ILoggingEvent> heard = listen(ShardRestorer.class);
+        scripted = new ScriptedSession(2, List.of("crossings"), ShardGroup.Builder::rereads);
+        scripted.clients.state("states", 0, 0, "quay-banner", "40");
         scripted.assign(VIEWS_0);
         scripted.session.step();
         assertEquals(1, heard.list.size());

@@ -116,6 +116,7 @@ public final class WatchService implements AutoCloseable {
                 .inputTopics(List.of(names.tallies()))
                 .missingInput("counting creates it once it has found its own input topics; nothing to do here")
                 .stateTopic(names.decideState())
+                .rereads()
                 .internalTopics(partitions -> names.forDeciding())
                 .shards((partition, partitions) -> new DecideHost(decideShard(partition), partition, names, board))
                 .build();
