@@ -108,6 +108,7 @@ class AssignmentOrderTest {
 
     @Test
     void goesOnWhereItStoodWhenTheObstacleIsGone() {
+        clients.committed.put(VIEWS_0, new OffsetAndMetadata(0));
         clients.state("states", 0, 3, "quay-banner", "3");
         clients.stateEnds.put(0, 10L);
         scripted.assign(VIEWS_0);
@@ -360,6 +361,7 @@ class AssignmentOrderTest {
                 heard.list.stream().map(ILoggingEvent::getFormattedMessage).toList());
         clients.stateRecords.clear();
         clients.state("states", 0, 9, "quay-banner", "8");
+        clients.committed.put(VIEWS_0, new OffsetAndMetadata(0));
         scripted.session.forget();
         scripted.session.step();
         scripted.session.step();
