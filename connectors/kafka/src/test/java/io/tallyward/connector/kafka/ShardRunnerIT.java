@@ -12,9 +12,12 @@ import java.util.Map;
 import java.util.Optional;
 import java.util.concurrent.atomic.AtomicInteger;
 import java.util.function.Consumer;
+import org.apache.kafka.clients.consumer.ConsumerGroupMetadata;
+import org.apache.kafka.clients.consumer.OffsetAndMetadata;
 import org.apache.kafka.clients.producer.KafkaProducer;
 import org.apache.kafka.clients.producer.Producer;
 import org.apache.kafka.clients.producer.ProducerRecord;
+import org.apache.kafka.common.TopicPartition;
 import org.apache.kafka.common.errors.TimeoutException;
 import org.apache.kafka.common.serialization.ByteArraySerializer;
 import org.awaitility.Awaitility;
@@ -151,12 +154,16 @@ class ShardRunnerIT {
     }
 
     @Test
+    @SuppressWarnings("removal")
     void waitsForAPredecessorsTransactionBeforeItBelievesTheState() {
         broker.createTopic(bench.states, CountingBench.PARTITIONS, Map.of("cleanup.policy", "compact"));
         bench.produce(20);
         try (Producer<byte[], byte[]> predecessor = transactional(bench.group + "-predecessor")) {
             predecessor.beginTransaction();
             predecessor.send(new ProducerRecord<>(bench.states, 0, bytes("quay-banner"), bytes("1000")));
+            predecessor.sendOffsetsToTransaction(
+                    Map.of(new TopicPartition(bench.input, 0), new OffsetAndMetadata(0)),
+                    new ConsumerGroupMetadata(bench.group));
             predecessor.flush();
             try (ShardRunner runner = bench.run()) {
                 Awaitility.await()
