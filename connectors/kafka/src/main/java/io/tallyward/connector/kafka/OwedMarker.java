@@ -33,7 +33,7 @@ enum OwedMarker {
      * @param numbered whether the brokers number transactions
      */
     static OwedMarker of(OpenTransaction open, Optional<CoordinatedTransaction> coordinator, boolean numbered) {
-        if (coordinator.isEmpty() || !numbered) {
+        if (coordinator.isEmpty()) {
             return UNKNOWN;
         }
         CoordinatedTransaction known = coordinator.get();
@@ -42,8 +42,8 @@ enum OwedMarker {
         }
         return switch (known.state()) {
             case ONGOING, PREPARE_COMMIT, PREPARE_ABORT, PREPARE_EPOCH_FENCE -> NONE;
-            case COMPLETE_COMMIT -> known.epoch() > open.epoch() ? COMMIT : UNKNOWN;
-            case COMPLETE_ABORT -> known.epoch() == open.epoch() + 1 ? ABORT : UNKNOWN;
+            case COMPLETE_COMMIT -> numbered && known.epoch() > open.epoch() ? COMMIT : UNKNOWN;
+            case COMPLETE_ABORT -> numbered && known.epoch() == open.epoch() + 1 ? ABORT : UNKNOWN;
             case EMPTY, UNKNOWN -> UNKNOWN;
         };
     }

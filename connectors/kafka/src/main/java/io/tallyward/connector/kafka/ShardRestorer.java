@@ -254,12 +254,12 @@ final class ShardRestorer {
         Set<TopicPartition> unknown = new HashSet<>(inputs);
         unknown.removeAll(committed);
         if (!unknown.isEmpty() && stateRecords > 0) {
-            if (committed.isEmpty() && !group.rereads()) {
-                throw new LostOffsetsException(group, inputs);
+            if (!group.rereads()) {
+                throw new LostOffsetsException(group, unknown);
             }
             LOG.warn(
-                    "group {} has state but no committed offsets for {}: a topic was added, or the broker has forgotten"
-                            + " offsets; reading there begins at {}",
+                    "group {} has state but no committed offsets for {}, which the broker has forgotten; reading there"
+                            + " begins at {}",
                     group.id(),
                     unknown,
                     group.start());

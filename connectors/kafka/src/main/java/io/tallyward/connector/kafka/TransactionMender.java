@@ -15,6 +15,7 @@ import org.apache.kafka.clients.producer.Producer;
 import org.apache.kafka.common.KafkaException;
 import org.apache.kafka.common.TopicPartition;
 import org.apache.kafka.common.errors.InterruptException;
+import org.apache.kafka.common.errors.TimeoutException;
 import org.apache.kafka.common.errors.WakeupException;
 import org.apache.kafka.common.utils.Utils;
 import org.slf4j.Logger;
@@ -38,6 +39,9 @@ import org.slf4j.LoggerFactory;
  * group no longer knows is mended by the worker that was given partition 0, so that no two do the same.
  */
 final class TransactionMender {
+
+    /** Each waits for as long as the producer's max.block.ms. */
+    private static final int MOST_COMMIT_ATTEMPTS = 6;
 
     private static final Logger LOG = LoggerFactory.getLogger(TransactionMender.class);
 
@@ -188,15 +192,16 @@ final class TransactionMender {
         try {
             producer.initTransactions();
             producer.beginTransaction();
+            // What can be refused comes first: an abort of records would reach the partitions that are owed a commit.
+            if (open.stream().anyMatch(each -> each.partition().topic().equals(OFFSETS_TOPIC))) {
+                producer.sendOffsetsToTransaction(nothing, consumer.groupMetadata());
+            }
             for (OpenTransaction transaction : open) {
                 if (!transaction.partition().topic().equals(OFFSETS_TOPIC)) {
                     producer.send(Filler.to(transaction.partition()));
                 }
             }
-            if (open.stream().anyMatch(each -> each.partition().topic().equals(OFFSETS_TOPIC))) {
-                producer.sendOffsetsToTransaction(nothing, consumer.groupMetadata());
-            }
-            producer.commitTransaction();
+            commitUntilAnswered(producer);
         } catch (KafkaException failure) {
             LOG.warn(
                     "{}: a transaction that its coordinator has committed is open in {}, and committing it there failed: {}",
@@ -206,6 +211,20 @@ final class TransactionMender {
             throw failure;
         } finally {
             producer.close(Duration.ZERO);
+        }
+    }
+
+    /** A commit in doubt may be asked for again, and must be: giving up would let the coordinator abort it. */
+    private static void commitUntilAnswered(Producer<byte[], byte[]> producer) {
+        for (int attempt = 1; ; attempt++) {
+            try {
+                producer.commitTransaction();
+                return;
+            } catch (TimeoutException inDoubt) {
+                if (attempt == MOST_COMMIT_ATTEMPTS) {
+                    throw inDoubt;
+                }
+            }
         }
     }
 

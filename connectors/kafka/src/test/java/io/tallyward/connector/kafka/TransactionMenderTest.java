@@ -48,8 +48,8 @@ class TransactionMenderTest {
                         "prove membership",
                         "put the producer aside",
                         "take over counters-red-0-3",
-                        "fill states-1",
                         "fill offsets",
+                        "fill states-1",
                         "commit counters-red-0-3",
                         "forget offsets of [states-0]"),
                 journal);

@@ -30,7 +30,7 @@ interface CountLedger {
      * Seals a window, in an order that the events before determine.
      *
      * @param outcomes receives the outcomes that become final
-     * @param cells receives the counts
+     * @param counts receives the counts
      * @return the units it was about, packed, each chunk small enough for one record
      */
     List<byte[]> seal(long windowStart, OutcomeCounts.Builder outcomes, WindowCounts counts);

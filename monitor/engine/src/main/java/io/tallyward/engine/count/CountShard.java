@@ -189,7 +189,6 @@ public final class CountShard {
         for (ExperimentCounter counter : counters.values()) {
             seal(counter, watermark, cause);
             if (counter.isToBeArchived(watermark)) {
-                sealedState.addAll(state.forgetSealed(counter));
                 sealedState.addAll(CountState.forgetSegments(counter));
                 counter.archive();
             }
@@ -220,6 +219,7 @@ public final class CountShard {
         for (ExperimentCounter counter : counters.values()) {
             changes.addAll(CountState.segments(counter));
             changes.addAll(state.open(counter));
+            changes.addAll(state.forgetSealed(counter));
             if (counter.takeChanged()) {
                 changes.add(CountState.experiment(counter));
             }

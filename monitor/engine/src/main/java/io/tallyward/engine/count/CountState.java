@@ -41,6 +41,9 @@ final class CountState {
     /** A packed entry is closed once it is this large; well below a broker's usual record limit of 1 MB. */
     static final int PACKED_BYTES = 400_000;
 
+    /** Windows of an archived experiment that are removed in one commit. */
+    static final int FORGOTTEN_AT_ONCE = 10_000;
+
     private final int partitions;
     private final long keyFingerprint;
     private final Map<String, TreeMap<Long, Integer>> openEntries = new TreeMap<>();
@@ -148,12 +151,19 @@ final class CountState {
                         counter.plan().count().window().toMillis()));
     }
 
-    /** Removes the sealed units of an experiment that is over. */
+    /**
+     * Removes sealed units of an experiment that is archived, a bounded number of windows at a time: a run of a year has too
+     * many for one transaction.
+     */
     List<StateChange> forgetSealed(ExperimentCounter counter) {
         List<StateChange> changes = new ArrayList<>();
-        entriesOf(counter)
-                .takeAll((start, sequence) ->
-                        changes.add(new StateChange(key(SEALED, counter.plan().experiment(), start, sequence), null)));
+        if (counter.isArchived()) {
+            entriesOf(counter)
+                    .take(
+                            FORGOTTEN_AT_ONCE,
+                            (start, sequence) -> changes.add(
+                                    new StateChange(key(SEALED, counter.plan().experiment(), start, sequence), null)));
+        }
         return changes;
     }
 
@@ -280,7 +290,11 @@ final class CountState {
     }
 
     private void restoreSealed(long window, int sequence, byte[] value, ExperimentCounter counter) throws IOException {
-        if (counter == null || value == null) {
+        if (counter == null) {
+            return;
+        }
+        if (value == null) {
+            entriesOf(counter).remove(window);
             return;
         }
         entriesOf(counter).add(window, sequence);

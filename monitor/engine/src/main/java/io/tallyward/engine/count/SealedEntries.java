@@ -23,7 +23,11 @@ final class SealedEntries {
         void take(long windowStart, int sequence);
     }
 
+    /** Takes note of an entry; one from before the run was written under another plan, which others refuse. */
     void add(long windowStart, int sequence) {
+        if (windowStart < runFrom) {
+            return;
+        }
         int window = (int) ((windowStart - runFrom) / windowMillis);
         windows.set(window);
         if (sequence > 0) {
@@ -31,14 +35,26 @@ final class SealedEntries {
         }
     }
 
-    /** Gives every entry, in order, and forgets them. */
-    void takeAll(Entry taker) {
-        windows.stream().forEach(window -> {
+    /** Forgets the entries of a window: they were removed. */
+    void remove(long windowStart) {
+        if (windowStart >= runFrom) {
+            int window = (int) ((windowStart - runFrom) / windowMillis);
+            windows.clear(window);
+            several.remove(window);
+        }
+    }
+
+    /** Gives the entries of some windows, in order, and forgets them. */
+    void take(int mostWindows, Entry taker) {
+        int window = windows.nextSetBit(0);
+        for (int taken = 0; taken < mostWindows && window >= 0; taken++) {
+            long start = runFrom + window * windowMillis;
             for (int sequence = 0; sequence <= several.getOrDefault(window, 0); sequence++) {
-                taker.take(runFrom + window * windowMillis, sequence);
+                taker.take(start, sequence);
             }
-        });
-        windows.clear();
-        several.clear();
+            windows.clear(window);
+            several.remove(window);
+            window = windows.nextSetBit(window);
+        }
     }
 }

@@ -169,7 +169,7 @@ final class SegmentTable {
 
     /** Takes a batch of what is new as entries write it down. */
     interface Batches {
-        /** @param sequence numbers the batch; a batch of the same number replaces an earlier one */
+        /** @param sequence numbers the batch: 0, which replaces what it was before, or the first code in it */
         void take(int sequence, byte[] packed);
     }
 
@@ -240,6 +240,9 @@ final class SegmentTable {
                 }
             }
             writtenValues = toldValues();
+            return;
+        }
+        if (sequence <= tuples.size()) {
             return;
         }
         if (sequence != tuples.size() + 1) {

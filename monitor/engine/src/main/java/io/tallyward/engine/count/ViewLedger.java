@@ -7,7 +7,9 @@ import java.io.DataInput;
 import java.io.IOException;
 import java.util.List;
 import java.util.Optional;
+import java.util.Set;
 import java.util.TreeMap;
+import java.util.TreeSet;
 
 /**
  * The units of an experiment that counts by view. Every distinct view under the variant of its unit is a trial, told in its
@@ -72,7 +74,9 @@ final class ViewLedger implements CountLedger {
             if (late) {
                 unit.viewAgain(copy, unit.variant(copy), unit.time(copy), unit.segments(copy));
             } else {
-                dueAt(unit, event.atMillis(), high);
+                if (event.atMillis() < unit.time(copy)) {
+                    dueAt(unit, event.atMillis(), high);
+                }
                 unit.viewAgain(copy, event.variant(), event.atMillis(), segments(event));
             }
             return null;
@@ -242,11 +246,19 @@ final class ViewLedger implements CountLedger {
         long high = in.readLong();
         long low = in.readLong();
         restoring.read(in);
-        replace(high, low);
+        Set<Long> windows = new TreeSet<>();
         for (int i = 0; i < restoring.size(); i++) {
-            due.computeIfAbsent(windowOf(restoring.time(i)), start -> new PrefixList())
-                    .add(high);
+            windows.add(windowOf(restoring.time(i)));
         }
+        if (units.find(high, low)) {
+            ViewedUnit known = units.load();
+            for (int i = 0; i < known.size(); i++) {
+                windows.remove(windowOf(known.time(i)));
+            }
+        }
+        windows.forEach(
+                window -> due.computeIfAbsent(window, start -> new PrefixList()).add(high));
+        replace(high, low);
     }
 
     /** What was open about the unit is not, unless it is restored after this. */

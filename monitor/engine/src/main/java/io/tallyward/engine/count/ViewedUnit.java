@@ -55,17 +55,17 @@ final class ViewedUnit {
     }
 
     /** Adds an event as it is. */
-    void add(boolean click, int ofVariant, long at, long key, long name, int tie, int times, int segmentCode) {
-        if (size == this.times.length) {
+    void add(boolean click, int ofVariant, long at, long key, long name, int tie, int copiesKept, int segmentCode) {
+        if (size == times.length) {
             grow();
         }
         clicks[size] = click;
         variants[size] = ofVariant;
-        this.times[size] = at;
+        times[size] = at;
         keys[size] = key;
         names[size] = name;
         ties[size] = tie;
-        copies[size] = times;
+        copies[size] = copiesKept;
         segments[size] = segmentCode;
         size++;
     }
@@ -297,8 +297,8 @@ final class ViewedUnit {
             long key = in.readLong();
             long name = in.readLong();
             int tie = in.readInt();
-            int times = VariableLength.read(in);
-            add(click, ofVariant, at, key, name, tie, times, VariableLength.read(in));
+            int copiesKept = VariableLength.read(in);
+            add(click, ofVariant, at, key, name, tie, copiesKept, VariableLength.read(in));
         }
     }
 }

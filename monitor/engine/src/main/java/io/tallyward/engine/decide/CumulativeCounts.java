@@ -19,7 +19,7 @@ import java.util.function.ToLongFunction;
 
 /**
  * Trials and successes of the complete windows, by allocation epoch and variant; with the sums over units where a plan counts
- * views. Sums beyond 2^63 are refused by the cells that would hold them.
+ * views.
  */
 final class CumulativeCounts {
 

@@ -118,13 +118,6 @@ final class ExperimentDecider {
         return mismatch ? splitTrace.origin(splitWatch).orElse(null) : null;
     }
 
-    /** The complaint, and where it comes from as far as that is known. */
-    private TrustWatch.Judgement judgement(SplitOrigin origin) {
-        return origin == null
-                ? judgement
-                : new TrustWatch.Judgement(judgement.trust(), judgement.reason() + "; " + SplitWords.of(origin));
-    }
-
     private void decide() {
         TrustWatch.Judgement before = judgement;
         boolean concluded = tests.stream().allMatch(test -> test.verdict().settled());
@@ -268,7 +261,7 @@ final class ExperimentDecider {
                 idleSealed,
                 splitWatch.split(counts, origin),
                 judgement.trust(),
-                judgement(origin).reason(),
+                judgement.with(origin).reason(),
                 verdict(),
                 looks,
                 EngineVersion.CURRENT,
@@ -297,25 +290,8 @@ final class ExperimentDecider {
         }
     }
 
-    /**
-     * The verdict on the experiment as a whole, a summary of its comparisons: a benefit if any challenger has one, else
-     * harm if any does harm; once all are settled otherwise, futility if all are futile, else exhausted.
-     */
     private Verdict verdict() {
-        List<Verdict> verdicts = tests.stream().map(ChallengerTest::verdict).toList();
-        if (verdicts.contains(Verdict.STOP_BENEFIT)) {
-            return Verdict.STOP_BENEFIT;
-        }
-        if (verdicts.contains(Verdict.STOP_HARM)) {
-            return Verdict.STOP_HARM;
-        }
-        if (verdicts.stream().allMatch(Verdict.STOP_FUTILITY::equals)) {
-            return Verdict.STOP_FUTILITY;
-        }
-        if (verdicts.stream().allMatch(Verdict::settled)) {
-            return Verdict.EXHAUSTED;
-        }
-        return verdicts.stream().allMatch(Verdict.WAITING::equals) ? Verdict.WAITING : Verdict.CONTINUE;
+        return OverallVerdict.of(tests.stream().map(ChallengerTest::verdict).toList());
     }
 
     List<DecisionRecord> takeDecisions() {
@@ -358,7 +334,7 @@ final class ExperimentDecider {
                 counts.list(),
                 outcomes,
                 splitWatch.split(counts, origin),
-                judgement(origin),
+                judgement.with(origin),
                 verdict(),
                 tests,
                 new ViewWriter.Looks(looksTaken, looksDelayed, delayReason),

@@ -5,6 +5,7 @@ import io.tallyward.engine.count.OutcomeCounts;
 import io.tallyward.engine.count.WindowTally.Cell;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.TrustLimits;
+import io.tallyward.engine.record.SplitOrigin;
 import io.tallyward.engine.record.Trust;
 import java.io.DataInput;
 import java.io.DataOutput;
@@ -54,6 +55,11 @@ final class TrustWatch {
     record Judgement(Trust trust, String reason) {
 
         static final Judgement SOUND = new Judgement(Trust.SOUND, "");
+
+        /** The complaint, and where it comes from as far as that is known. */
+        Judgement with(SplitOrigin originOrNull) {
+            return originOrNull == null ? this : new Judgement(trust, reason + "; " + SplitWords.of(originOrNull));
+        }
     }
 
     /** No longer expects trials of a variant: whoever follows the verdict on it stops showing it. */

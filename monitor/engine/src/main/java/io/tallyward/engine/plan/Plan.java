@@ -1,5 +1,6 @@
 package io.tallyward.engine.plan;
 
+import java.time.Duration;
 import java.util.List;
 import java.util.Objects;
 import java.util.Optional;
@@ -34,6 +35,12 @@ public record Plan(
         Run run,
         List<AllocationEpoch> epochs) {
 
+    /** The counts keep a variant in four bits. */
+    private static final int MOST_VARIANTS = 15;
+
+    /** They keep a moment of the run in 35 bits of milliseconds, a little more than a year. */
+    private static final Duration LONGEST_RUN = Duration.ofDays(397);
+
     public Plan {
         Objects.requireNonNull(experiment, "experiment");
         Objects.requireNonNull(question, "question");
@@ -49,6 +56,14 @@ public record Plan(
         epochs = List.copyOf(epochs);
         if (variants.stream().filter(Variant::control).count() != 1) {
             throw new IllegalArgumentException("variants: " + variants + " (expected: exactly one control)");
+        }
+        if (!(variants.size() <= MOST_VARIANTS)) {
+            throw new IllegalArgumentException(
+                    "variants: " + variants.size() + " (expected: at most " + MOST_VARIANTS + ")");
+        }
+        if (!(run.atMost().compareTo(LONGEST_RUN) <= 0)) {
+            throw new IllegalArgumentException(
+                    "run.atMost: " + run.atMost() + " (expected: at most " + LONGEST_RUN + ")");
         }
     }
 

@@ -9,6 +9,7 @@ import io.tallyward.engine.plan.Plan;
 import java.nio.charset.StandardCharsets;
 import java.time.Duration;
 import java.util.List;
+import org.junit.jupiter.api.Test;
 import org.junit.jupiter.params.ParameterizedTest;
 import org.junit.jupiter.params.provider.ValueSource;
 
@@ -97,5 +98,27 @@ class CountArchiveTest {
         assertTrue(entries(host) > 0);
         until(host.restart(host.log().size()), ARCHIVED);
         assertEquals(0, entries(host));
+    }
+
+    /** A long run of short windows has more entries than one transaction should carry. */
+    @Test
+    void removesABoundedNumberOfWindowsWithOneCommitAndGoesOnAfterARestart() {
+        int windows = CountState.FORGOTTEN_AT_ONCE + 5;
+        Plan ended = Plans.plan(ENDED)
+                .counting(Duration.ofMinutes(1), Duration.ofMinutes(1), Duration.ofMinutes(1))
+                .atMost(Duration.ofMinutes(windows))
+                .build();
+        CountHost host = CountHost.of(
+                ended, Plans.plan(GOING_ON).atMost(Duration.ofDays(30)).build());
+        for (int i = 0; i < windows; i++) {
+            host.feed(Events.view(ENDED, "wide", "unit-" + i, "v" + i, i));
+        }
+        host.commit();
+        until(host, windows + 2 + 24 * 60);
+        assertEquals(5, entries(host));
+        host.restart(host.log().size()).commit();
+        assertEquals(0, entries(host));
+        assertEquals(0, units(host));
+        assertEquals(windows, host.outcomes(ENDED).get(Outcome.TRIAL));
     }
 }

@@ -41,6 +41,13 @@ final class PlanSection {
                         + Figures.percent(test.baseline()) + "; "
                         + (standing.higherIsBetter() ? "higher" : "lower") + " is better");
         course(html, plan);
+        origin(html, standing);
+        html.close().close();
+    }
+
+    /** What a mismatch is traced by, and which plan and record this is. */
+    private static void origin(Markup html, Standing standing) {
+        Plan plan = standing.view().plan();
         if (!plan.splitCheck().segments().isEmpty()) {
             OverviewPage.fact(
                     html,
@@ -50,7 +57,6 @@ final class PlanSection {
         }
         OverviewPage.fact(html, "Plan digest", standing.view().planDigest());
         OverviewPage.fact(html, "Newest record", standing.view().lastRecord());
-        html.close().close();
     }
 
     /** When it is looked at, how long it runs and how events are counted. */
