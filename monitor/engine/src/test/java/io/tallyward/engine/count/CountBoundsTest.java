@@ -11,6 +11,8 @@ import io.tallyward.engine.shard.StateChange;
 import java.time.Duration;
 import java.util.List;
 import org.junit.jupiter.api.Test;
+import org.junit.jupiter.params.ParameterizedTest;
+import org.junit.jupiter.params.provider.ValueSource;
 
 /** What keeps a shard small and its state consistent whatever the traffic. */
 class CountBoundsTest {
@@ -75,5 +77,27 @@ class CountBoundsTest {
                         + " their counts can no longer be told apart; run the experiments anew under another name in the"
                         + " configuration",
                 refused.getMessage());
+    }
+
+    @ParameterizedTest
+    @ValueSource(booleans = {false, true})
+    void forgetsAMillionOrphansOnceTheirWindowIsSealed(boolean byView) {
+        Plans plan = Plans.plan("quay-banner");
+        CountHost host = CountHost.of(byView ? plan.byView().build() : plan.build());
+        int orphans = 1_000_000;
+        for (int i = 0; i < orphans; i++) {
+            host.feed(Events.click("quay-banner", "wide", "nobody-" + i, "c" + i, 1));
+            if (i % 100_000 == 0) {
+                host.commit();
+            }
+        }
+        host.feed(Events.view("quay-banner", "wide", "ada", "v", 45)).commit();
+        assertEquals(orphans, host.outcomes("quay-banner").get(Outcome.ORPHAN));
+        assertEquals(1, host.openEvents("quay-banner"));
+        assertEquals(1, host.shard().view().experiments().get("quay-banner").units());
+        long live = host.log().live().stream()
+                .filter(change -> change.key()[0] == 'o')
+                .count();
+        assertEquals(1, live, "open entries left in a log that is compacted");
     }
 }
