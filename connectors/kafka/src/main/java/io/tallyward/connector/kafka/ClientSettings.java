@@ -135,9 +135,9 @@ final class ClientSettings {
         return group.id() + "-" + group.instance() + "-" + worker;
     }
 
-    /** A quarter of the commit interval: an event then shows within one and a quarter of it and the commit itself. */
+    /** A tenth of the commit interval: an event then shows within one and a tenth of it and the commit itself. */
     private static long fetchWaitMillis(Duration commitInterval) {
-        return Math.max(10, Math.min(LONGEST_FETCH_WAIT_MILLIS, commitInterval.toMillis() / 4));
+        return Math.max(10, Math.min(LONGEST_FETCH_WAIT_MILLIS, commitInterval.toMillis() / 10));
     }
 
     private static Map<String, Object> layered(
