@@ -19,7 +19,7 @@ import java.util.TreeSet;
 final class ViewLedger implements CountLedger {
 
     private final long attributionMillis;
-    private final long windowMillis;
+    private final WindowGrid windows;
     private final ViewSealing sealing;
     private final Optional<SegmentTable> segments;
     private final UnitHasher hasher;
@@ -38,7 +38,7 @@ final class ViewLedger implements CountLedger {
     ViewLedger(Plan plan, Optional<SegmentTable> segments, UnitHasher hasher) {
         this.segments = segments;
         attributionMillis = plan.count().attribution().toMillis();
-        windowMillis = plan.count().window().toMillis();
+        windows = new WindowGrid(plan.count().window().toMillis());
         sealing = new ViewSealing(plan.count());
         units = new ViewedUnits(plan.run().from().toEpochMilli());
         this.hasher = hasher;
@@ -157,7 +157,7 @@ final class ViewLedger implements CountLedger {
     }
 
     private long windowOf(long atMillis) {
-        return Math.floorDiv(atMillis, windowMillis) * windowMillis;
+        return windows.of(atMillis);
     }
 
     @Override
@@ -246,17 +246,17 @@ final class ViewLedger implements CountLedger {
         long high = in.readLong();
         long low = in.readLong();
         restoring.read(in);
-        Set<Long> windows = new TreeSet<>();
+        Set<Long> falling = new TreeSet<>();
         for (int i = 0; i < restoring.size(); i++) {
-            windows.add(windowOf(restoring.time(i)));
+            falling.add(windowOf(restoring.time(i)));
         }
         if (units.find(high, low)) {
             ViewedUnit known = units.load();
             for (int i = 0; i < known.size(); i++) {
-                windows.remove(windowOf(known.time(i)));
+                falling.remove(windowOf(known.time(i)));
             }
         }
-        windows.forEach(
+        falling.forEach(
                 window -> due.computeIfAbsent(window, start -> new PrefixList()).add(high));
         replace(high, low);
     }
