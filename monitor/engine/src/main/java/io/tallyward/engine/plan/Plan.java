@@ -1,7 +1,10 @@
 package io.tallyward.engine.plan;
 
 import java.time.Duration;
+import java.time.Instant;
+import java.util.ArrayList;
 import java.util.List;
+import java.util.Map;
 import java.util.Objects;
 import java.util.Optional;
 
@@ -18,8 +21,11 @@ import java.util.Optional;
  * @param futility when to give up for lack of promise, if at all
  * @param splitCheck the watch over the traffic split
  * @param trust limits beyond which the data are not trusted
- * @param run when the experiment runs
- * @param epochs planned changes of the split after the start, ascending by time; empty when the split never changes
+ * @param run when the experiment runs, as frozen; see {@link #end}
+ * @param epochs planned changes of the split after the start, as frozen, ascending by time; empty when the split was not
+ *     planned to change; see {@link #allocation}
+ * @param amendments what has been amended since the plan was frozen, in the order of taking effect; not part of what is
+ *     frozen
  */
 public record Plan(
         String experiment,
@@ -33,7 +39,8 @@ public record Plan(
         SplitCheckPlan splitCheck,
         TrustLimits trust,
         Run run,
-        List<AllocationEpoch> epochs) {
+        List<AllocationEpoch> epochs,
+        List<Amendment> amendments) {
 
     /** The counts keep a variant in four bits. */
     private static final int MOST_VARIANTS = 15;
@@ -54,6 +61,7 @@ public record Plan(
         Objects.requireNonNull(run, "run");
         variants = List.copyOf(variants);
         epochs = List.copyOf(epochs);
+        amendments = List.copyOf(amendments);
         if (variants.stream().filter(Variant::control).count() != 1) {
             throw new IllegalArgumentException("variants: " + variants + " (expected: exactly one control)");
         }
@@ -65,6 +73,88 @@ public record Plan(
             throw new IllegalArgumentException(
                     "run.atMost: " + run.atMost() + " (expected: at most " + LONGEST_RUN + ")");
         }
+    }
+
+    /** A plan without amendments. */
+    public Plan(
+            String experiment,
+            String question,
+            String owner,
+            CountRule count,
+            List<Variant> variants,
+            TestPlan test,
+            LookSchedule looks,
+            Optional<FutilityPlan> futility,
+            SplitCheckPlan splitCheck,
+            TrustLimits trust,
+            Run run,
+            List<AllocationEpoch> epochs) {
+        this(
+                experiment,
+                question,
+                owner,
+                count,
+                variants,
+                test,
+                looks,
+                futility,
+                splitCheck,
+                trust,
+                run,
+                epochs,
+                List.of());
+    }
+
+    /** The same frozen plan with other amendments. */
+    public Plan amended(List<Amendment> now) {
+        return new Plan(
+                experiment,
+                question,
+                owner,
+                count,
+                variants,
+                test,
+                looks,
+                futility,
+                splitCheck,
+                trust,
+                run,
+                epochs,
+                now);
+    }
+
+    /** The first moment that is no longer part of the run, amendments considered. */
+    public Instant end() {
+        Instant end = run.end();
+        for (Amendment amendment : amendments) {
+            if (amendment.change() instanceof Amendment.End other) {
+                end = other.end();
+            } else if (amendment.change() instanceof Amendment.Stop) {
+                end = amendment.at();
+            }
+        }
+        return end;
+    }
+
+    /** The changes of the split after the start, planned or amended, ascending by time. */
+    public List<AllocationEpoch> allocation() {
+        List<AllocationEpoch> all = new ArrayList<>(epochs);
+        for (Amendment amendment : amendments) {
+            if (amendment.change() instanceof Amendment.Shares other) {
+                all.add(new AllocationEpoch(amendment.at(), other.shares()));
+            }
+        }
+        return List.copyOf(all);
+    }
+
+    /** How many allocation epochs there are, the first included. */
+    public int epochCount() {
+        return allocation().size() + 1;
+    }
+
+    /** Whether the owner has ended the experiment, or will have when the last amendment takes effect. */
+    public boolean stopped() {
+        return !amendments.isEmpty() && amendments.get(amendments.size() - 1).change() instanceof Amendment.Stop;
     }
 
     /** The variant the others are compared with. */
@@ -90,11 +180,12 @@ public record Plan(
     /** Index of the allocation epoch that holds at an event time: 0 before the first planned change, then 1, 2, ... */
     public int epochAt(long atMillis) {
         int epoch = 0;
-        for (AllocationEpoch change : epochs) {
-            if (atMillis < change.from().toEpochMilli()) {
-                break;
-            }
+        while (epoch < epochs.size() && atMillis >= epochs.get(epoch).from().toEpochMilli()) {
             epoch++;
+        }
+        for (Amendment amendment : amendments) {
+            boolean begun = atMillis >= amendment.at().toEpochMilli();
+            epoch += begun && amendment.change() instanceof Amendment.Shares ? 1 : 0;
         }
         return epoch;
     }
@@ -104,9 +195,9 @@ public record Plan(
         if (epoch == 0) {
             return variants.stream().mapToDouble(Variant::share).toArray();
         }
-        AllocationEpoch change = epochs.get(epoch - 1);
+        Map<String, Double> shares = allocation().get(epoch - 1).shares();
         return variants.stream()
-                .mapToDouble(variant -> change.shares().get(variant.name()))
+                .mapToDouble(variant -> shares.get(variant.name()))
                 .toArray();
     }
 }
