@@ -6,6 +6,7 @@ import com.fasterxml.jackson.core.JsonProcessingException;
 import java.io.ByteArrayOutputStream;
 import java.io.IOException;
 import java.io.UncheckedIOException;
+import java.time.Duration;
 import java.time.Instant;
 import java.time.ZoneOffset;
 import java.util.List;
@@ -78,6 +79,10 @@ final class JsonBytes {
         if (!(year >= 0 && year <= LAST_YEAR)) {
             throw new IllegalArgumentException(name + ": " + value + " (expected: years 0000 to " + LAST_YEAR + ")");
         }
+        json.writeStringField(name, value.toString());
+    }
+
+    static void duration(JsonGenerator json, String name, Duration value) throws IOException {
         json.writeStringField(name, value.toString());
     }
 }

@@ -7,6 +7,7 @@ import com.fasterxml.jackson.databind.ObjectReader;
 import com.fasterxml.jackson.databind.json.JsonMapper;
 import java.io.IOException;
 import java.time.DateTimeException;
+import java.time.Duration;
 import java.time.Instant;
 import java.util.ArrayList;
 import java.util.Arrays;
@@ -15,6 +16,7 @@ import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 import java.util.function.Function;
+import java.util.function.Predicate;
 
 /** The members of one JSON object, read strictly: each must be there, of its type. Messages carry the path to the member. */
 final class JsonMembers {
@@ -46,6 +48,28 @@ final class JsonMembers {
         } catch (IOException e) {
             throw new RecordFormatException(what + ": not UTF-8 text");
         }
+    }
+
+    /** Refuses members of other names than these. */
+    void only(String... known) {
+        List<String> names = List.of(known);
+        for (String name : names()) {
+            if (!names.contains(name)) {
+                throw new RecordFormatException(
+                        path + ": unknown member " + Quoted.of(name) + " (expected: " + String.join(", ", known) + ")");
+            }
+        }
+    }
+
+    /** Names of all members, in the order of the document. */
+    List<String> names() {
+        List<String> names = new ArrayList<>();
+        node.fieldNames().forEachRemaining(names::add);
+        return names;
+    }
+
+    boolean has(String name) {
+        return node.has(name);
     }
 
     String text(String name) {
@@ -101,6 +125,15 @@ final class JsonMembers {
         }
     }
 
+    Duration duration(String name) {
+        String text = text(name);
+        try {
+            return Duration.parse(text);
+        } catch (DateTimeException e) {
+            throw unexpected(name, value(name), "an ISO 8601 duration, as in PT30M");
+        }
+    }
+
     <E extends Enum<E>> E code(String name, E[] values, Function<E, String> codeOf) {
         String text = text(name);
         for (E value : values) {
@@ -136,6 +169,30 @@ final class JsonMembers {
         return items;
     }
 
+    /** A member that is an array of finite numbers. */
+    List<Double> reals(String name) {
+        return items(name, item -> item.isNumber() && Double.isFinite(item.doubleValue()), "finite numbers").stream()
+                .map(JsonNode::doubleValue)
+                .toList();
+    }
+
+    /** A member that is an array of texts. */
+    List<String> texts(String name) {
+        return items(name, JsonNode::isTextual, "texts").stream()
+                .map(JsonNode::textValue)
+                .toList();
+    }
+
+    private List<JsonNode> items(String name, Predicate<JsonNode> accepted, String expected) {
+        JsonNode value = value(name);
+        List<JsonNode> items = new ArrayList<>(value.size());
+        value.forEach(items::add);
+        if (!value.isArray() || !items.stream().allMatch(accepted)) {
+            throw unexpected(name, value, "an array of " + expected);
+        }
+        return items;
+    }
+
     /** All members as text, in the order of the document. */
     Map<String, String> texts() {
         Map<String, String> texts = new LinkedHashMap<>();
@@ -167,6 +224,11 @@ final class JsonMembers {
             throw new RecordFormatException(path + "." + name + ": missing");
         }
         return value;
+    }
+
+    /** That a member is not what was expected. */
+    RecordFormatException unexpected(String name, String expected) {
+        return unexpected(name, value(name), expected);
     }
 
     private RecordFormatException unexpected(String name, JsonNode found, String expected) {
