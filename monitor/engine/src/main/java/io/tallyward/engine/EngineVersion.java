@@ -4,7 +4,7 @@ package io.tallyward.engine;
 public final class EngineVersion {
 
     /** Rises whenever the same log would lead to different records. */
-    public static final String CURRENT = "3";
+    public static final String CURRENT = "4";
 
     private EngineVersion() {}
 }

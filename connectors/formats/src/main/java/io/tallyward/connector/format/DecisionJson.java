@@ -6,6 +6,9 @@ import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.Occasion;
 import io.tallyward.engine.record.DecisionRecord.Split;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
+import io.tallyward.engine.record.Silence;
+import io.tallyward.engine.record.SplitPeak;
+import io.tallyward.engine.record.SplitPeak.EpochUnits;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
 import java.io.IOException;
@@ -33,7 +36,7 @@ public final class DecisionJson {
     /**
      * Reads what {@link #write} wrote. The record's hash is not verified here.
      *
-     * @throws RecordFormatException if a member is missing or wrong; members it does not know are ignored
+     * @throws RecordFormatException if a member is missing, wrong or not known, as its digest would not cover it
      */
     public static DecisionRecord read(byte[] bytes) {
         JsonMembers decision = JsonMembers.of("decision", bytes);
@@ -41,18 +44,22 @@ public final class DecisionJson {
             throw new RecordFormatException(
                     "decision.type: " + Quoted.of(decision.text("type")) + " (expected: " + TYPE + ")");
         }
+        decision.only(DecisionRecord.class, "type");
         return new DecisionRecord(
                 decision.text("experiment"),
                 decision.index("sequence"),
                 decision.code("occasion", Occasion.values(), Occasion::code),
                 decision.instant("windowEnd"),
                 decision.text("planDigest"),
+                decision.objectOrNull("plan").map(PlanJson::read).orElse(null),
+                decision.objectOrNull("amendment").map(PlanJson::amendment).orElse(null),
                 decision.list("counts", DecisionJson::count),
                 OutcomesJson.read(decision),
                 decision.whole("idleSealed"),
                 split(decision.object("split")),
                 decision.code("trust", Trust.values(), Trust::code),
                 decision.text("trustReason"),
+                decision.objectOrNull("silence").map(DecisionJson::silence).orElse(null),
                 verdict(decision, "verdict"),
                 decision.list("comparisons", DecisionJson::comparison),
                 decision.text("engineVersion"),
@@ -67,12 +74,15 @@ public final class DecisionJson {
         JsonBytes.text(json, "occasion", decision.occasion().code());
         JsonBytes.instant(json, "windowEnd", decision.windowEnd());
         JsonBytes.text(json, "planDigest", decision.planDigest());
+        JsonBytes.objectOrNull(json, "plan", decision.plan(), PlanJson::members);
+        JsonBytes.objectOrNull(json, "amendment", decision.amendment(), PlanJson::amendment);
         JsonBytes.list(json, "counts", decision.counts(), DecisionJson::count);
         OutcomesJson.write(json, decision.outcomes());
         json.writeNumberField("idleSealed", decision.idleSealed());
         split(json, decision.split());
         JsonBytes.text(json, "trust", decision.trust().code());
         JsonBytes.text(json, "trustReason", decision.trustReason());
+        JsonBytes.objectOrNull(json, "silence", decision.silence(), DecisionJson::silence);
         JsonBytes.text(json, "verdict", decision.verdict().code());
         JsonBytes.list(json, "comparisons", decision.comparisons(), DecisionJson::comparison);
         JsonBytes.text(json, "engineVersion", decision.engineVersion());
@@ -89,6 +99,7 @@ public final class DecisionJson {
     }
 
     private static VariantCount count(JsonMembers count) {
+        count.only(VariantCount.class);
         return new VariantCount(
                 count.index("epoch"),
                 count.text("variant"),
@@ -104,18 +115,55 @@ public final class DecisionJson {
         JsonBytes.real(json, "pearsonChiSquare", split.pearsonChiSquare());
         json.writeNumberField("pearsonDegreesOfFreedom", split.pearsonDegreesOfFreedom());
         JsonBytes.real(json, "pearsonPValue", split.pearsonPValue());
+        JsonBytes.objectOrNull(json, "peak", split.peak(), DecisionJson::peak);
         SplitOriginJson.write(json, split.origin());
         json.writeEndObject();
     }
 
     private static Split split(JsonMembers split) {
+        split.only(Split.class);
         return new Split(
                 split.real("logBayesFactor"),
                 split.real("sequentialPValue"),
                 split.real("pearsonChiSquare"),
                 split.index("pearsonDegreesOfFreedom"),
                 split.real("pearsonPValue"),
+                split.objectOrNull("peak").map(DecisionJson::peak).orElse(null),
                 SplitOriginJson.read(split));
+    }
+
+    private static void peak(JsonGenerator json, SplitPeak peak) throws IOException {
+        JsonBytes.real(json, "logBayesFactor", peak.logBayesFactor());
+        JsonBytes.list(json, "units", peak.units(), DecisionJson::epochUnits);
+    }
+
+    private static SplitPeak peak(JsonMembers peak) {
+        peak.only(SplitPeak.class);
+        return new SplitPeak(
+                peak.real("logBayesFactor"),
+                peak.list(
+                        "units",
+                        units -> new EpochUnits(
+                                units.only(EpochUnits.class).index("epoch"),
+                                units.text("variant"),
+                                units.whole("units"))));
+    }
+
+    private static void epochUnits(JsonGenerator json, EpochUnits units) throws IOException {
+        json.writeNumberField("epoch", units.epoch());
+        JsonBytes.text(json, "variant", units.variant());
+        json.writeNumberField("units", units.units());
+    }
+
+    private static void silence(JsonGenerator json, Silence silence) throws IOException {
+        JsonBytes.text(json, "variant", silence.variant());
+        JsonBytes.instant(json, "since", silence.since());
+        json.writeNumberField("due", silence.due());
+    }
+
+    private static Silence silence(JsonMembers silence) {
+        silence.only(Silence.class);
+        return new Silence(silence.text("variant"), silence.instant("since"), silence.whole("due"));
     }
 
     private static void comparison(JsonGenerator json, Comparison comparison) throws IOException {
@@ -144,6 +192,7 @@ public final class DecisionJson {
     }
 
     private static Comparison comparison(JsonMembers comparison) {
+        comparison.only(Comparison.class);
         return new Comparison(
                 comparison.text("variant"),
                 comparison.index("look"),

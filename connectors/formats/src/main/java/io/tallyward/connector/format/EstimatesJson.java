@@ -26,7 +26,9 @@ final class EstimatesJson {
     static Estimated estimated(JsonMembers members, String name) {
         return members.objectOrNull(name)
                 .map(estimated -> new Estimated(
-                        estimated.real("value"), estimated.realOrNull("lower"), estimated.realOrNull("upper")))
+                        estimated.only(Estimated.class).real("value"),
+                        estimated.realOrNull("lower"),
+                        estimated.realOrNull("upper")))
                 .orElse(null);
     }
 
@@ -43,7 +45,7 @@ final class EstimatesJson {
     static Outlook outlook(JsonMembers members, String name) {
         return members.objectOrNull(name)
                 .map(outlook -> new Outlook(
-                        outlook.real("underTrend"),
+                        outlook.only(Outlook.class).real("underTrend"),
                         outlook.real("underDesign"),
                         outlook.real("withoutEffect"),
                         outlook.real("predictive")))
@@ -67,7 +69,7 @@ final class EstimatesJson {
 
     private static Adjusted adjusted(JsonMembers adjusted) {
         return new Adjusted(
-                adjusted.real("pValue"),
+                adjusted.only(Adjusted.class).real("pValue"),
                 adjusted.real("level"),
                 present(adjusted, "drift"),
                 present(adjusted, "difference"),
@@ -89,7 +91,8 @@ final class EstimatesJson {
 
     static Clustering clustering(JsonMembers members, String name) {
         return members.objectOrNull(name)
-                .map(clustering -> new Clustering(clustering.real("independentZ"), clustering.real("designEffect")))
+                .map(clustering -> new Clustering(
+                        clustering.only(Clustering.class).real("independentZ"), clustering.real("designEffect")))
                 .orElse(null);
     }
 
@@ -106,7 +109,7 @@ final class EstimatesJson {
     static UnitTotals unitTotals(JsonMembers members, String name) {
         return members.objectOrNull(name)
                 .map(totals -> new UnitTotals(
-                        totals.whole("units"),
+                        totals.only(UnitTotals.class).whole("units"),
                         totals.whole("trialSquares"),
                         totals.whole("products"),
                         totals.whole("successSquares")))

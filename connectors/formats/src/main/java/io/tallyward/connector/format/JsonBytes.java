@@ -55,6 +55,16 @@ final class JsonBytes {
         json.writeEndArray();
     }
 
+    static <T> void objectOrNull(JsonGenerator json, String name, T value, Part<T> part) throws IOException {
+        if (value == null) {
+            json.writeNullField(name);
+            return;
+        }
+        json.writeObjectFieldStart(name);
+        part.write(json, value);
+        json.writeEndObject();
+    }
+
     static void text(JsonGenerator json, String name, String value) throws IOException {
         json.writeStringField(name, Objects.requireNonNull(value, name));
     }

@@ -6,6 +6,7 @@ import com.fasterxml.jackson.databind.JsonNode;
 import com.fasterxml.jackson.databind.ObjectReader;
 import com.fasterxml.jackson.databind.json.JsonMapper;
 import java.io.IOException;
+import java.lang.reflect.RecordComponent;
 import java.time.DateTimeException;
 import java.time.Duration;
 import java.time.Instant;
@@ -17,6 +18,7 @@ import java.util.Map;
 import java.util.Optional;
 import java.util.function.Function;
 import java.util.function.Predicate;
+import java.util.stream.Stream;
 
 /** The members of one JSON object, read strictly: each must be there, of its type. Messages carry the path to the member. */
 final class JsonMembers {
@@ -59,6 +61,15 @@ final class JsonMembers {
                         path + ": unknown member " + Quoted.of(name) + " (expected: " + String.join(", ", known) + ")");
             }
         }
+    }
+
+    /** Refuses members of other names than those of a record's components and these. */
+    JsonMembers only(Class<? extends Record> type, String... besides) {
+        only(Stream.concat(
+                        Stream.of(besides),
+                        Arrays.stream(type.getRecordComponents()).map(RecordComponent::getName))
+                .toArray(String[]::new));
+        return this;
     }
 
     /** Names of all members, in the order of the document. */

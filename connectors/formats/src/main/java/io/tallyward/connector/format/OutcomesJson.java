@@ -4,6 +4,7 @@ import com.fasterxml.jackson.core.JsonGenerator;
 import io.tallyward.engine.count.Outcome;
 import io.tallyward.engine.count.OutcomeCounts;
 import java.io.IOException;
+import java.util.Arrays;
 
 /** Outcome counts as an object with one member per published code, zeros included. */
 final class OutcomesJson {
@@ -20,6 +21,7 @@ final class OutcomesJson {
 
     static OutcomeCounts read(JsonMembers members) {
         JsonMembers codes = members.object("outcomes");
+        codes.only(Arrays.stream(Outcome.values()).map(Outcome::code).toArray(String[]::new));
         OutcomeCounts.Builder outcomes = new OutcomeCounts.Builder();
         for (Outcome outcome : Outcome.values()) {
             outcomes.add(outcome, codes.whole(outcome.code()));

@@ -54,7 +54,7 @@ final class SplitOriginJson {
     static SplitOrigin read(JsonMembers split) {
         return split.objectOrNull("origin")
                 .map(origin -> new SplitOrigin(
-                        origin.index("epoch"),
+                        origin.only(SplitOrigin.class).index("epoch"),
                         origin.instant("beganFrom"),
                         origin.instant("beganUntil"),
                         origin.real("logLikelihoodGain"),
@@ -67,7 +67,7 @@ final class SplitOriginJson {
 
     private static SegmentSplit segment(JsonMembers segment) {
         return new SegmentSplit(
-                segment.text("field"),
+                segment.only(SegmentSplit.class).text("field"),
                 segment.text("value"),
                 segment.list("units", SplitOriginJson::units),
                 segment.list("elsewhere", SplitOriginJson::units),
@@ -79,6 +79,7 @@ final class SplitOriginJson {
     }
 
     private static PlannedUnits units(JsonMembers units) {
-        return new PlannedUnits(units.text("variant"), units.real("planned"), units.whole("units"));
+        return new PlannedUnits(
+                units.only(PlannedUnits.class).text("variant"), units.real("planned"), units.whole("units"));
     }
 }

@@ -27,12 +27,8 @@ final class TestPlanJson {
 
     static void test(JsonGenerator json, TestPlan test) throws IOException {
         json.writeObjectFieldStart("test");
-        tail(json, "benefit", test.benefit());
-        if (test.harm().isPresent()) {
-            tail(json, "harm", test.harm().get());
-        } else {
-            json.writeNullField("harm");
-        }
+        JsonBytes.objectOrNull(json, "benefit", test.benefit(), TestPlanJson::tail);
+        JsonBytes.objectOrNull(json, "harm", test.harm().orElse(null), TestPlanJson::tail);
         JsonBytes.text(json, "sharing", PlanJson.code(test.sharing()));
         JsonBytes.text(json, "clock", PlanJson.code(test.clock()));
         JsonBytes.text(json, "measure", PlanJson.code(test.measure()));
@@ -69,12 +65,10 @@ final class TestPlanJson {
                 test.index("minimumPerCell"));
     }
 
-    private static void tail(JsonGenerator json, String name, Tail tail) throws IOException {
-        json.writeObjectFieldStart(name);
+    private static void tail(JsonGenerator json, Tail tail) throws IOException {
         JsonBytes.real(json, "alpha", tail.alpha());
         spending(json, tail.spending());
         JsonBytes.real(json, "silentBefore", tail.silentBefore());
-        json.writeEndObject();
     }
 
     private static Tail tail(JsonMembers tail) {

@@ -69,7 +69,15 @@ final class RandomPlans {
                 new TrustLimits(open(1), open(1), duration()),
                 new Run(instant(), duration(), Duration.ofDays(1 + random.nextInt(300))),
                 list(() -> new AllocationEpoch(instant(), shares(names))),
-                list(() -> new Amendment(instant(), word(), change(names))));
+                list(() -> amendment(names)));
+    }
+
+    Amendment amendment() {
+        return amendment(List.of("1plain", "2wide"));
+    }
+
+    private Amendment amendment(List<String> names) {
+        return new Amendment(instant(), word(), change(names));
     }
 
     private TestPlan test() {

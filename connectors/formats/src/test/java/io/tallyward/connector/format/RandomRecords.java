@@ -15,9 +15,11 @@ import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.Estimated;
 import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.record.Outlook;
+import io.tallyward.engine.record.Silence;
 import io.tallyward.engine.record.SplitOrigin;
 import io.tallyward.engine.record.SplitOrigin.PlannedUnits;
 import io.tallyward.engine.record.SplitOrigin.SegmentSplit;
+import io.tallyward.engine.record.SplitPeak;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.UnitTotals;
 import io.tallyward.engine.record.Verdict;
@@ -45,9 +47,11 @@ final class RandomRecords {
     };
 
     private final Random random;
+    private final RandomPlans plans;
 
     RandomRecords(long seed) {
         random = new Random(seed);
+        plans = new RandomPlans(seed);
     }
 
     TallyUpdate tally() {
@@ -69,6 +73,8 @@ final class RandomRecords {
                 any(Occasion.values()),
                 instant(),
                 digest(),
+                random.nextBoolean() ? null : plans.plan(),
+                random.nextBoolean() ? null : plans.amendment(),
                 list(() -> new VariantCount(
                         random.nextInt(4),
                         word(),
@@ -83,14 +89,21 @@ final class RandomRecords {
                         Math.abs(real()),
                         random.nextInt(9),
                         random.nextDouble(),
+                        random.nextBoolean() ? null : peak(),
                         random.nextBoolean() ? null : origin()),
                 any(Trust.values()),
                 word(),
+                random.nextBoolean() ? null : new Silence(word(), instant(), count()),
                 any(Verdict.values()),
                 list(this::comparison),
                 "1.0",
                 digest(),
                 digest());
+    }
+
+    private SplitPeak peak() {
+        return new SplitPeak(
+                Math.abs(real()), list(() -> new SplitPeak.EpochUnits(random.nextInt(5), word(), count())));
     }
 
     private SplitOrigin origin() {

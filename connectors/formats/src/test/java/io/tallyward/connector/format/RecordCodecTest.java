@@ -84,12 +84,12 @@ class RecordCodecTest {
         DecisionRecord decision = decision(0.25, List.of());
         assertEquals(
                 "{\"type\":\"decision\",\"experiment\":\"quay-banner\",\"sequence\":1,\"occasion\":\"trust\","
-                        + "\"windowEnd\":\"2026-05-04T06:00:00Z\",\"planDigest\":\"ab\",\"counts\":[],"
+                        + "\"windowEnd\":\"2026-05-04T06:00:00Z\",\"planDigest\":\"ab\",\"plan\":null,\"amendment\":null,\"counts\":[],"
                         + "\"outcomes\":{\"trial\":0,\"success\":0,\"repeat\":0,\"expired\":0,\"crossover\":0,"
                         + "\"orphan\":0,\"late\":0,\"outside\":0,\"duplicate\":0},\"idleSealed\":0,"
                         + "\"split\":{\"logBayesFactor\":0.25,\"sequentialPValue\":1.0,\"pearsonChiSquare\":0.0,"
-                        + "\"pearsonDegreesOfFreedom\":0,\"pearsonPValue\":1.0,\"origin\":null},\"trust\":\"sound\","
-                        + "\"trustReason\":\"\",\"verdict\":\"stop-benefit\",\"comparisons\":[],"
+                        + "\"pearsonDegreesOfFreedom\":0,\"pearsonPValue\":1.0,\"peak\":null,\"origin\":null},\"trust\":\"sound\","
+                        + "\"trustReason\":\"\",\"silence\":null,\"verdict\":\"stop-benefit\",\"comparisons\":[],"
                         + "\"engineVersion\":\"1\",\"previous\":\"" + DecisionRecord.NO_PREVIOUS
                         + "\",\"hash\":\"cd\"}",
                 text(DecisionJson.write(decision)));
@@ -132,13 +132,22 @@ class RecordCodecTest {
         }
     }
 
+    /** A digest would not cover them. The names in planned shares are those of variants, here beginning with a digit. */
     @Test
-    void toleratesMembersItDoesNotKnow() throws IOException {
+    void refusesMembersOfADecisionItDoesNotKnow() throws IOException {
         for (int seed = 0; seed < 40; seed++) {
-            DecisionRecord decision = new RandomRecords(seed).decision();
-            JsonNode tree = MAPPER.readTree(DecisionJson.write(decision));
-            objects(tree).forEach(object -> object.put("since-the-next-version", true));
-            assertEquals(decision, DecisionJson.read(MAPPER.writeValueAsBytes(tree)), "seed " + seed);
+            JsonNode tree = MAPPER.readTree(DecisionJson.write(new RandomRecords(seed).decision()));
+            for (ObjectNode object : objects(tree)) {
+                if (!object.isEmpty() && Character.isDigit(names(object).get(0).charAt(0))) {
+                    continue;
+                }
+                object.put("sinceTheNextVersion", true);
+                byte[] bytes = MAPPER.writeValueAsBytes(tree);
+                RecordFormatException refusal =
+                        assertThrows(RecordFormatException.class, () -> DecisionJson.read(bytes), "seed " + seed);
+                assertTrue(refusal.getMessage().contains("unknown member"), refusal::getMessage);
+                object.remove("sinceTheNextVersion");
+            }
         }
     }
 
@@ -191,7 +200,7 @@ class RecordCodecTest {
         JsonNode tree = MAPPER.readTree(bytes);
         for (ObjectNode object : objects(tree)) {
             for (String name : names(object)) {
-                if (object == tree.get("facts")) {
+                if (object == tree.get("facts") || Character.isDigit(name.charAt(0))) {
                     continue;
                 }
                 JsonNode removed = object.remove(name);

@@ -14,9 +14,13 @@ import com.networknt.schema.SchemaRegistry;
 import com.networknt.schema.SpecificationVersion;
 import io.tallyward.connector.format.Decoded.Accepted;
 import io.tallyward.engine.count.Outcome;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.TestPlan;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.DecisionRecord.Occasion;
 import io.tallyward.engine.record.Notice;
+import io.tallyward.engine.record.Silence;
+import io.tallyward.engine.record.SplitPeak;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
 import java.io.IOException;
@@ -61,6 +65,21 @@ class SchemaTest {
     }
 
     @Test
+    void refusesMembersOfADecisionThatItDoesNotKnow() throws IOException {
+        for (int seed = 0; seed < 20; seed++) {
+            JsonNode tree = MAPPER.readTree(DecisionJson.write(new RandomRecords(seed).decision()));
+            for (ObjectNode object : objects(tree)) {
+                if (object.isEmpty()
+                        || !Character.isDigit(names(object).iterator().next().charAt(0))) {
+                    object.put("sinceTheNextVersion", true);
+                    assertFalse(errors(decision, tree.toString()).isEmpty(), "seed " + seed + ": " + names(object));
+                    object.remove("sinceTheNextVersion");
+                }
+            }
+        }
+    }
+
+    @Test
     void describesEveryComponentUnderItsName() throws IOException {
         JsonNode decisions = tree("decision");
         Set<String> members = components(DecisionRecord.class);
@@ -69,6 +88,10 @@ class SchemaTest {
         assertEquals(components(DecisionRecord.Split.class), names(decisions.at("/$defs/split/properties")));
         assertEquals(components(DecisionRecord.Comparison.class), names(decisions.at("/$defs/comparison/properties")));
         assertEquals(components(DecisionRecord.VariantCount.class), names(decisions.at("/$defs/count/properties")));
+        assertEquals(components(Plan.class), names(decisions.at("/$defs/plan/properties")));
+        assertEquals(components(TestPlan.class), names(decisions.at("/$defs/test/properties")));
+        assertEquals(components(Silence.class), names(decisions.at("/properties/silence/properties")));
+        assertEquals(components(SplitPeak.class), names(decisions.at("/$defs/split/properties/peak/properties")));
         assertEquals(components(Notice.class), names(tree("notice").at("/properties")));
         Set<String> fields =
                 Stream.of(EventField.values()).map(EventField::code).collect(Collectors.toCollection(TreeSet::new));
@@ -144,6 +167,9 @@ class SchemaTest {
                 continue;
             }
             for (String name : names(object)) {
+                if (Character.isDigit(name.charAt(0))) {
+                    continue;
+                }
                 JsonNode removed = object.remove(name);
                 assertFalse(errors(schema, tree.toString()).isEmpty(), "without " + name);
                 object.set(name, removed);

@@ -3,10 +3,10 @@ package io.tallyward.engine.decide;
 import io.tallyward.engine.EngineVersion;
 import io.tallyward.engine.count.OutcomeCounts;
 import io.tallyward.engine.count.TallyUpdate;
+import io.tallyward.engine.plan.Amendment;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanChangedException;
 import io.tallyward.engine.plan.PlanDigest;
-import io.tallyward.engine.plan.Variant;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.Occasion;
@@ -14,18 +14,14 @@ import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.record.RecordDigest;
 import io.tallyward.engine.record.SplitOrigin;
 import io.tallyward.engine.record.Trust;
-import io.tallyward.engine.record.Verdict;
 import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
 import java.time.Instant;
 import java.util.ArrayList;
-import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
-import java.util.Set;
-import java.util.TreeSet;
 
 /**
  * Decides about one experiment. Takes its complete windows one by one in order; after each it judges the data, tells held
@@ -44,7 +40,7 @@ final class ExperimentDecider {
     private final SplitWatch splitWatch;
     private final SplitTrace splitTrace;
     private final TrustWatch trustWatch;
-    private final List<ChallengerTest> tests = new ArrayList<>();
+    private final Challengers challengers;
 
     private long completeUntil;
     private OutcomeCounts outcomes = OutcomeCounts.NONE;
@@ -59,7 +55,6 @@ final class ExperimentDecider {
     private final List<DecisionRecord> decisions = new ArrayList<>();
     private final List<Notice> notices = new ArrayList<>();
     private final List<TakenLook> newLooks = new ArrayList<>();
-    private PassedOn passedOn = new PassedOn(Set.of(), Set.of());
     private boolean changed;
 
     ExperimentDecider(Plan plan, DecisionMemo memo, Detail detail) {
@@ -74,9 +69,7 @@ final class ExperimentDecider {
         splitWatch = new SplitWatch(plan);
         splitTrace = new SplitTrace(plan);
         trustWatch = new TrustWatch(plan);
-        for (Variant challenger : plan.challengers()) {
-            tests.add(new ChallengerTest(plan, planDigest, challenger, memo, detail));
-        }
+        challengers = new Challengers(plan, planDigest, memo, detail);
     }
 
     /** Takes what one partition has sealed, and every window that is complete with it. */
@@ -85,6 +78,9 @@ final class ExperimentDecider {
             throw new PlanChangedException(plan.experiment(), update.planDigest(), planDigest);
         }
         changed = true;
+        if (sequence == 0 && detail != Detail.BARE) {
+            write(Occasion.PLAN, List.of(), null);
+        }
         completeness.add(update);
         long until = completeness.completeUntil();
         while (completeUntil < until) {
@@ -120,46 +116,33 @@ final class ExperimentDecider {
 
     private void decide() {
         TrustWatch.Judgement before = judgement;
-        boolean concluded = tests.stream().allMatch(test -> test.verdict().settled());
+        boolean concluded = challengers.concluded();
         judgement = trustWatch.judge(completeUntil, splitWatch.sequentialPValue(), outcomes, concluded);
         boolean trustChanged = judgement.trust() != before.trust();
-        boolean sound = judgement.trust() == Trust.SOUND;
-        List<ChallengerTest> settled = new ArrayList<>();
-        if (trustChanged && sound) {
-            tests.stream().filter(ChallengerTest::release).forEach(settled::add);
-        }
         NoticeWriter.Told told = told(concluded);
-        List<Comparison> looks = takeLooks(sound, settled);
-        boolean ended = endRun(sound, settled);
-        if (!looks.isEmpty()) {
-            looksTaken++;
-            write(Occasion.LOOK, looks);
-        } else if (ended) {
-            write(Occasion.END, looks);
-        } else if (trustChanged) {
-            write(Occasion.TRUST, looks);
-        } else {
-            return;
+        Challengers.Outcome outcome =
+                challengers.decide(counts, completeUntil, runEnds(), judgement.trust() == Trust.SOUND);
+        looksDelayed += outcome.looksDelayed();
+        delayReason = outcome.delayReason().orElse(delayReason);
+        newLooks.addAll(outcome.looks());
+        Optional<Occasion> occasion = outcome.occasion(trustChanged);
+        if (occasion.isPresent()) {
+            looksTaken += occasion.get() == Occasion.LOOK ? 1 : 0;
+            write(occasion.get(), outcome.comparisons(), null);
+            tell(trustChanged, told, outcome.settled());
+            leaveOut(outcome.settled());
         }
-        tell(trustChanged, told, settled);
-        leaveOut(settled);
     }
 
     private NoticeWriter.Told told(boolean concluded) {
         if (concluded) {
             return NoticeWriter.Told.ALL;
         }
-        boolean any = tests.stream().anyMatch(test -> test.verdict().settled());
-        return any ? NoticeWriter.Told.SOME : NoticeWriter.Told.NONE;
+        return challengers.anySettled() ? NoticeWriter.Told.SOME : NoticeWriter.Told.NONE;
     }
 
-    /** While other challengers go on, a challenger whose verdict was told need not be shown any more. */
     private void leaveOut(List<ChallengerTest> settled) {
-        if (tests.stream().allMatch(test -> test.verdict().settled())) {
-            return;
-        }
-        for (ChallengerTest test : settled) {
-            int variant = plan.variantIndex(test.name());
+        for (int variant : challengers.leftOut(settled)) {
             splitWatch.leaveOut(variant, counts);
             trustWatch.leaveOut(variant);
         }
@@ -169,85 +152,12 @@ final class ExperimentDecider {
         return completeUntil >= plan.run().end().toEpochMilli();
     }
 
-    private List<Comparison> takeLooks(boolean sound, List<ChallengerTest> settled) {
-        passOn();
-        Map<ChallengerTest, TakenLook> looks = new LinkedHashMap<>();
-        for (ChallengerTest test : tests) {
-            if (!test.isOpen()) {
-                continue;
-            }
-            ChallengerTest.Attempt attempt = test.attempt(counts, completeUntil, runEnds(), sound);
-            if (attempt instanceof ChallengerTest.Attempt.Taken taken) {
-                looks.put(test, taken.look());
-            } else if (attempt instanceof ChallengerTest.Attempt.Delayed delayed) {
-                looksDelayed += delayed.begun() ? 1 : 0;
-                delayReason = delayed.reason();
-            }
-        }
-        while (passOn()) {
-            looks.replaceAll((test, look) -> found(test) ? look : test.judgeAgain(sound));
-        }
-        looks.keySet().stream().filter(test -> test.verdict().settled()).forEach(settled::add);
-        newLooks.addAll(looks.values());
-        return looks.values().stream().map(TakenLook::comparison).toList();
-    }
-
-    private static boolean found(ChallengerTest test) {
-        return test.verdict() == Verdict.STOP_BENEFIT || test.verdict() == Verdict.STOP_HARM;
-    }
-
-    /** Gives every challenger that is not found the level that those found leave to it; returns whether any level rose. */
-    private boolean passOn() {
-        Set<Integer> benefits = positions(Verdict.STOP_BENEFIT);
-        Set<Integer> harms = positions(Verdict.STOP_HARM);
-        if (benefits.equals(passedOn.benefits()) && harms.equals(passedOn.harms())) {
-            return false;
-        }
-        passedOn = new PassedOn(benefits, harms);
-        boolean rose = false;
-        for (int i = 0; i < tests.size(); i++) {
-            if (!found(tests.get(i))) {
-                rose |= tests.get(i).raise(TailLevels.of(plan, i, benefits, harms));
-            }
-        }
-        return rose;
-    }
-
-    /** The challengers whose levels the others have, by position. */
-    private record PassedOn(Set<Integer> benefits, Set<Integer> harms) {}
-
-    private Set<Integer> positions(Verdict verdict) {
-        if (tests.stream().noneMatch(test -> test.verdict() == verdict)) {
-            return Set.of();
-        }
-        Set<Integer> positions = new TreeSet<>();
-        for (int i = 0; i < tests.size(); i++) {
-            if (tests.get(i).verdict() == verdict) {
-                positions.add(i);
-            }
-        }
-        return positions;
-    }
-
-    /** At the end of the run every test that could not take a last look is exhausted; returns whether there was one. */
-    private boolean endRun(boolean sound, List<ChallengerTest> settled) {
-        if (!runEnds()) {
-            return false;
-        }
-        boolean any = false;
-        for (ChallengerTest test : tests) {
-            if (test.isOpen()) {
-                test.exhaust(sound);
-                any = true;
-                if (test.verdict().settled()) {
-                    settled.add(test);
-                }
-            }
-        }
-        return any;
-    }
-
-    private void write(Occasion occasion, List<Comparison> looks) {
+    /**
+     * Writes a record.
+     *
+     * @param amendmentOrNull what takes effect; null unless the occasion is an amendment
+     */
+    private void write(Occasion occasion, List<Comparison> looks, Amendment amendmentOrNull) {
         sequence++;
         SplitOrigin origin = splitOrigin();
         DecisionRecord record = sealed(new DecisionRecord(
@@ -256,13 +166,16 @@ final class ExperimentDecider {
                 occasion,
                 Instant.ofEpochMilli(completeUntil),
                 planDigest,
+                occasion == Occasion.PLAN ? plan.amended(List.of()) : null,
+                amendmentOrNull,
                 counts.list(),
                 outcomes,
                 idleSealed,
                 splitWatch.split(counts, origin),
                 judgement.trust(),
                 judgement.with(origin).reason(),
-                verdict(),
+                judgement.silence(),
+                challengers.verdict(),
                 looks,
                 EngineVersion.CURRENT,
                 lastHash,
@@ -288,10 +201,6 @@ final class ExperimentDecider {
             notices.add(writer.settled(
                     record, test.name(), test.verdict(), test.lastLook().map(TakenLook::comparison)));
         }
-    }
-
-    private Verdict verdict() {
-        return OverallVerdict.of(tests.stream().map(ChallengerTest::verdict).toList());
     }
 
     List<DecisionRecord> takeDecisions() {
@@ -335,8 +244,8 @@ final class ExperimentDecider {
                 outcomes,
                 splitWatch.split(counts, origin),
                 judgement.with(origin),
-                verdict(),
-                tests,
+                challengers.verdict(),
+                challengers.tests(),
                 new ViewWriter.Looks(looksTaken, looksDelayed, delayReason),
                 lastHash);
     }
@@ -346,9 +255,7 @@ final class ExperimentDecider {
     }
 
     void restoreLook(TakenLook look) {
-        tests.stream()
-                .filter(test -> test.name().equals(look.comparison().variant()))
-                .forEach(test -> test.restoreLook(look));
+        challengers.restoreLook(look);
     }
 
     void write(DataOutput out) throws IOException {
@@ -368,9 +275,7 @@ final class ExperimentDecider {
         out.writeInt(looksTaken);
         out.writeInt(looksDelayed);
         out.writeUTF(delayReason);
-        for (ChallengerTest test : tests) {
-            test.write(out);
-        }
+        challengers.write(out);
     }
 
     void read(DataInput in) throws IOException {
@@ -386,15 +291,12 @@ final class ExperimentDecider {
         completeUntil = in.readLong();
         outcomes = OutcomeCounts.read(in);
         idleSealed = in.readLong();
-        judgement = new TrustWatch.Judgement(Trust.valueOf(in.readUTF()), in.readUTF());
+        judgement = new TrustWatch.Judgement(Trust.valueOf(in.readUTF()), in.readUTF(), null);
         sequence = in.readInt();
         lastHash = in.readUTF();
         looksTaken = in.readInt();
         looksDelayed = in.readInt();
         delayReason = in.readUTF();
-        for (ChallengerTest test : tests) {
-            test.read(in);
-        }
-        passOn();
+        challengers.read(in);
     }
 }

@@ -3,13 +3,17 @@ package io.tallyward.engine.decide;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.DecisionRecord.Split;
 import io.tallyward.engine.record.SplitOrigin;
+import io.tallyward.engine.record.SplitPeak;
+import io.tallyward.engine.record.SplitPeak.EpochUnits;
 import io.tallyward.statistics.split.PearsonSplit;
 import io.tallyward.statistics.split.SequentialEvidence;
 import io.tallyward.statistics.split.SequentialSplitTest;
 import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
+import java.util.ArrayList;
 import java.util.Arrays;
+import java.util.List;
 
 /**
  * Watches the traffic split after every complete window. Each allocation epoch has its own evidence against its own planned
@@ -32,6 +36,10 @@ final class SplitWatch {
     private final int epochs;
     private final boolean[] watched;
     private final long[][] before;
+
+    /** Units when the evidence was largest. */
+    private final long[][] peak;
+
     private double earlierEvidence;
     private PearsonSplit earlierPearson = PearsonSplit.NONE;
     private double logBayesFactor;
@@ -43,6 +51,7 @@ final class SplitWatch {
         watched = new boolean[plan.variants().size()];
         Arrays.fill(watched, true);
         before = new long[epochs][watched.length];
+        peak = new long[epochs][watched.length];
     }
 
     /** Reads the split again. */
@@ -52,7 +61,13 @@ final class SplitWatch {
             sum += SequentialSplitTest.logBayesFactor(CONCENTRATION, shares(epoch), trials(counts, epoch));
         }
         logBayesFactor = sum;
-        evidence = evidence.after(sum);
+        SequentialEvidence now = evidence.after(sum);
+        if (now.largestLogBayesFactor() > evidence.largestLogBayesFactor()) {
+            for (int epoch = 0; epoch < epochs; epoch++) {
+                peak[epoch] = counts.unitsIn(epoch);
+            }
+        }
+        evidence = now;
     }
 
     /** Leaves a variant out from now on. At least two always stay. */
@@ -133,7 +148,24 @@ final class SplitWatch {
                 pearson.chiSquare(),
                 pearson.degreesOfFreedom(),
                 pearson.pValue(),
+                peak(),
                 origin);
+    }
+
+    /** The largest evidence so far, as records carry it; null while none spoke against the plan. */
+    SplitPeak peak() {
+        if (evidence.equals(SequentialEvidence.NONE)) {
+            return null;
+        }
+        List<EpochUnits> units = new ArrayList<>();
+        for (int epoch = 0; epoch < epochs; epoch++) {
+            if (epoch == 0 || Arrays.stream(peak[epoch]).sum() > 0) {
+                for (int variant = 0; variant < watched.length; variant++) {
+                    units.add(new EpochUnits(epoch, plan.variants().get(variant).name(), peak[epoch][variant]));
+                }
+            }
+        }
+        return new SplitPeak(evidence.largestLogBayesFactor(), units);
     }
 
     private PearsonSplit pearson(CumulativeCounts counts) {
@@ -158,6 +190,7 @@ final class SplitWatch {
             out.writeBoolean(watched[variant]);
             for (int epoch = 0; epoch < epochs; epoch++) {
                 out.writeLong(before[epoch][variant]);
+                out.writeLong(peak[epoch][variant]);
             }
         }
     }
@@ -171,6 +204,7 @@ final class SplitWatch {
             watched[variant] = in.readBoolean();
             for (int epoch = 0; epoch < epochs; epoch++) {
                 before[epoch][variant] = in.readLong();
+                peak[epoch][variant] = in.readLong();
             }
         }
     }

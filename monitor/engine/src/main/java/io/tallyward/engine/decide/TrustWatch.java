@@ -5,14 +5,17 @@ import io.tallyward.engine.count.OutcomeCounts;
 import io.tallyward.engine.count.WindowTally.Cell;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.TrustLimits;
+import io.tallyward.engine.record.Silence;
 import io.tallyward.engine.record.SplitOrigin;
 import io.tallyward.engine.record.Trust;
 import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
+import java.time.Instant;
 import java.util.Arrays;
 import java.util.List;
 import java.util.Locale;
+import java.util.Optional;
 
 /**
  * Decides after every complete window whether the data can be believed. The worst complaint is the one that is told; a
@@ -51,14 +54,21 @@ final class TrustWatch {
      *
      * @param trust the worst complaint, or sound
      * @param reason the complaint in words; empty while sound
+     * @param silence what is silent since when, if that is the complaint; else null
      */
-    record Judgement(Trust trust, String reason) {
+    record Judgement(Trust trust, String reason, Silence silence) {
 
         static final Judgement SOUND = new Judgement(Trust.SOUND, "");
 
+        Judgement(Trust trust, String reason) {
+            this(trust, reason, null);
+        }
+
         /** The complaint, and where it comes from as far as that is known. */
         Judgement with(SplitOrigin originOrNull) {
-            return originOrNull == null ? this : new Judgement(trust, reason + "; " + SplitWords.of(originOrNull));
+            return originOrNull == null
+                    ? this
+                    : new Judgement(trust, reason + "; " + SplitWords.of(originOrNull), silence);
         }
     }
 
@@ -102,6 +112,11 @@ final class TrustWatch {
      *     silence is what is to be expected
      */
     Judgement judge(long windowEnd, double splitPValue, OutcomeCounts outcomes, boolean concluded) {
+        return judge(windowEnd, splitPValue, outcomes, concluded ? Optional.empty() : silence(windowEnd));
+    }
+
+    /** The same with what is silent, if anything is. */
+    Judgement judge(long windowEnd, double splitPValue, OutcomeCounts outcomes, Optional<Silence> silence) {
         TrustLimits limits = plan.trust();
         long admitted = outcomes.total();
         double crossovers = share(outcomes.get(Outcome.CROSSOVER), admitted);
@@ -122,10 +137,8 @@ final class TrustWatch {
                             "%.2f %% of events are of units under another variant than their first (limit %.2f %%)",
                             100 * crossovers, 100 * limits.crossoverShare()));
         }
-        String silent =
-                concluded ? "" : silence(windowEnd, limits.starvedAfter().toMillis());
-        if (!silent.isEmpty()) {
-            return new Judgement(Trust.STARVED, silent);
+        if (silence.isPresent()) {
+            return new Judgement(Trust.STARVED, words(silence.get(), windowEnd), silence.get());
         }
         if (lateComplaint) {
             return new Judgement(
@@ -145,25 +158,30 @@ final class TrustWatch {
         return whole == 0 ? 0 : (double) part / whole;
     }
 
-    private String silence(long windowEnd, long limitMillis) {
+    private Optional<Silence> silence(long windowEnd) {
+        long limitMillis = plan.trust().starvedAfter().toMillis();
         if (windowEnd - streamSilentSince >= limitMillis) {
-            return "no trial of any variant for " + hours(windowEnd - streamSilentSince);
+            return Optional.of(new Silence("", Instant.ofEpochMilli(streamSilentSince), 0));
         }
         for (int variant = 0; variant < silentSince.length; variant++) {
             boolean due = !leftOut[variant] && trialsDue[variant] >= TRIALS_DUE;
             if (due && windowEnd - silentSince[variant] >= limitMillis) {
-                return text(
-                        "no trial of %s for %s, although about %.0f were due",
+                return Optional.of(new Silence(
                         plan.variants().get(variant).name(),
-                        hours(windowEnd - silentSince[variant]),
-                        trialsDue[variant]);
+                        Instant.ofEpochMilli(silentSince[variant]),
+                        Math.round(trialsDue[variant])));
             }
         }
-        return "";
+        return Optional.empty();
     }
 
-    private static String hours(long millis) {
-        return text("%.1f h", millis / 3_600_000.0);
+    private static String words(Silence silence, long windowEnd) {
+        String since = text(
+                "since %s (%.1f h)",
+                silence.since(), (windowEnd - silence.since().toEpochMilli()) / 3_600_000.0);
+        return silence.variant().isEmpty()
+                ? "no trial of any variant " + since
+                : text("no trial of %s %s, although about %d were due", silence.variant(), since, silence.due());
     }
 
     private static String text(String format, Object... values) {

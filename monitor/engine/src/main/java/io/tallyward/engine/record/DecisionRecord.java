@@ -1,25 +1,30 @@
 package io.tallyward.engine.record;
 
 import io.tallyward.engine.count.OutcomeCounts;
+import io.tallyward.engine.plan.Amendment;
+import io.tallyward.engine.plan.Plan;
 import java.time.Instant;
 import java.util.List;
 import java.util.Locale;
 
 /**
  * One decision about one experiment with everything needed to make it again. Records of an experiment form a chain: each
- * names the digest of its predecessor.
+ * names the digest of its predecessor, and the first carries the plan.
  *
  * @param experiment name of the experiment
  * @param sequence 1 for the experiment's first record, then 2, 3, ...
  * @param occasion why the record was written
- * @param windowEnd end of the last complete window the decision is based on
+ * @param windowEnd end of the last complete window the decision is based on; the start of the run in the first record
  * @param planDigest digest of the plan it was made under
+ * @param plan the plan as it was frozen, in the first record of an experiment; null in all others
+ * @param amendment what is amended from {@code windowEnd} on; null unless that is the occasion
  * @param counts cumulative counts up to {@code windowEnd}, by allocation epoch and variant
  * @param outcomes cumulative outcomes of the events of these windows
  * @param idleSealed how many of the windows were sealed, in some partition, because it was idle
  * @param split what the split checks say
  * @param trust whether the data are trusted
  * @param trustReason why, in words; empty while sound
+ * @param silence what is silent; null unless trust is {@link Trust#STARVED}
  * @param verdict the verdict on the experiment
  * @param comparisons one entry per challenger that was looked at; empty unless the occasion is a look
  * @param engineVersion version of the deciding rules
@@ -32,12 +37,15 @@ public record DecisionRecord(
         Occasion occasion,
         Instant windowEnd,
         String planDigest,
+        Plan plan,
+        Amendment amendment,
         List<VariantCount> counts,
         OutcomeCounts outcomes,
         long idleSealed,
         Split split,
         Trust trust,
         String trustReason,
+        Silence silence,
         Verdict verdict,
         List<Comparison> comparisons,
         String engineVersion,
@@ -52,12 +60,80 @@ public record DecisionRecord(
         comparisons = List.copyOf(comparisons);
     }
 
+    /** A record that carries neither plan nor amendment, of data in which nothing is silent. */
+    public DecisionRecord(
+            String experiment,
+            int sequence,
+            Occasion occasion,
+            Instant windowEnd,
+            String planDigest,
+            List<VariantCount> counts,
+            OutcomeCounts outcomes,
+            long idleSealed,
+            Split split,
+            Trust trust,
+            String trustReason,
+            Verdict verdict,
+            List<Comparison> comparisons,
+            String engineVersion,
+            String previous,
+            String hash) {
+        this(
+                experiment,
+                sequence,
+                occasion,
+                windowEnd,
+                planDigest,
+                null,
+                null,
+                counts,
+                outcomes,
+                idleSealed,
+                split,
+                trust,
+                trustReason,
+                null,
+                verdict,
+                comparisons,
+                engineVersion,
+                previous,
+                hash);
+    }
+
+    /** The same record in another place of a chain. */
+    public DecisionRecord chained(String newPrevious, String newHash) {
+        return new DecisionRecord(
+                experiment,
+                sequence,
+                occasion,
+                windowEnd,
+                planDigest,
+                plan,
+                amendment,
+                counts,
+                outcomes,
+                idleSealed,
+                split,
+                trust,
+                trustReason,
+                silence,
+                verdict,
+                comparisons,
+                engineVersion,
+                newPrevious,
+                newHash);
+    }
+
     /** Why a record was written. */
     public enum Occasion {
+        /** The experiment begins: the plan is frozen. */
+        PLAN,
         /** A look was taken at one or more comparisons. */
         LOOK,
         /** Trust changed between looks. */
         TRUST,
+        /** An amendment of the plan has taken effect. */
+        AMENDED,
         /** The run ended and no further look could be taken. */
         END;
 
@@ -97,6 +173,7 @@ public record DecisionRecord(
      * @param pearsonChiSquare Pearson's statistic on the current counts, summed over epochs; for the record only
      * @param pearsonDegreesOfFreedom its degrees of freedom; 0 before there are trials
      * @param pearsonPValue its p-value for a single reading
+     * @param peak the largest evidence so far; null while none spoke against the planned split
      * @param origin where a mismatch comes from; null while there is none and where the record is bare
      */
     public record Split(
@@ -105,16 +182,24 @@ public record DecisionRecord(
             double pearsonChiSquare,
             int pearsonDegreesOfFreedom,
             double pearsonPValue,
+            SplitPeak peak,
             SplitOrigin origin) {
 
-        /** What the split checks say while there is no mismatch. */
+        /** What the split checks say while nothing has spoken against the planned split. */
         public Split(
                 double logBayesFactor,
                 double sequentialPValue,
                 double pearsonChiSquare,
                 int pearsonDegreesOfFreedom,
                 double pearsonPValue) {
-            this(logBayesFactor, sequentialPValue, pearsonChiSquare, pearsonDegreesOfFreedom, pearsonPValue, null);
+            this(
+                    logBayesFactor,
+                    sequentialPValue,
+                    pearsonChiSquare,
+                    pearsonDegreesOfFreedom,
+                    pearsonPValue,
+                    null,
+                    null);
         }
     }
 

@@ -1,12 +1,16 @@
 package io.tallyward.engine.record;
 
 import io.tallyward.engine.digest.Digest;
+import io.tallyward.engine.plan.Amendment;
+import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanDigest;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.Split;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.SplitOrigin.PlannedUnits;
 import io.tallyward.engine.record.SplitOrigin.SegmentSplit;
 import java.util.List;
+import java.util.TreeMap;
 
 /** The digest that chains decision records: it covers every field of a record but the digest itself. */
 public final class RecordDigest {
@@ -15,12 +19,14 @@ public final class RecordDigest {
 
     /** SHA-256 over the meaning of a record, as 64 hexadecimal digits; the record's own {@code hash} is left out. */
     public static String of(DecisionRecord record) {
-        Digest digest = new Digest("decision/3");
+        Digest digest = new Digest("decision/4");
         digest.text(record.experiment())
                 .number(record.sequence())
                 .text(record.occasion().code())
                 .number(record.windowEnd().toEpochMilli())
                 .text(record.planDigest());
+        add(digest, record.plan());
+        add(digest, record.amendment());
         digest.number(record.counts().size());
         for (VariantCount count : record.counts()) {
             digest.number(count.epoch())
@@ -34,9 +40,9 @@ public final class RecordDigest {
         }
         digest.number(record.idleSealed());
         add(digest, record.split());
-        digest.text(record.trust().code())
-                .text(record.trustReason())
-                .text(record.verdict().code());
+        digest.text(record.trust().code()).text(record.trustReason());
+        add(digest, record.silence());
+        digest.text(record.verdict().code());
         digest.number(record.comparisons().size());
         record.comparisons().forEach(comparison -> add(digest, comparison));
         digest.text(record.engineVersion()).text(record.previous());
@@ -45,23 +51,47 @@ public final class RecordDigest {
 
     /** The same record with its digest filled in. */
     public static DecisionRecord seal(DecisionRecord record) {
-        return new DecisionRecord(
-                record.experiment(),
-                record.sequence(),
-                record.occasion(),
-                record.windowEnd(),
-                record.planDigest(),
-                record.counts(),
-                record.outcomes(),
-                record.idleSealed(),
-                record.split(),
-                record.trust(),
-                record.trustReason(),
-                record.verdict(),
-                record.comparisons(),
-                record.engineVersion(),
-                record.previous(),
-                of(record));
+        return record.chained(record.previous(), of(record));
+    }
+
+    private static void add(Digest digest, Plan plan) {
+        if (present(digest, plan)) {
+            digest.text(PlanDigest.of(plan)).number(plan.amendments().size());
+            plan.amendments().forEach(amendment -> add(digest, amendment));
+        }
+    }
+
+    private static void add(Digest digest, Amendment amendment) {
+        if (present(digest, amendment)) {
+            digest.number(amendment.at().toEpochMilli()).text(amendment.reason());
+            Amendment.Change change = amendment.change();
+            if (change instanceof Amendment.End other) {
+                digest.text("end").number(other.end().toEpochMilli());
+            } else if (change instanceof Amendment.Shares other) {
+                digest.text("shares").number(other.shares().size());
+                new TreeMap<>(other.shares())
+                        .forEach((variant, share) -> digest.text(variant).real(share));
+            } else {
+                digest.text("stop");
+            }
+        }
+    }
+
+    private static void add(Digest digest, Silence silence) {
+        if (present(digest, silence)) {
+            digest.text(silence.variant())
+                    .number(silence.since().toEpochMilli())
+                    .number(silence.due());
+        }
+    }
+
+    private static void add(Digest digest, SplitPeak peak) {
+        if (present(digest, peak)) {
+            digest.real(peak.logBayesFactor()).number(peak.units().size());
+            for (SplitPeak.EpochUnits units : peak.units()) {
+                digest.number(units.epoch()).text(units.variant()).number(units.units());
+            }
+        }
     }
 
     private static void add(Digest digest, Split split) {
@@ -70,6 +100,7 @@ public final class RecordDigest {
                 .real(split.pearsonChiSquare())
                 .number(split.pearsonDegreesOfFreedom())
                 .real(split.pearsonPValue());
+        add(digest, split.peak());
         add(digest, split.origin());
     }
 

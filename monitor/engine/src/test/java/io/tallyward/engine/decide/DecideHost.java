@@ -11,6 +11,7 @@ import io.tallyward.engine.count.WindowTally.SegmentCell;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanDigest;
 import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.engine.record.DecisionRecord.Occasion;
 import io.tallyward.engine.record.Notice;
 import java.util.ArrayList;
 import java.util.Arrays;
@@ -138,8 +139,16 @@ final class DecideHost {
         return log;
     }
 
-    List<DecisionRecord> decisions() {
+    /** All records, that of the plan first. */
+    List<DecisionRecord> records() {
         return List.copyOf(decisions);
+    }
+
+    /** What was decided under the plan. */
+    List<DecisionRecord> decisions() {
+        return decisions.stream()
+                .filter(record -> record.occasion() != Occasion.PLAN)
+                .toList();
     }
 
     DecisionRecord lastDecision() {

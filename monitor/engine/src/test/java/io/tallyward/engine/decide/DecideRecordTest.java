@@ -191,7 +191,8 @@ class DecideRecordTest {
             DecideHost host = run(plan, interleaved(stream(plan, seed), new Random(seed)));
             String previous = DecisionRecord.NO_PREVIOUS;
             int sequence = 0;
-            for (DecisionRecord record : host.decisions()) {
+            assertEquals(plan, host.records().get(0).plan(), "seed " + seed);
+            for (DecisionRecord record : host.records()) {
                 assertEquals(++sequence, record.sequence(), "seed " + seed);
                 assertEquals(previous, record.previous(), "seed " + seed);
                 assertEquals(RecordDigest.of(record), record.hash(), "seed " + seed);

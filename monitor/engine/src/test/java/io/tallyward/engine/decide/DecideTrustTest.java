@@ -13,6 +13,9 @@ import io.tallyward.engine.plan.TrustLimits;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.DecisionRecord.Occasion;
 import io.tallyward.engine.record.Notice;
+import io.tallyward.engine.record.Silence;
+import io.tallyward.engine.record.SplitPeak;
+import io.tallyward.engine.record.SplitPeak.EpochUnits;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
 import java.time.Duration;
@@ -82,6 +85,9 @@ class DecideTrustTest {
         assertEquals(Trust.MISMATCH, host.view().trust());
         assertTrue(host.view().split().logBayesFactor() < 0, "by now the counts are even");
         assertTrue(host.view().split().sequentialPValue() <= 0.001, "the p-value never rises");
+        SplitPeak peak = host.view().split().peak();
+        assertEquals(List.of(new EpochUnits(0, "plain", 1000), new EpochUnits(0, "wide", 700)), peak.units());
+        assertEquals(host.view().split().sequentialPValue(), StrictMath.exp(-peak.logBayesFactor()));
     }
 
     @Test
@@ -104,7 +110,9 @@ class DecideTrustTest {
         hours(6, 7, 1, 0, 0);
         DecisionRecord look = host.lastDecision();
         assertEquals(Trust.STARVED, look.trust());
-        assertEquals("no trial of wide for 6.0 h, although about 21 were due", look.trustReason());
+        assertEquals(
+                "no trial of wide since 2026-05-04T06:00:00Z (6.0 h), although about 21 were due", look.trustReason());
+        assertEquals(new Silence("wide", Plans.FROM.plus(Duration.ofHours(6)), 21), look.silence());
         assertEquals(Verdict.STOP_BENEFIT, look.comparisons().get(0).held());
         assertEquals(List.of("starved"), host.noticeKinds());
         hours(1, 7, 1, 7, 1);
@@ -112,6 +120,7 @@ class DecideTrustTest {
         assertEquals(Occasion.TRUST, recovered.occasion());
         assertEquals(Trust.SOUND, recovered.trust());
         assertEquals("", recovered.trustReason());
+        assertNull(recovered.silence());
         assertEquals(Verdict.STOP_BENEFIT, recovered.verdict());
         assertEquals(List.of("starved", "recovered", "stop wide"), host.noticeKinds());
         assertNull(host.view().comparisons().get("wide").held());
@@ -124,7 +133,9 @@ class DecideTrustTest {
         assertEquals(Trust.SOUND, host.view().trust());
         host.quiet(1);
         assertEquals(Trust.STARVED, host.view().trust());
-        assertEquals("no trial of any variant for 6.0 h", host.view().trustReason());
+        assertEquals(
+                "no trial of any variant since 2026-05-04T01:00:00Z (6.0 h)",
+                host.view().trustReason());
     }
 
     @Test

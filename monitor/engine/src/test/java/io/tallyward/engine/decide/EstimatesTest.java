@@ -205,6 +205,7 @@ class EstimatesTest {
         for (int again = 0; again < 2; again++) {
             List<DecisionRecord> full = decisions(plan, new DecisionMemo(0), Detail.FULL);
             assertEquals(full, decisions(plan, memo, Detail.FULL), "a memo changes nothing");
+            assertEquals(plan, full.remove(0).plan(), "a bare record has no chain that would need the plan");
             List<DecisionRecord> bare = decisions(plan, memo, Detail.BARE);
             assertEquals(full.size(), bare.size());
             for (int i = 0; i < full.size(); i++) {

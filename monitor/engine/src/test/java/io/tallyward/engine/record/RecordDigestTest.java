@@ -4,7 +4,10 @@ import static org.junit.jupiter.api.Assertions.assertEquals;
 import static org.junit.jupiter.api.Assertions.assertNotEquals;
 import static org.junit.jupiter.api.Assertions.assertTrue;
 
+import io.tallyward.engine.Plans;
 import io.tallyward.engine.count.OutcomeCounts;
+import io.tallyward.engine.plan.Amendment;
+import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.Occasion;
 import io.tallyward.engine.record.DecisionRecord.Split;
@@ -69,6 +72,9 @@ class RecordDigestTest {
                     6,
                     true));
 
+    private static final SplitPeak PEAK = new SplitPeak(
+            0.25, List.of(new SplitPeak.EpochUnits(0, "plain", 40), new SplitPeak.EpochUnits(0, "wide", 55)));
+
     /** What a record may lack. */
     private static final Set<Class<?>> OPTIONAL = Set.of(
             Estimated.class,
@@ -76,6 +82,10 @@ class RecordDigestTest {
             Adjusted.class,
             Clustering.class,
             UnitTotals.class,
+            Plan.class,
+            Amendment.class,
+            Silence.class,
+            SplitPeak.class,
             SplitOrigin.class,
             SegmentSplit.class);
 
@@ -85,14 +95,20 @@ class RecordDigestTest {
             Occasion.LOOK,
             Instant.parse("2026-05-05T00:00:00Z"),
             "a".repeat(64),
+            Plans.plan("quay-banner").build(),
+            new Amendment(
+                    Instant.parse("2026-05-05T00:00:00Z"),
+                    "a ramp",
+                    new Amendment.Shares(Map.of("plain", 0.25, "wide", 0.75))),
             List.of(
                     new VariantCount(0, "plain", 100, 20, new UnitTotals(40, 310, 62, 24)),
                     new VariantCount(0, "wide", 101, 25, new UnitTotals(41, 315, 77, 31))),
             OutcomeCounts.of(201, 45, 3, 2, 1, 5, 6, 7, 0),
             4,
-            new Split(-1.5, 1, 0.25, 1, 0.6, ORIGIN),
+            new Split(-1.5, 1, 0.25, 1, 0.6, PEAK, ORIGIN),
             Trust.SOUND,
             "",
+            new Silence("wide", Instant.parse("2026-05-04T18:00:00Z"), 31),
             Verdict.CONTINUE,
             List.of(LOOK),
             "1",
@@ -135,6 +151,16 @@ class RecordDigestTest {
             others.put(name, moment.plusMillis(1));
         } else if (value instanceof OutcomeCounts outcomes) {
             collectOutcomes(name, outcomes, others);
+        } else if (value instanceof Plan plan) {
+            others.put(name + "=other", Plans.plan("quay-banner").alpha(0.01).build());
+            others.put(name + "=amended", plan.amended(List.of(RECORD.amendment())));
+            others.put(name + "=null", null);
+        } else if (value instanceof Amendment.Change) {
+            others.put(name + "=end", new Amendment.End(RECORD.windowEnd()));
+            others.put(name + "=later end", new Amendment.End(RECORD.windowEnd().plusMillis(1)));
+            others.put(name + "=stop", new Amendment.Stop());
+            others.put(name + "=shares", new Amendment.Shares(Map.of("plain", 0.5, "wide", 0.5)));
+            others.put(name + "=other", new Amendment.Shares(Map.of("plain", 0.25, "tall", 0.75)));
         } else if (value instanceof Record inner) {
             neighbours(inner).forEach((place, changed) -> others.put(name + "." + place, changed));
             if (OPTIONAL.contains(type)) {

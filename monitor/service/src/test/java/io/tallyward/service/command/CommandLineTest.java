@@ -95,7 +95,7 @@ class CommandLineTest {
     @Test
     void tellsItsVersion() {
         assertEquals(
-                new CommandRun(0, List.of("tallyward development, deciding rules 3"), List.of()),
+                new CommandRun(0, List.of("tallyward development, deciding rules 4"), List.of()),
                 CommandRun.of("--version"));
     }
 

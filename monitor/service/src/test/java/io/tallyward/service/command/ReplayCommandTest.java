@@ -188,7 +188,7 @@ class ReplayCommandTest {
         assertEquals(single.ofType("outcomes"), run.ofType("outcomes"), seed);
         assertEquals(single.ofType("input"), run.ofType("input"), seed);
         assertEquals(decisions(single), decisions(run), seed);
-        assertEquals(4, run.ofType("decision").size(), seed);
+        assertEquals(5, run.ofType("decision").size(), "the plan and four decisions, " + seed);
     }
 
     /** Decisions without what depends on when a partition saw an event of a sealed trial: its outcome, and the digests. */

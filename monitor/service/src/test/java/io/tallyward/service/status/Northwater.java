@@ -411,7 +411,7 @@ public final class Northwater {
             return new Split(0, 1, 0, 0, 1);
         }
         return trust == Trust.MISMATCH
-                ? new Split(19.31, 4.1e-9, 48.1, 1, 4.0e-12, ORIGIN)
+                ? new Split(19.31, 4.1e-9, 48.1, 1, 4.0e-12, null, ORIGIN)
                 : new Split(-3.2, 1.0, 0.02, 1, 0.887);
     }
 
