@@ -16,6 +16,7 @@ import java.util.ArrayList;
 import java.util.List;
 import java.util.Optional;
 import java.util.function.ToLongFunction;
+import java.util.stream.IntStream;
 
 /**
  * Trials and successes of the complete windows, by allocation epoch and variant; with the sums over units where a plan counts
@@ -36,6 +37,64 @@ final class CumulativeCounts {
                 cells[epoch][variant] = Cell.ofUnits(epoch, variant, 0, 0);
             }
         }
+    }
+
+    /**
+     * The counts that a record carries.
+     *
+     * @throws IllegalArgumentException if the plan has no such epoch or variant, or the numbers cannot be counts
+     */
+    static CumulativeCounts of(Plan plan, List<VariantCount> recorded) {
+        CumulativeCounts counts = new CumulativeCounts(plan);
+        for (VariantCount count : recorded) {
+            int variant = plan.variantIndex(count.variant());
+            if (!(count.epoch() >= 0 && count.epoch() < counts.epochs() && variant >= 0)) {
+                throw new IllegalArgumentException("counts: epoch " + count.epoch() + ", variant " + count.variant()
+                        + " (expected: one of the " + counts.epochs() + " epochs and of the variants of the plan)");
+            }
+            counts.add(cell(count, variant));
+        }
+        return counts;
+    }
+
+    private static Cell cell(VariantCount count, int variant) {
+        UnitTotals totals = count.unitTotals();
+        return totals == null
+                ? Cell.ofUnits(count.epoch(), variant, count.trials(), count.successes())
+                : new Cell(
+                        count.epoch(),
+                        variant,
+                        totals.units(),
+                        count.trials(),
+                        count.successes(),
+                        totals.trialSquares(),
+                        totals.products(),
+                        totals.successSquares());
+    }
+
+    /** Whether nothing is counted. */
+    boolean none() {
+        return !IntStream.range(0, cells.length).anyMatch(this::anyTrials);
+    }
+
+    /** Whether every number is at least that of earlier counts, which may have fewer epochs. */
+    boolean includes(CumulativeCounts earlier) {
+        for (int epoch = 0; epoch < earlier.cells.length; epoch++) {
+            for (int variant = 0; variant < cells[epoch].length; variant++) {
+                Cell now = cells[epoch][variant];
+                Cell then = earlier.cells[epoch][variant];
+                boolean grown = now.trials() >= then.trials()
+                        && now.successes() >= then.successes()
+                        && now.units() >= then.units()
+                        && now.trialSquares() >= then.trialSquares()
+                        && now.products() >= then.products()
+                        && now.successSquares() >= then.successSquares();
+                if (!grown) {
+                    return false;
+                }
+            }
+        }
+        return true;
     }
 
     void add(Cell cell) {

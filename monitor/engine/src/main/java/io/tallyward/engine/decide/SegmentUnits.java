@@ -18,6 +18,10 @@ import java.util.TreeMap;
 final class SegmentUnits {
 
     private static final int MOST_VALUES = 32;
+
+    /** Those that are kept, and the rest of them. */
+    static final int MOST_NAMES = MOST_VALUES + 1;
+
     private static final String OTHER = "other";
 
     private final int variants;

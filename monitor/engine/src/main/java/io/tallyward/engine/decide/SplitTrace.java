@@ -6,6 +6,7 @@ import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.SplitOrigin;
 import io.tallyward.engine.record.SplitOrigin.PlannedUnits;
 import io.tallyward.engine.record.SplitOrigin.SegmentSplit;
+import io.tallyward.statistics.multiplicity.AdjustedProbability;
 import io.tallyward.statistics.split.PearsonSplit;
 import io.tallyward.statistics.split.SplitChangePoint;
 import io.tallyward.statistics.split.WorstSegment;
@@ -14,6 +15,7 @@ import java.io.DataOutput;
 import java.io.IOException;
 import java.time.Instant;
 import java.util.ArrayList;
+import java.util.Arrays;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
@@ -115,6 +117,11 @@ final class SplitTrace {
     }
 
     private List<PlannedUnits> planned(SplitWatch watch, int epoch, long[] units) {
+        return planned(plan, watch, epoch, units);
+    }
+
+    /** Units of the variants that are watched, beside their planned shares. */
+    static List<PlannedUnits> planned(Plan plan, SplitWatch watch, int epoch, long[] units) {
         double[] shares = watch.shares(epoch);
         List<PlannedUnits> list = new ArrayList<>();
         for (int i = 0; i < units.length; i++) {
@@ -155,19 +162,41 @@ final class SplitTrace {
 
     private SegmentSplit segment(SplitWatch watch, int epoch, WorstSegment found, long[] units, long[] elsewhere) {
         int separator = found.segment().indexOf(SEPARATOR);
-        double contrast = Math.min(
-                1, found.judged() * PearsonSplit.between(units, elsewhere).pValue());
-        double alpha = plan.splitCheck().alpha();
-        return new SegmentSplit(
+        return segment(
+                plan,
                 found.segment().substring(0, separator),
                 found.segment().substring(separator + 1),
                 planned(watch, epoch, units),
                 planned(watch, epoch, elsewhere),
-                found.split().chiSquare(),
-                found.adjustedPValue(),
+                found.judged());
+    }
+
+    /** What the units of a segment say; of those judged it is the one furthest off, whose p-value is the smallest. */
+    static SegmentSplit segment(
+            Plan plan, String field, String value, List<PlannedUnits> units, List<PlannedUnits> elsewhere, int judged) {
+        double[] shares = units.stream().mapToDouble(PlannedUnits::planned).toArray();
+        PearsonSplit split = PearsonSplit.of(shares, units(units));
+        double[] all = new double[judged];
+        Arrays.fill(all, 1);
+        all[0] = split.pValue();
+        double adjusted = AdjustedProbability.HOLM.of(all)[0];
+        double contrast = Math.min(
+                1, judged * PearsonSplit.between(units(units), units(elsewhere)).pValue());
+        double alpha = plan.splitCheck().alpha();
+        return new SegmentSplit(
+                field,
+                value,
+                units,
+                elsewhere,
+                split.chiSquare(),
+                adjusted,
                 contrast,
-                found.judged(),
-                found.adjustedPValue() <= alpha && contrast <= alpha);
+                judged,
+                adjusted <= alpha && contrast <= alpha);
+    }
+
+    static long[] units(List<PlannedUnits> variants) {
+        return variants.stream().mapToLong(PlannedUnits::units).toArray();
     }
 
     void write(DataOutput out) throws IOException {

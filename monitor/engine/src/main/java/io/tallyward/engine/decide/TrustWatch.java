@@ -27,7 +27,7 @@ final class TrustWatch {
     private static final long EVENTS_TO_JUDGE = 1_000;
 
     /** A variant with this many trials due to it and none seen is silent; by chance that has probability e^-20. */
-    private static final double TRIALS_DUE = 20;
+    static final long TRIALS_DUE = 20;
 
     /** A complaint about a share ends once the share is below this part of its limit. */
     private static final double RECOVERY = 0.8;
@@ -75,6 +75,22 @@ final class TrustWatch {
     /** No longer expects trials of a variant: whoever follows the verdict on it stops showing it. */
     void leaveOut(int variant) {
         leftOut[variant] = true;
+    }
+
+    /**
+     * Stands where it stood when a judgement was recorded, but for silence. A complaint that is beneath a worse one is not seen
+     * in records.
+     *
+     * @param told the complaint that was told, or sound
+     * @param lateBeneath whether there was one about late events beneath it
+     */
+    void standAs(Trust told, boolean lateBeneath) {
+        crossoverComplaint = told == Trust.CROSSOVER;
+        lateComplaint = told == Trust.LATE || lateBeneath;
+    }
+
+    boolean isLeftOut(int variant) {
+        return leftOut[variant];
     }
 
     /** Takes note of a complete window. */

@@ -17,6 +17,14 @@ public record Spending(Family family, double parameter, SortedMap<Double, Double
 
     public Spending {
         points = Collections.unmodifiableSortedMap(new TreeMap<>(points));
+        if (!(family.parametric() || parameter == 0)) {
+            throw new IllegalArgumentException(
+                    "parameter: " + parameter + " (expected: 0, as " + family.code() + " has none)");
+        }
+        if (!(family == Family.TABLE || points.isEmpty())) {
+            throw new IllegalArgumentException(
+                    "points: " + points.size() + " (expected: none, as " + family.code() + " has none)");
+        }
     }
 
     /** A function of a family that may have a parameter. */
