@@ -1,5 +1,6 @@
 package io.tallyward.service;
 
+import io.tallyward.connector.kafka.CommittedTopic;
 import io.tallyward.connector.kafka.InternalTopics;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanChangedException;
@@ -27,6 +28,7 @@ public final class Tallyward {
                         System.getenv(),
                         (config, plans) -> start(config, plans, stop),
                         InternalTopics::partitions,
+                        CommittedTopic::read,
                         stop)
                 .execute(arguments);
         stop.ended(status);

@@ -12,6 +12,7 @@ import io.tallyward.engine.record.SplitPeak.EpochUnits;
 import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
 import java.io.IOException;
+import java.util.Optional;
 
 /**
  * Decision records as JSON, the published form: {@code schema/decision.schema.json}. Every record begins with
@@ -39,11 +40,24 @@ public final class DecisionJson {
      * @throws RecordFormatException if a member is missing, wrong or not known, as its digest would not cover it
      */
     public static DecisionRecord read(byte[] bytes) {
-        JsonMembers decision = JsonMembers.of("decision", bytes);
+        JsonMembers decision = JsonMembers.of(TYPE, bytes);
         if (!decision.text("type").equals(TYPE)) {
-            throw new RecordFormatException(
-                    "decision.type: " + Quoted.of(decision.text("type")) + " (expected: " + TYPE + ")");
+            throw decision.unexpected("type", TYPE);
         }
+        return read(decision);
+    }
+
+    /**
+     * The same among documents of other types, which are passed over.
+     *
+     * @throws RecordFormatException if it is a decision, or has no type, and a member is missing, wrong or not known
+     */
+    public static Optional<DecisionRecord> readIfDecision(byte[] bytes) {
+        JsonMembers document = JsonMembers.of(TYPE, bytes);
+        return document.text("type").equals(TYPE) ? Optional.of(read(document)) : Optional.empty();
+    }
+
+    private static DecisionRecord read(JsonMembers decision) {
         decision.only(DecisionRecord.class, "type");
         return new DecisionRecord(
                 decision.text("experiment"),

@@ -1,6 +1,7 @@
 package io.tallyward.connector.format;
 
 import com.fasterxml.jackson.core.JsonProcessingException;
+import com.fasterxml.jackson.core.io.JsonEOFException;
 import com.fasterxml.jackson.databind.DeserializationFeature;
 import com.fasterxml.jackson.databind.JsonNode;
 import com.fasterxml.jackson.databind.ObjectReader;
@@ -45,6 +46,8 @@ final class JsonMembers {
     static JsonMembers of(String what, byte[] bytes) {
         try {
             return member(what, READER.readTree(bytes));
+        } catch (JsonEOFException e) {
+            throw new RecordFormatException(what + ": it ends in the middle", true);
         } catch (JsonProcessingException e) {
             throw new RecordFormatException(what + ": not JSON: " + e.getOriginalMessage());
         } catch (IOException e) {

@@ -90,6 +90,15 @@ final class ClientSettings {
         return layered(group.clientProperties(), Map.of("max.poll.records", "5000"), fixed);
     }
 
+    /** For reading a topic once, as a member of no group. */
+    static Map<String, Object> once(Map<String, String> clientProperties) {
+        Map<String, String> fixed = new HashMap<>(FIXED_FOR_READING);
+        fixed.put("auto.offset.reset", "earliest");
+        Map<String, Object> settings = layered(clientProperties, Map.of("max.poll.records", "5000"), fixed);
+        settings.keySet().removeAll(Set.of("group.id", "group.protocol"));
+        return settings;
+    }
+
     /**
      * For writing in transactions.
      *

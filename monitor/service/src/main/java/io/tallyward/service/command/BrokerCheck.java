@@ -39,7 +39,7 @@ record BrokerCheck(Map<String, Integer> partitions, List<String> problems) {
         }
     }
 
-    private static Map<String, String> clientProperties(ServiceConfig config) {
+    static Map<String, String> clientProperties(ServiceConfig config) {
         Map<String, String> properties = new HashMap<>();
         properties.put("default.api.timeout.ms", PATIENCE_MILLIS);
         properties.put("request.timeout.ms", PATIENCE_MILLIS);

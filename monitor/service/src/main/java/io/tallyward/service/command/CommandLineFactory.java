@@ -26,8 +26,8 @@ public final class CommandLineFactory {
             versionProvider = Version.class,
             footer = {
                 "",
-                "Exit status: 0 fine, 2 bad input, 3 broken surroundings;",
-                "1 is reserved for commands whose answer can be no.",
+                "Exit status: 0 fine, 1 the answer is no (of verify),",
+                "2 bad input, 3 broken surroundings.",
                 "tallyward COMMAND --help explains a command."
             })
     private static final class Root {}
@@ -51,16 +51,24 @@ public final class CommandLineFactory {
      * @param environment where secrets may be
      * @param starter starts the service
      * @param lookup asks the brokers about topics
+     * @param reading reads topics
      * @param stop tells the service to stop
      */
     public static CommandLine of(
-            Map<String, String> environment, ServiceStarter starter, TopicLookup lookup, StopSignal stop) {
+            Map<String, String> environment,
+            ServiceStarter starter,
+            TopicLookup lookup,
+            TopicReading reading,
+            StopSignal stop) {
         return new CommandLine(new Root())
                 .addSubcommand(new WatchCommand(environment, starter, stop))
                 .addSubcommand(new CheckCommand(environment, lookup))
                 .addSubcommand(new BoundariesCommand())
                 .addSubcommand(new RehearseCommand())
                 .addSubcommand(new ReplayCommand())
+                .addSubcommand(new VerifyCommand(environment, reading))
+                .addSubcommand(new ExplainCommand(environment, reading))
+                .addSubcommand(new SchemaCommand())
                 .setParameterExceptionHandler(CommandLineFactory::refuse);
     }
 

@@ -4,7 +4,7 @@ package io.tallyward.service.command;
 public enum ExitCode {
     /** Everything is fine. */
     FINE(0),
-    /** The command worked, and the answer to its question is no. Reserved: no command asks such a question yet. */
+    /** The command worked, and the answer to its question is no. */
     ANSWER_IS_NO(1),
     /** The input (arguments, configuration, plans, events) cannot be used. */
     BAD_INPUT(2),

@@ -17,8 +17,8 @@ class CommandLineTest {
         assertEquals(List.of(), help.err());
         assertEquals(
                 List.of(
-                        "Exit status: 0 fine, 2 bad input, 3 broken surroundings;",
-                        "1 is reserved for commands whose answer can be no.",
+                        "Exit status: 0 fine, 1 the answer is no (of verify),",
+                        "2 bad input, 3 broken surroundings.",
                         "tallyward COMMAND --help explains a command."),
                 help.out().subList(help.out().size() - 3, help.out().size()));
     }

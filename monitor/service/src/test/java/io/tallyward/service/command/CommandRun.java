@@ -26,10 +26,36 @@ record CommandRun(int status, List<String> out, List<String> err) {
                 arguments);
     }
 
+    /** A run in which a topic has records. */
+    static CommandRun of(TopicReading reading, String... arguments) {
+        return of(
+                (config, plans) -> {
+                    throw new AssertionError("the service was started");
+                },
+                (properties, topics) -> {
+                    throw new AssertionError("the broker was asked");
+                },
+                reading,
+                () -> {},
+                arguments);
+    }
+
     static CommandRun of(ServiceStarter starter, TopicLookup lookup, StopSignal stop, String... arguments) {
+        return of(
+                starter,
+                lookup,
+                (properties, topic, values) -> {
+                    throw new AssertionError("a topic was read");
+                },
+                stop,
+                arguments);
+    }
+
+    private static CommandRun of(
+            ServiceStarter starter, TopicLookup lookup, TopicReading reading, StopSignal stop, String... arguments) {
         StringWriter out = new StringWriter();
         StringWriter err = new StringWriter();
-        CommandLine commandLine = CommandLineFactory.of(Map.of(), starter, lookup, stop)
+        CommandLine commandLine = CommandLineFactory.of(Map.of(), starter, lookup, reading, stop)
                 .setOut(new PrintWriter(out))
                 .setErr(new PrintWriter(err));
         int status = commandLine.execute(arguments);

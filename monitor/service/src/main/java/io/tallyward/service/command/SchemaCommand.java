@@ -1,0 +1,43 @@
+package io.tallyward.service.command;
+
+import io.tallyward.connector.format.PublishedSchema;
+import io.tallyward.service.config.document.BadInputException;
+import io.tallyward.service.config.document.Problem;
+import java.util.Arrays;
+import java.util.List;
+import java.util.stream.Collectors;
+import picocli.CommandLine.Command;
+import picocli.CommandLine.Parameters;
+
+/** Prints a published schema. */
+@Command(
+        name = "schema",
+        description = "Print the JSON Schema (2020-12) of events, decision records or notices.",
+        mixinStandardHelpOptions = true,
+        exitCodeListHeading = ExitCode.HEADING,
+        exitCodeList = {
+            "0:The schema was printed.",
+            "2:There is no schema of that name.",
+            "3:Something unforeseen happened."
+        })
+final class SchemaCommand extends CommandBase {
+
+    @Parameters(paramLabel = "NAME", description = "One of event, decision, notice.")
+    private String name;
+
+    @Override
+    ExitCode run(Output output) throws BadInputException {
+        PublishedSchema schema = Arrays.stream(PublishedSchema.values())
+                .filter(each -> each.code().equals(name))
+                .findFirst()
+                .orElseThrow(() -> new BadInputException(List.of(Problem.of(
+                        "",
+                        "schema " + name,
+                        Arrays.stream(PublishedSchema.values())
+                                .map(PublishedSchema::code)
+                                .collect(Collectors.joining(", ")),
+                        ""))));
+        schema.text().lines().forEach(output::line);
+        return ExitCode.FINE;
+    }
+}
