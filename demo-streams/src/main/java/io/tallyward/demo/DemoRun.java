@@ -226,6 +226,7 @@ final class DemoRun implements AutoCloseable {
         List<Finding> others = new ArrayList<>();
         others.add(Report.rejects(truth, counts));
         others.add(Report.signatures(receiver.refusals()));
+        others.add(VerifyRun.of(configuration, directory.resolve("verify.log")));
         if (options.replay()) {
             others.add(compareWithReplay(standings));
         }
