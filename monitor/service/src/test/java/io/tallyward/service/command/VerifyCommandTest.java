@@ -4,17 +4,32 @@ import static org.junit.jupiter.api.Assertions.assertEquals;
 import static org.junit.jupiter.api.Assertions.assertTrue;
 
 import com.fasterxml.jackson.databind.JsonNode;
+import com.fasterxml.jackson.databind.json.JsonMapper;
+import com.fasterxml.jackson.databind.node.ArrayNode;
+import com.fasterxml.jackson.databind.node.BooleanNode;
+import com.fasterxml.jackson.databind.node.ContainerNode;
+import com.fasterxml.jackson.databind.node.DoubleNode;
+import com.fasterxml.jackson.databind.node.LongNode;
+import com.fasterxml.jackson.databind.node.ObjectNode;
+import com.fasterxml.jackson.databind.node.TextNode;
+import io.tallyward.connector.format.DecisionJson;
+import io.tallyward.connector.format.RecordFormatException;
+import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.engine.verify.RecordVerifier;
 import java.io.IOException;
 import java.nio.charset.StandardCharsets;
 import java.nio.file.Files;
 import java.nio.file.Path;
 import java.util.ArrayList;
 import java.util.List;
+import java.util.Optional;
 import org.junit.jupiter.api.BeforeEach;
 import org.junit.jupiter.api.Test;
 import org.junit.jupiter.api.io.TempDir;
 
 class VerifyCommandTest {
+
+    private static final JsonMapper MAPPER = new JsonMapper();
 
     @TempDir
     Path directory;
@@ -93,6 +108,87 @@ class VerifyCommandTest {
                 spoilt.err().get(0).contains("line 2 is no decision record of this version"),
                 spoilt.err().toString());
         assertTrue(spoilt.out().get(0).contains("record 1 is followed by record 3: 1 missing in between"));
+    }
+
+    /** As a file may be changed by hand: every leaf of every record, one at a time. */
+    @Test
+    void findsEveryLeafThatWasChanged() throws IOException {
+        int leaves = 0;
+        for (int line = 0; line < log.size(); line++) {
+            JsonNode tree = MAPPER.readTree(log.get(line));
+            for (ContainerNode<?> parent : containers(tree)) {
+                for (String place : places(parent)) {
+                    JsonNode leaf = at(parent, place);
+                    if (leaf.isContainerNode()) {
+                        continue;
+                    }
+                    put(parent, place, other(leaf));
+                    List<String> changed = new ArrayList<>(log);
+                    changed.set(line, tree.toString());
+                    assertTrue(isFound(changed), "line " + (line + 1) + ", " + place + " in " + parent);
+                    put(parent, place, leaf);
+                    leaves++;
+                }
+            }
+        }
+        assertTrue(leaves > 300, "leaves: " + leaves);
+    }
+
+    private static boolean isFound(List<String> lines) {
+        RecordVerifier verifier = new RecordVerifier();
+        boolean found = false;
+        for (String line : lines) {
+            try {
+                Optional<DecisionRecord> record = DecisionJson.readIfDecision(line.getBytes(StandardCharsets.UTF_8));
+                found |= record.isEmpty() || verifier.take(record.get()).isPresent();
+            } catch (RecordFormatException unreadable) {
+                found = true;
+            }
+        }
+        return found;
+    }
+
+    private static JsonNode other(JsonNode leaf) {
+        if (leaf.isIntegralNumber()) {
+            return LongNode.valueOf(leaf.longValue() + 1);
+        }
+        if (leaf.isNumber()) {
+            return DoubleNode.valueOf(Math.nextUp(leaf.doubleValue()));
+        }
+        if (leaf.isBoolean()) {
+            return BooleanNode.valueOf(!leaf.booleanValue());
+        }
+        return leaf.isNull() ? DoubleNode.valueOf(0.5) : TextNode.valueOf(leaf.textValue() + "x");
+    }
+
+    private static List<ContainerNode<?>> containers(JsonNode tree) {
+        List<ContainerNode<?>> containers = new ArrayList<>();
+        if (tree instanceof ContainerNode<?> container) {
+            containers.add(container);
+        }
+        tree.forEach(child -> containers.addAll(containers(child)));
+        return containers;
+    }
+
+    private static List<String> places(ContainerNode<?> parent) {
+        List<String> places = new ArrayList<>();
+        parent.fieldNames().forEachRemaining(places::add);
+        for (int i = 0; parent.isArray() && i < parent.size(); i++) {
+            places.add(String.valueOf(i));
+        }
+        return places;
+    }
+
+    private static JsonNode at(ContainerNode<?> parent, String place) {
+        return parent.isArray() ? parent.get(Integer.parseInt(place)) : parent.get(place);
+    }
+
+    private static void put(ContainerNode<?> parent, String place, JsonNode value) {
+        if (parent instanceof ArrayNode array) {
+            array.set(Integer.parseInt(place), value);
+        } else {
+            ((ObjectNode) parent).set(place, value);
+        }
     }
 
     @Test
