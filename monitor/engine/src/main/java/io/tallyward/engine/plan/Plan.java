@@ -46,7 +46,7 @@ public record Plan(
     private static final int MOST_VARIANTS = 15;
 
     /** They keep a moment of the run in 35 bits of milliseconds, a little more than a year. */
-    private static final Duration LONGEST_RUN = Duration.ofDays(397);
+    static final Duration LONGEST_RUN = Duration.ofDays(397);
 
     public Plan {
         Objects.requireNonNull(experiment, "experiment");

@@ -11,6 +11,7 @@ import java.util.TreeSet;
  */
 public final class PlanNames {
 
+    private final List<String> names;
     private final NameTable experiments;
     private final List<NameTable> variants;
     private final NameTable segments;
@@ -28,6 +29,21 @@ public final class PlanNames {
     }
 
     /**
+     * The names of plans with the segment fields in an order of their own.
+     *
+     * @param plans at most one per experiment
+     * @param segments all that any of the plans names, and perhaps more
+     */
+    public static PlanNames of(List<Plan> plans, List<String> segments) {
+        return new PlanNames(
+                plans.stream().map(Plan::experiment).toList(),
+                plans.stream()
+                        .map(plan -> plan.variants().stream().map(Variant::name).toList())
+                        .toList(),
+                segments);
+    }
+
+    /**
      * Names without their plans.
      *
      * @param experiments names of the experiments, all different
@@ -35,6 +51,7 @@ public final class PlanNames {
      * @param segments names of the segment fields that any plan names, all different
      */
     public PlanNames(List<String> experiments, List<List<String>> variants, Collection<String> segments) {
+        names = List.copyOf(experiments);
         this.experiments = new NameTable(experiments);
         this.variants = variants.stream().map(NameTable::new).toList();
         this.segments = new NameTable(segments);
@@ -43,6 +60,11 @@ public final class PlanNames {
     /** Names without their plans, none of which names a segment. */
     public PlanNames(List<String> experiments, List<List<String>> variants) {
         this(experiments, variants, List.of());
+    }
+
+    /** Name of the experiment at a position. */
+    public String experimentName(int experiment) {
+        return names.get(experiment);
     }
 
     /** The segment fields that any plan names, by position. */
