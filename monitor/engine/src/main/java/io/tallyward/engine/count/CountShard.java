@@ -2,18 +2,24 @@ package io.tallyward.engine.count;
 
 import io.tallyward.engine.event.Event;
 import io.tallyward.engine.event.EventSlot;
+import io.tallyward.engine.event.NameTable;
 import io.tallyward.engine.event.RejectReason;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanBook;
+import io.tallyward.engine.plan.PlanDigest;
 import io.tallyward.engine.plan.PlanNames;
 import io.tallyward.engine.shard.StateChange;
 import java.util.ArrayList;
 import java.util.Collection;
 import java.util.EnumMap;
 import java.util.LinkedHashMap;
+import java.util.LinkedHashSet;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 import java.util.OptionalLong;
+import java.util.Set;
+import java.util.TreeSet;
 
 /**
  * Counts one input partition. A pure state machine: the same records in the same order, with the same passages of time,
@@ -30,9 +36,12 @@ public final class CountShard {
     private final long maxSkewMillis;
     private final UnitHasher hasher;
     private final Watermarks watermarks;
-    private final PlanNames names;
+    private final byte[] unitKey;
     private final Map<String, ExperimentCounter> counters = new LinkedHashMap<>();
-    private final ExperimentCounter[] countersByPosition;
+    private final Set<String> unfrozen = new LinkedHashSet<>();
+    private final List<String> segmentFields = new ArrayList<>();
+    private PlanNames names;
+    private ExperimentCounter[] countersByPosition;
     private final EventSlot slot = new EventSlot();
     private final Map<RejectReason, Long> rejected = new EnumMap<>(RejectReason.class);
     private final CountState state;
@@ -47,7 +56,8 @@ public final class CountShard {
      *
      * @param partition number of the input partition
      * @param partitions how many input partitions there are
-     * @param plans the plans to count under, one per experiment
+     * @param plans the plans to count under, one per experiment, all of them frozen; more may be {@linkplain #adopt adopted}
+     *     later
      * @param settings settings of the stream
      * @param sources how many input topics meet in this shard, at least 1
      */
@@ -62,11 +72,8 @@ public final class CountShard {
         watermarks = new Watermarks(sources, settings.idleAfter().toMillis());
         state = new CountState(partitions, hasher.keyFingerprint());
         tallies = new SealedTallies(partition, partitions);
-        names = new PlanNames(plans);
-        for (Plan plan : plans) {
-            counters.put(plan.experiment(), new ExperimentCounter(plan, names.segments(), settings.unitKey()));
-        }
-        countersByPosition = counters.values().toArray(ExperimentCounter[]::new);
+        unitKey = settings.unitKey();
+        adopt(plans.stream().map(plan -> new PlanBook.Entry(plan, true)).toList());
         for (RejectReason reason : RejectReason.values()) {
             rejected.put(reason, 0L);
         }
@@ -84,9 +91,95 @@ public final class CountShard {
         nextSealAt = Long.MIN_VALUE;
     }
 
-    /** The experiments and variants that are counted here, by position. */
+    /** The experiments and variants that are counted here, by position; another object once other plans are adopted. */
     public PlanNames names() {
         return names;
+    }
+
+    /**
+     * Takes over what stands in the book of plans: counts experiments that are new, under another plan those of which nothing
+     * has been counted, and the others under their amendments. Experiments that are not named stay as they are.
+     *
+     * @throws io.tallyward.engine.plan.PlanChangedException when an experiment was counted under another plan
+     * @throws io.tallyward.engine.plan.LateAmendmentException when it is too late for an amendment
+     */
+    public void adopt(Collection<PlanBook.Entry> entries) {
+        addSegmentFields(entries);
+        NameTable fields = new NameTable(segmentFields);
+        boolean renamed = names == null;
+        for (PlanBook.Entry entry : entries) {
+            Plan plan = entry.plan();
+            ExperimentCounter present = counters.get(plan.experiment());
+            if (present == null || isOther(plan, present)) {
+                counters.put(plan.experiment(), successor(plan, fields, present));
+                renamed = true;
+            } else if (!plan.equals(present.plan())) {
+                present.amend(plan);
+            }
+            if (entry.frozen()) {
+                unfrozen.remove(plan.experiment());
+            } else {
+                unfrozen.add(plan.experiment());
+            }
+        }
+        if (renamed) {
+            names = PlanNames.of(
+                    counters.values().stream().map(ExperimentCounter::plan).toList(), segmentFields);
+            countersByPosition = counters.values().toArray(ExperimentCounter[]::new);
+        }
+        nextSealAt = Long.MIN_VALUE;
+        if (watermarks.slowest() != Watermarks.NONE && sealPassed()) {
+            shardChanged = true;
+        }
+    }
+
+    private ExperimentCounter successor(Plan plan, NameTable fields, ExperimentCounter presentOrNull) {
+        ExperimentCounter counter = new ExperimentCounter(plan, fields, unitKey);
+        if (presentOrNull != null) {
+            counter.succeed(presentOrNull.outcomes());
+        }
+        return counter;
+    }
+
+    private static boolean isOther(Plan plan, ExperimentCounter present) {
+        return !plan.equals(present.plan())
+                && present.isUntouched()
+                && !PlanDigest.of(plan).equals(present.planDigest());
+    }
+
+    /** Fields keep their positions, as units refer to them. */
+    private void addSegmentFields(Collection<PlanBook.Entry> entries) {
+        Set<String> added = new TreeSet<>();
+        entries.forEach(entry -> added.addAll(entry.plan().splitCheck().segments()));
+        segmentFields.forEach(added::remove);
+        segmentFields.addAll(added);
+    }
+
+    /**
+     * Whether the plan of an experiment has to be frozen before an event of it may be {@linkplain #apply taken}.
+     *
+     * @param experiment its position among the {@link #names}
+     * @param atMillis event time
+     */
+    public boolean mustFreeze(int experiment, long atMillis) {
+        if (unfrozen.isEmpty()) {
+            return false;
+        }
+        ExperimentCounter counter = countersByPosition[experiment];
+        return counter.isInside(atMillis) && unfrozen.contains(counter.plan().experiment());
+    }
+
+    /**
+     * The experiments whose first window would be sealed, were their plans frozen: nothing of it has been seen, which has to be
+     * told.
+     */
+    public List<String> dueToFreeze() {
+        if (unfrozen.isEmpty() || watermarks.slowest() == Watermarks.NONE) {
+            return List.of();
+        }
+        return unfrozen.stream()
+                .filter(experiment -> counters.get(experiment).nextSealAt() <= watermarks.slowest())
+                .toList();
     }
 
     /**
@@ -187,6 +280,9 @@ public final class CountShard {
         SealCause cause = watermarks.slowestIsAssumed() ? SealCause.IDLE : SealCause.WATERMARK;
         nextSealAt = Long.MAX_VALUE;
         for (ExperimentCounter counter : counters.values()) {
+            if (unfrozen.contains(counter.plan().experiment())) {
+                continue;
+            }
             seal(counter, watermark, cause);
             if (counter.isToBeArchived(watermark)) {
                 sealedState.addAll(CountState.forgetSegments(counter));

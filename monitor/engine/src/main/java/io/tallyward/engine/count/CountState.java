@@ -78,6 +78,7 @@ final class CountState {
         });
         return new StateChange(key, pack(out -> {
             out.writeUTF(counter.planDigest());
+            out.writeBoolean(counter.isUntouched());
             out.writeLong(counter.sealedUntil());
             out.writeBoolean(counter.isArchived());
             counter.outcomes().write(out);
@@ -244,7 +245,8 @@ final class CountState {
         }
         DataInputStream in = reader(value);
         String digest = in.readUTF();
-        if (!digest.equals(counter.planDigest())) {
+        boolean untouched = in.readBoolean();
+        if (!digest.equals(counter.planDigest()) && !untouched) {
             throw new PlanChangedException(counter.plan().experiment(), digest, counter.planDigest());
         }
         long sealedUntil = in.readLong();
@@ -254,6 +256,10 @@ final class CountState {
         for (int rest = in.readInt(); rest > 0; rest--) {
             long window = in.readLong();
             unsealed.put(window, OutcomeCounts.read(in));
+        }
+        if (untouched) {
+            counter.succeed(outcomes);
+            return;
         }
         counter.restore(sealedUntil, outcomes, unsealed);
         if (archived) {

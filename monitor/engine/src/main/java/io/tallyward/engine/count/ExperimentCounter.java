@@ -3,10 +3,14 @@ package io.tallyward.engine.count;
 import io.tallyward.engine.event.EventKind;
 import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.event.NameTable;
+import io.tallyward.engine.plan.Amendment;
 import io.tallyward.engine.plan.CountRule.CountBy;
+import io.tallyward.engine.plan.LateAmendmentException;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanChangedException;
 import io.tallyward.engine.plan.PlanDigest;
 import java.time.Duration;
+import java.time.Instant;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Map;
@@ -25,13 +29,14 @@ final class ExperimentCounter {
      */
     static final long ARCHIVE_AFTER = Duration.ofDays(1).toMillis();
 
-    private final Plan plan;
+    private Plan plan;
     private final String planDigest;
     private final long windowMillis;
     private final WindowGrid windows;
     private final long sealDelayMillis;
     private final long viewPatienceMillis;
-    private final long runEnd;
+    private final long runFrom;
+    private long runEnd;
     private final byte[] unitKey;
     private final Optional<SegmentTable> segments;
     private CountLedger ledger;
@@ -58,8 +63,9 @@ final class ExperimentCounter {
         windows = new WindowGrid(windowMillis);
         sealDelayMillis = plan.count().sealDelayMillis();
         viewPatienceMillis = plan.count().viewPatienceMillis();
-        runEnd = plan.run().end().toEpochMilli();
-        sealedUntil = plan.run().from().toEpochMilli();
+        runFrom = plan.run().from().toEpochMilli();
+        runEnd = plan.end().toEpochMilli();
+        sealedUntil = runFrom;
         reach = sealedUntil;
         List<String> named = plan.splitCheck().segments();
         segments = named.isEmpty() ? Optional.empty() : Optional.of(new SegmentTable(named, fields));
@@ -84,6 +90,46 @@ final class ExperimentCounter {
         return planDigest;
     }
 
+    /**
+     * Goes on under the same plan with more amendments. Nothing that they change may have been sealed.
+     *
+     * @throws PlanChangedException when it is another plan
+     * @throws LateAmendmentException when it is too late for an amendment
+     */
+    void amend(Plan amended) {
+        String digest = PlanDigest.of(amended);
+        if (!digest.equals(planDigest)) {
+            throw new PlanChangedException(plan.experiment(), planDigest, digest);
+        }
+        int known = plan.amendments().size();
+        for (Amendment added :
+                amended.amendments().subList(known, amended.amendments().size())) {
+            if (added.at().toEpochMilli() < sealedUntil) {
+                throw new LateAmendmentException(plan.experiment(), added.at(), Instant.ofEpochMilli(sealedUntil));
+            }
+        }
+        plan = amended;
+        runEnd = amended.end().toEpochMilli();
+        changed = true;
+    }
+
+    /** Whether nothing has been counted or sealed; there may have been events outside the run. */
+    boolean isUntouched() {
+        OutcomeCounts told = finalOutcomes.build();
+        return sealedUntil == runFrom && told.total() == told.get(Outcome.OUTSIDE) && ledger.openEvents() == 0;
+    }
+
+    /** Counts on from an experiment of the same name that was untouched. */
+    void succeed(OutcomeCounts outside) {
+        restore(runFrom, outside, Map.of());
+        changed = true;
+    }
+
+    /** Whether an event time lies in the run. */
+    boolean isInside(long atMillis) {
+        return atMillis >= runFrom && atMillis < runEnd;
+    }
+
     long sealedUntil() {
         return sealedUntil;
     }
@@ -100,7 +146,7 @@ final class ExperimentCounter {
     /** Takes an event of a known variant; returns whether it lies inside the run. */
     boolean accept(long high, long low, EventSlot event, long arrivalMillis) {
         changed = true;
-        if (!plan.run().contains(event.atMillis())) {
+        if (!isInside(event.atMillis())) {
             finalOutcomes.add(Outcome.OUTSIDE, 1);
             reach = event.atMillis() >= runEnd ? runEnd : reach;
             return false;

@@ -23,7 +23,7 @@ final class SegmentCounts {
         this.plan = plan;
         this.table = table;
         variants = plan.variants().size();
-        cells = (plan.epochs().size() + 1) * variants;
+        cells = (plan.epochCount()) * variants;
     }
 
     /**

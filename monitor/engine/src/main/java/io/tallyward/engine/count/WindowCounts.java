@@ -18,7 +18,7 @@ final class WindowCounts {
     WindowCounts(Plan plan, Optional<SegmentTable> table) {
         this.plan = plan;
         variants = plan.variants().size();
-        sums = new Sums[(plan.epochs().size() + 1) * variants];
+        sums = new Sums[(plan.epochCount()) * variants];
         bySegment = table.map(known -> new SegmentCounts(plan, known));
     }
 

@@ -20,7 +20,8 @@ import java.util.TreeMap;
 /**
  * The group-sequential test of one challenger against the control: takes looks, keeps the boundaries already used, and
  * latches the verdict. At the last look (information used up and the minimum run over, or the run over) all remaining error
- * is spent.
+ * is spent; unless the run was amended to end earlier than planned, as whoever did that may have seen the counts: then only
+ * what the spending clock allows for.
  *
  * <p>When another challenger passes its level on, the boundaries from then on are those of a test that had the larger level
  * from the start; only the look at hand and later ones are judged by them (Maurer and Bretz 2013).
@@ -116,7 +117,8 @@ final class ChallengerTest {
     Attempt attempt(CumulativeCounts counts, long windowEnd, boolean runEnds, boolean sound) {
         Optional<Evidence> evidence = counts.evidence(variant);
         double fraction = evidence.map(this::fraction).orElse(0.0);
-        double clock = evidence.map(found -> clock(found, fraction, runEnds)).orElse(0.0);
+        double clock = evidence.map(found -> clock(found, fraction, windowEnd, runEnds))
+                .orElse(0.0);
         boolean minimumRunOver = minimumRunOver(windowEnd);
         if (!runEnds && !calendar.isDue(windowEnd, fraction, minimumRunOver)) {
             return new Attempt.NotDue();
@@ -124,9 +126,10 @@ final class ChallengerTest {
         if (evidence.isEmpty()) {
             return new Attempt.Delayed(readiness.tooFew(counts).orElse(Readiness.NOTHING_VARIES), calendar.delayed());
         }
-        boolean benefitOpen = runEnds || minimumRunOver;
+        boolean cutShort = runEnds && plan.end().isBefore(plan.run().end());
+        boolean benefitOpen = minimumRunOver || (runEnds && !cutShort);
         boolean last = runEnds || (fraction >= 1 && benefitOpen);
-        double time = last ? 1 : spendingTime(fraction, windowEnd);
+        double time = last && !cutShort ? 1 : spendingTime(fraction, windowEnd);
         Optional<String> caution = readiness.tooSkew(
                 evidence.get().skewness(),
                 () -> TailSpending.at(plan, levels, time, benefitOpen),
@@ -161,15 +164,17 @@ final class ChallengerTest {
 
     /**
      * What the correlation of looks goes by: information, while there is a single stratum. With allocation epochs whose rates
-     * may differ it is the variance of the score, on the scale of the plan. The same at the end of a run whose information has
+     * may differ it is the variance of the score, on the scale of the plan, or from the last look on where an amendment began the
+     * epochs. The same at the end of a run whose information has
      * not grown since the last look though counts came in, because the rates moved: from that look on, then, by the score.
      */
-    private double clock(Evidence found, double fraction, boolean runEnds) {
+    private double clock(Evidence found, double fraction, long windowEnd, boolean runEnds) {
         double clock = fraction;
-        if (!plan.epochs().isEmpty()) {
+        boolean several = plan.epochAt(windowEnd - 1) > 0;
+        if (!plan.epochs().isEmpty() || (several && looks.isEmpty())) {
             double pooled = design().pooledRate() * (1 - design().pooledRate());
             clock = found.scoreVariance() / (design().maximumInformation() * pooled * pooled);
-        } else if (runEnds && !looks.isEmpty() && Readiness.clockStands(fraction, lastClock())) {
+        } else if (several || (runEnds && !looks.isEmpty() && Readiness.clockStands(fraction, lastClock()))) {
             clock = lastClock()
                     * found.scoreVariance()
                     / looks.lastEntry().getValue().scoreVariance();
@@ -326,6 +331,11 @@ final class ChallengerTest {
     }
 
     /** The run ended without a further look. */
+    /** Ends the test without a finding: the owner has ended the experiment. A verdict that is held stays held. */
+    void stop() {
+        verdict = Verdict.STOPPED;
+    }
+
     void exhaust(boolean sound) {
         if (sound) {
             verdict = Verdict.EXHAUSTED;

@@ -103,7 +103,7 @@ final class Challengers {
         int looksDelayed = 0;
         Optional<String> delayReason = Optional.empty();
         for (ChallengerTest test : tests) {
-            if (!test.isOpen()) {
+            if (!test.isOpen() || (runEnds && plan.stopped())) {
                 continue;
             }
             ChallengerTest.Attempt attempt = test.attempt(counts, windowEnd, runEnds, sound);
@@ -156,12 +156,18 @@ final class Challengers {
         return positions;
     }
 
-    /** At the end of the run every test that could not take a last look is exhausted; returns whether there was one. */
+    /**
+     * At the end of the run every test that could not take a last look is exhausted, or stopped by the owner; returns whether there was one.
+     */
     private boolean end(boolean sound, List<ChallengerTest> settled) {
         boolean any = false;
         for (ChallengerTest test : tests) {
             if (test.isOpen()) {
-                test.exhaust(sound);
+                if (plan.stopped()) {
+                    test.stop();
+                } else {
+                    test.exhaust(sound);
+                }
                 any = true;
                 if (test.verdict().settled()) {
                     settled.add(test);

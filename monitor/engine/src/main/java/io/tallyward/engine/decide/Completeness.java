@@ -182,6 +182,11 @@ final class Completeness {
         idle.put(start, end);
     }
 
+    /** Whether no partition has reported yet. */
+    boolean isUntouched() {
+        return sealedUntil.length == 0;
+    }
+
     /** Every window that ends at or before this moment is complete. */
     long completeUntil() {
         return Arrays.stream(sealedUntil).min().orElse(runFrom);

@@ -31,7 +31,7 @@ final class CumulativeCounts {
     CumulativeCounts(Plan plan) {
         this.plan = plan;
         byView = plan.count().by() == CountBy.VIEW;
-        cells = new Cell[plan.epochs().size() + 1][plan.variants().size()];
+        cells = new Cell[plan.epochCount()][plan.variants().size()];
         for (int epoch = 0; epoch < cells.length; epoch++) {
             for (int variant = 0; variant < cells[epoch].length; variant++) {
                 cells[epoch][variant] = Cell.ofUnits(epoch, variant, 0, 0);
@@ -218,8 +218,9 @@ final class CumulativeCounts {
         }
     }
 
-    void read(DataInput in) throws IOException {
-        for (int epoch = 0; epoch < cells.length; epoch++) {
+    /** @param storedEpochs how many epochs there were when it was written; an amendment may have added some since */
+    void read(DataInput in, int storedEpochs) throws IOException {
+        for (int epoch = 0; epoch < storedEpochs; epoch++) {
             for (int variant = 0; variant < cells[epoch].length; variant++) {
                 long trials = in.readLong();
                 long successes = in.readLong();

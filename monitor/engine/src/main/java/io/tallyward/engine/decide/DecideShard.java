@@ -4,6 +4,8 @@ import static io.tallyward.engine.shard.Packing.pack;
 
 import io.tallyward.engine.count.TallyUpdate;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanBook;
+import io.tallyward.engine.plan.PlanDigest;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.shard.StateChange;
@@ -108,6 +110,43 @@ public final class DecideShard {
         } else {
             unplanned.merge(update.experiment(), 1L, Long::sum);
         }
+    }
+
+    /**
+     * Takes over what stands in the book of plans: knows experiments that are new, under another plan those of which nothing has
+     * arrived, and the others under their amendments. Experiments that are not named stay as they are.
+     *
+     * @throws io.tallyward.engine.plan.PlanChangedException when decisions were taken under another plan
+     * @throws io.tallyward.engine.plan.LateAmendmentException when it is too late for an amendment
+     */
+    public void adopt(Collection<PlanBook.Entry> entries) {
+        for (PlanBook.Entry entry : entries) {
+            Plan plan = entry.plan();
+            Plan before = plans.put(plan.experiment(), plan);
+            ExperimentDecider decider = deciders.get(plan.experiment());
+            if (decider != null && !plan.equals(before)) {
+                deciders.put(
+                        plan.experiment(),
+                        decider.isUntouched() ? new ExperimentDecider(plan, memo, detail) : decider.amended(plan));
+            }
+        }
+    }
+
+    /**
+     * Tells of proposals of plans that were refused, each once. Those of experiments that are not known here are left alone.
+     *
+     * @param refusals the latest ones of the experiment, in order
+     */
+    public void refuse(String experiment, List<PlanBook.Refusal> refusals) {
+        ExperimentDecider decider = deciders.get(experiment);
+        if (decider != null) {
+            decider.refuse(refusals);
+        }
+    }
+
+    /** Digest of the plan that an experiment is decided under; empty where there is none. */
+    public Optional<String> planDigest(String experiment) {
+        return Optional.ofNullable(plans.get(experiment)).map(PlanDigest::of);
     }
 
     /** Makes a planned experiment known before anything of it arrives, so that it is seen to be waiting. */

@@ -4,7 +4,9 @@ import io.tallyward.engine.EngineVersion;
 import io.tallyward.engine.count.OutcomeCounts;
 import io.tallyward.engine.count.TallyUpdate;
 import io.tallyward.engine.plan.Amendment;
+import io.tallyward.engine.plan.LateAmendmentException;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanBook;
 import io.tallyward.engine.plan.PlanChangedException;
 import io.tallyward.engine.plan.PlanDigest;
 import io.tallyward.engine.record.DecisionRecord;
@@ -14,9 +16,13 @@ import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.record.RecordDigest;
 import io.tallyward.engine.record.SplitOrigin;
 import io.tallyward.engine.record.Trust;
+import io.tallyward.engine.shard.Packing;
+import java.io.ByteArrayInputStream;
 import java.io.DataInput;
+import java.io.DataInputStream;
 import java.io.DataOutput;
 import java.io.IOException;
+import java.io.UncheckedIOException;
 import java.time.Instant;
 import java.util.ArrayList;
 import java.util.List;
@@ -35,6 +41,7 @@ final class ExperimentDecider {
     private final NoticeWriter writer;
     private final Detail detail;
 
+    private final DecisionMemo memo;
     private final Completeness completeness;
     private final CumulativeCounts counts;
     private final SplitWatch splitWatch;
@@ -48,6 +55,8 @@ final class ExperimentDecider {
     private TrustWatch.Judgement judgement = TrustWatch.Judgement.SOUND;
     private int sequence;
     private String lastHash = DecisionRecord.NO_PREVIOUS;
+    private int amendmentsTold;
+    private long refusalsTold;
     private int looksTaken;
     private int looksDelayed;
     private String delayReason = "";
@@ -58,18 +67,66 @@ final class ExperimentDecider {
     private boolean changed;
 
     ExperimentDecider(Plan plan, DecisionMemo memo, Detail detail) {
+        this(plan, memo, detail, new Completeness(plan.run().from().toEpochMilli()));
+    }
+
+    private ExperimentDecider(Plan plan, DecisionMemo memo, Detail detail, Completeness completeness) {
         this.plan = plan;
+        this.memo = memo;
+        this.completeness = completeness;
         planDigest = PlanDigest.of(plan);
         windowMillis = plan.count().window().toMillis();
         this.detail = detail;
         writer = new NoticeWriter(plan);
         completeUntil = plan.run().from().toEpochMilli();
-        completeness = new Completeness(completeUntil);
         counts = new CumulativeCounts(plan);
         splitWatch = new SplitWatch(plan);
         splitTrace = new SplitTrace(plan);
         trustWatch = new TrustWatch(plan);
         challengers = new Challengers(plan, planDigest, memo, detail);
+    }
+
+    /** Whether nothing has arrived yet. */
+    boolean isUntouched() {
+        return sequence == 0 && completeness.isUntouched();
+    }
+
+    /**
+     * The same, going on under the same plan with more amendments: what is restored after a restart, and what is still to be
+     * made durable.
+     *
+     * @throws PlanChangedException when it is another plan
+     * @throws LateAmendmentException when it is too late for an amendment
+     */
+    ExperimentDecider amended(Plan now) {
+        List<Amendment> added = now.amendments()
+                .subList(plan.amendments().size(), now.amendments().size());
+        if (!added.isEmpty() && added.get(0).at().toEpochMilli() <= completeUntil) {
+            throw new LateAmendmentException(plan.experiment(), added.get(0).at(), Instant.ofEpochMilli(completeUntil));
+        }
+        ExperimentDecider next = new ExperimentDecider(now, memo, detail, completeness);
+        try {
+            next.read(new DataInputStream(new ByteArrayInputStream(Packing.pack(this::write))));
+        } catch (IOException e) {
+            throw new UncheckedIOException(e);
+        }
+        challengers.tests().forEach(test -> test.looks().forEach(next::restoreLook));
+        next.decisions.addAll(decisions);
+        next.notices.addAll(notices);
+        next.newLooks.addAll(newLooks);
+        next.changed = true;
+        return next;
+    }
+
+    /** Tells of refused proposals that were not told of yet. */
+    void refuse(List<PlanBook.Refusal> refusals) {
+        for (PlanBook.Refusal refusal : refusals) {
+            if (refusal.number() > refusalsTold) {
+                refusalsTold = refusal.number();
+                changed = true;
+                notices.add(writer.refused(refusal, Instant.ofEpochMilli(completeUntil), lastHash));
+            }
+        }
     }
 
     /** Takes what one partition has sealed, and every window that is complete with it. */
@@ -89,6 +146,7 @@ final class ExperimentDecider {
     }
 
     private void complete(long windowStart) {
+        tellAmendments(windowStart + windowMillis);
         idleSealed += completeness.sealedIdle(windowStart) ? 1 : 0;
         Completeness.Parts parts = completeness.take(windowStart);
         completeUntil = windowStart + windowMillis;
@@ -100,6 +158,16 @@ final class ExperimentDecider {
             traceSplit(windowStart, parts);
         }
         decide();
+    }
+
+    /** Records what takes effect at the end of the window that comes next, so that the decision there is made under it. */
+    private void tellAmendments(long windowEnd) {
+        List<Amendment> amendments = plan.amendments();
+        while (amendmentsTold < amendments.size()
+                && amendments.get(amendmentsTold).at().toEpochMilli() <= windowEnd) {
+            amendmentsTold++;
+            write(Occasion.AMENDED, List.of(), amendments.get(amendmentsTold - 1));
+        }
     }
 
     /** A bare record does not say where a mismatch comes from. */
@@ -149,7 +217,7 @@ final class ExperimentDecider {
     }
 
     private boolean runEnds() {
-        return completeUntil >= plan.run().end().toEpochMilli();
+        return completeUntil >= plan.end().toEpochMilli();
     }
 
     /**
@@ -260,6 +328,7 @@ final class ExperimentDecider {
 
     void write(DataOutput out) throws IOException {
         out.writeUTF(planDigest);
+        out.writeInt(plan.epochCount());
         completeness.write(out);
         counts.write(out);
         splitWatch.write(out);
@@ -272,6 +341,8 @@ final class ExperimentDecider {
         out.writeUTF(judgement.reason());
         out.writeInt(sequence);
         out.writeUTF(lastHash);
+        out.writeInt(amendmentsTold);
+        out.writeLong(refusalsTold);
         out.writeInt(looksTaken);
         out.writeInt(looksDelayed);
         out.writeUTF(delayReason);
@@ -283,10 +354,11 @@ final class ExperimentDecider {
         if (!storedDigest.equals(planDigest)) {
             throw new PlanChangedException(plan.experiment(), storedDigest, planDigest);
         }
+        int storedEpochs = in.readInt();
         completeness.read(in);
-        counts.read(in);
-        splitWatch.read(in);
-        splitTrace.read(in);
+        counts.read(in, storedEpochs);
+        splitWatch.read(in, storedEpochs);
+        splitTrace.read(in, storedEpochs);
         trustWatch.read(in);
         completeUntil = in.readLong();
         outcomes = OutcomeCounts.read(in);
@@ -294,6 +366,8 @@ final class ExperimentDecider {
         judgement = new TrustWatch.Judgement(Trust.valueOf(in.readUTF()), in.readUTF(), null);
         sequence = in.readInt();
         lastHash = in.readUTF();
+        amendmentsTold = in.readInt();
+        refusalsTold = in.readLong();
         looksTaken = in.readInt();
         looksDelayed = in.readInt();
         delayReason = in.readUTF();

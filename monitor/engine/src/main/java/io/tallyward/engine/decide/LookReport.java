@@ -162,7 +162,7 @@ final class LookReport {
             case STOP_HARM -> "z %.3f has reached the harm boundary %.3f";
             case STOP_FUTILITY -> "z %.3f makes a benefit unlikely within the planned information";
             case EXHAUSTED -> "the planned information or time is used up and z %.3f has crossed no boundary";
-            case CONTINUE, WAITING -> "z %.3f lies between the boundaries";
+            case CONTINUE, WAITING, STOPPED -> "z %.3f lies between the boundaries";
         };
         double crossed = z >= look.upper() ? look.upper() : look.lower();
         String reason = String.format(Locale.ROOT, text, z, crossed);

@@ -4,6 +4,8 @@ import io.tallyward.engine.count.Outcome;
 import io.tallyward.engine.digest.Digest;
 import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanBook;
+import io.tallyward.engine.plan.PlanDigest;
 import io.tallyward.engine.record.Adjusted;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.DecisionRecord.Comparison;
@@ -13,6 +15,7 @@ import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.record.Notice.Kind;
 import io.tallyward.engine.record.Notice.Severity;
 import io.tallyward.engine.record.Verdict;
+import java.time.Instant;
 import java.util.LinkedHashMap;
 import java.util.Locale;
 import java.util.Map;
@@ -28,6 +31,9 @@ final class NoticeWriter {
     NoticeWriter(Plan plan) {
         this.plan = plan;
     }
+
+    /** Characters of a reason; the summary of a notice is short. */
+    private static final int MOST_REASON = 600;
 
     /** Whether verdicts were told before trust changed. */
     enum Told {
@@ -74,6 +80,12 @@ final class NoticeWriter {
                         Severity.TICKET,
                         variant + " is unlikely to prove better than " + control + " within the planned information",
                         "Consider ending the experiment; carrying on is allowed and costs no error. " + CAUTION);
+            case STOPPED ->
+                new Message(
+                        Kind.STOP,
+                        Severity.INFO,
+                        "the owner ended the experiment before " + variant + " crossed a boundary",
+                        "Nothing to do; no effect was shown, and none was ruled out. " + CAUTION);
             case EXHAUSTED, WAITING, CONTINUE ->
                 new Message(
                         Kind.EXHAUSTED,
@@ -81,6 +93,40 @@ final class NoticeWriter {
                         "the planned information or time is used up, and " + variant + " has crossed no boundary",
                         "End the experiment: it has not shown a difference of the size it was planned for. " + CAUTION);
         };
+    }
+
+    /**
+     * A proposed change of the plan was refused.
+     *
+     * @param windowEnd how far the experiment is complete
+     * @param decision digest of its last decision record
+     */
+    Notice refused(PlanBook.Refusal refusal, Instant windowEnd, String decision) {
+        String id = new Digest("notice/1")
+                .text(plan.experiment())
+                .text(Kind.PLAN_REFUSED.code())
+                .number(refusal.number())
+                .hex();
+        Map<String, String> facts = new LinkedHashMap<>();
+        facts.put("standing", PlanDigest.of(plan));
+        facts.put("proposed", PlanDigest.of(refusal.proposed()));
+        return new Notice(
+                "notice_" + id.substring(0, 32),
+                Kind.PLAN_REFUSED,
+                Severity.TICKET,
+                plan.experiment(),
+                "",
+                windowEnd,
+                plan.experiment() + ": a changed plan is refused, and the frozen plan stands: "
+                        + shortened(refusal.reason()) + ".",
+                facts,
+                "Put the frozen plan back into its file, or give the changed plan a new experiment name; what may be amended"
+                        + " is the end of the run, the split, and a stop.",
+                decision);
+    }
+
+    private static String shortened(String reason) {
+        return reason.length() <= MOST_REASON ? reason : reason.substring(0, MOST_REASON) + "...";
     }
 
     /** Trust has changed for the worse, or has returned. */

@@ -10,7 +10,7 @@ final class OverallVerdict {
 
     /**
      * Sums up: a benefit if any challenger has one, else harm if any does harm; once all are settled otherwise, futility if
-     * all are futile, else exhausted.
+     * all are futile, else stopped if the owner stopped any, else exhausted.
      */
     static Verdict of(List<Verdict> verdicts) {
         if (verdicts.contains(Verdict.STOP_BENEFIT)) {
@@ -23,7 +23,7 @@ final class OverallVerdict {
             return Verdict.STOP_FUTILITY;
         }
         if (verdicts.stream().allMatch(Verdict::settled)) {
-            return Verdict.EXHAUSTED;
+            return verdicts.contains(Verdict.STOPPED) ? Verdict.STOPPED : Verdict.EXHAUSTED;
         }
         return verdicts.stream().allMatch(Verdict.WAITING::equals) ? Verdict.WAITING : Verdict.CONTINUE;
     }

@@ -4,6 +4,7 @@ import io.tallyward.engine.EngineVersion;
 import io.tallyward.engine.count.Outcome;
 import io.tallyward.engine.count.OutcomeCounts;
 import io.tallyward.engine.plan.Amendment;
+import io.tallyward.engine.plan.AmendmentRules;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanDigest;
 import io.tallyward.engine.record.DecisionRecord;
@@ -89,6 +90,9 @@ public final class Recomputation {
     public Result next(DecisionRecord recorded) {
         objections = new ArrayList<>();
         if (recorded.occasion() == Occasion.AMENDED && recorded.amendment() != null) {
+            if (!allows(recorded)) {
+                return new Result(Optional.empty(), objections);
+            }
             amend(recorded.amendment());
         }
         expect(
@@ -256,12 +260,25 @@ public final class Recomputation {
         }
     }
 
+    /** Whether the plan may be amended so; it is recorded before the window at whose end the amendment takes effect. */
+    private boolean allows(DecisionRecord recorded) {
+        Amendment amendment = recorded.amendment();
+        Instant due = recorded.windowEnd().plus(plan.count().window());
+        expect(amendment.at().equals(due), "amendment.at", amendment.at(), due + ", a window after this record");
+        List<Amendment> amendments = new ArrayList<>(plan.amendments());
+        amendments.add(amendment);
+        AmendmentRules.problem(plan.amended(amendments))
+                .ifPresent(problem -> objections.add(new Objection("amendment", problem.found(), problem.expected())));
+        return objections.isEmpty();
+    }
+
     /** Goes on under the amended plan, as deciding did. */
     private void amend(Amendment amendment) {
         List<Amendment> amendments = new ArrayList<>(plan.amendments());
         amendments.add(amendment);
         Challengers before = challengers;
         SplitWatch watchBefore = splitWatch;
+        int epochsBefore = plan.epochCount();
         TrustWatch trustBefore = trustWatch;
         List<VariantCount> countsBefore = counts.list();
         begin(plan.amended(amendments));
@@ -274,7 +291,7 @@ public final class Recomputation {
         try (DataInputStream in = new DataInputStream(new ByteArrayInputStream(state))) {
             before.tests().forEach(test -> test.looks().forEach(challengers::restoreLook));
             challengers.read(in);
-            splitWatch.read(in);
+            splitWatch.read(in, epochsBefore);
             trustWatch.read(in);
         } catch (IOException e) {
             throw new UncheckedIOException("reading from memory failed", e);

@@ -43,15 +43,18 @@ final class SplitTrace {
     SplitTrace(Plan plan) {
         this.plan = plan;
         windowMillis = plan.count().window().toMillis();
-        int epochs = plan.epochs().size() + 1;
+        int epochs = plan.epochCount();
+        int planned = plan.epochs().size() + 1;
         int variants = plan.variants().size();
         histories = new SplitHistory[epochs];
         segments = new SegmentUnits[epochs];
         for (int epoch = 0; epoch < epochs; epoch++) {
             Instant start = epoch == 0
                     ? plan.run().from()
-                    : plan.epochs().get(epoch - 1).from();
-            int most = Math.max(LEAST_STRETCHES, MOST_STRETCHES / epochs / 2 * 2);
+                    : plan.allocation().get(epoch - 1).from();
+            // What is known of amendments beforehand makes no difference.
+            boolean amended = epoch > plan.epochs().size();
+            int most = amended ? LEAST_STRETCHES : Math.max(LEAST_STRETCHES, MOST_STRETCHES / planned / 2 * 2);
             histories[epoch] = new SplitHistory(start.toEpochMilli(), windowMillis, variants, most);
             segments[epoch] = new SegmentUnits(variants);
         }
@@ -206,8 +209,9 @@ final class SplitTrace {
         }
     }
 
-    void read(DataInput in) throws IOException {
-        for (int epoch = 0; epoch < histories.length; epoch++) {
+    /** @param storedEpochs how many epochs there were when it was written; an amendment may have added some since */
+    void read(DataInput in, int storedEpochs) throws IOException {
+        for (int epoch = 0; epoch < storedEpochs; epoch++) {
             histories[epoch].read(in);
             segments[epoch].read(in);
         }

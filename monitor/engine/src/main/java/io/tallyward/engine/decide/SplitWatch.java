@@ -47,7 +47,7 @@ final class SplitWatch {
 
     SplitWatch(Plan plan) {
         this.plan = plan;
-        epochs = plan.epochs().size() + 1;
+        epochs = plan.epochCount();
         watched = new boolean[plan.variants().size()];
         Arrays.fill(watched, true);
         before = new long[epochs][watched.length];
@@ -195,14 +195,15 @@ final class SplitWatch {
         }
     }
 
-    void read(DataInput in) throws IOException {
+    /** @param storedEpochs how many epochs there were when it was written; an amendment may have added some since */
+    void read(DataInput in, int storedEpochs) throws IOException {
         logBayesFactor = in.readDouble();
         evidence = new SequentialEvidence(in.readDouble());
         earlierEvidence = in.readDouble();
         earlierPearson = new PearsonSplit(in.readDouble(), in.readInt(), in.readDouble());
         for (int variant = 0; variant < watched.length; variant++) {
             watched[variant] = in.readBoolean();
-            for (int epoch = 0; epoch < epochs; epoch++) {
+            for (int epoch = 0; epoch < storedEpochs; epoch++) {
                 before[epoch][variant] = in.readLong();
                 peak[epoch][variant] = in.readLong();
             }

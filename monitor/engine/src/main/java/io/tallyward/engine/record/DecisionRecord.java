@@ -17,7 +17,7 @@ import java.util.Locale;
  * @param windowEnd end of the last complete window the decision is based on; the start of the run in the first record
  * @param planDigest digest of the plan it was made under
  * @param plan the plan as it was frozen, in the first record of an experiment; null in all others
- * @param amendment what is amended from {@code windowEnd} on; null unless that is the occasion
+ * @param amendment what takes effect at the end of the next window; null unless that is the occasion
  * @param counts cumulative counts up to {@code windowEnd}, by allocation epoch and variant
  * @param outcomes cumulative outcomes of the events of these windows
  * @param idleSealed how many of the windows were sealed, in some partition, because it was idle
@@ -132,7 +132,7 @@ public record DecisionRecord(
         LOOK,
         /** Trust changed between looks. */
         TRUST,
-        /** An amendment of the plan has taken effect. */
+        /** An amendment of the plan takes effect at the end of the next window. */
         AMENDED,
         /** The run ended and no further look could be taken. */
         END;

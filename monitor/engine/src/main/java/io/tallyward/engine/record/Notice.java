@@ -49,6 +49,8 @@ public record Notice(
         CROSSOVER,
         /** Too many late events. */
         LATE,
+        /** A change of a frozen plan was refused; the frozen plan stands. */
+        PLAN_REFUSED,
         /** Planned information or time is used up without a crossing. */
         EXHAUSTED,
         /** Trust has returned. */
@@ -56,7 +58,7 @@ public record Notice(
 
         /** The published code, as in {@code mismatch}. */
         public String code() {
-            return name().toLowerCase(Locale.ROOT);
+            return name().toLowerCase(Locale.ROOT).replace('_', '-');
         }
     }
 

@@ -15,7 +15,9 @@ public enum Verdict {
     /** The futility boundary was crossed; advice, not an obligation; final. */
     STOP_FUTILITY(true),
     /** The planned information or time is used up without a crossing; final. */
-    EXHAUSTED(true);
+    EXHAUSTED(true),
+    /** The owner ended the experiment before a boundary was crossed; final. */
+    STOPPED(true);
 
     private final boolean settled;
 
