@@ -129,6 +129,24 @@ final class ClientSettings {
         return layered(clientProperties, proposed, fixed);
     }
 
+    /** For reading a topic without a group. */
+    static Map<String, Object> logReader(Map<String, String> clientProperties, String name) {
+        Map<String, String> fixed = new HashMap<>(FIXED_FOR_READING);
+        fixed.put("client.id", name + "-reader");
+        fixed.put("auto.offset.reset", "none");
+        return layered(clientProperties, Map.of("max.poll.records", "1000"), fixed);
+    }
+
+    /** For appending in order and without repetition, outside of transactions. */
+    static Map<String, Object> logWriter(Map<String, String> clientProperties, String name) {
+        Map<String, String> proposed = Map.of("max.block.ms", REQUEST_TIMEOUT_MILLIS, "delivery.timeout.ms", "20000");
+        Map<String, String> fixed = new HashMap<>();
+        fixed.put("client.id", name + "-writer");
+        fixed.put("acks", "all");
+        fixed.put("enable.idempotence", "true");
+        return layered(clientProperties, proposed, fixed);
+    }
+
     /** The transactional id of a worker's producer by its number. */
     static String transactionalId(ShardGroup group, int worker, int number) {
         return clientId(group, worker) + "-" + number;

@@ -5,7 +5,10 @@ import java.util.function.Predicate;
 import java.util.function.Supplier;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
 
-/** A shard whose exceptions come out as {@link ShardFailure} and say where they happened. */
+/**
+ * A shard whose exceptions come out as {@link ShardFailure} and say where they happened. That a broker does not answer a shard
+ * is an outage like any other, and comes out as it is.
+ */
 final class GuardedShard {
 
     private final String name;
@@ -27,6 +30,8 @@ final class GuardedShard {
     void apply(ConsumerRecord<byte[], byte[]> record) {
         try {
             shard.apply(record);
+        } catch (BrokerException outage) {
+            throw outage;
         } catch (RuntimeException broken) {
             throw new ShardFailure(name + " failed at " + at(record), broken);
         }
@@ -64,6 +69,8 @@ final class GuardedShard {
     private <T> T guarded(String what, Supplier<T> step) {
         try {
             return step.get();
+        } catch (BrokerException outage) {
+            throw outage;
         } catch (RuntimeException broken) {
             throw new ShardFailure(name + " " + what, broken);
         }

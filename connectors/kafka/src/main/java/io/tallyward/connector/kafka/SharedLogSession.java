@@ -1,0 +1,137 @@
+package io.tallyward.connector.kafka;
+
+import io.tallyward.connector.kafka.SharedLog.Entry;
+import io.tallyward.connector.kafka.SharedLog.Reader;
+import java.time.Duration;
+import java.util.ArrayList;
+import java.util.List;
+import java.util.concurrent.ExecutionException;
+import java.util.concurrent.Future;
+import java.util.concurrent.TimeUnit;
+import java.util.concurrent.TimeoutException;
+import org.apache.kafka.clients.consumer.CloseOptions;
+import org.apache.kafka.clients.consumer.Consumer;
+import org.apache.kafka.clients.consumer.ConsumerRecord;
+import org.apache.kafka.clients.consumer.ConsumerRecords;
+import org.apache.kafka.clients.consumer.OffsetOutOfRangeException;
+import org.apache.kafka.clients.producer.Producer;
+import org.apache.kafka.clients.producer.ProducerRecord;
+import org.apache.kafka.clients.producer.RecordMetadata;
+import org.apache.kafka.common.KafkaException;
+import org.apache.kafka.common.TopicPartition;
+import org.apache.kafka.common.errors.InterruptException;
+
+/** The clients of a shared log between two outages. Not thread-safe. */
+final class SharedLogSession implements AutoCloseable {
+
+    private static final Duration POLL = Duration.ofMillis(200);
+    private static final Duration PATIENCE = Duration.ofSeconds(10);
+    private static final Duration CLOSE_PATIENCE = Duration.ofSeconds(1);
+
+    private final String topic;
+    private final TopicPartition partition;
+    private final SharedLogClients clients;
+    private final Cluster cluster;
+    private final Consumer<byte[], byte[]> consumer;
+    private Producer<byte[], byte[]> producer;
+    private long position;
+
+    /** @param position where to go on reading; 0 at first */
+    SharedLogSession(String topic, String broker, SharedLogClients clients, long position) {
+        this.topic = topic;
+        this.clients = clients;
+        this.position = position;
+        partition = new TopicPartition(topic, 0);
+        cluster = clients.cluster();
+        try {
+            new InternalTopics(cluster, broker).ensure(List.of(InternalTopic.kept(topic, 1)));
+            consumer = clients.reader();
+        } catch (RuntimeException failure) {
+            cluster.close();
+            throw failure;
+        }
+        consumer.assign(List.of(partition));
+        consumer.seek(partition, position);
+    }
+
+    /** Behind the last entry that was handed out. */
+    long position() {
+        return position;
+    }
+
+    /** Hands out everything that is written by now. */
+    void readToEnd(Reader reader) {
+        long end = cluster.endOffset(partition);
+        if (end < position) {
+            throw cut();
+        }
+        long deadline = System.nanoTime() + PATIENCE.toNanos();
+        while (position < end) {
+            if (System.nanoTime() > deadline) {
+                throw new org.apache.kafka.common.errors.TimeoutException(
+                        "topic " + topic + " could not be read up to " + end);
+            }
+            read(reader);
+        }
+    }
+
+    private void read(Reader reader) {
+        ConsumerRecords<byte[], byte[]> records;
+        try {
+            records = consumer.poll(POLL);
+        } catch (OffsetOutOfRangeException gone) {
+            throw cut();
+        }
+        for (ConsumerRecord<byte[], byte[]> record : records) {
+            reader.read(new Entry(record.key(), record.value()));
+            position = record.offset() + 1;
+        }
+        position = consumer.position(partition);
+    }
+
+    private BrokerException cut() {
+        return new BrokerException(
+                "topic " + topic + " ends before " + position + ", up to where it has been read: it was"
+                        + " removed or cut while the service ran; restart every instance so that all read it from its beginning");
+    }
+
+    /** Appends entries in order, all of them or the first of them. */
+    void append(List<Entry> entries) {
+        if (entries.isEmpty()) {
+            return;
+        }
+        if (producer == null) {
+            producer = clients.writer();
+        }
+        List<Future<RecordMetadata>> sent = new ArrayList<>();
+        for (Entry entry : entries) {
+            sent.add(producer.send(new ProducerRecord<>(topic, 0, entry.key(), entry.value())));
+        }
+        producer.flush();
+        sent.forEach(this::await);
+    }
+
+    private void await(Future<RecordMetadata> sent) {
+        try {
+            sent.get(PATIENCE.toMillis(), TimeUnit.MILLISECONDS);
+        } catch (InterruptedException interrupted) {
+            throw new InterruptException(interrupted);
+        } catch (TimeoutException late) {
+            throw new org.apache.kafka.common.errors.TimeoutException("topic " + topic + " took no entry", late);
+        } catch (ExecutionException failure) {
+            throw failure.getCause() instanceof KafkaException refused ? refused : new KafkaException(failure);
+        }
+    }
+
+    @Override
+    public void close() {
+        try {
+            consumer.close(CloseOptions.timeout(CLOSE_PATIENCE));
+        } finally {
+            cluster.close();
+            if (producer != null) {
+                producer.close(CLOSE_PATIENCE);
+            }
+        }
+    }
+}
