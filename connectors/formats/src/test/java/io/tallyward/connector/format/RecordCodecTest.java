@@ -158,7 +158,7 @@ class RecordCodecTest {
                 complaint(json -> json.replace("\"pearsonPValue\":1.0", "\"pearsonPValue\":\"low\"")));
         assertEquals(
                 "decision.verdict: \"stop\" (expected: one of waiting, continue, stop-benefit, stop-harm,"
-                        + " stop-futility, exhausted)",
+                        + " stop-futility, exhausted, stopped)",
                 complaint(json -> json.replace("stop-benefit", "stop")));
         assertEquals(
                 "decision.windowEnd: \"noon\" (expected: an RFC 3339 time)",
