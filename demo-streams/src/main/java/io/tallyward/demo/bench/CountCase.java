@@ -6,6 +6,7 @@ import io.tallyward.engine.count.Outcome;
 import io.tallyward.engine.plan.CountRule;
 import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.service.book.PlanSource;
 import io.tallyward.service.config.ConfigReader;
 import io.tallyward.service.config.ServiceConfig;
 import io.tallyward.service.config.document.BadInputException;
@@ -51,7 +52,9 @@ final class CountCase {
         AtomicReference<Throwable> broken = new AtomicReference<>();
         Stopwatch stopwatch = new Stopwatch(task.warmUp());
         try (ShardRunner runner = ShardRunner.start(
-                CountGroup.of(config, plans, board), InstantSource.system(), (name, cause) -> broken.set(cause))) {
+                CountGroup.of(config, PlanSource.fixed(plans), board),
+                InstantSource.system(),
+                (name, cause) -> broken.set(cause))) {
             while (counted(board) < task.events()) {
                 if (broken.get() != null) {
                     throw new IllegalStateException("counting has stopped", broken.get());

@@ -22,6 +22,7 @@ final class VerdictWords {
             case STOP_HARM -> variant + " does worse than " + control;
             case STOP_FUTILITY -> variant + " is unlikely to prove better than " + control;
             case EXHAUSTED -> "no difference between " + variant + " and " + control + " was found";
+            case STOPPED -> "the experiment was ended before anything was found about " + variant;
         };
     }
 
@@ -46,6 +47,9 @@ final class VerdictWords {
             case EXHAUSTED ->
                 "The planned time or information is used up, and no difference between " + variant + " and " + control
                         + " has shown that chance does not explain.";
+            case STOPPED ->
+                "The owner ended the experiment before " + variant
+                        + " crossed a boundary, so that neither a benefit nor a harm is established.";
         };
     }
 
@@ -70,7 +74,7 @@ final class VerdictWords {
                 "that the gain will be exactly this large or will last, nor anything about what was not counted here";
             case STOP_HARM -> "why it does worse, nor that a changed version would too";
             case STOP_FUTILITY -> "that both are the same (a small difference, either way, remains possible)";
-            case EXHAUSTED -> "that both are the same (differences within the range above remain possible)";
+            case EXHAUSTED, STOPPED -> "that both are the same (differences within the range above remain possible)";
         };
     }
 
@@ -87,6 +91,7 @@ final class VerdictWords {
             case EXHAUSTED ->
                 "end the experiment; keep whichever of " + plan.control().name() + " and " + variant
                         + " is better for other reasons.";
+            case STOPPED -> "nothing; these numbers decide nothing, and " + plan.owner() + " has decided already.";
         };
     }
 

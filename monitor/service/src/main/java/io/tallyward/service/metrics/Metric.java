@@ -185,6 +185,10 @@ enum Metric {
             "Whether a group of shards can do all of its work with the broker.",
             "group"),
 
+    PLAN_TROUBLES(
+            "tallyward_plan_troubles",
+            Kind.GAUGE,
+            "Plan files here that cannot be used, and plans in them that were refused."),
     WEBHOOK_ATTEMPTS("tallyward_webhook_attempts_total", Kind.COUNTER, "Webhook requests sent."),
     WEBHOOK_FAILURES("tallyward_webhook_failures_total", Kind.COUNTER, "Webhook requests that did not succeed."),
     WEBHOOK_PENDING("tallyward_webhook_pending", Kind.GAUGE, "Notices not yet delivered."),

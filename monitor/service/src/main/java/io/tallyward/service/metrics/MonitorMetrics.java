@@ -21,6 +21,7 @@ import java.util.Optional;
 import java.util.Set;
 import java.util.TreeMap;
 import java.util.TreeSet;
+import java.util.function.IntSupplier;
 import java.util.function.Supplier;
 
 /**
@@ -37,22 +38,26 @@ public final class MonitorMetrics {
 
     private final StatusBoard board;
     private final Supplier<List<RunnerReport>> runners;
+    private final IntSupplier planTroubles;
     private final Supplier<Optional<WebhookReport>> webhook;
     private final String version;
 
     /**
      * @param board the snapshots
      * @param runners what each group of shards has done
+     * @param planTroubles how many plan files cannot be used, or hold a plan that was refused
      * @param webhook how the delivery of notices stands; empty when none is configured
      * @param version version of the program
      */
     public MonitorMetrics(
             StatusBoard board,
             Supplier<List<RunnerReport>> runners,
+            IntSupplier planTroubles,
             Supplier<Optional<WebhookReport>> webhook,
             String version) {
         this.board = board;
         this.runners = runners;
+        this.planTroubles = planTroubles;
         this.webhook = webhook;
         this.version = version;
     }
@@ -77,6 +82,7 @@ public final class MonitorMetrics {
         }
         sheet.put(Metric.VARIANTS_UNPUBLISHED, unpublished);
         runners.get().forEach(report -> runner(sheet, report));
+        sheet.put(Metric.PLAN_TROUBLES, planTroubles.getAsInt());
         webhook.get().ifPresent(report -> webhook(sheet, report));
         return sheet.families();
     }

@@ -78,7 +78,7 @@ final class EffectFacts {
         return switch (end) {
             case STOP_BENEFIT, STOP_HARM -> ". Not adjusted: a stop picks a moment at which it looks large.";
             case STOP_FUTILITY -> ". Not adjusted: a stop picks a moment at which it looks small.";
-            case WAITING, CONTINUE, EXHAUSTED -> ". Not adjusted for the looks taken.";
+            case WAITING, CONTINUE, EXHAUSTED, STOPPED -> ". Not adjusted for the looks taken.";
         };
     }
 

@@ -1,10 +1,13 @@
 package io.tallyward.service.page;
 
+import io.tallyward.engine.plan.Amendment;
 import io.tallyward.engine.plan.LookSchedule;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.TestPlan;
 import io.tallyward.engine.plan.TestPlan.AlphaSharing;
 import io.tallyward.service.plan.PlanWords;
+import java.util.TreeMap;
+import java.util.stream.Collectors;
 
 /** What the owner decided before the first event was counted. */
 final class PlanSection {
@@ -63,6 +66,9 @@ final class PlanSection {
     private static void course(Markup html, Plan plan) {
         OverviewPage.fact(html, "Looks", schedule(plan.looks()));
         OverviewPage.fact(html, "Run", run(plan));
+        for (Amendment amendment : plan.amendments()) {
+            OverviewPage.fact(html, "Amended", amended(amendment));
+        }
         OverviewPage.fact(
                 html,
                 "Counting",
@@ -90,10 +96,29 @@ final class PlanSection {
 
     private static String run(Plan plan) {
         return Figures.minute(plan.run().from()) + " to "
-                + Figures.minute(plan.run().end()) + " at most"
+                + Figures.minute(plan.end()) + " at most"
                 + (plan.run().atLeast().isZero()
                         ? ""
                         : ", no benefit before " + Figures.span(plan.run().atLeast()));
+    }
+
+    private static String amended(Amendment amendment) {
+        return "from " + Figures.minute(amendment.at()) + " on: " + changed(amendment.change()) + " ("
+                + amendment.reason() + ")";
+    }
+
+    private static String changed(Amendment.Change change) {
+        if (change instanceof Amendment.End other) {
+            return "the run ends " + Figures.minute(other.end());
+        }
+        if (change instanceof Amendment.Shares other) {
+            return "shares "
+                    + new TreeMap<>(other.shares())
+                            .entrySet().stream()
+                                    .map(share -> share.getKey() + " " + PlanWords.shortest(share.getValue()))
+                                    .collect(Collectors.joining(", "));
+        }
+        return "stopped by the owner";
     }
 
     private static String schedule(LookSchedule looks) {

@@ -71,6 +71,12 @@ final class Wording {
                         "Exhausted",
                         "The planned information or time is used up and no boundary was crossed. The verdict is final.",
                         "It can wait for the morning. End the experiment; it found no difference of the planned size.");
+            case STOPPED ->
+                new Words(
+                        "●",
+                        "Stopped by owner",
+                        "The owner ended the experiment before a boundary was crossed. The verdict is final.",
+                        "Nothing. No effect was shown, and none was ruled out.");
         };
     }
 
@@ -93,7 +99,7 @@ final class Wording {
             case STOP_FUTILITY ->
                 "It can wait for the morning. The owner decides whether the rest of the run is worth its time for "
                         + String.join(" and ", variants) + ".";
-            case WAITING, CONTINUE, EXHAUSTED -> of(verdict).action();
+            case WAITING, CONTINUE, EXHAUSTED, STOPPED -> of(verdict).action();
         };
     }
 
@@ -120,7 +126,7 @@ final class Wording {
             case STOP_HARM -> "The harm boundary was crossed";
             case STOP_FUTILITY -> "A benefit of the planned size has become unlikely";
             case EXHAUSTED -> "The planned information or time is used up without a crossing";
-            case WAITING, CONTINUE ->
+            case WAITING, CONTINUE, STOPPED ->
                 throw new IllegalArgumentException("held verdict: " + verdict.code() + " (expected: a final one)");
         };
         return found + ", but the data are not trusted: the verdict is held, and told if trust returns.";

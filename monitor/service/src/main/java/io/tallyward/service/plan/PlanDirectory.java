@@ -9,6 +9,7 @@ import java.nio.file.DirectoryIteratorException;
 import java.nio.file.DirectoryStream;
 import java.nio.file.Files;
 import java.nio.file.Path;
+import java.nio.file.attribute.BasicFileAttributes;
 import java.util.ArrayList;
 import java.util.HashMap;
 import java.util.List;
@@ -34,8 +35,7 @@ public final class PlanDirectory {
         try {
             files = planFiles(directory);
         } catch (IOException | DirectoryIteratorException e) {
-            IOException cause = e instanceof DirectoryIteratorException wrapped ? wrapped.getCause() : (IOException) e;
-            return refused(directory, "cannot be read: " + DocumentReader.reason(cause));
+            return refused(directory, "cannot be read: " + DocumentReader.reason(cause(e)));
         }
         if (files.isEmpty()) {
             return refused(directory, "no plan files");
@@ -43,10 +43,46 @@ public final class PlanDirectory {
         if (files.size() > MAX_FILES) {
             return refused(directory, files.size() + " plan files, more than the limit of " + MAX_FILES);
         }
-        return readAll(files);
+        Contents contents = contents(files);
+        return contents.problems().isEmpty() ? Checked.of(contents.plans()) : Checked.refused(contents.problems());
     }
 
-    private static Checked<List<Plan>> readAll(List<Path> files) {
+    /**
+     * What the files of a directory say, as far as they can be used. A plan whose experiment another file plans too is left out.
+     *
+     * @param plans the usable plans, in the order of the file names
+     * @param problems everything that is wrong in any of the files
+     */
+    public record Contents(List<Plan> plans, List<Problem> problems) {
+        public Contents {
+            plans = List.copyOf(plans);
+            problems = List.copyOf(problems);
+        }
+    }
+
+    /** The same as {@link #read}, without giving up what can be used for what cannot. */
+    public static Contents readUsable(Path directory) {
+        try {
+            List<Path> files = planFiles(directory);
+            return files.size() > MAX_FILES
+                    ? new Contents(
+                            List.of(),
+                            refused(directory, files.size() + " plan files, more than the limit of " + MAX_FILES)
+                                    .problems())
+                    : contents(files);
+        } catch (IOException | DirectoryIteratorException e) {
+            return new Contents(
+                    List.of(),
+                    refused(directory, "cannot be read: " + DocumentReader.reason(cause(e)))
+                            .problems());
+        }
+    }
+
+    private static IOException cause(Exception e) {
+        return e instanceof DirectoryIteratorException wrapped ? wrapped.getCause() : (IOException) e;
+    }
+
+    private static Contents contents(List<Path> files) {
         List<Plan> plans = new ArrayList<>();
         List<Problem> problems = new ArrayList<>();
         Map<String, Path> owners = new HashMap<>();
@@ -55,7 +91,9 @@ public final class PlanDirectory {
             problems.addAll(checked.problems());
             checked.value().ifPresent(plan -> {
                 Path before = owners.putIfAbsent(plan.experiment(), file);
-                if (before != null) {
+                if (before == null) {
+                    plans.add(plan);
+                } else {
                     problems.add(new Problem(
                             file.toString(),
                             0,
@@ -64,10 +102,33 @@ public final class PlanDirectory {
                             "one plan per experiment; " + before + " has one already",
                             ""));
                 }
-                plans.add(plan);
             });
         }
-        return problems.isEmpty() ? Checked.of(List.copyOf(plans)) : Checked.refused(problems);
+        return new Contents(plans, problems);
+    }
+
+    /**
+     * Something that differs whenever the files of a directory may say something else: names, sizes, times and what links lead
+     * to. A directory that cannot be read has a print of its own.
+     */
+    public static String print(Path directory) {
+        StringBuilder print = new StringBuilder();
+        try {
+            for (Path file : planFiles(directory)) {
+                BasicFileAttributes attributes = Files.readAttributes(file, BasicFileAttributes.class);
+                print.append(file.toRealPath())
+                        .append(' ')
+                        .append(attributes.size())
+                        .append(' ')
+                        .append(attributes.lastModifiedTime())
+                        .append(' ')
+                        .append(attributes.fileKey())
+                        .append('\n');
+            }
+        } catch (IOException | DirectoryIteratorException e) {
+            return "unreadable: " + cause(e);
+        }
+        return print.toString();
     }
 
     private static List<Path> planFiles(Path directory) throws IOException {

@@ -12,6 +12,7 @@ import static io.tallyward.service.config.document.ScalarType.share;
 import static io.tallyward.service.config.document.ScalarType.text;
 import static io.tallyward.service.config.document.ScalarType.wholeNumber;
 
+import io.tallyward.engine.plan.AmendmentRules;
 import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.FutilityPlan.Assumption;
 import io.tallyward.engine.plan.Spending;
@@ -235,6 +236,21 @@ public final class PlanKeys {
         static final Shape SHAPE = Shape.of(FROM, SHARES);
     }
 
+    static final class Amended {
+        static final Key<Instant> AT = Key.required(
+                "at", instant(), "When it takes effect, in event time; minutes ahead of now, aligned to a window.");
+        static final Key<String> REASON = Key.required("reason", text(500), "Why, in words.");
+        static final Key<Instant> END =
+                Key.optional("end", instant(), "The first moment that is no longer part of the run.");
+        static final Key<Map<String, Double>> SHARES = Key.optional(
+                "shares",
+                new MapType<>(name(), numberBetween(0, 1), 2, MAX_VARIANTS, "shares"),
+                "Share of every variant from then on; they add up to 1.");
+        static final Key<Boolean> STOP =
+                Key.optional("stop", flag(), "The owner ends the experiment, whatever the counts say.");
+        static final Shape SHAPE = Shape.of(AT, REASON, END, SHARES, STOP);
+    }
+
     static final Key<String> EXPERIMENT = Key.required("experiment", name(), "Name of the experiment.");
     static final Key<String> QUESTION = Key.required("question", text(500), "What the owner wants to know, in words.");
     static final Key<String> OWNER = Key.required("owner", text(200), "Who decides; an address.");
@@ -261,6 +277,10 @@ public final class PlanKeys {
             "epochs",
             new ListType<>(Epoch.SHAPE, 1, 100, "epochs"),
             "Planned changes of the split, ascending by time.");
+    static final Key<List<Values>> AMENDMENTS = Key.optional(
+            "amendments",
+            new ListType<>(Amended.SHAPE, 1, AmendmentRules.MOST, "amendments"),
+            "What changes after the plan was frozen, each by one of end, shares and stop; ascending, never removed.");
 
     /** The shape of the whole file. */
     public static final Shape SHAPE = Shape.of(
@@ -276,7 +296,8 @@ public final class PlanKeys {
             SPLIT_CHECK,
             TRUST,
             RUN,
-            EPOCHS);
+            EPOCHS,
+            AMENDMENTS);
 
     private PlanKeys() {}
 

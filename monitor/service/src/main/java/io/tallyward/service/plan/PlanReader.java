@@ -48,6 +48,7 @@ public final class PlanReader {
             return Checked.refused(problems.list());
         }
         Plan plan = plan(values);
+        AmendmentReader.check(plan, values);
         design(plan, values);
         return problems.isEmpty() ? Checked.of(plan) : Checked.refused(problems.list());
     }
@@ -81,7 +82,8 @@ public final class PlanReader {
                 splitCheck(values.get(PlanKeys.SPLIT_CHECK)),
                 trust(values.get(PlanKeys.TRUST)),
                 run(values.get(PlanKeys.RUN)),
-                epochs(values));
+                epochs(values),
+                AmendmentReader.amendments(values));
     }
 
     private static CountRule count(Values count) {

@@ -54,6 +54,7 @@ final class PlanRules {
         plan.find(PlanKeys.RUN).ifPresent(rules::checkRun);
         plan.find(PlanKeys.LOOKS).ifPresent(rules::checkLooks);
         plan.find(PlanKeys.EPOCHS).ifPresent(rules::checkEpochs);
+        plan.find(PlanKeys.AMENDMENTS).ifPresent(AmendmentReader::checkChanges);
     }
 
     private void checkCount(Values count) {

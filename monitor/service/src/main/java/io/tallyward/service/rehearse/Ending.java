@@ -22,7 +22,7 @@ public enum Ending {
             case STOP_HARM -> HARM;
             case STOP_FUTILITY -> FUTILITY;
             case EXHAUSTED -> EXHAUSTED;
-            case WAITING, CONTINUE ->
+            case WAITING, CONTINUE, STOPPED ->
                 throw new IllegalArgumentException("verdict: " + verdict.code() + " (expected: a settled one)");
         };
     }

@@ -6,7 +6,7 @@ import io.tallyward.connector.kafka.ShardGroup;
 import io.tallyward.connector.kafka.StartPosition;
 import io.tallyward.engine.count.CountSettings;
 import io.tallyward.engine.count.CountShard;
-import io.tallyward.engine.plan.Plan;
+import io.tallyward.service.book.PlanSource;
 import io.tallyward.service.config.InputStart;
 import io.tallyward.service.config.ServiceConfig;
 import io.tallyward.service.status.StatusBoard;
@@ -23,10 +23,10 @@ public final class CountGroup {
      * The group that counts.
      *
      * @param config the instance's configuration
-     * @param plans the plans to count under
+     * @param plans where the shards learn what to count under
      * @param board where the shards publish their reports, after each commit
      */
-    public static ShardGroup of(ServiceConfig config, List<Plan> plans, StatusBoard board) {
+    public static ShardGroup of(ServiceConfig config, PlanSource plans, StatusBoard board) {
         TopicNames names = new TopicNames(config.name());
         CountSettings settings =
                 new CountSettings(config.input().maxSkew(), config.input().idleAfter(), UnitKey.of(config));
@@ -47,16 +47,20 @@ public final class CountGroup {
                 .start(startPosition(config.input().start()))
                 .workers(config.workers())
                 .shards((partition, partitions) -> {
-                    CountShard shard = new CountShard(partition, partitions, plans, settings, topics.size());
-                    EventSlotReader slotReader = new EventSlotReader(
-                            config.input().mapping(), config.input().maxEventBytes(), shard.names());
+                    CountShard shard = new CountShard(partition, partitions, List.of(), settings, topics.size());
                     return new CountHost(
                             shard,
                             partition,
                             partitions,
                             topics,
                             names,
-                            EventParser.of(reader, slotReader),
+                            known -> EventParser.of(
+                                    reader,
+                                    new EventSlotReader(
+                                            config.input().mapping(),
+                                            config.input().maxEventBytes(),
+                                            known)),
+                            plans,
                             trafficLog,
                             board);
                 })

@@ -11,7 +11,10 @@ import io.tallyward.engine.count.TallyUpdate;
 import io.tallyward.engine.event.Event;
 import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.event.RejectReason;
+import io.tallyward.engine.plan.PlanNames;
 import io.tallyward.engine.shard.StateChange;
+import io.tallyward.service.book.PlanSnapshot;
+import io.tallyward.service.book.PlanSource;
 import io.tallyward.service.status.CountReport;
 import io.tallyward.service.status.StatusBoard;
 import java.nio.charset.StandardCharsets;
@@ -21,6 +24,7 @@ import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 import java.util.TreeMap;
+import java.util.function.Function;
 import java.util.function.Predicate;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
 import org.slf4j.Logger;
@@ -41,7 +45,10 @@ final class CountHost implements HostedShard {
     private final int partition;
     private final List<String> topics;
     private final TopicNames names;
-    private final EventParser parser;
+    private final Function<PlanNames, EventParser> parsers;
+    private final PlanSource plans;
+    private EventParser parser;
+    private long planVersion;
     private final EventSlot slot = new EventSlot();
     private final TrafficLog trafficLog;
     private final StatusBoard board;
@@ -57,17 +64,41 @@ final class CountHost implements HostedShard {
             int partitions,
             List<String> topics,
             TopicNames names,
-            EventParser parser,
+            Function<PlanNames, EventParser> parsers,
+            PlanSource plans,
             TrafficLog trafficLog,
             StatusBoard board) {
         this.shard = shard;
         this.partition = partition;
         this.topics = topics;
         this.names = names;
-        this.parser = parser;
+        this.parsers = parsers;
+        this.plans = plans;
         this.trafficLog = trafficLog;
         this.board = board;
         keyCheck = new KeyCheck(partition, partitions);
+        adopt(plans.snapshot());
+    }
+
+    private void adopt(PlanSnapshot snapshot) {
+        PlanNames before = shard.names();
+        shard.adopt(snapshot.entries().values());
+        if (parser == null || shard.names() != before) {
+            parser = parsers.apply(shard.names());
+        }
+        planVersion = snapshot.version();
+    }
+
+    private void adoptNews() {
+        plans.requireRecent();
+        PlanSnapshot snapshot = plans.snapshot();
+        if (snapshot.version() != planVersion) {
+            adopt(snapshot);
+        }
+        List<String> due = shard.dueToFreeze();
+        if (!due.isEmpty()) {
+            adopt(plans.freeze(due));
+        }
     }
 
     @Override
@@ -77,17 +108,29 @@ final class CountHost implements HostedShard {
 
     @Override
     public void apply(ConsumerRecord<byte[], byte[]> record) {
-        boolean usual;
-        try {
-            usual = parser.read(record.value(), slot);
-        } catch (RuntimeException unexpected) {
-            usual = false;
+        boolean usual = isUsual(record);
+        if (usual && shard.mustFreeze(slot.experiment(), slot.atMillis())) {
+            freeze(slot.experiment());
+            usual = isUsual(record);
         }
         if (usual) {
             admit(record, slot);
         } else {
             applyUnusual(record);
         }
+    }
+
+    private boolean isUsual(ConsumerRecord<byte[], byte[]> record) {
+        try {
+            return parser.read(record.value(), slot);
+        } catch (RuntimeException unexpected) {
+            return false;
+        }
+    }
+
+    /** Freezes the plan of an experiment; from then on its event may mean something else than before. */
+    private void freeze(int experiment) {
+        adopt(plans.freeze(List.of(shard.names().experimentName(experiment))));
     }
 
     private void admit(ConsumerRecord<byte[], byte[]> record, EventSlot event) {
@@ -129,6 +172,10 @@ final class CountHost implements HostedShard {
     }
 
     private void admit(ConsumerRecord<byte[], byte[]> record, Event event) {
+        int experiment = shard.names().experiment(event.experiment());
+        if (experiment >= 0 && shard.mustFreeze(experiment, event.atMillis())) {
+            freeze(experiment);
+        }
         Optional<RejectReason> rejected = shard.apply(topics.indexOf(record.topic()), record.timestamp(), event);
         if (rejected.isPresent()) {
             reject(record, rejected.get(), RejectDetail.of(rejected.get(), event, record.timestamp()));
@@ -175,6 +222,7 @@ final class CountHost implements HostedShard {
 
     @Override
     public void passTime(long nowMillis, Predicate<String> caughtUp) {
+        adoptNews();
         for (int source = 0; source < topics.size(); source++) {
             shard.passTime(source, nowMillis, caughtUp.test(topics.get(source)));
         }

@@ -6,17 +6,22 @@ import io.tallyward.connector.format.TallyJson;
 import io.tallyward.connector.kafka.Filler;
 import io.tallyward.connector.kafka.HostedShard;
 import io.tallyward.connector.kafka.Output;
+import io.tallyward.engine.count.TallyUpdate;
 import io.tallyward.engine.decide.DecideEffects;
 import io.tallyward.engine.decide.DecideShard;
+import io.tallyward.engine.plan.PlanBook;
 import io.tallyward.engine.record.DecisionRecord;
 import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.shard.StateChange;
+import io.tallyward.service.book.PlanSnapshot;
+import io.tallyward.service.book.PlanSource;
 import io.tallyward.service.status.StatusBoard;
 import java.nio.charset.StandardCharsets;
 import java.util.ArrayList;
 import java.util.HashSet;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.Set;
 import java.util.function.Predicate;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
@@ -29,17 +34,32 @@ final class DecideHost implements HostedShard {
     private static final Logger LOG = LoggerFactory.getLogger(DecideHost.class);
 
     private final DecideShard shard;
+    private final PlanSource plans;
     private final int partition;
     private final TopicNames names;
     private final StatusBoard board;
     private final Set<String> saidUnplanned = new HashSet<>();
     private final List<DecisionRecord> fresh = new ArrayList<>();
+    private long planVersion;
 
-    DecideHost(DecideShard shard, int partition, TopicNames names, StatusBoard board) {
+    DecideHost(DecideShard shard, PlanSource plans, int partition, TopicNames names, StatusBoard board) {
         this.shard = shard;
+        this.plans = plans;
         this.partition = partition;
         this.names = names;
         this.board = board;
+        adopt(plans.snapshot());
+    }
+
+    /** Of the experiments that are found in this partition of the tallies. */
+    private void adopt(PlanSnapshot snapshot) {
+        List<PlanBook.Entry> own = snapshot.entries().values().stream()
+                .filter(entry -> TopicNames.partitionOf(entry.plan().experiment()) == partition)
+                .toList();
+        shard.adopt(own);
+        own.forEach(entry -> shard.expect(entry.plan().experiment()));
+        snapshot.refusals().forEach(shard::refuse);
+        planVersion = snapshot.version();
     }
 
     @Override
@@ -52,12 +72,17 @@ final class DecideHost implements HostedShard {
         if (Filler.is(record)) {
             return;
         }
-        shard.apply(TallyJson.read(record.value()));
+        TallyUpdate update = TallyJson.read(record.value());
+        if (!shard.planDigest(update.experiment()).equals(Optional.of(update.planDigest()))) {
+            // Whoever counted it knew more of the book.
+            adopt(plans.catchUp());
+        }
+        shard.apply(update);
         for (String experiment : shard.unplanned().keySet()) {
             if (saidUnplanned.add(experiment)) {
                 LOG.warn(
-                        "Tallies of {} arrive, but no plan here is named so: they are set aside. Give every instance the"
-                                + " same plans.",
+                        "Tallies of {} arrive, but no plan here is named so: they are set aside. The book of plans has been"
+                                + " removed: put it back, or start under a new name.",
                         experiment);
             }
         }
@@ -65,7 +90,12 @@ final class DecideHost implements HostedShard {
 
     @Override
     public void passTime(long nowMillis, Predicate<String> caughtUp) {
-        // A decision depends on complete windows only, never on the clock.
+        // A decision depends on complete windows and the book of plans only, never on the clock.
+        plans.requireRecent();
+        PlanSnapshot snapshot = plans.snapshot();
+        if (snapshot.version() != planVersion) {
+            adopt(snapshot);
+        }
     }
 
     @Override

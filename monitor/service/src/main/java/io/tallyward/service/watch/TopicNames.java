@@ -30,6 +30,10 @@ record TopicNames(String prefix) {
         return prefix + "-notices";
     }
 
+    String plans() {
+        return prefix + "-plans";
+    }
+
     String countState() {
         return prefix + "-count-state";
     }

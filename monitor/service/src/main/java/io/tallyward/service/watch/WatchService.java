@@ -5,6 +5,8 @@ import io.tallyward.connector.kafka.ShardGroup;
 import io.tallyward.connector.kafka.ShardRunner;
 import io.tallyward.engine.decide.DecideShard;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.service.book.PlanDesk;
+import io.tallyward.service.book.PlanFiles;
 import io.tallyward.service.config.ServiceConfig;
 import io.tallyward.service.http.StatusServer;
 import io.tallyward.service.http.StatusSite;
@@ -16,7 +18,9 @@ import io.tallyward.service.status.HealthBoard;
 import io.tallyward.service.status.RunnerReport;
 import io.tallyward.service.status.StatusBoard;
 import io.tallyward.service.status.WebhookReport;
+import java.net.InetAddress;
 import java.net.URI;
+import java.net.UnknownHostException;
 import java.time.Clock;
 import java.time.InstantSource;
 import java.util.List;
@@ -39,7 +43,11 @@ public final class WatchService implements AutoCloseable {
     private final StatusBoard board = new StatusBoard();
     private final HealthBoard health = new HealthBoard();
     private final ServiceConfig config;
-    private final List<Plan> plans;
+    private final PlanDesk plans;
+
+    /** Filled once the server answers. */
+    private final AtomicReference<PlanFiles> planFiles = new AtomicReference<>();
+
     private final TopicNames names;
     private final Map<String, String> clientProperties;
 
@@ -55,20 +63,24 @@ public final class WatchService implements AutoCloseable {
     private final ShardRunner deciding;
     private final ShardRunner counting;
 
-    private WatchService(ServiceConfig config, List<Plan> plans, String version, RunnerListener listener) {
+    private WatchService(ServiceConfig config, String version, RunnerListener listener, InstantSource planClock) {
         this.config = config;
-        this.plans = List.copyOf(plans);
         names = new TopicNames(config.name());
         clientProperties = CountGroup.clientProperties(config);
 
-        exposition =
-                new PrometheusExposition(new MonitorMetrics(board, this::runnerReports, this::webhookReport, version));
+        exposition = new PrometheusExposition(
+                new MonitorMetrics(board, this::runnerReports, this::planTroubles, this::webhookReport, version));
         processMeters = ProcessMeters.bind(exposition.meters());
         StatusSite site = new StatusSite(board, health, exposition, new Pages(Clock.systemUTC()));
         server = StatusServer.start(config.http().host(), config.http().port(), site);
         InstantSource clock = InstantSource.system();
+        plans = PlanDesk.start(
+                clientProperties, names.plans(), planClock, config.input().maxSkew(), self(config));
+        PlanFiles files = PlanFiles.start(config.plans(), plans);
+        planFiles.set(files);
+        health.add(files.health());
         deciding = ShardRunner.start(decideGroup(), clock, listener);
-        counting = ShardRunner.start(CountGroup.of(config, this.plans, board), clock, listener);
+        counting = ShardRunner.start(CountGroup.of(config, plans, board), clock, listener);
         add("counting", "count", counting);
         add("deciding", "decide", deciding);
         config.webhook().ifPresent(webhook -> {
@@ -92,7 +104,13 @@ public final class WatchService implements AutoCloseable {
      * @throws java.io.UncheckedIOException when the HTTP address cannot be listened on
      */
     public static WatchService start(ServiceConfig config, List<Plan> plans, String version, RunnerListener listener) {
-        WatchService service = new WatchService(config, plans, version, listener);
+        return start(config, plans, version, listener, InstantSource.system());
+    }
+
+    /** @param planClock what an amendment has to be ahead of */
+    static WatchService start(
+            ServiceConfig config, List<Plan> plans, String version, RunnerListener listener, InstantSource planClock) {
+        WatchService service = new WatchService(config, version, listener, planClock);
         LOG.info(
                 "Watching {} on {} at {}; page, metrics and health at {}",
                 plans.stream().map(Plan::experiment).toList(),
@@ -118,21 +136,28 @@ public final class WatchService implements AutoCloseable {
                 .stateTopic(names.decideState())
                 .rereads()
                 .internalTopics(partitions -> names.forDeciding())
-                .shards((partition, partitions) -> new DecideHost(decideShard(partition), partition, names, board))
+                .shards((partition, partitions) ->
+                        new DecideHost(new DecideShard(List.of()), plans, partition, names, board))
                 .build();
     }
 
-    private DecideShard decideShard(int partition) {
-        DecideShard shard = new DecideShard(plans);
-        plans.stream()
-                .map(Plan::experiment)
-                .filter(experiment -> TopicNames.partitionOf(experiment) == partition)
-                .forEach(shard::expect);
-        return shard;
+    /** How this instance is named in messages. */
+    private static String self(ServiceConfig config) {
+        return config.kafka().instance().orElseGet(() -> {
+            try {
+                return InetAddress.getLocalHost().getHostName();
+            } catch (UnknownHostException unknown) {
+                return "an instance without a host name";
+            }
+        });
     }
 
     private List<RunnerReport> runnerReports() {
         return runnerReports.stream().map(Supplier::get).toList();
+    }
+
+    private int planTroubles() {
+        return Optional.ofNullable(planFiles.get()).map(PlanFiles::troubles).orElse(0);
     }
 
     private Optional<WebhookReport> webhookReport() {
@@ -144,6 +169,8 @@ public final class WatchService implements AutoCloseable {
         Optional.ofNullable(delivery.get()).ifPresent(NoticeDelivery::close);
         counting.close();
         deciding.close();
+        planFiles.get().close();
+        plans.close();
         server.close();
         processMeters.close();
         exposition.close();

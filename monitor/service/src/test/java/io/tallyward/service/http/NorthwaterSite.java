@@ -59,7 +59,7 @@ final class NorthwaterSite {
 
     /** A site whose clock stands a few days into the run. */
     static StatusSite site(StatusBoard board, HealthBoard health) {
-        MonitorMetrics metrics = new MonitorMetrics(board, List::of, Optional::empty, "0.1.0");
+        MonitorMetrics metrics = new MonitorMetrics(board, List::of, () -> 0, Optional::empty, "0.1.0");
         Clock clock = Clock.fixed(Northwater.START.plus(Duration.ofHours(136)), ZoneOffset.UTC);
         return new StatusSite(board, health, new PrometheusExposition(metrics), new Pages(clock));
     }

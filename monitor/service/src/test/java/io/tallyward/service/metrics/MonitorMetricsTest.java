@@ -65,6 +65,7 @@ class MonitorMetricsTest {
                 tallyward_ledger_units{partition}
                 tallyward_looks_delayed_total{experiment}
                 tallyward_looks_total{experiment}
+                tallyward_plan_troubles
                 tallyward_predictive_power{experiment,variant}
                 tallyward_rejected_total{reason}
                 tallyward_restore_duration_seconds{group}
@@ -106,6 +107,7 @@ class MonitorMetricsTest {
                         "tallyward_verdict{experiment=\"quay-banner\",state=\"stop-harm\",} 0.0",
                         "tallyward_verdict{experiment=\"quay-banner\",state=\"stop-futility\",} 0.0",
                         "tallyward_verdict{experiment=\"quay-banner\",state=\"exhausted\",} 0.0",
+                        "tallyward_verdict{experiment=\"quay-banner\",state=\"stopped\",} 0.0",
                         "tallyward_trust{experiment=\"quay-banner\",state=\"mismatch\",} 0.0",
                         "tallyward_trust{experiment=\"quay-banner\",state=\"crossover\",} 0.0",
                         "tallyward_trust{experiment=\"quay-banner\",state=\"starved\",} 0.0",
@@ -213,8 +215,9 @@ class MonitorMetricsTest {
 
     @Test
     void escapesLabelValues() {
-        String text =
-                new PrometheusExposition(new MonitorMetrics(board, List::of, Optional::empty, "1.0\"\n\\x")).text();
+        String text = new PrometheusExposition(
+                        new MonitorMetrics(board, List::of, () -> 0, Optional::empty, "1.0\"\n\\x"))
+                .text();
         assertTrue(text.contains("tallyward_build_info{version=\"1.0\\\"\\n\\\\x\",} 1.0"));
     }
 
@@ -234,6 +237,7 @@ class MonitorMetricsTest {
         return new MonitorMetrics(
                 board,
                 () -> List.of(new RunnerReport("count", 10, 1, OptionalDouble.of(2.5), 2, 400, true)),
+                () -> 2,
                 () -> Optional.of(new WebhookReport(5, 2, 1, OptionalDouble.of(30), 0)),
                 "0.1.0");
     }

@@ -18,6 +18,7 @@ import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.event.RejectReason;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.Variant;
+import io.tallyward.service.book.PlanSource;
 import io.tallyward.service.status.Northwater;
 import io.tallyward.service.status.StatusBoard;
 import java.nio.charset.StandardCharsets;
@@ -133,7 +134,8 @@ class CountHostTest {
                 1,
                 List.of("booking-events"),
                 new TopicNames("tallyward"),
-                parser,
+                names -> parser,
+                PlanSource.fixed(List.of(plan)),
                 new TrafficLog("tallyward-rejects"),
                 board);
     }

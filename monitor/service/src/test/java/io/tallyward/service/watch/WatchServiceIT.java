@@ -9,8 +9,10 @@ import io.tallyward.connector.embedded.EmbeddedBroker;
 import io.tallyward.connector.format.DecisionJson;
 import io.tallyward.connector.format.EventMapping;
 import io.tallyward.connector.format.JsonEventReader;
+import io.tallyward.connector.kafka.RunnerListener;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.engine.record.DecisionRecord.Occasion;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.SplitOrigin;
 import io.tallyward.engine.record.Trust;
@@ -33,7 +35,10 @@ import java.nio.charset.StandardCharsets;
 import java.nio.file.Files;
 import java.nio.file.Path;
 import java.time.Duration;
+import java.time.Instant;
+import java.time.InstantSource;
 import java.util.ArrayList;
+import java.util.Collection;
 import java.util.List;
 import java.util.Map;
 import java.util.Queue;
@@ -51,6 +56,10 @@ class WatchServiceIT {
     private static final int PARTITIONS = 3;
     private static final Duration PATIENCE = Duration.ofSeconds(60);
     private static final String SECRET = "whsec_MfKQ9r8GKYqrTwjUPD8ILPZIo2LaLaSw";
+
+    private static final RunnerListener NOTHING_FATAL = (group, cause) -> {
+        throw new AssertionError(group + " failed", cause);
+    };
 
     private final HttpClient http = HttpClient.newHttpClient();
 
@@ -91,6 +100,95 @@ class WatchServiceIT {
             receiver.awaitNotice("\"worstSegment\":\"version 6.3\"");
             assertEquals(13, broker.readAll(config.name() + "-rejects").size(), "rejected records kept");
         }
+    }
+
+    /** New, amended and refused plans, while two instances run; one of them has other files than the other. */
+    @Test
+    void takesUpAmendsAndRefusesPlansWhileItRuns() throws Exception {
+        try (BrokerUnderTest broker = BrokerUnderTest.start();
+                Receiver receiver = new Receiver()) {
+            String topic = broker.newTopic("northwater-events", PARTITIONS);
+            List<ProducerRecord<byte[], byte[]>> stream = LiveStream.of(topic, PARTITIONS, 20261203L);
+            ServiceConfig config =
+                    config(broker.bootstrapServers(), topic, broker.uniqueName("watch"), receiver.port());
+            Path quay = config.plans().resolve("quay-banner.yaml");
+            Path cabin = config.plans().resolve("cabin-upsell.yaml");
+            Files.delete(cabin);
+            List<Plan> plans = PlanDirectory.read(config.plans()).orElseThrow();
+            InstantSource noon = InstantSource.fixed(LiveStream.START.plus(Duration.ofHours(12)));
+
+            int third = stream.size() / 3;
+            List<ProducerRecord<byte[], byte[]>> begun = of("quay-banner", stream.subList(0, third));
+            broker.produce(begun);
+            try (WatchService first = WatchService.start(config, plans, "test", NOTHING_FATAL, noon);
+                    WatchService second = WatchService.start(config, plans, "test", NOTHING_FATAL, noon)) {
+                awaitReady(first);
+                awaitReady(second);
+
+                Files.writeString(cabin, LiveStream.BROKEN_PLAN);
+                Files.writeString(quay, LiveStream.PLAN.replace("alpha: 0.05", "alpha: 0.1"));
+                receiver.awaitNotice("test.benefit.alpha is 0.025, not 0.05");
+                awaitKnown("cabin-upsell", first, second);
+
+                Files.writeString(quay, LiveStream.PLAN + """
+                        amendments:
+                          - {at: 2026-05-04T13:00:00Z, reason: the quay is painted, shares: {plain: 0.5, wide: 0.5}}
+                          - {at: 2026-05-04T20:00:00Z, reason: the fair begins, end: 2026-05-05T06:00:00Z}
+                        """);
+                awaitPage("the fair begins", "quay-banner", first, second);
+                broker.produce(of("cabin-upsell", stream.subList(0, third)));
+                broker.produce(stream.subList(third, stream.size()));
+                awaitComplete("quay-banner", LiveStream.START.plus(Duration.ofHours(30)), first, second);
+                awaitComplete("cabin-upsell", LiveStream.START.plus(LiveStream.RUN), first, second);
+            }
+
+            List<DecisionRecord> live = decisions(broker, config.name() + "-decisions");
+            List<DecisionRecord> replayed = ReplayOracle.decisions(
+                    PlanDirectory.read(config.plans()).orElseThrow(),
+                    PARTITIONS,
+                    broker.readAll(topic),
+                    new JsonEventReader(EventMapping.DEFAULT, 65_536));
+            assertEquals(of("quay-banner", replayed), of("quay-banner", live));
+            assertEquals(of("cabin-upsell", replayed), of("cabin-upsell", live));
+            assertEquals(
+                    2,
+                    of("quay-banner", live).stream()
+                            .filter(record -> record.occasion() == Occasion.AMENDED)
+                            .count());
+        }
+    }
+
+    private static List<ProducerRecord<byte[], byte[]>> of(
+            String experiment, Collection<ProducerRecord<byte[], byte[]>> records) {
+        return records.stream()
+                .filter(record -> new String(record.value(), StandardCharsets.UTF_8).contains(experiment))
+                .toList();
+    }
+
+    private void awaitKnown(String experiment, WatchService first, WatchService second) {
+        Awaitility.await()
+                .atMost(PATIENCE)
+                .until(() -> (get(first, "api/experiments").body()
+                                + get(second, "api/experiments").body())
+                        .contains(experiment));
+    }
+
+    private void awaitPage(String words, String experiment, WatchService first, WatchService second) {
+        Awaitility.await()
+                .atMost(PATIENCE)
+                .until(() -> (get(first, "experiments/" + experiment).body()
+                                + get(second, "experiments/" + experiment).body())
+                        .contains(words));
+    }
+
+    private void awaitComplete(String experiment, Instant moment, WatchService first, WatchService second) {
+        Pattern complete =
+                Pattern.compile("\"experiment\":\"" + experiment + "\"[^{}]*\"completeUntil\":\"" + moment + "\"");
+        Awaitility.await().atMost(PATIENCE).untilAsserted(() -> {
+            String known = get(first, "api/experiments").body()
+                    + get(second, "api/experiments").body();
+            assertTrue(complete.matcher(known).find(), known);
+        });
     }
 
     private static void assertNamesTheBrokenVersion(DecisionRecord record) {
@@ -160,9 +258,7 @@ class WatchServiceIT {
     }
 
     private WatchService start(ServiceConfig config, List<Plan> plans) {
-        return WatchService.start(config, plans, "test", (group, cause) -> {
-            throw new AssertionError(group + " failed", cause);
-        });
+        return WatchService.start(config, plans, "test", NOTHING_FATAL);
     }
 
     private ServiceConfig config(String bootstrap, String topic, String name, int webhookPort) throws Exception {
@@ -193,15 +289,8 @@ class WatchServiceIT {
 
     /** Both instances are asked: only the one that decides about an experiment knows it. */
     private void awaitSettled(WatchService first, WatchService second) {
-        Awaitility.await().atMost(PATIENCE).untilAsserted(() -> {
-            String known = get(first, "api/experiments").body()
-                    + get(second, "api/experiments").body();
-            for (String experiment : List.of("quay-banner", "cabin-upsell")) {
-                Pattern settled = Pattern.compile("\"experiment\":\"" + experiment + "\"[^{}]*\"completeUntil\":\""
-                        + LiveStream.START.plus(LiveStream.RUN) + "\"");
-                assertTrue(settled.matcher(known).find(), known);
-            }
-        });
+        awaitComplete("quay-banner", LiveStream.START.plus(LiveStream.RUN), first, second);
+        awaitComplete("cabin-upsell", LiveStream.START.plus(LiveStream.RUN), first, second);
     }
 
     private HttpResponse<String> get(WatchService service, String path) throws IOException, InterruptedException {
