@@ -225,7 +225,7 @@ final class ChallengerTest {
         return true;
     }
 
-    /** The look just taken, judged once more at levels that were raised since. */
+    /** The look just taken, judged once more at levels that were raised since; nothing of it has been told. */
     TakenLook judgeAgain(boolean sound) {
         looks.pollLastEntry();
         path = null;
@@ -323,22 +323,22 @@ final class ChallengerTest {
 
     private void settle(Verdict finding, boolean sound) {
         if (finding.settled() && !sound) {
-            verdict = Verdict.CONTINUE;
+            verdict = verdict.become(Verdict.CONTINUE);
             held = finding;
         } else {
-            verdict = finding;
+            verdict = verdict.become(finding);
         }
     }
 
-    /** The run ended without a further look. */
     /** Ends the test without a finding: the owner has ended the experiment. A verdict that is held stays held. */
     void stop() {
-        verdict = Verdict.STOPPED;
+        verdict = verdict.become(Verdict.STOPPED);
     }
 
+    /** The run ended without a further look. */
     void exhaust(boolean sound) {
         if (sound) {
-            verdict = Verdict.EXHAUSTED;
+            verdict = verdict.become(Verdict.EXHAUSTED);
         } else {
             held = Verdict.EXHAUSTED;
         }
@@ -349,7 +349,7 @@ final class ChallengerTest {
         if (held == null) {
             return false;
         }
-        verdict = held;
+        verdict = verdict.become(held);
         held = null;
         return true;
     }

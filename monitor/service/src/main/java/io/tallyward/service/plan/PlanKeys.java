@@ -223,7 +223,12 @@ public final class PlanKeys {
                 "No benefit is declared before this much has passed.");
         static final Key<Duration> AT_MOST =
                 Key.required("at-most", duration(SECOND, YEAR), "Length of the run; a multiple of the window.");
-        static final Shape SHAPE = Shape.of(FROM, AT_LEAST, AT_MOST);
+        static final Key<Boolean> WHOLE_WEEKS = Key.withDefault(
+                "whole-weeks",
+                flag(),
+                "false",
+                "Whether the minimum, one week at least, is rounded up to whole weeks, so that it has every day alike.");
+        static final Shape SHAPE = Shape.of(FROM, AT_LEAST, WHOLE_WEEKS, AT_MOST);
     }
 
     static final class Epoch {

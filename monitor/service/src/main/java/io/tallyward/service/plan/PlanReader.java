@@ -148,7 +148,8 @@ public final class PlanReader {
     }
 
     private static Run run(Values run) {
-        return new Run(run.get(PlanKeys.Run.FROM), run.get(PlanKeys.Run.AT_LEAST), run.get(PlanKeys.Run.AT_MOST));
+        return new Run(
+                run.get(PlanKeys.Run.FROM), PlanRules.minimumRun(run).orElseThrow(), run.get(PlanKeys.Run.AT_MOST));
     }
 
     private static List<AllocationEpoch> epochs(Values values) {

@@ -169,12 +169,23 @@ final class PlanRules {
         });
         atMost.filter(length -> window.isPresent() && !isMultiple(length, window.get()))
                 .ifPresent(length -> run.refuse(PlanKeys.Run.AT_MOST, written(length), multiple()));
-        run.find(PlanKeys.Run.AT_LEAST)
+        minimumRun(run)
                 .filter(least -> atMost.isPresent() && least.compareTo(atMost.get()) > 0)
                 .ifPresent(least -> run.refuse(
-                        PlanKeys.Run.AT_LEAST,
+                        run.gives(PlanKeys.Run.AT_LEAST) ? PlanKeys.Run.AT_LEAST : PlanKeys.Run.WHOLE_WEEKS,
                         written(least),
                         "at most run.at-most, " + written(atMost.orElseThrow())));
+    }
+
+    /** The minimum run, in whole weeks if the plan asks for them; empty when its keys were refused. */
+    static Optional<Duration> minimumRun(Values run) {
+        boolean weeks = run.find(PlanKeys.Run.WHOLE_WEEKS).orElse(false);
+        return run.find(PlanKeys.Run.AT_LEAST).map(least -> {
+            long week = Duration.ofDays(7).toMillis();
+            return weeks
+                    ? Duration.ofMillis(Math.max(1, Math.floorDiv(least.toMillis() + week - 1, week)) * week)
+                    : least;
+        });
     }
 
     private void checkLooks(Values looks) {

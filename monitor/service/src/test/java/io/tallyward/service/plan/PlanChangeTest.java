@@ -138,6 +138,7 @@ class PlanChangeTest {
                 new Change("trust.starved-after", "after: PT6H", "after: PT7H", "trust.starved-after"),
                 new Change("run.from", "from: 2026-05-04T00:00:00Z", "from: 2026-05-04T00:05:00Z", "run.from"),
                 new Change("run.at-least", "at-least: P7D", "at-least: P14D", "run.at-least"),
+                new Change("run.whole-weeks", "at-least: P7D", "at-least: P8D, whole-weeks: true", "run.at-least"),
                 new Change("run.at-most", "at-most: P28D", "at-most: P35D", "run.at-most"),
                 new Change("epochs[].from", "from: 2026-05-04T06", "from: 2026-05-04T07", "epochs"),
                 new Change("epochs[].shares", "wide: 0.3, tall: 0.3", "wide: 0.2, tall: 0.4", "epochs"));
@@ -213,6 +214,13 @@ class PlanChangeTest {
 
         assertInstanceOf(Ruling.Amended.class, book(true).propose(amended, NOW));
         assertInstanceOf(Ruling.Refused.class, book(true).propose(amended, NOW.plusMillis(1)), "too late");
+    }
+
+    @Test
+    void wholeWeeksThatTheMinimumHasAlreadyAreNoChange() {
+        Plan other = read(PLAN.replace("at-least: P7D", "at-least: P3D, whole-weeks: true"));
+
+        assertInstanceOf(Ruling.Unchanged.class, book(true).propose(other, NOW));
     }
 
     @Test
