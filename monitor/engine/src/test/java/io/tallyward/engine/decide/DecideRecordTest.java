@@ -20,7 +20,9 @@ import io.tallyward.engine.record.DecisionRecord.Comparison;
 import io.tallyward.engine.record.DecisionRecord.VariantCount;
 import io.tallyward.engine.record.Notice;
 import io.tallyward.engine.record.RecordDigest;
+import io.tallyward.engine.record.Trust;
 import io.tallyward.engine.record.Verdict;
+import io.tallyward.engine.verify.RecordVerifier;
 import io.tallyward.statistics.boundary.BoundarySequence;
 import io.tallyward.statistics.boundary.Look;
 import io.tallyward.statistics.spending.SpendingFunction;
@@ -31,6 +33,7 @@ import java.util.HashMap;
 import java.util.HashSet;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.Random;
 import java.util.Set;
 import java.util.function.IntUnaryOperator;
@@ -206,6 +209,55 @@ class DecideRecordTest {
             assertEquals(host.notices().size(), ids, "seed " + seed);
             host.notices().forEach(notice -> assertTrue(notice.id().matches("notice_[0-9a-f]{32}"), notice.id()));
         }
+    }
+
+    /** The records alone lead to each other, whatever went wrong with the data; some streams lose units of one variant. */
+    @Test
+    void canBeDecidedAgainFromItsRecordsAlone() {
+        Set<Trust> trusts = new HashSet<>();
+        for (long seed = 0; seed < 10 * SEEDS; seed++) {
+            Plan plan = plan(seed);
+            List<TallyUpdate> updates = interleaved(stream(plan, seed), new Random(seed));
+            RecordVerifier verifier = new RecordVerifier();
+            for (DecisionRecord record :
+                    run(plan, seed % 4 == 3 ? thinned(updates) : updates).records()) {
+                assertEquals(Optional.empty(), verifier.take(record), "seed " + seed);
+                trusts.add(record.trust());
+            }
+        }
+        assertTrue(
+                trusts.containsAll(Set.of(Trust.MISMATCH, Trust.CROSSOVER, Trust.STARVED, Trust.SOUND)),
+                trusts::toString);
+    }
+
+    /** The same streams with a quarter of the units of the last variant lost from the tenth hour on. */
+    private static List<TallyUpdate> thinned(List<TallyUpdate> updates) {
+        return updates.stream()
+                .map(update -> new TallyUpdate(
+                        update.experiment(),
+                        update.planDigest(),
+                        update.partition(),
+                        update.partitions(),
+                        update.sealedUntilMillis(),
+                        update.cause(),
+                        update.windows().stream().map(DecideRecordTest::thinned).toList()))
+                .toList();
+    }
+
+    private static WindowTally thinned(WindowTally window) {
+        if (window.startMillis() < Plans.FROM.plus(Duration.ofHours(10)).toEpochMilli()) {
+            return window;
+        }
+        OutcomeCounts.Builder outcomes = new OutcomeCounts.Builder().add(window.outcomes());
+        List<WindowTally.Cell> cells = new ArrayList<>();
+        for (WindowTally.Cell cell : window.cells()) {
+            long lost = cell.variant() == 2 ? cell.trials() / 4 : 0;
+            long lostSuccesses = Math.min(cell.successes(), lost);
+            outcomes.add(Outcome.TRIAL, -lost).add(Outcome.SUCCESS, -lostSuccesses);
+            cells.add(WindowTally.Cell.ofUnits(
+                    cell.epoch(), cell.variant(), cell.trials() - lost, cell.successes() - lostSuccesses));
+        }
+        return new WindowTally(window.startMillis(), cells, outcomes.build());
     }
 
     @Test
