@@ -16,6 +16,8 @@ import java.util.Collection;
 import java.util.List;
 import java.util.Optional;
 import java.util.TreeMap;
+import java.util.stream.Collectors;
+import java.util.stream.Stream;
 
 /**
  * The group-sequential test of one challenger against the control: takes looks, keeps the boundaries already used, and
@@ -148,7 +150,9 @@ final class ChallengerTest {
                 benefitOpen,
                 last,
                 runEnds && !looks.isEmpty() && Readiness.clockStands(clock, lastClock()),
-                caution.orElse(""));
+                Stream.of(caution, calendar.late(windowEnd))
+                        .flatMap(Optional::stream)
+                        .collect(Collectors.joining("; ")));
         calendar.taken(windowEnd, fraction);
         return new Attempt.Taken(judge(sound));
     }

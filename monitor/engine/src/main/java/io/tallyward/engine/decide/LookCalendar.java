@@ -7,6 +7,8 @@ import io.tallyward.engine.plan.Plan;
 import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
+import java.time.Instant;
+import java.util.Optional;
 
 /** When the next look at one challenger is due. A due look stays due until it is taken. */
 final class LookCalendar {
@@ -36,6 +38,14 @@ final class LookCalendar {
                     : minimumRunOver;
         }
         return windowEnd >= nextDue;
+    }
+
+    /** That a look at a moment comes later than it was due, in words; empty where looks are due by information. */
+    Optional<String> late(long windowEnd) {
+        return schedule instanceof Every && windowEnd > nextDue
+                ? Optional.of("due since " + Instant.ofEpochMilli(nextDue) + ", it had to wait until "
+                        + Instant.ofEpochMilli(windowEnd))
+                : Optional.empty();
     }
 
     /** Takes note that a look was taken: the next one is the first planned after it. */

@@ -11,7 +11,7 @@ package io.tallyward.engine.decide;
  * @param benefitOpen whether the minimum run is over
  * @param last whether no look follows
  * @param again whether nothing has come in since the look before, by the clock: that look once more, as the last
- * @param caution why the level may be off, in words; empty when it is not
+ * @param caution why the level may be off, and that the look comes late, in words; empty when neither is so
  */
 record Sitting(
         Evidence found,
