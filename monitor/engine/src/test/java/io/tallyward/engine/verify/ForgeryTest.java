@@ -24,6 +24,8 @@ class ForgeryTest {
             Map.of(
                     "counts[].unitTotals.*",
                     "of a variant that the record does not look at: they enter its variance and nothing else",
+                    "amendment.reason",
+                    "why the plan was amended, in the owner's words",
                     "idleSealed",
                     "how many windows were sealed while a partition was idle; at most as many as there were",
                     "outcomes.(repeat|expired|crossover|orphan|late|outside|duplicate)",

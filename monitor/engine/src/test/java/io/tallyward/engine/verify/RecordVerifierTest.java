@@ -63,9 +63,7 @@ class RecordVerifierTest {
                 parts.add(record.split().origin() == null ? "no origin" : "origin");
             }
         }
-        assertTrue(
-                occasions.containsAll(Set.of(Occasion.PLAN, Occasion.LOOK, Occasion.TRUST, Occasion.END)),
-                occasions::toString);
+        assertEquals(EnumSet.allOf(Occasion.class), occasions);
         assertEquals(EnumSet.allOf(Trust.class), trusts);
         assertTrue(
                 verdicts.containsAll(Set.of(

@@ -8,10 +8,13 @@ import io.tallyward.engine.count.WindowTally;
 import io.tallyward.engine.count.WindowTally.Cell;
 import io.tallyward.engine.count.WindowTally.SegmentCell;
 import io.tallyward.engine.decide.DecideShard;
+import io.tallyward.engine.plan.Amendment;
 import io.tallyward.engine.plan.CountRule.CountBy;
 import io.tallyward.engine.plan.Plan;
+import io.tallyward.engine.plan.PlanBook;
 import io.tallyward.engine.plan.PlanDigest;
 import io.tallyward.engine.record.DecisionRecord;
+import java.time.Instant;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Random;
@@ -19,7 +22,7 @@ import java.util.Random;
 /** Carries a plan out on drawn counts, window by window, and keeps the records. */
 public final class RecordedRun {
 
-    private final Plan plan;
+    private Plan plan;
     private final Random random;
     private final DecideShard shard;
     private final List<DecisionRecord> records = new ArrayList<>();
@@ -33,6 +36,16 @@ public final class RecordedRun {
 
     public List<DecisionRecord> records() {
         return List.copyOf(records);
+    }
+
+    /** Amends the plan from some windows after the next one on. */
+    public RecordedRun amend(int windows, String reason, Amendment.Change change) {
+        List<Amendment> amendments = new ArrayList<>(plan.amendments());
+        amendments.add(new Amendment(
+                Instant.ofEpochMilli(start() + windows * plan.count().window().toMillis()), reason, change));
+        plan = plan.amended(amendments);
+        shard.adopt(List.of(new PlanBook.Entry(plan, true)));
+        return this;
     }
 
     /** Windows without any event. */

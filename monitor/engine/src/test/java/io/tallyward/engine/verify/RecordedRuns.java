@@ -4,6 +4,7 @@ import io.tallyward.engine.Plans;
 import io.tallyward.engine.count.Outcome;
 import io.tallyward.engine.count.OutcomeCounts;
 import io.tallyward.engine.plan.AllocationEpoch;
+import io.tallyward.engine.plan.Amendment;
 import io.tallyward.engine.plan.FutilityPlan;
 import io.tallyward.engine.plan.FutilityPlan.Assumption;
 import io.tallyward.engine.plan.Plan;
@@ -101,6 +102,29 @@ public final class RecordedRuns {
                 "too few to look at",
                 run(hourly("lounge-sign").build(), 13)
                         .next(72, 10, 0.002, 0.002)
+                        .records());
+        runs.put(
+                "amended: another split, then a later end",
+                run(hourly("berth-list").segments("release").build(), 14)
+                        .next(10, 300, 0.2, 0.21)
+                        .amend(4, "the first days were quiet", new Amendment.Shares(Map.of("plain", 0.3, "wide", 0.7)))
+                        .next(20, 300, 0.2, 0.21)
+                        .amend(2, "more time is needed", new Amendment.End(Plans.FROM.plus(Duration.ofDays(4))))
+                        .next(66, 30, 0.2, 0.21)
+                        .records());
+        runs.put(
+                "amended: an earlier end",
+                run(hourly("tide-table").build(), 15)
+                        .next(20, 100, 0.2, 0.2)
+                        .amend(2, "the season is over", new Amendment.End(Plans.FROM.plus(Duration.ofHours(40))))
+                        .next(20, 100, 0.2, 0.2)
+                        .records());
+        runs.put(
+                "stopped by the owner",
+                run(hourly("gull-poster").variants(three()).build(), 16)
+                        .next(20, 100, 0.2, 0.2, 0.2)
+                        .amend(3, "a complaint", new Amendment.Stop())
+                        .next(4, 100, 0.2, 0.2, 0.2)
                         .records());
         runs.put("mismatch by segment", mismatch());
         runs.put("held and told", held());

@@ -66,8 +66,9 @@ public final class Course {
             next.computeIfPresent(look.variant(), (variant, standing) -> standing.after(look, record));
         }
         if (record.occasion() == Occasion.END || !record.windowEnd().isBefore(plan.end())) {
-            Verdict how = record.verdict().settled() && next.size() == 1 ? record.verdict() : Verdict.EXHAUSTED;
-            next.replaceAll((variant, standing) -> standing.ended(how, sound));
+            boolean stopped = plan.stopped();
+            Verdict how = stopped ? Verdict.STOPPED : Verdict.EXHAUSTED;
+            next.replaceAll((variant, standing) -> standing.ended(how, sound || stopped));
         }
         standings = next;
         looks += record.occasion() == Occasion.LOOK ? 1 : 0;
