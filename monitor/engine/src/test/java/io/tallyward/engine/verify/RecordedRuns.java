@@ -105,7 +105,12 @@ public final class RecordedRuns {
                         .records());
         runs.put(
                 "amended: another split, then a later end",
-                run(hourly("berth-list").segments("release").build(), 14)
+                run(
+                                hourly("berth-list")
+                                        .lookEvery(Duration.ofHours(16))
+                                        .segments("release")
+                                        .build(),
+                                14)
                         .next(10, 300, 0.2, 0.21)
                         .amend(4, "the first days were quiet", new Amendment.Shares(Map.of("plain", 0.3, "wide", 0.7)))
                         .next(20, 300, 0.2, 0.21)
@@ -138,6 +143,7 @@ public final class RecordedRuns {
                 "a ramp",
                 run(
                                 hourly("return-prompt")
+                                        .lookEvery(Duration.ofHours(12))
                                         .epochs(
                                                 new AllocationEpoch(
                                                         Plans.FROM.plus(Duration.ofHours(20)),
