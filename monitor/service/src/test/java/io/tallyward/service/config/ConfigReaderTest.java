@@ -186,6 +186,18 @@ class ConfigReaderTest {
     }
 
     @Test
+    void refusesAKeptNameWhereNobodyCanTakeOverUnderIt() throws IOException {
+        assertEquals(
+                List.of(
+                        ":1: kafka.instance: pier-1 (expected: none with group-protocol: consumer, whose broker lets nobody"
+                                + " take over before a session ends)"),
+                messages(write("""
+                        kafka: {bootstrap-servers: "127.0.0.1:9092", group-protocol: consumer, instance: pier-1}
+                        input: {topics: [views]}
+                        """)));
+    }
+
+    @Test
     void refusesFieldsInsideOthers() throws IOException {
         assertEquals(
                 List.of(":2: input.fields: unit: \"/kind/unit\" (expected: not inside kind at \"/kind\")"),
