@@ -26,10 +26,20 @@ import java.util.TreeSet;
  * window that are already sealed wait here. Windows leave in order, each exactly once, whatever the order in which the
  * partitions report.
  *
- * <p>Its durable form is one short entry, and one for every window that waits: while one partition lags, thousands of
- * windows of the others may wait, more than one record can hold.
+ * <p>Its durable form is one short entry, and one or more for every window that waits: while one partition lags, thousands of
+ * windows of the others may wait, more than one record can hold; and the segments of one window, each partition naming
+ * values of its own, may be more than one record can hold too.
  */
 final class Completeness {
+
+    /** An entry is closed once it is about this large; well below a broker's usual record limit of 1 MB. */
+    static final int PIECE_BYTES = 400_000;
+
+    /** Of a segment's cell beside its texts: their lengths, epoch, variant and units. */
+    private static final int BYTES_OF_SEGMENT = 20;
+
+    /** Bytes of a character in a stored text, at most. */
+    private static final int MOST_UTF = 3;
 
     private final long runFrom;
     private long[] sealedUntil = new long[0];
@@ -39,10 +49,13 @@ final class Completeness {
 
     private final TreeMap<Long, Parts> waiting = new TreeMap<>();
 
-    /** Windows that have an entry in the log. */
-    private final Set<Long> stored = new TreeSet<>();
+    /** What was restored of windows and not put together yet, by window and number. */
+    private final TreeMap<Long, TreeMap<Integer, Parts>> restored = new TreeMap<>();
 
-    /** Windows whose entry in the log, if any, is out of date. */
+    /** How many entries windows have in the log, where they have any. */
+    private final TreeMap<Long, Integer> stored = new TreeMap<>();
+
+    /** Windows whose entries in the log, if any, are out of date. */
     private final Set<Long> touched = new TreeSet<>();
 
     Completeness(long runFrom) {
@@ -64,6 +77,42 @@ final class Completeness {
             List<Cell> merged = new ArrayList<>(cells);
             tally.cells().forEach(cell -> add(merged, cell));
             return new Parts(merged, mergedSegments(tally), outcomes.plus(tally.outcomes()));
+        }
+
+        /** These and others of the same window that have no cell or segment in common with them. */
+        private Parts beside(Parts others) {
+            List<Cell> allCells = new ArrayList<>(cells);
+            allCells.addAll(others.cells);
+            List<SegmentCell> allSegments = new ArrayList<>(segments);
+            allSegments.addAll(others.segments);
+            return new Parts(allCells, allSegments, outcomes.plus(others.outcomes));
+        }
+
+        /** The same in pieces, each small enough for one record; put beside one another they are the whole. */
+        private List<Parts> pieces() {
+            List<Parts> pieces = new ArrayList<>();
+            int from = 0;
+            int bytes = 0;
+            for (int i = 0; i < segments.size(); i++) {
+                bytes += bytes(segments.get(i));
+                if (bytes > PIECE_BYTES) {
+                    pieces.add(piece(pieces.isEmpty(), from, i));
+                    from = i;
+                    bytes = bytes(segments.get(i));
+                }
+            }
+            pieces.add(piece(pieces.isEmpty(), from, segments.size()));
+            return pieces;
+        }
+
+        private Parts piece(boolean first, int from, int to) {
+            List<SegmentCell> its = segments.subList(from, to);
+            return first ? new Parts(cells, its, outcomes) : new Parts(List.of(), its, OutcomeCounts.NONE);
+        }
+
+        private static int bytes(SegmentCell cell) {
+            return BYTES_OF_SEGMENT
+                    + MOST_UTF * (cell.field().length() + cell.value().length());
         }
 
         private List<SegmentCell> mergedSegments(WindowTally tally) {
@@ -157,6 +206,7 @@ final class Completeness {
         long before = sealedUntil[update.partition()];
         for (WindowTally window : update.windows()) {
             if (window.startMillis() >= before) {
+                putTogether(window.startMillis());
                 Parts present = waiting.getOrDefault(window.startMillis(), Parts.NONE);
                 waiting.put(window.startMillis(), present.plus(window));
                 touched.add(window.startMillis());
@@ -200,6 +250,7 @@ final class Completeness {
 
     /** Takes the merged counts of a complete window. */
     Parts take(long windowStart) {
+        putTogether(windowStart);
         Parts parts = waiting.remove(windowStart);
         if (parts == null) {
             return Parts.NONE;
@@ -208,28 +259,55 @@ final class Completeness {
         return parts;
     }
 
-    /** The windows whose entries changed since this was last asked, by start; empty where the entry is to be removed. */
-    Map<Long, Optional<Parts>> takeChanged() {
-        Map<Long, Optional<Parts>> changes = new TreeMap<>();
+    private void putTogether(long windowStart) {
+        TreeMap<Integer, Parts> pieces = restored.remove(windowStart);
+        if (pieces != null) {
+            waiting.put(windowStart, pieces.values().stream().reduce(Parts.NONE, Parts::beside));
+        }
+    }
+
+    /**
+     * An entry of a window in the log.
+     *
+     * @param windowStart start of the window
+     * @param number which of the window's entries it is, from 0
+     * @param parts what it holds; empty where it is to be removed
+     */
+    record Entry(long windowStart, int number, Optional<Parts> parts) {}
+
+    /** The entries that changed since this was last asked. */
+    List<Entry> takeChanged() {
+        List<Entry> changes = new ArrayList<>();
         for (long window : touched) {
-            Optional<Parts> parts = Optional.ofNullable(waiting.get(window));
-            boolean wasStored = parts.isPresent() ? !stored.add(window) : stored.remove(window);
-            if (parts.isPresent() || wasStored) {
-                changes.put(window, parts);
+            Parts parts = waiting.get(window);
+            List<Parts> pieces = parts == null ? List.of() : parts.pieces();
+            for (int number = 0; number < pieces.size(); number++) {
+                changes.add(new Entry(window, number, Optional.of(pieces.get(number))));
+            }
+            int before = stored.getOrDefault(window, 0);
+            for (int number = pieces.size(); number < before; number++) {
+                changes.add(new Entry(window, number, Optional.empty()));
+            }
+            if (pieces.isEmpty()) {
+                stored.remove(window);
+            } else {
+                stored.put(window, pieces.size());
             }
         }
         touched.clear();
         return changes;
     }
 
-    /** Restores the entry of a window as it was written, or its removal. */
-    void restore(long windowStart, Optional<Parts> parts) {
-        if (parts.isPresent()) {
-            waiting.put(windowStart, parts.get());
-            stored.add(windowStart);
+    /** Restores an entry of a window as it was written, or its removal. */
+    void restore(Entry entry) {
+        long window = entry.windowStart();
+        TreeMap<Integer, Parts> pieces = restored.computeIfAbsent(window, start -> new TreeMap<>());
+        entry.parts().ifPresentOrElse(parts -> pieces.put(entry.number(), parts), () -> pieces.remove(entry.number()));
+        if (pieces.isEmpty()) {
+            restored.remove(window);
+            stored.remove(window);
         } else {
-            waiting.remove(windowStart);
-            stored.remove(windowStart);
+            stored.put(window, pieces.lastKey() + 1);
         }
     }
 

@@ -31,7 +31,7 @@ import java.util.Optional;
 public final class DecideShard {
 
     private static final byte EXPERIMENT = 'x';
-    private static final byte WINDOW = 'w';
+    private static final byte WINDOW = 'p';
     private static final byte LOOK = 'l';
 
     private final DecisionMemo memo;
@@ -77,9 +77,12 @@ public final class DecideShard {
             }
             if (kind == WINDOW) {
                 decider(experiment)
-                        .restoreWindow(
+                        .restoreWindow(new Completeness.Entry(
                                 keyIn.readLong(),
-                                value == null ? Optional.empty() : Optional.of(Completeness.Parts.read(reader(value))));
+                                keyIn.readInt(),
+                                value == null
+                                        ? Optional.empty()
+                                        : Optional.of(Completeness.Parts.read(reader(value)))));
             } else if (kind == EXPERIMENT) {
                 decider(experiment).read(reader(value));
             } else if (kind == LOOK) {
@@ -87,7 +90,7 @@ public final class DecideShard {
             } else {
                 throw new IllegalStateException(
                         "stored decisions: entry of unknown kind " + kind
-                                + " (expected: x, w or l); the state was written by another version, whose state topics have to be removed");
+                                + " (expected: x, p or l); the state was written by another version, whose state topics have to be removed");
             }
         } catch (IOException e) {
             throw new UncheckedIOException("stored decisions: an entry is cut short", e);
@@ -172,9 +175,9 @@ public final class DecideShard {
                 state.add(new StateChange(lookKey(experiment, look), pack(look::write)));
             }
             decider.takeChangedWindows()
-                    .forEach((start, parts) -> state.add(new StateChange(
-                            windowKey(experiment, start),
-                            parts.map(present -> pack(present::write)).orElse(null))));
+                    .forEach(entry -> state.add(new StateChange(
+                            windowKey(experiment, entry),
+                            entry.parts().map(present -> pack(present::write)).orElse(null))));
             if (decider.takeChanged()) {
                 state.add(new StateChange(experimentKey(experiment), pack(decider::write)));
             }
@@ -202,11 +205,12 @@ public final class DecideShard {
         });
     }
 
-    private static byte[] windowKey(String experiment, long start) {
+    private static byte[] windowKey(String experiment, Completeness.Entry entry) {
         return pack(out -> {
             out.writeByte(WINDOW);
             out.writeUTF(experiment);
-            out.writeLong(start);
+            out.writeLong(entry.windowStart());
+            out.writeInt(entry.number());
         });
     }
 

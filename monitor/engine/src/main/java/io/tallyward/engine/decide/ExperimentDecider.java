@@ -26,7 +26,6 @@ import java.io.UncheckedIOException;
 import java.time.Instant;
 import java.util.ArrayList;
 import java.util.List;
-import java.util.Map;
 import java.util.Optional;
 
 /**
@@ -289,8 +288,8 @@ final class ExperimentDecider {
         return copy;
     }
 
-    /** Incomplete windows whose counts changed, by start; empty where a window is complete and its entry to be removed. */
-    Map<Long, Optional<Completeness.Parts>> takeChangedWindows() {
+    /** The entries of incomplete windows that changed; those of a window that is complete are to be removed. */
+    List<Completeness.Entry> takeChangedWindows() {
         return completeness.takeChanged();
     }
 
@@ -318,8 +317,8 @@ final class ExperimentDecider {
                 lastHash);
     }
 
-    void restoreWindow(long windowStart, Optional<Completeness.Parts> parts) {
-        completeness.restore(windowStart, parts);
+    void restoreWindow(Completeness.Entry entry) {
+        completeness.restore(entry);
     }
 
     void restoreLook(TakenLook look) {

@@ -490,7 +490,7 @@ class DecideShardTest {
         assertEquals(
                 List.of(),
                 lagging.log().live().stream()
-                        .filter(change -> change.key()[0] == 'w')
+                        .filter(change -> change.key()[0] == 'p')
                         .toList(),
                 "what is complete leaves nothing behind");
     }
