@@ -1,6 +1,7 @@
 package io.tallyward.connector.kafka;
 
 import java.util.Optional;
+import java.util.concurrent.Executor;
 import org.apache.kafka.clients.consumer.Consumer;
 import org.apache.kafka.clients.producer.Producer;
 
@@ -8,6 +9,9 @@ import org.apache.kafka.clients.producer.Producer;
 interface Clients {
 
     Cluster cluster();
+
+    /** Runs what may take seconds beside the worker's thread, one thing at a time. */
+    Executor aside();
 
     /** Reads the input topics as a member of the group. */
     Consumer<byte[], byte[]> input();

@@ -52,15 +52,27 @@ final class InputIdentity {
     }
 
     /**
+     * The topics as they are at some moment.
+     *
+     * @param partitions how many partitions those have that there are
+     * @param ids what tells them from earlier ones
+     */
+    record Found(Map<String, Integer> partitions, Map<String, String> ids) {}
+
+    /** Asks for the topics as they are now; may be called by any thread. */
+    Found find() {
+        return new Found(cluster.partitions(group.inputTopics()), cluster.ids(group.inputTopics()));
+    }
+
+    /**
      * Makes sure that the topics are still what they were.
      *
      * @throws BrokerException if one is gone, has grown or was created anew
      */
-    void verify() {
-        Map<String, Integer> found = cluster.partitions(group.inputTopics());
-        Map<String, String> now = cluster.ids(group.inputTopics());
+    void verify(Found found) {
+        Map<String, String> now = found.ids();
         for (String topic : group.inputTopics()) {
-            Integer count = found.get(topic);
+            Integer count = found.partitions().get(topic);
             if (count == null) {
                 throw new BrokerException("input topic " + topic + " does not exist any more on " + group.broker()
                         + ": " + group.missingInput());

@@ -2,6 +2,10 @@ package io.tallyward.connector.kafka;
 
 import java.util.Map;
 import java.util.Optional;
+import java.util.concurrent.Executor;
+import java.util.concurrent.LinkedBlockingQueue;
+import java.util.concurrent.ThreadPoolExecutor;
+import java.util.concurrent.TimeUnit;
 import org.apache.kafka.clients.consumer.Consumer;
 import org.apache.kafka.clients.consumer.KafkaConsumer;
 import org.apache.kafka.clients.producer.KafkaProducer;
@@ -14,11 +18,30 @@ final class KafkaClients implements Clients {
 
     private final ShardGroup group;
     private final int worker;
+    private final Executor aside;
     private int outputs;
 
     KafkaClients(ShardGroup group, int worker) {
         this.group = group;
         this.worker = worker;
+        this.aside = aside(group.id() + "-" + worker + "-upkeep");
+    }
+
+    /** One thread, which is there only while it has something to do or had some time ago. */
+    private static Executor aside(String name) {
+        ThreadPoolExecutor executor =
+                new ThreadPoolExecutor(1, 1, 1, TimeUnit.MINUTES, new LinkedBlockingQueue<>(), task -> {
+                    Thread thread = new Thread(task, name);
+                    thread.setDaemon(true);
+                    return thread;
+                });
+        executor.allowCoreThreadTimeOut(true);
+        return executor;
+    }
+
+    @Override
+    public Executor aside() {
+        return aside;
     }
 
     @Override

@@ -37,9 +37,6 @@ final class ShardSession {
     private static final CloseOptions LEAVING = CloseOptions.timeout(Duration.ofSeconds(2))
             .withGroupMembershipOperation(CloseOptions.GroupMembershipOperation.LEAVE_GROUP);
 
-    /** How often to see whether topics are still what they were, and whether a transaction hangs. */
-    static final Duration UPKEEP = Duration.ofSeconds(10);
-
     /** How long the inputs of one partition number may be with several members. */
     static final Duration APART = Duration.ofMinutes(1);
 
@@ -63,9 +60,9 @@ final class ShardSession {
 
     private final InputIdentity identity;
     private final TransactionMender mender;
+    private final Upkeep upkeep;
 
     private long lastCycleMillis;
-    private long lastUpkeepMillis;
     private long apartSinceMillis;
     private long uncommittedRecords;
     private long cycles;
@@ -98,7 +95,7 @@ final class ShardSession {
         this.mender = new TransactionMender(group, clients, cluster, consumer, partitions, transactions::retire);
         this.assigned = new AssignedShards(consumer, group.inputTopics().size(), partitions, new Consequences());
         this.lastCycleMillis = clock.millis();
-        this.lastUpkeepMillis = lastCycleMillis;
+        this.upkeep = new Upkeep(identity, mender, clients.aside(), lastCycleMillis);
         this.apartSinceMillis = lastCycleMillis;
         consumer.subscribe(group.inputTopics(), assigned);
     }
@@ -177,7 +174,7 @@ final class ShardSession {
     }
 
     private void skipDeleted(OffsetOutOfRangeException deleted) {
-        verifyInputs();
+        verified(() -> identity.verify(identity.find()));
         Map<TopicPartition, Long> wanted = deleted.offsetOutOfRangePartitions();
         Map<TopicPartition, Long> oldest = consumer.beginningOffsets(wanted.keySet());
         wanted.forEach((partition, offset) -> {
@@ -214,16 +211,12 @@ final class ShardSession {
         if (trouble().isEmpty() && !assigned.hasWaiting()) {
             cycles++;
         }
-        if (contact.trouble().isEmpty() && Elapsed.since(lastUpkeepMillis, nowMillis, UPKEEP)) {
-            lastUpkeepMillis = nowMillis;
-            verifyInputs();
-            mender.look(assigned.holds(0));
-        }
+        verified(() -> upkeep.see(nowMillis, contact.trouble().isEmpty(), assigned.holds(0)));
     }
 
-    private void verifyInputs() {
+    private void verified(Runnable look) {
         try {
-            identity.verify();
+            look.run();
         } catch (BrokerException changed) {
             outdated = true;
             throw changed;

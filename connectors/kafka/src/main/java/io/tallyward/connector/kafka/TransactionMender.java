@@ -4,11 +4,13 @@ import java.time.Duration;
 import java.util.ArrayList;
 import java.util.HashMap;
 import java.util.HashSet;
+import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 import java.util.Set;
 import java.util.TreeMap;
+import java.util.function.Supplier;
 import org.apache.kafka.clients.consumer.Consumer;
 import org.apache.kafka.clients.consumer.OffsetAndMetadata;
 import org.apache.kafka.clients.producer.Producer;
@@ -57,6 +59,10 @@ final class TransactionMender {
     private final int partitions;
     private final Set<OpenTransaction> said = new HashSet<>();
     private Set<OpenTransaction> seen = Set.of();
+
+    /** What was told its end, and was not seen since, with the word for its end. */
+    private final Map<OpenTransaction, String> mended = new LinkedHashMap<>();
+
     private List<OpenTransaction> undecided = List.of();
 
     /** @param retire has the worker's own producer put aside, so that its id is not in use */
@@ -76,30 +82,69 @@ final class TransactionMender {
     }
 
     /**
-     * Looks for open transactions in all that the group writes, and mends those that were open at the last look too. What
-     * the brokers do not answer or do not permit is left for the next look.
+     * What was open at one moment.
      *
-     * @param caretaker whether this worker sees to what nobody else does
+     * @param open every open transaction in what the group writes
+     * @param lasting those that were open at the last look too, by producer
      */
-    void look(boolean caretaker) {
-        try {
-            Set<OpenTransaction> open = new HashSet<>(cluster.openTransactions(written()));
+    record Sighting(Set<OpenTransaction> open, List<Lasting> lasting) {}
+
+    /**
+     * A producer's transactions that have been open for some time.
+     *
+     * @param open in some partitions
+     * @param known what their coordinator knows
+     * @param numbered whether the brokers number transactions
+     * @param members client ids of the group's members
+     */
+    record Lasting(
+            List<OpenTransaction> open,
+            Optional<CoordinatedTransaction> known,
+            boolean numbered,
+            Set<String> members) {}
+
+    /**
+     * Prepares the question for open transactions in all that the group writes. It may be put by any thread, and may take
+     * seconds. What the brokers do not answer or do not permit is left for the next.
+     */
+    Supplier<Sighting> question() {
+        Set<OpenTransaction> before = seen;
+        return () -> {
+            Set<OpenTransaction> open = Set.copyOf(cluster.openTransactions(written()));
             Map<Long, List<OpenTransaction>> lasting = new TreeMap<>();
             for (OpenTransaction transaction : open) {
-                if (seen.contains(transaction)) {
+                if (before.contains(transaction)) {
                     lasting.computeIfAbsent(transaction.producerId(), id -> new ArrayList<>())
                             .add(transaction);
                 }
             }
-            seen = open;
-            said.retainAll(open);
-            List<OpenTransaction> left = new ArrayList<>();
-            lasting.forEach((producerId, transactions) -> left.addAll(consider(producerId, transactions, caretaker)));
+            List<Lasting> found = new ArrayList<>();
+            lasting.forEach((producerId, transactions) -> found.add(new Lasting(
+                    transactions,
+                    cluster.coordinated(producerId),
+                    cluster.numbersTransactions(),
+                    cluster.memberClientIds(group.id()))));
+            return new Sighting(open, found);
+        };
+    }
+
+    /**
+     * Mends what has been open for some time.
+     *
+     * @param caretaker whether this worker sees to what nobody else does
+     */
+    void mend(Sighting sighting, boolean caretaker) {
+        seen = sighting.open();
+        said.retainAll(seen);
+        tellEnded();
+        List<OpenTransaction> left = new ArrayList<>();
+        try {
+            sighting.lasting().forEach(lasting -> left.addAll(consider(lasting, caretaker)));
             undecided = left;
         } catch (WakeupException | InterruptException stop) {
             throw stop;
         } catch (KafkaException unanswered) {
-            LOG.debug("{}: open transactions could not be looked for", group.id(), unanswered);
+            LOG.debug("{}: open transactions could not be ended", group.id(), unanswered);
         }
     }
 
@@ -126,32 +171,31 @@ final class TransactionMender {
     }
 
     /** Returns what stays open. */
-    private List<OpenTransaction> consider(long producerId, List<OpenTransaction> open, boolean caretaker) {
-        Optional<CoordinatedTransaction> known = cluster.coordinated(producerId);
+    private List<OpenTransaction> consider(Lasting lasting, boolean caretaker) {
+        Optional<CoordinatedTransaction> known = lasting.known();
         if (known.isPresent() && !ClientSettings.isOurs(group, known.get().transactionalId())) {
             return List.of();
         }
-        boolean numbered = cluster.numbersTransactions();
         Map<OwedMarker, List<OpenTransaction>> owed = new TreeMap<>();
-        open.forEach(transaction -> owed.computeIfAbsent(
-                        OwedMarker.of(transaction, known, numbered), marker -> new ArrayList<>())
-                .add(transaction));
+        lasting.open()
+                .forEach(transaction -> owed.computeIfAbsent(
+                                OwedMarker.of(transaction, known, lasting.numbered()), marker -> new ArrayList<>())
+                        .add(transaction));
         List<OpenTransaction> unknown = owed.getOrDefault(OwedMarker.UNKNOWN, List.of());
         unknown.forEach(this::say);
-        if (known.isPresent() && isMine(known.get().transactionalId(), caretaker)) {
+        if (known.isPresent() && isMine(known.get().transactionalId(), caretaker, lasting.members())) {
             commit(known.get(), owed.getOrDefault(OwedMarker.COMMIT, List.of()));
             abort(owed.getOrDefault(OwedMarker.ABORT, List.of()));
         }
         return unknown;
     }
 
-    private boolean isMine(String transactionalId, boolean caretaker) {
+    private boolean isMine(String transactionalId, boolean caretaker, Set<String> members) {
         String worker = transactionalId.substring(0, transactionalId.lastIndexOf('-'));
         String own = clients.lastTransactionalId()
                 .map(id -> id.substring(0, id.lastIndexOf('-')))
                 .orElse("");
-        return worker.equals(own)
-                || caretaker && !cluster.memberClientIds(group.id()).contains(worker);
+        return worker.equals(own) || caretaker && !members.contains(worker);
     }
 
     private void abort(List<OpenTransaction> open) {
@@ -159,15 +203,38 @@ final class TransactionMender {
         told(open, "aborted");
     }
 
+    /** Says what was done; that it has worked is said when it has been seen. */
     private void told(List<OpenTransaction> open, String end) {
         if (!open.isEmpty()) {
+            open.forEach(transaction -> mended.put(transaction, end));
             LOG.warn(
-                    "{}: a transaction that its coordinator had {} was still open in {}; it is {} there now",
+                    "{}: a transaction that its coordinator had {} was still open in {}; they have been told so, and are"
+                            + " looked at again",
                     group.id(),
                     end,
-                    open.stream().map(OpenTransaction::partition).toList(),
-                    end);
+                    partitions(open));
         }
+    }
+
+    private void tellEnded() {
+        Map<String, List<OpenTransaction>> ended = new TreeMap<>();
+        mended.forEach((transaction, end) -> {
+            if (!seen.contains(transaction)) {
+                ended.computeIfAbsent(end, word -> new ArrayList<>()).add(transaction);
+            }
+        });
+        ended.forEach((end, transactions) -> {
+            mended.keySet().removeAll(transactions);
+            LOG.info(
+                    "{}: the transaction that was {} is no longer open in {}",
+                    group.id(),
+                    end,
+                    partitions(transactions));
+        });
+    }
+
+    private static List<TopicPartition> partitions(List<OpenTransaction> transactions) {
+        return transactions.stream().map(OpenTransaction::partition).toList();
     }
 
     private void commit(CoordinatedTransaction known, List<OpenTransaction> open) {

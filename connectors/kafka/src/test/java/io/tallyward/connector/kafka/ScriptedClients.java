@@ -9,10 +9,12 @@ import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 import java.util.Set;
+import java.util.concurrent.Executor;
 import java.util.concurrent.Future;
 import org.apache.kafka.clients.consumer.Consumer;
 import org.apache.kafka.clients.consumer.ConsumerGroupMetadata;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
+import org.apache.kafka.clients.consumer.ConsumerRecords;
 import org.apache.kafka.clients.consumer.MockConsumer;
 import org.apache.kafka.clients.consumer.OffsetAndMetadata;
 import org.apache.kafka.clients.consumer.OffsetAndTimestamp;
@@ -48,6 +50,9 @@ final class ScriptedClients implements Clients, OutboxClients {
 
     RuntimeException pingFailure;
 
+    /** What asking which topics there are ends in; null for an answer. */
+    RuntimeException idsFailure;
+
     /** What the brokers say of transactions. */
     final List<OpenTransaction> open = new ArrayList<>();
 
@@ -56,12 +61,28 @@ final class ScriptedClients implements Clients, OutboxClients {
     final Map<String, String> ids = new HashMap<>();
     boolean numbered = true;
 
+    /** Whether questions that are put aside wait until the test has them answered. */
+    boolean brokersHesitate;
+
+    final List<Runnable> aside = new ArrayList<>();
+
     /** What happens while a worker proves that it is a member. */
     Runnable onProof = () -> {};
 
     @Override
     public Cluster cluster() {
         return new ScriptedCluster();
+    }
+
+    @Override
+    public Executor aside() {
+        return task -> {
+            if (brokersHesitate) {
+                aside.add(task);
+            } else {
+                task.run();
+            }
+        };
     }
 
     @Override
@@ -213,6 +234,8 @@ final class ScriptedClients implements Clients, OutboxClients {
 
     /** The reader of state: whatever partition it is given holds the scripted records. */
     private final class State extends MockConsumer<byte[], byte[]> {
+        private boolean read;
+
         private State() {
             super("earliest");
         }
@@ -222,9 +245,29 @@ final class ScriptedClients implements Clients, OutboxClients {
             journal.add("read state");
             super.assign(partitions);
             partitions.forEach(partition -> updateBeginningOffsets(Map.of(partition, 0L)));
+            fill();
+        }
+
+        private void fill() {
+            read = false;
             stateRecords.stream()
-                    .filter(record -> partitions.contains(new TopicPartition(record.topic(), record.partition())))
+                    .filter(record -> assignment().contains(new TopicPartition(record.topic(), record.partition())))
                     .forEach(this::addRecord);
+        }
+
+        @Override
+        public synchronized ConsumerRecords<byte[], byte[]> poll(Duration timeout) {
+            read = true;
+            return super.poll(timeout);
+        }
+
+        /** What was read is there again for whoever goes back. */
+        @Override
+        public synchronized void seek(TopicPartition partition, long offset) {
+            super.seek(partition, offset);
+            if (read) {
+                fill();
+            }
         }
     }
 
@@ -250,6 +293,9 @@ final class ScriptedClients implements Clients, OutboxClients {
 
         @Override
         public Map<String, String> ids(Collection<String> names) {
+            if (idsFailure != null) {
+                throw idsFailure;
+            }
             Map<String, String> found = new HashMap<>(ids);
             found.keySet().retainAll(names);
             return found;

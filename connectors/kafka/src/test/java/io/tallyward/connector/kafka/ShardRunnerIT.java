@@ -10,6 +10,7 @@ import java.time.Instant;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
+import java.util.concurrent.Executor;
 import java.util.concurrent.atomic.AtomicInteger;
 import java.util.function.Consumer;
 import org.apache.kafka.clients.consumer.ConsumerGroupMetadata;
@@ -234,6 +235,11 @@ class ShardRunnerIT {
         @Override
         public Cluster cluster() {
             return real.cluster();
+        }
+
+        @Override
+        public Executor aside() {
+            return real.aside();
         }
 
         @Override

@@ -11,6 +11,7 @@ import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 import java.util.concurrent.CountDownLatch;
+import java.util.concurrent.Executor;
 import java.util.concurrent.atomic.AtomicReference;
 import java.util.function.UnaryOperator;
 import org.apache.kafka.clients.consumer.Consumer;
@@ -116,6 +117,11 @@ class ShardRunnerStopIT {
                 hang();
             }
             return scripted.cluster();
+        }
+
+        @Override
+        public Executor aside() {
+            return scripted.aside();
         }
 
         @Override

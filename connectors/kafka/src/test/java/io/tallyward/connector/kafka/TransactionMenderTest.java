@@ -3,12 +3,17 @@ package io.tallyward.connector.kafka;
 import static org.junit.jupiter.api.Assertions.assertEquals;
 import static org.junit.jupiter.api.Assertions.assertTrue;
 
+import ch.qos.logback.classic.Level;
+import ch.qos.logback.classic.Logger;
+import ch.qos.logback.classic.spi.ILoggingEvent;
+import ch.qos.logback.core.read.ListAppender;
 import java.util.List;
 import java.util.Map;
 import org.apache.kafka.clients.admin.TransactionState;
 import org.apache.kafka.common.TopicPartition;
 import org.junit.jupiter.api.BeforeEach;
 import org.junit.jupiter.api.Test;
+import org.slf4j.LoggerFactory;
 
 class TransactionMenderTest {
 
@@ -40,9 +45,9 @@ class TransactionMenderTest {
     @Test
     void commitsWhatWasCommitted() {
         ended("counters-red-0-3", TransactionState.COMPLETE_COMMIT, 5);
-        mender.look(true);
+        look(true);
         assertEquals(List.of(), journal, "what is open once may be just ending");
-        mender.look(true);
+        look(true);
         assertEquals(
                 List.of(
                         "prove membership",
@@ -122,26 +127,55 @@ class TransactionMenderTest {
     @Test
     void doesNotTouchAnIdThatMovesOn() {
         ended("counters-red-0-3", TransactionState.COMPLETE_COMMIT, 5);
-        mender.look(true);
+        look(true);
         clients.onProof = () -> ended("counters-red-0-3", TransactionState.ONGOING, 5);
-        mender.look(true);
+        look(true);
         assertTrue(journal.stream().noneMatch(line -> line.startsWith("take over")), journal.toString());
+    }
+
+    @Test
+    void saysThatATransactionHasEndedWhenThatIsSeen() {
+        ListAppender<ILoggingEvent> heard = new ListAppender<>();
+        heard.start();
+        Logger logger = (Logger) LoggerFactory.getLogger(TransactionMender.class);
+        logger.setLevel(Level.INFO);
+        logger.addAppender(heard);
+        ended("counters-red-0-3", TransactionState.COMPLETE_ABORT, 5);
+        lookTwice(true);
+        clients.open.removeIf(transaction -> transaction.partition().equals(STATES));
+        look(true);
+        clients.open.clear();
+        look(true);
+        logger.detachAppender(heard);
+        List<String> said = heard.list.stream()
+                .map(ILoggingEvent::getFormattedMessage)
+                .filter(line -> line.contains("no longer open"))
+                .toList();
+        assertEquals(
+                List.of(
+                        "counters: the transaction that was aborted is no longer open in [states-1]",
+                        "counters: the transaction that was aborted is no longer open in [" + OFFSETS + "]"),
+                said);
     }
 
     @Test
     void mendsNothingWithoutMembership() {
         ended("counters-red-0-3", TransactionState.COMPLETE_COMMIT, 5);
-        mender.look(true);
+        look(true);
         clients.onProof = () -> {
             throw new org.apache.kafka.clients.consumer.CommitFailedException();
         };
-        mender.look(true);
+        look(true);
         assertEquals(List.of("prove membership"), journal);
     }
 
+    private void look(boolean caretaker) {
+        mender.mend(mender.question().get(), caretaker);
+    }
+
     private void lookTwice(boolean caretaker) {
-        mender.look(caretaker);
-        mender.look(caretaker);
+        look(caretaker);
+        look(caretaker);
     }
 
     private void open(TopicPartition partition) {
