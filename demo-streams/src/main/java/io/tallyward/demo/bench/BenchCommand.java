@@ -134,19 +134,20 @@ public final class BenchCommand implements Callable<Integer> {
 
     private void measure(BenchMode mode, Stage stage, Sizes sizes) throws IOException, InterruptedException {
         PrintWriter out = spec.commandLine().getOut();
-        if (instead.memory) {
-            MemoryRun.measure(stage).forEach(out::println);
+        Findings findings = instead.memory ? MemoryRun.measure(stage) : measureWithBroker(mode, stage, sizes);
+        if (json) {
+            out.println(findings.json());
         } else {
-            stage.startBroker();
-            PrintWriter err = spec.commandLine().getErr();
-            Findings findings = mode.measure(stage, sizes, line -> say(err, line));
-            if (json) {
-                out.println(findings.json());
-            } else {
-                findings.lines().forEach(out::println);
-            }
+            findings.lines().forEach(out::println);
         }
         out.flush();
+    }
+
+    private Findings measureWithBroker(BenchMode mode, Stage stage, Sizes sizes)
+            throws IOException, InterruptedException {
+        stage.startBroker();
+        PrintWriter err = spec.commandLine().getErr();
+        return mode.measure(stage, sizes, line -> say(err, line));
     }
 
     private static void say(PrintWriter to, String line) {

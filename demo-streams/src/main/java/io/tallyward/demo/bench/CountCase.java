@@ -55,7 +55,7 @@ final class CountCase {
                 CountGroup.of(config, PlanSource.fixed(plans), board),
                 InstantSource.system(),
                 (name, cause) -> broken.set(cause))) {
-            while (counted(board) < task.events()) {
+            while (runner.status().recordsConsumed() < task.events() || counted(board) < task.events()) {
                 if (broken.get() != null) {
                     throw new IllegalStateException("counting has stopped", broken.get());
                 }

@@ -53,7 +53,7 @@ final class LatencyRun {
         Traffic traffic = Traffic.ofStories();
         traffic.writePlans(plans);
         InputTopic.create(stage.bootstrapServers(), run + "-events", PARTITIONS);
-        Setting setting = new Setting(run, run + "-events", plans, interval, "");
+        Setting setting = new Setting(run, run + "-events", plans, interval, "", List.of());
         long all = events + WARM_UP.toSeconds() * PER_SECOND;
         progress.accept("commit interval " + interval.toMillis() + " ms: " + all / PER_SECOND + " s of events");
         try (MonitorProcess monitor = MonitorProcess.start(stage, run, setting)) {

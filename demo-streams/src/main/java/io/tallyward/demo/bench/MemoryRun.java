@@ -13,13 +13,13 @@ final class MemoryRun {
 
     private MemoryRun() {}
 
-    static List<String> measure(Stage stage) throws IOException, InterruptedException {
+    static MemoryResults measure(Stage stage) throws IOException, InterruptedException {
         try (ChildProcess child = stage.startTied(
                 "memory",
                 List.of("-Xmx2g", "-XX:+UseParallelGC"),
                 List.of(MemoryMain.class.getName(), stage.directory().toString()))) {
             child.awaitEnd(PATIENCE);
         }
-        return Files.readAllLines(stage.directory().resolve("memory.log"));
+        return MemoryResults.in(Files.readString(stage.directory().resolve("memory.log")));
     }
 }

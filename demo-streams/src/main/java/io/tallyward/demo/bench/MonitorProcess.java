@@ -7,6 +7,7 @@ import java.io.IOException;
 import java.nio.file.Files;
 import java.nio.file.Path;
 import java.time.Duration;
+import java.util.ArrayList;
 import java.util.List;
 import java.util.concurrent.TimeUnit;
 
@@ -15,6 +16,9 @@ final class MonitorProcess implements AutoCloseable {
 
     private static final String MAIN = "io.tallyward.service.Tallyward";
     private static final long LOOK_MILLIS = 5;
+
+    /** How often a starting monitor is asked whether it is ready: more often, and answering is much of what it does. */
+    private static final long START_LOOK_MILLIS = 50;
 
     /** The events are months old: without a long idle time the clock would stand in for event time. */
     private static final String CONFIGURATION = """
@@ -42,8 +46,15 @@ final class MonitorProcess implements AutoCloseable {
      * @param plans directory of the plans
      * @param commitInterval how often it commits
      * @param kafka further keys of the section {@code kafka}; each begins with a comma
+     * @param virtualMachine further options of its virtual machine
      */
-    record Setting(String name, String topic, Path plans, Duration commitInterval, String kafka) {}
+    record Setting(
+            String name,
+            String topic,
+            Path plans,
+            Duration commitInterval,
+            String kafka,
+            List<String> virtualMachine) {}
 
     /** Starts an instance and does not wait for it. */
     static MonitorProcess start(Stage stage, String instance, Setting setting) throws IOException {
@@ -60,8 +71,10 @@ final class MonitorProcess implements AutoCloseable {
                         setting.commitInterval(),
                         LoopbackPorts.HOST,
                         port));
-        ChildProcess process = stage.startTied(
-                instance, List.of("-Xmx1g", "-XX:+UseParallelGC"), List.of(MAIN, "watch", "--config", file.toString()));
+        List<String> virtualMachine = new ArrayList<>(List.of("-Xmx1g", "-XX:+UseParallelGC"));
+        virtualMachine.addAll(setting.virtualMachine());
+        ChildProcess process =
+                stage.startTied(instance, virtualMachine, List.of(MAIN, "watch", "--config", file.toString()));
         return new MonitorProcess(process, new MonitorApi(port));
     }
 
@@ -83,18 +96,22 @@ final class MonitorProcess implements AutoCloseable {
     long awaitReady(Duration patience) throws InterruptedException {
         long deadline = System.nanoTime() + patience.toNanos();
         while (!api.isReady()) {
-            requireBefore(deadline, "ready");
+            requireBefore(deadline, "ready", START_LOOK_MILLIS);
         }
         return System.nanoTime();
     }
 
     /** Waits a moment for something that has not happened yet, unless the monitor has ended or the time is over. */
     void requireBefore(long deadlineNanos, String wanted) throws InterruptedException {
+        requireBefore(deadlineNanos, wanted, LOOK_MILLIS);
+    }
+
+    private void requireBefore(long deadlineNanos, String wanted, long lookMillis) throws InterruptedException {
         process.requireAlive();
         if (System.nanoTime() - deadlineNanos > 0) {
             throw new IllegalStateException("the monitor is not " + wanted + " in time" + process.tail());
         }
-        TimeUnit.MILLISECONDS.sleep(LOOK_MILLIS);
+        TimeUnit.MILLISECONDS.sleep(lookMillis);
     }
 
     /** Ends it at once, as {@code kill -9} does. */

@@ -21,13 +21,20 @@ record RestartResults(List<Row> rows) implements Findings {
     /**
      * One kill.
      *
-     * @param named whether the instance kept its name, so that it could take its partitions back at once
+     * @param way how it was started
      * @param units units in the ledger
      * @param readyNanos from the kill, which was followed by the start at once, to being ready
+     * @param cpuSeconds CPU time, user and system, that the instance had used when it was ready
      * @param countingNanos from the kill until an event sent after it showed in every partition's count
      * @param restoredPerSecond units restored per second of a worker's time
      */
-    record Row(boolean named, long units, long readyNanos, long countingNanos, double restoredPerSecond) {
+    record Row(
+            RestartWay way,
+            long units,
+            long readyNanos,
+            double cpuSeconds,
+            long countingNanos,
+            double restoredPerSecond) {
 
         double readySeconds() {
             return readyNanos / NANOS_PER_SECOND;
@@ -40,35 +47,40 @@ record RestartResults(List<Row> rows) implements Findings {
         String sentence() {
             return String.format(
                     Locale.ROOT,
-                    "%s: ready after %.2f s, counting again after %.2f s, %,.0f units restored per second",
-                    word(named),
+                    "%s: ready after %.2f s and %.1f CPU-s, counting again after %.2f s, %,.0f units restored per second",
+                    way.words(),
                     readySeconds(),
+                    cpuSeconds,
                     countingSeconds(),
                     restoredPerSecond);
         }
     }
 
-    private static String word(boolean named) {
-        return named ? "kept name" : "new member";
-    }
-
     @Override
     public List<String> lines() {
         List<List<String>> cells = new ArrayList<>();
-        for (boolean named : List.of(false, true)) {
-            List<Row> its = rows.stream().filter(row -> row.named() == named).toList();
+        for (RestartWay way : RestartWay.values()) {
+            List<Row> its = rows.stream().filter(row -> row.way() == way).toList();
             if (!its.isEmpty()) {
                 cells.add(List.of(
-                        word(named),
+                        way.words(),
                         Integer.toString(its.size()),
                         seconds(its, Row::readySeconds),
+                        String.format(Locale.ROOT, "%.1f", median(its, Row::cpuSeconds)),
                         seconds(its, Row::countingSeconds),
                         String.format(Locale.ROOT, "%,.0f", median(its, Row::units)),
                         String.format(Locale.ROOT, "%,.0f", median(its, Row::restoredPerSecond))));
             }
         }
         List<String> lines = new ArrayList<>(new TextTable(
-                        List.of("started as", "kills", "to ready", "to counting again", "units", "units/s restored"),
+                        List.of(
+                                "started as",
+                                "kills",
+                                "to ready",
+                                "CPU-s",
+                                "to counting again",
+                                "units",
+                                "units/s restored"),
                         cells)
                 .lines());
         lines.add(
@@ -95,9 +107,11 @@ record RestartResults(List<Row> rows) implements Findings {
         ArrayNode kills = all.putArray("restart");
         for (Row row : rows) {
             kills.addObject()
-                    .put("nameKept", row.named())
+                    .put("nameKept", row.way().named())
+                    .put("classArchive", row.way().archived())
                     .put("units", row.units())
                     .put("readySeconds", row.readySeconds())
+                    .put("cpuSeconds", row.cpuSeconds())
                     .put("countingAgainSeconds", row.countingSeconds())
                     .put("unitsRestoredPerSecond", row.restoredPerSecond());
         }

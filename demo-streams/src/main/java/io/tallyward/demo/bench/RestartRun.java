@@ -4,6 +4,7 @@ import com.fasterxml.jackson.databind.JsonNode;
 import io.tallyward.demo.bench.MonitorProcess.Setting;
 import io.tallyward.demo.stream.InputTopic;
 import java.io.IOException;
+import java.nio.file.Path;
 import java.time.Duration;
 import java.util.ArrayList;
 import java.util.List;
@@ -14,7 +15,7 @@ import java.util.stream.LongStream;
 
 /**
  * Kills an instance that remembers many units while events come, starts it again at once and measures how long it is not
- * ready and how long nothing is counted; first as an instance that the group has never seen, then under a name it keeps.
+ * ready and how long nothing is counted, in each {@link RestartWay}.
  */
 final class RestartRun {
 
@@ -56,15 +57,32 @@ final class RestartRun {
         progress.accept("sending " + events + " events");
         TrafficSender.send(stage.bootstrapServers(), TOPIC, traffic, events);
         List<RestartResults.Row> rows = new ArrayList<>();
-        for (boolean named : List.of(false, true)) {
-            killAgainAndAgain(named, rows);
+        for (RestartWay way : RestartWay.values()) {
+            if (way.archived()) {
+                archiveClasses();
+            }
+            killAgainAndAgain(way, rows);
         }
         return new RestartResults(rows);
     }
 
-    private void killAgainAndAgain(boolean named, List<RestartResults.Row> rows)
+    /** An archive is written at the end of a process that ends in good order. */
+    private void archiveClasses() throws IOException, InterruptedException {
+        progress.accept("archiving the classes of an instance that runs and stops");
+        List<String> archiving =
+                List.of("-XX:ArchiveClassesAtExit=" + archive(), "-Xlog:cds=error", "-Xlog:cds+dynamic=error");
+        try (MonitorProcess monitor = start(RestartWay.KEPT_NAME, archiving)) {
+            monitor.awaitReady(PATIENCE);
+        }
+    }
+
+    private Path archive() {
+        return stage.directory().resolve(NAME + ".jsa");
+    }
+
+    private void killAgainAndAgain(RestartWay way, List<RestartResults.Row> rows)
             throws IOException, InterruptedException {
-        MonitorProcess monitor = start(named);
+        MonitorProcess monitor = start(way);
         try {
             long sent = LongStream.of(before).sum();
             Map<Integer, JsonNode> counted = awaitCounted(monitor, sent == 0 ? events : sent);
@@ -76,8 +94,8 @@ final class RestartRun {
                     awaitNews(monitor, sender, System.nanoTime());
                     monitor.kill();
                     long killed = System.nanoTime();
-                    monitor = start(named);
-                    RestartResults.Row row = watch(named, monitor, sender, killed);
+                    monitor = start(way);
+                    RestartResults.Row row = watch(way, monitor, sender, killed);
                     progress.accept(row.sentence());
                     rows.add(row);
                     sender.finish();
@@ -92,10 +110,19 @@ final class RestartRun {
         }
     }
 
-    private MonitorProcess start(boolean named) throws IOException {
+    private MonitorProcess start(RestartWay way) throws IOException {
+        return start(way, way.archived() ? List.of("-XX:SharedArchiveFile=" + archive()) : List.of());
+    }
+
+    private MonitorProcess start(RestartWay way, List<String> virtualMachine) throws IOException {
         starts++;
         Setting setting = new Setting(
-                NAME, TOPIC, stage.directory().resolve("plans"), COMMIT_INTERVAL, named ? ", instance: " + NAME : "");
+                NAME,
+                TOPIC,
+                stage.directory().resolve("plans"),
+                COMMIT_INTERVAL,
+                way.named() ? ", instance: " + NAME : "",
+                virtualMachine);
         return MonitorProcess.start(stage, NAME + "-" + starts, setting);
     }
 
@@ -121,17 +148,19 @@ final class RestartRun {
         return partitions;
     }
 
-    private RestartResults.Row watch(boolean named, MonitorProcess monitor, SteadySender sender, long killed)
+    private RestartResults.Row watch(RestartWay way, MonitorProcess monitor, SteadySender sender, long killed)
             throws InterruptedException {
         long ready = monitor.awaitReady(PATIENCE);
+        double cpuSeconds = monitor.cpuSeconds();
         long counting = awaitNews(monitor, sender, killed);
         Map<Integer, JsonNode> partitions = monitor.api().partitions();
         long units = CountedEvents.units(partitions);
         double restore = monitor.api().metric(RESTORE, "group=\"count\"");
         return new RestartResults.Row(
-                named,
+                way,
                 units,
                 ready - killed,
+                cpuSeconds,
                 counting - killed,
                 units / (PARTITIONS * Math.max(restore, LEAST_RESTORE_SECONDS)));
     }

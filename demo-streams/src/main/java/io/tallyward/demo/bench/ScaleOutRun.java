@@ -60,7 +60,7 @@ final class ScaleOutRun {
             throws IOException, InterruptedException {
         String name = "scale-" + instances;
         Path plans = stage.directory().resolve("plans");
-        Setting setting = new Setting(name, name + "-events", plans, COMMIT_INTERVAL, "");
+        Setting setting = new Setting(name, name + "-events", plans, COMMIT_INTERVAL, "", List.of());
         InputTopic.create(stage.bootstrapServers(), setting.topic(), PARTITIONS);
         List<MonitorProcess> monitors = new ArrayList<>();
         try {

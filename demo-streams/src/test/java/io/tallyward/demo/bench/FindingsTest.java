@@ -75,15 +75,28 @@ class FindingsTest {
     @Test
     void restartShowsMedianAndLongest() throws IOException {
         RestartResults results = new RestartResults(List.of(
-                new RestartResults.Row(true, 1_000_000, 2_000_000_000L, 3_000_000_000L, 2e6),
-                new RestartResults.Row(true, 1_000_000, 2_500_000_000L, 9_000_000_000L, 1e6),
-                new RestartResults.Row(true, 1_000_000, 1_000_000_000L, 2_000_000_000L, 3e6)));
+                new RestartResults.Row(RestartWay.KEPT_NAME, 1_000_000, 2_000_000_000L, 4, 3_000_000_000L, 2e6),
+                new RestartResults.Row(RestartWay.KEPT_NAME, 1_000_000, 2_500_000_000L, 6, 9_000_000_000L, 1e6),
+                new RestartResults.Row(RestartWay.KEPT_NAME, 1_000_000, 1_000_000_000L, 5, 2_000_000_000L, 3e6)));
         assertEquals(
-                "kept name   3      2.00 s (2.50 s)  3.00 s (9.00 s)    1,000,000  2,000,000",
+                "kept name   3      2.00 s (2.50 s)  5.0    3.00 s (9.00 s)    1,000,000  2,000,000",
                 results.lines().get(2));
         JsonNode row = json(results).get("restart").get(1);
         assertEquals(2.5, row.get("readySeconds").asDouble());
+        assertEquals(6.0, row.get("cpuSeconds").asDouble());
         assertEquals(9.0, row.get("countingAgainSeconds").asDouble());
         assertEquals(1e6, row.get("unitsRestoredPerSecond").asDouble());
+    }
+
+    @Test
+    void tellsMemoryOverALineOfOutput() throws Exception {
+        MemoryResults results = new MemoryResults(new MemoryResults.Row(39.25, 1.25), new MemoryResults.Row(23.5, 1.5));
+        assertEquals(results, MemoryResults.in("starting\n" + results.line() + "\n"));
+        assertEquals(
+                "open    39.3            40    1.3                 1",
+                results.lines().get(2));
+        JsonNode memory = json(results).get("memory");
+        assertEquals(39.25, memory.get("open").get("megabytesPerMillion").asDouble());
+        assertEquals(1.5, memory.get("sealed").get("millionsRestoredPerSecond").asDouble());
     }
 }
