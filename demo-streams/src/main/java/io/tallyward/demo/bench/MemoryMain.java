@@ -16,7 +16,6 @@ import java.nio.file.Path;
 import java.time.Duration;
 import java.util.ArrayList;
 import java.util.List;
-import java.util.Locale;
 import java.util.Map;
 
 /**
@@ -56,18 +55,20 @@ public final class MemoryMain {
     private void measure() {
         CountShard shard = shard();
         fill(shard, false);
-        say("open units", shard, "40");
+        double open = megabytesPerMillion(shard);
         shard.endOfInput();
         shard.drain();
-        say("sealed units", shard, "24");
+        double sealed = megabytesPerMillion(shard);
         fill(shard(), true);
-        restore("open units", openState);
-        restore("sealed units", sealedState);
+        MemoryResults results = new MemoryResults(
+                new MemoryResults.Row(open, restored("open units", openState)),
+                new MemoryResults.Row(sealed, restored("sealed units", sealedState)));
+        System.out.println(results.line());
     }
 
     private CountShard shard() {
         CountSettings settings = new CountSettings(Duration.ofMinutes(5), Duration.ofDays(1), new byte[] {1});
-        return new CountShard(0, 1, List.of(plan), settings, 1);
+        return new CountShard(0, 1, List.of(plan), settings, List.of("events"));
     }
 
     /** Fills half an hour of event time, so that nothing is sealed; keeps what would be made durable if told to. */
@@ -101,18 +102,13 @@ public final class MemoryMain {
         }
     }
 
-    private void say(String what, CountShard shard, String goal) {
+    private double megabytesPerMillion(CountShard shard) {
         long with = heapBytes();
         long units = shard.view().experiments().get(plan.experiment()).units();
         if (units != UNITS) {
             throw new IllegalStateException("units: " + units + " (expected: " + UNITS + ")");
         }
-        System.out.println(String.format(
-                Locale.ROOT,
-                "%s: %.1f MB per million (goal: at most %s)",
-                what,
-                (with - bare) / MEGABYTE / MILLIONS,
-                goal));
+        return (with - bare) / MEGABYTE / MILLIONS;
     }
 
     private final long bare = heapBytes();
@@ -124,7 +120,8 @@ public final class MemoryMain {
         return ManagementFactory.getMemoryMXBean().getHeapMemoryUsage().getUsed();
     }
 
-    private void restore(String what, List<StateChange> state) {
+    /** Millions per second of CPU time, at best. */
+    private double restored(String what, List<StateChange> state) {
         double best = 0;
         for (int attempt = 0; attempt < 3; attempt++) {
             CountShard shard = shard();
@@ -136,7 +133,6 @@ public final class MemoryMain {
                 throw new IllegalStateException(what + ": not all were restored");
             }
         }
-        System.out.println(String.format(
-                Locale.ROOT, "%s: %.1f million restored per second of CPU time (goal: at least 1)", what, best));
+        return best;
     }
 }

@@ -74,7 +74,7 @@ public class CountBenchmark {
     public void fill() {
         random = new SplittableRandom(units);
         CountSettings settings = new CountSettings(Duration.ofMinutes(5), Duration.ofDays(1), new byte[] {1});
-        shard = new CountShard(0, 1, List.of(PLAN), settings, 1);
+        shard = new CountShard(0, 1, List.of(PLAN), settings, List.of("events"));
         slot.kind(EventKind.VIEW);
         slot.place(0, 0);
         slot.id("e1".toCharArray(), 0, 2);

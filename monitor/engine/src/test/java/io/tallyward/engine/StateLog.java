@@ -43,6 +43,12 @@ public final class StateLog {
         }
     }
 
+    /** Shows the last changes. */
+    public void last(int most, BiConsumer<byte[], byte[]> taker) {
+        changes.subList(Math.max(0, changes.size() - most), changes.size())
+                .forEach(change -> taker.accept(change.key(), change.value()));
+    }
+
     /** The live entries: what is left when everything has been compacted. */
     public List<StateChange> live() {
         List<StateChange> live = new ArrayList<>();

@@ -46,6 +46,12 @@ final class ClientSettings {
             entry("session.timeout.ms", "15000"),
             entry("heartbeat.interval.ms", "3000"));
 
+    /** State is read from end to end; what the worker has not taken yet waits in the socket. */
+    private static final Map<String, String> PROPOSED_FOR_STATE = Map.ofEntries(
+            entry("max.poll.records", "5000"),
+            entry("max.partition.fetch.bytes", "4194304"),
+            entry("receive.buffer.bytes", "4194304"));
+
     private static final Map<String, String> FIXED_FOR_READING = Map.ofEntries(
             entry("isolation.level", "read_committed"),
             entry("enable.auto.commit", "false"),
@@ -87,7 +93,7 @@ final class ClientSettings {
         Map<String, String> fixed = new HashMap<>(FIXED_FOR_READING);
         fixed.put("client.id", clientId(group, worker) + "-state");
         fixed.put("auto.offset.reset", "earliest");
-        return layered(group.clientProperties(), Map.of("max.poll.records", "5000"), fixed);
+        return layered(group.clientProperties(), PROPOSED_FOR_STATE, fixed);
     }
 
     /** For reading a topic once, as a member of no group. */

@@ -19,12 +19,28 @@ final class GuardedShard {
         this.shard = guarded("could not be made", () -> group.shards().create(partition, partitions));
     }
 
+    int foresight() {
+        return guarded("failed to say what it wants to foresee", shard::foresight);
+    }
+
+    void foresee(ConsumerRecord<byte[], byte[]> record) {
+        try {
+            shard.foresee(record.key(), record.value());
+        } catch (RuntimeException broken) {
+            throw new ShardFailure(name + " failed to foresee " + at(record), broken);
+        }
+    }
+
     void restore(ConsumerRecord<byte[], byte[]> record) {
         try {
             shard.restore(record.key(), record.value());
         } catch (RuntimeException broken) {
             throw new ShardFailure(name + " failed to restore " + at(record), broken);
         }
+    }
+
+    boolean hasRead(String topic) {
+        return guarded("failed to say what it has read", () -> shard.hasRead(topic));
     }
 
     void apply(ConsumerRecord<byte[], byte[]> record) {

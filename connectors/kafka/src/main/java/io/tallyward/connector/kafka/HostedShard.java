@@ -6,13 +6,24 @@ import org.apache.kafka.clients.consumer.ConsumerRecord;
 
 /**
  * A state machine for one partition number, as its host sees it. All methods are called by one thread at a time, in this
- * order: {@link #restore} for every surviving state record, {@link #committed} once, then any number of {@link #apply},
+ * order: {@link #foresee} for some of the last state records, {@link #restore} for every surviving state record, {@link #committed} once, then any number of {@link #apply},
  * {@link #passTime} and {@link #drain}, with {@link #committed} after each drain that became durable, and finally
  * {@link #released}. After a drain that did not become durable the shard is released and never used again.
  *
  * <p>An exception from any method is a broken invariant: the worker that hosts the shard stops for good.
  */
 public interface HostedShard {
+
+    /** How many of the last state records {@link #foresee} is shown before the first is restored, about; 0 for none. */
+    default int foresight() {
+        return 0;
+    }
+
+    /**
+     * Shows one of the last committed state records, which will be restored in its turn: what it makes void need not be
+     * taken back. Only a hint; any of them may be left out.
+     */
+    default void foresee(byte[] key, byte[] value) {}
 
     /**
      * Takes back one state record that was written earlier. Records come in log order; some that were later overwritten
@@ -22,6 +33,11 @@ public interface HostedShard {
      * @param value as it was written; null where the key was removed
      */
     void restore(byte[] key, byte[] value);
+
+    /** Whether what was restored may hold anything of an input topic; asked where no offset is committed for it. */
+    default boolean hasRead(String topic) {
+        return true;
+    }
 
     /** Takes one input record. Records of one input partition come in offset order, each exactly once. */
     void apply(ConsumerRecord<byte[], byte[]> record);

@@ -22,7 +22,7 @@ public record InternalTopic(String name, int partitions, Map<String, String> set
     }
 
     /**
-     * A topic that remembers the last value of each key. Segments are small and roll at least hourly, because only closed
+     * A topic that remembers the last value of each key. Segments are small and roll every few minutes, because only closed
      * segments are compacted, and a shard that starts reads all that is left.
      */
     public static InternalTopic compacted(String name, int partitions) {
@@ -31,8 +31,8 @@ public record InternalTopic(String name, int partitions, Map<String, String> set
                 partitions,
                 Map.of(
                         "cleanup.policy", "compact",
-                        "segment.bytes", Integer.toString(32 * 1024 * 1024),
-                        "segment.ms", Long.toString(Duration.ofHours(1).toMillis()),
+                        "segment.bytes", Integer.toString(8 * 1024 * 1024),
+                        "segment.ms", Long.toString(Duration.ofMinutes(10).toMillis()),
                         "min.cleanable.dirty.ratio", "0.2",
                         "delete.retention.ms", Long.toString(Duration.ofDays(1).toMillis()),
                         "max.message.bytes", Integer.toString(1024 * 1024 + 64 * 1024)));

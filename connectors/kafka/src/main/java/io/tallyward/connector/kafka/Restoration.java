@@ -62,6 +62,17 @@ final class Restoration {
         end = endOffset;
     }
 
+    /** How many of the last records the shard wants to see first. */
+    int foresight() {
+        return shard.foresight();
+    }
+
+    void foresee(ConsumerRecord<byte[], byte[]> record) {
+        if (record.offset() < end && !Filler.is(record)) {
+            shard.foresee(record);
+        }
+    }
+
     void take(ConsumerRecord<byte[], byte[]> record) {
         if (Filler.is(record)) {
             return;
@@ -77,6 +88,11 @@ final class Restoration {
 
     long position() {
         return position;
+    }
+
+    /** Where the state ends. */
+    long end() {
+        return end;
     }
 
     boolean complete() {

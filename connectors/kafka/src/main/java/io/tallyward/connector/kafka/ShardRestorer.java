@@ -35,6 +35,9 @@ final class ShardRestorer {
     /** How long to wait for committed offsets before the others have their turn. */
     private static final Duration OFFSETS_PATIENCE = Duration.ofSeconds(1);
 
+    /** How long to wait for state: a busy broker takes a moment, but a transaction that hangs does not end sooner. */
+    static final Duration READING_PATIENCE = Duration.ofMillis(500);
+
     /** How long a shard that cannot be brought forward stands back. */
     static final Duration STANDS_BACK = Duration.ofSeconds(1);
 
@@ -151,13 +154,15 @@ final class ShardRestorer {
                         + " stands still at offset " + restoration.position() + ", " + restoration.remaining()
                         + " before the end: a broker is missing, or a transaction there does not end",
                 clock.millis());
-        return standBack(restoration);
+        return Elapsed.since(restoration.blockedMillis(), clock.millis(), READING_PATIENCE)
+                ? standBack(restoration)
+                : Optional.empty();
     }
 
     private Restored end(Restoration restoration) {
         Map<TopicPartition, Long> committed = restoration.committed().orElseThrow();
         Map<TopicPartition, Long> positions = restoration.positions();
-        positions.putAll(newPartitions(restoration.inputs(), committed.keySet(), restoration.records()));
+        positions.putAll(newPartitions(restoration, committed.keySet()));
         GuardedShard shard = restoration.shard().orElseThrow();
         shard.committed();
         log.ends(restoration, clock.millis());
@@ -249,19 +254,21 @@ final class ShardRestorer {
         }
     }
 
-    private Map<TopicPartition, Long> newPartitions(
-            Set<TopicPartition> inputs, Set<TopicPartition> committed, long stateRecords) {
-        Set<TopicPartition> unknown = new HashSet<>(inputs);
+    private Map<TopicPartition, Long> newPartitions(Restoration restoration, Set<TopicPartition> committed) {
+        Set<TopicPartition> unknown = new HashSet<>(restoration.inputs());
         unknown.removeAll(committed);
-        if (!unknown.isEmpty() && stateRecords > 0) {
-            if (!group.rereads()) {
-                throw new LostOffsetsException(group, unknown);
+        if (!unknown.isEmpty() && restoration.records() > 0) {
+            GuardedShard shard = restoration.shard().orElseThrow();
+            Set<TopicPartition> lost = new HashSet<>(unknown);
+            lost.removeIf(input -> !shard.hasRead(input.topic()));
+            if (!lost.isEmpty() && !group.rereads()) {
+                throw new LostOffsetsException(group, lost);
             }
             LOG.warn(
-                    "group {} has state but no committed offsets for {}, which the broker has forgotten; reading there"
-                            + " begins at {}",
+                    "group {} has state but no committed offsets for {}, {}; reading there begins at {}",
                     group.id(),
                     unknown,
+                    lost.isEmpty() ? "which is new among its input topics" : "which the broker has forgotten",
                     group.start());
         }
         return new StartOffsets(consumer, group.start()).of(unknown);

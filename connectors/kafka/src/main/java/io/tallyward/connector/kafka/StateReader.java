@@ -41,7 +41,23 @@ final class StateReader implements AutoCloseable {
         long end = cluster.endOffset(source);
         consumer.assign(List.of(source));
         consumer.seekToBeginning(List.of(source));
-        restoration.begin(consumer.position(source), end);
+        long first = consumer.position(source);
+        restoration.begin(first, end);
+        foresee(restoration, source, Math.max(first, end - restoration.foresight()));
+    }
+
+    /** Shows the shard how its state ends, as far as that is at hand. */
+    private void foresee(Restoration restoration, TopicPartition source, long from) {
+        long end = restoration.end();
+        if (from >= end) {
+            return;
+        }
+        consumer.seek(source, from);
+        for (long before = -1; before < consumer.position(source) && consumer.position(source) < end; ) {
+            before = consumer.position(source);
+            consumer.poll(POLL).forEach(restoration::foresee);
+        }
+        consumer.seek(source, restoration.position());
     }
 
     /**

@@ -86,6 +86,9 @@ class AssignmentOrderTest {
         scripted.assign(VIEWS_0, VIEWS_1);
         scripted.session.step();
         scripted.session.step();
+        assertEquals(List.of(), scripted.board.published().partitions(), "a moment is granted");
+        scripted.stepAfter(ShardRestorer.READING_PATIENCE);
+        scripted.session.step();
         assertEquals(
                 Set.of(1),
                 scripted.board.published().partitions().stream().collect(java.util.stream.Collectors.toSet()));
@@ -246,6 +249,74 @@ class AssignmentOrderTest {
     }
 
     @Test
+    void beginsToReadATopicThatTheStateDoesNotKnow() {
+        scripted = new ScriptedSession(2, List.of("crossings", "enquiries"), builder -> builder);
+        scripted.unread = Set.of("enquiries");
+        scripted.durable(VIEWS_0, 9, "quay-banner", "9");
+        scripted.assign(VIEWS_0, CLICKS_0);
+        scripted.session.step();
+        assertTrue(scripted.journal.contains("seek " + VIEWS_0 + " to 9"), scripted.journal.toString());
+        assertEquals("seek " + CLICKS_0 + " to 0", lastSeekOf(CLICKS_0));
+        assertEquals(Set.of(VIEWS_0, CLICKS_0), Set.copyOf(scripted.reading()));
+    }
+
+    @Test
+    void refusesWhenOffsetsOfAKnownTopicAreGoneBesideANewOne() {
+        scripted = new ScriptedSession(2, List.of("crossings", "enquiries"), builder -> builder);
+        scripted.unread = Set.of("enquiries");
+        scripted.clients.state("states", 0, 0, "quay-banner", "40");
+        scripted.assign(VIEWS_0, CLICKS_0);
+        LostOffsetsException lost = assertThrows(LostOffsetsException.class, scripted.session::step);
+        assertTrue(lost.getMessage().contains("no committed offsets for [" + VIEWS_0 + "]"), lost.getMessage());
+    }
+
+    private String lastSeekOf(TopicPartition partition) {
+        return scripted.journal.stream()
+                .filter(line -> line.startsWith("seek " + partition))
+                .reduce((first, second) -> second)
+                .orElseThrow();
+    }
+
+    @Test
+    void showsAShardHowItsStateEndsBeforeItIsRestored() {
+        scripted.foresight = 2;
+        clients.committed.put(VIEWS_0, new OffsetAndMetadata(9));
+        for (int offset = 0; offset < 4; offset++) {
+            clients.state("states", 0, offset, "quay-banner", Integer.toString(offset));
+        }
+        scripted.assign(VIEWS_0);
+        scripted.session.step();
+        assertEquals(
+                List.of(
+                        "foresee quay-banner=2",
+                        "foresee quay-banner=3",
+                        "restore quay-banner=0",
+                        "restore quay-banner=1",
+                        "restore quay-banner=2",
+                        "restore quay-banner=3"),
+                scripted.journal.stream()
+                        .filter(line -> line.startsWith("foresee") || line.startsWith("restore"))
+                        .toList());
+    }
+
+    @Test
+    void doesNotForeseeWhatLiesBehindTheEnd() {
+        scripted.foresight = 2;
+        clients.stateEnds.put(0, 2L);
+        clients.committed.put(VIEWS_0, new OffsetAndMetadata(9));
+        for (int offset = 0; offset < 4; offset++) {
+            clients.state("states", 0, offset, "quay-banner", Integer.toString(offset));
+        }
+        scripted.assign(VIEWS_0);
+        scripted.session.step();
+        assertEquals(
+                List.of("foresee quay-banner=0", "foresee quay-banner=1"),
+                scripted.journal.stream()
+                        .filter(line -> line.startsWith("foresee"))
+                        .toList());
+    }
+
+    @Test
     void warnsOfStateWithoutOffsetsWhereRereadingDoesNoHarm() {
         ListAppender<ILoggingEvent> heard = listen(ShardRestorer.class);
         scripted = new ScriptedSession(2, List.of("crossings"), ShardGroup.Builder::rereads);
@@ -371,7 +442,7 @@ class AssignmentOrderTest {
     }
 
     private BrokerException changed() {
-        scripted.clock.advance(ShardSession.UPKEEP);
+        scripted.clock.advance(Upkeep.EVERY);
         BrokerException changed = assertThrows(BrokerException.class, scripted.session::step);
         assertTrue(scripted.session.mustBeAbandoned());
         return changed;

@@ -4,6 +4,7 @@ import java.nio.charset.StandardCharsets;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Map;
+import java.util.Set;
 import java.util.TreeMap;
 import java.util.TreeSet;
 import java.util.function.Consumer;
@@ -24,6 +25,12 @@ final class CountingShard implements HostedShard {
     private final TreeSet<String> changed = new TreeSet<>();
     private final List<Output> told = new ArrayList<>();
 
+    /** Topics of which it says that they are not in what was restored. */
+    Set<String> unread = Set.of();
+
+    /** How many of the last state records it wants to see first. */
+    int foresight;
+
     /** What it says that it has ready, until the next drain. */
     long pending;
 
@@ -35,9 +42,24 @@ final class CountingShard implements HostedShard {
     }
 
     @Override
+    public int foresight() {
+        return foresight;
+    }
+
+    @Override
+    public void foresee(byte[] key, byte[] value) {
+        journal.accept("foresee " + text(key) + "=" + text(value));
+    }
+
+    @Override
     public void restore(byte[] key, byte[] value) {
         counts.put(text(key), Long.parseLong(text(value)));
         journal.accept("restore " + text(key) + "=" + text(value));
+    }
+
+    @Override
+    public boolean hasRead(String topic) {
+        return !unread.contains(topic);
     }
 
     @Override

@@ -7,6 +7,7 @@ import java.util.Collection;
 import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
+import java.util.Set;
 import java.util.function.UnaryOperator;
 import org.apache.kafka.clients.consumer.OffsetAndMetadata;
 import org.apache.kafka.common.TopicPartition;
@@ -21,6 +22,11 @@ final class ScriptedSession {
     final Map<Integer, CountingShard> shards = new HashMap<>();
     private final ShardGroup group;
     boolean stopping;
+
+    /** What shards made from now on say of themselves. */
+    Set<String> unread = Set.of();
+
+    int foresight;
     ShardSession session;
 
     ScriptedSession(int partitions, List<String> topics, UnaryOperator<ShardGroup.Builder> changes) {
@@ -35,6 +41,8 @@ final class ScriptedSession {
                         .stateTopic("states")
                         .shards((partition, all) -> {
                             CountingShard shard = new CountingShard("states", "told", partition, journal::add);
+                            shard.unread = unread;
+                            shard.foresight = foresight;
                             shards.put(partition, shard);
                             return shard;
                         }))

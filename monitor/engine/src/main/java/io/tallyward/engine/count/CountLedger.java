@@ -1,8 +1,6 @@
 package io.tallyward.engine.count;
 
 import io.tallyward.engine.event.EventSlot;
-import java.io.DataInput;
-import java.io.IOException;
 import java.util.List;
 
 /**
@@ -39,10 +37,10 @@ interface CountLedger {
     void takeChanged(OpenChunks chunks);
 
     /** Restores an open unit as it was packed; a later version of the same unit replaces it. */
-    void restoreOpen(DataInput in) throws IOException;
+    void restoreOpen(ChunkReader in);
 
     /** Restores a unit as it was packed when a window was sealed. */
-    void restoreSealed(DataInput in) throws IOException;
+    void restoreSealed(ChunkReader in);
 
     /** Forgets what was restored as open although the windows before a moment are sealed. */
     void forgetDueBefore(long sealedUntilMillis);

@@ -31,6 +31,9 @@ import java.util.TreeSet;
  */
 public final class CountShard {
 
+    /** The shard's own entry, and what else may stand among those of the experiments. */
+    private static final int FORESIGHT = 16;
+
     private final int partition;
     private final int partitions;
     private final long maxSkewMillis;
@@ -48,7 +51,15 @@ public final class CountShard {
     private final SealedTallies tallies;
 
     private final List<StateChange> sealedState = new ArrayList<>();
+
+    /** The experiments that something has happened to since the last drain, in the order in which it first did. */
+    private final Set<ExperimentCounter> changed = new LinkedHashSet<>();
+
     private boolean shardChanged;
+
+    /** Whether something was restored, of which an earlier archive may not have been removed to its end. */
+    private boolean restoredToForget;
+
     private long nextSealAt = Long.MIN_VALUE;
 
     /**
@@ -59,11 +70,12 @@ public final class CountShard {
      * @param plans the plans to count under, one per experiment, all of them frozen; more may be {@linkplain #adopt adopted}
      *     later
      * @param settings settings of the stream
-     * @param sources how many input topics meet in this shard, at least 1
+     * @param sources names of the input topics that meet in this shard, each once, at least 1
      */
-    public CountShard(int partition, int partitions, Collection<Plan> plans, CountSettings settings, int sources) {
-        if (!(sources >= 1)) {
-            throw new IllegalArgumentException("sources: " + sources + " (expected: at least 1)");
+    public CountShard(
+            int partition, int partitions, Collection<Plan> plans, CountSettings settings, List<String> sources) {
+        if (!(sources.size() >= 1 && Set.copyOf(sources).size() == sources.size())) {
+            throw new IllegalArgumentException("sources: " + sources + " (expected: at least 1, each once)");
         }
         this.partition = partition;
         this.partitions = partitions;
@@ -89,6 +101,28 @@ public final class CountShard {
     public void restore(byte[] key, byte[] value) {
         state.restore(key, value, watermarks, rejected, counters);
         nextSealAt = Long.MIN_VALUE;
+        restoredToForget = true;
+    }
+
+    /**
+     * How many of the last state changes {@link #foresee} should be shown: as many as the last commit with all experiments in
+     * it ends in.
+     */
+    public int foresight() {
+        return 2 * counters.size() + FORESIGHT;
+    }
+
+    /**
+     * Shows one of the last state changes before the first is restored, so that what they make void need not be restored.
+     * What is not foreseen makes no difference but of time.
+     */
+    public void foresee(byte[] key, byte[] value) {
+        state.foresee(key, value);
+    }
+
+    /** Whether what was restored may hold anything of an input topic; true where nothing was. */
+    public boolean hasRead(String source) {
+        return watermarks.hasRead(source);
     }
 
     /** The experiments and variants that are counted here, by position; another object once other plans are adopted. */
@@ -111,6 +145,7 @@ public final class CountShard {
             Plan plan = entry.plan();
             ExperimentCounter present = counters.get(plan.experiment());
             if (present == null || isOther(plan, present)) {
+                changed.remove(present);
                 counters.put(plan.experiment(), successor(plan, fields, present));
                 renamed = true;
             } else if (!plan.equals(present.plan())) {
@@ -127,6 +162,7 @@ public final class CountShard {
                     counters.values().stream().map(ExperimentCounter::plan).toList(), segmentFields);
             countersByPosition = counters.values().toArray(ExperimentCounter[]::new);
         }
+        counters.values().stream().filter(ExperimentCounter::isChanged).forEach(changed::add);
         nextSealAt = Long.MIN_VALUE;
         if (watermarks.slowest() != Watermarks.NONE && sealPassed()) {
             shardChanged = true;
@@ -214,8 +250,11 @@ public final class CountShard {
             return Optional.of(reject(RejectReason.BAD_TIME));
         }
         hasher.hash(event.unit(), 0, event.unitLength());
-        boolean inside = countersByPosition[event.experiment()].accept(
-                hasher.high(), hasher.low(), event, watermarks.of(source));
+        ExperimentCounter counter = countersByPosition[event.experiment()];
+        if (!counter.isChanged()) {
+            changed.add(counter);
+        }
+        boolean inside = counter.accept(hasher.high(), hasher.low(), event, watermarks.of(source));
         if (inside && watermarks.advance(source, event.atMillis())) {
             shardChanged = true;
             sealPassed();
@@ -287,6 +326,7 @@ public final class CountShard {
             if (counter.isToBeArchived(watermark)) {
                 sealedState.addAll(CountState.forgetSegments(counter));
                 counter.archive();
+                changed.add(counter);
             }
             nextSealAt = Math.min(nextSealAt, counter.nextSealAt());
         }
@@ -302,6 +342,7 @@ public final class CountShard {
         if (counter.sealedUntil() == before) {
             return;
         }
+        changed.add(counter);
         String experiment = counter.plan().experiment();
         windows.forEach(window -> sealedState.addAll(state.sealed(counter, window)));
         sealedState.addAll(state.forgetOpenBefore(experiment, counter.sealedUntil()));
@@ -312,15 +353,23 @@ public final class CountShard {
     public CountEffects drain() {
         List<StateChange> changes = new ArrayList<>(sealedState);
         sealedState.clear();
-        for (ExperimentCounter counter : counters.values()) {
+        if (restoredToForget) {
+            counters.values().stream().filter(state::hasMoreToForget).forEach(changed::add);
+            restoredToForget = false;
+        }
+        for (ExperimentCounter counter : changed) {
             changes.addAll(CountState.segments(counter));
             changes.addAll(state.open(counter));
             changes.addAll(state.forgetSealed(counter));
+        }
+        // These come last, so that a log ends in how far everything has come.
+        for (ExperimentCounter counter : changed) {
             if (counter.takeChanged()) {
                 changes.add(CountState.experiment(counter));
             }
         }
-        if (shardChanged) {
+        changed.removeIf(counter -> !state.hasMoreToForget(counter));
+        if (shardChanged || watermarks.haveNewSources()) {
             changes.add(state.shard(watermarks, rejected));
             shardChanged = false;
         }
@@ -330,12 +379,7 @@ public final class CountShard {
     /** Where the shard stands. */
     public CountView view() {
         Map<String, CountView.ExperimentCounts> experiments = new LinkedHashMap<>();
-        counters.forEach((name, counter) -> experiments.put(
-                name,
-                new CountView.ExperimentCounts(
-                        counter.outcomes(),
-                        counter.ledger().openEvents(),
-                        counter.ledger().units())));
+        counters.forEach((name, counter) -> experiments.put(name, counter.view()));
         long watermark = watermarks.slowest();
         return new CountView(
                 partition,

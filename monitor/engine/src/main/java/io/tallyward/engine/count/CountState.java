@@ -10,6 +10,7 @@ import java.io.DataInputStream;
 import java.io.IOException;
 import java.io.UncheckedIOException;
 import java.util.ArrayList;
+import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.TreeMap;
@@ -18,7 +19,8 @@ import java.util.TreeMap;
  * The durable form of a COUNT shard. Five kinds of entry, told apart by the first byte of the key:
  *
  * <ul>
- *   <li>shard: what must not change (partitions, key of the unit hash), watermarks and reject counts, one entry, rewritten;
+ *   <li>shard: what must not change (partitions, key of the unit hash), watermarks by input topic and reject counts, one
+ *       entry, rewritten;
  *   <li>experiment: how far it is sealed and its outcomes, one entry each, rewritten;
  *   <li>segments: combinations of segment values that were new in one commit, written once, before the units that refer to
  *       them; and the values that are told, one entry, rewritten;
@@ -32,11 +34,12 @@ import java.util.TreeMap;
  */
 final class CountState {
 
-    private static final byte SHARD = 'h';
+    private static final byte SHARD = 'w';
     private static final byte EXPERIMENT = 'e';
     private static final byte SEGMENTS = 'g';
     private static final byte OPEN = 'o';
     private static final byte SEALED = 's';
+    private static final String KINDS = "wegos";
 
     /** A packed entry is closed once it is this large; well below a broker's usual record limit of 1 MB. */
     static final int PACKED_BYTES = 400_000;
@@ -46,8 +49,15 @@ final class CountState {
 
     private final int partitions;
     private final long keyFingerprint;
-    private final Map<String, TreeMap<Long, Integer>> openEntries = new TreeMap<>();
-    private final Map<String, SealedEntries> sealedEntries = new TreeMap<>();
+    private final Map<String, TreeMap<Long, Integer>> openEntries = new HashMap<>();
+    private final Map<String, SealedEntries> sealedEntries = new HashMap<>();
+    private final Map<String, Foreseen> foreseen = new HashMap<>();
+
+    /** Where an experiment is known to have come to by the end of the log. */
+    private record Foreseen(long sealedUntil, boolean archived) {
+
+        static final Foreseen NOTHING = new Foreseen(Long.MIN_VALUE, false);
+    }
 
     /**
      * The state of a shard that has counted nothing yet.
@@ -168,6 +178,11 @@ final class CountState {
         return changes;
     }
 
+    /** Whether {@link #forgetSealed} has not come to its end. */
+    boolean hasMoreToForget(ExperimentCounter counter) {
+        return counter.isArchived() && !entriesOf(counter).isEmpty();
+    }
+
     /** Removes the open entries of every window before a moment. */
     List<StateChange> forgetOpenBefore(String experiment, long sealedUntil) {
         List<StateChange> changes = new ArrayList<>();
@@ -185,6 +200,29 @@ final class CountState {
         return changes;
     }
 
+    /**
+     * Looks at an entry that is to be restored later, one of the last. Open units of a window that has been sealed by then
+     * have all been removed, and units of an experiment that has been archived too, although a log that is not compacted
+     * yet still holds them: they need not be taken back to be thrown away again.
+     */
+    void foresee(byte[] key, byte[] value) {
+        try {
+            DataInputStream keyIn = reader(key);
+            if (keyIn.readByte() != EXPERIMENT || value == null) {
+                return;
+            }
+            DataInputStream in = reader(value);
+            in.readUTF();
+            foreseen.put(keyIn.readUTF(), new Foreseen(in.readLong(), in.readBoolean()));
+        } catch (IOException e) {
+            throw cutShort(e);
+        }
+    }
+
+    private static UncheckedIOException cutShort(IOException e) {
+        return new UncheckedIOException("stored counts: an entry is cut short", e);
+    }
+
     /** Applies one stored entry; entries come in the order in which they were written. */
     void restore(
             byte[] key,
@@ -193,11 +231,16 @@ final class CountState {
             Map<RejectReason, Long> rejected,
             Map<String, ExperimentCounter> counters) {
         try {
-            DataInputStream keyIn = new DataInputStream(new ByteArrayInputStream(key));
+            DataInputStream keyIn = reader(key);
             byte kind = keyIn.readByte();
             if (kind == SHARD) {
                 restoreShard(value, watermarks, rejected);
                 return;
+            }
+            if (KINDS.indexOf(kind) < 0) {
+                throw new IllegalStateException("stored counts: entry of unknown kind " + (char) kind
+                        + " (expected: one of " + KINDS
+                        + "); the state was written by another version, whose state topics have to be removed");
             }
             String experiment = keyIn.readUTF();
             ExperimentCounter counter = counters.get(experiment);
@@ -207,15 +250,11 @@ final class CountState {
                 restoreSegments(keyIn.readInt(), value, counter);
             } else if (kind == OPEN) {
                 restoreOpen(experiment, keyIn.readLong(), keyIn.readInt(), value, counter);
-            } else if (kind == SEALED) {
-                restoreSealed(keyIn.readLong(), keyIn.readInt(), value, counter);
             } else {
-                throw new IllegalStateException(
-                        "stored counts: entry of unknown kind " + kind
-                                + " (expected: h, e, g, o or s); the state was written by another version, whose state topics have to be removed");
+                restoreSealed(keyIn.readLong(), keyIn.readInt(), value, counter);
             }
         } catch (IOException e) {
-            throw new UncheckedIOException("stored counts: an entry is cut short", e);
+            throw cutShort(e);
         }
     }
 
@@ -263,7 +302,7 @@ final class CountState {
         }
         counter.restore(sealedUntil, outcomes, unsealed);
         if (archived) {
-            counter.archive();
+            counter.restoreArchived();
         }
     }
 
@@ -278,8 +317,10 @@ final class CountState {
         }
     }
 
-    private void restoreOpen(String experiment, long window, int sequence, byte[] value, ExperimentCounter counter)
-            throws IOException {
+    private void restoreOpen(String experiment, long window, int sequence, byte[] value, ExperimentCounter counter) {
+        if (window < foreseen(experiment).sealedUntil()) {
+            return;
+        }
         TreeMap<Long, Integer> entries = openEntries.computeIfAbsent(experiment, name -> new TreeMap<>());
         if (value == null) {
             entries.remove(window);
@@ -289,13 +330,13 @@ final class CountState {
         if (counter == null) {
             return;
         }
-        DataInputStream in = reader(value);
-        while (in.available() > 0) {
-            counter.ledger().restoreOpen(in);
+        ChunkReader in = new ChunkReader(value);
+        while (in.hasMore()) {
+            counter.restoreOpen(in);
         }
     }
 
-    private void restoreSealed(long window, int sequence, byte[] value, ExperimentCounter counter) throws IOException {
+    private void restoreSealed(long window, int sequence, byte[] value, ExperimentCounter counter) {
         if (counter == null) {
             return;
         }
@@ -304,10 +345,17 @@ final class CountState {
             return;
         }
         entriesOf(counter).add(window, sequence);
-        DataInputStream in = reader(value);
-        while (in.available() > 0) {
-            counter.ledger().restoreSealed(in);
+        if (foreseen(counter.plan().experiment()).archived()) {
+            return;
         }
+        ChunkReader in = new ChunkReader(value);
+        while (in.hasMore()) {
+            counter.restoreSealed(in);
+        }
+    }
+
+    private Foreseen foreseen(String experiment) {
+        return foreseen.getOrDefault(experiment, Foreseen.NOTHING);
     }
 
     private static byte[] key(byte kind, String experiment, long window, int sequence) {

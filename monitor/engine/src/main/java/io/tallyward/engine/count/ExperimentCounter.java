@@ -46,6 +46,7 @@ final class ExperimentCounter {
     private final TreeMap<Long, OutcomeCounts.Builder> unsealedOutcomes = new TreeMap<>();
     private OutcomeCounts.Builder finalOutcomes = new OutcomeCounts.Builder();
     private boolean changed;
+    private CountView.ExperimentCounts shown;
 
     /** How far the events of this process reached; a file replay ends there. */
     private long reach;
@@ -110,7 +111,7 @@ final class ExperimentCounter {
         }
         plan = amended;
         runEnd = amended.end().toEpochMilli();
-        changed = true;
+        change();
     }
 
     /** Whether nothing has been counted or sealed; there may have been events outside the run. */
@@ -122,7 +123,7 @@ final class ExperimentCounter {
     /** Counts on from an experiment of the same name that was untouched. */
     void succeed(OutcomeCounts outside) {
         restore(runFrom, outside, Map.of());
-        changed = true;
+        change();
     }
 
     /** Whether an event time lies in the run. */
@@ -145,7 +146,7 @@ final class ExperimentCounter {
 
     /** Takes an event of a known variant; returns whether it lies inside the run. */
     boolean accept(long high, long low, EventSlot event, long arrivalMillis) {
-        changed = true;
+        change();
         if (!isInside(event.atMillis())) {
             finalOutcomes.add(Outcome.OUTSIDE, 1);
             reach = event.atMillis() >= runEnd ? runEnd : reach;
@@ -213,8 +214,14 @@ final class ExperimentCounter {
 
     /** Forgets every unit. What still comes for the run is late, whatever it would have been. */
     void archive() {
+        change();
+        restoreArchived();
+    }
+
+    /** Puts it back as archived. */
+    void restoreArchived() {
         archived = true;
-        changed = true;
+        shown = null;
         segments.ifPresent(SegmentTable::clear);
         ledger = newLedger();
     }
@@ -246,7 +253,7 @@ final class ExperimentCounter {
             next = nextToSeal();
         }
         sealedUntil = until;
-        changed = true;
+        change();
         return result;
     }
 
@@ -268,6 +275,19 @@ final class ExperimentCounter {
         return new Sealed(new WindowTally(windowStart, counts.cells(), counts.segments(), outcomes), units);
     }
 
+    private void change() {
+        changed = true;
+        shown = null;
+    }
+
+    /** Where it stands; the same object for as long as nothing happens. */
+    CountView.ExperimentCounts view() {
+        if (shown == null) {
+            shown = new CountView.ExperimentCounts(outcomes(), ledger.openEvents(), ledger.units());
+        }
+        return shown;
+    }
+
     /** Final outcomes of all events so far, sealed windows or not. */
     OutcomeCounts outcomes() {
         return finalOutcomes.build();
@@ -280,15 +300,31 @@ final class ExperimentCounter {
         return result;
     }
 
-    /** Whether anything but the ledger changed since this was last asked. */
+    /** Whether anything changed since {@link #takeChanged} was last asked. */
+    boolean isChanged() {
+        return changed;
+    }
+
+    /** Whether anything changed since this was last asked. */
     boolean takeChanged() {
         boolean result = changed;
         changed = false;
         return result;
     }
 
+    void restoreOpen(ChunkReader in) {
+        shown = null;
+        ledger.restoreOpen(in);
+    }
+
+    void restoreSealed(ChunkReader in) {
+        shown = null;
+        ledger.restoreSealed(in);
+    }
+
     void restore(long storedSealedUntil, OutcomeCounts storedOutcomes, Map<Long, OutcomeCounts> storedUnsealed) {
         sealedUntil = storedSealedUntil;
+        shown = null;
         ledger.forgetDueBefore(sealedUntil);
         finalOutcomes = new OutcomeCounts.Builder().add(storedOutcomes);
         unsealedOutcomes.clear();

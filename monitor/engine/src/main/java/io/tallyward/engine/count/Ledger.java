@@ -3,8 +3,6 @@ package io.tallyward.engine.count;
 import io.tallyward.engine.event.EventKind;
 import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.plan.Plan;
-import java.io.DataInput;
-import java.io.IOException;
 import java.util.List;
 import java.util.Optional;
 import java.util.TreeMap;
@@ -221,7 +219,7 @@ final class Ledger implements CountLedger {
     }
 
     @Override
-    public void restoreOpen(DataInput in) throws IOException {
+    public void restoreOpen(ChunkReader in) {
         long high = in.readLong();
         long low = in.readLong();
         OpenUnit unit = restoring;
@@ -275,7 +273,7 @@ final class Ledger implements CountLedger {
     }
 
     @Override
-    public void restoreSealed(DataInput in) throws IOException {
+    public void restoreSealed(ChunkReader in) {
         sealed.read(in);
         forgetOpen(sealed.high(), sealed.low());
     }

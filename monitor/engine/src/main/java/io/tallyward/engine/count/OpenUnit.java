@@ -1,6 +1,5 @@
 package io.tallyward.engine.count;
 
-import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
 import java.util.Arrays;
@@ -340,7 +339,7 @@ final class OpenUnit {
     }
 
     /** Takes over what {@link #write} wrote. */
-    void read(DataInput in) throws IOException {
+    void read(ChunkReader in) {
         clear();
         variant = in.readByte();
         if (hasTrial()) {

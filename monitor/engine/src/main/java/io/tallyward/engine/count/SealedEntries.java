@@ -35,6 +35,10 @@ final class SealedEntries {
         }
     }
 
+    boolean isEmpty() {
+        return windows.isEmpty();
+    }
+
     /** Forgets the entries of a window: they were removed. */
     void remove(long windowStart) {
         if (windowStart >= runFrom) {

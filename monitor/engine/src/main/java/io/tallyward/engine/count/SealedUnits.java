@@ -1,6 +1,5 @@
 package io.tallyward.engine.count;
 
-import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
 import java.lang.invoke.MethodHandles;
@@ -92,10 +91,10 @@ final class SealedUnits {
     }
 
     /** Adds a unit from its durable form. */
-    void read(DataInput in) throws IOException {
+    void read(ChunkReader in) {
         long high = in.readLong();
         long low = in.readLong();
-        long packed = (long) in.readInt() << Byte.SIZE | in.readUnsignedByte();
+        long packed = (long) in.readInt() << Byte.SIZE | in.readByte() & 0xff;
         found = packed;
         add(high, low, variant(), first(), success());
     }

@@ -1,6 +1,5 @@
 package io.tallyward.engine.count;
 
-import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
 
@@ -21,7 +20,7 @@ final class VariableLength {
         out.writeByte(rest);
     }
 
-    static int read(DataInput in) throws IOException {
+    static int read(ChunkReader in) {
         int value = 0;
         for (int shift = 0; ; shift += 7) {
             int part = in.readByte();

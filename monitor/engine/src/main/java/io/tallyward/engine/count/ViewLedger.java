@@ -3,8 +3,6 @@ package io.tallyward.engine.count;
 import io.tallyward.engine.event.EventKind;
 import io.tallyward.engine.event.EventSlot;
 import io.tallyward.engine.plan.Plan;
-import java.io.DataInput;
-import java.io.IOException;
 import java.util.List;
 import java.util.Optional;
 import java.util.Set;
@@ -242,7 +240,7 @@ final class ViewLedger implements CountLedger {
     }
 
     @Override
-    public void restoreOpen(DataInput in) throws IOException {
+    public void restoreOpen(ChunkReader in) {
         long high = in.readLong();
         long low = in.readLong();
         restoring.read(in);
@@ -263,7 +261,7 @@ final class ViewLedger implements CountLedger {
 
     /** What was open about the unit is not, unless it is restored after this. */
     @Override
-    public void restoreSealed(DataInput in) throws IOException {
+    public void restoreSealed(ChunkReader in) {
         long high = in.readLong();
         long low = in.readLong();
         restoring.readSettled(in);

@@ -1,6 +1,5 @@
 package io.tallyward.engine.count;
 
-import java.io.DataInput;
 import java.io.DataOutput;
 import java.io.IOException;
 import java.util.Arrays;
@@ -260,7 +259,7 @@ final class ViewedUnit {
     }
 
     /** Takes over what {@link #writeSettled} wrote, and nothing open. */
-    void readSettled(DataInput in) throws IOException {
+    void readSettled(ChunkReader in) {
         clear();
         int sealedTrials = VariableLength.read(in);
         if (sealedTrials > 0) {
@@ -287,11 +286,11 @@ final class ViewedUnit {
     }
 
     /** Takes over what {@link #write} wrote. */
-    void read(DataInput in) throws IOException {
+    void read(ChunkReader in) {
         readSettled(in);
         int stored = VariableLength.read(in);
         for (int i = 0; i < stored; i++) {
-            boolean click = in.readBoolean();
+            boolean click = in.readByte() != 0;
             int ofVariant = in.readByte();
             long at = in.readLong();
             long key = in.readLong();

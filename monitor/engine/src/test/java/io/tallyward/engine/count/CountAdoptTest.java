@@ -31,7 +31,7 @@ class CountAdoptTest {
     private static final Plan FARE = Plans.plan("fare-chip").segments("version").build();
 
     private static CountShard shard(Plan... plans) {
-        return new CountShard(0, 1, List.of(plans), CountHost.settings(), 1);
+        return new CountShard(0, 1, List.of(plans), CountHost.settings(), List.of("events"));
     }
 
     private static List<PlanBook.Entry> entries(boolean frozen, Plan... plans) {
@@ -176,7 +176,7 @@ class CountAdoptTest {
             arrivals.forEach(arrival -> knowing.shard().apply(0, arrival.recordTimestamp(), arrival.event()));
             knowing.end();
 
-            CountShard learning = new CountShard(0, 1, plans, CountHost.settings(), 1);
+            CountShard learning = new CountShard(0, 1, plans, CountHost.settings(), List.of("events"));
             StateLog log = new StateLog();
             List<TallyUpdate> tallies = new ArrayList<>();
             List<Plan> now = plans;
@@ -192,7 +192,7 @@ class CountAdoptTest {
                     log.append(effects.state());
                     tallies.addAll(effects.tallies());
                     if (random.nextInt(3) == 0) {
-                        learning = new CountShard(0, 1, now, CountHost.settings(), 1);
+                        learning = new CountShard(0, 1, now, CountHost.settings(), List.of("events"));
                         log.replayCompacted(random.nextInt(log.size() + 1), learning::restore);
                     }
                 }

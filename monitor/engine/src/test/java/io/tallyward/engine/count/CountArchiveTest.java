@@ -93,6 +93,17 @@ class CountArchiveTest {
 
     @ParameterizedTest
     @ValueSource(booleans = {false, true})
+    void keepsWhatItTellsOfLateEventsAfterARestart(boolean byView) {
+        CountHost host = until(host(byView), ARCHIVED);
+        host.restart(0);
+        host.feed(Events.view(ENDED, "wide", "unit-3", "late", 3)).commit();
+        host.restart(0);
+        assertEquals(1, host.outcomes(ENDED).get(Outcome.LATE));
+        assertEquals(UNITS, host.outcomes(ENDED).get(Outcome.TRIAL));
+    }
+
+    @ParameterizedTest
+    @ValueSource(booleans = {false, true})
     void removesEntriesThatWereWrittenBeforeARestartToo(boolean byView) {
         CountHost host = until(host(byView), SEALED);
         assertTrue(entries(host) > 0);

@@ -26,7 +26,7 @@ class CountBoundsTest {
             new CountSettings(Duration.ofMinutes(5), Duration.ofMinutes(5), new byte[] {1});
 
     private static CountShard shard(int partitions) {
-        return new CountShard(0, partitions, List.of(PLAN), SETTINGS, 1);
+        return new CountShard(0, partitions, List.of(PLAN), SETTINGS, List.of("events"));
     }
 
     @Test

@@ -10,6 +10,7 @@ import java.util.ArrayList;
 import java.util.Collection;
 import java.util.List;
 import java.util.Optional;
+import java.util.stream.IntStream;
 
 /** Hosts one shard in memory: keeps its log, collects what it tells, and can lose it and start it again. */
 final class CountHost {
@@ -20,16 +21,19 @@ final class CountHost {
     private final int partition;
     private final int partitions;
     private final Collection<Plan> plans;
-    private final int sources;
+    private List<String> sources;
     private final StateLog log = new StateLog();
     private final List<TallyUpdate> tallies = new ArrayList<>();
     private CountShard shard;
+    private int restarts;
 
     CountHost(int partition, int partitions, Collection<Plan> plans, int sources) {
         this.partition = partition;
         this.partitions = partitions;
         this.plans = plans;
-        this.sources = sources;
+        this.sources = IntStream.range(0, sources)
+                .mapToObj(source -> "events-" + source)
+                .toList();
         shard = fresh();
     }
 
@@ -79,11 +83,23 @@ final class CountHost {
         return commit();
     }
 
-    /** Loses the shard and starts it from a log of which the first {@code cleaned} changes have been compacted. */
+    /**
+     * Loses the shard and starts it from a log of which the first {@code cleaned} changes have been compacted, every other
+     * time after a look at how the log ends.
+     */
     CountHost restart(int cleaned) {
         shard = fresh();
+        if (++restarts % 2 == 0) {
+            log.last(shard.foresight(), shard::foresee);
+        }
         log.replayCompacted(cleaned, shard::restore);
         return this;
+    }
+
+    /** The same with other input topics from then on. */
+    CountHost restartReading(String... topics) {
+        sources = List.of(topics);
+        return restart(0);
     }
 
     StateLog log() {

@@ -1,6 +1,7 @@
 package io.tallyward.engine.count;
 
 import static org.junit.jupiter.api.Assertions.assertEquals;
+import static org.junit.jupiter.api.Assertions.assertFalse;
 import static org.junit.jupiter.api.Assertions.assertThrows;
 import static org.junit.jupiter.api.Assertions.assertTrue;
 
@@ -164,6 +165,55 @@ class CountRestartTest {
     }
 
     @Test
+    void tellsInputTopicsApartByTheirNames() {
+        CountHost host = host(2);
+        host.feedFrom(0, Events.view(BANNER, "wide", "ada", "v", 40))
+                .feedFrom(1, Events.view(BANNER, "wide", "ben", "w", 20))
+                .commit();
+        host.restartReading("events-1", "events-0");
+        assertEquals(Events.at(20), host.shard().view().watermarkMillis().orElseThrow());
+        host.feedFrom(0, Events.view(BANNER, "wide", "cy", "x", 30));
+        assertEquals(Events.at(30), host.shard().view().watermarkMillis().orElseThrow());
+    }
+
+    @Test
+    void waitsForATopicThatWasAdded() {
+        CountHost host = host();
+        host.feed(Events.view(BANNER, "wide", "ada", "v", 40)).commit();
+        host.restartReading("clicks", "events-0");
+        assertFalse(host.shard().hasRead("clicks"));
+        assertTrue(host.shard().hasRead("events-0"));
+        assertTrue(host.shard().view().watermarkMillis().isEmpty());
+        host.feedFrom(0, Events.click(BANNER, "wide", "ada", "c", 41)).commit();
+        assertEquals(Events.at(40), host.shard().view().watermarkMillis().orElseThrow());
+        host.restartReading("clicks", "events-0");
+        assertTrue(host.shard().hasRead("clicks"));
+    }
+
+    @Test
+    void notesATopicThatWasAddedEvenIfItIsEmpty() {
+        CountHost host = host();
+        host.feed(Events.view(BANNER, "wide", "ada", "v", 40)).commit();
+        host.restartReading("events-0", "clicks").commit();
+        host.restart(0);
+        assertTrue(host.shard().hasRead("clicks"));
+    }
+
+    @Test
+    void doesNotWaitForATopicThatWasTakenAwayAndRemembersIt() {
+        CountHost host = host(2);
+        host.feedFrom(0, Events.view(BANNER, "wide", "ada", "v", 40))
+                .feedFrom(1, Events.view(BANNER, "wide", "ben", "w", 20))
+                .commit();
+        host.restartReading("events-0");
+        assertEquals(Events.at(40), host.shard().view().watermarkMillis().orElseThrow());
+        host.feed(Events.view(BANNER, "wide", "cy", "x", 41)).commit();
+        host.restartReading("events-0", "events-1");
+        assertTrue(host.shard().hasRead("events-1"));
+        assertEquals(Events.at(20), host.shard().view().watermarkMillis().orElseThrow());
+    }
+
+    @Test
     void keepsNoMoreKeysThanOpenEntriesAndSealedWindows() {
         for (long seed = 0; seed < SEEDS; seed++) {
             CountHost host = host();
@@ -189,7 +239,7 @@ class CountRestartTest {
         static Key of(StateChange change) {
             try (DataInputStream in = new DataInputStream(new ByteArrayInputStream(change.key()))) {
                 char kind = (char) in.readByte();
-                String experiment = kind == 'h' ? "" : in.readUTF();
+                String experiment = kind == 'w' ? "" : in.readUTF();
                 return new Key(kind, experiment, kind == 'o' || kind == 's' ? in.readLong() : 0);
             } catch (IOException e) {
                 throw new UncheckedIOException(e);
@@ -212,7 +262,7 @@ class CountRestartTest {
                 .count();
         assertEquals(
                 sealedWindows, keys.stream().filter(key -> key.kind() == 's').count(), where);
-        assertTrue(keys.stream().filter(key -> key.kind() == 'h').count() <= 1, where);
+        assertTrue(keys.stream().filter(key -> key.kind() == 'w').count() <= 1, where);
         assertTrue(keys.stream().filter(key -> key.kind() == 'e').count() <= PLANS.size(), where);
         for (Key key : keys) {
             long sealed = sealedUntil.getOrDefault(key.experiment(), Long.MIN_VALUE);
@@ -226,7 +276,7 @@ class CountRestartTest {
         Plan changed = Plans.plan(BANNER).alpha(0.01).build();
         CountHost host = CountHost.of(counted);
         host.feed(Events.view(BANNER, "wide", "ada", "v", 3)).commit();
-        CountShard shard = new CountShard(0, 1, List.of(changed), CountHost.settings(), 1);
+        CountShard shard = new CountShard(0, 1, List.of(changed), CountHost.settings(), List.of("events"));
         PlanChangedException refused =
                 assertThrows(PlanChangedException.class, () -> host.log().replay(shard::restore));
         assertEquals(BANNER, refused.experiment());
@@ -238,10 +288,19 @@ class CountRestartTest {
         CountHost host = CountHost.of(plan);
         host.feed(Events.view(BANNER, "wide", "ada", "v", 3)).commit();
         CountSettings rekeyed = new CountSettings(CountHost.MAX_SKEW, CountHost.IDLE_AFTER, new byte[] {7});
-        CountShard shard = new CountShard(0, 1, List.of(plan), rekeyed, 1);
+        CountShard shard = new CountShard(0, 1, List.of(plan), rekeyed, List.of("events"));
         UnitKeyChangedException refused =
                 assertThrows(UnitKeyChangedException.class, () -> host.log().replay(shard::restore));
         assertTrue(refused.getMessage().startsWith("unit key: it is not the one"), refused.getMessage());
+    }
+
+    @Test
+    void refusesStateThatAnotherVersionWrote() {
+        CountHost host = host();
+        IllegalStateException refused =
+                assertThrows(IllegalStateException.class, () -> host.shard().restore(new byte[] {'h'}, new byte[8]));
+        assertTrue(refused.getMessage().contains("unknown kind h"), refused.getMessage());
+        assertTrue(refused.getMessage().contains("another version"), refused.getMessage());
     }
 
     @Test
@@ -249,7 +308,7 @@ class CountRestartTest {
         CountHost host = CountHost.of(Plans.plan(BANNER).build());
         host.feed(Events.view(BANNER, "wide", "ada", "v", 3), Events.view(BANNER, "wide", "ben", "v2", 99))
                 .commit();
-        CountShard shard = new CountShard(0, 1, List.of(), CountHost.settings(), 1);
+        CountShard shard = new CountShard(0, 1, List.of(), CountHost.settings(), List.of("events-0"));
         host.log().replay(shard::restore);
         assertEquals(Map.of(), shard.view().experiments());
         assertEquals(List.of(), shard.drain().state());

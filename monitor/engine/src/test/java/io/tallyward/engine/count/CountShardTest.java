@@ -355,6 +355,6 @@ class CountShardTest {
     void needsASource() {
         assertThrows(
                 IllegalArgumentException.class,
-                () -> new CountShard(0, 1, List.of(QUAY_BANNER), CountHost.settings(), 0));
+                () -> new CountShard(0, 1, List.of(QUAY_BANNER), CountHost.settings(), List.of()));
     }
 }

@@ -3,9 +3,7 @@ package io.tallyward.engine.count;
 import static org.junit.jupiter.api.Assertions.assertEquals;
 import static org.junit.jupiter.api.Assertions.assertTrue;
 
-import java.io.ByteArrayInputStream;
 import java.io.ByteArrayOutputStream;
-import java.io.DataInputStream;
 import java.io.DataOutputStream;
 import java.io.IOException;
 import java.util.Arrays;
@@ -89,7 +87,7 @@ class OpenUnitsTest {
             OpenUnit unit = new OpenUnit(VARIANTS);
             change(unit, random, i % 2 == 0);
             byte[] bytes = written(unit);
-            copy.read(new DataInputStream(new ByteArrayInputStream(bytes)));
+            copy.read(new ChunkReader(bytes));
             assertTrue(Arrays.equals(bytes, written(copy)), "unit " + i);
             assertTrue(Arrays.equals(bytes, written(copy.copy())), "copy of unit " + i);
         }

@@ -55,7 +55,7 @@ final class Replay {
     Replay(List<Plan> plans, int partitions, CountSettings settings) {
         plans.forEach(plan -> this.plans.put(plan.experiment(), plan));
         for (int partition = 0; partition < partitions; partition++) {
-            counting.add(new CountShard(partition, partitions, plans, settings, 1));
+            counting.add(new CountShard(partition, partitions, plans, settings, List.of("events")));
         }
         this.deciding = new DecideShard(plans);
         this.reader = new JsonEventReader(EventMapping.DEFAULT, MAX_EVENT_BYTES);

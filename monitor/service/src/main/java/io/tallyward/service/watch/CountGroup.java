@@ -32,9 +32,7 @@ public final class CountGroup {
                 new CountSettings(config.input().maxSkew(), config.input().idleAfter(), UnitKey.of(config));
         JsonEventReader reader =
                 new JsonEventReader(config.input().mapping(), config.input().maxEventBytes());
-        // State tells topics apart by their place in this list: another order in the configuration must not mix them
-        // up.
-        List<String> topics = config.input().topics().stream().sorted().toList();
+        List<String> topics = config.input().topics();
         TrafficLog trafficLog = new TrafficLog(names.rejects());
         return ShardGroup.builder(names.countGroup())
                 .clientProperties(clientProperties(config))
@@ -47,7 +45,7 @@ public final class CountGroup {
                 .start(startPosition(config.input().start()))
                 .workers(config.workers())
                 .shards((partition, partitions) -> {
-                    CountShard shard = new CountShard(partition, partitions, List.of(), settings, topics.size());
+                    CountShard shard = new CountShard(partition, partitions, List.of(), settings, topics);
                     return new CountHost(
                             shard,
                             partition,

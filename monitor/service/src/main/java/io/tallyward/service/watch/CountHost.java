@@ -20,6 +20,7 @@ import io.tallyward.service.status.StatusBoard;
 import java.nio.charset.StandardCharsets;
 import java.util.ArrayList;
 import java.util.Arrays;
+import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
@@ -56,6 +57,11 @@ final class CountHost implements HostedShard {
 
     private final List<Output> rejects = new ArrayList<>();
     private long rejectedBytes;
+
+    /** What the last report was made from, and of. */
+    private final Map<String, CountView.ExperimentCounts> shown = new HashMap<>();
+
+    private final TreeMap<String, CountReport.ExperimentCount> reported = new TreeMap<>();
     private boolean published;
 
     CountHost(
@@ -102,8 +108,23 @@ final class CountHost implements HostedShard {
     }
 
     @Override
+    public int foresight() {
+        return shard.foresight();
+    }
+
+    @Override
+    public void foresee(byte[] key, byte[] value) {
+        shard.foresee(key, value);
+    }
+
+    @Override
     public void restore(byte[] key, byte[] value) {
         shard.restore(key, value);
+    }
+
+    @Override
+    public boolean hasRead(String topic) {
+        return shard.hasRead(topic);
     }
 
     @Override
@@ -269,14 +290,15 @@ final class CountHost implements HostedShard {
 
     private CountReport report() {
         CountView view = shard.view();
-        Map<String, CountReport.ExperimentCount> experiments = new TreeMap<>();
         long units = 0;
         for (Map.Entry<String, CountView.ExperimentCounts> entry :
                 view.experiments().entrySet()) {
             CountView.ExperimentCounts counts = entry.getValue();
-            experiments.put(entry.getKey(), new CountReport.ExperimentCount(counts.outcomes(), counts.openEvents()));
+            if (shown.put(entry.getKey(), counts) != counts) {
+                reported.put(entry.getKey(), new CountReport.ExperimentCount(counts.outcomes(), counts.openEvents()));
+            }
             units += counts.units();
         }
-        return new CountReport(experiments, view.watermarkMillis(), view.rejected(), units, keyCheck.unkeyed());
+        return new CountReport(reported, view.watermarkMillis(), view.rejected(), units, keyCheck.unkeyed());
     }
 }

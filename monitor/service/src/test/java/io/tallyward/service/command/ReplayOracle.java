@@ -23,7 +23,7 @@ public final class ReplayOracle {
         CountSettings settings = new CountSettings(Duration.ofMinutes(5), Duration.ofMinutes(5), new byte[] {1});
         List<CountShard> shards = new ArrayList<>();
         for (int partition = 0; partition < partitions; partition++) {
-            shards.add(new CountShard(partition, partitions, plans, settings, 1));
+            shards.add(new CountShard(partition, partitions, plans, settings, List.of("events")));
         }
         for (ConsumerRecord<byte[], byte[]> record : records) {
             if (reader.read(record.value()) instanceof Decoded.Accepted accepted) {

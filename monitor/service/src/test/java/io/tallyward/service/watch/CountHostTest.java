@@ -53,7 +53,7 @@ class CountHostTest {
                     Duration.ofMinutes(5),
                     Duration.ofMinutes(5),
                     "a key for tests only".getBytes(StandardCharsets.UTF_8)),
-            1);
+            List.of("events"));
     private final EventParser json = EventParser.of(
             new JsonEventReader(EventMapping.DEFAULT, LARGEST),
             new EventSlotReader(EventMapping.DEFAULT, LARGEST, shard.names()));
