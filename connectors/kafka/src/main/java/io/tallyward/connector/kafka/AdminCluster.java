@@ -23,6 +23,8 @@ import org.apache.kafka.clients.admin.OffsetSpec;
 import org.apache.kafka.clients.admin.ProducerState;
 import org.apache.kafka.clients.admin.TopicDescription;
 import org.apache.kafka.clients.admin.TransactionDescription;
+import org.apache.kafka.clients.admin.TransactionListing;
+import org.apache.kafka.clients.admin.TransactionState;
 import org.apache.kafka.common.IsolationLevel;
 import org.apache.kafka.common.KafkaException;
 import org.apache.kafka.common.KafkaFuture;
@@ -137,6 +139,14 @@ final class AdminCluster implements Cluster {
         } catch (TransactionalIdNotFoundException unknown) {
             return Optional.empty();
         }
+    }
+
+    @Override
+    public List<String> ongoingTransactions() {
+        ListTransactionsOptions ongoing = new ListTransactionsOptions().filterStates(Set.of(TransactionState.ONGOING));
+        return answered(admin.listTransactions(ongoing).all()).stream()
+                .map(TransactionListing::transactionalId)
+                .toList();
     }
 
     @Override

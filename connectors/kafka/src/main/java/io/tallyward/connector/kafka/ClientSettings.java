@@ -164,8 +164,22 @@ final class ClientSettings {
                 && transactionalId.substring(group.id().length()).matches("-.+-\\d+-\\d+");
     }
 
+    /**
+     * Whether a transactional id is one that the same worker of an earlier instance of the same kept name has used. Whoever has
+     * joined the group under the name has shut that one out.
+     */
+    static boolean isPredecessor(ShardGroup group, int worker, String transactionalId) {
+        String kept = group.id() + "-" + group.member().orElse("") + ".";
+        return group.member().isPresent()
+                && transactionalId.startsWith(kept)
+                && transactionalId.substring(kept.length()).matches("[0-9a-f-]{36}-" + worker + "-\\d+")
+                && !transactionalId.startsWith(clientId(group, worker) + "-");
+    }
+
+    /** A kept name goes before what tells one run of the instance from the next. */
     private static String clientId(ShardGroup group, int worker) {
-        return group.id() + "-" + group.instance() + "-" + worker;
+        String kept = group.member().map(name -> name + ".").orElse("");
+        return group.id() + "-" + kept + group.instance() + "-" + worker;
     }
 
     /** A tenth of the commit interval: an event then shows within one and a tenth of it and the commit itself. */

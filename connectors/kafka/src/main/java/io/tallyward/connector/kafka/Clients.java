@@ -25,6 +25,9 @@ interface Clients {
     /** The transactional id of the producer that {@link #output()} made last; empty before the first. */
     Optional<String> lastTransactionalId();
 
+    /** Whether a transactional id was used by whoever has been replaced by this worker under a name that is kept. */
+    boolean isPredecessor(String transactionalId);
+
     /**
      * Stands in for a producer that was made earlier, by this worker or another, under its transactional id: for ending what
      * that one has left open and for nothing else.

@@ -34,6 +34,9 @@ interface Cluster extends AutoCloseable {
     /** What is known of a transactional id; empty if nothing is. */
     Optional<CoordinatedTransaction> coordinated(String transactionalId);
 
+    /** The transactional ids whose last transaction is neither committed nor aborted, of all groups. */
+    List<String> ongoingTransactions();
+
     /** Whether the end of every transaction raises its producer's epoch (KIP-890), on all brokers. */
     boolean numbersTransactions();
 

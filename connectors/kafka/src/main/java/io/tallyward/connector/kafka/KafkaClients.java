@@ -71,6 +71,11 @@ final class KafkaClients implements Clients {
     }
 
     @Override
+    public boolean isPredecessor(String transactionalId) {
+        return ClientSettings.isPredecessor(group, worker, transactionalId);
+    }
+
+    @Override
     public Producer<byte[], byte[]> standIn(String transactionalId) {
         return producer(ClientSettings.output(group, worker, transactionalId));
     }

@@ -10,6 +10,7 @@ import org.apache.kafka.clients.producer.Producer;
 import org.apache.kafka.clients.producer.ProducerRecord;
 import org.apache.kafka.common.KafkaException;
 import org.apache.kafka.common.TopicPartition;
+import org.apache.kafka.common.errors.InterruptException;
 import org.apache.kafka.common.errors.RecordTooLargeException;
 import org.apache.kafka.common.errors.TimeoutException;
 
@@ -37,7 +38,7 @@ final class Transactions implements AutoCloseable {
         if (producer != null) {
             return;
         }
-        clients.lastTransactionalId().ifPresent(this::endWhatIsOpen);
+        clients.lastTransactionalId().ifPresentOrElse(this::endWhatIsOpen, this::endOfPredecessors);
         Producer<byte[], byte[]> fresh = clients.output();
         begin(fresh);
         producer = fresh;
@@ -59,6 +60,22 @@ final class Transactions implements AutoCloseable {
         Producer<byte[], byte[]> standIn = clients.standIn(transactionalId);
         begin(standIn);
         standIn.close(CLOSE_PATIENCE);
+    }
+
+    /**
+     * Ends what an instance left open that was killed and whose name this one keeps, instead of waiting until it times out:
+     * until then neither offsets nor state can be read. Where it cannot be found, it is waited for.
+     */
+    private void endOfPredecessors() {
+        List<String> ongoing;
+        try {
+            ongoing = cluster.ongoingTransactions();
+        } catch (InterruptException stop) {
+            throw stop;
+        } catch (KafkaException unanswered) {
+            return;
+        }
+        ongoing.stream().filter(clients::isPredecessor).forEach(this::endWhatIsOpen);
     }
 
     /** Puts the producer aside, between two transactions; the next will have an id of its own. */

@@ -13,6 +13,7 @@ import java.time.Instant;
 import java.util.List;
 import java.util.Map;
 import java.util.Set;
+import org.apache.kafka.clients.admin.TransactionState;
 import org.apache.kafka.clients.consumer.OffsetAndMetadata;
 import org.apache.kafka.clients.consumer.OffsetOutOfRangeException;
 import org.apache.kafka.common.KafkaException;
@@ -246,6 +247,29 @@ class AssignmentOrderTest {
         LostOffsetsException lost = assertThrows(LostOffsetsException.class, scripted.session::step);
         assertTrue(lost.getMessage().contains("no committed offsets for [" + VIEWS_0 + "]"), lost.getMessage());
         assertTrue(lost.getMessage().contains("kafka-consumer-groups.sh --reset-offsets"), lost.getMessage());
+    }
+
+    @Test
+    void endsWhatItsPredecessorLeftOpenBeforeAnythingIsRead() {
+        clients.coordinated.put(1L, new CoordinatedTransaction("counters-earlier-0-1", TransactionState.ONGOING, 1, 4));
+        clients.coordinated.put(2L, new CoordinatedTransaction("counters-other-0-1", TransactionState.ONGOING, 2, 4));
+        scripted.assign(VIEWS_0);
+        scripted.session.step();
+        assertEquals(
+                List.of("take over counters-earlier-0-1", "init transactions", "read committed offsets"),
+                scripted.journal.stream()
+                        .filter(line -> line.startsWith("take over")
+                                || line.equals("init transactions")
+                                || line.equals("read committed offsets"))
+                        .toList());
+    }
+
+    @Test
+    void goesOnWhereItCannotFindOutWhatItsPredecessorLeftOpen() {
+        clients.ongoingFailure = new org.apache.kafka.common.errors.TimeoutException("nobody answers");
+        scripted.assign(VIEWS_0);
+        scripted.session.step();
+        assertFalse(scripted.session.restoring());
     }
 
     @Test

@@ -2,6 +2,7 @@ package io.tallyward.connector.kafka;
 
 import static org.junit.jupiter.api.Assertions.assertEquals;
 import static org.junit.jupiter.api.Assertions.assertFalse;
+import static org.junit.jupiter.api.Assertions.assertTrue;
 
 import java.time.Duration;
 import java.util.List;
@@ -41,6 +42,31 @@ class ClientSettingsTest {
                 .build();
         assertEquals("pier-1", ClientSettings.input(named, 1).get("group.instance.id"));
         assertFalse(ClientSettings.input(group(Map.of()), 1).containsKey("group.instance.id"));
+    }
+
+    @Test
+    void knowsAPredecessorByItsKeptName() {
+        String earlier = "counters-pier.1ce4bb6b-64a5-4c4f-9e6d-0123456789ab";
+        ShardGroup named = named("pier", "2ce4bb6b-64a5-4c4f-9e6d-0123456789ab");
+        assertTrue(ClientSettings.isPredecessor(named, 1, earlier + "-1-3"));
+        assertFalse(ClientSettings.isPredecessor(named, 0, earlier + "-1-3"), "another worker's");
+        assertFalse(ClientSettings.isPredecessor(
+                named("pie", "2ce4bb6b-64a5-4c4f-9e6d-0123456789ab"), 1, earlier + "-1-3"));
+        assertFalse(ClientSettings.isPredecessor(named, 1, "counters-pier.x.1ce4bb6b-64a5-4c4f-9e6d-0123456789ab-1-3"));
+        assertFalse(ClientSettings.isPredecessor(named, 1, ClientSettings.transactionalId(named, 1, 3)), "its own");
+        assertTrue(ClientSettings.isOurs(named, earlier + "-1-3"));
+        assertFalse(ClientSettings.isPredecessor(group(Map.of()), 1, earlier + "-1-3"), "without a kept name");
+    }
+
+    private static ShardGroup named(String member, String instance) {
+        return ShardGroup.builder("counters")
+                .instance(instance)
+                .bootstrapServers("broker:9092")
+                .inputTopics(List.of("views"))
+                .stateTopic("states")
+                .member(Optional.of(member))
+                .shards((partition, partitions) -> new CountingShard("states", "told", partition, line -> {}))
+                .build();
     }
 
     @Test

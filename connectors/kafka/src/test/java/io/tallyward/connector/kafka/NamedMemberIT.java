@@ -3,8 +3,17 @@ package io.tallyward.connector.kafka;
 import static org.junit.jupiter.api.Assertions.assertEquals;
 
 import io.tallyward.testkit.BrokerUnderTest;
+import java.time.Duration;
 import java.util.Map;
 import java.util.Optional;
+import java.util.UUID;
+import org.apache.kafka.clients.consumer.KafkaConsumer;
+import org.apache.kafka.clients.consumer.OffsetAndMetadata;
+import org.apache.kafka.clients.producer.KafkaProducer;
+import org.apache.kafka.clients.producer.ProducerRecord;
+import org.apache.kafka.common.TopicPartition;
+import org.apache.kafka.common.serialization.ByteArrayDeserializer;
+import org.apache.kafka.common.serialization.ByteArraySerializer;
 import org.awaitility.Awaitility;
 import org.junit.jupiter.api.AfterAll;
 import org.junit.jupiter.api.BeforeAll;
@@ -53,6 +62,43 @@ class NamedMemberIT {
                 bench.produce(200);
                 bench.assertExact();
             }
+        }
+    }
+
+    /** A transaction that is left open by a kill would hold its successor back until it times out. */
+    @Test
+    void doesNotWaitForATransactionThatItsPredecessorLeftOpen() {
+        bench.produce(200);
+        try (ShardRunner first = named()) {
+            bench.awaitRunning(first, 4);
+            bench.awaitTold(200);
+        }
+        TopicPartition input = new TopicPartition(bench.input, 0);
+        try (KafkaProducer<byte[], byte[]> killed = new KafkaProducer<>(
+                        Map.of(
+                                "bootstrap.servers",
+                                broker.bootstrapServers(),
+                                "transactional.id",
+                                bench.group + "-pier." + UUID.randomUUID() + "-0-1",
+                                "transaction.timeout.ms",
+                                "45000"),
+                        new ByteArraySerializer(),
+                        new ByteArraySerializer());
+                KafkaConsumer<byte[], byte[]> stranger = new KafkaConsumer<>(
+                        Map.of("bootstrap.servers", broker.bootstrapServers(), "group.id", bench.group),
+                        new ByteArrayDeserializer(),
+                        new ByteArrayDeserializer())) {
+            killed.initTransactions();
+            killed.beginTransaction();
+            killed.send(new ProducerRecord<>(bench.states, 0, CountingShard.bytes("quay-banner"), null));
+            killed.sendOffsetsToTransaction(Map.of(input, new OffsetAndMetadata(0)), stranger.groupMetadata());
+            killed.flush();
+            try (ShardRunner successor = named()) {
+                bench.awaitRunning(successor, 4);
+                bench.produce(100);
+                bench.assertExact();
+            }
+            killed.close(Duration.ZERO);
         }
     }
 

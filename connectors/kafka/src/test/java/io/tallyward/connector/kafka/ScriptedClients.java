@@ -11,6 +11,7 @@ import java.util.Optional;
 import java.util.Set;
 import java.util.concurrent.Executor;
 import java.util.concurrent.Future;
+import org.apache.kafka.clients.admin.TransactionState;
 import org.apache.kafka.clients.consumer.Consumer;
 import org.apache.kafka.clients.consumer.ConsumerGroupMetadata;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
@@ -52,6 +53,9 @@ final class ScriptedClients implements Clients, OutboxClients {
 
     /** What asking which topics there are ends in; null for an answer. */
     RuntimeException idsFailure;
+
+    /** What asking for ongoing transactions ends in; null for an answer. */
+    RuntimeException ongoingFailure;
 
     /** What the brokers say of transactions. */
     final List<OpenTransaction> open = new ArrayList<>();
@@ -128,6 +132,11 @@ final class ScriptedClients implements Clients, OutboxClients {
     @Override
     public Optional<String> lastTransactionalId() {
         return producers.isEmpty() ? Optional.empty() : Optional.of("counters-blue-0-" + producers.size());
+    }
+
+    @Override
+    public boolean isPredecessor(String transactionalId) {
+        return transactionalId.startsWith("counters-earlier-");
     }
 
     @Override
@@ -318,6 +327,17 @@ final class ScriptedClients implements Clients, OutboxClients {
             return coordinated.values().stream()
                     .filter(known -> known.transactionalId().equals(transactionalId))
                     .findFirst();
+        }
+
+        @Override
+        public List<String> ongoingTransactions() {
+            if (ongoingFailure != null) {
+                throw ongoingFailure;
+            }
+            return coordinated.values().stream()
+                    .filter(known -> known.state() == TransactionState.ONGOING)
+                    .map(CoordinatedTransaction::transactionalId)
+                    .toList();
         }
 
         @Override

@@ -238,6 +238,11 @@ class ShardRunnerIT {
         }
 
         @Override
+        public boolean isPredecessor(String transactionalId) {
+            return real.isPredecessor(transactionalId);
+        }
+
+        @Override
         public Executor aside() {
             return real.aside();
         }

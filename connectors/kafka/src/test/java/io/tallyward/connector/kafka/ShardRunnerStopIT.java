@@ -120,6 +120,11 @@ class ShardRunnerStopIT {
         }
 
         @Override
+        public boolean isPredecessor(String transactionalId) {
+            return false;
+        }
+
+        @Override
         public Executor aside() {
             return scripted.aside();
         }

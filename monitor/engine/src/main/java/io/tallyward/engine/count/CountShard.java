@@ -354,7 +354,9 @@ public final class CountShard {
         List<StateChange> changes = new ArrayList<>(sealedState);
         sealedState.clear();
         if (restoredToForget) {
-            counters.values().stream().filter(state::hasMoreToForget).forEach(changed::add);
+            counters.values().stream()
+                    .filter(counter -> counter.isChanged() || state.hasMoreToForget(counter))
+                    .forEach(changed::add);
             restoredToForget = false;
         }
         for (ExperimentCounter counter : changed) {

@@ -213,6 +213,9 @@ final class CountState {
             }
             DataInputStream in = reader(value);
             in.readUTF();
+            if (in.readBoolean()) {
+                return;
+            }
             foreseen.put(keyIn.readUTF(), new Foreseen(in.readLong(), in.readBoolean()));
         } catch (IOException e) {
             throw cutShort(e);
