@@ -190,6 +190,13 @@ final class JsonMembers {
                 .toList();
     }
 
+    /** A member that is an array of whole numbers. */
+    List<Long> wholes(String name) {
+        return items(name, item -> item.isIntegralNumber() && item.canConvertToLong(), "whole numbers").stream()
+                .map(JsonNode::longValue)
+                .toList();
+    }
+
     /** A member that is an array of texts. */
     List<String> texts(String name) {
         return items(name, JsonNode::isTextual, "texts").stream()

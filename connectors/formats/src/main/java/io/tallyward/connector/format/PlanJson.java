@@ -74,6 +74,7 @@ public final class PlanJson {
         json.writeObjectFieldStart("trust");
         JsonBytes.real(json, "crossoverShare", plan.trust().crossoverShare());
         JsonBytes.real(json, "lateShare", plan.trust().lateShare());
+        JsonBytes.real(json, "orphanGap", plan.trust().orphanGap());
         JsonBytes.duration(json, "starvedAfter", plan.trust().starvedAfter());
         json.writeEndObject();
         json.writeObjectFieldStart("run");
@@ -165,8 +166,12 @@ public final class PlanJson {
     }
 
     private static TrustLimits trust(JsonMembers trust) {
-        trust.only("crossoverShare", "lateShare", "starvedAfter");
-        return new TrustLimits(trust.real("crossoverShare"), trust.real("lateShare"), trust.duration("starvedAfter"));
+        trust.only("crossoverShare", "lateShare", "orphanGap", "starvedAfter");
+        return new TrustLimits(
+                trust.real("crossoverShare"),
+                trust.real("lateShare"),
+                trust.real("orphanGap"),
+                trust.duration("starvedAfter"));
     }
 
     private static Run run(JsonMembers run) {

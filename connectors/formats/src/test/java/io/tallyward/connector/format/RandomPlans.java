@@ -66,7 +66,7 @@ final class RandomPlans {
                         : new LookSchedule.AtFractions(list(() -> open(1))),
                 random.nextBoolean() ? Optional.empty() : Optional.of(futility()),
                 new SplitCheckPlan(open(0.5), list(this::word)),
-                new TrustLimits(open(1), open(1), duration()),
+                new TrustLimits(open(1), open(1), open(1), duration()),
                 new Run(instant(), duration(), Duration.ofDays(1 + random.nextInt(300))),
                 list(() -> new AllocationEpoch(instant(), shares(names))),
                 list(() -> amendment(names)));

@@ -226,8 +226,13 @@ final class RandomRecords {
     }
 
     private OutcomeCounts outcomes() {
-        return OutcomeCounts.of(
-                random.longs(Outcome.values().length, 0, Long.MAX_VALUE).toArray());
+        OutcomeCounts.Builder outcomes = new OutcomeCounts.Builder()
+                .add(OutcomeCounts.of(
+                        random.longs(Outcome.values().length, 0, Long.MAX_VALUE).toArray()));
+        for (int variant = random.nextInt(4); variant > 0; variant--) {
+            outcomes.addOrphans(variant, random.nextLong(Long.MAX_VALUE));
+        }
+        return outcomes.build();
     }
 
     /** Any bit pattern that is a finite number: subnormal, negative zero and extreme ones included. */

@@ -75,7 +75,7 @@ class RecordCodecTest {
                         + "{\"startMillis\":1777852800000,"
                         + "\"cells\":[{\"epoch\":0,\"variant\":1,\"trials\":12,\"successes\":3,\"clusters\":null}],\"segments\":[],"
                         + "\"outcomes\":{\"trial\":12,\"success\":3,\"repeat\":1,\"expired\":0,\"crossover\":0,"
-                        + "\"orphan\":0,\"late\":0,\"outside\":0,\"duplicate\":0}}]}",
+                        + "\"orphan\":0,\"late\":0,\"outside\":0,\"duplicate\":0,\"orphanByVariant\":[]}}]}",
                 text(TallyJson.write(tally)));
     }
 
@@ -86,7 +86,7 @@ class RecordCodecTest {
                 "{\"type\":\"decision\",\"experiment\":\"quay-banner\",\"sequence\":1,\"occasion\":\"trust\","
                         + "\"windowEnd\":\"2026-05-04T06:00:00Z\",\"planDigest\":\"ab\",\"plan\":null,\"amendment\":null,\"counts\":[],"
                         + "\"outcomes\":{\"trial\":0,\"success\":0,\"repeat\":0,\"expired\":0,\"crossover\":0,"
-                        + "\"orphan\":0,\"late\":0,\"outside\":0,\"duplicate\":0},\"idleSealed\":0,"
+                        + "\"orphan\":0,\"late\":0,\"outside\":0,\"duplicate\":0,\"orphanByVariant\":[]},\"idleSealed\":0,"
                         + "\"split\":{\"logBayesFactor\":0.25,\"sequentialPValue\":1.0,\"pearsonChiSquare\":0.0,"
                         + "\"pearsonDegreesOfFreedom\":0,\"pearsonPValue\":1.0,\"peak\":null,\"origin\":null},\"trust\":\"sound\","
                         + "\"trustReason\":\"\",\"silence\":null,\"verdict\":\"stop-benefit\",\"comparisons\":[],"

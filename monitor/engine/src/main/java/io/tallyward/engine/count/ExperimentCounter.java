@@ -161,19 +161,19 @@ final class ExperimentCounter {
         boolean late = window < sealedUntil || arrivalMillis >= lateAt(window, event.kind());
         Outcome outcome = ledger.accept(high, low, event, arrivalMillis, late);
         if (outcome != null) {
-            finalOutcomes.add(outcome, 1);
-            tellIn(window, outcome);
+            finalOutcomes.addOf(event.variant(), outcome);
+            tellIn(window, event.variant(), outcome);
         }
         return true;
     }
 
     /** An outcome that became final on its own is told with its own window, or with the next one that is still open. */
-    private void tellIn(long window, Outcome outcome) {
+    private void tellIn(long window, int variant, Outcome outcome) {
         long open = Math.max(window, sealedUntil);
         if (open < runEnd) {
             unsealedOutcomes
                     .computeIfAbsent(open, start -> new OutcomeCounts.Builder())
-                    .add(outcome, 1);
+                    .addOf(variant, outcome);
         }
     }
 

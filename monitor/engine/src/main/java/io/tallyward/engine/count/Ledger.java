@@ -192,12 +192,11 @@ final class Ledger implements CountLedger {
             open.remove();
             return true;
         }
-        int orphans = unit.removeOrphansBefore(windowStart + windowMillis);
+        int orphans = unit.removeOrphansBefore(windowStart + windowMillis, outcomes);
         if (orphans == 0) {
             return false;
         }
         openEvents -= orphans;
-        outcomes.add(Outcome.ORPHAN, orphans);
         if (unit.isEmpty()) {
             open.remove();
             return true;

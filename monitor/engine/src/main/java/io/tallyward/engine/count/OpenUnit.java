@@ -160,19 +160,24 @@ final class OpenUnit {
      *
      * @return how many were removed; each is an orphan
      */
-    int removeOrphansBefore(long endMillis) {
+    int removeOrphansBefore(long endMillis, OutcomeCounts.Builder outcomes) {
         int kept = 0;
         for (int i = 0; i < clicks; i++) {
             boolean preceded = hasTrial() && first <= clickTimes[i];
             if (preceded || clickTimes[i] >= endMillis) {
                 keepClick(i, kept++);
+            } else {
+                outcomes.addOf(clickVariants[i], Outcome.ORPHAN);
             }
         }
         int removed = clicks - kept;
         clicks = kept;
         if (isEmpty()) {
             removed += sum(surplus);
-            Arrays.fill(surplus, 0);
+            for (int of = 0; of < surplus.length; of++) {
+                outcomes.add(Outcome.ORPHAN, surplus[of]).addOrphans(of, surplus[of]);
+                surplus[of] = 0;
+            }
         }
         return removed;
     }
@@ -220,7 +225,7 @@ final class OpenUnit {
         boolean told = false;
         for (int i = 0; i < clicks; i++) {
             if (clickTimes[i] < first) {
-                outcomes.add(Outcome.ORPHAN, 1);
+                outcomes.addOf(clickVariants[i], Outcome.ORPHAN);
             } else if (clickVariants[i] != variant) {
                 outcomes.add(Outcome.CROSSOVER, 1);
             } else if (!successful) {

@@ -87,23 +87,23 @@ final class ViewSealing {
         long at = unit.time(click);
         boolean own = inWindow(at);
         if (!begun || at < unit.first()) {
-            tell(click, own, Outcome.ORPHAN, outcomes);
+            tell(click, unit, own, Outcome.ORPHAN, outcomes);
         } else if (unit.variant(click) != unit.variant()) {
-            tell(click, own, Outcome.CROSSOVER, outcomes);
+            tell(click, unit, own, Outcome.CROSSOVER, outcomes);
         } else {
             int view = viewOf(unit, click);
             boolean inTime = view != NONE && at <= unit.time(view) + attributionMillis;
             if (inTime && inWindow(unit.time(view))) {
-                tell(click, true, success(unit, click, view), outcomes);
+                tell(click, unit, true, success(unit, click, view), outcomes);
             } else {
-                tell(click, own, without(unit, click), outcomes);
+                tell(click, unit, own, without(unit, click), outcomes);
             }
         }
     }
 
-    private void tell(int click, boolean now, Outcome outcome, OutcomeCounts.Builder outcomes) {
+    private void tell(int click, ViewedUnit unit, boolean now, Outcome outcome, OutcomeCounts.Builder outcomes) {
         if (now) {
-            outcomes.add(outcome, 1);
+            outcomes.addOf(unit.variant(click), outcome);
             done[click] = true;
         }
     }

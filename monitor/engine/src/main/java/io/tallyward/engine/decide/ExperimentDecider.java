@@ -184,7 +184,7 @@ final class ExperimentDecider {
     private void decide() {
         TrustWatch.Judgement before = judgement;
         boolean concluded = challengers.concluded();
-        judgement = trustWatch.judge(completeUntil, splitWatch.sequentialPValue(), outcomes, concluded);
+        judgement = trustWatch.judge(completeUntil, splitWatch.sequentialPValue(), outcomes, counts, concluded);
         boolean trustChanged = judgement.trust() != before.trust();
         NoticeWriter.Told told = told(concluded);
         Challengers.Outcome outcome =

@@ -175,6 +175,13 @@ final class NoticeWriter {
                         Severity.TICKET,
                         reason,
                         "Check that a unit keeps its variant across pages, devices and releases." + told.reminder);
+            case ORPHANS ->
+                new Message(
+                        Kind.ORPHANS,
+                        urgent,
+                        reason,
+                        "Find where views of that variant are lost: they are missing from its trials too."
+                                + told.reminder);
             case LATE ->
                 new Message(
                         Kind.LATE,

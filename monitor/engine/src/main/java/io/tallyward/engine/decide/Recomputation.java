@@ -178,7 +178,7 @@ public final class Recomputation {
                 recorded.counts().stream().mapToLong(VariantCount::trials).sum();
         outcomes[Outcome.SUCCESS.ordinal()] =
                 recorded.counts().stream().mapToLong(VariantCount::successes).sum();
-        return OutcomeCounts.of(outcomes);
+        return recorded.outcomes().withCounts(outcomes);
     }
 
     /** The evidence now, and, where it was larger between records, at the counts that the record says it was largest at. */
@@ -190,13 +190,13 @@ public final class Recomputation {
     }
 
     private TrustWatch.Judgement judge(DecisionRecord recorded, CumulativeCounts earlier) {
-        boolean worse = last.trust() == Trust.STARVED || last.trust() == Trust.CROSSOVER;
-        trustWatch.standAs(last.trust(), worse && recorded.trust() == Trust.LATE);
+        trustWatch.standAs(last.trust(), recorded.trust());
         RecordedSilence silence = new RecordedSilence(plan, trustWatch, last, recorded, objections);
         return trustWatch.judge(
                 recorded.windowEnd().toEpochMilli(),
                 splitWatch.sequentialPValue(),
                 recorded.outcomes(),
+                counts,
                 challengers.concluded() ? Optional.empty() : silence.again(counts, earlier));
     }
 

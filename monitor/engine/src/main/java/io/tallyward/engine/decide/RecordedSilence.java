@@ -69,7 +69,7 @@ final class RecordedSilence {
     private void checkHeard() {
         boolean silent = total(last) == total(recorded)
                 && !recorded.windowEnd().minus(plan.trust().starvedAfter()).isBefore(last.windowEnd());
-        boolean worse = recorded.trust() == Trust.MISMATCH || recorded.trust() == Trust.CROSSOVER;
+        boolean worse = recorded.trust().compareTo(Trust.STARVED) < 0;
         if (silent && !worse) {
             objections.add(new Objection("silence", "null", "no trial of any variant since " + last.windowEnd()));
         }

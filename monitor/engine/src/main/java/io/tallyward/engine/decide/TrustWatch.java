@@ -38,6 +38,7 @@ final class TrustWatch {
     private final boolean[] leftOut;
     private long streamSilentSince;
     private boolean crossoverComplaint;
+    private boolean orphanComplaint;
     private boolean lateComplaint;
 
     TrustWatch(Plan plan) {
@@ -82,11 +83,13 @@ final class TrustWatch {
      * in records.
      *
      * @param told the complaint that was told, or sound
-     * @param lateBeneath whether there was one about late events beneath it
+     * @param beneath the one that is seen now and may have been beneath it, or sound
      */
-    void standAs(Trust told, boolean lateBeneath) {
+    void standAs(Trust told, Trust beneath) {
         crossoverComplaint = told == Trust.CROSSOVER;
-        lateComplaint = told == Trust.LATE || lateBeneath;
+        orphanComplaint = told == Trust.ORPHANS || (told == Trust.CROSSOVER && beneath == Trust.ORPHANS);
+        boolean worse = told == Trust.STARVED || told == Trust.CROSSOVER || told == Trust.ORPHANS;
+        lateComplaint = told == Trust.LATE || (worse && beneath == Trust.LATE);
     }
 
     boolean isLeftOut(int variant) {
@@ -127,18 +130,26 @@ final class TrustWatch {
      * @param concluded whether every verdict has been told: whoever follows it stops showing the variants, so that
      *     silence is what is to be expected
      */
-    Judgement judge(long windowEnd, double splitPValue, OutcomeCounts outcomes, boolean concluded) {
-        return judge(windowEnd, splitPValue, outcomes, concluded ? Optional.empty() : silence(windowEnd));
+    Judgement judge(
+            long windowEnd, double splitPValue, OutcomeCounts outcomes, CumulativeCounts counts, boolean concluded) {
+        return judge(windowEnd, splitPValue, outcomes, counts, concluded ? Optional.empty() : silence(windowEnd));
     }
 
     /** The same with what is silent, if anything is. */
-    Judgement judge(long windowEnd, double splitPValue, OutcomeCounts outcomes, Optional<Silence> silence) {
+    Judgement judge(
+            long windowEnd,
+            double splitPValue,
+            OutcomeCounts outcomes,
+            CumulativeCounts counts,
+            Optional<Silence> silence) {
         TrustLimits limits = plan.trust();
         long admitted = outcomes.total();
         double crossovers = share(outcomes.get(Outcome.CROSSOVER), admitted);
         double late = share(outcomes.get(Outcome.LATE), admitted);
         crossoverComplaint = exceeds(crossovers, limits.crossoverShare(), admitted, crossoverComplaint);
         lateComplaint = exceeds(late, limits.lateShare(), admitted, lateComplaint);
+        OrphanGap gap = OrphanGap.widest(plan, outcomes, counts, leftOut);
+        orphanComplaint = gap.difference() > (orphanComplaint ? RECOVERY : 1) * limits.orphanGap();
         if (splitPValue <= plan.splitCheck().alpha()) {
             return new Judgement(
                     Trust.MISMATCH,
@@ -152,6 +163,9 @@ final class TrustWatch {
                     text(
                             "%.2f %% of events are of units under another variant than their first (limit %.2f %%)",
                             100 * crossovers, 100 * limits.crossoverShare()));
+        }
+        if (orphanComplaint) {
+            return new Judgement(Trust.ORPHANS, gap.words(plan));
         }
         if (silence.isPresent()) {
             return new Judgement(Trust.STARVED, words(silence.get(), windowEnd), silence.get());
@@ -212,6 +226,7 @@ final class TrustWatch {
         }
         out.writeLong(streamSilentSince);
         out.writeBoolean(crossoverComplaint);
+        out.writeBoolean(orphanComplaint);
         out.writeBoolean(lateComplaint);
     }
 
@@ -223,6 +238,7 @@ final class TrustWatch {
         }
         streamSilentSince = in.readLong();
         crossoverComplaint = in.readBoolean();
+        orphanComplaint = in.readBoolean();
         lateComplaint = in.readBoolean();
     }
 }

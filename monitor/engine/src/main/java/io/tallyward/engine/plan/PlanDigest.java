@@ -29,6 +29,7 @@ public final class PlanDigest {
         digest.real(plan.trust().crossoverShare())
                 .real(plan.trust().lateShare())
                 .number(plan.trust().starvedAfter().toMillis());
+        addOrphanGap(digest, plan.trust().orphanGap());
         digest.number(plan.run().from().toEpochMilli())
                 .number(plan.run().atLeast().toMillis())
                 .number(plan.run().atMost().toMillis());
@@ -40,6 +41,13 @@ public final class PlanDigest {
             }
         }
         return digest.hex();
+    }
+
+    /** A plan with the usual gap has the digest that it had before there was any. */
+    private static void addOrphanGap(Digest digest, double gap) {
+        if (gap != TrustLimits.DEFAULT_ORPHAN_GAP) {
+            digest.text("orphan-gap").real(gap);
+        }
     }
 
     /** A plan without segments has the digest that it had before there were any. */

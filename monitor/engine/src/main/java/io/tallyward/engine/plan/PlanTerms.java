@@ -53,6 +53,7 @@ public final class PlanTerms {
         terms.put("split-check.segments", String.join(", ", plan.splitCheck().segments()));
         terms.put("trust.crossover-share", String.valueOf(plan.trust().crossoverShare()));
         terms.put("trust.late-share", String.valueOf(plan.trust().lateShare()));
+        terms.put("trust.orphan-gap", String.valueOf(plan.trust().orphanGap()));
         terms.put("trust.starved-after", plan.trust().starvedAfter().toString());
         terms.put("run.from", plan.run().from().toString());
         terms.put("run.at-least", plan.run().atLeast().toString());

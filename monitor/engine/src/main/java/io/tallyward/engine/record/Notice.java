@@ -47,6 +47,8 @@ public record Notice(
         STARVED,
         /** Too many crossovers. */
         CROSSOVER,
+        /** Orphans are more frequent under one variant. */
+        ORPHANS,
         /** Too many late events. */
         LATE,
         /** A change of a frozen plan was refused; the frozen plan stands. */

@@ -35,6 +35,11 @@ public final class RecordDigest {
                     .number(count.successes());
             add(digest, count.unitTotals());
         }
+        long[] orphans = record.outcomes().orphansByVariant();
+        digest.number(orphans.length);
+        for (long orphan : orphans) {
+            digest.number(orphan);
+        }
         for (long outcome : record.outcomes().toArray()) {
             digest.number(outcome);
         }

@@ -8,6 +8,8 @@ public enum Trust {
     MISMATCH,
     /** Too many events of units under a variant other than their first. */
     CROSSOVER,
+    /** Clicks without a view before them are more frequent under one variant: views of it are lost. */
+    ORPHANS,
     /** A variant, or the whole stream, has fallen silent. */
     STARVED,
     /** Too many events arrive after their window was sealed. */

@@ -161,7 +161,12 @@ class CountByViewTest {
     void callsAClickWhoseViewNeverCameAnOrphan() {
         host.feed(click("wide", "ada", "a", 1), view("wide", "ben", "b", 2), click("wide", "ben", "no-such-view", 3))
                 .end();
-        assertEquals(outcomes(Outcome.TRIAL, Outcome.ORPHAN, Outcome.ORPHAN), outcomes());
+        assertEquals(
+                new OutcomeCounts.Builder()
+                        .add(outcomes(Outcome.TRIAL, Outcome.ORPHAN, Outcome.ORPHAN))
+                        .addOrphans(1, 2)
+                        .build(),
+                outcomes());
     }
 
     @Test

@@ -93,7 +93,8 @@ final class CountOracle {
                         .thenComparing(
                                 admitted -> plan.variantIndex(admitted.event().variant())));
         if (trial.isEmpty()) {
-            events.forEach(admitted -> told.add(isView(admitted) ? Outcome.LATE : Outcome.ORPHAN, 1));
+            events.forEach(admitted -> told.addOf(
+                    plan.variantIndex(admitted.event().variant()), isView(admitted) ? Outcome.LATE : Outcome.ORPHAN));
             return;
         }
         Event first = trial.get().event();
@@ -105,7 +106,7 @@ final class CountOracle {
             if (isView(admitted)) {
                 told.add(ofView(first, admitted.event(), admitted == trial.get()), 1);
             } else if (!clickedInTime(plan, first, admitted)) {
-                told.add(ofClickOutOfTime(first, admitted.event()), 1);
+                told.addOf(plan.variantIndex(admitted.event().variant()), ofClickOutOfTime(first, admitted.event()));
             } else if (inTime == 0) {
                 told.add(Outcome.LATE, 1);
             } else {

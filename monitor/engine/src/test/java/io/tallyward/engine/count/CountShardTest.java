@@ -50,6 +50,14 @@ class CountShardTest {
         host.feed(Events.view("fare-chip", "plain", "clock", "tick-" + nextId++, minute));
     }
 
+    /** The same, with some of the orphans naming a variant. */
+    private static OutcomeCounts orphansOf(int variant, long events, OutcomeCounts outcomes) {
+        return new OutcomeCounts.Builder()
+                .add(outcomes)
+                .addOrphans(variant, events)
+                .build();
+    }
+
     private static OutcomeCounts outcomes(Object... pairs) {
         OutcomeCounts.Builder builder = new OutcomeCounts.Builder();
         for (int i = 0; i < pairs.length; i += 2) {
@@ -93,7 +101,8 @@ class CountShardTest {
                 .end();
         assertCells(one(0, WIDE, 4, 2));
         assertEquals(
-                outcomes(Outcome.TRIAL, 4, Outcome.SUCCESS, 2, Outcome.EXPIRED, 1, Outcome.ORPHAN, 1),
+                orphansOf(
+                        WIDE, 1, outcomes(Outcome.TRIAL, 4, Outcome.SUCCESS, 2, Outcome.EXPIRED, 1, Outcome.ORPHAN, 1)),
                 host.outcomes(BANNER));
     }
 
@@ -176,7 +185,9 @@ class CountShardTest {
         host.feed(view("plain", "ada", 9))
                 .feed(click("plain", "ada", 8), click("wide", "ada", 7), click("wide", "ada", 1))
                 .end();
-        assertEquals(outcomes(Outcome.TRIAL, 1, Outcome.ORPHAN, 3), host.outcomes(BANNER));
+        assertEquals(
+                orphansOf(PLAIN, 1, orphansOf(WIDE, 2, outcomes(Outcome.TRIAL, 1, Outcome.ORPHAN, 3))),
+                host.outcomes(BANNER));
     }
 
     @Test
@@ -186,17 +197,17 @@ class CountShardTest {
         assertEquals(1, host.openEvents(BANNER));
         passTo(45);
         assertEquals(0, host.openEvents(BANNER));
-        assertEquals(outcomes(Outcome.ORPHAN, 1), host.outcomes(BANNER));
+        assertEquals(orphansOf(WIDE, 1, outcomes(Outcome.ORPHAN, 1)), host.outcomes(BANNER));
         host.feed(view("wide", "ada", 6)).end();
         assertCells(one(5, WIDE, 1, 0));
-        assertEquals(outcomes(Outcome.ORPHAN, 1, Outcome.TRIAL, 1), host.outcomes(BANNER));
+        assertEquals(orphansOf(WIDE, 1, outcomes(Outcome.ORPHAN, 1, Outcome.TRIAL, 1)), host.outcomes(BANNER));
     }
 
     @Test
     void callsAClickWithoutTrialAnOrphanAtOnceWhenItsWindowIsSealed() {
         passTo(45);
         host.feed(click("wide", "ada", 3));
-        assertEquals(outcomes(Outcome.ORPHAN, 1), host.outcomes(BANNER));
+        assertEquals(orphansOf(WIDE, 1, outcomes(Outcome.ORPHAN, 1)), host.outcomes(BANNER));
         assertEquals(0, host.openEvents(BANNER));
     }
 
@@ -237,21 +248,20 @@ class CountShardTest {
                 .feed(click("plain", "ada", 5), click("wide", "ada", 5))
                 .end();
         assertCells(one(5, WIDE, 1, 1));
-        assertEquals(
-                outcomes(
-                        Outcome.TRIAL,
-                        1,
-                        Outcome.SUCCESS,
-                        1,
-                        Outcome.REPEAT,
-                        3,
-                        Outcome.CROSSOVER,
-                        2,
-                        Outcome.EXPIRED,
-                        1,
-                        Outcome.ORPHAN,
-                        2),
-                host.outcomes(BANNER));
+        OutcomeCounts expected = outcomes(
+                Outcome.TRIAL,
+                1,
+                Outcome.SUCCESS,
+                1,
+                Outcome.REPEAT,
+                3,
+                Outcome.CROSSOVER,
+                2,
+                Outcome.EXPIRED,
+                1,
+                Outcome.ORPHAN,
+                2);
+        assertEquals(orphansOf(PLAIN, 1, orphansOf(WIDE, 1, expected)), host.outcomes(BANNER));
     }
 
     @Test

@@ -93,7 +93,8 @@ final class ViewOracle {
         Set<Event> successes = new HashSet<>();
         for (Admitted admitted : events) {
             if (admitted.event().kind() == EventKind.CLICK) {
-                outcomes.add(click(admitted, first, trials, successes), 1);
+                outcomes.addOf(
+                        plan.variantIndex(admitted.event().variant()), click(admitted, first, trials, successes));
             }
         }
         first.ifPresent(found -> addCells(found, trials, successes));

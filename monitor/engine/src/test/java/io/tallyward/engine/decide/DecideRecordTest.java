@@ -56,7 +56,7 @@ class DecideRecordTest {
                         new Variant("coast", 0.3, false),
                         new Variant("islands", 0.3, false))
                 .counting(Duration.ofMinutes(30), Duration.ofMinutes(10), Duration.ofHours(1))
-                .trust(new TrustLimits(0.02, 0.02, Duration.ofHours(3)))
+                .trust(new TrustLimits(0.02, 0.02, 0.05, Duration.ofHours(3)))
                 .smallestEffect(0.03)
                 .atMost(Duration.ofHours(WINDOWS))
                 .epochs(new AllocationEpoch(

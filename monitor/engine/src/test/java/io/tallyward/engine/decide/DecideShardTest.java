@@ -62,7 +62,7 @@ class DecideShardTest {
     private static Plans days(String experiment) {
         return Plans.plan(experiment)
                 .counting(Duration.ofMinutes(30), Duration.ofMinutes(10), Duration.ofDays(1))
-                .trust(new TrustLimits(0.02, 0.02, Duration.ofDays(30)));
+                .trust(new TrustLimits(0.02, 0.02, 0.05, Duration.ofDays(30)));
     }
 
     private final DecideHost host = new DecideHost(FIVE_DAYS);

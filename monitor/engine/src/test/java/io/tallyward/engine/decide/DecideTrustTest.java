@@ -33,7 +33,7 @@ class DecideTrustTest {
     private static Plans hours() {
         return Plans.plan("cabin-upsell")
                 .counting(Duration.ofMinutes(30), Duration.ofMinutes(10), Duration.ofHours(1))
-                .trust(new TrustLimits(0.02, 0.02, Duration.ofHours(6)))
+                .trust(new TrustLimits(0.02, 0.02, 0.05, Duration.ofHours(6)))
                 .lookEvery(Duration.ofHours(12))
                 .smallestEffect(0.01)
                 .atMost(Duration.ofDays(2));
@@ -170,6 +170,36 @@ class DecideTrustTest {
     @Test
     void complainsOfLateEventsAboveTheLimitAndRecoversWellBelowIt() {
         complainsAndRecovers(Outcome.LATE, Trust.LATE, "late");
+    }
+
+    @Test
+    void complainsOfOrphansThatAreMoreFrequentUnderOneVariantAndRecoversWellBelowIt() {
+        host.next(orphans(30, 49), 1000, 700, 1000, 701);
+        assertEquals(Trust.SOUND, host.view().trust(), "730 clicks of plain are too few to compare");
+        host.next(orphans(0, 80), 1000, 300, 1000, 300);
+        assertEquals(Trust.ORPHANS, host.view().trust(), "129 of 1130 clicks of wide, 30 of 1030 of plain");
+        assertTrue(
+                host.notices().get(0).summary().contains("11.42 % of the clicks under wide have no view before them"),
+                host.notices().get(0).summary());
+        host.next(orphans(0, 0), 1000, 500, 1000, 500);
+        assertEquals(Trust.ORPHANS, host.view().trust(), "7.9 % to 2.0 %: not much below");
+        host.next(orphans(0, 0), 2000, 1500, 2000, 1500);
+        assertEquals(Trust.SOUND, host.view().trust(), "4.1 % to 1.0 %");
+        assertEquals(List.of("orphans", "recovered"), host.noticeKinds());
+    }
+
+    @Test
+    void orphansThatAreAsFrequentUnderEveryVariantAreNoComplaint() {
+        host.next(orphans(400, 500), 2000, 1000, 2000, 1250);
+        assertEquals(Trust.SOUND, host.view().trust(), "more clicks under a better variant have more orphans");
+    }
+
+    private static OutcomeCounts orphans(long plain, long wide) {
+        return new OutcomeCounts.Builder()
+                .add(Outcome.ORPHAN, plain + wide)
+                .addOrphans(0, plain)
+                .addOrphans(1, wide)
+                .build();
     }
 
     private void complainsAndRecovers(Outcome outcome, Trust trust, String kind) {

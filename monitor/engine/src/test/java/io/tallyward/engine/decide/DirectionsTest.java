@@ -38,7 +38,7 @@ class DirectionsTest {
     private static Plans days(String experiment) {
         return Plans.plan(experiment)
                 .counting(Duration.ofMinutes(30), Duration.ofMinutes(10), Duration.ofDays(1))
-                .trust(new TrustLimits(0.02, 0.02, Duration.ofDays(30)));
+                .trust(new TrustLimits(0.02, 0.02, 0.05, Duration.ofDays(30)));
     }
 
     private static Comparison lookAfter(DecideHost host, int days) {

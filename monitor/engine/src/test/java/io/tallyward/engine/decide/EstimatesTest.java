@@ -41,7 +41,7 @@ class EstimatesTest {
     private static Plans days() {
         return Plans.plan("quay-banner")
                 .counting(Duration.ofMinutes(30), Duration.ofMinutes(10), Duration.ofDays(1))
-                .trust(new TrustLimits(0.02, 0.02, Duration.ofDays(30)));
+                .trust(new TrustLimits(0.02, 0.02, 0.05, Duration.ofDays(30)));
     }
 
     /** At a first look the stage-wise ordering is that of z: the textbook p-value and interval of a single look. */

@@ -29,7 +29,7 @@ class ScoreClockTest {
     private static Plans twoDays(Family family) {
         return Plans.plan("quay-banner")
                 .counting(Duration.ofMinutes(30), Duration.ofMinutes(10), Duration.ofDays(1))
-                .trust(new TrustLimits(0.02, 0.02, Duration.ofDays(30)))
+                .trust(new TrustLimits(0.02, 0.02, 0.05, Duration.ofDays(30)))
                 .spending(Spending.of(family))
                 .atMost(Duration.ofDays(2));
     }

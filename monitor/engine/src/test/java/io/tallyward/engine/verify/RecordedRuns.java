@@ -33,6 +33,11 @@ public final class RecordedRuns {
             .add(Outcome.CROSSOVER, 60)
             .add(Outcome.ORPHAN, 3)
             .build();
+    private static final OutcomeCounts ORPHANED = new OutcomeCounts.Builder()
+            .add(Outcome.ORPHAN, 110)
+            .addOrphans(0, 10)
+            .addOrphans(1, 100)
+            .build();
     private static final double[] EVEN = {0.5, 0.5};
 
     private RecordedRuns() {}
@@ -134,6 +139,7 @@ public final class RecordedRuns {
         runs.put("mismatch by segment", mismatch());
         runs.put("held and told", held());
         runs.put("late and crossed", complaints());
+        runs.put("orphans of one variant", orphans());
         runs.put(
                 "several challengers that pass on",
                 run(hourly("fare-chip").variants(three()).segments("release").build(), 8)
@@ -188,6 +194,14 @@ public final class RecordedRuns {
                 .next(9, 6, OutcomeCounts.NONE, new double[] {1, 0}, 0.2, 0.26)
                 .next(3, 20, 0.2, 0.26)
                 .quiet(10)
+                .records();
+    }
+
+    private static List<DecisionRecord> orphans() {
+        return run(hourly("pier-lights").build(), 15)
+                .next(10, 3000, 0.2, 0.2)
+                .next(6, 3000, ORPHANED, EVEN, 0.2, 0.2)
+                .next(50, 3000, 0.2, 0.2)
                 .records();
     }
 

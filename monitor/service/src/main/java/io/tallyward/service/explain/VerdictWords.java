@@ -103,6 +103,9 @@ final class VerdictWords {
                 "find where units of one variant are lost or counted twice (assignment, redirects, logging, filters); a split"
                         + " that went wrong does not heal, so begin a new experiment once it is mended.";
             case CROSSOVER -> "see to it that a unit keeps its variant across pages, devices and releases.";
+            case ORPHANS ->
+                "find where views of that variant are lost, between page and topic; its trials lack them too, so begin a new"
+                        + " experiment once it is mended.";
             case STARVED -> "check whether events reach the topic at all, and whether the variant is still shown.";
             case LATE -> "find what delays the events between the site and the topic.";
         };

@@ -160,6 +160,12 @@ final class Wording {
                         "Crossovers",
                         "Too many units were seen under a second variant. Verdicts are withheld.",
                         "Do not act on the rates. Check that a unit keeps its variant across devices, sessions and caches.");
+            case ORPHANS ->
+                new Words(
+                        "!",
+                        "Orphans",
+                        "Clicks without a view before them are more frequent under one variant. Verdicts are withheld.",
+                        "Do not act on the rates. Find where views of that variant are lost; its trials lack them too.");
             case STARVED ->
                 new Words(
                         "!",

@@ -205,12 +205,17 @@ public final class PlanKeys {
                 share(),
                 String.valueOf(TrustLimits.DEFAULT.lateShare()),
                 "Largest tolerated share of late events.");
+        static final Key<Double> ORPHAN_GAP = Key.withDefault(
+                "orphan-gap",
+                share(),
+                String.valueOf(TrustLimits.DEFAULT_ORPHAN_GAP),
+                "Largest tolerated difference of the share of orphans among a variant's clicks and the others'.");
         static final Key<Duration> STARVED_AFTER = Key.withDefault(
                 "starved-after",
                 duration(SECOND, WEEK),
                 TrustLimits.DEFAULT.starvedAfter().toString(),
                 "How long a variant may go without trials.");
-        static final Shape SHAPE = Shape.of(CROSSOVER_SHARE, LATE_SHARE, STARVED_AFTER);
+        static final Shape SHAPE = Shape.of(CROSSOVER_SHARE, LATE_SHARE, ORPHAN_GAP, STARVED_AFTER);
     }
 
     static final class Run {

@@ -144,6 +144,7 @@ public final class PlanReader {
         return new TrustLimits(
                 trust.get(PlanKeys.Trust.CROSSOVER_SHARE),
                 trust.get(PlanKeys.Trust.LATE_SHARE),
+                trust.get(PlanKeys.Trust.ORPHAN_GAP),
                 trust.get(PlanKeys.Trust.STARVED_AFTER));
     }
 

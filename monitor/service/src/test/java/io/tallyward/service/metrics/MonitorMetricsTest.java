@@ -110,6 +110,7 @@ class MonitorMetricsTest {
                         "tallyward_verdict{experiment=\"quay-banner\",state=\"stopped\",} 0.0",
                         "tallyward_trust{experiment=\"quay-banner\",state=\"mismatch\",} 0.0",
                         "tallyward_trust{experiment=\"quay-banner\",state=\"crossover\",} 0.0",
+                        "tallyward_trust{experiment=\"quay-banner\",state=\"orphans\",} 0.0",
                         "tallyward_trust{experiment=\"quay-banner\",state=\"starved\",} 0.0",
                         "tallyward_trust{experiment=\"quay-banner\",state=\"late\",} 0.0",
                         "tallyward_trust{experiment=\"quay-banner\",state=\"sound\",} 1.0"),

@@ -135,6 +135,11 @@ class PlanChangeTest {
                         "crossover-share: 0.03",
                         "trust.crossover-share"),
                 new Change("trust.late-share", "late-share: 0.02", "late-share: 0.03", "trust.late-share"),
+                new Change(
+                        "trust.orphan-gap",
+                        "late-share: 0.02,",
+                        "late-share: 0.02, orphan-gap: 0.1,",
+                        "trust.orphan-gap"),
                 new Change("trust.starved-after", "after: PT6H", "after: PT7H", "trust.starved-after"),
                 new Change("run.from", "from: 2026-05-04T00:00:00Z", "from: 2026-05-04T00:05:00Z", "run.from"),
                 new Change("run.at-least", "at-least: P7D", "at-least: P14D", "run.at-least"),

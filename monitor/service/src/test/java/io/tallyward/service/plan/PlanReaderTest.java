@@ -120,7 +120,7 @@ class PlanReaderTest {
         assertEquals(new LookSchedule.AtFractions(List.of(0.25, 0.5, 0.75, 1.0)), plan.looks());
         assertEquals(Optional.of(new FutilityPlan.ErrorSpending(new Spending(Family.KIM_DEMETS, 3))), plan.futility());
         assertEquals(new SplitCheckPlan(0.01, List.of("platform", "version")), plan.splitCheck());
-        assertEquals(new TrustLimits(0.05, 0.01, Duration.ofHours(2)), plan.trust());
+        assertEquals(new TrustLimits(0.05, 0.01, 0.05, Duration.ofHours(2)), plan.trust());
         assertEquals(
                 new Run(Instant.parse("2026-05-03T22:00:00Z"), Duration.ofDays(7), Duration.ofDays(14)), plan.run());
         assertEquals(
