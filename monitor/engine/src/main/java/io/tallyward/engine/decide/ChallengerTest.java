@@ -2,11 +2,8 @@ package io.tallyward.engine.decide;
 
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.TestPlan.Better;
-import io.tallyward.engine.plan.TestPlan.InformationMeasure;
-import io.tallyward.engine.plan.TestPlan.SpendingClock;
 import io.tallyward.engine.plan.Variant;
 import io.tallyward.engine.record.Verdict;
-import io.tallyward.statistics.boundary.BoundarySequence;
 import io.tallyward.statistics.boundary.Look;
 import java.io.DataInput;
 import java.io.DataOutput;
@@ -35,6 +32,7 @@ final class ChallengerTest {
     private final int variant;
     private final Readiness readiness;
     private final LookCalendar calendar;
+    private final LookClocks clocks;
     private final DecisionMemo memo;
     private final String planDigest;
     private final Detail detail;
@@ -58,6 +56,7 @@ final class ChallengerTest {
         variant = plan.variantIndex(challenger.name());
         readiness = new Readiness(plan, variant);
         calendar = new LookCalendar(plan);
+        clocks = new LookClocks(plan);
         initialLevels = TailLevels.initial(plan, plan.challengers().indexOf(challenger));
         levels = initialLevels;
     }
@@ -118,8 +117,10 @@ final class ChallengerTest {
      */
     Attempt attempt(CumulativeCounts counts, long windowEnd, boolean runEnds, boolean sound) {
         Optional<Evidence> evidence = counts.evidence(variant);
-        double fraction = evidence.map(this::fraction).orElse(0.0);
-        double clock = evidence.map(found -> clock(found, fraction, windowEnd, runEnds))
+        double fraction =
+                evidence.map(found -> clocks.fraction(found, design())).orElse(0.0);
+        double clock = evidence.map(
+                        found -> clocks.correlation(found, design(), fraction, windowEnd, runEnds, lastLook()))
                 .orElse(0.0);
         boolean minimumRunOver = minimumRunOver(windowEnd);
         if (!runEnds && !calendar.isDue(windowEnd, fraction, minimumRunOver)) {
@@ -131,7 +132,7 @@ final class ChallengerTest {
         boolean cutShort = runEnds && plan.end().isBefore(plan.run().end());
         boolean benefitOpen = minimumRunOver || (runEnds && !cutShort);
         boolean last = runEnds || (fraction >= 1 && benefitOpen);
-        double time = last && !cutShort ? 1 : spendingTime(fraction, windowEnd);
+        double time = last && !cutShort ? 1 : clocks.spending(fraction, windowEnd);
         Optional<String> caution = readiness.tooSkew(
                 evidence.get().skewness(),
                 () -> TailSpending.at(plan, levels, time, benefitOpen),
@@ -155,43 +156,6 @@ final class ChallengerTest {
                         .collect(Collectors.joining("; ")));
         calendar.taken(windowEnd, fraction);
         return new Attempt.Taken(judge(sound));
-    }
-
-    private double fraction(Evidence found) {
-        double planned = design().maximumInformation();
-        if (plan.test().measure() == InformationMeasure.OBSERVED) {
-            return found.information() / planned;
-        }
-        double pooled = design().pooledRate();
-        return found.weight() / (planned * pooled * (1 - pooled));
-    }
-
-    /**
-     * What the correlation of looks goes by: information, while there is a single stratum. With allocation epochs whose rates
-     * may differ it is the variance of the score, on the scale of the plan, or from the last look on where an amendment began the
-     * epochs. The same at the end of a run whose information has
-     * not grown since the last look though counts came in, because the rates moved: from that look on, then, by the score.
-     */
-    private double clock(Evidence found, double fraction, long windowEnd, boolean runEnds) {
-        double clock = fraction;
-        boolean several = plan.epochAt(windowEnd - 1) > 0;
-        if (!plan.epochs().isEmpty() || (several && looks.isEmpty())) {
-            double pooled = design().pooledRate() * (1 - design().pooledRate());
-            clock = found.scoreVariance() / (design().maximumInformation() * pooled * pooled);
-        } else if (several || (runEnds && !looks.isEmpty() && Readiness.clockStands(fraction, lastClock()))) {
-            clock = lastClock()
-                    * found.scoreVariance()
-                    / looks.lastEntry().getValue().scoreVariance();
-        }
-        return StrictMath.min(clock, BoundarySequence.MOST);
-    }
-
-    private double spendingTime(double fraction, long windowEnd) {
-        if (plan.test().clock() == SpendingClock.INFORMATION) {
-            return StrictMath.min(fraction, 1);
-        }
-        long elapsed = windowEnd - plan.run().from().toEpochMilli();
-        return StrictMath.min((double) elapsed / plan.run().atMost().toMillis(), 1);
     }
 
     /** A look before the end of the run waits for information, and for counts that the normal law describes. */
