@@ -48,6 +48,9 @@ class DecidedStoriesIT {
                         (properties, topic, values) -> {
                             throw new AssertionError("a topic was read");
                         },
+                        (properties, topics, from, to, records) -> {
+                            throw new AssertionError("the input was read");
+                        },
                         () -> {})
                 .setOut(new PrintWriter(out))
                 .setErr(new PrintWriter(err));

@@ -1,6 +1,7 @@
 package io.tallyward.service;
 
 import io.tallyward.connector.kafka.CommittedTopic;
+import io.tallyward.connector.kafka.InputLog;
 import io.tallyward.connector.kafka.InternalTopics;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanChangedException;
@@ -29,6 +30,7 @@ public final class Tallyward {
                         (config, plans) -> start(config, plans, stop),
                         InternalTopics::partitions,
                         CommittedTopic::read,
+                        InputLog::read,
                         stop)
                 .execute(arguments);
         stop.ended(status);

@@ -52,6 +52,7 @@ public final class CommandLineFactory {
      * @param starter starts the service
      * @param lookup asks the brokers about topics
      * @param reading reads topics
+     * @param inputs reads input topics once more
      * @param stop tells the service to stop
      */
     public static CommandLine of(
@@ -59,13 +60,14 @@ public final class CommandLineFactory {
             ServiceStarter starter,
             TopicLookup lookup,
             TopicReading reading,
+            InputReading inputs,
             StopSignal stop) {
         return new CommandLine(new Root())
                 .addSubcommand(new WatchCommand(environment, starter, stop))
                 .addSubcommand(new CheckCommand(environment, lookup))
                 .addSubcommand(new BoundariesCommand())
                 .addSubcommand(new RehearseCommand())
-                .addSubcommand(new ReplayCommand())
+                .addSubcommand(new ReplayCommand(environment, new InputTopics.Brokers(lookup, reading, inputs)))
                 .addSubcommand(new VerifyCommand(environment, reading))
                 .addSubcommand(new ExplainCommand(environment, reading))
                 .addSubcommand(new SchemaCommand())

@@ -2,7 +2,6 @@ package io.tallyward.service.command;
 
 import io.tallyward.engine.event.RejectReason;
 import io.tallyward.service.config.document.Problem;
-import java.nio.file.Path;
 import java.util.ArrayList;
 import java.util.Comparator;
 import java.util.EnumMap;
@@ -11,7 +10,7 @@ import java.util.List;
 import java.util.Map;
 
 /**
- * Which records of a file were rejected: how many for each reason, and of each reason the first few different kinds, with
+ * Which records of an input were rejected: how many for each reason, and of each reason the first few different kinds, with
  * their first record.
  */
 final class Rejections {
@@ -19,22 +18,34 @@ final class Rejections {
     /** More different problems of one reason than this are only counted. */
     private static final int MOST_KINDS = 5;
 
-    /** Records with the same problem: the line of the first of them, and how many. */
+    /**
+     * Where a record lies.
+     *
+     * @param name the file, or the partition and offset
+     * @param line its line in the file, from 1; 0 where there are no lines
+     */
+    record Origin(String name, long line) {}
+
+    /** Records with the same problem: where the first of them lies, and how many. */
     private static final class Kind {
         private final RejectReason reason;
-        private final long line;
+        private final Origin first;
+        private final int order;
         private final String detail;
         private long records;
 
-        Kind(RejectReason reason, long line, String detail) {
+        Kind(RejectReason reason, Origin first, int order, String detail) {
             this.reason = reason;
-            this.line = line;
+            this.first = first;
+            this.order = order;
             this.detail = detail;
         }
     }
 
     private final Map<RejectReason, Long> counts = new EnumMap<>(RejectReason.class);
     private final Map<RejectReason, Map<String, Kind>> kinds = new EnumMap<>(RejectReason.class);
+
+    private int order;
 
     Rejections() {
         for (RejectReason reason : RejectReason.values()) {
@@ -46,14 +57,14 @@ final class Rejections {
     /**
      * Takes one record.
      *
-     * @param line its line in the file, from 1
+     * @param origin where it lies
      * @param detail what is wrong with it, for people; never the identifier of a unit
      */
-    void add(RejectReason reason, long line, String detail) {
+    void add(RejectReason reason, Origin origin, String detail) {
         counts.merge(reason, 1L, Long::sum);
         Map<String, Kind> known = kinds.get(reason);
         if (known.size() < MOST_KINDS) {
-            known.putIfAbsent(detail, new Kind(reason, line, detail));
+            known.putIfAbsent(detail, new Kind(reason, origin, order++, detail));
         }
         Kind kind = known.get(detail);
         if (kind != null) {
@@ -66,15 +77,19 @@ final class Rejections {
         return counts;
     }
 
-    /** The first record of each kind, by line, as in {@code bad.jsonl:51: unparsable: ... (2 of this kind)}. */
-    List<Problem> problems(Path file) {
+    /**
+     * The first record of each kind, in the order they came, as in {@code bad.jsonl:51: unparsable: ... (2 of this kind)}.
+     *
+     * @param input what the input as a whole is called
+     */
+    List<Problem> problems(String input) {
         List<Problem> problems = new ArrayList<>();
         kinds.values().stream()
                 .flatMap(known -> known.values().stream())
-                .sorted(Comparator.comparingLong(kind -> kind.line))
+                .sorted(Comparator.comparingInt(kind -> kind.order))
                 .map(kind -> new Problem(
-                        file.toString(),
-                        Math.toIntExact(Math.min(kind.line, Integer.MAX_VALUE)),
+                        kind.first.name(),
+                        Math.toIntExact(Math.min(kind.first.line(), Integer.MAX_VALUE)),
                         kind.reason.code(),
                         kind.detail + " (" + kind.records + " of this kind)",
                         "",
@@ -84,7 +99,7 @@ final class Rejections {
             long shown = known.values().stream().mapToLong(kind -> kind.records).sum();
             if (shown < counts.get(reason)) {
                 problems.add(new Problem(
-                        file.toString(),
+                        input,
                         0,
                         reason.code(),
                         (counts.get(reason) - shown) + " more, for other details than these",

@@ -16,6 +16,7 @@ import io.tallyward.engine.event.Event;
 import io.tallyward.engine.event.RejectReason;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.record.DecisionRecord;
+import io.tallyward.service.command.Rejections.Origin;
 import io.tallyward.service.config.document.ScalarType;
 import java.nio.charset.StandardCharsets;
 import java.time.Instant;
@@ -23,81 +24,139 @@ import java.util.ArrayList;
 import java.util.Comparator;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.SortedMap;
 import java.util.TreeMap;
+import org.apache.kafka.clients.consumer.ConsumerRecord;
 
 /**
- * Counts and decides over a finite stream of events, with the shards that the service runs and nothing else: no broker, no
- * clock. Memory grows with units and windows, not with events.
+ * Counts and decides over a finite stream of records, with the shards that the service runs and nothing else: no clock, no
+ * side effects. Memory grows with units and windows, not with events.
  */
 final class Replay {
 
-    /** Longer records are rejected; of such a record no more than this and one byte need be given. */
+    /** Longer lines of a file are rejected; of such a line no more than this and one byte need be given. */
     static final int MAX_EVENT_BYTES = 65_536;
+
+    /** A replay forgets its units at its end, so their hash needs no secret. */
+    static final byte[] UNIT_KEY = "replay".getBytes(StandardCharsets.UTF_8);
 
     /** How many events are taken between two drains; any number gives the same results. */
     private static final int EVENTS_PER_DRAIN = 10_000;
-
-    /** Keeps the hosts' one input topic. */
-    private static final int SOURCE = 0;
 
     private final SortedMap<String, Plan> plans = new TreeMap<>();
     private final List<CountShard> counting = new ArrayList<>();
     private final DecideShard deciding;
     private final JsonEventReader reader;
+    private final int maxEventBytes;
     private final String maxSkew;
     private final Rejections rejections = new Rejections();
     private final SortedMap<WindowKey, long[][]> windows = new TreeMap<>();
     private final List<DecisionRecord> decisions = new ArrayList<>();
     private long events;
+    private boolean sealed;
 
-    /** A replay over {@code partitions} partitions; the events of a unit always meet in one. */
-    Replay(List<Plan> plans, int partitions, CountSettings settings) {
+    /**
+     * A replay that has taken nothing yet.
+     *
+     * @param plans the plans to count under, one per experiment
+     * @param partitions as many the input has
+     * @param sources the input topics
+     * @param settings settings of the stream
+     * @param mapping where the fields of an event lie in a record
+     * @param maxEventBytes longer records are rejected
+     */
+    Replay(
+            List<Plan> plans,
+            int partitions,
+            List<String> sources,
+            CountSettings settings,
+            EventMapping mapping,
+            int maxEventBytes) {
         plans.forEach(plan -> this.plans.put(plan.experiment(), plan));
         for (int partition = 0; partition < partitions; partition++) {
-            counting.add(new CountShard(partition, partitions, plans, settings, List.of("events")));
+            counting.add(new CountShard(partition, partitions, plans, settings, sources));
         }
         this.deciding = new DecideShard(plans);
-        this.reader = new JsonEventReader(EventMapping.DEFAULT, MAX_EVENT_BYTES);
+        this.reader = new JsonEventReader(mapping, maxEventBytes);
+        this.maxEventBytes = maxEventBytes;
         this.maxSkew = ScalarType.written(settings.maxSkew());
     }
 
     /**
-     * Takes the next record.
+     * Takes the next line of a file: received when it says so, and in the partition that its unit has as a key.
      *
-     * @param value the bytes of the record
+     * @param value the bytes of the line
+     * @param file the file, as the user named it
      * @param line where it stands in the file, from 1
      */
-    void take(byte[] value, long line) {
+    void take(byte[] value, String file, long line) {
+        Origin origin = new Origin(file, line);
+        event(value, origin).ifPresent(accepted -> {
+            Event event = accepted.event();
+            long timestamp = accepted.receivedMillis().orElse(event.atMillis());
+            apply(shardOf(event.unit()), 0, timestamp, event, origin);
+        });
+        drainNowAndThen();
+    }
+
+    /**
+     * Takes the next record of a partition.
+     *
+     * @param source which of the input topics it is from
+     */
+    void take(ConsumerRecord<byte[], byte[]> record, int source) {
+        Origin origin = new Origin(record.topic() + "-" + record.partition() + "@" + record.offset(), 0);
+        event(record.value(), origin)
+                .ifPresent(accepted ->
+                        apply(counting.get(record.partition()), source, record.timestamp(), accepted.event(), origin));
+        drainNowAndThen();
+    }
+
+    private Optional<Decoded.Accepted> event(byte[] value, Origin origin) {
         events++;
         Decoded decoded = reader.read(value);
         if (decoded instanceof Decoded.Refused refused) {
-            boolean cut = value.length > MAX_EVENT_BYTES;
-            String detail = cut ? "the record has more than " + MAX_EVENT_BYTES + " bytes" : refused.detail();
-            rejections.add(refused.reason(), line, detail);
-        } else if (decoded instanceof Decoded.Accepted accepted) {
-            Event event = accepted.event();
-            long timestamp = accepted.receivedMillis().orElse(event.atMillis());
-            shardOf(event.unit())
-                    .apply(SOURCE, timestamp, event)
-                    .ifPresent(reason -> rejections.add(reason, line, detail(reason, event, timestamp)));
+            boolean cut = value != null && value.length > maxEventBytes;
+            String detail = cut ? "the record has more than " + maxEventBytes + " bytes" : refused.detail();
+            rejections.add(refused.reason(), origin, detail);
         }
+        return decoded instanceof Decoded.Accepted accepted ? Optional.of(accepted) : Optional.empty();
+    }
+
+    private void apply(CountShard shard, int source, long timestamp, Event event, Origin origin) {
+        shard.apply(source, timestamp, event)
+                .ifPresent(reason -> rejections.add(reason, origin, detail(reason, event, timestamp)));
+    }
+
+    private void drainNowAndThen() {
         if (events % EVENTS_PER_DRAIN == 0) {
             drain();
         }
     }
 
+    /** Ends with what is sealed: more records may follow these, and the service has decided no further than this either. */
+    void finish() {
+        drain();
+    }
+
     /**
-     * Seals everything: there are no more records. Time ends with the last event of an experiment, or with its run if any
-     * event came after that, so that the end of a file is not taken for silence.
+     * Ends with everything sealed: there are no more records. Time ends with the last event of an experiment, or with its run
+     * if any event came after that, so that the end of a file is not taken for silence.
      */
-    void end() {
+    void seal() {
         Map<String, Long> farthest = new TreeMap<>();
         for (CountShard shard : counting) {
             shard.reach().forEach((experiment, moment) -> farthest.merge(experiment, moment, Math::max));
         }
         counting.forEach(shard -> shard.endOfInput(farthest));
+        sealed = true;
         drain();
+    }
+
+    /** Whether windows were sealed that more records might still have changed. */
+    boolean sealed() {
+        return sealed;
     }
 
     private CountShard shardOf(String unit) {

@@ -48,13 +48,16 @@ final class ReplayText {
 
     private List<String> legend() {
         List<String> lines = new ArrayList<>();
-        lines.add("Windows still open at the end of the file are counted too.");
+        lines.add(
+                replay.sealed()
+                        ? "Windows still open at the end of the input are counted too."
+                        : "Windows still open at the end of the input are not counted yet; --seal-open counts them.");
         if (replay.decisions().stream()
                 .anyMatch(decision -> !decision.comparisons().isEmpty())) {
             lines.addAll(BoundariesText.wrapped(
                     "At each look z, of variant minus control, is held against its boundaries; information is the share of"
                             + " the planned information that was in. What a comparison ended with rests on the counts of"
-                            + " that look; later ones are in the counts at the end of the file and change no verdict.",
+                            + " that look; later ones are in the counts at the end of the input and change no verdict.",
                     0));
         }
         return lines;
@@ -63,7 +66,7 @@ final class ReplayText {
     private List<String> experiment(Plan plan, List<DecisionRecord> decisions) {
         List<String> lines = new ArrayList<>();
         lines.add(plan.experiment() + ": " + standing(plan.experiment(), decisions));
-        lines.add("counts at the end of the file");
+        lines.add("counts at the end of the input");
         lines.addAll(counts(plan).lines());
         if (decisions.stream().anyMatch(decision -> !decision.comparisons().isEmpty())) {
             lines.addAll(looks(decisions).lines());

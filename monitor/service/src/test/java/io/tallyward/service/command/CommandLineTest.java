@@ -59,10 +59,11 @@ class CommandLineTest {
                 "  3   Something unforeseen happened.");
         assertEnds(
                 "replay",
-                "  0   The file was read to its end; rejected records are told and change",
+                "  0   The input was read to its end; rejected records are told and change",
                 "        nothing here.",
-                "  2   An argument, a plan or the file of events cannot be used.",
-                "  3   Something unforeseen happened.");
+                "  2   An argument, a plan, the configuration or the file of events cannot be",
+                "        used.",
+                "  3   The broker does not answer or refuses.");
     }
 
     private static void assertEnds(String command, String... lines) {

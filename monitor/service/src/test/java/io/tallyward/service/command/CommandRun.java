@@ -36,6 +36,22 @@ record CommandRun(int status, List<String> out, List<String> err) {
                     throw new AssertionError("the broker was asked");
                 },
                 reading,
+                (properties, topics, from, to, records) -> {
+                    throw new AssertionError("the input was read");
+                },
+                () -> {},
+                arguments);
+    }
+
+    /** A run that reads topics of a broker. */
+    static CommandRun of(TopicLookup lookup, TopicReading reading, InputReading inputs, String... arguments) {
+        return of(
+                (config, plans) -> {
+                    throw new AssertionError("the service was started");
+                },
+                lookup,
+                reading,
+                inputs,
                 () -> {},
                 arguments);
     }
@@ -47,15 +63,23 @@ record CommandRun(int status, List<String> out, List<String> err) {
                 (properties, topic, values) -> {
                     throw new AssertionError("a topic was read");
                 },
+                (properties, topics, from, to, records) -> {
+                    throw new AssertionError("the input was read");
+                },
                 stop,
                 arguments);
     }
 
     private static CommandRun of(
-            ServiceStarter starter, TopicLookup lookup, TopicReading reading, StopSignal stop, String... arguments) {
+            ServiceStarter starter,
+            TopicLookup lookup,
+            TopicReading reading,
+            InputReading inputs,
+            StopSignal stop,
+            String... arguments) {
         StringWriter out = new StringWriter();
         StringWriter err = new StringWriter();
-        CommandLine commandLine = CommandLineFactory.of(Map.of(), starter, lookup, reading, stop)
+        CommandLine commandLine = CommandLineFactory.of(Map.of(), starter, lookup, reading, inputs, stop)
                 .setOut(new PrintWriter(out))
                 .setErr(new PrintWriter(err));
         int status = commandLine.execute(arguments);

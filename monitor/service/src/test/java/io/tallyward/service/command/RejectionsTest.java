@@ -4,22 +4,21 @@ import static org.junit.jupiter.api.Assertions.assertEquals;
 
 import io.tallyward.engine.event.RejectReason;
 import io.tallyward.service.config.document.Problem;
-import java.nio.file.Path;
 import java.util.List;
 import org.junit.jupiter.api.Test;
 
 class RejectionsTest {
 
-    private static final Path FILE = Path.of("bad.jsonl");
+    private static final String FILE = "bad.jsonl";
 
     private final Rejections rejections = new Rejections();
 
     @Test
     void tellsEveryKindOfProblem() {
-        rejections.add(RejectReason.MISSING_FIELD, 3, "kind at /kind: missing");
-        rejections.add(RejectReason.BAD_TIME, 4, "at at /at: \"yesterday\"");
-        rejections.add(RejectReason.MISSING_FIELD, 5, "kind at /kind: \"hover\"");
-        rejections.add(RejectReason.MISSING_FIELD, 6, "kind at /kind: missing");
+        rejections.add(RejectReason.MISSING_FIELD, new Rejections.Origin(FILE, 3), "kind at /kind: missing");
+        rejections.add(RejectReason.BAD_TIME, new Rejections.Origin(FILE, 4), "at at /at: \"yesterday\"");
+        rejections.add(RejectReason.MISSING_FIELD, new Rejections.Origin(FILE, 5), "kind at /kind: \"hover\"");
+        rejections.add(RejectReason.MISSING_FIELD, new Rejections.Origin(FILE, 6), "kind at /kind: missing");
         assertEquals(
                 List.of(
                         "bad.jsonl:3: missing-field: kind at /kind: missing (2 of this kind)",
@@ -32,7 +31,7 @@ class RejectionsTest {
     @Test
     void onlyCountsWhatGoesOnAndOn() {
         for (int line = 1; line <= 100; line++) {
-            rejections.add(RejectReason.BAD_TIME, line, "detail " + Math.min(line, 60));
+            rejections.add(RejectReason.BAD_TIME, new Rejections.Origin(FILE, line), "detail " + Math.min(line, 60));
         }
         assertEquals(6, messages().size());
         assertEquals(

@@ -207,9 +207,9 @@ class ReplayCommandTest {
         assertTrue(
                 run.out().get(0).matches("quay-banner: [a-z-]+, data [a-z]+"),
                 run.out().get(0));
-        assertEquals("counts at the end of the file", run.out().get(1));
+        assertEquals("counts at the end of the input", run.out().get(1));
         assertEquals("variant  epoch  trials  successes    rate", run.out().get(2));
-        int legend = run.out().indexOf("Windows still open at the end of the file are counted too.");
+        int legend = run.out().indexOf("Windows still open at the end of the input are counted too.");
         assertEquals("", run.out().get(legend - 1));
         assertTrue(run.out().get(legend + 1).startsWith("At each look z, of variant minus control, is held against"));
         assertEquals(
