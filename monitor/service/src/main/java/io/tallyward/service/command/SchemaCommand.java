@@ -3,16 +3,17 @@ package io.tallyward.service.command;
 import io.tallyward.connector.format.PublishedSchema;
 import io.tallyward.service.config.document.BadInputException;
 import io.tallyward.service.config.document.Problem;
-import java.util.Arrays;
+import io.tallyward.service.plan.PlanSchema;
 import java.util.List;
 import java.util.stream.Collectors;
+import java.util.stream.Stream;
 import picocli.CommandLine.Command;
 import picocli.CommandLine.Parameters;
 
 /** Prints a published schema. */
 @Command(
         name = "schema",
-        description = "Print the JSON Schema (2020-12) of events, decision records or notices.",
+        description = "Print the JSON Schema (2020-12) of plan files, events, decision records or notices.",
         mixinStandardHelpOptions = true,
         exitCodeListHeading = ExitCode.HEADING,
         exitCodeList = {
@@ -22,19 +23,25 @@ import picocli.CommandLine.Parameters;
         })
 final class SchemaCommand extends CommandBase {
 
-    @Parameters(paramLabel = "NAME", description = "One of event, decision, notice.")
+    private static final String PLAN = "plan";
+
+    @Parameters(paramLabel = "NAME", description = "One of plan, event, decision, notice.")
     private String name;
 
     @Override
     ExitCode run(Output output) throws BadInputException {
-        PublishedSchema schema = Arrays.stream(PublishedSchema.values())
+        if (name.equals(PLAN)) {
+            output.line(PlanSchema.text());
+            return ExitCode.FINE;
+        }
+        List<PublishedSchema> schemas = List.of(PublishedSchema.values());
+        PublishedSchema schema = schemas.stream()
                 .filter(each -> each.code().equals(name))
                 .findFirst()
                 .orElseThrow(() -> new BadInputException(List.of(Problem.of(
                         "",
                         "schema " + name,
-                        Arrays.stream(PublishedSchema.values())
-                                .map(PublishedSchema::code)
+                        Stream.concat(Stream.of(PLAN), schemas.stream().map(PublishedSchema::code))
                                 .collect(Collectors.joining(", ")),
                         ""))));
         schema.text().lines().forEach(output::line);

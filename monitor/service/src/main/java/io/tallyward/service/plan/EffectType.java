@@ -1,10 +1,14 @@
 package io.tallyward.service.plan;
 
+import io.tallyward.service.config.document.Form;
+import io.tallyward.service.config.document.Key;
 import io.tallyward.service.config.document.Node;
 import io.tallyward.service.config.document.Node.Mapping;
 import io.tallyward.service.config.document.Place;
 import io.tallyward.service.config.document.ScalarType;
+import io.tallyward.service.config.document.Shape;
 import io.tallyward.service.config.document.ValueType;
+import java.util.List;
 import java.util.Optional;
 import java.util.Set;
 
@@ -53,5 +57,12 @@ final class EffectType implements ValueType<EffectType.Effect> {
     @Override
     public String expected() {
         return DIFFERENCE.expected() + ", or {relative: SHARE} of the baseline";
+    }
+
+    @Override
+    public Form form() {
+        return new Form.Either(List.of(
+                DIFFERENCE.form(),
+                new Form.Keys(Shape.of(Key.required(RELATIVE, SHARE, "Share of the baseline, as 0.05 for 5 %.")))));
     }
 }

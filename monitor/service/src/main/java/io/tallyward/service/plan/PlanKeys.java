@@ -27,6 +27,7 @@ import io.tallyward.engine.plan.TrustLimits;
 import io.tallyward.service.config.document.Key;
 import io.tallyward.service.config.document.ListType;
 import io.tallyward.service.config.document.MapType;
+import io.tallyward.service.config.document.Range;
 import io.tallyward.service.config.document.ScalarType;
 import io.tallyward.service.config.document.Shape;
 import io.tallyward.service.config.document.Values;
@@ -83,7 +84,7 @@ public final class PlanKeys {
                 Key.optional("spending", new SpendingType(), "How it is spent over the looks; test.spending else.");
         static final Key<Double> SILENT_BEFORE = Key.withDefault(
                 "silent-before",
-                number("number from 0 to 1", value -> value >= 0 && value <= 1),
+                number("number from 0 to 1", Range.closed(0, 1)),
                 "0",
                 "Fraction of the clock before which nothing is spent; it is saved, not lost.");
         static final Shape SHAPE = Shape.of(ALPHA, SPENDING, SILENT_BEFORE);
@@ -153,7 +154,7 @@ public final class PlanKeys {
                 "fractions",
                 new ListType<>(share(), 1, PlanRules.MAX_LOOKS, "fractions"),
                 "A look at each of these shares of the planned information; ascending, the last one 1.");
-        static final Shape SHAPE = Shape.of(EVERY, FRACTIONS);
+        static final Shape SHAPE = Shape.of(EVERY, FRACTIONS).withOneOf(EVERY, FRACTIONS);
     }
 
     static final class Futility {
@@ -168,10 +169,11 @@ public final class PlanKeys {
                 "What conditional power assumes from here on: the trend so far, the design's effect, or none.");
         static final Key<Double> PREDICTIVE_POWER = Key.optional(
                 "predictive-power", threshold(), "When predictive power at the planned end falls below this.");
-        static final Shape SHAPE = Shape.of(SPENDING, CONDITIONAL_POWER, UNDER, PREDICTIVE_POWER);
+        static final Shape SHAPE = Shape.of(SPENDING, CONDITIONAL_POWER, UNDER, PREDICTIVE_POWER)
+                .withOneOf(SPENDING, CONDITIONAL_POWER, PREDICTIVE_POWER);
 
         private static ScalarType<Double> threshold() {
-            return number("number above 0, at most 0.5", value -> value > 0 && value <= 0.5);
+            return number("number above 0, at most 0.5", Range.above(0, 0.5));
         }
     }
 
@@ -258,7 +260,7 @@ public final class PlanKeys {
                 "Share of every variant from then on; they add up to 1.");
         static final Key<Boolean> STOP =
                 Key.optional("stop", flag(), "The owner ends the experiment, whatever the counts say.");
-        static final Shape SHAPE = Shape.of(AT, REASON, END, SHARES, STOP);
+        static final Shape SHAPE = Shape.of(AT, REASON, END, SHARES, STOP).withOneOf(END, SHARES, STOP);
     }
 
     static final Key<String> EXPERIMENT = Key.required("experiment", name(), "Name of the experiment.");
@@ -313,7 +315,7 @@ public final class PlanKeys {
 
     /** Below a billionth a level is a mistake: no experiment is so sure of its data. */
     private static ScalarType<Double> level() {
-        return number("number from 1e-9 to below 0.5", value -> value >= 1e-9 && value < 0.5);
+        return number("number from 1e-9 to below 0.5", new Range(1e-9, true, 0.5, false));
     }
 
     private static String code(Enum<?> constant) {

@@ -2,14 +2,20 @@ package io.tallyward.service.plan;
 
 import io.tallyward.engine.plan.Spending;
 import io.tallyward.engine.plan.Spending.Family;
+import io.tallyward.service.config.document.Form;
+import io.tallyward.service.config.document.Key;
 import io.tallyward.service.config.document.MapType;
 import io.tallyward.service.config.document.Node;
 import io.tallyward.service.config.document.Node.Mapping;
 import io.tallyward.service.config.document.Node.Scalar;
 import io.tallyward.service.config.document.Place;
+import io.tallyward.service.config.document.Range;
 import io.tallyward.service.config.document.ScalarType;
+import io.tallyward.service.config.document.Shape;
 import io.tallyward.service.config.document.ValueType;
+import java.util.ArrayList;
 import java.util.Arrays;
+import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 import java.util.SortedMap;
@@ -19,23 +25,21 @@ import java.util.TreeMap;
 final class SpendingType implements ValueType<Spending> {
 
     /** Range of gamma (Hwang, Shih and DeCani 1990); practice stays within -10 and 4, beyond it boundaries degenerate. */
-    private static final ScalarType<Double> GAMMA =
-            ScalarType.number("number from -20 to 20", value -> value >= -20 && value <= 20);
+    private static final ScalarType<Double> GAMMA = ScalarType.number("number from -20 to 20", Range.closed(-20, 20));
 
     /** Range of rho (Kim and DeMets 1987), the power of the information fraction. */
-    private static final ScalarType<Double> RHO =
-            ScalarType.number("number above 0, at most 20", value -> value > 0 && value <= 20);
+    private static final ScalarType<Double> RHO = ScalarType.number("number above 0, at most 20", Range.above(0, 20));
 
     private static final int MOST_POINTS = 100;
 
-    private static final ScalarType<Double> SHARE =
-            ScalarType.number("number from 0 to 1", value -> value >= 0 && value <= 1);
+    private static final ScalarType<Double> SHARE = ScalarType.number("number from 0 to 1", Range.closed(0, 1));
 
     /** Share of the level by fraction of the spending clock. */
     private static final MapType<Double> POINTS = new MapType<>(
             new ScalarType<>(
                     "a fraction above 0, at most 1",
-                    text -> ScalarType.share().parse().apply(text).map(String::valueOf)),
+                    text -> ScalarType.share().parse().apply(text).map(String::valueOf),
+                    new Form.Text("0*\\.\\d*[1-9]\\d*|0*1(\\.0*)?", Integer.MAX_VALUE)),
             SHARE,
             1,
             MOST_POINTS,
@@ -78,9 +82,28 @@ final class SpendingType implements ValueType<Spending> {
                 + "or {table: {FRACTION: SHARE, ..., 1: 1}}";
     }
 
+    @Override
+    public Form form() {
+        List<Form> forms = new ArrayList<>();
+        List<String> names = new ArrayList<>();
+        for (Family family : Family.values()) {
+            if (family == Family.TABLE) {
+                forms.add(new Form.Keys(Shape.of(
+                        Key.required(family.code(), POINTS, "Share of the level by fraction of the spending clock."))));
+            } else if (family.parametric()) {
+                forms.add(new Form.Keys(
+                        Shape.of(Key.required(family.code(), parameter(family), "The parameter of the family."))));
+            } else {
+                names.add(family.code());
+            }
+        }
+        forms.add(0, new Form.Choice(names));
+        return new Form.Either(forms);
+    }
+
     private static Optional<Spending> table(Node node, Place place) {
         Optional<Map<String, Double>> written = POINTS.read(node, place);
-        if (written.isEmpty()) {
+        if (written.filter(points -> !points.isEmpty()).isEmpty()) {
             return Optional.empty();
         }
         SortedMap<Double, Double> points = new TreeMap<>();

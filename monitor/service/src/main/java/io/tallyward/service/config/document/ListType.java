@@ -37,4 +37,9 @@ public record ListType<T>(ValueType<T> item, int min, int max, String noun) impl
     public String expected() {
         return "a list of " + min + " to " + max + " " + noun;
     }
+
+    @Override
+    public Form form() {
+        return new Form.Items(item.form(), min, max);
+    }
 }

@@ -45,4 +45,9 @@ public record MapType<T>(ScalarType<String> name, ValueType<T> value, int min, i
     public String expected() {
         return "a mapping of " + min + " to " + max + " " + noun;
     }
+
+    @Override
+    public Form form() {
+        return new Form.Entries(name.form(), value.form(), min, max);
+    }
 }

@@ -18,8 +18,9 @@ import java.util.stream.Stream;
  * @param expected what is expected, in words
  * @param parse the value of a text; empty when the text is none
  * @param choices the texts that are accepted, where they are few and fixed; empty else
+ * @param form what a schema can say of the values
  */
-public record ScalarType<T>(String expected, Function<String, Optional<T>> parse, List<String> choices)
+public record ScalarType<T>(String expected, Function<String, Optional<T>> parse, List<String> choices, Form form)
         implements ValueType<T> {
 
     /** The form of names: of experiments, variants and of the service itself. */
@@ -32,9 +33,14 @@ public record ScalarType<T>(String expected, Function<String, Optional<T>> parse
         choices = List.copyOf(choices);
     }
 
-    /** A type whose texts are too many to list. */
+    /** A type of which no schema says anything. */
     public ScalarType(String expected, Function<String, Optional<T>> parse) {
-        this(expected, parse, List.of());
+        this(expected, parse, new Form.Any());
+    }
+
+    /** A type whose texts are too many to list. */
+    public ScalarType(String expected, Function<String, Optional<T>> parse, Form form) {
+        this(expected, parse, List.of(), form);
     }
 
     @Override
@@ -53,13 +59,18 @@ public record ScalarType<T>(String expected, Function<String, Optional<T>> parse
     public static ScalarType<String> text(int maxLength) {
         return accepted(
                 "text of at most " + maxLength + " characters",
+                new Form.Text("[\\s\\S]*\\S[\\s\\S]*", maxLength),
                 Optional::of,
                 text -> !text.isBlank() && text.length() <= maxLength);
     }
 
     /** A text of a certain form. */
     public static ScalarType<String> matching(String regex, String expected) {
-        return accepted(expected, Optional::of, Pattern.compile(regex).asMatchPredicate());
+        return accepted(
+                expected,
+                new Form.Text(regex, Integer.MAX_VALUE),
+                Optional::of,
+                Pattern.compile(regex).asMatchPredicate());
     }
 
     /** A name as of an experiment or a variant. */
@@ -71,6 +82,7 @@ public record ScalarType<T>(String expected, Function<String, Optional<T>> parse
     public static ScalarType<Integer> wholeNumber(int min, int max) {
         return accepted(
                         "whole number from " + min + " to " + max,
+                        new Form.Numeric(Range.closed(min, max), true),
                         text -> WHOLE.matcher(text).matches()
                                 ? Optional.of(Long.valueOf(text))
                                 : Optional.<Long>empty(),
@@ -78,28 +90,30 @@ public record ScalarType<T>(String expected, Function<String, Optional<T>> parse
                 .mapped(Long::intValue);
     }
 
-    /** A finite number that passes a test, which {@code expected} puts into words. */
-    public static ScalarType<Double> number(String expected, Predicate<Double> accepted) {
+    /** A finite number of a range, which {@code expected} puts into words. */
+    public static ScalarType<Double> number(String expected, Range range) {
         return accepted(
                 expected,
+                new Form.Numeric(range, false),
                 text -> DECIMAL.matcher(text).matches() ? Optional.of(Double.valueOf(text)) : Optional.empty(),
-                value -> Double.isFinite(value) && accepted.test(value));
+                value -> Double.isFinite(value) && range.holds(value));
     }
 
     /** A number in an open range. */
     public static ScalarType<Double> numberBetween(double low, double high) {
-        return number("number above " + plain(low) + " and below " + plain(high), value -> value > low && value < high);
+        return number("number above " + plain(low) + " and below " + plain(high), Range.open(low, high));
     }
 
     /** A share of something: above 0, at most 1. */
     public static ScalarType<Double> share() {
-        return number("number above 0, at most 1", value -> value > 0 && value <= 1);
+        return number("number above 0, at most 1", Range.above(0, 1));
     }
 
     /** A length of time of whole milliseconds in a closed range. */
     public static ScalarType<Duration> duration(Duration min, Duration max) {
         return accepted(
                 "ISO 8601 duration from " + written(min) + " to " + written(max) + ", such as " + example(min, max),
+                new Form.Length(!min.isZero()),
                 ScalarType::parseDuration,
                 value -> value.compareTo(min) >= 0 && value.compareTo(max) <= 0 && value.getNano() % 1_000_000 == 0);
     }
@@ -116,13 +130,15 @@ public record ScalarType<T>(String expected, Function<String, Optional<T>> parse
     public static ScalarType<Instant> instant() {
         return accepted(
                 "RFC 3339 time such as 2026-05-04T00:00:00Z",
+                new Form.Moment(),
                 ScalarType::parseInstant,
                 value -> value.getNano() % 1_000_000 == 0);
     }
 
     /** True or false. */
     public static ScalarType<Boolean> flag() {
-        return choice("true or false", List.of(true, false), String::valueOf);
+        ScalarType<Boolean> flag = choice("true or false", List.of(true, false), String::valueOf);
+        return new ScalarType<>(flag.expected(), flag.parse(), flag.choices(), new Form.Flag());
     }
 
     /** One of the constants of an enum, by its published name. */
@@ -133,7 +149,7 @@ public record ScalarType<T>(String expected, Function<String, Optional<T>> parse
 
     /** The same texts, with values of another type. */
     public <U> ScalarType<U> mapped(Function<T, U> mapping) {
-        return new ScalarType<>(expected, text -> parse.apply(text).map(mapping), choices);
+        return new ScalarType<>(expected, text -> parse.apply(text).map(mapping), choices, form);
     }
 
     /** An RFC 3339 time; empty when the text is none. */
@@ -161,17 +177,19 @@ public record ScalarType<T>(String expected, Function<String, Optional<T>> parse
     }
 
     private static <T> ScalarType<T> choice(String expected, List<T> values, Function<T, String> code) {
+        List<String> texts = values.stream().map(code).toList();
         return new ScalarType<>(
                 expected,
                 text -> values.stream()
                         .filter(value -> code.apply(value).equals(text))
                         .findFirst(),
-                values.stream().map(code).toList());
+                texts,
+                new Form.Choice(texts));
     }
 
     private static <T> ScalarType<T> accepted(
-            String expected, Function<String, Optional<T>> parse, Predicate<T> accepted) {
-        return new ScalarType<>(expected, text -> parse.apply(text).filter(accepted));
+            String expected, Form form, Function<String, Optional<T>> parse, Predicate<T> accepted) {
+        return new ScalarType<>(expected, text -> parse.apply(text).filter(accepted), form);
     }
 
     private static String plain(double value) {

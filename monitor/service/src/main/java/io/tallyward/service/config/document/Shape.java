@@ -10,15 +10,27 @@ import java.util.Optional;
  * Which keys a mapping may have. Keys beyond these are refused.
  *
  * @param keys in the order to document them
+ * @param alternatives keys of which exactly one is written, for schemas; the rule itself is checked, with better words, by
+ *     whoever knows what the keys mean
  */
-public record Shape(List<Key<?>> keys) implements ValueType<Values> {
+public record Shape(List<Key<?>> keys, List<Key<?>> alternatives) implements ValueType<Values> {
 
     public Shape {
         keys = List.copyOf(keys);
+        alternatives = List.copyOf(alternatives);
+    }
+
+    public Shape(List<Key<?>> keys) {
+        this(keys, List.of());
     }
 
     public static Shape of(Key<?>... keys) {
         return new Shape(List.of(keys));
+    }
+
+    /** The same shape, in which exactly one of some keys is written. */
+    public Shape withOneOf(Key<?>... oneOf) {
+        return new Shape(keys, List.of(oneOf));
     }
 
     /** Reads a whole file of this shape. */
@@ -41,6 +53,11 @@ public record Shape(List<Key<?>> keys) implements ValueType<Values> {
     @Override
     public String expected() {
         return "a mapping with " + names();
+    }
+
+    @Override
+    public Form form() {
+        return new Form.Keys(this);
     }
 
     private Values readMapping(Mapping mapping, Place place) {

@@ -10,4 +10,7 @@ public interface ValueType<T> {
 
     /** What is expected, in words that complete "expected: ...". */
     String expected();
+
+    /** What a schema can say of the values. */
+    Form form();
 }
