@@ -108,7 +108,8 @@ class ReplayPropertyTest {
     }
 
     private static Replay replay(Plan plan, List<String> lines, int partitions) {
-        Replay replay = new Replay(List.of(plan), partitions, 1, SETTINGS, EventMapping.DEFAULT, MAX_BYTES);
+        Replay replay =
+                new Replay(List.of(plan), partitions, List.of("log"), SETTINGS, EventMapping.DEFAULT, MAX_BYTES);
         long line = 0;
         for (String text : lines) {
             replay.take(text.getBytes(StandardCharsets.UTF_8), "log", ++line);
@@ -126,7 +127,7 @@ class ReplayPropertyTest {
         List<CountShard> shards = new ArrayList<>();
         Map<String, Long> reach = new HashMap<>();
         for (int partition = 0; partition < partitions; partition++) {
-            CountShard shard = new CountShard(partition, partitions, plans, SETTINGS, 1);
+            CountShard shard = new CountShard(partition, partitions, plans, SETTINGS, List.of("log"));
             EventSlotReader quick = new EventSlotReader(EventMapping.DEFAULT, MAX_BYTES, shard.names());
             for (String line : experiment.lines()) {
                 byte[] value = line.getBytes(StandardCharsets.UTF_8);

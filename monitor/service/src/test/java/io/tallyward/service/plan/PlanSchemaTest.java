@@ -224,8 +224,8 @@ class PlanSchemaTest {
         List<Problem> problems = problems(plan);
         if (!taken && problems.isEmpty()) {
             JsonNode value = parent instanceof ArrayNode ? parent.get(Integer.parseInt(at)) : parent.get(at);
-            assertTrue(value != null && value.isValueNode(), () -> change + " is a plan, and the schema refuses it");
-            put(parent, at, JSON.getNodeFactory().textNode(value.asText()));
+            assertTrue(value != null && !value.isObject(), () -> change + " is a plan, and the schema refuses it");
+            put(parent, at, quoted(value));
             assertTrue(takes(plan), () -> change + " in quotes is a plan, and the schema refuses it");
         }
         if (taken) {
@@ -234,6 +234,15 @@ class PlanSchemaTest {
             }
         }
         return taken ? 0 : 1;
+    }
+
+    private static JsonNode quoted(JsonNode value) {
+        if (!value.isArray()) {
+            return JSON.getNodeFactory().textNode(value.asText());
+        }
+        ArrayNode texts = JSON.createArrayNode();
+        value.forEach(item -> texts.add(quoted(item)));
+        return texts;
     }
 
     private static boolean ofShape(Problem problem) {
