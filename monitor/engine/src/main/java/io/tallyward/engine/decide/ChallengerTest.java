@@ -97,7 +97,7 @@ final class ChallengerTest {
 
     PlanDesign design() {
         if (design == null) {
-            design = memo.design(plan, planDigest, challenger);
+            design = memo.design(plan, challenger);
             futility = new FutilityRule(plan, design);
             report = new LookReport(plan, challenger.name(), design, detail);
         }

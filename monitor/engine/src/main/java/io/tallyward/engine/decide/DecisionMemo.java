@@ -15,7 +15,7 @@ public final class DecisionMemo {
 
     private final int mostLooks;
     private int looks;
-    private final Map<String, PlanDesign> designs = new HashMap<>();
+    private final Map<Designed, PlanDesign> designs = new HashMap<>();
     private final Map<String, Node> paths = new HashMap<>();
 
     /**
@@ -30,8 +30,32 @@ public final class DecisionMemo {
         this.mostLooks = mostLooks;
     }
 
-    PlanDesign design(Plan plan, String planDigest, Variant challenger) {
-        return designs.computeIfAbsent(planDigest + ' ' + challenger.name(), key -> PlanDesign.of(plan, challenger));
+    /**
+     * What a design follows from: everything of a plan but its texts, so that experiments which are planned alike share one. Of
+     * many looks it takes long to compute, and much room.
+     */
+    private record Designed(Plan plan, Variant challenger) {}
+
+    PlanDesign design(Plan plan, Variant challenger) {
+        return designs.computeIfAbsent(
+                new Designed(withoutTexts(plan), challenger), key -> PlanDesign.of(plan, challenger));
+    }
+
+    private static Plan withoutTexts(Plan plan) {
+        return new Plan(
+                "",
+                "",
+                "",
+                plan.count(),
+                plan.variants(),
+                plan.test(),
+                plan.looks(),
+                plan.futility(),
+                plan.splitCheck(),
+                plan.trust(),
+                plan.run(),
+                plan.epochs(),
+                plan.amendments());
     }
 
     /** The beginning of all paths of a challenger at its levels. */
