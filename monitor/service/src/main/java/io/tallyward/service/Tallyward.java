@@ -3,6 +3,7 @@ package io.tallyward.service;
 import io.tallyward.connector.kafka.CommittedTopic;
 import io.tallyward.connector.kafka.InputLog;
 import io.tallyward.connector.kafka.InternalTopics;
+import io.tallyward.engine.plan.LateAmendmentException;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanChangedException;
 import io.tallyward.engine.shard.RefusedStateException;
@@ -61,7 +62,7 @@ public final class Tallyward {
     private static Exception explain(ServiceConfig config, String group, Throwable failure) {
         for (Throwable cause = failure; cause != null; cause = cause.getCause()) {
             if (cause instanceof RefusedStateException) {
-                String where = cause instanceof PlanChangedException
+                String where = cause instanceof PlanChangedException || cause instanceof LateAmendmentException
                         ? config.plans().toString()
                         : config.file().toString();
                 return new BadInputException(List.of(Problem.of(where, cause.getMessage(), "", "")));

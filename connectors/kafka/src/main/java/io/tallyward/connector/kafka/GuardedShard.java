@@ -4,6 +4,7 @@ import java.util.List;
 import java.util.function.Predicate;
 import java.util.function.Supplier;
 import org.apache.kafka.clients.consumer.ConsumerRecord;
+import org.apache.kafka.common.errors.InterruptException;
 
 /**
  * A shard whose exceptions come out as {@link ShardFailure} and say where they happened. That a broker does not answer a shard
@@ -46,7 +47,7 @@ final class GuardedShard {
     void apply(ConsumerRecord<byte[], byte[]> record) {
         try {
             shard.apply(record);
-        } catch (BrokerException outage) {
+        } catch (BrokerException | InterruptException outage) {
             throw outage;
         } catch (RuntimeException broken) {
             throw new ShardFailure(name + " failed at " + at(record), broken);
@@ -85,7 +86,7 @@ final class GuardedShard {
     private <T> T guarded(String what, Supplier<T> step) {
         try {
             return step.get();
-        } catch (BrokerException outage) {
+        } catch (BrokerException | InterruptException outage) {
             throw outage;
         } catch (RuntimeException broken) {
             throw new ShardFailure(name + " " + what, broken);

@@ -214,9 +214,10 @@ public final class SharedLog implements AutoCloseable {
             if (request != null) {
                 session.append(request.entries());
             }
+            Instant asked = clock.instant();
             session.readToEnd(reader);
             position = session.position();
-            confirmed = clock.instant();
+            confirmed = asked;
             state = WorkerState.RUNNING;
             backoff.reset();
             outages.over(0);

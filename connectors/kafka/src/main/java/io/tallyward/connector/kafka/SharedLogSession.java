@@ -83,13 +83,27 @@ final class SharedLogSession implements AutoCloseable {
             throw cut();
         }
         for (ConsumerRecord<byte[], byte[]> record : records) {
-            reader.read(new Entry(record.key(), record.value()));
+            hand(record, reader);
             position = record.offset() + 1;
         }
         position = consumer.position(partition);
     }
 
+    private void hand(ConsumerRecord<byte[], byte[]> record, Reader reader) {
+        try {
+            reader.read(new Entry(record.key(), record.value()));
+        } catch (RuntimeException unreadable) {
+            throw new IllegalStateException(
+                    topic + "-0@" + record.offset() + " cannot be read: " + unreadable.getMessage(), unreadable);
+        }
+    }
+
     private BrokerException cut() {
+        if (position == 0) {
+            return new BrokerException("topic " + topic + " has lost its first entries: it has to keep them for ever"
+                    + " (cleanup.policy=delete, retention.ms=-1, retention.bytes=-1); correct that, and start under a new"
+                    + " name");
+        }
         return new BrokerException(
                 "topic " + topic + " ends before " + position + ", up to where it has been read: it was"
                         + " removed or cut while the service ran; restart every instance so that all read it from its beginning");

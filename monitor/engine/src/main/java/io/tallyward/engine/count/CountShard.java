@@ -149,7 +149,7 @@ public final class CountShard {
                 counters.put(plan.experiment(), successor(plan, fields, present));
                 renamed = true;
             } else if (!plan.equals(present.plan())) {
-                present.amend(plan);
+                present.amend(plan, watermarks.latest());
             }
             if (entry.frozen()) {
                 unfrozen.remove(plan.experiment());
@@ -196,13 +196,26 @@ public final class CountShard {
      *
      * @param experiment its position among the {@link #names}
      * @param atMillis event time
+     * @param recordTimestampMillis when the event reached the log; one from a clock that is ahead is rejected and freezes nothing
      */
-    public boolean mustFreeze(int experiment, long atMillis) {
-        if (unfrozen.isEmpty()) {
+    public boolean mustFreeze(int experiment, long atMillis, long recordTimestampMillis) {
+        if (unfrozen.isEmpty() || atMillis > recordTimestampMillis + maxSkewMillis) {
             return false;
         }
         ExperimentCounter counter = countersByPosition[experiment];
         return counter.isInside(atMillis) && unfrozen.contains(counter.plan().experiment());
+    }
+
+    /** The experiments with plans that are not frozen although their runs have begun by some event time. */
+    public List<String> begunUnfrozen(long atMillis) {
+        return unfrozen.stream()
+                .filter(experiment -> counters.get(experiment).isInside(atMillis))
+                .toList();
+    }
+
+    /** Experiments of which there is state that was not restored, as no plan was known. */
+    public Set<String> unplannedState() {
+        return state.unplanned();
     }
 
     /**

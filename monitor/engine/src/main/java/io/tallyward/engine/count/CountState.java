@@ -13,7 +13,9 @@ import java.util.ArrayList;
 import java.util.HashMap;
 import java.util.List;
 import java.util.Map;
+import java.util.Set;
 import java.util.TreeMap;
+import java.util.TreeSet;
 
 /**
  * The durable form of a COUNT shard. Five kinds of entry, told apart by the first byte of the key:
@@ -35,11 +37,11 @@ import java.util.TreeMap;
 final class CountState {
 
     private static final byte SHARD = 'w';
-    private static final byte EXPERIMENT = 'e';
+    private static final byte EXPERIMENT = 'k';
     private static final byte SEGMENTS = 'g';
     private static final byte OPEN = 'o';
     private static final byte SEALED = 's';
-    private static final String KINDS = "wegos";
+    private static final String KINDS = "wkgos";
 
     /** A packed entry is closed once it is this large; well below a broker's usual record limit of 1 MB. */
     static final int PACKED_BYTES = 400_000;
@@ -51,6 +53,9 @@ final class CountState {
     private final long keyFingerprint;
     private final Map<String, TreeMap<Long, Integer>> openEntries = new HashMap<>();
     private final Map<String, SealedEntries> sealedEntries = new HashMap<>();
+    /** Experiments whose entries were left alone, as no plan was known. */
+    private final Set<String> unplanned = new TreeSet<>();
+
     private final Map<String, Foreseen> foreseen = new HashMap<>();
 
     /** Where an experiment is known to have come to by the end of the log. */
@@ -91,6 +96,7 @@ final class CountState {
             out.writeBoolean(counter.isUntouched());
             out.writeLong(counter.sealedUntil());
             out.writeBoolean(counter.isArchived());
+            out.writeInt(counter.plan().amendments().size());
             counter.outcomes().write(out);
             Map<Long, OutcomeCounts> unsealed = counter.unsealedOutcomes();
             out.writeInt(unsealed.size());
@@ -247,6 +253,9 @@ final class CountState {
             }
             String experiment = keyIn.readUTF();
             ExperimentCounter counter = counters.get(experiment);
+            if (counter == null) {
+                unplanned.add(experiment);
+            }
             if (kind == EXPERIMENT) {
                 restoreExperiment(value, counter);
             } else if (kind == SEGMENTS) {
@@ -259,6 +268,11 @@ final class CountState {
         } catch (IOException e) {
             throw cutShort(e);
         }
+    }
+
+    /** Experiments of which there is state that was not restored, as no plan was known. */
+    Set<String> unplanned() {
+        return unplanned;
     }
 
     private static DataInputStream reader(byte[] value) {
@@ -293,6 +307,7 @@ final class CountState {
         }
         long sealedUntil = in.readLong();
         boolean archived = in.readBoolean();
+        int amendments = in.readInt();
         OutcomeCounts outcomes = OutcomeCounts.read(in);
         Map<Long, OutcomeCounts> unsealed = new TreeMap<>();
         for (int rest = in.readInt(); rest > 0; rest--) {
@@ -304,6 +319,7 @@ final class CountState {
             return;
         }
         counter.restore(sealedUntil, outcomes, unsealed);
+        counter.requireInTime(amendments);
         if (archived) {
             counter.restoreArchived();
         }

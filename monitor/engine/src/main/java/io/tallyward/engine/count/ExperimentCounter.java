@@ -92,26 +92,42 @@ final class ExperimentCounter {
     }
 
     /**
-     * Goes on under the same plan with more amendments. Nothing that they change may have been sealed.
+     * Goes on under the same plan with more amendments. Nothing that they change may have been sealed, and no event taken that
+     * lies behind an end that was moved.
      *
+     * @param latestEvent event time that no event so far is behind
      * @throws PlanChangedException when it is another plan
      * @throws LateAmendmentException when it is too late for an amendment
      */
-    void amend(Plan amended) {
+    void amend(Plan amended, long latestEvent) {
         String digest = PlanDigest.of(amended);
         if (!digest.equals(planDigest)) {
             throw new PlanChangedException(plan.experiment(), planDigest, digest);
         }
         int known = plan.amendments().size();
-        for (Amendment added :
-                amended.amendments().subList(known, amended.amendments().size())) {
+        long end = amended.end().toEpochMilli();
+        if (end != runEnd && latestEvent >= Math.min(end, runEnd)) {
+            throw new LateAmendmentException(plan.experiment(), amended.end(), Instant.ofEpochMilli(latestEvent));
+        }
+        plan = amended;
+        runEnd = end;
+        requireInTime(known);
+        change();
+    }
+
+    /**
+     * Makes sure that nothing is sealed that an amendment changes.
+     *
+     * @param known how many amendments were known when it was sealed
+     * @throws LateAmendmentException when it is too late for one of the others
+     */
+    void requireInTime(int known) {
+        List<Amendment> all = plan.amendments();
+        for (Amendment added : all.subList(Math.min(known, all.size()), all.size())) {
             if (added.at().toEpochMilli() < sealedUntil) {
                 throw new LateAmendmentException(plan.experiment(), added.at(), Instant.ofEpochMilli(sealedUntil));
             }
         }
-        plan = amended;
-        runEnd = amended.end().toEpochMilli();
-        change();
     }
 
     /** Whether nothing has been counted or sealed; there may have been events outside the run. */

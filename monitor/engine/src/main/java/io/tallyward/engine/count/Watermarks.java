@@ -64,6 +64,11 @@ final class Watermarks {
         return slowest;
     }
 
+    /** The latest event time of any source. */
+    long latest() {
+        return Arrays.stream(seen).max().orElse(NONE);
+    }
+
     /** Whether the slowest source has come this far only because the clock stood in for it. */
     boolean slowestIsAssumed() {
         long slowest = slowest();

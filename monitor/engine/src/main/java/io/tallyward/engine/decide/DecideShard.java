@@ -20,6 +20,8 @@ import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
+import java.util.Set;
+import java.util.TreeSet;
 
 /**
  * Decides about the experiments whose tallies reach it. A pure state machine; not thread-safe.
@@ -30,7 +32,7 @@ import java.util.Optional;
  */
 public final class DecideShard {
 
-    private static final byte EXPERIMENT = 'x';
+    private static final byte EXPERIMENT = 'd';
     private static final byte WINDOW = 'p';
     private static final byte LOOK = 'l';
 
@@ -39,6 +41,8 @@ public final class DecideShard {
     private final Map<String, Plan> plans = new LinkedHashMap<>();
     private final Map<String, ExperimentDecider> deciders = new LinkedHashMap<>();
     private final Map<String, Long> unplanned = new HashMap<>();
+    private final Set<String> unplannedState = new TreeSet<>();
+    private final Map<String, String> digests = new HashMap<>();
 
     /**
      * A shard that has decided nothing yet.
@@ -72,7 +76,11 @@ public final class DecideShard {
             DataInputStream keyIn = reader(key);
             byte kind = keyIn.readByte();
             String experiment = keyIn.readUTF();
-            if (!plans.containsKey(experiment) || (value == null && kind != WINDOW)) {
+            if (!plans.containsKey(experiment)) {
+                unplannedState.add(experiment);
+                return;
+            }
+            if (value == null && kind != WINDOW) {
                 return;
             }
             if (kind == WINDOW) {
@@ -90,7 +98,7 @@ public final class DecideShard {
             } else {
                 throw new IllegalStateException(
                         "stored decisions: entry of unknown kind " + kind
-                                + " (expected: x, p or l); the state was written by another version, whose state topics have to be removed");
+                                + " (expected: d, p or l); the state was written by another version, whose state topics have to be removed");
             }
         } catch (IOException e) {
             throw new UncheckedIOException("stored decisions: an entry is cut short", e);
@@ -126,6 +134,9 @@ public final class DecideShard {
         for (PlanBook.Entry entry : entries) {
             Plan plan = entry.plan();
             Plan before = plans.put(plan.experiment(), plan);
+            if (!plan.equals(before)) {
+                digests.remove(plan.experiment());
+            }
             ExperimentDecider decider = deciders.get(plan.experiment());
             if (decider != null && !plan.equals(before)) {
                 deciders.put(
@@ -147,9 +158,15 @@ public final class DecideShard {
         }
     }
 
+    /** Experiments of which there is state that was not restored, as no plan was known. */
+    public Set<String> unplannedState() {
+        return Set.copyOf(unplannedState);
+    }
+
     /** Digest of the plan that an experiment is decided under; empty where there is none. */
     public Optional<String> planDigest(String experiment) {
-        return Optional.ofNullable(plans.get(experiment)).map(PlanDigest::of);
+        return Optional.ofNullable(plans.get(experiment))
+                .map(plan -> digests.computeIfAbsent(experiment, name -> PlanDigest.of(plan)));
     }
 
     /** Makes a planned experiment known before anything of it arrives, so that it is seen to be waiting. */

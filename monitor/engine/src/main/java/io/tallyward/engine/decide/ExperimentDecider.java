@@ -98,11 +98,6 @@ final class ExperimentDecider {
      * @throws LateAmendmentException when it is too late for an amendment
      */
     ExperimentDecider amended(Plan now) {
-        List<Amendment> added = now.amendments()
-                .subList(plan.amendments().size(), now.amendments().size());
-        if (!added.isEmpty() && added.get(0).at().toEpochMilli() <= completeUntil) {
-            throw new LateAmendmentException(plan.experiment(), added.get(0).at(), Instant.ofEpochMilli(completeUntil));
-        }
         ExperimentDecider next = new ExperimentDecider(now, memo, detail, completeness);
         try {
             next.read(new DataInputStream(new ByteArrayInputStream(Packing.pack(this::write))));
@@ -161,7 +156,7 @@ final class ExperimentDecider {
 
     /** Records what takes effect at the end of the window that comes next, so that the decision there is made under it. */
     private void tellAmendments(long windowEnd) {
-        List<Amendment> amendments = plan.amendments();
+        List<Amendment> amendments = plan.amendmentsInForce();
         while (amendmentsTold < amendments.size()
                 && amendments.get(amendmentsTold).at().toEpochMilli() <= windowEnd) {
             amendmentsTold++;
@@ -336,8 +331,7 @@ final class ExperimentDecider {
         out.writeLong(completeUntil);
         outcomes.write(out);
         out.writeLong(idleSealed);
-        out.writeUTF(judgement.trust().name());
-        out.writeUTF(judgement.reason());
+        judgement.write(out);
         out.writeInt(sequence);
         out.writeUTF(lastHash);
         out.writeInt(amendmentsTold);
@@ -362,7 +356,7 @@ final class ExperimentDecider {
         completeUntil = in.readLong();
         outcomes = OutcomeCounts.read(in);
         idleSealed = in.readLong();
-        judgement = new TrustWatch.Judgement(Trust.valueOf(in.readUTF()), in.readUTF(), null);
+        judgement = TrustWatch.Judgement.read(in);
         sequence = in.readInt();
         lastHash = in.readUTF();
         amendmentsTold = in.readInt();
@@ -371,5 +365,15 @@ final class ExperimentDecider {
         looksDelayed = in.readInt();
         delayReason = in.readUTF();
         challengers.read(in);
+        requireInTime();
+    }
+
+    /** Makes sure that an amendment that is not recorded takes effect after everything that was decided. */
+    private void requireInTime() {
+        List<Amendment> all = plan.amendmentsInForce();
+        if (amendmentsTold < all.size() && all.get(amendmentsTold).at().toEpochMilli() <= completeUntil) {
+            throw new LateAmendmentException(
+                    plan.experiment(), all.get(amendmentsTold).at(), Instant.ofEpochMilli(completeUntil));
+        }
     }
 }

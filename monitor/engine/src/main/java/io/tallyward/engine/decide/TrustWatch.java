@@ -65,6 +65,28 @@ final class TrustWatch {
             this(trust, reason, null);
         }
 
+        void write(DataOutput out) throws IOException {
+            out.writeUTF(trust.name());
+            out.writeUTF(reason);
+            out.writeBoolean(silence != null);
+            if (silence != null) {
+                out.writeUTF(silence.variant());
+                out.writeLong(silence.since().toEpochMilli());
+                out.writeLong(silence.due());
+            }
+        }
+
+        static Judgement read(DataInput in) throws IOException {
+            Trust trust = Trust.valueOf(in.readUTF());
+            String reason = in.readUTF();
+            return new Judgement(
+                    trust,
+                    reason,
+                    in.readBoolean()
+                            ? new Silence(in.readUTF(), Instant.ofEpochMilli(in.readLong()), in.readLong())
+                            : null);
+        }
+
         /** The complaint, and where it comes from as far as that is known. */
         Judgement with(SplitOrigin originOrNull) {
             return originOrNull == null

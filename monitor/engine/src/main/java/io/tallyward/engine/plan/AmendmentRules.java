@@ -70,7 +70,7 @@ public final class AmendmentRules {
         if (isUnaligned(at, before)) {
             return Optional.of(new Problem(index, "at " + at, aligned(before)));
         }
-        Instant latest = latest(before);
+        Instant latest = latest(before, amendment.change());
         if (!at.isAfter(latest)) {
             return Optional.of(new Problem(
                     index, "at " + at, "after " + latest + ", where the run starts or last changes before it"));
@@ -80,15 +80,22 @@ public final class AmendmentRules {
                 : Optional.of(new Problem(index, "at " + at, "before the end of the run, " + before.end()));
     }
 
-    /** The last moment at which something of the plan takes effect; an amendment comes after it. */
-    private static Instant latest(Plan before) {
+    /**
+     * The last moment at which something takes effect that the amendment has to come after: amendments do so in order, and the split
+     * is amended after the ramp that was planned. A stop has to come after the beginning only; it overtakes what is still to come.
+     */
+    private static Instant latest(Plan before, Amendment.Change change) {
+        if (change instanceof Amendment.Stop) {
+            return before.run().from();
+        }
         List<Amendment> earlier = before.amendments();
         Instant latest = earlier.isEmpty()
                 ? before.run().from()
                 : earlier.get(earlier.size() - 1).at();
         List<AllocationEpoch> planned = before.epochs();
-        boolean ramping =
-                !planned.isEmpty() && planned.get(planned.size() - 1).from().isAfter(latest);
+        boolean ramping = change instanceof Amendment.Shares
+                && !planned.isEmpty()
+                && planned.get(planned.size() - 1).from().isAfter(latest);
         return ramping ? planned.get(planned.size() - 1).from() : latest;
     }
 

@@ -12,11 +12,11 @@ public final class LateAmendmentException extends RefusedStateException {
      * Names the experiment and both moments.
      *
      * @param at when the amendment takes effect
-     * @param sealedUntil end of the last window that is sealed
+     * @param counted up to where counts or decisions are final without it
      */
-    public LateAmendmentException(String experiment, Instant at, Instant sealedUntil) {
-        super("plan of " + experiment + ": an amendment takes effect at " + at + ", but windows up to " + sealedUntil
-                + " are sealed without it; the clocks of the instances or of the producers are far apart: set them"
+    public LateAmendmentException(String experiment, Instant at, Instant counted) {
+        super("plan of " + experiment + ": an amendment takes effect at " + at + ", but everything up to " + counted
+                + " is counted without it; the clocks of the instances or of the producers are far apart: set them"
                 + " right, and give the experiment a new name");
     }
 }

@@ -7,6 +7,7 @@ import java.util.List;
 import java.util.Map;
 import java.util.Objects;
 import java.util.Optional;
+import java.util.stream.Stream;
 
 /**
  * The plan of one experiment.
@@ -150,6 +151,17 @@ public record Plan(
     /** How many allocation epochs there are, the first included. */
     public int epochCount() {
         return allocation().size() + 1;
+    }
+
+    /** The amendments in the order in which they take effect, without those that a stop overtakes. */
+    public List<Amendment> amendmentsInForce() {
+        if (!stopped()) {
+            return amendments;
+        }
+        Amendment stop = amendments.get(amendments.size() - 1);
+        return Stream.concat(
+                        amendments.stream().filter(amendment -> amendment.at().isBefore(stop.at())), Stream.of(stop))
+                .toList();
     }
 
     /** Whether the owner has ended the experiment, or will have when the last amendment takes effect. */

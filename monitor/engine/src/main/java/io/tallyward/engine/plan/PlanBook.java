@@ -98,6 +98,9 @@ public final class PlanBook {
         if (!differences.isEmpty()) {
             return new Ruling.Refused(named(differences));
         }
+        if (!PlanDigest.of(frozen).equals(PlanDigest.of(proposed))) {
+            return new Ruling.Refused("it differs from the frozen plan in its digest");
+        }
         List<Amendment> before = frozen.amendments();
         List<Amendment> now = proposed.amendments();
         if (now.size() < before.size() || !now.subList(0, before.size()).equals(before)) {

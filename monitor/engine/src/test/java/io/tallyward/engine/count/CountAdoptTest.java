@@ -9,6 +9,7 @@ import io.tallyward.engine.Events;
 import io.tallyward.engine.Plans;
 import io.tallyward.engine.StateLog;
 import io.tallyward.engine.count.CountOracle.Arrival;
+import io.tallyward.engine.event.Event;
 import io.tallyward.engine.event.RejectReason;
 import io.tallyward.engine.plan.Amendment;
 import io.tallyward.engine.plan.LateAmendmentException;
@@ -22,6 +23,8 @@ import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 import java.util.Random;
+import java.util.Set;
+import java.util.TreeMap;
 import org.junit.jupiter.api.Test;
 
 /** Plans that come, change and are amended while a shard counts. */
@@ -68,10 +71,13 @@ class CountAdoptTest {
         shard.adopt(entries(false, QUAY));
         int quay = shard.names().experiment("quay-banner");
 
-        assertFalse(shard.mustFreeze(quay, Events.at(-1)), "an event before the run changes nothing");
-        assertTrue(shard.mustFreeze(quay, Events.at(1)));
+        assertFalse(shard.mustFreeze(quay, Events.at(-1), Events.at(-1)), "an event before the run changes nothing");
+        assertTrue(shard.mustFreeze(quay, Events.at(1), Events.at(1)));
+        assertFalse(
+                shard.mustFreeze(quay, Events.at(30), Events.at(1)), "an event from a clock that is ahead is rejected");
+        assertEquals(List.of("quay-banner"), shard.begunUnfrozen(Events.at(1)));
         shard.adopt(entries(true, QUAY));
-        assertFalse(shard.mustFreeze(quay, Events.at(1)));
+        assertFalse(shard.mustFreeze(quay, Events.at(1), Events.at(1)));
     }
 
     @Test
@@ -134,13 +140,13 @@ class CountAdoptTest {
         assertEquals(Map.of("version=6.1", 1L, "platform=web", 1L), Map.copyOf(segments(tallies, "fare-chip")));
     }
 
-    private static io.tallyward.engine.event.Event segmented(String experiment, String unit, double minute) {
+    private static Event segmented(String experiment, String unit, double minute) {
         return Events.with(
                 Events.view(experiment, "plain", unit, "e-" + unit, minute), "version", "6.1", "platform", "web");
     }
 
     private static Map<String, Long> segments(List<TallyUpdate> tallies, String experiment) {
-        Map<String, Long> units = new java.util.TreeMap<>();
+        Map<String, Long> units = new TreeMap<>();
         tallies.stream()
                 .filter(update -> update.experiment().equals(experiment))
                 .flatMap(update -> update.windows().stream())
@@ -160,6 +166,46 @@ class CountAdoptTest {
                 new Amendment.Shares(Map.of("plain", 0.2, "wide", 0.8)))));
 
         assertThrows(LateAmendmentException.class, () -> shard.adopt(entries(true, amended)));
+    }
+
+    @Test
+    void anAmendmentThatCameTooLateIsRefusedAfterARestartToo() {
+        CountShard shard = shard(QUAY);
+        StateLog log = new StateLog();
+        feed(shard, "quay-banner", "plain", 1);
+        feed(shard, "quay-banner", "plain", 60);
+        log.append(shard.drain().state());
+        CountShard restarted = shard(QUAY.amended(List.of(new Amendment(
+                Plans.FROM.plus(Duration.ofMinutes(5)),
+                "ramp",
+                new Amendment.Shares(Map.of("plain", 0.2, "wide", 0.8))))));
+
+        assertThrows(LateAmendmentException.class, () -> log.replayCompacted(0, restarted::restore));
+    }
+
+    @Test
+    void anEndThatAnEventLiesBehindIsRefused() {
+        CountShard shard = shard(QUAY);
+        feed(shard, "quay-banner", "plain", 20);
+        Plan stopped = QUAY.amended(
+                List.of(new Amendment(Plans.FROM.plus(Duration.ofMinutes(15)), "in the dock", new Amendment.Stop())));
+
+        assertThrows(LateAmendmentException.class, () -> shard.adopt(entries(true, stopped)));
+    }
+
+    @Test
+    void stateOfAnExperimentWithoutAPlanIsKnownToBeLeftOut() {
+        CountShard shard = shard(QUAY);
+        StateLog log = new StateLog();
+        feed(shard, "quay-banner", "plain", 1);
+        log.append(shard.drain().state());
+        CountShard early = shard();
+        log.replayCompacted(0, early::restore);
+
+        assertEquals(Set.of("quay-banner"), early.unplannedState());
+        CountShard restored = shard(QUAY);
+        log.replayCompacted(0, restored::restore);
+        assertEquals(Set.of(), restored.unplannedState());
     }
 
     /** Whenever amendments are learnt of, and through restarts: the same counts as if they had been planned. */
@@ -250,7 +296,7 @@ class CountAdoptTest {
                 amendments.add(new Amendment(at, "in the dock", new Amendment.Stop()));
                 break;
             }
-            Map<String, Double> shares = new java.util.TreeMap<>();
+            Map<String, Double> shares = new TreeMap<>();
             plan.variants()
                     .forEach(variant ->
                             shares.put(variant.name(), 1.0 / plan.variants().size()));

@@ -27,6 +27,7 @@ import java.util.ArrayList;
 import java.util.List;
 import java.util.Map;
 import java.util.Random;
+import java.util.Set;
 import org.junit.jupiter.api.Test;
 
 class DecideAmendedTest {
@@ -212,6 +213,10 @@ class DecideAmendedTest {
                 long tilt = random.nextInt(200);
                 double plain = amended.sharesIn(amended.epochAt(day(day).toEpochMilli()))[0];
                 long trials = Math.round(3000 * plain);
+                if (random.nextInt(5) == 0) {
+                    updates.add(DecideHost.update(amended, 0, 1, day + 1));
+                    continue;
+                }
                 updates.add(day(amended, day, trials, trials / 5, 3000 - trials, (3000 - trials) / 5 + tilt));
             }
 
@@ -286,6 +291,43 @@ class DecideAmendedTest {
 
         assertEquals(plan, decisions.get(0).plan());
         assertThrows(PlanChangedException.class, () -> shard.adopt(standing(other)));
+    }
+
+    @Test
+    void aStopOvertakesWhatIsStillToCome() {
+        Plan amended = days().build().amended(List.of(shares(6, 0.2), stop(2)));
+        DecideShard shard = shard(amended);
+        take(shard, even(amended, 0));
+        take(shard, even(amended, 1));
+
+        assertEquals(List.of(Occasion.PLAN, Occasion.LOOK, Occasion.AMENDED, Occasion.END), occasions());
+        assertEquals(stop(2), decisions.get(2).amendment());
+        assertEquals(List.of(), differences(decisions));
+    }
+
+    @Test
+    void stateOfAnExperimentWithoutAPlanIsKnownToBeLeftOut() {
+        Plan plan = days().build();
+        DecideShard shard = shard(plan);
+        take(shard, even(plan, 0));
+        DecideShard early = new DecideShard(List.of());
+        log.replayCompacted(0, early::restore);
+
+        assertEquals(Set.of("quay-banner"), early.unplannedState());
+        DecideShard restored = shard(plan);
+        log.replayCompacted(0, restored::restore);
+        assertEquals(Set.of(), restored.unplannedState());
+    }
+
+    @Test
+    void anAmendmentThatCameTooLateIsRefusedAfterARestartToo() {
+        Plan plan = days().build();
+        DecideShard shard = shard(plan);
+        take(shard, even(plan, 0));
+        take(shard, even(plan, 1));
+        DecideShard restarted = shard(plan.amended(List.of(shares(1, 0.2))));
+
+        assertThrows(LateAmendmentException.class, () -> log.replayCompacted(0, restarted::restore));
     }
 
     @Test

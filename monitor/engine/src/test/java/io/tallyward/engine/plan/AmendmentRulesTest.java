@@ -80,6 +80,19 @@ class AmendmentRulesTest {
     }
 
     @Test
+    void aStopAndAnEndNeedNotWaitForARampAndAStopOvertakesEverything() {
+        Plans ramp = plan().epochs(new AllocationEpoch(DAY_3, Map.of("plain", 0.2, "wide", 0.8)));
+        assertAllowed(ramp, amendment(DAY_1, new Amendment.Stop()));
+        assertAllowed(ramp, end(DAY_1, DAY_9));
+        assertAllowed(plan(), shares(DAY_3, 0.4, 0.6), amendment(DAY_2, new Amendment.Stop()));
+        assertEquals(
+                List.of(amendment(DAY_2, new Amendment.Stop())),
+                plan().build()
+                        .amended(List.of(shares(DAY_3, 0.4, 0.6), amendment(DAY_2, new Amendment.Stop())))
+                        .amendmentsInForce());
+    }
+
+    @Test
     void nothingIsAmendedAfterTheRun() {
         assertRefused("before the end of the run", plan(), end(DAY_5, DAY_9));
         assertRefused("before the end of the run", plan(), end(DAY_1, DAY_2), shares(DAY_2, 0.4, 0.6));

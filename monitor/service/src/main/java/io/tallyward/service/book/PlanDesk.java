@@ -9,15 +9,18 @@ import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.PlanBook;
 import io.tallyward.engine.plan.PlanBook.Ruling;
 import io.tallyward.engine.plan.PlanEntry;
+import io.tallyward.engine.plan.PlanTerms;
 import java.nio.charset.StandardCharsets;
 import java.time.Duration;
 import java.time.Instant;
 import java.time.InstantSource;
 import java.util.ArrayList;
 import java.util.Collection;
+import java.util.Collections;
 import java.util.List;
 import java.util.Map;
 import java.util.Optional;
+import java.util.stream.Collectors;
 import org.slf4j.Logger;
 import org.slf4j.LoggerFactory;
 
@@ -52,7 +55,7 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
     /** Guarded by this. */
     private long version;
 
-    /** Whether everything written has been read once. */
+    /** Whether everything written has been read once, and what the files of this instance say is in it. */
     private volatile boolean open;
 
     private PlanDesk(
@@ -116,24 +119,45 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
 
     @Override
     public PlanSnapshot snapshot() {
-        if (!open) {
-            catchUp();
-        }
+        requireOpen();
         return copy();
+    }
+
+    /** Counting before the files are in the book would take events of their experiments for those of unknown ones. */
+    private void requireOpen() {
+        requireReadable();
+        if (!open) {
+            throw new BrokerException("the book of plans is not read yet, or the plan files are not in it: "
+                    + log.status().lastError().orElse("reading it"));
+        }
+    }
+
+    private void requireReadable() {
+        SharedLogStatus status = log.status();
+        if (status.state() == WorkerState.FAILED) {
+            throw new IllegalStateException(
+                    "the book of plans cannot be read: " + status.lastError().orElse("its log says why"));
+        }
     }
 
     private synchronized PlanSnapshot copy() {
         if (current == null) {
-            current = new PlanSnapshot(version, book.entries(), book.refusals());
+            current = new PlanSnapshot(
+                    version, Collections.unmodifiableMap(book.entries()), Collections.unmodifiableMap(book.refusals()));
         }
         return current;
     }
 
     @Override
     public PlanSnapshot catchUp() {
-        log.catchUp(PATIENCE);
-        open = true;
+        requireOpen();
+        readOn();
         return copy();
+    }
+
+    private void readOn() {
+        requireReadable();
+        log.catchUp(PATIENCE);
     }
 
     @Override
@@ -158,7 +182,7 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
      * @throws BrokerException when that cannot be written and read back
      */
     public List<Rejected> propose(List<Plan> plans) {
-        catchUp();
+        readOn();
         Instant notBefore = clock.instant().plus(maxSkew).plus(LEAD);
         List<PlanEntry> proposals = new ArrayList<>();
         for (Plan plan : plans) {
@@ -169,7 +193,8 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
         if (!proposals.isEmpty()) {
             append(proposals);
         }
-        return rejected(plans);
+        open = true;
+        return differing(plans);
     }
 
     /**
@@ -184,25 +209,42 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
         return !(book.rule(plan, notBefore) instanceof Ruling.Unchanged) && !book.hasRefused(plan);
     }
 
-    private synchronized List<Rejected> rejected(List<Plan> plans) {
+    /**
+     * The plans that are not what stands, and why: they were refused, or another instance proposed another one.
+     *
+     * @param plans what the files of this instance say
+     */
+    public synchronized List<Rejected> differing(List<Plan> plans) {
         List<Rejected> rejected = new ArrayList<>();
         for (Plan plan : plans) {
-            book.refusals().getOrDefault(plan.experiment(), List.of()).stream()
-                    .filter(refusal -> refusal.proposed().equals(plan))
-                    .reduce((earlier, later) -> later)
-                    .ifPresent(refusal -> rejected.add(new Rejected(plan.experiment(), refusal.reason())));
+            PlanBook.Entry entry = book.entries().get(plan.experiment());
+            if (entry != null && !entry.plan().equals(plan)) {
+                rejected.add(new Rejected(plan.experiment(), refusal(plan).orElseGet(() -> difference(entry, plan))));
+            }
         }
         return rejected;
     }
 
+    private Optional<String> refusal(Plan plan) {
+        return book.refusals().getOrDefault(plan.experiment(), List.of()).stream()
+                .filter(refusal -> refusal.proposed().equals(plan))
+                .reduce((earlier, later) -> later)
+                .map(PlanBook.Refusal::reason);
+    }
+
+    private static String difference(PlanBook.Entry standing, Plan plan) {
+        List<PlanTerms.Difference> terms = PlanTerms.differences(standing.plan(), plan);
+        return terms.isEmpty()
+                ? "its amendments are not the " + standing.plan().amendments().size() + " that stand"
+                : "another one was proposed after it: "
+                        + terms.stream().map(PlanTerms.Difference::toString).collect(Collectors.joining("; "));
+    }
+
     @Override
     public void requireRecent() {
+        requireReadable();
         SharedLogStatus status = log.status();
         Instant oldest = clock.instant().minus(LEAD.dividedBy(2));
-        if (status.state() == WorkerState.FAILED) {
-            throw new IllegalStateException(
-                    "the book of plans cannot be read: " + status.lastError().orElse("its log says why"));
-        }
         if (status.confirmed().filter(moment -> !moment.isBefore(oldest)).isEmpty()) {
             throw new BrokerException("the book of plans has not been read for "
                     + LEAD.dividedBy(2).toSeconds()

@@ -1,6 +1,7 @@
 package io.tallyward.service.book;
 
 import io.tallyward.connector.kafka.BrokerException;
+import io.tallyward.engine.plan.Plan;
 import io.tallyward.service.config.document.Problem;
 import io.tallyward.service.plan.PlanDirectory;
 import io.tallyward.service.status.HealthSource;
@@ -34,6 +35,7 @@ public final class PlanFiles implements AutoCloseable {
     private final Thread thread;
 
     private String proposed = "";
+    private List<Plan> said = List.of();
     private volatile Findings findings = new Findings(false, 0, List.of(), List.of());
 
     /** What is the case with the files, as of the last time they were looked at. */
@@ -73,6 +75,7 @@ public final class PlanFiles implements AutoCloseable {
     private boolean look() {
         String print = PlanDirectory.print(directory);
         if (print.equals(proposed)) {
+            compare();
             return true;
         }
         PlanDirectory.Contents contents = PlanDirectory.readUsable(directory);
@@ -81,19 +84,33 @@ public final class PlanFiles implements AutoCloseable {
             contents.problems().forEach(problem -> LOG.warn("A plan file changes nothing: {}", problem.message()));
             sayRejected(rejected);
             findings = new Findings(true, contents.plans().size(), contents.problems(), rejected);
+            said = contents.plans();
             proposed = print;
             return true;
         } catch (BrokerException later) {
             LOG.debug("Plans are proposed later", later);
             return false;
+        } catch (RuntimeException unexpected) {
+            LOG.error("Plan files cannot be proposed; trying again", unexpected);
+            return false;
+        }
+    }
+
+    /** Others may have proposed other plans since. */
+    private void compare() {
+        Findings before = findings;
+        List<PlanDesk.Rejected> rejected = desk.differing(said);
+        if (!rejected.equals(before.rejected())) {
+            sayRejected(rejected);
+            findings = new Findings(true, before.plans(), before.problems(), rejected);
         }
     }
 
     private void sayRejected(List<PlanDesk.Rejected> rejected) {
         for (PlanDesk.Rejected plan : rejected) {
             LOG.warn(
-                    "The plan of {} in {} is not the one that stands: {}. The frozen plan stands; put it back into its"
-                            + " file, or give the changed plan a new experiment name.",
+                    "The plan of {} in {} is not the one that stands: {}. Counts and decisions go by the one that stands,"
+                            + " which the experiment's page shows.",
                     plan.experiment(),
                     directory,
                     plan.reason());
@@ -125,7 +142,7 @@ public final class PlanFiles implements AutoCloseable {
                     + ".";
         }
         if (!now.rejected().isEmpty()) {
-            detail += " Refused, while the frozen plan stands: "
+            detail += " Not what stands and is counted by: "
                     + now.rejected().stream()
                             .limit(MOST_NAMED)
                             .map(PlanDesk.Rejected::experiment)

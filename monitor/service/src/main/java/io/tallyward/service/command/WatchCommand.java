@@ -5,6 +5,7 @@ import com.fasterxml.jackson.databind.node.ObjectNode;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.service.config.ConfigReader;
 import io.tallyward.service.config.ServiceConfig;
+import io.tallyward.service.config.document.BadInputException;
 import io.tallyward.service.plan.PlanDirectory;
 import java.nio.file.Path;
 import java.util.List;
@@ -41,7 +42,7 @@ final class WatchCommand extends CommandBase {
     @Override
     ExitCode run(Output output) throws Exception {
         ServiceConfig config = new ConfigReader(environment).read(file).orElseThrow();
-        List<Plan> plans = PlanDirectory.read(config.plans()).orElseThrow();
+        List<Plan> plans = usablePlans(config);
         AutoCloseable service = starter.start(config, plans);
         try {
             say(output, "watching", plans);
@@ -51,6 +52,12 @@ final class WatchCommand extends CommandBase {
         }
         say(output, "stopped", plans);
         return ExitCode.FINE;
+    }
+
+    /** A file that cannot be used is told about while the service runs; only where none can, there is nothing to start with. */
+    private static List<Plan> usablePlans(ServiceConfig config) throws BadInputException {
+        List<Plan> usable = PlanDirectory.readUsable(config.plans()).plans();
+        return usable.isEmpty() ? PlanDirectory.read(config.plans()).orElseThrow() : usable;
     }
 
     private static void say(Output output, String state, List<Plan> plans) {

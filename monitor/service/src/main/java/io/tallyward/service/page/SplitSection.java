@@ -28,7 +28,7 @@ final class SplitSection {
     }
 
     private static void epoch(Markup html, Standing standing, int epoch, double alpha) {
-        boolean several = !standing.view().plan().epochs().isEmpty();
+        boolean several = standing.view().plan().epochCount() > 1;
         Table table = Table.open(
                 html,
                 "Shares against the plan" + (several ? ", allocation epoch " + epoch : ""),

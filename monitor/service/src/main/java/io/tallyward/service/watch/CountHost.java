@@ -83,10 +83,11 @@ final class CountHost implements HostedShard {
         this.trafficLog = trafficLog;
         this.board = board;
         keyCheck = new KeyCheck(partition, partitions);
-        adopt(plans.snapshot());
+        adopt(plans.catchUp());
     }
 
     private void adopt(PlanSnapshot snapshot) {
+        StalePlans.require(snapshot, shard.unplannedState());
         PlanNames before = shard.names();
         shard.adopt(snapshot.entries().values());
         if (parser == null || shard.names() != before) {
@@ -130,8 +131,8 @@ final class CountHost implements HostedShard {
     @Override
     public void apply(ConsumerRecord<byte[], byte[]> record) {
         boolean usual = isUsual(record);
-        if (usual && shard.mustFreeze(slot.experiment(), slot.atMillis())) {
-            freeze(slot.experiment());
+        if (usual && shard.mustFreeze(slot.experiment(), slot.atMillis(), record.timestamp())) {
+            freeze(slot.atMillis());
             usual = isUsual(record);
         }
         if (usual) {
@@ -149,9 +150,9 @@ final class CountHost implements HostedShard {
         }
     }
 
-    /** Freezes the plan of an experiment; from then on its event may mean something else than before. */
-    private void freeze(int experiment) {
-        adopt(plans.freeze(List.of(shard.names().experimentName(experiment))));
+    /** Freezes the plans of all runs that have begun by then; an event may mean something else than before. */
+    private void freeze(long atMillis) {
+        adopt(plans.freeze(shard.begunUnfrozen(atMillis)));
     }
 
     private void admit(ConsumerRecord<byte[], byte[]> record, EventSlot event) {
@@ -194,8 +195,8 @@ final class CountHost implements HostedShard {
 
     private void admit(ConsumerRecord<byte[], byte[]> record, Event event) {
         int experiment = shard.names().experiment(event.experiment());
-        if (experiment >= 0 && shard.mustFreeze(experiment, event.atMillis())) {
-            freeze(experiment);
+        if (experiment >= 0 && shard.mustFreeze(experiment, event.atMillis(), record.timestamp())) {
+            freeze(event.atMillis());
         }
         Optional<RejectReason> rejected = shard.apply(topics.indexOf(record.topic()), record.timestamp(), event);
         if (rejected.isPresent()) {

@@ -40,7 +40,9 @@ final class DecideHost implements HostedShard {
     private final StatusBoard board;
     private final Set<String> saidUnplanned = new HashSet<>();
     private final List<DecisionRecord> fresh = new ArrayList<>();
+    private final Set<String> missing = new HashSet<>();
     private long planVersion;
+    private long refusalsVersion = -1;
 
     DecideHost(DecideShard shard, PlanSource plans, int partition, TopicNames names, StatusBoard board) {
         this.shard = shard;
@@ -48,18 +50,19 @@ final class DecideHost implements HostedShard {
         this.partition = partition;
         this.names = names;
         this.board = board;
-        adopt(plans.snapshot());
+        adopt(plans.catchUp());
     }
 
     /** Of the experiments that are found in this partition of the tallies. */
     private void adopt(PlanSnapshot snapshot) {
+        StalePlans.require(snapshot, shard.unplannedState());
         List<PlanBook.Entry> own = snapshot.entries().values().stream()
                 .filter(entry -> TopicNames.partitionOf(entry.plan().experiment()) == partition)
                 .toList();
         shard.adopt(own);
         own.forEach(entry -> shard.expect(entry.plan().experiment()));
-        snapshot.refusals().forEach(shard::refuse);
         planVersion = snapshot.version();
+        missing.clear();
     }
 
     @Override
@@ -73,9 +76,11 @@ final class DecideHost implements HostedShard {
             return;
         }
         TallyUpdate update = TallyJson.read(record.value());
-        if (!shard.planDigest(update.experiment()).equals(Optional.of(update.planDigest()))) {
+        if (!missing.contains(update.experiment())
+                && !shard.planDigest(update.experiment()).equals(Optional.of(update.planDigest()))) {
             // Whoever counted it knew more of the book.
             adopt(plans.catchUp());
+            missing.add(update.experiment());
         }
         shard.apply(update);
         for (String experiment : shard.unplanned().keySet()) {
@@ -95,6 +100,11 @@ final class DecideHost implements HostedShard {
         PlanSnapshot snapshot = plans.snapshot();
         if (snapshot.version() != planVersion) {
             adopt(snapshot);
+        }
+        if (refusalsVersion != snapshot.version()) {
+            // Not before what was told is restored.
+            snapshot.refusals().forEach(shard::refuse);
+            refusalsVersion = snapshot.version();
         }
     }
 
