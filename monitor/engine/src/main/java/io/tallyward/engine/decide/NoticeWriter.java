@@ -120,8 +120,8 @@ final class NoticeWriter {
                 plan.experiment() + ": a changed plan is refused, and the frozen plan stands: "
                         + shortened(refusal.reason()) + ".",
                 facts,
-                "Put the frozen plan back into its file, or give the changed plan a new experiment name; what may be amended"
-                        + " is the end of the run, the split, and a stop.",
+                "Put what was frozen back into the plan file, with the amendments made so far, or give the changed plan a new"
+                        + " experiment name; an amendment that comes too early needs a later moment.",
                 decision);
     }
 

@@ -109,12 +109,18 @@ public final class PlanBook {
         }
         for (Amendment added : now.subList(before.size(), now.size())) {
             if (added.at().isBefore(notBefore)) {
-                return new Ruling.Refused(
-                        "amendment " + (now.indexOf(added) + 1) + ": at " + added.at() + " (expected: " + notBefore
-                                + " or later, as events of an earlier time may be counted already)");
+                return new Ruling.Refused("amendment " + (now.indexOf(added) + 1) + ": at " + added.at()
+                        + ", where events may be counted already (expected: " + windowFrom(frozen, notBefore)
+                        + " or later)");
             }
         }
         return new Ruling.Amended(now.subList(before.size(), now.size()));
+    }
+
+    /** The first start of a window that is not before a moment. */
+    private static Instant windowFrom(Plan plan, Instant moment) {
+        long window = plan.count().window().toMillis();
+        return Instant.ofEpochMilli(Math.floorDiv(moment.toEpochMilli() + window, window) * window);
     }
 
     private static String named(List<PlanTerms.Difference> differences) {

@@ -64,6 +64,7 @@ public final class PlanTerms {
 
     private static void addTest(Map<String, String> terms, TestPlan test) {
         terms.put("better", code(test.better()));
+        terms.put("test.alpha", String.valueOf(test.alpha()));
         terms.put("test.sides", code(test.sides()));
         addTail(terms, "test.benefit", test.benefit());
         test.harm().ifPresent(harm -> addTail(terms, "test.harm", harm));

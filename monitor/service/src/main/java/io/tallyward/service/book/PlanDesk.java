@@ -10,6 +10,7 @@ import io.tallyward.engine.plan.PlanBook;
 import io.tallyward.engine.plan.PlanBook.Ruling;
 import io.tallyward.engine.plan.PlanEntry;
 import io.tallyward.engine.plan.PlanTerms;
+import io.tallyward.service.plan.AmendmentWords;
 import java.nio.charset.StandardCharsets;
 import java.time.Duration;
 import java.time.Instant;
@@ -90,8 +91,12 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
             version++;
             current = null;
         }
-        if (open) {
-            ruling.ifPresent(told -> say((PlanEntry.Proposal) read, told));
+        if (!open) {
+            return;
+        }
+        ruling.ifPresent(told -> say((PlanEntry.Proposal) read, told));
+        if (ruling.isEmpty()) {
+            LOG.info("{}: the plan is frozen; from now on it can be amended, and not changed", read.experiment());
         }
     }
 
@@ -102,15 +107,15 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
         } else if (ruling instanceof Ruling.Amended amended) {
             amended.added()
                     .forEach(amendment -> LOG.info(
-                            "{}: amended by {} from {} on, {}",
+                            "{}: amended by {} from {} on: {} ({})",
                             experiment,
                             proposal.by(),
                             amendment.at(),
+                            AmendmentWords.of(amendment.change()),
                             amendment.reason()));
         } else if (ruling instanceof Ruling.Refused refused) {
             LOG.warn(
-                    "{}: the plan proposed by {} is refused and the frozen plan stands: {}. Put the frozen plan back into"
-                            + " its file, or give the changed plan a new experiment name.",
+                    "{}: the plan proposed by {} is refused, and the frozen plan stands: {}",
                     experiment,
                     proposal.by(),
                     refused.reason());

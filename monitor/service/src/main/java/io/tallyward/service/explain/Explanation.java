@@ -77,8 +77,11 @@ public final class Explanation {
                 "This was look " + moment.number() + ", with everything counted up to "
                         + Numbers.minute(record.windowEnd()) + ".";
             case END ->
-                "The run ended on " + Numbers.minute(record.windowEnd())
-                        + ", and no last look was possible: a variant had too few clicks, or too few units without one.";
+                record.verdict() == Verdict.STOPPED
+                        ? "The owner ended the experiment on " + Numbers.minute(record.windowEnd())
+                                + "; no last look is taken then."
+                        : "The run ended on " + Numbers.minute(record.windowEnd())
+                                + ", and no last look was possible: a variant had too few clicks, or too few units without one.";
             case PLAN, AMENDED, TRUST ->
                 "This is how things stood on " + Numbers.minute(record.windowEnd()) + ", after "
                         + (moment.number() == 0

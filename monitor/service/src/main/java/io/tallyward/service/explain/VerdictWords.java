@@ -74,7 +74,8 @@ final class VerdictWords {
                 "that the gain will be exactly this large or will last, nor anything about what was not counted here";
             case STOP_HARM -> "why it does worse, nor that a changed version would too";
             case STOP_FUTILITY -> "that both are the same (a small difference, either way, remains possible)";
-            case EXHAUSTED, STOPPED -> "that both are the same (differences within the range above remain possible)";
+            case EXHAUSTED -> "that both are the same (differences within the range above remain possible)";
+            case STOPPED -> "that both are the same: the experiment ended before its time";
         };
     }
 

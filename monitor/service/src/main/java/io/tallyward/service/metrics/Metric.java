@@ -188,7 +188,7 @@ enum Metric {
     PLAN_TROUBLES(
             "tallyward_plan_troubles",
             Kind.GAUGE,
-            "Plan files here that cannot be used, and plans in them that were refused."),
+            "Problems of plan files here, and plans in them that are not the ones that stand."),
     WEBHOOK_ATTEMPTS("tallyward_webhook_attempts_total", Kind.COUNTER, "Webhook requests sent."),
     WEBHOOK_FAILURES("tallyward_webhook_failures_total", Kind.COUNTER, "Webhook requests that did not succeed."),
     WEBHOOK_PENDING("tallyward_webhook_pending", Kind.GAUGE, "Notices not yet delivered."),

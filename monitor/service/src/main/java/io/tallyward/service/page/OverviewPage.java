@@ -170,7 +170,7 @@ final class OverviewPage {
     }
 
     static String run(Standing standing) {
-        Duration most = standing.view().plan().run().atMost();
+        Duration most = standing.length();
         return Figures.wholePercent(standing.runFraction()) + " of " + Figures.span(most) + " at most";
     }
 

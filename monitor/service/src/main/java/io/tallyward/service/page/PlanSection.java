@@ -5,9 +5,8 @@ import io.tallyward.engine.plan.LookSchedule;
 import io.tallyward.engine.plan.Plan;
 import io.tallyward.engine.plan.TestPlan;
 import io.tallyward.engine.plan.TestPlan.AlphaSharing;
+import io.tallyward.service.plan.AmendmentWords;
 import io.tallyward.service.plan.PlanWords;
-import java.util.TreeMap;
-import java.util.stream.Collectors;
 
 /** What the owner decided before the first event was counted. */
 final class PlanSection {
@@ -103,22 +102,8 @@ final class PlanSection {
     }
 
     private static String amended(Amendment amendment) {
-        return "from " + Figures.minute(amendment.at()) + " on: " + changed(amendment.change()) + " ("
+        return "from " + Figures.minute(amendment.at()) + " on: " + AmendmentWords.of(amendment.change()) + " ("
                 + amendment.reason() + ")";
-    }
-
-    private static String changed(Amendment.Change change) {
-        if (change instanceof Amendment.End other) {
-            return "the run ends " + Figures.minute(other.end());
-        }
-        if (change instanceof Amendment.Shares other) {
-            return "shares "
-                    + new TreeMap<>(other.shares())
-                            .entrySet().stream()
-                                    .map(share -> share.getKey() + " " + PlanWords.shortest(share.getValue()))
-                                    .collect(Collectors.joining(", "));
-        }
-        return "stopped by the owner";
     }
 
     private static String schedule(LookSchedule looks) {

@@ -174,9 +174,14 @@ record Standing(ExperimentView view) {
                 .toList();
     }
 
+    /** Length of the longest possible run, amendments considered. */
+    Duration length() {
+        return Duration.between(view.plan().run().from(), view.plan().end());
+    }
+
     /** How much of the longest possible run is complete, in [0, 1]. */
     double runFraction() {
-        return elapsed().toMillis() / (double) view.plan().run().atMost().toMillis();
+        return elapsed().toMillis() / (double) length().toMillis();
     }
 
     /** How much of the run is complete, in event time. */

@@ -133,10 +133,10 @@ final class DecideHost implements HostedShard {
     public void committed() {
         for (DecisionRecord decision : fresh) {
             LOG.info(
-                    "{}: {} {} up to {}: verdict {}, trust {}",
+                    "{}: record {}, {}, up to {}: verdict {}, trust {}",
                     decision.experiment(),
-                    decision.occasion().code(),
                     decision.sequence(),
+                    decision.occasion().code(),
                     decision.windowEnd(),
                     decision.verdict().code(),
                     decision.trust().code());
