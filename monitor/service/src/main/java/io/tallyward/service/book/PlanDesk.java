@@ -78,6 +78,11 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
         return new PlanDesk(clientProperties, topic, clock, maxSkew, by);
     }
 
+    /** The earliest moment at which an amendment that is proposed now may take effect. */
+    public static Instant notBefore(Instant now, Duration maxSkew) {
+        return now.plus(maxSkew).plus(LEAD);
+    }
+
     /** How the topic behind it fares. */
     public SharedLogStatus status() {
         return log.status();
@@ -188,7 +193,7 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
      */
     public List<Rejected> propose(List<Plan> plans) {
         readOn();
-        Instant notBefore = clock.instant().plus(maxSkew).plus(LEAD);
+        Instant notBefore = notBefore(clock.instant(), maxSkew);
         List<PlanEntry> proposals = new ArrayList<>();
         for (Plan plan : plans) {
             if (isNew(plan, notBefore)) {

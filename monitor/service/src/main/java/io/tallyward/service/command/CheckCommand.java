@@ -9,6 +9,7 @@ import io.tallyward.service.config.document.BadInputException;
 import io.tallyward.service.config.document.Checked;
 import io.tallyward.service.plan.PlanDirectory;
 import java.nio.file.Path;
+import java.time.InstantSource;
 import java.util.List;
 import java.util.Map;
 import picocli.CommandLine.Command;
@@ -22,13 +23,14 @@ import picocli.CommandLine.Option;
         exitCodeListHeading = ExitCode.HEADING,
         exitCodeList = {
             "0:Nothing is wrong.",
-            "2:An argument, the configuration or a plan cannot be used.",
+            "2:An argument, the configuration or a plan cannot be used, or a plan would be refused.",
             "3:The broker does not answer or refuses, or an input topic is not as it has to be."
         })
 final class CheckCommand extends CommandBase {
 
     private final Map<String, String> environment;
-    private final TopicLookup lookup;
+    private final BookCheck.Brokers brokers;
+    private final InstantSource clock;
 
     @Option(names = "--config", required = true, paramLabel = "FILE", description = "The configuration file.")
     private Path file;
@@ -36,27 +38,35 @@ final class CheckCommand extends CommandBase {
     @Option(names = "--no-broker", description = "Do not contact the broker.")
     private boolean withoutBroker;
 
-    CheckCommand(Map<String, String> environment, TopicLookup lookup) {
+    CheckCommand(Map<String, String> environment, BookCheck.Brokers brokers, InstantSource clock) {
         this.environment = environment;
-        this.lookup = lookup;
+        this.brokers = brokers;
+        this.clock = clock;
     }
 
     @Override
     ExitCode run(Output output) throws BadInputException {
         ServiceConfig config = new ConfigReader(environment).read(file).orElseThrow();
         Checked<List<Plan>> plans = PlanDirectory.read(config.plans());
-        BrokerCheck broker = withoutBroker ? BrokerCheck.SKIPPED : BrokerCheck.of(config, lookup);
+        BrokerCheck broker = withoutBroker ? BrokerCheck.SKIPPED : BrokerCheck.of(config, brokers.lookup());
         if (!plans.problems().isEmpty()) {
             output.problems(plans.problems());
             broker.problems().forEach(output::problem);
             return ExitCode.BAD_INPUT;
         }
-        report(output, config, plans.orElseThrow(), broker);
+        BookCheck book = withoutBroker || !broker.problems().isEmpty()
+                ? BookCheck.SKIPPED
+                : BookCheck.of(config, plans.orElseThrow(), brokers, clock.instant());
+        report(output, config, plans.orElseThrow(), broker, book);
         broker.problems().forEach(output::problem);
+        if (!book.problems().isEmpty()) {
+            output.problems(book.problems());
+            return book.standings().isEmpty() ? ExitCode.BROKEN_SURROUNDINGS : ExitCode.BAD_INPUT;
+        }
         return broker.problems().isEmpty() ? ExitCode.FINE : ExitCode.BROKEN_SURROUNDINGS;
     }
 
-    private void report(Output output, ServiceConfig config, List<Plan> plans, BrokerCheck broker) {
+    private void report(Output output, ServiceConfig config, List<Plan> plans, BrokerCheck broker, BookCheck book) {
         List<String> experiments = plans.stream().map(Plan::experiment).toList();
         if (output.json()) {
             ObjectNode object = Output.typed("check").put("config", file.toString());
@@ -65,13 +75,18 @@ final class CheckCommand extends CommandBase {
             object.put("brokerChecked", !withoutBroker);
             ObjectNode topics = object.putObject("topics");
             broker.partitions().forEach(topics::put);
-            object.put("problems", broker.problems().size());
+            ObjectNode standings = object.putObject("book");
+            book.standings().forEach(standings::put);
+            object.put("problems", broker.problems().size() + book.problems().size());
             output.line(object);
             return;
         }
         output.line("configuration  fine: " + file);
         output.line("plans          fine: " + String.join(", ", experiments));
         output.line("broker         " + broker(config, broker));
+        if (book.asked()) {
+            output.line("book of plans  " + book.text());
+        }
     }
 
     private String broker(ServiceConfig config, BrokerCheck broker) {

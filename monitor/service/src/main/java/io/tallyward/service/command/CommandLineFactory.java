@@ -3,6 +3,7 @@ package io.tallyward.service.command;
 import io.tallyward.engine.EngineVersion;
 import io.tallyward.service.config.document.Suggestion;
 import java.io.PrintWriter;
+import java.time.InstantSource;
 import java.util.Collection;
 import java.util.List;
 import java.util.Map;
@@ -64,7 +65,8 @@ public final class CommandLineFactory {
             StopSignal stop) {
         return new CommandLine(new Root())
                 .addSubcommand(new WatchCommand(environment, starter, stop))
-                .addSubcommand(new CheckCommand(environment, lookup))
+                .addSubcommand(
+                        new CheckCommand(environment, new BookCheck.Brokers(lookup, reading), InstantSource.system()))
                 .addSubcommand(new BoundariesCommand())
                 .addSubcommand(new RehearseCommand())
                 .addSubcommand(new ReplayCommand(environment, new InputTopics.Brokers(lookup, reading, inputs)))

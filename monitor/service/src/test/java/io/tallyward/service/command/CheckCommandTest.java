@@ -1,10 +1,15 @@
 package io.tallyward.service.command;
 
 import static org.junit.jupiter.api.Assertions.assertEquals;
+import static org.junit.jupiter.api.Assertions.assertTrue;
 
+import io.tallyward.connector.format.PlanEntryJson;
+import io.tallyward.engine.plan.PlanEntry;
+import io.tallyward.service.plan.PlanReader;
 import java.io.IOException;
 import java.nio.file.Files;
 import java.nio.file.Path;
+import java.time.Instant;
 import java.util.List;
 import java.util.Map;
 import org.junit.jupiter.api.BeforeEach;
@@ -52,14 +57,57 @@ class CheckCommandTest {
                         List.of(
                                 "configuration  fine: " + config,
                                 "plans          fine: quay-banner",
-                                "broker         fine: 127.0.0.1:9092, views, clicks with 4 partitions"),
+                                "broker         fine: 127.0.0.1:9092, views, clicks with 4 partitions",
+                                "book of plans  new: quay-banner"),
                         List.of()),
                 check((properties, topics) -> Map.of("views", 4, "clicks", 4)));
         assertEquals(
-                List.of("{\"type\":\"check\",\"config\":\"" + config + "\",\"experiments\":[\"quay-banner\"],"
-                        + "\"brokerChecked\":true,\"topics\":{\"clicks\":4,\"views\":4},\"problems\":0}"),
+                List.of(
+                        "{\"type\":\"check\",\"config\":\"" + config + "\",\"experiments\":[\"quay-banner\"],"
+                                + "\"brokerChecked\":true,\"topics\":{\"clicks\":4,\"views\":4},\"book\":{\"quay-banner\":\"new\"},\"problems\":0}"),
                 check((properties, topics) -> Map.of("views", 4, "clicks", 4), "--json")
                         .out());
+    }
+
+    @Test
+    void saysWhatTheBookOfPlansWouldMakeOfThePlans() throws IOException {
+        Files.writeString(
+                directory.resolve("plans/chip.yaml"),
+                PLAN.replace("quay-banner", "fare-chip").replace("alpha: 0.05", "alpha: 0.01"));
+        List<PlanEntry> entries = List.of(
+                proposal(PLAN),
+                proposal(PLAN.replace("quay-banner", "fare-chip")),
+                new PlanEntry.Freeze("quay-banner"),
+                new PlanEntry.Freeze("fare-chip"));
+
+        CommandRun run = CommandRun.of(
+                (properties, topics) -> topics.contains("tallyward-plans")
+                        ? Map.of("tallyward-plans", 1)
+                        : Map.of("views", 4, "clicks", 4),
+                (properties, topic, values) -> {
+                    assertEquals("tallyward-plans", topic);
+                    entries.forEach(entry -> values.accept(PlanEntryJson.write(entry)));
+                },
+                (properties, topics, from, to, records) -> {
+                    throw new AssertionError("the input was read");
+                },
+                "check",
+                "--config",
+                config.toString());
+
+        assertEquals(2, run.status());
+        assertEquals(
+                "book of plans  frozen: quay-banner; refused: fare-chip",
+                run.out().get(3));
+        assertTrue(
+                run.err().get(0).contains("the plan of fare-chip would be refused")
+                        && run.err().get(0).contains("test.alpha is 0.05, not 0.01"),
+                run.err().toString());
+    }
+
+    private static PlanEntry proposal(String plan) {
+        return new PlanEntry.Proposal(
+                PlanReader.parse("plan.yaml", plan).value().orElseThrow(), Instant.EPOCH, "another instance");
     }
 
     @Test

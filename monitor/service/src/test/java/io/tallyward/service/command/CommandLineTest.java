@@ -44,7 +44,8 @@ class CommandLineTest {
         assertEnds(
                 "check",
                 "  0   Nothing is wrong.",
-                "  2   An argument, the configuration or a plan cannot be used.",
+                "  2   An argument, the configuration or a plan cannot be used, or a plan would",
+                "        be refused.",
                 "  3   The broker does not answer or refuses, or an input topic is not as it has",
                 "        to be.");
         assertEnds(
