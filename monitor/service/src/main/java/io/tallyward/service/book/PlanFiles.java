@@ -127,12 +127,13 @@ public final class PlanFiles implements AutoCloseable {
                         HealthSource.State.STARTING,
                         "Reading the book of plans; then the files are proposed.");
             }
-            return new HealthSource.Health("plans", HealthSource.State.OK, detail(now));
+            boolean trouble = !now.problems().isEmpty() || !now.rejected().isEmpty();
+            return new HealthSource.Health("plans", HealthSource.State.OK, detail(now), trouble);
         };
     }
 
     private static String detail(Findings now) {
-        String detail = now.plans() + " plan files in use.";
+        String detail = now.plans() + (now.plans() == 1 ? " plan file" : " plan files") + " can be used.";
         if (!now.problems().isEmpty()) {
             detail += " Cannot be used: "
                     + now.problems().stream()

@@ -59,6 +59,7 @@ final class Frame {
 
     private static void health(Markup html, MonitorState monitor) {
         banner(html, "problem", "The monitor itself is not fully at work; what follows may be old.", monitor.failing());
+        banner(html, "starting", "Counts and decisions are right; this needs attention all the same.", monitor.noted());
         banner(html, "starting", "Starting: what follows may be old or incomplete.", monitor.starting());
     }
 

@@ -37,6 +37,13 @@ public record MonitorState(List<Health> checks, boolean unkeyed, long rejected) 
         return checks.stream().allMatch(check -> check.state() == State.OK);
     }
 
+    /** The parts that work and have something to say all the same. */
+    List<Health> noted() {
+        return checks.stream()
+                .filter(check -> check.state() == State.OK && check.noted())
+                .toList();
+    }
+
     /** The parts that are on their way to work. */
     List<Health> starting() {
         return checks.stream().filter(check -> check.state() == State.STARTING).toList();

@@ -28,6 +28,9 @@ final class OverviewPage {
             return "No experiment";
         }
         long attention = attention(standings);
+        if (attention == 0 && !monitor.noted().isEmpty()) {
+            return "Plan files need attention";
+        }
         return attention == 0 ? "All quiet" : attention + (attention == 1 ? " needs" : " need") + " attention";
     }
 
@@ -80,6 +83,9 @@ final class OverviewPage {
             return experiments(standings) + ", input not keyed by unit: no rate to act on";
         }
         long attention = attention(standings);
+        if (attention == 0 && !monitor.noted().isEmpty()) {
+            return experiments(standings) + ", plan files need attention";
+        }
         return experiments(standings)
                 + (attention == 0
                         ? ", nothing needs attention"

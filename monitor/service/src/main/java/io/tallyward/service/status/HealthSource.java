@@ -15,8 +15,14 @@ public interface HealthSource {
      * @param name the part, as in {@code kafka}
      * @param state its state
      * @param detail one sentence: what is the case and, if anything is wrong, what to do
+     * @param noted whether the detail should be seen although the part works
      */
-    record Health(String name, State state, String detail) {
+    record Health(String name, State state, String detail, boolean noted) {
+
+        /** A part whose detail says nothing special while it works. */
+        public Health(String name, State state, String detail) {
+            this(name, state, detail, false);
+        }
 
         public Health {
             Objects.requireNonNull(name, "name");

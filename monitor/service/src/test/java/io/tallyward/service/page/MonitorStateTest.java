@@ -64,6 +64,17 @@ class MonitorStateTest {
         assertFalse(pages.overview(all, FINE).contains("class=\"banner starting\""));
     }
 
+    @Test
+    void isNotQuietAboutPlanFilesThatNeedAttention() {
+        Health refused = new Health("plans", State.OK, "Not what stands and is counted by: quay-banner.", true);
+        MonitorState noted = new MonitorState(List.of(refused), false, 0);
+
+        assertHeads("Plan files need attention", "1 experiment, plan files need attention", List.of(one), noted);
+        assertHeads("2 need attention", "2 of 6 experiments need attention", all, noted);
+        assertTrue(pages.experiment(one, noted).contains("Not what stands and is counted by: quay-banner."));
+        assertFalse(pages.experiment(one, noted).contains("class=\"banner problem\""));
+    }
+
     @ParameterizedTest
     @EnumSource(
             value = State.class,
