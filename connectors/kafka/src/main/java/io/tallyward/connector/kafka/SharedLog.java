@@ -54,6 +54,7 @@ public final class SharedLog implements AutoCloseable {
     private boolean stopping;
 
     private SharedLogSession session;
+    private String identity;
     private long position;
 
     private volatile WorkerState state = WorkerState.STARTING;
@@ -208,7 +209,7 @@ public final class SharedLog implements AutoCloseable {
         Request request = null;
         try {
             if (session == null) {
-                session = new SharedLogSession(topic, broker, clients, position);
+                session = new SharedLogSession(topic, broker, clients, position, identity);
             }
             request = waitForRequest();
             if (request != null) {
@@ -217,6 +218,7 @@ public final class SharedLog implements AutoCloseable {
             Instant asked = clock.instant();
             session.readToEnd(reader);
             position = session.position();
+            identity = session.identity();
             confirmed = asked;
             state = WorkerState.RUNNING;
             backoff.reset();
@@ -234,6 +236,11 @@ public final class SharedLog implements AutoCloseable {
             refuseAll(lastError);
             leave();
             pause(backoff.pause());
+        } catch (RuntimeException broken) {
+            if (request != null) {
+                request.done().completeExceptionally(new BrokerException(broken.getMessage(), broken));
+            }
+            throw broken;
         }
     }
 

@@ -34,10 +34,16 @@ final class SharedLogSession implements AutoCloseable {
     private final Cluster cluster;
     private final Consumer<byte[], byte[]> consumer;
     private Producer<byte[], byte[]> producer;
+    private final String identity;
     private long position;
 
-    /** @param position where to go on reading; 0 at first */
-    SharedLogSession(String topic, String broker, SharedLogClients clients, long position) {
+    /**
+     * Begins where an earlier session ended.
+     *
+     * @param position where to go on reading; 0 at first
+     * @param knownIdentity which topic of the name was read before; null at first
+     */
+    SharedLogSession(String topic, String broker, SharedLogClients clients, long position, String knownIdentity) {
         this.topic = topic;
         this.clients = clients;
         this.position = position;
@@ -45,6 +51,9 @@ final class SharedLogSession implements AutoCloseable {
         cluster = clients.cluster();
         try {
             new InternalTopics(cluster, broker).ensure(List.of(InternalTopic.kept(topic, 1)));
+            String found = cluster.ids(List.of(topic)).get(topic);
+            identity = knownIdentity == null ? found : knownIdentity;
+            requireSame(found);
             consumer = clients.reader();
         } catch (RuntimeException failure) {
             cluster.close();
@@ -54,6 +63,19 @@ final class SharedLogSession implements AutoCloseable {
         consumer.seek(partition, position);
     }
 
+    private void requireSame(String found) {
+        if (identity != null && found != null && !identity.equals(found)) {
+            throw new BrokerException(
+                    "topic " + topic + " was removed and created anew while the service ran: restart every"
+                            + " instance, so that all read it from its beginning");
+        }
+    }
+
+    /** Which topic of the name is read; null where brokers do not tell. */
+    String identity() {
+        return identity;
+    }
+
     /** Behind the last entry that was handed out. */
     long position() {
         return position;
@@ -61,6 +83,7 @@ final class SharedLogSession implements AutoCloseable {
 
     /** Hands out everything that is written by now. */
     void readToEnd(Reader reader) {
+        requireSame(cluster.ids(List.of(topic)).get(topic));
         long end = cluster.endOffset(partition);
         if (end < position) {
             throw cut();

@@ -12,6 +12,7 @@ import java.util.List;
 import java.util.Map;
 import java.util.concurrent.CopyOnWriteArrayList;
 import java.util.stream.IntStream;
+import org.apache.kafka.clients.admin.Admin;
 import org.awaitility.Awaitility;
 import org.junit.jupiter.api.Test;
 
@@ -105,8 +106,31 @@ class SharedLogIT {
                 assertThrows(BrokerException.class, () -> log.append(List.of(entry("a")), PATIENCE));
                 Awaitility.await().atMost(PATIENCE).until(() -> log.status().state() == WorkerState.FAILED);
                 assertEquals(
-                        "written by a later version", log.status().lastError().orElseThrow());
+                        topic + "-0@0 cannot be read: written by a later version",
+                        log.status().lastError().orElseThrow());
                 assertThrows(BrokerException.class, () -> log.catchUp(PATIENCE));
+            }
+        }
+    }
+
+    @Test
+    void anotherTopicOfTheSameNameIsNotReadOn() throws Exception {
+        try (BrokerUnderTest broker = BrokerUnderTest.start();
+                Admin admin = Admin.create(Map.of("bootstrap.servers", broker.bootstrapServers()))) {
+            String topic = broker.uniqueName("plans");
+            List<String> read = new CopyOnWriteArrayList<>();
+            try (SharedLog log = start(broker, topic, read)) {
+                log.append(List.of(entry("a")), PATIENCE);
+                admin.deleteTopics(List.of(topic)).all().get();
+                try (SharedLog other = start(broker, topic, new CopyOnWriteArrayList<>())) {
+                    Awaitility.await()
+                            .atMost(PATIENCE)
+                            .untilAsserted(() -> other.append(List.of(entry("b"), entry("c")), Duration.ofSeconds(5)));
+                }
+                Awaitility.await().atMost(PATIENCE).until(() -> log.status().state() == WorkerState.BROKER_UNREACHABLE);
+                BrokerException removed = assertThrows(BrokerException.class, () -> log.catchUp(PATIENCE));
+                assertTrue(removed.getMessage().contains("removed and created anew"), removed.getMessage());
+                assertEquals(List.of("a"), read);
             }
         }
     }
