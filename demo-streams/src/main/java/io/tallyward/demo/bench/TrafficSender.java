@@ -54,6 +54,7 @@ final class TrafficSender {
         Map<String, Object> properties = new HashMap<>(further);
         properties.put(ProducerConfig.BOOTSTRAP_SERVERS_CONFIG, bootstrapServers);
         properties.put(ProducerConfig.ENABLE_IDEMPOTENCE_CONFIG, true);
+        properties.put(ProducerConfig.MAX_IN_FLIGHT_REQUESTS_PER_CONNECTION, 1);
         properties.put(ProducerConfig.LINGER_MS_CONFIG, 50);
         properties.put(ProducerConfig.BATCH_SIZE_CONFIG, 262_144);
         return new KafkaProducer<>(properties, new ByteArraySerializer(), new ByteArraySerializer());

@@ -43,8 +43,13 @@ public final class BrokerUnderTest implements AutoCloseable {
     private BrokerUnderTest(SharedBroker broker) {
         this.broker = broker;
         this.admin = Admin.create(Map.of("bootstrap.servers", broker.bootstrapServers()));
+        // One request at a time: a first batch that finds no leader yet must not be overtaken by the second, or the
+        // broker takes it for out of order until it times out.
         this.producer = new KafkaProducer<>(
-                Map.of("bootstrap.servers", broker.bootstrapServers(), "linger.ms", "5"),
+                Map.of(
+                        "bootstrap.servers", broker.bootstrapServers(),
+                        "linger.ms", "5",
+                        "max.in.flight.requests.per.connection", "1"),
                 new ByteArraySerializer(),
                 new ByteArraySerializer());
     }

@@ -148,6 +148,7 @@ final class ClientSettings {
         Map<String, String> proposed = Map.of("max.block.ms", REQUEST_TIMEOUT_MILLIS, "delivery.timeout.ms", "20000");
         Map<String, String> fixed = new HashMap<>();
         fixed.put("client.id", name + "-writer");
+        fixed.put("max.in.flight.requests.per.connection", "1");
         fixed.put("acks", "all");
         fixed.put("enable.idempotence", "true");
         return layered(clientProperties, proposed, fixed);
