@@ -176,9 +176,15 @@ public final class PlanBook {
         return copy;
     }
 
-    /** Whether this very proposal was refused before, as far as is remembered. */
-    public boolean hasRefused(Plan proposed) {
+    /** What stands for an experiment; empty where nothing was proposed. */
+    public Optional<Entry> entry(String experiment) {
+        return Optional.ofNullable(entries.get(experiment));
+    }
+
+    /** The last refusal of this very proposal, as far as is remembered. */
+    public Optional<Refusal> refusal(Plan proposed) {
         return refusals.getOrDefault(proposed.experiment(), List.of()).stream()
-                .anyMatch(refusal -> refusal.proposed().equals(proposed));
+                .filter(refusal -> refusal.proposed().equals(proposed))
+                .reduce((earlier, later) -> later);
     }
 }

@@ -11,7 +11,6 @@ import java.util.TreeSet;
  */
 public final class PlanNames {
 
-    private final List<String> names;
     private final NameTable experiments;
     private final List<NameTable> variants;
     private final NameTable segments;
@@ -51,7 +50,6 @@ public final class PlanNames {
      * @param segments names of the segment fields that any plan names, all different
      */
     public PlanNames(List<String> experiments, List<List<String>> variants, Collection<String> segments) {
-        names = List.copyOf(experiments);
         this.experiments = new NameTable(experiments);
         this.variants = variants.stream().map(NameTable::new).toList();
         this.segments = new NameTable(segments);
@@ -60,11 +58,6 @@ public final class PlanNames {
     /** Names without their plans, none of which names a segment. */
     public PlanNames(List<String> experiments, List<List<String>> variants) {
         this(experiments, variants, List.of());
-    }
-
-    /** Name of the experiment at a position. */
-    public String experimentName(int experiment) {
-        return names.get(experiment);
     }
 
     /** The segment fields that any plan names, by position. */

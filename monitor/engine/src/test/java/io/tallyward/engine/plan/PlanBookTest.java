@@ -47,8 +47,8 @@ class PlanBookTest {
         assertEquals(new PlanBook.Entry(other, true), book.entries().get("quay-banner"));
         assertInstanceOf(Ruling.Refused.class, book.propose(plan, Plans.FROM));
         assertEquals(new PlanBook.Entry(other, true), book.entries().get("quay-banner"));
-        assertTrue(book.hasRefused(plan));
-        assertFalse(book.hasRefused(other));
+        assertTrue(book.refusal(plan).isPresent());
+        assertFalse(book.refusal(other).isPresent());
     }
 
     @Test

@@ -83,11 +83,6 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
         return now.plus(maxSkew).plus(LEAD);
     }
 
-    /** How the topic behind it fares. */
-    public SharedLogStatus status() {
-        return log.status();
-    }
-
     private void read(SharedLog.Entry entry) {
         PlanEntry read = PlanEntryJson.read(entry.value());
         Optional<Ruling> ruling;
@@ -105,7 +100,8 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
         }
     }
 
-    private static void say(PlanEntry.Proposal proposal, Ruling ruling) {
+    /** What is refused of this instance's own files is told with the files. */
+    private void say(PlanEntry.Proposal proposal, Ruling ruling) {
         String experiment = proposal.experiment();
         if (ruling instanceof Ruling.Adopted) {
             LOG.info("{}: the plan proposed by {} stands until its first event freezes it", experiment, proposal.by());
@@ -118,7 +114,7 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
                             amendment.at(),
                             AmendmentWords.of(amendment.change()),
                             amendment.reason()));
-        } else if (ruling instanceof Ruling.Refused refused) {
+        } else if (ruling instanceof Ruling.Refused refused && !proposal.by().equals(by)) {
             LOG.warn(
                     "{}: the plan proposed by {} is refused, and the frozen plan stands: {}",
                     experiment,
@@ -216,7 +212,8 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
     public record Rejected(String experiment, String reason) {}
 
     private synchronized boolean isNew(Plan plan, Instant notBefore) {
-        return !(book.rule(plan, notBefore) instanceof Ruling.Unchanged) && !book.hasRefused(plan);
+        return !(book.rule(plan, notBefore) instanceof Ruling.Unchanged)
+                && book.refusal(plan).isEmpty();
     }
 
     /**
@@ -227,19 +224,16 @@ public final class PlanDesk implements PlanSource, AutoCloseable {
     public synchronized List<Rejected> differing(List<Plan> plans) {
         List<Rejected> rejected = new ArrayList<>();
         for (Plan plan : plans) {
-            PlanBook.Entry entry = book.entries().get(plan.experiment());
-            if (entry != null && !entry.plan().equals(plan)) {
-                rejected.add(new Rejected(plan.experiment(), refusal(plan).orElseGet(() -> difference(entry, plan))));
+            Optional<PlanBook.Entry> standing = book.entry(plan.experiment());
+            if (standing.isPresent() && !standing.get().plan().equals(plan)) {
+                rejected.add(new Rejected(
+                        plan.experiment(),
+                        book.refusal(plan)
+                                .map(PlanBook.Refusal::reason)
+                                .orElseGet(() -> difference(standing.get(), plan))));
             }
         }
         return rejected;
-    }
-
-    private Optional<String> refusal(Plan plan) {
-        return book.refusals().getOrDefault(plan.experiment(), List.of()).stream()
-                .filter(refusal -> refusal.proposed().equals(plan))
-                .reduce((earlier, later) -> later)
-                .map(PlanBook.Refusal::reason);
     }
 
     private static String difference(PlanBook.Entry standing, Plan plan) {

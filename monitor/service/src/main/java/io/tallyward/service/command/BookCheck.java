@@ -51,7 +51,9 @@ record BookCheck(Map<String, String> standings, List<Problem> problems) {
         List<Problem> problems = new ArrayList<>();
         for (Plan plan : plans) {
             Ruling ruling = book.rule(plan, notBefore);
-            standings.put(plan.experiment(), standing(ruling, book.entries().get(plan.experiment())));
+            standings.put(
+                    plan.experiment(),
+                    standing(ruling, book.entry(plan.experiment()).orElse(null)));
             if (ruling instanceof Ruling.Refused refused) {
                 problems.add(Problem.of(
                         config.plans().toString(),
